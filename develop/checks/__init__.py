@@ -1,0 +1,10 @@
+"""Proof of every pattern: edges, seam, area and the closing check, by routes of their own.
+
+Nothing here reaches the code that unrolls, not even through others; a test holds that.
+"""
+
+from __future__ import annotations
+
+from develop.checks.check import Check, check
+
+__all__ = ["Check", "check"]

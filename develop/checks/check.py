@@ -1,0 +1,86 @@
+"""The checks of one pattern against the finished piece, as they stand in the record."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from develop.checks.crossings import crossings
+from develop.checks.drawn import drawn_area, drawn_length
+from develop.checks.fold import closing_miss
+from develop.pattern.pattern import Pattern
+from develop.solid.solid import Solid
+
+__all__ = ["Check", "check"]
+
+_RELATIVE = 1e-11
+_SMALLEST = 1e-9
+# Drawn chains lie within 0.0002 mm of the exact edges.
+_DRAWN_LENGTH = 0.01
+_CLOSING = 0.01
+
+
+@dataclass(frozen=True)
+class Check:
+    """One check: `got` may differ from `expected` by `limit`, all in `unit`."""
+
+    name: str
+    expected: float
+    got: float
+    limit: float
+    unit: str
+
+    @property
+    def holds(self) -> bool:
+        """Whether the difference is within the limit; not for a got that is no number."""
+        return bool(abs(self.got - self.expected) <= self.limit)
+
+
+def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
+    """Every check of a pattern [mm, mm²] against the finished piece.
+
+    The girths come from the ends' support functions (Cauchy) where the sheet lies on the surface
+    that carries them, else, and for the area, from quadrature in space over lines that were found
+    by halving angles. "As drawn" measures the Béziers that leave the program.
+    """
+    net = pattern.net
+    on_surface = solid.distance == 0.0
+    girths = {
+        "a": solid.end_a.girth if on_surface else solid.measures.edge_a,
+        "b": solid.end_b.girth if on_surface else solid.measures.edge_b,
+    }
+    checks = []
+    for name, girth in girths.items():
+        curve = net.curve(name)
+        length = curve.length if curve else 0.0
+        limit = max(_SMALLEST, _RELATIVE * girth)
+        drawn = drawn_length(curve) if curve else 0.0
+        end = f"edge at END {name.upper()}"
+        checks.append(Check(f"{end} against the girth", girth, length, limit, "mm"))
+        checks.append(Check(f"{end} as drawn, against the girth", girth, drawn, _DRAWN_LENGTH, "mm"))
+    left, right = (net.curve(f"seam_{side}") for side in ("left", "right"))
+    assert left is not None
+    assert right is not None
+    seam = solid.seam_line
+    true_length = float(np.linalg.norm(seam[1] - seam[0]))
+    limit = max(1e-6, _RELATIVE * true_length)
+    checks += [
+        Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
+        Check("seam against the finished piece", true_length, drawn_length(left), limit, "mm"),
+    ]
+    area = solid.measures.area
+    checks += [
+        Check("area against the finished side", area, net.area, max(1e-6, _RELATIVE * area), "mm²"),
+        Check(
+            "area as drawn, against the finished side",
+            area,
+            drawn_area(net),
+            # A strip of the chains' tolerance along the whole outline.
+            max(1e-3, 1e-3 * (girths["a"] + girths["b"])),
+            "mm²",
+        ),
+        Check("closing check, largest distance from the ends", 0.0, closing_miss(pattern, solid), _CLOSING, "mm"),
+        Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
+    ]
+    return tuple(checks)

@@ -1,0 +1,1 @@
+"""The command line, made from the declarations of the kinds."""

@@ -1,0 +1,51 @@
+"""`develop job FILE`: every piece of a job file."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+import click
+
+from develop.cli.options import FORMATS_OPTION, OUT, FieldsCommand, PathOf
+from develop.cli.report import report
+from develop.errors import InputError, Problem
+from develop.job.file import read_job
+from develop.job.pipeline import make
+from develop.pieces.fields import Declared
+
+__all__ = ["command"]
+
+_FILE = Declared(name="file", type=PathOf("a job file", "FILE"), help="the job file", required=True)
+
+
+def command(summary: str) -> click.Command:
+    """The command."""
+    return FieldsCommand(
+        "job",
+        _make_all,
+        options=[OUT, FORMATS_OPTION],
+        argument=_FILE,
+        text=f"Make the patterns of {summary}.\n\n"
+        "The file is TOML: [job] with name and units, [defaults], and "
+        "[[piece]] with a kind and its fields for each piece; see develop kinds. "
+        "Nothing is written unless the whole file is good.",
+        epilog="\b\nFor example:\n  develop job hall.toml -o out",
+    )
+
+
+def _make_all(values: Mapping[str, object]) -> int:
+    formats = values["formats"]
+    assert isinstance(formats, tuple)
+    folder = str(values["out"])
+    worst = 0
+    problems: list[Problem] = []
+    for placed in read_job(str(values["file"])).pieces:
+        try:
+            outcome = make(placed.piece, folder=folder, formats=formats)
+        except InputError as error:
+            problems += [each.at(placed.place(each.field)) for each in error.problems]
+        else:
+            worst = max(worst, report(outcome, folder))
+    if problems:
+        raise InputError(problems)
+    return worst

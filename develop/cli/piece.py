@@ -1,0 +1,47 @@
+"""`develop straight`, `develop transition` and so on: one piece, its fields as options."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+
+import click
+
+from develop.cli.options import FORMATS_OPTION, OUT, FieldsCommand, units_option
+from develop.cli.report import report
+from develop.errors import InputError
+from develop.job.pipeline import make
+from develop.pieces import KINDS, kind_of
+from develop.pieces.fields import fields_of
+from develop.pieces.reference import command_line
+
+__all__ = ["piece_command"]
+
+
+def piece_command(name: str) -> click.Command:
+    """The command of a kind."""
+    kind = kind_of(name)
+    fields = fields_of(kind)
+    options = {each.name: each.option for each in fields}
+
+    def action(values: Mapping[str, object]) -> int:
+        piece = kind(**{each.name: values[each.name] for each in fields})
+        formats = values["formats"]
+        assert isinstance(formats, tuple)
+        try:
+            outcome = make(piece, folder=str(values["out"]), formats=formats)
+        except InputError as error:
+            raise InputError(
+                [replace(each, field=options.get(each.field, each.field)) for each in error.problems]
+            ) from None
+        return report(outcome, str(values["out"]))
+
+    return FieldsCommand(
+        name,
+        action,
+        options=[*fields, OUT, FORMATS_OPTION, units_option("unit of lengths given as bare numbers")],
+        text=f"Make the pattern of {KINDS[name][2]}.\n\nLengths take mm, cm, m, in or ft, and fractions: "
+        "12-3/8 in, 1' 6\". Directions are read facing end B: degrees anticlockwise from right, a word, or a "
+        "clock time.",
+        epilog=f"\b\nFor example:\n  {command_line(kind)}",
+    )

@@ -1,0 +1,26 @@
+"""One line for each set of files that was written."""
+
+from __future__ import annotations
+
+import click
+
+from develop.job.pipeline import Outcome
+
+__all__ = ["report"]
+
+
+def report(outcome: Outcome, folder: str) -> int:
+    """Say what was written and what its checks found; 0 when all hold, else 1."""
+    wrote = f"{outcome.mark}: wrote {', '.join(outcome.files)} in {folder}"
+    failed = outcome.failed
+    if not failed:
+        count = len(outcome.checks)
+        click.echo(f"{wrote}; {'the check holds' if count == 1 else f'all {count} checks hold'}")
+        return 0
+    which = "; ".join(
+        f"{each.name}: expected {each.expected:.10g}, got {each.got:.10g}, "
+        f"limit {each.limit:g} {each.unit}".rstrip()
+        for each in failed
+    )
+    click.echo(f"{wrote}; DO NOT CUT, {len(failed)} of {len(outcome.checks)} checks do not hold: {which}")
+    return 1

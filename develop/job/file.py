@@ -1,0 +1,288 @@
+"""The job file: TOML with `[job]`, `[defaults]` and one `[[piece]]` for each piece.
+
+Everything that is wrong is found in one reading, and each problem says the file and the line.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+
+from develop.errors import InputError, Problem, Refusal
+from develop.job.lines import Path, lines_of
+from develop.pieces import KINDS, kind_of
+from develop.pieces.field_types import Choice, Text
+from develop.pieces.fields import Declared, Piece, fields_of, read_fields, read_piece
+from develop.units import UNITS
+from develop.wording import listed, near_miss, shown
+
+__all__ = ["Job", "Placed", "Places", "read_job"]
+
+_LARGEST = 16_000_000
+
+_JOB = (
+    Declared(name="name", type=Text(), help="name of the job", required=False, default=""),
+    Declared(
+        name="units",
+        type=Choice(tuple(UNITS)),
+        help="unit of lengths given as bare numbers",
+        required=False,
+        default="mm",
+    ),
+)
+_TABLES = ("job", "defaults", "piece")
+# A mark is one piece's own.
+_NEVER_DEFAULTS = ("mark",)
+
+
+@dataclass(frozen=True)
+class Places:
+    """Where things stand: `hall.toml:12` for a path of keys, or for what holds it."""
+
+    file: str
+    lines: Mapping[Path, int]
+
+    def of(self, *path: str | int) -> str:
+        """The place of the path, or of the nearest above it that has a line."""
+        for size in range(len(path), 0, -1):
+            line = self.lines.get(path[:size])
+            if line is not None:
+                return f"{self.file}:{line}"
+        return self.file
+
+
+@dataclass(frozen=True)
+class Placed:
+    """A piece, and where in the file each of its fields was given."""
+
+    piece: Piece
+    place: Callable[[str], str]
+
+
+@dataclass(frozen=True)
+class Job:
+    """A job as read: its name, and its pieces in the file's order."""
+
+    name: str
+    pieces: tuple[Placed, ...]
+
+
+def read_job(file: str) -> Job:
+    """The job in a file, every piece of it known to have a surface.
+
+    Raises InputError with every problem, each at its line.
+    """
+    text = _text_of(file)
+    data, places = _parsed(file, text)
+    problems: list[Problem] = []
+    for name in data:
+        if name not in _TABLES:
+            hint = near_miss(name, _TABLES)
+            given = f"no such table{hint}"
+            problems.append(Problem(name, given, "[job], [defaults] and [[piece]]", places.of(name)))
+    name, unit = _job(data, places, problems)
+    defaults = _table(data, "defaults", places, problems)
+    raw = _pieces(data, places, problems)
+    _check_defaults(defaults, unit, places, problems)
+    read: list[tuple[int, Placed]] = []
+    for index, table in enumerate(raw):
+        if table is not None:
+            piece = _piece(index, table, defaults, unit, places, problems)
+            if piece is not None:
+                read.append((index, piece))
+    _check_marks(read, raw, places, problems)
+    if problems:
+        raise InputError(_once(problems))
+    return Job(name=name, pieces=tuple(placed for _, placed in read))
+
+
+def _text_of(file: str) -> str:
+    from os import strerror
+
+    try:
+        with open(file, "rb") as opened:
+            data = opened.read(_LARGEST + 1)
+    except IsADirectoryError:
+        raise InputError(Problem("", "is a folder", "a job file", file)) from None
+    except OSError as error:
+        reason = strerror(error.errno) if error.errno else str(error)
+        raise InputError(Problem("", f"cannot be read: {reason}", "a job file", file)) from None
+    if len(data) > _LARGEST:
+        raise InputError(Problem("", "is too large for a job file", "at most 16 MB", file))
+    try:
+        # Some editors put a byte order mark in front.
+        return data.decode("utf-8-sig").replace("\r\n", "\n")
+    except UnicodeDecodeError as error:
+        place = f"{file}:{data[: error.start].count(bytes((10,))) + 1}"
+        raise InputError(
+            Problem(
+                "", f"the byte 0x{data[error.start]:02x} is not UTF-8 text", "a file saved as UTF-8", place
+            )
+        ) from None
+
+
+def _parsed(file: str, text: str) -> tuple[dict[str, object], Places]:
+    import re
+    import tomllib
+
+    try:
+        return tomllib.loads(text), Places(file, lines_of(text))
+    except tomllib.TOMLDecodeError as error:
+        message = str(error)
+        found = re.search(r" \(at line (\d+), column \d+\)$", message)
+        line = int(found[1]) if found else text.rstrip().count("\n") + 1
+        reason = message[: found.start()] if found else message.removesuffix(" (at end of document)")
+        problem = Problem("", f"not a TOML file: {reason}", "key = value, text in quotes", f"{file}:{line}")
+    except RecursionError:
+        problem = Problem("", "brackets within brackets too deep to read", "a job file", file)
+    except ValueError as error:  # a whole number of thousands of digits
+        problem = Problem("", f"not a TOML file: {error}", "a job file", file)
+    raise InputError(problem)
+
+
+def _table(
+    data: Mapping[str, object], name: str, places: Places, problems: list[Problem]
+) -> dict[str, object]:
+    table = data.get(name, {})
+    if isinstance(table, dict):
+        return table
+    problems.append(Problem(name, f"{shown(table)} is not a table", f"[{name}]", places.of(name)))
+    return {}
+
+
+def _job(data: Mapping[str, object], places: Places, problems: list[Problem]) -> tuple[str, str]:
+    values, found = read_fields(_JOB, _table(data, "job", places, problems), unit="mm", where="[job]")
+    problems += [problem.at(places.of("job", problem.field)) for problem in found]
+    return str(values.get("name", "")), str(values.get("units", "mm"))
+
+
+def _pieces(
+    data: Mapping[str, object], places: Places, problems: list[Problem]
+) -> list[dict[str, object] | None]:
+    """The raw tables of the pieces; None for one that is no table."""
+    array = data.get("piece", [])
+    if not isinstance(array, list):
+        given = "[piece]" if isinstance(array, dict) else shown(array)
+        problems.append(
+            Problem(
+                "piece", f"{given} is not a list of pieces", "[[piece]] with two brackets", places.of("piece")
+            )
+        )
+        return []
+    if not array and not problems:
+        problems.append(Problem("piece", "not given", "at least one [[piece]]", places.file))
+    raw: list[dict[str, object] | None] = []
+    for index, each in enumerate(array):
+        if isinstance(each, dict):
+            raw.append(each)
+        else:
+            raw.append(None)
+            given = f"{shown(each)} is not a piece"
+            problems.append(Problem("piece", given, "[[piece]]", places.of("piece", index)))
+    return raw
+
+
+def _check_defaults(
+    defaults: Mapping[str, object], unit: str, places: Places, problems: list[Problem]
+) -> None:
+    """Each default must be a field of some kind, and good for every kind that has it."""
+    kinds = [fields_of(kind_of(name)) for name in KINDS]
+    known = {each.name for fields in kinds for each in fields} - set(_NEVER_DEFAULTS)
+    for name, given in defaults.items():
+        place = places.of("defaults", name)
+        if name in _NEVER_DEFAULTS:
+            problems.append(Problem(name, "a default would be the same for all", "in each [[piece]]", place))
+        elif name not in known:
+            hint = near_miss(name, known)
+            problems.append(Problem(name, f"no kind has such a field{hint}", ", ".join(sorted(known)), place))
+        else:
+            for each in (each for fields in kinds for each in fields if each.name == name):
+                _, found = read_fields((each,), {name: given}, unit=unit)
+                problems += _at(found, places, "defaults")
+
+
+def _at(found: list[Problem], places: Places, *table: str | int) -> list[Problem]:
+    return [problem.at(places.of(*table, *problem.field.split("."))) for problem in found]
+
+
+def _piece(
+    index: int,
+    given: dict[str, object],
+    defaults: Mapping[str, object],
+    unit: str,
+    places: Places,
+    problems: list[Problem],
+) -> Placed | None:
+    name = given.get("kind")
+    if not isinstance(name, str) or name not in KINDS:
+        hint = near_miss(name, KINDS) if isinstance(name, str) else ""
+        wrong = f"{shown(name)} is not a kind{hint}" if "kind" in given else "not given"
+        problems.append(Problem("kind", wrong, listed(KINDS), places.of("piece", index, "kind")))
+        return None
+    kind = kind_of(name)
+    own = {key: value for key, value in given.items() if key != "kind"}
+    # What a piece says itself goes before a default, also where the two exclude each other.
+    settled = {*own, *_NEVER_DEFAULTS}
+    for each in fields_of(kind):
+        if each.not_with:
+            settled |= {each.not_with} if each.name in own else set()
+            settled |= {each.name} if each.not_with in own else set()
+    shared = {
+        each.name: defaults[each.name]
+        for each in fields_of(kind)
+        if each.name in defaults and each.name not in settled
+    }
+
+    def place(field: str) -> str:
+        path = field.split(".")
+        return places.of("defaults", *path) if path[0] in shared else places.of("piece", index, *path)
+
+    piece, found = read_piece(kind, {**shared, **own}, unit=unit)
+    problems += [each.at(place(each.field)) for each in found]
+    if piece is None:
+        return None
+    try:
+        piece.surface()
+    except Refusal as refusal:
+        problems += [replace(each, place=place(each.field)) for each in refusal.problems]
+        return None
+    return Placed(piece, place)
+
+
+def _check_marks(
+    read: list[tuple[int, Placed]],
+    raw: list[dict[str, object] | None],
+    places: Places,
+    problems: list[Problem],
+) -> None:
+    """Two pieces of one mark would write the same files; on some systems capitals do not tell names apart."""
+    from unicodedata import normalize
+
+    first: dict[str, int] = {}
+    for index, placed in read:
+        piece = placed.piece
+        key = normalize("NFC", piece.mark).casefold()
+        if key not in first:
+            first[key] = index
+            continue
+        given = raw[index]
+        how = "is" if given and "mark" in given else "is by default"
+        where = places.of("piece", first[key])
+        problems.append(
+            Problem(
+                "mark",
+                f"{shown(piece.mark)} {how} the mark of this piece, and of the one at {where}",
+                "a mark of its own for each piece, such as A1 (capitals do not count)",
+                places.of("piece", index, "mark"),
+            )
+        )
+
+
+def _once(problems: list[Problem]) -> list[Problem]:
+    """Each problem once, in the order of the lines."""
+    return sorted(dict.fromkeys(problems), key=lambda each: _line(each.place))
+
+
+def _line(place: str) -> int:
+    _, _, line = place.rpartition(":")
+    return int(line) if line.isdigit() else 0

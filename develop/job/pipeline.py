@@ -1,0 +1,77 @@
+"""From a piece to its files: build, check, write out, put in place."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from develop.job.writing import write_all
+from develop.pieces.fields import Piece, record_of
+
+if TYPE_CHECKING:
+    from develop.checks import Check
+    from develop.pieces.built import Built
+
+__all__ = ["FORMATS", "Outcome", "make"]
+
+# In the order in which they are written and named.
+FORMATS = ("svg", "pdf", "json", "png")
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """What was written for one piece, and what the checks found."""
+
+    mark: str
+    files: tuple[str, ...]
+    checks: tuple[Check, ...]
+
+    @property
+    def failed(self) -> tuple[Check, ...]:
+        """The checks that do not hold."""
+        return tuple(check for check in self.checks if not check.holds)
+
+
+def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS) -> Outcome:
+    """Write the files of one piece, all or none of them; older files are replaced whole.
+
+    Raises Refusal for a piece that cannot be, WriteError for a place that cannot be written.
+    """
+    from develop.checks import check
+
+    built = piece.build()
+    checks = tuple(one for pattern in built.patterns for one in check(pattern, built.solid))
+    files: dict[str, bytes] = {}
+    for each in FORMATS:
+        if each in formats:
+            files |= _files(each, piece, built, checks)
+    write_all(folder, files)
+    return Outcome(mark=piece.mark, files=tuple(files), checks=checks)
+
+
+def _files(ending: str, piece: Piece, built: Built, checks: tuple[Check, ...]) -> dict[str, bytes]:
+    """Files of one format by name. Each writer is imported only when its format is asked for."""
+    mark = piece.mark
+    if ending == "svg":
+        from develop.outputs.svg import svg
+
+        return {f"{pattern.mark}.svg": svg(pattern) for pattern in built.patterns}
+    if ending == "pdf":
+        from develop.outputs.pdf import pdf
+
+        return {f"{mark}.pdf": pdf(built.patterns)}
+    if ending == "json":
+        from develop.outputs.record import record
+
+        data = record(
+            mark=mark,
+            kind=piece.kind,
+            fields=record_of(piece),
+            patterns=built.patterns,
+            checks=checks,
+        )
+        return {f"{mark}.json": data}
+    from develop.outputs.picture import picture
+
+    return {f"{mark}.png": picture(built.solid, mark)}

@@ -1,0 +1,172 @@
+"""PDF at true scale: one large sheet for each pattern, in as many pages as a sheet over 5080 mm needs."""
+
+from __future__ import annotations
+
+import io
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from develop.outputs.fonts import FACE, register
+from develop.outputs.ink import POINT, Ink, PatternPen
+from develop.outputs.panel import Panel, panels
+from develop.pattern.curve import Array
+from develop.pattern.drawing import draw
+from develop.pattern.pattern import Pattern
+
+if TYPE_CHECKING:
+    from reportlab.pdfgen.canvas import Canvas
+
+__all__ = ["pdf"]
+
+_LARGEST = 5080.0  # [mm] 14400 points: what every viewer takes for a page
+_MARGIN = 12.0  # [mm] printers leave up to 10 empty
+_STRIP = 10.0  # [mm] line of text along the top of every page
+_AROUND = 16.0  # [mm] between the pattern and what stands beside it
+_STUB = 10.0  # [mm] of datum line on each side of the pattern
+_OVERLAP = 60.0  # [mm] that neighbouring pages share
+_CROSSES = 200.0  # [mm] from cross to cross in the overlap
+_TINY = 100.0  # [mm] a pattern smaller than this in both directions has the small check square
+
+
+@dataclass(frozen=True)
+class _Sheet:
+    """The whole sheet without margins [mm]: its size, where the pattern's (0, 0) and the panel's top left are.
+
+    extent: least and greatest coordinates of the pattern, in its own coordinates.
+    """
+
+    wide: float
+    high: float
+    pattern: tuple[float, float]
+    extent: tuple[Array, Array]
+    panel: Panel
+    corner: tuple[float, float]
+
+
+def pdf(patterns: Sequence[Pattern], *, units: str = "mm") -> bytes:
+    """The patterns as a PDF file, one sheet each, true to scale.
+
+    units: of the figures in the tables, `mm` or `in`; the drawing is the same.
+    Raises WriteError if the type face is missing.
+    """
+    from reportlab.pdfgen.canvas import Canvas
+
+    register()
+    buffer = io.BytesIO()
+    canvas = Canvas(buffer, invariant=1, pageCompression=1, pdfVersion=(1, 6), initialFontName=FACE)
+    canvas.setTitle(", ".join(pattern.mark for pattern in patterns))
+    canvas.setAuthor("")
+    canvas.setCreator("develop")
+    canvas.setProducer("develop")
+    canvas.setSubject("flat pattern, true scale: print at actual size")
+    canvas.setViewerPreference("PrintScaling", "None")
+    for pattern in patterns:
+        _draw_sheet(canvas, pattern, _arranged(pattern, units))
+    canvas.save()
+    return buffer.getvalue()
+
+
+def _arranged(pattern: Pattern, units: str) -> _Sheet:
+    """The panel beside the pattern or below it: few pages, then a small sheet, then not a long strip."""
+    points = np.vstack(
+        [curve.polyline(0.01) for outline in (pattern.cut, pattern.net) for _, curve in outline.curves]
+    )
+    low, high = points.min(axis=0), points.max(axis=0)
+    wide, tall = (high - low).tolist()
+    inner = _LARGEST - 2.0 * _MARGIN - _STRIP
+    heights = [min(h, inner) for h in (tall, 115.0, 150.0, 200.0, 270.0, 360.0, 500.0, 700.0, 1000.0)]
+    choices = []
+    for panel in panels(pattern, units=units, tiny=max(wide, tall) < _TINY, heights=heights):
+        beside = (wide + 3.0 * _AROUND + panel.wide, max(tall + 2.0 * _AROUND, panel.high))
+        below = (max(wide + 2.0 * _AROUND, panel.wide), tall + 3.0 * _AROUND + panel.high)
+        choices.append((beside, panel, True))
+        # Below is the foot of the sheet: fine unless that is not on the first page.
+        if below[1] <= inner:
+            choices.append((below, panel, False))
+
+    def cost(choice: tuple[tuple[float, float], Panel, bool]) -> tuple[int, float]:
+        (w, h), _, _ = choice
+        return _count(w, inner) * _count(h, inner), w * h * (max(w, h) / min(w, h)) ** 0.25
+
+    (w, h), panel, is_beside = min(choices, key=cost)
+    top = h - _AROUND - float(high[1])
+    if not is_beside:
+        return _Sheet(w, h, (_AROUND - float(low[0]), top), (low, high), panel, (0.0, panel.high))
+    if cost(((w, h), panel, True))[0] > 1:  # the panel first, so that it lies whole on the first page
+        return _Sheet(w, h, (panel.wide + 2.0 * _AROUND - float(low[0]), top), (low, high), panel, (0.0, h))
+    corner = (wide + 3.0 * _AROUND, h)
+    return _Sheet(w, h, (_AROUND - float(low[0]), top), (low, high), panel, corner)
+
+
+def _count(size: float, inner: float) -> int:
+    """How many pages of `inner` a sheet of this size takes in one direction."""
+    return 1 if size <= inner else math.ceil((size - _OVERLAP) / (inner - _OVERLAP))
+
+
+def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> None:
+    """All pages of one sheet, from the top left, along the rows."""
+    inner = _LARGEST - 2.0 * _MARGIN - _STRIP
+    columns, rows = _count(sheet.wide, inner), _count(sheet.high, inner)
+    wide = math.ceil((sheet.wide + (columns - 1) * _OVERLAP) / columns)
+    high = math.ceil((sheet.high + (rows - 1) * _OVERLAP) / rows)
+    for row in range(rows):
+        for column in range(columns):
+            left = column * (wide - _OVERLAP)
+            bottom = sheet.high - row * (high - _OVERLAP) - high
+            canvas.setPageSize(((wide + 2.0 * _MARGIN) * POINT, (high + _STRIP + 2.0 * _MARGIN) * POINT))
+            ink = Ink(canvas, (left, bottom, wide, high + _STRIP), _MARGIN)
+            ink.text(left, bottom + high + 4.0, _heading(pattern, row, column, rows, columns), 4.0)
+            sheet.panel.draw(ink, *sheet.corner)
+            _datum_lines(ink, sheet)
+            draw(pattern, PatternPen(ink, *sheet.pattern))
+            for x in ([left] if column else []) + ([left + wide - _OVERLAP] if column < columns - 1 else []):
+                _match_line(ink, (x + _OVERLAP / 2.0, bottom), (x + _OVERLAP / 2.0, bottom + high))
+            for y in ([bottom + high] if row else []) + ([bottom + _OVERLAP] if row < rows - 1 else []):
+                _match_line(ink, (left, y - _OVERLAP / 2.0), (left + wide, y - _OVERLAP / 2.0))
+            canvas.showPage()
+
+
+def _heading(pattern: Pattern, row: int, column: int, rows: int, columns: int) -> str:
+    """The line along the top of a page, with its neighbours by name."""
+    number = row * columns + column + 1
+    words = ["PRINT AT ACTUAL SIZE", pattern.mark, f"sheet {number} of {rows * columns}"]
+    neighbours = (
+        ("left", column > 0, number - 1),
+        ("right", column < columns - 1, number + 1),
+        ("above", row > 0, number - columns),
+        ("below", row < rows - 1, number + columns),
+    )
+    words += [f"{side}: sheet {other}" for side, there, other in neighbours if there]
+    if rows * columns > 1:
+        words.append("lay crosses and dashed lines on each other")
+    return "   ·   ".join(words)
+
+
+def _datum_lines(ink: Ink, sheet: _Sheet) -> None:
+    """Short ends of the lines x = 0 and y = 0, outside the pattern on both sides."""
+    x, y = sheet.pattern
+    (low_x, low_y), (high_x, high_y) = (point.tolist() for point in sheet.extent)
+    ink.pen(0.25)
+    for at in (y + low_y - _STUB - 2.0, y + high_y + 2.0):
+        ink.line(x, at, x, at + _STUB)
+        ink.text(x + 1.5, at + 3.5, "x = 0", 3.0)
+    for at in (x + low_x - _STUB - 2.0, x + high_x + 2.0):
+        ink.line(at, y, at + _STUB, y)
+        ink.text(at - 1.0, y + 1.5, "y = 0", 3.0)
+
+
+def _match_line(ink: Ink, start: tuple[float, float], end: tuple[float, float]) -> None:
+    """A dashed line in the overlap, with crosses at the same places of the sheet on both pages."""
+    ink.pen(0.18, (8.0, 4.0))
+    ink.line(*start, *end)
+    ink.pen(0.25)
+    upright = start[0] == end[0]
+    low, high = (start[1], end[1]) if upright else (start[0], end[0])
+    for step in range(math.ceil((low + 10.0) / _CROSSES), math.floor((high - 10.0) / _CROSSES) + 1):
+        x, y = (start[0], step * _CROSSES) if upright else (step * _CROSSES, start[1])
+        ink.line(x - 8.0, y, x + 8.0, y)
+        ink.line(x, y - 8.0, x, y + 8.0)

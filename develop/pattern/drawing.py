@@ -1,0 +1,129 @@
+"""The one walk over a pattern that every drawing is made by.
+
+A pen knows a format; the walk knows a pattern. What is drawn, on which layer and in which
+order is decided here alone, so that all the files of a piece show the same thing.
+"""
+
+from __future__ import annotations
+
+from typing import Protocol
+
+import numpy as np
+
+from develop.pattern.curve import Array, Curve
+from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of
+from develop.pattern.pattern import Label, Outline, Pattern
+from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
+
+__all__ = ["CUT", "LAYERS", "NET", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
+
+CUT = "cut"
+NET = "net"
+ROLL_LINES = "roll-lines"
+WITNESS_MARKS = "witness-marks"
+TEXT = "text"
+LAYERS = (CUT, NET, ROLL_LINES, WITNESS_MARKS, TEXT)
+
+
+class Pen(Protocol):
+    """What a format must be able to do. Coordinates are the pattern's own [mm], y up."""
+
+    def layer(self, name: str) -> None:
+        """All that follows belongs to this layer, one of LAYERS; each is named once."""
+
+    def contour(self, outline: Outline) -> None:
+        """One closed contour."""
+
+    def line(self, start: Array, end: Array) -> None:
+        """A straight line from start to end, each (2,)."""
+
+    def dashed(self, curve: Curve) -> None:
+        """An open curve, dashed."""
+
+    def text(self, label: Label) -> None:
+        """A line of text."""
+
+
+def draw(pattern: Pattern, pen: Pen) -> None:
+    """Draw the pattern with the pen, layer by layer; a layer without content is not named.
+
+    Roll lines stop short of any text that stands on them.
+    """
+    pen.layer(CUT)
+    pen.contour(pattern.cut)
+    for opening in pattern.openings:
+        pen.contour(opening)
+    if not _same(pattern.net, pattern.cut):
+        pen.layer(NET)
+        pen.contour(pattern.net)
+    lengths = witness_lengths(pattern.net, pattern.marks)
+    strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
+    if pattern.full_lines:
+        strokes = _around(strokes, _text_boxes(pattern))
+    if len(strokes):
+        pen.layer(ROLL_LINES)
+        for start, end in strokes:
+            pen.line(start, end)
+    marks = witness_strokes(pattern.marks, lengths)
+    if len(marks) or pattern.dashed:
+        pen.layer(WITNESS_MARKS)
+        for start, end in marks:
+            pen.line(start, end)
+        for curve in pattern.dashed:
+            pen.dashed(curve)
+    if pattern.labels or pattern.arrows:
+        pen.layer(TEXT)
+        for label in pattern.labels:
+            pen.text(label)
+        for arrow, text in pattern.arrows:
+            for start, end in arrow_strokes(arrow):
+                pen.line(start, end)
+            pen.text(arrow_label(arrow, text))
+
+
+def _same(one: Outline, other: Outline) -> bool:
+    """Whether two outlines are the same line."""
+    if one is other:
+        return True
+    return len(one.curves) == len(other.curves) and all(
+        np.array_equal(a.controls, b.controls)
+        for (_, a), (_, b) in zip(one.curves, other.curves, strict=True)
+    )
+
+
+def _text_boxes(pattern: Pattern) -> Boxes:
+    """The boxes of all text and arrows of the pattern."""
+    boxes = [boxes_of(pattern.labels)] if pattern.labels else []
+    boxes += [arrow_box(arrow, text) for arrow, text in pattern.arrows]
+    if not boxes:
+        return Boxes(np.empty((0, 2)), np.empty((0, 2)), np.empty((0, 2)))
+    return Boxes(*(np.vstack(parts) for parts in zip(*boxes, strict=True)))
+
+
+def _around(strokes: Array, boxes: Boxes) -> Array:
+    """The strokes (n, 2, 2) without what lies in a box or close to it, (k, 2, 2)."""
+    if not len(strokes) or not len(boxes.centre):
+        return strokes
+    # A little air, in proportion to the text: a quarter of the box's lesser side.
+    half = boxes.half + 0.25 * boxes.half.min(axis=1)[:, None]
+    across = np.stack([-boxes.along[:, 1], boxes.along[:, 0]], axis=1)
+    frame = np.stack([boxes.along, across], axis=1)  # (k, 2, 2)
+    ends = np.einsum("kij,nekj->nkei", frame, strokes[:, :, None] - boxes.centre)
+    start, along = ends[:, :, 0], ends[:, :, 1] - ends[:, :, 0]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        low, high = (-half - start) / along, (half - start) / along
+    # Parallel to a side: inside its strip the whole way, or not at all.
+    still, within = np.abs(along) < 1e-12, np.abs(start) <= half
+    low, high = (
+        np.where(still, np.where(within, -np.inf, np.inf), np.minimum(low, high)).max(axis=-1),
+        np.where(still, np.where(within, np.inf, -np.inf), np.maximum(low, high)).min(axis=-1),
+    )
+    pieces: list[Array] = []
+    for n, (tail, head) in enumerate(strokes):
+        at = 0.0
+        hidden = [(low[n, k], high[n, k]) for k in np.flatnonzero(high[n] > low[n])]
+        for enter, leave in [*sorted(hidden), (1.0, 1.0)]:
+            if min(enter, 1.0) > at + 1e-9:
+                pieces.append(np.array([tail + at * (head - tail), tail + min(enter, 1.0) * (head - tail)]))
+            at = max(at, leave)
+    return np.array(pieces) if pieces else np.empty((0, 2, 2))

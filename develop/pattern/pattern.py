@@ -1,0 +1,130 @@
+"""The pattern: everything that is marked on the sheet, as frozen values, and nothing of how it was found.
+
+The flat lies with END A at the bottom; x runs to the right, y up, and no coordinate is
+negative: the two lines x = 0 and y = 0 are the datum lines that a tape is laid from.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+from develop.pattern.curve import Array, Curve
+
+__all__ = ["Division", "Label", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
+
+
+@dataclass(frozen=True)
+class Outline:
+    """One closed contour, anticlockwise, as named curves head to tail.
+
+    curves: (name, curve) pairs; for a tapered or straight side `a` (left to right),
+        `seam_right` (up), `b` (right to left; left out when it is a point), `seam_left` (down).
+    area: the exact area inside [mm²], openings not taken off.
+    """
+
+    curves: tuple[tuple[str, Curve], ...]
+    area: float
+
+    def curve(self, name: str) -> Curve | None:
+        """The curve of that name, or None."""
+        return next((curve for each, curve in self.curves if each == name), None)
+
+
+@dataclass(frozen=True)
+class RollLine:
+    """A straight line that the sheet is rolled along, from edge A to edge B.
+
+    start, end: (2,) [mm]. turn: of the sheet from the line before [rad].
+    radius: roll radius where the line meets edge A and edge B [mm], inf where flat.
+    """
+
+    start: Array
+    end: Array
+    turn: float
+    radius: tuple[float, float]
+
+
+@dataclass(frozen=True)
+class Division:
+    """One row of the divisions table: equal arcs of end A, from the left seam to the right.
+
+    direction: of the point on end A, seen from its centre, facing end B [rad].
+    arc_a, arc_b: running lengths along the two edges from the left seam [mm].
+    a, b: the line's ends (2,) [mm]. length: of the line [mm], the ordinate or true length.
+    """
+
+    number: int
+    direction: float
+    arc_a: float
+    arc_b: float
+    a: Array
+    b: Array
+    length: float
+
+
+@dataclass(frozen=True)
+class WitnessMark:
+    """A short mark square to an edge that must meet the same mark of the neighbour.
+
+    at: on the edge (2,) [mm]. inward: unit vector into the sheet (2,).
+    text: what it marks, such as TOP. edge: `a` or `b`.
+    """
+
+    at: Array
+    inward: Array
+    text: str
+    edge: str
+
+
+@dataclass(frozen=True)
+class Label:
+    """A line of text. at: middle of its baseline (2,) [mm]; angle anticlockwise [rad];
+    height of its capitals [mm]."""
+
+    text: str
+    at: Array
+    angle: float
+    height: float
+
+
+@dataclass(frozen=True)
+class Rulings:
+    """Dense straight lines of the sheet, from the left seam to the right, for the closing check.
+
+    a, b: their ends on the two edges, (n, 2) [mm]. turn: of the sheet since the line before, (n,) [rad].
+    distance: of the developed sheet outside the surface that the ends are given on [mm].
+    """
+
+    a: Array
+    b: Array
+    turn: Array
+    distance: float = 0.0
+
+
+@dataclass(frozen=True)
+class Pattern:
+    """One flat part. `net` is the geometry, `cut` what leaves the shear; equal without allowances.
+
+    face: `outside` or `inside`, the face of the finished piece that is up.
+    facts: lines of text that every sheet states: mark and kind, name and sizes, material, face.
+    arrows: pairs of points (2, 2) with a text, such as the flow.
+    datum: what the ordinates of the divisions are measured from, in words.
+    """
+
+    mark: str
+    kind: str
+    quantity: int
+    face: str
+    net: Outline
+    cut: Outline
+    openings: tuple[Outline, ...]
+    lines: tuple[RollLine, ...]
+    divisions: tuple[Division, ...]
+    marks: tuple[WitnessMark, ...]
+    labels: tuple[Label, ...]
+    facts: tuple[str, ...]
+    datum: str
+    full_lines: bool
+    rulings: Rulings
+    arrows: tuple[tuple[Array, str], ...] = ()
+    dashed: tuple[Curve, ...] = field(default=())

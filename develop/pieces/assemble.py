@@ -1,0 +1,270 @@
+"""From a sheet laid flat to the pattern: edges, lines, divisions, witness marks, words."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, fields, replace
+from math import pi
+
+import numpy as np
+
+from develop.pattern.curve import Array, Curve, segment
+from develop.pattern.layout import lay_out
+from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.sections.section import Section
+from develop.surfaces.edges import edges
+from develop.surfaces.sheet import Lines, Place, Sheet
+
+__all__ = ["Wording", "pattern_of", "seam_parameter"]
+
+_FOLD_MISS = 2e-3
+_MOST_CHANGE = 6.0
+_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+_DIRECTIONS = 0.5 * pi * np.arange(4)
+_ORDER = ("a", "seam_right", "b", "seam_left")
+_FLIP = np.array([-1.0, 1.0])
+# A mark nearer to the seam than this, in parts of the girth, lies on it and is made on both sides.
+_ON_SEAM = 1e-7
+_TIE = 1e-9
+
+
+@dataclass(frozen=True)
+class Wording:
+    """What the pattern says and how it lies."""
+
+    mark: str
+    kind: str
+    quantity: int
+    face: str
+    facts: tuple[str, ...]
+    datum: str
+    flow: str
+    full_lines: bool
+
+
+def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
+    """Parameter of end A's section at which the seam runs.
+
+    wanted: a direction [rad] or `shortest`, which is the whole degree at which the side is shortest; of equal ones the nearest to
+    the bottom, then the one more to the right.
+    length_at: length of the ruling at the section's parameters (n,).
+    """
+    if not isinstance(wanted, str):
+        return float(section.at_direction(np.array([wanted]))[0])
+    degrees = np.arange(360)
+    lengths = length_at(section.at_direction(np.radians(degrees)))
+    short = degrees[lengths <= np.min(lengths) * (1.0 + _TIE)]
+    from_bottom = np.abs((short - 270 + 180) % 360 - 180)
+    # Right of the bottom the direction, counted from it, is below 180.
+    index = np.lexsort(((short - 270) % 360, from_bottom))[0]
+    return float(section.at_direction(np.radians(short[[index]]))[0])
+
+
+def pattern_of(
+    sheet: Sheet,
+    section_a: Section,
+    section_b: Section,
+    *,
+    wording: Wording,
+    divisions: int,
+    distance: float,
+    turn_b: float = 0.0,
+    cut: Sheet | None = None,
+) -> Pattern:
+    """The pattern of a sheet.
+
+    divisions: equal arcs of end A. distance: of the sheet outside the given surface [mm].
+    turn_b: how far end B's section is turned in the piece frame [rad]. cut: the sheet that leaves
+    the shear, where it is more than the net one; it lies so that both have the same left seam.
+    """
+    moved = section_a.offset(distance)
+    ends = sheet.ends
+    at_ends = sheet.lines(ends)
+    steps = np.append(np.arange(divisions) / divisions, 0.5)
+    # Every ruling that is asked for, in one walk.
+    wanted = [
+        sheet.from_a(moved.at_arc(moved.arc(at_ends.u_a[:1]) + steps * moved.girth)),
+        sheet.from_a(section_a.at_direction(_DIRECTIONS)),
+        sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b)),
+        ends[np.array([0, -1])],
+        _dense(ends, at_ends),
+    ]
+    counts = np.cumsum([0, *(len(place.x) for place in wanted)])
+    found = sheet.lines(
+        Place(np.concatenate([w.panel for w in wanted]), np.concatenate([w.x for w in wanted]))
+    )
+    first, last = int(counts[3]), int(counts[3]) + 1
+
+    net_curves = _outline(sheet)
+    cut_curves = net_curves if cut is None else _outline(cut)
+    view = _View.of(cut_curves, found.take([last]), mirror=wording.face == "inside")
+    net = Outline(view.contour(net_curves), sheet.area)
+    cut_outline = net if cut is None else Outline(view.contour(cut_curves), cut.area)
+    rows_at = view.lines(found.take([*range(divisions), last]))
+    middle = view.lines(found.take([divisions]))
+    dense = view.lines(found.take(range(counts[4], counts[5])))
+    lines = _roll_lines(rows_at)
+    rows = _divisions(rows_at, section_a)
+    marks = [
+        mark
+        for i, (edge, whole) in enumerate((("a", sheet.edge_a), ("b", sheet.edge_b)))
+        if net.curve(edge) is not None
+        for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
+    ]
+    labels, arrows = lay_out(
+        net,
+        wording.facts,
+        left_seam=np.vstack([rows_at.a[0], rows_at.b[0]]),
+        right_seam=np.vstack([rows_at.a[-1], rows_at.b[-1]]),
+        mid_line=np.vstack([middle.a[0], middle.b[0]]),
+        flow=wording.flow,
+        marks=marks,
+        lines=lines,
+        divisions=rows,
+        full_lines=wording.full_lines,
+    )
+    return Pattern(
+        mark=wording.mark,
+        kind=wording.kind,
+        quantity=wording.quantity,
+        face=wording.face,
+        net=net,
+        cut=cut_outline,
+        openings=(),
+        lines=lines,
+        divisions=rows,
+        marks=tuple(marks),
+        labels=labels,
+        facts=wording.facts,
+        datum=wording.datum,
+        full_lines=wording.full_lines,
+        rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), distance),
+        arrows=arrows,
+    )
+
+
+def _dense(ends: Place, at: Lines) -> Place:
+    """Rulings so close that flat strips between them miss the rolled sheet by `_FOLD_MISS` at most.
+
+    n strips of a panel with arc s and turn t come s t² / (24 n²) too long for the bent sheet; where
+    the curvature changes by e^v over the panel, their mid planes are also out by s t v / (12 n²).
+    The miss is shared out so that the fewest strips do (n as the cube root of a panel's part).
+    """
+    turn = np.diff(at.turn)
+    arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
+    bend = np.log(np.maximum(at.radius_a, 1e-9))
+    change = np.minimum(np.abs(np.diff(bend)), _MOST_CHANGE)
+    part = np.cbrt(arc * turn * (turn + 2.0 * change) / 24.0)
+    counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / _FOLD_MISS)), 1).astype(int)
+    owner = np.repeat(np.arange(len(counts)), counts)
+    first = np.repeat(np.cumsum(counts) - counts, counts)
+    x = 2.0 * (np.arange(len(owner)) - first) / counts[owner] - 1.0
+    return Place(np.append(ends.panel[:-1][owner], ends.panel[-1]), np.append(x, ends.x[-1]))
+
+
+def _roll_lines(at: Lines) -> tuple[RollLine, ...]:
+    turns = np.diff(at.turn, prepend=at.turn[0])
+    return tuple(
+        RollLine(at.a[i], at.b[i], float(turns[i]), (float(at.radius_a[i]), float(at.radius_b[i])))
+        for i in range(len(turns))
+    )
+
+
+def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
+    directions = section.direction(at.u_a)
+    return tuple(
+        Division(
+            number=i,
+            direction=float(directions[i]),
+            arc_a=float(at.arc_a[i]),
+            arc_b=float(at.arc_b[i]),
+            a=at.a[i],
+            b=at.b[i],
+            length=float(at.length[i]),
+        )
+        for i in range(len(at.length))
+    )
+
+
+def _witness(
+    found: Lines, which: Sequence[int], seams: tuple[int, int], view: _View, edge: str, whole: float
+) -> list[WitnessMark]:
+    """Marks at right, top, left and bottom of one edge; one on the seam is made on both its sides.
+
+    which: the rulings of the four marks among those found; seams: those of the left and right seam.
+    """
+    arcs = getattr(found, f"arc_{edge}")
+    rows, texts = [], []
+    for i, text in zip(which, _WORDS, strict=True):
+        places = seams if min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole else (i,)
+        rows += places
+        texts += [text] * len(places)
+    order = rows[::-1] if view.mirror else rows
+    at = view.lines(found.take(order))
+    points, tangents = (at.a, at.tangent_a) if edge == "a" else (at.b, at.tangent_b)
+    side = 1.0 if edge == "a" else -1.0
+    inward = side * np.stack([-tangents[:, 1], tangents[:, 0]], axis=-1)
+    return [WitnessMark(points[i], inward[i], texts[i], edge) for i in range(len(texts))]
+
+
+def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:
+    """The sheet's contour, anticlockwise, as named curves."""
+    controls_a, controls_b = edges(sheet)
+    a, b = Curve(controls_a, sheet.edge_a), Curve(controls_b, sheet.edge_b)
+    curves = [
+        ("a", a),
+        ("seam_right", segment(a.end, b.end)),
+        ("b", b.reversed()),
+        ("seam_left", segment(b.start, a.start)),
+    ]
+    return tuple((name, curve) for name, curve in curves if not _no_more_than_a_point(curve))
+
+
+def _no_more_than_a_point(curve: Curve) -> bool:
+    return float(np.ptp(curve.controls, axis=0).max()) < 1e-9
+
+
+@dataclass(frozen=True)
+class _View:
+    """How the sheet is put on paper: mirrored when its inside is up, then shifted to the datum lines.
+
+    finish: the last ruling, whose running lengths are the whole ones.
+    """
+
+    mirror: bool
+    shift: Array
+    finish: Lines
+
+    @staticmethod
+    def of(curves: Sequence[tuple[str, Curve]], finish: Lines, *, mirror: bool) -> _View:
+        points = np.vstack([curve.polyline(1e-3) for _, curve in curves])
+        if mirror:
+            points = points * _FLIP
+        return _View(mirror, -points.min(axis=0), finish)
+
+    def contour(self, curves: Sequence[tuple[str, Curve]]) -> tuple[tuple[str, Curve], ...]:
+        turn = np.diag(_FLIP) if self.mirror else np.eye(2)
+        moved = [(name, curve.moved(turn=turn, shift=self.shift)) for name, curve in curves]
+        if not self.mirror:
+            return tuple(moved)
+        # Mirrored, the contour runs clockwise and its seams have changed sides: walk it back.
+        other = {"seam_left": "seam_right", "seam_right": "seam_left"}
+        back = {other.get(name, name): curve.reversed() for name, curve in moved}
+        return tuple((name, back[name]) for name in _ORDER if name in back)
+
+    def lines(self, lines: Lines) -> Lines:
+        if not self.mirror:
+            return replace(lines, a=lines.a + self.shift, b=lines.b + self.shift)
+        # From left to right again, so every running length counts from the other seam.
+        end = self.finish
+        back = Lines(*(getattr(lines, each.name)[::-1] for each in fields(Lines)))
+        return replace(
+            back,
+            a=back.a * _FLIP + self.shift,
+            b=back.b * _FLIP + self.shift,
+            tangent_a=back.tangent_a * -_FLIP,
+            tangent_b=back.tangent_b * -_FLIP,
+            arc_a=end.arc_a - back.arc_a,
+            arc_b=end.arc_b - back.arc_b,
+            turn=end.turn - back.turn,
+        )

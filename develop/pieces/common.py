@@ -1,0 +1,102 @@
+"""The fields that kinds share; a kind takes them by being derived from one of these."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
+
+from develop.pieces.field_types import (
+    MARK,
+    SEAM,
+    TEXT,
+    THICKNESS,
+    Choice,
+    Count,
+    Number,
+)
+from develop.pieces.fields import Piece, about
+from develop.pieces.wording import sizes_words, wall_words
+
+if TYPE_CHECKING:
+    from develop.pieces.assemble import Wording
+
+__all__ = ["Marked", "Plate"]
+
+# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
+# practice, no source.
+_PLATE = 3.0
+
+
+@dataclass(frozen=True, kw_only=True)
+class Marked(Piece):
+    """What every piece has. mark: each kind gives its own name as the default.
+
+    thickness: of the wall [mm]. seam_at: direction [rad], or `shortest`.
+    """
+
+    mark: str = field(metadata=about(MARK, "name of the piece and of its files", own=False))
+    quantity: int = field(default=1, metadata=about(Count(), "how many to make", own=False))
+    thickness: float = field(default=0.0, metadata=about(THICKNESS, "thickness of the wall", own=False))
+    sizes: str = field(
+        default="mean",
+        metadata=about(
+            Choice(("inside", "outside", "mean")),
+            "where the given sizes are measured; a pipe's size is always its outside",
+            own=False,
+        ),
+    )
+    seam_at: float | str = field(
+        default="shortest", metadata=about(SEAM, "where the seam is, facing end B", own=False)
+    )
+    divisions: int = field(
+        default=24, metadata=about(Count(least=3, most=720), "equal arcs of end A, a line at each", own=False)
+    )
+
+
+@dataclass(frozen=True, kw_only=True)
+class Plate(Marked):
+    """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside."""
+
+    material: str = field(default="", metadata=about(TEXT, "stated on the pattern", own=False))
+    neutral_line: float = field(
+        default=0.5,
+        metadata=about(Number(0.0, 1.0), "where the neutral line lies, 0 inside to 1 outside", own=False),
+    )
+    face: str = field(
+        default="outside",
+        metadata=about(Choice(("outside", "inside")), "which face of the sheet is up", own=False),
+    )
+    marks: str = field(
+        default="auto",
+        metadata=about(
+            Choice(("auto", "ticks", "full")),
+            "roll lines as ticks at both edges or full; auto: full from 3 mm thickness up",
+            own=False,
+        ),
+    )
+    flow: str = field(
+        default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)
+    )
+
+    def wording(self, *, sizes: str, more: tuple[str, ...] = ()) -> Wording:
+        """What the pattern says: the sizes in words, then further lines of the kind's own."""
+        from develop.pieces.assemble import Wording
+
+        full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
+        return Wording(
+            mark=self.mark,
+            kind=self.kind,
+            quantity=self.quantity,
+            face=self.face,
+            facts=(
+                f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
+                sizes,
+                *more,
+                sizes_words(self.sizes, self.thickness),
+                wall_words(self.material, self.thickness),
+                f"quantity {self.quantity}, {self.face} up",
+            ),
+            datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
+            flow=self.flow,
+            full_lines=full,
+        )

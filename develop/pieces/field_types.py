@@ -1,0 +1,444 @@
+"""The types a field can have: each reads a value from a job file or an option, and says what it allows.
+
+Every type reads text as well as the plain value a job file may hold, and raises InputError with
+all that is wrong with it; the field's name is filled in by whoever reads the whole piece.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import Protocol
+
+from develop.errors import InputError, Problem
+from develop.sections.text import SectionSpec, parse_section
+from develop.units import number_text, parse_angle, parse_direction, parse_length, parse_number
+from develop.wording import listed, near_miss, shown
+
+__all__ = [
+    "ANGLE", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT", "THICKNESS",
+    "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number",
+]  # fmt: skip
+
+
+class FieldType(Protocol):
+    """What a field can hold.
+
+    metavar: its word in the help, such as LENGTH. unit: of a bare number, in words; empty for none.
+    """
+
+    @property
+    def metavar(self) -> str: ...
+
+    @property
+    def unit(self) -> str: ...
+
+    @property
+    def allowed(self) -> str:
+        """What may be given, as messages and the help say it."""
+        ...
+
+    def read(self, given: object, *, unit: str) -> object:
+        """The value, in mm and radians; bare lengths in `unit`. Raises InputError."""
+        ...
+
+    def record(self, value: object) -> object:
+        """The value for the record: mm and degrees, plain JSON."""
+        ...
+
+    def text(self, value: object) -> str:
+        """The value as an option or a job file would give it."""
+        ...
+
+
+def _refused(given: str, allowed: str, *, inside: str = "") -> InputError:
+    return InputError(Problem(field=inside, given=given, allowed=allowed))
+
+
+def _degrees(angle: float) -> float:
+    """Degrees without the last digits that the change to radians and back has cost."""
+    return float(f"{math.degrees(angle):.14g}")
+
+
+@dataclass(frozen=True)
+class Length:
+    """A length [mm] from `least` to `most`, both included."""
+
+    least: float = 0.1
+    most: float = 100_000.0
+    metavar: str = "LENGTH"
+    unit: str = "mm"
+
+    @property
+    def allowed(self) -> str:
+        bounds = f"{_plain(self.least)} to {_plain(self.most)}"
+        return f"a length from {bounds}, such as 450, 45 cm, 12-3/8 in or 1' 6\""
+
+    def read(self, given: object, *, unit: str) -> float:
+        mm = parse_length(given, unit=unit, allowed=self.allowed)
+        if mm < self.least:
+            wrong = "is negative" if mm < 0 else "is zero" if mm == 0 else "is too small"
+            raise _refused(f"{shown(given)} {wrong}", self.allowed)
+        if mm > self.most:
+            raise _refused(f"{shown(given)} is too large", self.allowed)
+        return mm
+
+    def record(self, value: object) -> object:
+        return value
+
+    def text(self, value: object) -> str:
+        return f"{number_text(_number(value))} mm"
+
+
+def _number(value: object) -> float:
+    assert isinstance(value, int | float)
+    return float(value)
+
+
+def _plain(mm: float) -> str:
+    return f"{number_text(mm / 1000)} m" if abs(mm) >= 10_000 else f"{number_text(mm)} mm"
+
+
+@dataclass(frozen=True)
+class Angle:
+    """An angle [rad]; `least` and `most` in degrees, both included."""
+
+    least: float = -360.0
+    most: float = 360.0
+    metavar: str = "ANGLE"
+    unit: str = "degrees"
+
+    @property
+    def allowed(self) -> str:
+        return f"degrees from {number_text(self.least)} to {number_text(self.most)}"
+
+    def read(self, given: object, *, unit: str) -> float:
+        angle = parse_angle(given, allowed=self.allowed)
+        if not self.least <= _degrees(angle) <= self.most:
+            raise _refused(f"{shown(given)} is out of range", self.allowed)
+        return angle
+
+    def record(self, value: object) -> object:
+        return _degrees(_number(value))
+
+    def text(self, value: object) -> str:
+        return number_text(_degrees(_number(value)))
+
+
+@dataclass(frozen=True)
+class Direction:
+    """A direction round the section [rad], or one of the `words`, which stay words."""
+
+    words: tuple[str, ...] = ()
+    metavar: str = "DIRECTION"
+    unit: str = "degrees"
+
+    @property
+    def allowed(self) -> str:
+        own = "".join(f"{word}, " for word in self.words)
+        return (
+            f"{own}right, top, left, bottom, a clock time such as 2:30, or degrees anticlockwise from right"
+        )
+
+    def read(self, given: object, *, unit: str) -> float | str:
+        word = given.strip().lower() if isinstance(given, str) else ""
+        if word in self.words:
+            return word
+        try:
+            return parse_direction(given, allowed=self.allowed)
+        except InputError:
+            hint = near_miss(word, self.words) if word else ""
+            if not hint:
+                raise
+            raise _refused(f"{shown(given)} is not a direction{hint}", self.allowed) from None
+
+    def record(self, value: object) -> object:
+        return value if isinstance(value, str) else _degrees(_number(value))
+
+    def text(self, value: object) -> str:
+        return value if isinstance(value, str) else number_text(_degrees(_number(value)))
+
+
+@dataclass(frozen=True)
+class Count:
+    """A whole number from `least` to `most`, both included."""
+
+    least: int = 1
+    most: int = 100_000
+    metavar: str = "COUNT"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        return f"a whole number from {self.least} to {self.most}"
+
+    def read(self, given: object, *, unit: str) -> int:
+        number = parse_number(given, what="a whole number", allowed=self.allowed)
+        if not math.isfinite(number) or number != int(number):
+            raise _refused(f"{shown(given)} is not a whole number", self.allowed)
+        if not self.least <= number <= self.most:
+            raise _refused(f"{shown(given)} is out of range", self.allowed)
+        return int(number)
+
+    def record(self, value: object) -> object:
+        return value
+
+    def text(self, value: object) -> str:
+        return str(value)
+
+
+@dataclass(frozen=True)
+class Number:
+    """A number from `least` to `most`, both included."""
+
+    least: float
+    most: float
+    metavar: str = "NUMBER"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        return f"a number from {number_text(self.least)} to {number_text(self.most)}"
+
+    def read(self, given: object, *, unit: str) -> float:
+        number = parse_number(given, what="a number", allowed=self.allowed)
+        if not self.least <= number <= self.most:
+            raise _refused(f"{shown(given)} is out of range", self.allowed)
+        return number
+
+    def record(self, value: object) -> object:
+        return value
+
+    def text(self, value: object) -> str:
+        return number_text(_number(value))
+
+
+@dataclass(frozen=True)
+class Choice:
+    """One of a few words; spaces and capitals do not matter."""
+
+    words: tuple[str, ...]
+    metavar: str = "WORD"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        return listed(self.words)
+
+    def read(self, given: object, *, unit: str) -> str:
+        word = " ".join(given.lower().split()) if isinstance(given, str) else ""
+        if word not in self.words:
+            hint = near_miss(word, self.words) if word else ""
+            raise _refused(f"{shown(given)} is not one of them{hint}", self.allowed)
+        return word
+
+    def record(self, value: object) -> object:
+        return value
+
+    def text(self, value: object) -> str:
+        return "" if value is None else str(value)
+
+
+@dataclass(frozen=True)
+class Text:
+    """One line of free text; as a `mark` it must also be fit for a file's name."""
+
+    name: bool = False
+    longest: int = 120
+    metavar: str = "TEXT"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        if self.name:
+            return (
+                f"letters, digits, spaces and - _ . + = ( ) as in a file's name, at most {self.longest}, "
+                "the first a letter, a digit or _"
+            )
+        return f"one line of text in quotes, at most {self.longest} characters"
+
+    def read(self, given: object, *, unit: str) -> str:
+        if not isinstance(given, str):
+            raise _refused(f"{shown(given)} is not text", self.allowed)
+        text = given.strip()
+        wrong = self._wrong(text)
+        if wrong:
+            raise _refused(f"{shown(given)} {wrong}", self.allowed)
+        return text
+
+    def _wrong(self, text: str) -> str:
+        if len(text) > self.longest or (self.name and len(text.encode(errors="replace")) > 2 * self.longest):
+            return "is too long"
+        odd = next((each for each in text if not each.isprintable()), None)
+        if odd is not None:
+            return f"has the character {shown(odd)}"
+        if not self.name:
+            return ""
+        if not text:
+            return "is empty"
+        odd = next((each for each in text if not (each.isalnum() or each in " -_.+=()")), None)
+        if odd is not None:
+            return f"has the character {shown(odd)}"
+        if not (text[0].isalnum() or text[0] == "_"):
+            return f"begins with {shown(text[0])}"
+        if text.endswith("."):
+            return 'ends with "."'
+        # These name devices on one family of systems, with or without an ending.
+        if text.split(".")[0].strip().upper() in _DEVICES:
+            return "cannot be a file's name on every system"
+        return ""
+
+    def record(self, value: object) -> object:
+        return value
+
+    def text(self, value: object) -> str:
+        return str(value)
+
+
+_DEVICES = {"CON", "PRN", "AUX", "NUL"} | {f"{port}{n}" for port in ("COM", "LPT") for n in range(10)}
+
+
+@dataclass(frozen=True)
+class SectionText:
+    """A section in its text form."""
+
+    metavar: str = "SECTION"
+    unit: str = "mm"
+
+    @property
+    def allowed(self) -> str:
+        return "round 400, ellipse 600 x 300, pipe DN 150 or pipe NPS 6; sizes from 0.1 mm to 100 m"
+
+    def read(self, given: object, *, unit: str) -> SectionSpec:
+        return parse_section(given, unit=unit)
+
+    def record(self, value: object) -> object:
+        return self.text(value)
+
+    def text(self, value: object) -> str:
+        assert isinstance(value, SectionSpec)
+        return value.text
+
+
+@dataclass(frozen=True)
+class Cut:
+    """An end cut by a plane.
+
+    slope: angle between the plane and a square cut [rad], from 0, below a right angle.
+    long: direction in which that end is longest [rad], facing end B.
+    """
+
+    slope: float
+    long: float
+
+
+@dataclass(frozen=True)
+class CutText:
+    """A cut as `slope 30 long 90`, as a table of slope and long, or `square` (None)."""
+
+    metavar: str = "CUT"
+    unit: str = "degrees"
+
+    @property
+    def allowed(self) -> str:
+        return (
+            "square, or slope 30 long 90 (in a job file also { slope = 30, long = 90 }), slope from 0 to 89.9"
+        )
+
+    def read(self, given: object, *, unit: str) -> Cut | None:
+        if isinstance(given, dict):
+            parts: dict[str, object] = given
+        elif isinstance(given, str):
+            if given.strip().lower() == "square":
+                return None
+            words = given.replace("=", " ").replace(",", " ").split()
+            names, values = [word.lower() for word in words[::2]], words[1::2]
+            if sorted(names) != ["long", "slope"] or len(values) != 2:
+                raise _refused(f"{shown(given)} is not a cut", self.allowed)
+            parts = dict(zip(names, values, strict=True))
+        else:
+            raise _refused(f"{shown(given)} is not a cut", self.allowed)
+        problems = []
+        for name in parts:
+            if name not in _CUT_PARTS:
+                hint = near_miss(name, _CUT_PARTS)
+                problems.append(Problem(name, f"no such field{hint}", listed(_CUT_PARTS)))
+        read: dict[str, float] = {}
+        for name, part in _CUT_PARTS.items():
+            if name not in parts:
+                problems.append(Problem(name, "not given", part.allowed))
+                continue
+            try:
+                value = part.read(parts[name], unit=unit)
+                assert isinstance(value, float)
+                read[name] = value
+            except InputError as error:
+                problems += [Problem(name, each.given, each.allowed) for each in error.problems]
+        if problems:
+            raise InputError(problems)
+        return Cut(slope=read["slope"], long=read["long"])
+
+    def record(self, value: object) -> object:
+        if value is None:
+            return "square"
+        assert isinstance(value, Cut)
+        return {"slope": _degrees(value.slope), "long": _degrees(value.long)}
+
+    def text(self, value: object) -> str:
+        if value is None:
+            return "square"
+        assert isinstance(value, Cut)
+        return f"slope {number_text(_degrees(value.slope))} long {number_text(_degrees(value.long))}"
+
+
+@dataclass(frozen=True)
+class Offset:
+    """A shift to the right and up [mm], facing end B: `0,50` or [0, 50]."""
+
+    most: float = 100_000.0
+    metavar: str = "RIGHT,UP"
+    unit: str = "mm"
+
+    @property
+    def allowed(self) -> str:
+        return "right and up, such as 0,50 or -20,50 (in a job file also [0, 50]), each at most 100 m"
+
+    def read(self, given: object, *, unit: str) -> tuple[float, float]:
+        parts: list[object] = list(given.split(",")) if isinstance(given, str) else []
+        if isinstance(given, list):
+            parts = given
+        if len(parts) != 2:
+            raise _refused(f"{shown(given)} is not two lengths", self.allowed)
+        right, up = (self._one(part, unit) for part in parts)
+        return right, up
+
+    def _one(self, given: object, unit: str) -> float:
+        mm = parse_length(given, unit=unit, allowed=self.allowed)
+        if abs(mm) > self.most:
+            raise _refused(f"{shown(given)} is too large", self.allowed)
+        return mm
+
+    def record(self, value: object) -> object:
+        return list(self._pair(value))
+
+    def text(self, value: object) -> str:
+        return ",".join(number_text(each) for each in self._pair(value))
+
+    def _pair(self, value: object) -> tuple[float, float]:
+        assert isinstance(value, tuple)
+        right, up = value
+        return right, up
+
+
+LENGTH = Length()
+THICKNESS = Length(least=0.0, most=1000.0)
+ANGLE = Angle()
+DIRECTION = Direction()
+SEAM = Direction(words=("shortest",))
+MARK = Text(name=True, longest=60)
+TEXT = Text()
+SECTION = SectionText()
+CUT = CutText()
+OFFSET = Offset()
+
+_CUT_PARTS: dict[str, FieldType] = {"slope": Angle(least=0.0, most=89.9), "long": DIRECTION}

@@ -1,0 +1,70 @@
+"""A length of duct, either end square or cut by a plane."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING, ClassVar
+
+from develop.pieces.common import Plate
+from develop.pieces.field_types import CUT, LENGTH, MARK, SECTION, Cut
+from develop.pieces.fields import about
+from develop.pieces.wording import cut_words
+from develop.sections.text import SectionSpec
+from develop.units import number_text
+
+if TYPE_CHECKING:
+    from develop.surfaces.cylinder import Cylinder
+    from develop.pieces.built import Built
+
+__all__ = ["Straight"]
+
+
+@dataclass(frozen=True, kw_only=True)
+class Straight(Plate):
+    """A length of duct, either end square or cut by a plane; lengths in mm, angles in radians."""
+
+    kind: ClassVar[str] = "straight"
+    example: ClassVar[dict[str, str | float]] = {
+        "section": "ellipse 600 x 300",
+        "length": 800,
+        "cut_b": "slope 30 long top",
+    }
+
+    section: SectionSpec = field(metadata=about(SECTION, "the section, square to the axis"))
+    length: float = field(metadata=about(LENGTH, "length on the axis"))
+    cut_a: Cut | None = field(default=None, metadata=about(CUT, "cut of end A"))
+    cut_b: Cut | None = field(default=None, metadata=about(CUT, "cut of end B"))
+    mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
+
+    def surface(self) -> Cylinder:
+        """The section carried along the axis between the two cuts. Raises Refusal."""
+        from develop.pieces.cuts import cylinder_between
+        from develop.pieces.wall import given_section, neutral_distance
+
+        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        distance = neutral_distance(
+            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
+        )
+        return cylinder_between(section, self.cut_a, self.cut_b, length=self.length, distance=distance)
+
+    def build(self) -> Built:
+        """Raises Refusal where a cut runs past the other end."""
+        from develop.pieces.assemble import pattern_of, seam_parameter
+        from develop.pieces.built import Built
+        from develop.pieces.cuts import cylinder_solid
+
+        surface = self.surface()
+        section = surface.section
+        seam = seam_parameter(section, surface.lengths, self.seam_at)
+        pattern = pattern_of(
+            surface.sheet(seam),
+            section,
+            section,
+            wording=self.wording(
+                sizes=f"{self.section.text}, length {number_text(self.length)}",
+                more=(f"END A {cut_words(self.cut_a)}, END B {cut_words(self.cut_b)}",),
+            ),
+            divisions=self.divisions,
+            distance=surface.distance,
+        )
+        return Built((pattern,), cylinder_solid(surface, seam))

@@ -1,0 +1,119 @@
+"""A change from one section to another, the two ends parallel."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING, ClassVar
+
+from develop.pieces.common import Plate
+from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice
+from develop.pieces.fields import about
+from develop.sections.text import SectionSpec
+from develop.units import number_text
+
+if TYPE_CHECKING:
+    from develop.pieces.built import Built
+    from develop.sections.section import Section
+    from develop.surfaces.band import Band
+
+__all__ = ["Transition"]
+
+
+@dataclass(frozen=True, kw_only=True)
+class Transition(Plate):
+    """A change from one section to another, the two ends parallel; lengths in mm, angles in radians."""
+
+    kind: ClassVar[str] = "transition"
+    example: ClassVar[dict[str, str | float]] = {
+        "end_a": "ellipse 600 x 300",
+        "end_b": "round 400",
+        "length": 450,
+        "offset": "0,50",
+    }
+
+    end_a: SectionSpec = field(metadata=about(SECTION, "section of end A"))
+    end_b: SectionSpec = field(metadata=about(SECTION, "section of end B"))
+    length: float = field(metadata=about(LENGTH, "distance between the planes of the ends"))
+    offset: tuple[float, float] = field(
+        default=(0.0, 0.0), metadata=about(OFFSET, "centre of end B, right of and above that of end A")
+    )
+    flush: str | None = field(
+        default=None,
+        metadata=about(
+            Choice(("bottom", "top", "left", "right")),
+            "the side on which both ends are level",
+            not_with="offset",
+        ),
+    )
+    rotate: float = field(
+        default=0.0, metadata=about(ANGLE, "end B turned anticlockwise about its own centre, facing end B")
+    )
+    mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
+
+    def surface(self) -> Band:
+        """The band between the two ends. Raises Refusal."""
+        from develop.pieces.wall import given_section, neutral_distance
+        from develop.solid import Frame, Rim
+        from develop.surfaces.band import Band
+
+        a, b = (
+            given_section(spec, field=field, thickness=self.thickness, sizes=self.sizes)
+            for field, spec in (("end_a", self.end_a), ("end_b", self.end_b))
+        )
+        shift = self.offset if self.flush is None else self._level(a, b, self.flush)
+        return Band(
+            Rim(a, Frame.square()),
+            Rim(b, Frame.square(at=(*shift, self.length), rotate=self.rotate)),
+            neutral_distance(thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line),
+        )
+
+    def _level(self, a: Section, b: Section, side: str) -> tuple[float, float]:
+        """The offset [mm] at which both ends reach equally far to one side."""
+        from math import cos, sin
+
+        import numpy as np
+
+        x, y = {"right": (1.0, 0.0), "top": (0.0, 1.0), "left": (-1.0, 0.0), "bottom": (0.0, -1.0)}[side]
+        c, s = cos(self.rotate), sin(self.rotate)
+        reach_a = a.support(np.array(x), np.array(y))
+        reach_b = b.support(np.array(c * x + s * y), np.array(c * y - s * x))
+        more = float(reach_a - reach_b)
+        return more * x, more * y
+
+    def build(self) -> Built:
+        """Raises Refusal."""
+        from math import degrees
+
+        from develop.pieces.assemble import pattern_of, seam_parameter
+        from develop.pieces.built import Built
+        from develop.solid import End, Solid
+
+        surface = self.surface()
+        a, b = surface.rim_a, surface.rim_b
+        seam = seam_parameter(a.section, surface.lengths, self.seam_at)
+        right, up, _ = b.frame.origin
+        place = f"flush at the {self.flush}, " if self.flush else ""
+        turned = f", rotated {number_text(round(degrees(self.rotate), 6))}°" if self.rotate else ""
+        pattern = pattern_of(
+            surface.sheet(seam),
+            a.section,
+            b.section,
+            wording=self.wording(
+                sizes=f"END A {self.end_a.text} to END B {self.end_b.text}",
+                more=(
+                    f"length {number_text(self.length)}, {place}"
+                    f"END B {number_text(round(float(right), 3))} right and {number_text(round(float(up), 3))} up{turned}",
+                ),
+            ),
+            divisions=self.divisions,
+            distance=surface.distance,
+            turn_b=self.rotate,
+        )
+        solid = Solid(
+            End.placed(a.section, a.frame),
+            End.placed(b.section, b.frame),
+            side="hull",
+            seam=seam,
+            distance=surface.distance,
+        )
+        return Built((pattern,), solid)

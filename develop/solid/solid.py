@@ -1,0 +1,170 @@
+"""The finished piece: two ends and the side between them, found from the sections alone.
+
+Nothing here knows how the side is unrolled; it is what the pattern is checked against.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Literal
+
+import numpy as np
+
+from develop.quadrature import DERIVATIVE, WEIGHTS, Array, halves, nodes_of
+from develop.solid.end import End
+
+__all__ = ["Measures", "Solid", "Strip"]
+
+_BISECTIONS = 56
+_SAME = 1e-9
+
+
+@dataclass(frozen=True)
+class Strip:
+    """Straight lines of the side: ends a, b (n, 3) [mm] and outward unit normals (n, 3)."""
+
+    a: Array
+    b: Array
+    normal: Array
+
+
+@dataclass(frozen=True)
+class Measures:
+    """What the finished side measures: edge lengths [mm] and area [mm²]."""
+
+    edge_a: float
+    edge_b: float
+    area: float
+
+
+@dataclass(frozen=True)
+class Solid:
+    """A piece between two ends.
+
+    side: `parallel`, lines along +z between two cuts of one section, or `hull`, the side of the
+        convex hull of the two ends.
+    seam: parameter of end A's section where the seam runs.
+    distance: of the developed sheet outside the surface that carries the ends [mm].
+    """
+
+    end_a: End
+    end_b: End
+    side: Literal["parallel", "hull"]
+    seam: float
+    distance: float = 0.0
+
+    def strip(self, u: Array) -> Strip:
+        """The side's straight lines through end A at its section's parameter u (n,)."""
+        if self.side == "parallel":
+            at = self.end_a.section.walk(u)
+            normal = np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1)
+            return Strip(self.end_a.point(u), self.end_b.point(u), normal)
+        normal = self._touching(self.end_a, self.end_b, u)
+        return Strip(self.end_a.point(u), self.end_b.touch(normal), normal)
+
+    def _touching(self, on: End, other: End, u: Array) -> Array:
+        """Unit normals (n, 3) of the planes through the tangents of one end that touch the other.
+
+        As the plane turns about the tangent, the other end lies wholly outside of it, then wholly
+        inside: halving the angle finds where it touches, from supports alone.
+        """
+        at = on.section.walk(u)
+        e = np.stack([at.ex, at.ey], axis=-1) @ on.spans.T
+        up = np.cross(on.spans[:, 0], on.spans[:, 1])
+        above = float((other.origin - on.origin) @ up) > 0.0
+        point = on.point(u)
+        low = np.full(len(u), -0.5 * np.pi)
+        high = -low
+        for _ in range(_BISECTIONS):
+            middle = 0.5 * (low + high)
+            normal = np.cos(middle)[:, None] * e + np.sin(middle)[:, None] * up
+            beyond = other.support(normal) - np.einsum("ni,ni->n", normal, point)
+            less = (beyond > 0.0) == above
+            high = np.where(less, middle, high)
+            low = np.where(less, low, middle)
+        angle = 0.5 * (low + high)
+        return np.asarray(np.cos(angle)[:, None] * e + np.sin(angle)[:, None] * up)
+
+    @cached_property
+    def measures(self) -> Measures:
+        """Lengths of the two edges of the sheet and its area, by quadrature in space.
+
+        Between lines a→b and their neighbours the area is ½ (|R × a'| + |R × b'|) du, as one
+        plane touches the side all along a line; a' and b' come from differentiating positions.
+        """
+        ends = self._panel_ends()
+        half = halves(ends)
+        u = nodes_of(ends[:-1], ends[1:])
+        shape = (*u.shape, 3)
+        strip = self.strip(u.ravel())
+        lift = self.distance * strip.normal
+        ruling = (strip.b - strip.a).reshape(shape)
+        speeds = [
+            np.einsum("jk,mkc->mjc", DERIVATIVE, (edge + lift).reshape(shape)) / half[:, None, None]
+            for edge in (strip.a, strip.b)
+        ]
+        swept = [np.linalg.norm(np.cross(ruling, speed), axis=-1) for speed in speeds]
+        lengths = [np.linalg.norm(speed, axis=-1) for speed in speeds]
+        edge_a, edge_b, area = (
+            float(np.sum(half * (values @ WEIGHTS))) for values in (*lengths, 0.5 * (swept[0] + swept[1]))
+        )
+        return Measures(edge_a, edge_b, area)
+
+    def _panel_ends(self) -> Array:
+        """Panels of end A's parameter that end at the breaks of both ends, each halved."""
+        section = self.end_a.section
+        start, period = section.breaks[0], section.period
+        ends = section.breaks - start
+        if self.side == "hull":
+            other = self.end_b.section.breaks[:-1]
+            flat = self._touching(self.end_b, self.end_a, other) @ self.end_a.spans
+            past = (section.parameter(flat[:, 0], flat[:, 1]) - start) % period
+            ends = np.sort(np.concatenate([ends, past]))
+            ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
+            ends[-1] = period
+        middle = 0.5 * (ends[:-1] + ends[1:])
+        return np.asarray(start + np.sort(np.concatenate([ends, middle])))
+
+    # ---- for pictures and meshes -----------------------------------------------------------
+
+    def around(self, count: int) -> Array:
+        """Parameters (count,) of end A spread evenly by arc and turn together, from the seam on."""
+        section = self.end_a.section
+        fine = self.seam + np.linspace(0.0, section.period, 16 * count + 1)
+        at = section.walk(fine)
+        girth = max(section.girth, 1e-300)
+        growth = np.hypot(at.ds / girth, at.dphi / (2.0 * np.pi))
+        total = np.concatenate([[0.0], np.cumsum(0.5 * (growth[1:] + growth[:-1]))])
+        return np.interp(np.arange(count) / count * total[-1], total, fine)
+
+    def faces(self, count: int = 240) -> tuple[Array, np.ndarray[tuple[int, ...], np.dtype[np.intp]]]:
+        """The side as a mesh: vertices (2 count, 3) [mm] and quads (count, 4), outward."""
+        strip = self.strip(self.around(count))
+        i = np.arange(count)
+        j = (i + 1) % count
+        return np.vstack([strip.a, strip.b]), np.stack([i, j, j + count, i + count], axis=1)
+
+    def rim_a(self, count: int = 240) -> Array:
+        """Points (count, 3) [mm] round end A."""
+        return self.strip(self.around(count)).a
+
+    def rim_b(self, count: int = 240) -> Array:
+        """Points (count, 3) [mm] round end B."""
+        return self.strip(self.around(count)).b
+
+    def line_at(self, direction: float) -> Array:
+        """The straight line (2, 3) [mm] of the side at a direction [rad] of end A."""
+        strip = self.strip(self.end_a.section.at_direction(np.array([direction])))
+        return np.vstack([strip.a, strip.b])
+
+    @property
+    def seam_line(self) -> Array:
+        """The seam (2, 3) [mm], from end A to end B."""
+        strip = self.strip(np.array([self.seam]))
+        return np.vstack([strip.a, strip.b])
+
+    @property
+    def top_line(self) -> Array:
+        """The line (2, 3) [mm] at the top of end A."""
+        return self.line_at(0.5 * np.pi)

@@ -1,0 +1,442 @@
+"""The band: the developable surface that joins two plane convex rims placed anyhow in space.
+
+Each rim lies wholly on one side of the other's plane; the surface is then the side of their
+convex hull. Its straight lines, the rulings, join points with coplanar tangents: along each, one
+plane touches both rims. Published condition: det(a', b', b - a) = 0 ("stationary bisecant").
+A section of no size is a point, and the band a cone: no code of its own.
+
+Notation: N the outward normal along a ruling, e = (cos φ, sin φ) the normal of a rim in its own
+plane with normal n, N = cos ψ e + sin ψ n, T = the rim's tangent, W = N × T, R = b − a.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, fields
+from functools import cached_property
+
+import numpy as np
+
+from develop.errors import Refusal
+from develop.quadrature import (
+    DERIVATIVE,
+    WEIGHTS,
+    Array,
+    between,
+    nodes_of,
+    running,
+    tail,
+)
+from develop.solid.frame import Rim
+from develop.surfaces.sheet import Lines, Place
+
+__all__ = ["Band", "BandSheet"]
+
+_NEWTON_STEPS = 40
+_ROUNDS = 24
+_SAME = 1e-9
+# Nearest that a rim may come to the other's plane, in parts of the larger size: closer, a ruling
+# has no length left to be marked out.
+_CLEAR = 1e-6
+
+
+@dataclass(frozen=True)
+class _Contact:
+    """One rim's side of a set of rulings; arrays (n,) or (n, 3)."""
+
+    point: Array
+    tangent: Array
+    across: Array  # W
+    cos_psi: Array
+    sin_psi: Array
+    normal_x: Array  # of the rim in its own plane
+    normal_y: Array
+
+
+@dataclass(frozen=True)
+class _Rulings:
+    """Rulings with everything that the flat map needs; derivatives by the walking parameter."""
+
+    a: _Contact
+    b: _Contact
+    ruling: Array  # R, (n, 3)
+    along: Array  # R·T of A
+    over: Array  # R·W of A
+    over_b: Array  # R·W of B
+    length: Array
+    dphi_a: Array
+    dphi_b: Array
+    ds_a: Array
+    ds_b: Array
+
+
+@dataclass(frozen=True)
+class _Panels:
+    """Panels of a walk: from `start` to `end` of the parameter of rim A or B, whichever `on_a` says."""
+
+    on_a: np.ndarray[tuple[int, ...], np.dtype[np.bool_]]
+    start: Array
+    end: Array
+
+    @property
+    def half(self) -> Array:
+        return 0.5 * (self.end - self.start)
+
+    def at(self, place: Place) -> Array:
+        return self.start[place.panel] + self.half[place.panel] * (place.x + 1.0)
+
+    def take(self, which: object) -> _Panels:
+        return _Panels(self.on_a[which], self.start[which], self.end[which])  # type: ignore[index]
+
+
+@dataclass(frozen=True)
+class Band:
+    """The side of the convex hull of two rims, the sheet lying `distance` [mm] outside of it.
+
+    Raises Refusal where a rim reaches through the other's plane.
+    """
+
+    rim_a: Rim
+    rim_b: Rim
+    distance: float = 0.0
+
+    def __post_init__(self) -> None:
+        size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
+        low_b = -self.rim_b.highest_over(self.rim_a.frame, sign=-1.0)
+        low_a = -self.rim_a.highest_over(self.rim_b.frame, sign=1.0)
+        if min(low_a, low_b) <= _CLEAR * size:
+            worse, other, by = ("B", "A", low_b) if low_b <= low_a else ("A", "B", low_a)
+            raise Refusal(
+                field="length",
+                given=f"end {worse} reaches {max(-by, 0.0):.4g} mm through the plane of end {other}",
+                allowed=f"ends that lie each on one side of the other: at least "
+                f"{_CLEAR * size - by:.4g} mm farther apart there",
+            )
+
+    # ---- the planes that touch both rims ------------------------------------------------
+
+    def _lean(self, walking: Rim, other: Rim, e: Array, h: Array) -> Array:
+        """tan ψ (n,) on the walking rim of the planes that touch both, for its normals e (n, 3).
+
+        The other rim's support in the direction e + τ n, less the walking rim's, is convex in τ
+        and falls or rises throughout, as the other rim lies on one side: Newton needs no guard.
+        """
+        n = walking.frame.normal
+        apart = other.frame.origin - walking.frame.origin
+        x, y, _ = other.local(e)
+        nx, ny, _ = other.local(n)
+        base, rate = e @ apart - h, float(n @ apart)
+        tau = np.zeros(len(e))
+        last = np.inf
+        for _ in range(_NEWTON_STEPS):
+            mx, my = x + tau * nx, y + tau * ny
+            fx, fy = other.section.touch(mx, my)
+            slope = rate + fx * nx + fy * ny
+            step = (base + tau * rate + fx * mx + fy * my) / slope
+            tau = tau - step
+            worst = float(np.max(np.abs(step) / (1.0 + np.abs(tau)), initial=0.0))
+            if worst <= 1e-15 or (worst < 1e-9 and worst >= 0.5 * last):
+                break
+            last = worst
+        return tau
+
+    def _rulings(self, walking_a: bool, u: Array) -> _Rulings:
+        """The rulings through the points u (n,) of the walking rim's section."""
+        walking, other = (self.rim_a, self.rim_b) if walking_a else (self.rim_b, self.rim_a)
+        axes = walking.frame.axes
+        at = walking.section.walk(u)
+        e = at.ex[:, None] * axes[0] + at.ey[:, None] * axes[1]
+        h = at.x * at.ex + at.y * at.ey
+        tau = self._lean(walking, other, e, h)
+        cos_psi = 1.0 / np.sqrt(1.0 + tau * tau)
+        sin_psi = tau * cos_psi
+        normal = cos_psi[:, None] * e + sin_psi[:, None] * axes[2]
+
+        def contact(rim: Rim, point: Array, cos_p: Array, sin_p: Array, x: Array, y: Array) -> _Contact:
+            ex, ey, n = rim.frame.axes
+            tangent = x[:, None] * ey - y[:, None] * ex
+            across = cos_p[:, None] * n - (sin_p * x)[:, None] * ex - (sin_p * y)[:, None] * ey
+            return _Contact(point, tangent, across, cos_p, sin_p, x, y)
+
+        here = contact(walking, walking.place(at.x, at.y), cos_psi, sin_psi, at.ex, at.ey)
+        ox, oy, oz = other.local(normal)
+        size = np.sqrt(ox * ox + oy * oy)
+        ox, oy = ox / size, oy / size
+        there = contact(other, other.place(*other.section.touch(ox, oy)), size, oz, ox, oy)
+
+        a, b = (here, there) if walking_a else (there, here)
+        ruling = b.point - a.point
+        over = np.einsum("ni,ni->n", ruling, a.across)
+        over_b = np.einsum("ni,ni->n", ruling, b.across)
+        along = np.einsum("ni,ni->n", ruling, a.tangent)
+        # Both rims see the same turn of the sheet: |R| cos ψ / (R·W) dφ.
+        ratio = (a.cos_psi * over_b) / (b.cos_psi * over)
+        if walking_a:
+            dphi_a, dphi_b = at.dphi, at.dphi * ratio
+            ds_a, ds_b = at.ds, other.section.radius(ox, oy) * dphi_b
+        else:
+            dphi_b, dphi_a = at.dphi, at.dphi / ratio
+            ds_b, ds_a = at.ds, other.section.radius(ox, oy) * dphi_a
+        length = np.sqrt(np.einsum("ni,ni->n", ruling, ruling))
+        return _Rulings(a, b, ruling, along, over, over_b, length, dphi_a, dphi_b, ds_a, ds_b)
+
+    def lengths(self, u: Array) -> Array:
+        """Lengths (n,) [mm] of the rulings through the points u (n,) of end A's section."""
+        return self._rulings(True, u).length
+
+    def _foot(self, walking_a: bool, u: Array) -> Array:
+        """The other rim's parameter (n,) on the rulings through u (n,) of the walking rim."""
+        rulings = self._rulings(walking_a, u)
+        other, c = (self.rim_b, rulings.b) if walking_a else (self.rim_a, rulings.a)
+        return other.section.parameter(c.normal_x, c.normal_y)
+
+    # ---- the flat map -------------------------------------------------------------------
+
+    def _rates(self, panels: _Panels) -> Array:
+        """At each panel's nodes (m, k, 6): the rates of θ, of the turn and of the edge along T and W; R·T, R·W."""
+        nodes = nodes_of(panels.start, panels.end)
+        m, k = nodes.shape
+        rates = np.empty((m, k, 6))
+        for on_a in (True, False):
+            which = panels.on_a == on_a
+            if not which.any():
+                continue
+            r = self._rulings(on_a, nodes[which].ravel())
+            turn = r.a.cos_psi * r.dphi_a
+            slant = turn / r.over
+            values = np.stack(
+                [
+                    r.dphi_a * r.a.sin_psi,
+                    slant * r.length,
+                    r.ds_a + self.distance * turn,
+                    -self.distance * slant * r.along,
+                    r.along,
+                    r.over,
+                ],
+                axis=-1,
+            )
+            rates[which] = values.reshape(-1, k, 6)
+        return rates
+
+    def sheet(self, seam: float, *, tolerance: float = 1e-10) -> BandSheet:
+        """The band slit along the ruling at parameter `seam` of end A's section, laid flat.
+
+        tolerance: what the unresolved part of each panel may move a point [mm].
+        """
+        panels = self._first_panels(seam)
+        size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
+        size += float(np.linalg.norm(self.rim_b.frame.origin - self.rim_a.frame.origin))
+        allowed = max(tolerance, 4e-14 * size)
+        order = np.arange(len(panels.start), dtype=float)
+        done: list[tuple[Array, _Panels, Array]] = []
+        for turn in range(_ROUNDS):
+            rates = self._rates(panels)
+            half = panels.half[:, None]
+            # Angles count by how far they swing the whole piece; R itself is used unintegrated.
+            scale = np.concatenate([size * half, size * half, half, half, np.ones((len(half), 2))], axis=1)
+            noise = 4e-14 * np.max(np.abs(rates), axis=1) * scale
+            unresolved = (tail(rates) * scale > np.maximum(allowed, noise)).any(axis=1)
+            if turn == _ROUNDS - 1:
+                unresolved[:] = False
+            done.append((order[~unresolved], panels.take(~unresolved), rates[~unresolved]))
+            if not unresolved.any():
+                break
+            rest = panels.take(unresolved)
+            middle = 0.5 * (rest.start + rest.end)
+            panels = _Panels(
+                np.concatenate([rest.on_a, rest.on_a]),
+                np.concatenate([rest.start, middle]),
+                np.concatenate([middle, rest.end]),
+            )
+            order = np.concatenate([order[unresolved], order[unresolved] + 0.5 ** (turn + 1)])
+        index = np.argsort(np.concatenate([part[0] for part in done]))
+        final = _Panels(
+            np.concatenate([part[1].on_a for part in done])[index],
+            np.concatenate([part[1].start for part in done])[index],
+            np.concatenate([part[1].end for part in done])[index],
+        )
+        return BandSheet(self, final, np.concatenate([part[2] for part in done])[index])
+
+    def _first_panels(self, seam: float) -> _Panels:
+        """Panels that end at the breaks of both rims, B's pulled back to A, from the seam once round."""
+        a, b = self.rim_a.section, self.rim_b.section
+        u_a = np.append(seam, a.breaks[:-1])
+        u_b = self._foot(True, u_a)
+        start_b = u_b[0]
+        u_a = np.concatenate([u_a, self._foot(False, b.breaks[:-1])])
+        u_b = np.concatenate([u_b, b.breaks[:-1]])
+        past_a, past_b = _past(u_a, seam, a.period), _past(u_b, start_b, b.period)
+        # A break of one rim that falls on the seam or on a break of the other is one end, not two.
+        share = past_a / a.period + past_b / b.period
+        index = np.argsort(share, kind="stable")
+        index = index[np.diff(share[index], prepend=-1.0) > _SAME]
+        ends_a = np.append(past_a[index], a.period) + seam
+        ends_b = np.append(past_b[index], b.period) + start_b
+        # Walked from the rim whose contact moves farther, the other moves smoothly along.
+        on_a = np.diff(a.arc(ends_a)) >= np.diff(b.arc(ends_b))
+        return _Panels(
+            on_a,
+            np.where(on_a, ends_a[:-1], ends_b[:-1]),
+            np.where(on_a, ends_a[1:], ends_b[1:]),
+        )
+
+
+def _past(u: Array, start: float, period: float) -> Array:
+    """How far u (n,) lies past the start in one turn, a whole turn counting as none."""
+    past = (u - start) % period
+    return np.where(past > period * (1.0 - _SAME), 0.0, past)
+
+
+class BandSheet:
+    """A band laid flat; see `Sheet`. Turned so that the edge at end A lies level on the whole.
+
+    Unrolled by θ' = φ' sin ψ (the geodesic curvature of end A's edge) and P' along T and W.
+    """
+
+    def __init__(self, band: Band, panels: _Panels, rates: Array) -> None:
+        self.band = band
+        self._panels = panels
+        half = panels.half
+        legs = rates[..., 4:]
+        angles, angle_ends = running(rates[..., :2], half)
+        lean = -0.5 * angle_ends[-1, 0]
+        angles[..., 0] += lean
+        angle_ends[:, 0] += lean
+        theta = angles[:, 1:, 0]
+        c, s = np.cos(theta), np.sin(theta)
+        step = np.stack(
+            [
+                rates[..., 2] * c - rates[..., 3] * s,
+                rates[..., 2] * s + rates[..., 3] * c,
+                np.sqrt(rates[..., 2] ** 2 + rates[..., 3] ** 2),
+            ],
+            axis=-1,
+        )
+        path, path_ends = running(step, half)
+        p = path[:, 1:, :2]
+        q = np.stack(
+            [
+                p[..., 0] + legs[..., 0] * c - legs[..., 1] * s,
+                p[..., 1] + legs[..., 0] * s + legs[..., 1] * c,
+            ],
+            axis=-1,
+        )
+        # The speed along edge B is taken from the flat map itself, not from end B's section, so
+        # that its length proves the map.
+        q_step = np.einsum("jk,mkc->mjc", DERIVATIVE, q) / half[:, None, None]
+        speed, speed_ends = running(np.sqrt((q_step**2).sum(axis=-1)), half)
+        self._table = np.concatenate([angles, path, speed[..., None]], axis=-1)
+        self.edge_a = float(path_ends[-1, 2])
+        self.edge_b = float(speed_ends[-1])
+        self.turn = float(angle_ends[-1, 0] - angle_ends[0, 0])
+
+        def swept(point: Array, rate: Array) -> float:
+            cross = point[..., 0] * rate[..., 1] - point[..., 1] * rate[..., 0]
+            return float(np.sum(half * (cross @ WEIGHTS)))
+
+        corner = self.lines(self.ends[np.array([0, -1])])
+        (a0, a1), (b0, b1) = corner.a, corner.b
+        seams = a1[0] * b1[1] - a1[1] * b1[0] - (a0[0] * b0[1] - a0[1] * b0[0])
+        self.area = 0.5 * (swept(p, step[..., :2]) - swept(q, q_step) + float(seams))
+
+    @property
+    def ends(self) -> Place:
+        m = len(self._panels.start)
+        return Place(np.append(np.arange(m), m - 1), np.append(np.full(m, -1.0), 1.0))
+
+    def lines(self, place: Place) -> Lines:
+        panels = self._panels
+        u = panels.at(place)
+        on_a = panels.on_a[place.panel]
+        table = np.einsum("nk,nkc->nc", between(place.x), self._table[place.panel])
+        if on_a.all() or not on_a.any():
+            return self._lines(bool(on_a[0]) if len(on_a) else True, u, table)
+        parts = [self._lines(side, u[on_a == side], table[on_a == side]) for side in (True, False)]
+        index = np.argsort(np.concatenate([np.flatnonzero(on_a), np.flatnonzero(~on_a)]))
+        return Lines(
+            *(
+                np.concatenate([getattr(part, f.name) for part in parts])[index]
+                for f in fields(Lines)
+            )
+        )
+
+    def _lines(self, on_a: bool, u: Array, table: Array) -> Lines:
+        band, d = self.band, self.band.distance
+        r = band._rulings(on_a, u)
+        a, b = r.a, r.b
+        theta = table[:, 0]
+        c, s = np.cos(theta), np.sin(theta)
+
+        def flat(along: Array, over: Array) -> Array:
+            return np.stack([along * c - over * s, along * s + over * c], axis=-1)
+
+        p = table[:, 2:4]
+        along_b = np.einsum("ni,ni->n", r.ruling, b.tangent)
+        t, w = (np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))
+        if d == 0.0:
+            tangent_a, tangent_b = flat(np.ones_like(c), np.zeros_like(c)), flat(t, w)
+        else:
+            # The edge moves along the rim and, as the sheet leans more or less, across it.
+            turn_a, turn_b = a.cos_psi * r.dphi_a, b.cos_psi * r.dphi_b
+            tangent_a = _unit(flat(r.ds_a + d * turn_a, -d * turn_a * r.along / r.over))
+            go, rise = r.ds_b + d * turn_b, -d * turn_b * along_b / r.over_b
+            tw, ww = (np.einsum("ni,ni->n", b.across, v) for v in (a.tangent, a.across))
+            tangent_b = _unit(flat(go * t + rise * tw, go * w + rise * ww))
+        square = r.length**2
+        return Lines(
+            a=p,
+            b=p + flat(r.along, r.over),
+            tangent_a=tangent_a,
+            tangent_b=tangent_b,
+            arc_a=table[:, 4],
+            arc_b=table[:, 5],
+            turn=table[:, 1],
+            radius_a=band.rim_a.section.radius(a.normal_x, a.normal_y) * r.over**2 / (a.cos_psi * square)
+            + d,
+            radius_b=band.rim_b.section.radius(b.normal_x, b.normal_y) * r.over_b**2 / (b.cos_psi * square)
+            + d,
+            u_a=u if on_a else band.rim_a.section.parameter(a.normal_x, a.normal_y),
+            length=r.length,
+        )
+
+    @cached_property
+    def _spans(self) -> tuple[Array, Array]:
+        """Parameters of both rims at the panels' ends, (m + 1,) each, growing from the seam."""
+        panels, band = self._panels, self.band
+        mine = np.append(panels.start, panels.end[-1])
+        on_a = np.append(panels.on_a, panels.on_a[-1])
+        spans = []
+        for side, section in ((True, band.rim_a.section), (False, band.rim_b.section)):
+            u = mine.copy()
+            if (on_a != side).any():
+                u[on_a != side] = band._foot(not side, mine[on_a != side])
+            u = np.unwrap(u, period=section.period)
+            u[-1] = u[0] + section.period
+            spans.append(u)
+        return spans[0], spans[1]
+
+    def from_a(self, u: Array) -> Place:
+        return self._from(True, np.asarray(u, dtype=float))
+
+    def from_b(self, u: Array) -> Place:
+        return self._from(False, np.asarray(u, dtype=float))
+
+    def _from(self, side: bool, u: Array) -> Place:
+        band, panels = self.band, self._panels
+        ends = self._spans[0 if side else 1]
+        mine = (band.rim_a if side else band.rim_b).section
+        yours = (band.rim_b if side else band.rim_a).section
+        local = ends[0] + _past(u, ends[0], mine.period)
+        panel = np.clip(np.searchsorted(ends, local, side="right") - 1, 0, len(ends) - 2)
+        walked = local.copy()
+        cross = panels.on_a[panel] != side
+        if cross.any():
+            foot = band._foot(side, u[cross])
+            start = panels.start[panel[cross]]
+            walked[cross] = start + _past(foot, start, yours.period)
+        base = np.where(cross, panels.start[panel], ends[panel])
+        x = np.clip((walked - base) / panels.half[panel] - 1.0, -1.0, 1.0)
+        return Place(panel, x)
+
+
+def _unit(vector: Array) -> Array:
+    return np.asarray(vector / np.sqrt((vector**2).sum(axis=-1))[:, None])
