@@ -19,6 +19,8 @@ __all__ = [
     "RUNNING",
     "WEIGHTS",
     "Array",
+    "Indices",
+    "Mask",
     "between",
     "halves",
     "nodes_of",
@@ -27,8 +29,10 @@ __all__ = [
 ]
 
 Array = NDArray[np.float64]
+Indices = NDArray[np.intp]
+Mask = NDArray[np.bool_]
 
-ORDER = 16
+ORDER = 20
 
 
 def _legendre(x: Array, degree: int) -> Array:
@@ -117,9 +121,12 @@ def running(values: Array, half: Array) -> tuple[Array, Array]:
     values: (m, ORDER) or (m, ORDER, c); half: (m,) half lengths of the panels.
     Returns its value at each panel's start and nodes (m, ORDER + 1[, c]), and at the m + 1 ends.
     """
-    scale = half.reshape(half.shape + (1,) * (values.ndim - 1))
-    inside = np.einsum("jk,mk...->mj...", RUNNING, values) * scale
-    whole = np.einsum("k,mk...->m...", WEIGHTS, values) * scale[:, 0]
+    if values.ndim == 2:
+        scale = half[:, None]
+        inside, whole = (values @ RUNNING.T) * scale, (values @ WEIGHTS) * half
+    else:
+        scale = half[:, None, None]
+        inside, whole = (RUNNING @ values) * scale, (WEIGHTS @ values) * half[:, None]
     ends = np.zeros((len(values) + 1, *values.shape[2:]))
     np.cumsum(whole, axis=0, out=ends[1:])
     table = np.empty((len(values), ORDER + 1, *values.shape[2:]))
@@ -144,10 +151,10 @@ def between(x: Array) -> Array:
 
 
 def tail(values: Array) -> Array:
-    """How large the last two Legendre coefficients of each panel are, (m[, c]).
+    """How large the last two Legendre coefficients of each panel are, (m, c), for values (m, ORDER, c).
 
     An honest sign of whether ORDER nodes resolve the function: for an analytic one the
     coefficients fall geometrically, so the tail bounds what has been left out.
     """
-    last = np.einsum("nk,mk...->mn...", _TO_COEFFICIENTS[-2:], values)
+    last = _TO_COEFFICIENTS[-2:] @ values
     return np.asarray(np.abs(last).sum(axis=1))

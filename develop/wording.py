@@ -46,8 +46,9 @@ def nearest(word: str, words: Iterable[str]) -> str:
     """The allowed word nearest to a wrong one; empty when none is near."""
     from difflib import get_close_matches
 
-    known = {each.lower(): each for each in words}
-    found = get_close_matches(word.lower()[:_LONGEST], known, n=1, cutoff=0.6)
+    # The dashes of options are alike and say nothing.
+    known = {each.lower().lstrip("-"): each for each in words}
+    found = get_close_matches(word.lower().lstrip("-")[:_LONGEST], known, n=1, cutoff=0.6)
     return known[found[0]] if found else ""
 
 

@@ -96,3 +96,5 @@ def test_the_near_miss_is_named() -> None:
     assert near_miss("lenght", ["length", "offset"]) == '; did you mean "length"?'
     assert near_miss("qqq", ["length"]) == ""
     assert near_miss("", ["length"]) == ""
+    assert nearest("--lenght", ["--length", "--out"]) == "--length"
+    assert nearest("--colour", ["--length", "--out"]) == ""

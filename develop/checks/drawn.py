@@ -44,9 +44,7 @@ def drawn_area(outline: Outline) -> float:
         def cross(i: int, j: int, p: Array = p) -> Array:
             return np.asarray(p[:, i, 0] * p[:, j, 1] - p[:, i, 1] * p[:, j, 0])
 
-        total += float(
-            np.sum(
-                6 * cross(0, 1) + 3 * cross(0, 2) + cross(0, 3) + 3 * cross(1, 2) + 3 * cross(1, 3) + 6 * cross(2, 3)
-            )
-        )
+        near = 6 * (cross(0, 1) + cross(2, 3)) + 3 * cross(1, 2)
+        far = 3 * (cross(0, 2) + cross(1, 3)) + cross(0, 3)
+        total += float(np.sum(near + far))
     return total / 20.0

@@ -80,7 +80,8 @@ def _no_such(given: str, names: Sequence[str]) -> str:
 commands = _Commands(
     name="develop",
     help=_HELP,
-    epilog="develop COMMAND --help tells the rest.",
+    epilog="develop COMMAND --help tells the rest. Exit codes: 0 done; 1 written, but a check does not "
+    "hold; 2 bad input; 3 could not write.",
     options_metavar="",
     subcommand_metavar="COMMAND [OPTIONS]",
     context_settings={"max_content_width": 100},
@@ -109,6 +110,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
 def _invoked(arguments: list[str]) -> int:
     """What click's own `main` does, without its ways of ending."""
     try:
+        if arguments[:1] == ["--"]:
+            del arguments[0]
         with commands.make_context("develop", arguments) as context:
             code = commands.invoke(context)
     except click.exceptions.Exit as ended:

@@ -16,7 +16,7 @@ from develop.wording import listed, near_miss, nearest, shown
 __all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "units_option"]
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False, repr=False)
 class PathOf:
     """A path of a file or folder; `allowed` says of what."""
 
@@ -36,7 +36,7 @@ class PathOf:
         return str(value)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False, repr=False)
 class Words:
     """One or more of a few words, with commas between."""
 
@@ -65,7 +65,7 @@ class Words:
         return ",".join(value)
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False, repr=False)
 class Flag:
     """An option without a value."""
 
@@ -184,7 +184,7 @@ class FieldsCommand(click.Command):
             if word == "--help":
                 click.echo(ctx.get_help())
                 ctx.exit()
-            if not word.startswith("-") or word == "-":
+            if not word.startswith("-") or word == "-" or _is_number(word):
                 rest.append(word)
                 continue
             option, joined, value = word.partition("=")
@@ -197,7 +197,7 @@ class FieldsCommand(click.Command):
                 meant.add(self.declared[near].name if near else "")
                 hint = near_miss(option, self.declared)
                 problems.append(Problem(option, f"no such option{hint}", f"see {ctx.command_path} --help"))
-                if not joined and left and not self._is_option(left[0]):
+                if not joined and left and (not left[0].startswith("-") or _is_number(left[0])):
                     left.pop(0)  # its value, most likely
                 continue
             if declared.name in given:
@@ -218,6 +218,11 @@ class FieldsCommand(click.Command):
     def _is_option(self, word: str) -> bool:
         name = word.partition("=")[0]
         return name in self.declared or name in _SHORT or name in ("--help", "--")
+
+
+def _is_number(word: str) -> bool:
+    """Whether a word with a minus sign is the start of a number."""
+    return word[1:2].isdigit() or word[1:2] == "."
 
 
 def _shortest(declared: Declared) -> str:

@@ -43,7 +43,6 @@ class _Scan:
                 path = (*self._reach(tuple(parents)), last)
                 index = self.counts.get(path, 0)
                 self.counts[path] = index + 1
-                self.lines.setdefault(path, self._line(start))
                 table = (*path, index)
                 self.at = self.text.index("]]", self.at) + 2
             elif self.text[self.at] == "[":
@@ -53,7 +52,12 @@ class _Scan:
             else:
                 self._pair(table)
                 continue
-            self.lines.setdefault(table, self._line(start))
+            self._note(table, self._line(start))
+
+    def _note(self, path: Path, line: int) -> None:
+        """The line of a path, and of what holds it where that has none of its own."""
+        for size in range(1, len(path) + 1):
+            self.lines.setdefault(path[:size], line)
 
     def _line(self, at: int) -> int:
         return bisect_left(self.ends, at) + 1
@@ -100,10 +104,8 @@ class _Scan:
     def _pair(self, table: Path) -> None:
         """key = value."""
         line = self._line(self.at)
-        path = table
-        for key in self._keys():
-            path = (*path, key)
-            self.lines.setdefault(path, line)
+        path = (*table, *self._keys())
+        self._note(path, line)
         self.at += 1  # the equals sign
         self._value(path)
 

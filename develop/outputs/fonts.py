@@ -31,7 +31,7 @@ def register() -> dict[int, float]:
     files = [Path(folder, "mpl-data", "fonts", "ttf", "DejaVuSans.ttf") for folder in folders]
     found = next((file for file in files if file.is_file()), None)
     if found is None:
-        raise WriteError("the font DejaVuSans.ttf was not found in matplotlib's data: install matplotlib again")
+        raise WriteError("DejaVuSans.ttf was not found in matplotlib's data: install matplotlib again")
     font = TTFont(FACE, str(found))
     pdfmetrics.registerFont(font)
     return {letter: units / 1000.0 for letter, units in font.face.charWidths.items()}

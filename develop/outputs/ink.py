@@ -73,7 +73,7 @@ class Ink:
     def text(
         self, x: float, y: float, text: str, height: float, *, angle: float = 0.0, anchor: float = 0.0
     ) -> None:
-        """A line of text with capitals of `height` [mm]; anchor: 0 at its left end, 0.5 middle, 1 right end."""
+        """A line of text, capitals of `height` [mm]; anchor: 0 its left end, 0.5 middle, 1 right end."""
         wide = width(text, height) if anchor or angle else len(text) * height * 1.4
         reach = wide + 2.0 * height
         if not self._sees(x - reach, y - reach, x + reach, y + reach):
@@ -110,14 +110,15 @@ class PatternPen:
         self._curves(curves, closed=True)
 
     def line(self, start: Array, end: Array) -> None:
-        self._ink.line(
-            self._x + float(start[0]), self._y + float(start[1]), self._x + float(end[0]), self._y + float(end[1])
-        )
+        (x1, y1), (x2, y2) = start.tolist(), end.tolist()
+        self._ink.line(self._x + x1, self._y + y1, self._x + x2, self._y + y2)
 
-    def dashed(self, curve: Curve) -> None:
-        self._ink.pen(_WIDTHS[self._layer], (6.0, 3.0))
+    def curve(self, curve: Curve, *, dashed: bool) -> None:
+        if dashed:
+            self._ink.pen(_WIDTHS[self._layer], (6.0, 3.0))
         self._curves([curve], closed=False)
-        self._ink.pen(_WIDTHS[self._layer], _DASHES.get(self._layer, ()))
+        if dashed:
+            self._ink.pen(_WIDTHS[self._layer], _DASHES.get(self._layer, ()))
 
     def text(self, label: Label) -> None:
         x, y = self._x + float(label.at[0]), self._y + float(label.at[1])

@@ -9,6 +9,7 @@ from __future__ import annotations
 import math
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 from develop.outputs.fonts import width
 from develop.outputs.ink import Ink
@@ -139,7 +140,7 @@ def _view() -> _Block:
 
 
 def _polyline(ink: Ink, points: list[tuple[float, float]]) -> None:
-    for start, end in zip(points, points[1:], strict=False):
+    for start, end in pairwise(points):
         ink.line(*start, *end)
 
 
@@ -149,7 +150,7 @@ def _notes(pattern: Pattern, units: str) -> _Block:
         " Paper stretches: where it matters, mark out from the table.",
         f"All figures in {'inches' if units == 'in' else 'mm'}; x from the datum line x = 0 at the left,"
         " y from the datum line y = 0 at the bottom; running lengths from the left seam.",
-        f"Length of a line is measured from {pattern.datum}." if pattern.datum else "",
+        f"Datum: {pattern.datum}." if pattern.datum else "",
         "Cut on the middle of the thick line.",
         *_CAUTION,
     ]

@@ -34,8 +34,9 @@ _TINY = 100.0  # [mm] a pattern smaller than this in both directions has the sma
 
 @dataclass(frozen=True)
 class _Sheet:
-    """The whole sheet without margins [mm]: its size, where the pattern's (0, 0) and the panel's top left are.
+    """The whole sheet without margins [mm].
 
+    pattern: where the pattern's (0, 0) is; corner: the panel's upper left one.
     extent: least and greatest coordinates of the pattern, in its own coordinates.
     """
 

@@ -1,4 +1,4 @@
-"""SVG for cutting tables: millimetres, true scale, one closed path for each contour, a group for each layer."""
+"""SVG for cutting tables: mm, true scale, one closed path for each contour, a group for each layer."""
 
 from __future__ import annotations
 
@@ -51,7 +51,8 @@ def svg(pattern: Pattern) -> bytes:
     ET.SubElement(root, "desc").text = "\n".join((*pattern.facts, "units: mm, true scale"))
     draw(pattern, _SvgPen(root, np.array([_EDGE - low[0], _EDGE + high[1]])))
     ET.indent(root, space="")
-    return ET.tostring(root, encoding="utf-8", xml_declaration=True) + b"\n"
+    text = str(ET.tostring(root, encoding="unicode"))
+    return f"<?xml version='1.0' encoding='utf-8'?>\n{text}\n".encode()
 
 
 class _SvgPen:
@@ -74,8 +75,9 @@ class _SvgPen:
     def line(self, start: Array, end: Array) -> None:
         self._path(f"M{self._point(start)} L{self._point(end)}")
 
-    def dashed(self, curve: Curve) -> None:
-        self._path(f"M{self._point(curve.start)} {self._steps(curve)}", {"stroke-dasharray": "6 3"})
+    def curve(self, curve: Curve, *, dashed: bool) -> None:
+        style = {"stroke-dasharray": "6 3"} if dashed else {}
+        self._path(f"M{self._point(curve.start)} {self._steps(curve)}", style)
 
     def text(self, label: Label) -> None:
         x, y = self._flip(label.at)

@@ -32,18 +32,18 @@ class Curve:
     @property
     def start(self) -> Array:
         """First point, (2,) [mm]."""
-        return self.controls[0]
+        return np.asarray(self.controls[0])
 
     @property
     def end(self) -> Array:
         """Last point, (2,) [mm]."""
-        return self.controls[-1]
+        return np.asarray(self.controls[-1])
 
     @property
     def pieces(self) -> Array:
         """The Béziers one by one, (n, 4, 2) [mm]."""
         first = np.arange(0, len(self.controls) - 1, 3)
-        return self.controls[first[:, None] + np.arange(4)]
+        return np.asarray(self.controls[first[:, None] + np.arange(4)])
 
     def reversed(self) -> Curve:
         """The same curve walked from its other end."""

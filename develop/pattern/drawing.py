@@ -11,7 +11,7 @@ from typing import Protocol
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
-from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of
+from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of, text_height
 from develop.pattern.pattern import Label, Outline, Pattern
 from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
 
@@ -22,6 +22,7 @@ NET = "net"
 ROLL_LINES = "roll-lines"
 WITNESS_MARKS = "witness-marks"
 TEXT = "text"
+_ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
 LAYERS = (CUT, NET, ROLL_LINES, WITNESS_MARKS, TEXT)
 
 
@@ -37,8 +38,8 @@ class Pen(Protocol):
     def line(self, start: Array, end: Array) -> None:
         """A straight line from start to end, each (2,)."""
 
-    def dashed(self, curve: Curve) -> None:
-        """An open curve, dashed."""
+    def curve(self, curve: Curve, *, dashed: bool) -> None:
+        """An open curve, dashed where asked."""
 
     def text(self, label: Label) -> None:
         """A line of text."""
@@ -53,13 +54,18 @@ def draw(pattern: Pattern, pen: Pen) -> None:
     pen.contour(pattern.cut)
     for opening in pattern.openings:
         pen.contour(opening)
-    if not _same(pattern.net, pattern.cut):
+    net = _off_the_cut(pattern.net, pattern.cut)
+    if net:
         pen.layer(NET)
-        pen.contour(pattern.net)
+        if len(net) == len(pattern.net.curves):
+            pen.contour(pattern.net)
+        else:
+            for curve in net:
+                pen.curve(curve, dashed=False)
     lengths = witness_lengths(pattern.net, pattern.marks)
     strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
     if pattern.full_lines:
-        strokes = _around(strokes, _text_boxes(pattern))
+        strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
     if len(strokes):
         pen.layer(ROLL_LINES)
         for start, end in strokes:
@@ -70,7 +76,7 @@ def draw(pattern: Pattern, pen: Pen) -> None:
         for start, end in marks:
             pen.line(start, end)
         for curve in pattern.dashed:
-            pen.dashed(curve)
+            pen.curve(curve, dashed=True)
     if pattern.labels or pattern.arrows:
         pen.layer(TEXT)
         for label in pattern.labels:
@@ -81,14 +87,22 @@ def draw(pattern: Pattern, pen: Pen) -> None:
             pen.text(arrow_label(arrow, text))
 
 
-def _same(one: Outline, other: Outline) -> bool:
-    """Whether two outlines are the same line."""
-    if one is other:
-        return True
-    return len(one.curves) == len(other.curves) and all(
-        np.array_equal(a.controls, b.controls)
-        for (_, a), (_, b) in zip(one.curves, other.curves, strict=True)
-    )
+def _off_the_cut(net: Outline, cut: Outline) -> list[Curve]:
+    """The curves of the net line that do not lie on the cut line: what is cut need not be drawn again."""
+    if net is cut:
+        return []
+    points = np.vstack([curve.polyline(0.001) for _, curve in cut.curves])
+    start, along = points[:-1], np.diff(points, axis=0)
+    square = np.maximum((along**2).sum(axis=1), 1e-300)
+
+    def lies_on(curve: Curve) -> bool:
+        line = curve.polyline(0.1)
+        line = np.vstack([line, (line[:-1] + line[1:]) / 2.0]) if curve.straight else line
+        share = np.clip(((line[:, None] - start) * along).sum(axis=-1) / square, 0.0, 1.0)
+        miss = line[:, None] - start - share[..., None] * along
+        return bool((np.hypot(miss[..., 0], miss[..., 1]).min(axis=1) < _ON_LINE).all())
+
+    return [curve for _, curve in net.curves if not lies_on(curve)]
 
 
 def _text_boxes(pattern: Pattern) -> Boxes:
@@ -100,8 +114,11 @@ def _text_boxes(pattern: Pattern) -> Boxes:
     return Boxes(*(np.vstack(parts) for parts in zip(*boxes, strict=True)))
 
 
-def _around(strokes: Array, boxes: Boxes) -> Array:
-    """The strokes (n, 2, 2) without what lies in a box or close to it, (k, 2, 2)."""
+def _around(strokes: Array, boxes: Boxes, *, least: float) -> Array:
+    """The strokes (n, 2, 2) without what lies in a box or close to it, (k, 2, 2).
+
+    Scraps between two boxes that are shorter than `least` [mm] are left out too.
+    """
     if not len(strokes) or not len(boxes.centre):
         return strokes
     # A little air, in proportion to the text: a quarter of the box's lesser side.
@@ -120,10 +137,11 @@ def _around(strokes: Array, boxes: Boxes) -> Array:
     )
     pieces: list[Array] = []
     for n, (tail, head) in enumerate(strokes):
-        at = 0.0
+        at, scrap = 0.0, least / max(float(np.hypot(*(head - tail))), 1e-9)
         hidden = [(low[n, k], high[n, k]) for k in np.flatnonzero(high[n] > low[n])]
         for enter, leave in [*sorted(hidden), (1.0, 1.0)]:
-            if min(enter, 1.0) > at + 1e-9:
+            between = at > 0.0 and enter < 1.0
+            if min(enter, 1.0) > at + (scrap if between else 1e-9):
                 pieces.append(np.array([tail + at * (head - tail), tail + min(enter, 1.0) * (head - tail)]))
             at = max(at, leave)
     return np.array(pieces) if pieces else np.empty((0, 2, 2))

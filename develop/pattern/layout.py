@@ -9,28 +9,18 @@ the way along both edges, so that a fan, a slanting cut and a narrow strip need 
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
-from develop.pattern.lettering import (
-    ASCENT,
-    DESCENT,
-    Boxes,
-    arrow_box,
-    text_height,
-    text_width,
-    upright,
-)
+from develop.pattern.lettering import ASCENT, DESCENT, Boxes, arrow_box, text_height, text_width, upright
 from develop.pattern.pattern import Division, Label, Outline, RollLine, WitnessMark
-from develop.pattern.strokes import ring, roll_strokes, witness_lengths, witness_strokes
+from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, left_of, rows_of
 
 __all__ = ["lay_out"]
 
-_SMALLEST = 2.0  # [mm] text that is to be read on the bench
-_AIR = 0.3  # [heights of capitals] kept free round a word
 _FLOW = "FLOW"
 _LINE = 1.75  # from baseline to baseline over the height of capitals
 _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0.82, 0.12, 0.88])
@@ -59,27 +49,18 @@ def lay_out(
     their ticks are kept clear; full lines are interrupted by whoever draws them. divisions:
     numbered at the edges where that stays clear. avoid: further curves to be kept clear.
 
-    What cannot be placed at 2 mm or more is left out, but for the facts, which shrink on.
+    What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
     height = text_height(net)
-    words = max(_SMALLEST, 0.8 * height)
-    sheet = _Sheet(net, marks, lines, avoid, full_lines)
+    words = max(SMALLEST, 0.8 * height)
+    sheet = Sheet(net, marks, lines, avoid, full_lines)
     sheet.write([*_witness_words(marks, sheet.lengths, height, words), *_end_words(net, height)])
     strip = _Strip.of(net, np.asarray(mid_line, dtype=float), divisions)
     block = _facts(sheet, strip, tuple(facts), height)
     arrows = _flow(sheet, strip, block, flow, height)
     sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
-    _numbers(sheet, divisions, height, max(_SMALLEST, 0.5 * height))
+    _numbers(sheet, divisions, height, max(SMALLEST, 0.5 * height))
     return tuple(sheet.labels), arrows
-
-
-@dataclass(frozen=True)
-class _Word:
-    """A word to be placed; places(size) gives middles (n, 2) of its box and angles (n,), best first."""
-
-    text: str
-    height: float
-    places: Callable[[float], tuple[Array, Array]]
 
 
 @dataclass(frozen=True)
@@ -93,7 +74,9 @@ class _Strip:
     def of(cls, net: Outline, mid_line: Array, divisions: Sequence[Division]) -> _Strip:
         """From the divisions where there are enough, else from equal shares of both edges."""
         if len(divisions) > 4:
-            ends = np.array([(row.a, row.b) for row in divisions[1:-1]])
+            ends = np.array([(row.a, row.b) for row in divisions])
+            # Between the lines, where full roll lines leave the most room.
+            ends = (ends[1:] + ends[:-1]) / 2.0
             far = np.hypot(*(ends.mean(axis=1) - mid_line.mean(axis=0)).T)
             ends = ends[np.argsort(far, kind="stable")[: len(_SHARES)]]
             return cls(np.vstack([mid_line[:1], ends[:, 0]]), np.vstack([mid_line[1:], ends[:, 1]]))
@@ -116,158 +99,6 @@ class _Strip:
         return self.a + share * (self.b - self.a)
 
 
-class _Sheet:
-    """What is on the sheet so far, and whether a box is free."""
-
-    def __init__(
-        self,
-        net: Outline,
-        marks: Sequence[WitnessMark],
-        lines: Sequence[RollLine],
-        avoid: Sequence[Curve],
-        full_lines: bool,
-    ) -> None:
-        tolerance = 0.05 * text_height(net)
-        self.outline = ring(net, tolerance)
-        self.lengths = witness_lengths(net, marks, self.outline)
-        strokes = [
-            np.stack([self.outline, np.roll(self.outline, -1, axis=0)], axis=1),
-            witness_strokes(marks, self.lengths),
-        ]
-        if not full_lines:
-            strokes.append(roll_strokes(net, lines, marks, self.lengths, full=False))
-        for curve in avoid:
-            points = curve.polyline(tolerance)
-            strokes.append(np.stack([points[:-1], points[1:]], axis=1))
-        segments = np.vstack(strokes)
-        self.middle = segments.mean(axis=1)
-        self.reach = (segments[:, 1] - segments[:, 0]) / 2.0
-        self.taken = Boxes(np.empty((0, 2)), np.empty((0, 2)), np.empty((0, 2)))
-        self.both_ends = net.curve("b") is not None
-        self.labels: list[Label] = []
-
-    def clear(self, boxes: Boxes, air: Array | float) -> Array:
-        """Which boxes, with `air` [mm] round them, lie in the outline and off all strokes, (n,) bool."""
-        half = boxes.half + np.reshape(air, (-1, 1))
-        good = ~_crossed(boxes._replace(half=half), self.middle, self.reach)
-        some = np.flatnonzero(good)
-        good[some] = _inside(boxes.centre[some], self.outline)
-        return good
-
-    def free(self, boxes: Boxes, air: float) -> Array:
-        """Which boxes are clear and also touch no box that is taken, (n,) bool."""
-        good = self.clear(boxes, air)
-        some = np.flatnonzero(good)
-        good[some] = ~_overlaps(_rows(boxes, some, air), self.taken)
-        return good
-
-    def take(self, boxes: Boxes) -> None:
-        """Occupy the boxes."""
-        self.taken = Boxes(*(np.vstack(pair) for pair in zip(self.taken, boxes, strict=True)))
-
-    def write(self, words: Sequence[_Word]) -> None:
-        """Set each word at the first free one of its places, at its height or down to the smallest."""
-        if not words:
-            return
-        # The first tries of all words against the outline in one go: the costly part of the work.
-        tries = [self._tries(word, word.height) for word in words]
-        every = Boxes(*(np.vstack(part) for part in zip(*tries, strict=True)))
-        counts = [len(boxes.centre) for boxes in tries]
-        air = np.repeat([_AIR * word.height for word in words], counts)
-        clear = np.split(self.clear(every, air), np.cumsum(counts)[:-1])
-        for word, boxes, good in zip(words, tries, clear, strict=True):
-            size = word.height
-            while not self._set(word.text, boxes, good, size) and size > _SMALLEST + 1e-9:
-                size = max(_SMALLEST, 0.75 * size)
-                boxes = self._tries(word, size)
-                good = self.clear(boxes, _AIR * size)
-
-    def _tries(self, word: _Word, size: float) -> Boxes:
-        centres, angles = word.places(size)
-        return _boxes(centres, angles, text_width(word.text, size), size * (ASCENT + DESCENT))
-
-    def _set(self, text: str, boxes: Boxes, good: Array, size: float) -> bool:
-        some = np.flatnonzero(good)
-        some = some[~_overlaps(_rows(boxes, some, _AIR * size), self.taken)]
-        if not len(some):
-            return False
-        self.take(_rows(boxes, some[:1]))
-        cos, sin = boxes.along[some[0]]
-        self.labels.append(_label(text, boxes.centre[some[0]], math.atan2(sin, cos), size))
-        return True
-
-
-def _rows(boxes: Boxes, rows: Array, air: float = 0.0) -> Boxes:
-    return Boxes(boxes.centre[rows], boxes.along[rows], boxes.half[rows] + air)
-
-
-def _boxes(centres: Array, angles: Array, width: float, height: float) -> Boxes:
-    along = np.stack([np.cos(angles), np.sin(angles)], axis=1)
-    return Boxes(centres, along, np.broadcast_to(np.array([width, height]) / 2.0, centres.shape))
-
-
-def _label(text: str, centre: Array, angle: float, height: float) -> Label:
-    """A line of text whose box, with room for descenders, has this centre."""
-    up = np.array([-math.sin(angle), math.cos(angle)])
-    return Label(text, centre - up * (height * (ASCENT - DESCENT) / 2.0), angle, height)
-
-
-def _crossed(boxes: Boxes, middle: Array, reach: Array) -> Array:
-    """Which boxes a segment (middle ± reach, (m, 2)) comes into, by separating axes, (n,) bool."""
-    # Most pairs are far apart; only the others need the full test.
-    round_box = np.hypot(boxes.half[:, 0], boxes.half[:, 1])[:, None]
-    near = np.abs(middle[:, 0] - boxes.centre[:, :1]) < round_box + np.abs(reach[:, 0])
-    near &= np.abs(middle[:, 1] - boxes.centre[:, 1:]) < round_box + np.abs(reach[:, 1])
-    box, segment = np.nonzero(near)
-    gap, half = middle[segment] - boxes.centre[box], reach[segment]
-    (cos, sin), (wide, high) = boxes.along[box].T, boxes.half[box].T
-    x, y = gap[:, 0] * cos + gap[:, 1] * sin, gap[:, 1] * cos - gap[:, 0] * sin
-    dx, dy = half[:, 0] * cos + half[:, 1] * sin, half[:, 1] * cos - half[:, 0] * sin
-    apart = np.abs(x * dy - y * dx)
-    dx, dy = np.abs(dx), np.abs(dy)
-    hit = (np.abs(x) < wide + dx) & (np.abs(y) < high + dy) & (apart < wide * dy + high * dx)
-    crossed = np.zeros(len(boxes.centre), dtype=bool)
-    crossed[box[hit]] = True
-    return crossed
-
-
-def _inside(points: Array, outline: Array) -> Array:
-    """Which points (n, 2) lie inside the closed polyline, by counting crossings, (n,) bool."""
-    start, end = outline, np.roll(outline, -1, axis=0)
-    x, y = points[:, :1], points[:, 1:]
-    with np.errstate(divide="ignore", invalid="ignore"):
-        cross = start[:, 0] + (y - start[:, 1]) * (end - start)[:, 0] / (end - start)[:, 1]
-    hits = ((start[:, 1] > y) != (end[:, 1] > y)) & (x < cross)
-    return np.asarray(hits.sum(axis=1) % 2 == 1)
-
-
-def _overlaps(boxes: Boxes, others: Boxes) -> Array:
-    """Which boxes overlap any of the others, by separating axes, (n,) bool."""
-    if not len(others.centre):
-        return np.zeros(len(boxes.centre), dtype=bool)
-    gap = others.centre - boxes.centre[:, None]
-    round_mine, round_theirs = np.hypot(*boxes.half.T)[:, None], np.hypot(*others.half.T)
-    if (np.hypot(gap[..., 0], gap[..., 1]) >= round_mine + round_theirs).all():
-        return np.zeros(len(boxes.centre), dtype=bool)
-    cos = np.abs(boxes.along @ others.along.T)
-    sin = np.abs(boxes.along[:, :1] * others.along[:, 1] - boxes.along[:, 1:] * others.along[:, 0])
-    wide, high = boxes.half[:, :1], boxes.half[:, 1:]
-    near = np.ones(cos.shape, dtype=bool)
-    for axis, mine, theirs in (
-        (boxes.along[:, None], wide, others.half[:, 0] * cos + others.half[:, 1] * sin),
-        (_turned(boxes.along)[:, None], high, others.half[:, 0] * sin + others.half[:, 1] * cos),
-        (others.along, wide * cos + high * sin, others.half[:, 0]),
-        (_turned(others.along), wide * sin + high * cos, others.half[:, 1]),
-    ):
-        near &= np.abs((gap * axis).sum(axis=-1)) < mine + theirs
-    return near.any(axis=1)
-
-
-def _turned(vectors: Array) -> Array:
-    """Vectors (n, 2) a quarter turn to the left."""
-    return np.stack([-vectors[:, 1], vectors[:, 0]], axis=1)
-
-
 def _along(curve: Curve, shares: Array) -> tuple[Array, Array]:
     """Points and unit tangents at shares of a curve's length, (n, 2) each."""
     points = curve.polyline(max(1e-9, curve.length * 1e-4))
@@ -282,10 +113,10 @@ def _along(curve: Curve, shares: Array) -> tuple[Array, Array]:
 
 def _witness_words(
     marks: Sequence[WitnessMark], lengths: Array, height: float, size: float
-) -> list[_Word]:
+) -> list[Word]:
     """The word of each witness mark: beyond its inner end, or beside it."""
 
-    def word(mark: WitnessMark, length: float) -> _Word:
+    def word(mark: WitnessMark, length: float) -> Word:
         aside = np.array([mark.inward[1], -mark.inward[0]])
         angle = upright(math.atan2(aside[1], aside[0]))
 
@@ -297,17 +128,17 @@ def _witness_words(
             on = np.array([(x, y) for y in (beyond, deeper) for x in (0.0, beside, -beside)])
             return mark.at + on[:, :1] * aside + on[:, 1:] * mark.inward, np.full(len(on), angle)
 
-        return _Word(mark.text, size, places)
+        return Word(mark.text, size, places)
 
     return [word(mark, float(length)) for mark, length in zip(marks, lengths, strict=True)]
 
 
-def _end_words(net: Outline, height: float) -> list[_Word]:
+def _end_words(net: Outline, height: float) -> list[Word]:
     """END A and END B, along their edges."""
 
-    def word(text: str, curve: Curve, shares: Array) -> _Word:
+    def word(text: str, curve: Curve, shares: Array) -> Word:
         points, tangent = _along(curve, shares)
-        inward = _turned(tangent)  # the outline runs anticlockwise
+        inward = left_of(tangent)  # the outline runs anticlockwise
         angle = np.array([upright(math.atan2(y, x)) for x, y in tangent])
 
         def places(size: float) -> tuple[Array, Array]:
@@ -315,14 +146,14 @@ def _end_words(net: Outline, height: float) -> list[_Word]:
             depths = (height + 1.2 * size + tall, 0.5 * size + tall, 2.6 * height + size + tall)
             return np.vstack([points + inward * depth for depth in depths]), np.tile(angle, len(depths))
 
-        return _Word(text, height, places)
+        return Word(text, height, places)
 
     # Edge b runs from right to left; so both words come to stand on the same side of the middle.
     ends = (("END A", net.curve("a"), _SHARES), ("END B", net.curve("b"), 1.0 - _SHARES))
     return [word(text, curve, shares) for text, curve, shares in ends if curve is not None]
 
 
-def _facts(sheet: _Sheet, strip: _Strip, facts: tuple[str, ...], height: float) -> Boxes | None:
+def _facts(sheet: Sheet, strip: _Strip, facts: tuple[str, ...], height: float) -> Boxes | None:
     """The block of facts; returns its box."""
     if not facts:
         return None
@@ -339,16 +170,16 @@ def _facts(sheet: _Sheet, strip: _Strip, facts: tuple[str, ...], height: float) 
         for lines in _wrapped(facts, narrow=share > 0.6):
             wide, tall = _block_size(lines, size)
             angles = np.tile((square, lengthwise)[way], 3)
-            boxes = _boxes(centres, angles, wide, tall)
+            boxes = boxes_at(centres, angles, wide, tall)
             good = np.flatnonzero(sheet.free(boxes, 0.4 * size))
             if len(good):
-                best = _rows(boxes, good[:1])
+                best = rows_of(boxes, good[:1])
                 sheet.take(best)
                 centre, angle = best.centre[0], float(angles[good[0]])
                 up = np.array([-math.sin(angle), math.cos(angle)])
                 top = tall / 2.0 - size * (ASCENT + DESCENT) / 2.0
                 for n, line in enumerate(lines):
-                    sheet.labels.append(_label(line, centre + up * (top - n * _LINE * size), angle, size))
+                    sheet.labels.append(label_at(line, centre + up * (top - n * _LINE * size), angle, size))
                 return best
     return None
 
@@ -369,7 +200,7 @@ def _wrapped(facts: tuple[str, ...], *, narrow: bool) -> list[tuple[str, ...]]:
 
 
 def _flow(
-    sheet: _Sheet, strip: _Strip, block: Boxes | None, flow: str, height: float
+    sheet: Sheet, strip: _Strip, block: Boxes | None, flow: str, height: float
 ) -> tuple[tuple[Array, str], ...]:
     """The arrow of the flow: beside the block of facts, else where there is room."""
     if not flow:
@@ -387,7 +218,7 @@ def _flow(
         ahead = np.vstack([ahead[[near, near]], ahead])
     for share in (1.0, 0.7, 0.5, 0.35):
         size = 5.0 * height * share
-        if size < 2.5 * _SMALLEST:
+        if size < 2.5 * SMALLEST:
             break
         tips = np.stack([centre - ahead * 0.33 * size, centre + ahead * 0.67 * size], axis=1)
         if flow == "b to a":
@@ -396,16 +227,16 @@ def _flow(
         boxes = Boxes(*(np.vstack(part) for part in zip(*each, strict=True)))
         good = np.flatnonzero(sheet.free(boxes, 0.08 * size))
         if len(good):
-            sheet.take(_rows(boxes, good[:1]))
+            sheet.take(rows_of(boxes, good[:1]))
             return ((tips[good[0]], _FLOW),)
     return ()
 
 
-def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: float) -> list[_Word]:
+def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: float) -> list[Word]:
     """The words along both seams, just inside."""
     shares = np.array([0.5, 0.4, 0.6, 0.3, 0.7, 0.2, 0.8])[:, None]
 
-    def word(text: str, start: Array, end: Array) -> _Word:
+    def word(text: str, start: Array, end: Array) -> Word:
         ahead = (end - start) / np.hypot(*(end - start))
         aside, angle = np.array([-ahead[1], ahead[0]]), upright(math.atan2(ahead[1], ahead[0]))
         on = start + shares * (end - start)
@@ -414,7 +245,7 @@ def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: floa
             off = aside * size * (0.6 + (ASCENT + DESCENT) / 2.0)
             return np.vstack([on - off, on + off]), np.full(2 * len(on), angle)  # one side is outside
 
-        return _Word(text, height, places)
+        return Word(text, height, places)
 
     lines = [np.asarray(seam, dtype=float) for seam in seams]
     return [
@@ -424,7 +255,7 @@ def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: floa
     ]
 
 
-def _numbers(sheet: _Sheet, divisions: Sequence[Division], tick: float, height: float) -> None:
+def _numbers(sheet: Sheet, divisions: Sequence[Division], tick: float, height: float) -> None:
     """The numbers of the divisions at both edges; every second, third, ... where they are close."""
     rows = [row for row in divisions if np.hypot(*(row.b - row.a)) > 0.0]
     edges = (0, 1) if sheet.both_ends else (0,)  # at a point there is no room for numbers
@@ -458,4 +289,4 @@ def _numbers(sheet: _Sheet, divisions: Sequence[Division], tick: float, height: 
         # A few numbers here and there would puzzle more than they help.
         if 2 * len(kept) > len(chosen):
             sheet.take(Boxes(np.array([found[n] for n in kept]), along[kept], half[kept]))
-            sheet.labels += [_label(str(rows[n].number), found[n], float(angles[n]), height) for n in kept]
+            sheet.labels += [label_at(str(rows[n].number), found[n], float(angles[n]), height) for n in kept]

@@ -26,11 +26,11 @@ ASCENT = 1.06
 
 _WIDE = 1.38
 _CLASSES = (
-    (" ilj.,:;'|!IJ·", 0.45),
-    ("0123456789", 0.875),
-    ("()[]-/ft\"r°", 0.69),
-    ("abcdeghknopqsuvxyzFLTEPYZSVXAKBRC", 0.965),
-    ("DGHNOQUw=+<>×±", 1.16),
+    (" ilj.,'IJ·", 0.45),
+    (":;|!()[]-/\\ft", 0.56),
+    ("rcsz*?_`–\"°L", 0.77),
+    ("0123456789abdeghknopquvxyFETPYZSVXKAB$äöüß", 0.965),
+    ("CDGHNOQRUw=+<>×±&ÄÖÜ", 1.16),
 )
 _WIDTHS = {letter: width for letters, width in _CLASSES for letter in letters}
 

@@ -51,7 +51,7 @@ def witness_lengths(net: Outline, marks: Sequence[WitnessMark], outline: Array |
 
 
 def witness_strokes(marks: Sequence[WitnessMark], length: Array) -> Array:
-    """The witness marks with their lengths (n,), each from the edge into the sheet; those at corners have none."""
+    """The witness marks of these lengths (n,), from the edge into the sheet; those at corners have none."""
     if not marks:
         return _NONE
     at = np.array([mark.at for mark in marks])
@@ -60,9 +60,14 @@ def witness_strokes(marks: Sequence[WitnessMark], length: Array) -> Array:
 
 
 def roll_strokes(
-    net: Outline, lines: Sequence[RollLine], marks: Sequence[WitnessMark], length_of_marks: Array, *, full: bool
+    net: Outline,
+    lines: Sequence[RollLine],
+    marks: Sequence[WitnessMark],
+    length_of_marks: Array,
+    *,
+    full: bool,
 ) -> Array:
-    """Full roll lines, or ticks at both of their ends.
+    """Full roll lines, or ticks at both of their ends; length_of_marks as `witness_lengths` gives it.
 
     A line on a seam is left out, since the cut is there already; and where a witness mark
     lies along a roll line, the line starts where the mark ends: nothing is drawn twice.
@@ -91,7 +96,7 @@ def roll_strokes(
 
 
 def _marked(points: Array, along: Array, marks: Sequence[WitnessMark], length: Array) -> Array:
-    """How far from each point (n, 2) a witness mark covers the line that leaves it along `along`, (n,) [mm]."""
+    """How far from each point (n, 2) a witness mark covers the line that leaves it `along`, (n,) [mm]."""
     if not marks:
         return np.zeros(len(points))
     at = np.array([mark.at for mark in marks])
@@ -99,7 +104,7 @@ def _marked(points: Array, along: Array, marks: Sequence[WitnessMark], length: A
     same = np.abs(points[:, None] - at).max(axis=-1) < _SAME
     # Within a degree of each other the two strokes would be one thick one.
     same &= along @ inward.T > 0.9998
-    return np.where(same, length, 0.0).max(axis=1)
+    return np.asarray(np.where(same, length, 0.0).max(axis=1))
 
 
 def arrow_strokes(arrow: Array) -> Array:

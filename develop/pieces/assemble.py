@@ -20,7 +20,7 @@ __all__ = ["Wording", "pattern_of", "seam_parameter"]
 _FOLD_MISS = 2e-3
 _MOST_CHANGE = 6.0
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
-_DIRECTIONS = 0.5 * pi * np.arange(4)
+_DIRECTIONS: Array = 0.5 * pi * np.arange(4.0)
 _ORDER = ("a", "seam_right", "b", "seam_left")
 _FLIP = np.array([-1.0, 1.0])
 # A mark nearer to the seam than this, in parts of the girth, lies on it and is made on both sides.
@@ -45,8 +45,8 @@ class Wording:
 def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
     """Parameter of end A's section at which the seam runs.
 
-    wanted: a direction [rad] or `shortest`, which is the whole degree at which the side is shortest; of equal ones the nearest to
-    the bottom, then the one more to the right.
+    wanted: a direction [rad] or `shortest`, the whole degree at which the side is shortest; of
+        equal ones the nearest to the bottom, then the one more to the right.
     length_at: length of the ruling at the section's parameters (n,).
     """
     if not isinstance(wanted, str):
@@ -194,7 +194,8 @@ def _witness(
     which: the rulings of the four marks among those found; seams: those of the left and right seam.
     """
     arcs = getattr(found, f"arc_{edge}")
-    rows, texts = [], []
+    rows: list[int] = []
+    texts: list[str] = []
     for i, text in zip(which, _WORDS, strict=True):
         places = seams if min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole else (i,)
         rows += places

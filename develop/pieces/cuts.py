@@ -21,9 +21,7 @@ __all__ = ["cylinder_between", "cylinder_solid", "trim"]
 
 def trim(cut: Cut | None, *, height: float, end_b: bool) -> Trim:
     """The trim of an end whose cut meets the axis at a height [mm]."""
-    rise: Array = (
-        np.zeros(2) if cut is None else cut_slopes(slope=cut.slope, long=cut.long, end_b=end_b)
-    )
+    rise: Array = np.zeros(2) if cut is None else cut_slopes(slope=cut.slope, long=cut.long, end_b=end_b)
     return Trim(height, rise)
 
 
@@ -66,8 +64,8 @@ def _slope(cut: Cut | None) -> float:
 
 def cylinder_solid(surface: Cylinder, seam: float) -> Solid:
     """The finished piece of a cylinder; seam is a parameter of its section."""
-    ends = (
+    a, b = (
         End.cut(surface.section, height=each.height, rise=each.rise)
         for each in (surface.trim_a, surface.trim_b)
     )
-    return Solid(*ends, side="parallel", seam=seam, distance=surface.distance)
+    return Solid(a, b, side="parallel", seam=seam, distance=surface.distance)

@@ -14,8 +14,8 @@ from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 if TYPE_CHECKING:
-    from develop.surfaces.cylinder import Cylinder
     from develop.pieces.built import Built
+    from develop.surfaces.cylinder import Cylinder
 
 __all__ = ["MarkingBand"]
 

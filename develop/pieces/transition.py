@@ -91,7 +91,8 @@ class Transition(Plate):
         surface = self.surface()
         a, b = surface.rim_a, surface.rim_b
         seam = seam_parameter(a.section, surface.lengths, self.seam_at)
-        right, up, _ = b.frame.origin
+        right, up, _ = (float(each) for each in b.frame.origin)
+        shift = f"END B {number_text(round(right, 3))} right and {number_text(round(up, 3))} up"
         place = f"flush at the {self.flush}, " if self.flush else ""
         turned = f", rotated {number_text(round(degrees(self.rotate), 6))}°" if self.rotate else ""
         pattern = pattern_of(
@@ -100,10 +101,7 @@ class Transition(Plate):
             b.section,
             wording=self.wording(
                 sizes=f"END A {self.end_a.text} to END B {self.end_b.text}",
-                more=(
-                    f"length {number_text(self.length)}, {place}"
-                    f"END B {number_text(round(float(right), 3))} right and {number_text(round(float(up), 3))} up{turned}",
-                ),
+                more=(f"length {number_text(self.length)}, {place}{shift}{turned}",),
             ),
             divisions=self.divisions,
             distance=surface.distance,

@@ -84,9 +84,7 @@ class Ellipse(Section):
         return np.asarray(np.arctan2(self.b * ny, self.a * nx) % (2.0 * pi))
 
     def at_direction(self, direction: Array) -> Array:
-        return np.asarray(
-            np.arctan2(self.a * np.sin(direction), self.b * np.cos(direction)) % (2.0 * pi)
-        )
+        return np.asarray(np.arctan2(self.a * np.sin(direction), self.b * np.cos(direction)) % (2.0 * pi))
 
     def radius(self, nx: Array, ny: Array) -> Array:
         size = np.hypot(nx, ny)

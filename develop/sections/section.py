@@ -141,15 +141,19 @@ class Section(ABC):
         return running(np.stack([at.ds, at.dphi], axis=-1), self._half)
 
     @cached_property
-    def _known(self) -> tuple[Array, Array, Array]:
-        """u, arc and direction at each panel's start and nodes, for first guesses."""
+    def _known(self) -> tuple[Array, Array]:
+        """u and arc at each panel's start and nodes and at the last end, for first guesses."""
         u = np.concatenate(
             [self.breaks[:-1, None], nodes_of(self.breaks[:-1], self.breaks[1:])], axis=1
         ).ravel()
         u = np.append(u, self.breaks[-1])
-        arc = np.append(self._table[0][..., 0].ravel(), self._table[1][-1, 0])
-        at = self.walk(u)
-        return u, arc, np.unwrap(np.arctan2(at.y, at.x))
+        return u, np.append(self._table[0][..., 0].ravel(), self._table[1][-1, 0])
+
+    @cached_property
+    def _seen(self) -> Array:
+        """Directions of the same points from the centre, growing."""
+        at = self.walk(self._known[0])
+        return np.unwrap(np.arctan2(at.y, at.x))
 
     def _run(self, u: Array, column: int) -> Array:
         turns = np.floor((u - self.breaks[0]) / self.period)
@@ -171,7 +175,7 @@ class Section(ABC):
     def at_arc(self, arc: Array) -> Array:
         """The u (n,) at arc lengths (n,) [mm] from direction 0, beyond one turn too: `arc` inverted."""
         arc = np.asarray(arc, dtype=float)
-        u_known, arc_known, _ = self._known
+        u_known, arc_known = self._known
         whole = arc_known[-1]
         turns = np.floor(arc / whole)
         local = arc - turns * whole
@@ -185,7 +189,7 @@ class Section(ABC):
 
     def at_direction(self, direction: Array) -> Array:
         """The u (n,) whose point lies in the directions (n,) [rad], seen from the centre."""
-        u_known, _, seen = self._known
+        u_known, seen = self._known[0], self._seen
         wanted = seen[0] + (np.asarray(direction, dtype=float) - seen[0]) % (2.0 * np.pi)
         u = np.interp(wanted, seen, u_known)
         for _ in range(_STEPS):

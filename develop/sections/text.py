@@ -21,6 +21,7 @@ _FORMS = {
     "pipe": "pipe DN 150 or pipe NPS 6",
 }
 _ALLOWED = f"{listed(_FORMS.values())}; sizes from 0.1 mm to 100 m"
+_LONGEST_SIZE = 12
 _BETWEEN = re.compile(r"[xX×]")
 _PIPE = re.compile(r"(DN|NPS)\s*([^a-z]*?)(?:\s+([a-z0-9.]+(?:\s.*)?))?", re.IGNORECASE)
 
@@ -100,7 +101,7 @@ def _pipe(text: str, rest: str, unit: str) -> SectionSpec:
     from develop.tables.pipes import SERIES
 
     found = _PIPE.fullmatch(rest)
-    if found is None or not found[2].strip():
+    if found is None or not 0 < len(found[2].strip()) <= _LONGEST_SIZE:
         raise _refused(f"{shown(text)} is not a pipe", "pipe DN 150 or pipe NPS 6, perhaps with asme or en")
     system, size = found[1].upper(), "-".join(found[2].replace("-", " ").split())
     series = (found[3] or "").lower()

@@ -37,7 +37,7 @@ class Frame:
     @property
     def normal(self) -> Array:
         """Unit normal (3,), on towards end B."""
-        return self.axes[2]
+        return np.asarray(self.axes[2])
 
 
 @dataclass(frozen=True)

@@ -11,7 +11,7 @@ from typing import Literal
 
 import numpy as np
 
-from develop.quadrature import DERIVATIVE, WEIGHTS, Array, halves, nodes_of
+from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, halves, nodes_of
 from develop.solid.end import End
 
 __all__ = ["Measures", "Solid", "Strip"]
@@ -136,9 +136,9 @@ class Solid:
         girth = max(section.girth, 1e-300)
         growth = np.hypot(at.ds / girth, at.dphi / (2.0 * np.pi))
         total = np.concatenate([[0.0], np.cumsum(0.5 * (growth[1:] + growth[:-1]))])
-        return np.interp(np.arange(count) / count * total[-1], total, fine)
+        return np.asarray(np.interp(np.arange(count) / count * total[-1], total, fine))
 
-    def faces(self, count: int = 240) -> tuple[Array, np.ndarray[tuple[int, ...], np.dtype[np.intp]]]:
+    def faces(self, count: int = 240) -> tuple[Array, Indices]:
         """The side as a mesh: vertices (2 count, 3) [mm] and quads (count, 4), outward."""
         strip = self.strip(self.around(count))
         i = np.arange(count)

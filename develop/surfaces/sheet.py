@@ -8,7 +8,7 @@ from typing import Protocol
 
 import numpy as np
 
-from develop.quadrature import Array
+from develop.quadrature import Array, Indices
 
 __all__ = ["Lines", "Place", "Sheet"]
 
@@ -17,11 +17,11 @@ __all__ = ["Lines", "Place", "Sheet"]
 class Place:
     """Rulings of a sheet by panel (n,) and position (n,) in [-1, 1] inside it."""
 
-    panel: np.ndarray[tuple[int, ...], np.dtype[np.intp]]
+    panel: Indices
     x: Array
 
-    def __getitem__(self, which: object) -> Place:
-        return Place(self.panel[which], self.x[which])  # type: ignore[index]
+    def __getitem__(self, which: Indices) -> Place:
+        return Place(self.panel[which], self.x[which])
 
 
 @dataclass(frozen=True)

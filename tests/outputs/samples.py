@@ -30,14 +30,14 @@ def arc(centre, radius: float, start: float, end: float, pieces: int = 32) -> Cu
     return curve_through(points, tangents, radius * abs(end - start))
 
 
-def _pattern(mark, kind, net, ends_a, ends_b, directions, arcs, marks, facts, *, full, flow="a to b", **more):
+def _pattern(
+    mark, kind, net, ends_a, ends_b, directions, arcs, marks, facts, *, full, flow="a to b", openings=()
+):
     divisions = tuple(
         Division(n, float(d), float(s), float(t), p, q, float(np.hypot(*(q - p))))
         for n, (p, q, d, (s, t)) in enumerate(zip(ends_a, ends_b, directions, arcs, strict=True))
     )
-    lines = tuple(
-        RollLine(p, q, 0.1, (200.0, math.inf)) for p, q in zip(ends_a, ends_b, strict=True)
-    )
+    lines = tuple(RollLine(p, q, 0.1, (200.0, math.inf)) for p, q in zip(ends_a, ends_b, strict=True))
     labels, arrows = lay_out(
         net,
         facts,
@@ -51,10 +51,10 @@ def _pattern(mark, kind, net, ends_a, ends_b, directions, arcs, marks, facts, *,
         full_lines=full,
     )
     return Pattern(
-        mark=mark, kind=kind, quantity=2, face="outside", net=net, cut=net, openings=(), lines=lines,
+        mark=mark, kind=kind, quantity=2, face="outside", net=net, cut=net, openings=openings, lines=lines,
         divisions=divisions, marks=marks, labels=labels, facts=facts, datum="END A, the line y = 0",
         full_lines=full, rulings=Rulings(np.array(ends_a), np.array(ends_b), np.zeros(len(ends_a))),
-        arrows=arrows, **more,
+        arrows=arrows,
     )  # fmt: skip
 
 
@@ -66,7 +66,14 @@ def _facts(mark: str, name: str, sizes: str) -> tuple[str, ...]:
 _WORDS = {0: "BOTTOM", 1: "RIGHT", 2: "TOP", 3: "LEFT", 4: "BOTTOM"}
 
 
-def rectangle(width: float = 1256.6, height: float = 450.0, *, full: bool = False, divisions: int = 24) -> Pattern:
+def rectangle(
+    width: float = 1256.6,
+    height: float = 450.0,
+    *,
+    full: bool = False,
+    divisions: int = 24,
+    flow: str = "a to b",
+) -> Pattern:
     """A square-cut cylinder, unrolled."""
     corner = np.array([[0.0, 0.0], [width, 0.0], [width, height], [0.0, height]])
     names = ("a", "seam_right", "b", "seam_left")
@@ -83,11 +90,16 @@ def rectangle(width: float = 1256.6, height: float = 450.0, *, full: bool = Fals
     facts = _facts("S1", "straight", f"round {width / math.pi:.0f}, length {height:.0f}")
     directions = np.linspace(-math.pi / 2, 1.5 * math.pi, divisions + 1)
     return _pattern("S1", "straight", net, list(a), list(b), directions, np.stack([x, x], axis=1), marks, facts,
-                    full=full)  # fmt: skip
+                    full=full, flow=flow)  # fmt: skip
 
 
-def slanting(radius: float = 150.0, short: float = 60.0, slope: float = 45.0, *, full: bool = False) -> Pattern:
-    """A cylinder cut by a plane, unrolled: its edge is y = short + r tan(slope) (1 - cos(x / r)), shortest at the seam."""
+def slanting(
+    radius: float = 150.0, short: float = 60.0, slope: float = 45.0, *, full: bool = False
+) -> Pattern:
+    """A cylinder cut by a plane, unrolled, shortest at the seam.
+
+    Its edge is y = short + r tan(slope) (1 - cos(x / r)), the curve of an oblique cut (common practice).
+    """
     rise = radius * math.tan(math.radians(slope))
     girth = 2.0 * math.pi * radius
     u = np.linspace(0.0, 2.0 * math.pi, 65)
@@ -96,7 +108,7 @@ def slanting(radius: float = 150.0, short: float = 60.0, slope: float = 45.0, *,
     tangent = np.stack([0 * u + radius, rise * np.sin(u)], axis=1) * step
     # The length of the edge is that of the ellipse which the plane cuts (half axes r, r / cos slope).
     dense = np.linspace(0.0, 2.0 * math.pi, 20001)
-    length = float(np.trapezoid(np.hypot(radius, rise * np.sin(dense)), dense))
+    length = float(_running(radius, rise, dense)[-1])
     edge = curve_through(top, tangent, length).reversed()
     net = Outline(
         (
@@ -119,7 +131,9 @@ def slanting(radius: float = 150.0, short: float = 60.0, slope: float = 45.0, *,
         marks.append(WitnessMark(at, normal, word, "b"))
     arcs = np.stack([radius * v, np.interp(v, dense, _running(radius, rise, dense))], axis=1)
     facts = _facts("P7", "straight", f"round {2 * radius:.0f}, cut {slope:.0f} degrees")
-    return _pattern("P7", "straight", net, list(a), list(b), v - math.pi / 2, arcs, tuple(marks), facts, full=full)
+    return _pattern(
+        "P7", "straight", net, list(a), list(b), v - math.pi / 2, arcs, tuple(marks), facts, full=full
+    )
 
 
 def _running(radius: float, rise: float, dense: Array) -> Array:
@@ -138,7 +152,9 @@ def fan(large: float = 300.0, small: float = 200.0, height: float = 250.0, *, fu
     # END A is the larger end, at the bottom; the apex lies above, and angles are laid off from straight down.
     first, last = -math.pi / 2 - turn / 2, -math.pi / 2 + turn / 2
     extreme = arc(np.zeros(2), outer, first, last).polyline(0.001)
-    centre = -np.vstack([extreme, arc(np.zeros(2), max(inner, 1e-9), first, last).polyline(0.001)]).min(axis=0)
+    centre = -np.vstack([extreme, arc(np.zeros(2), max(inner, 1e-9), first, last).polyline(0.001)]).min(
+        axis=0
+    )
     pieces = max(8, math.ceil(turn / math.radians(12)))
     edge_a = arc(centre, outer, first, last, pieces)
 
@@ -212,11 +228,11 @@ class Frustum:
         return self._at(np.linspace(0.0, 2.0 * math.pi, n, endpoint=False), 1.0)
 
     @property
-    def seam(self) -> Array:
+    def seam_line(self) -> Array:
         angle = np.array(self.seam_at)
         return np.stack([self._at(angle, 0.0), self._at(angle, 1.0)])
 
     @property
-    def top(self) -> Array:
+    def top_line(self) -> Array:
         angle = np.array(math.pi / 2)
         return np.stack([self._at(angle, 0.0), self._at(angle, 1.0)])

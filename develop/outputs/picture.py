@@ -1,0 +1,233 @@
+"""Picture of the finished piece: shaded, in perspective, both ends and the seam shown, as PNG.
+
+The scene is projected and put in order here; matplotlib only fills the polygons. The wall of
+a piece is the side of a convex body: what is seen of its inside lies behind whatever is seen
+of its outside, and lines on the wall turned away from the eye lie between the two. So lines
+are hidden exactly where the piece hides them.
+"""
+
+from __future__ import annotations
+
+import io
+import math
+from typing import Protocol
+
+import numpy as np
+from numpy.typing import NDArray
+
+from develop.pattern.curve import Array
+
+__all__ = ["Piece", "picture"]
+
+_SIZE = (8.0, 6.0)  # [in]
+_DOTS = 150  # [1/in]
+_OUTSIDE, _INSIDE = np.array([0.56, 0.64, 0.72]), np.array([0.47, 0.45, 0.43])
+_EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
+_RIM = 240
+_FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
+
+
+class Piece(Protocol):
+    """What a finished piece must tell to be drawn."""
+
+    def faces(self) -> tuple[Array, NDArray[np.int64]]:
+        """Vertices (n, 3) [mm] and faces (m, 4), indices into them, all the same way round.
+
+        The first two corners of a face lie towards end A, the others towards end B.
+        """
+
+    def rim_a(self, n: int) -> Array:
+        """n points round end A, (n, 3) [mm]."""
+
+    def rim_b(self, n: int) -> Array:
+        """n points round end B, (n, 3) [mm]."""
+
+    @property
+    def seam_line(self) -> Array:
+        """The seam from end A to end B, (2, 3) [mm]."""
+
+    @property
+    def top_line(self) -> Array:
+        """The line along the top from end A to end B, (2, 3) [mm]."""
+
+
+class _Camera:
+    """Perspective view of points (n, 3): x to the right, y up, both in shares of the piece's size."""
+
+    def __init__(self, centre: Array, size: float, *, aside: float) -> None:
+        # Facing end B from its right or left and from above: the piece's x, y, z are right, up, towards B.
+        turn, rise = math.radians(52.0) * aside, math.radians(24.0)
+        level = math.cos(rise)
+        self.towards = np.array([math.sin(turn) * level, math.sin(rise), math.cos(turn) * level])
+        right = np.cross([0.0, 1.0, 0.0], self.towards)
+        self._axes = np.stack([right / np.linalg.norm(right), np.zeros(3), self.towards])
+        self._axes[1] = np.cross(self.towards, self._axes[0])
+        self._centre, self._size = centre, size
+        self.eye = centre + self.towards * size * _FAR
+
+    def project(self, points: Array) -> Array:
+        """Places in the picture (..., 2) of points (..., 3)."""
+        seen = (points - self._centre) @ self._axes.T / self._size
+        return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
+
+
+def picture(solid: Piece, title: str) -> bytes:
+    """PNG of the piece in perspective, equal scale in all directions; the same piece gives the same bytes."""
+    import matplotlib
+    from matplotlib.backends.backend_agg import FigureCanvasAgg
+    from matplotlib.collections import PolyCollection
+    from matplotlib.figure import Figure
+
+    vertices, faces = solid.faces()
+    low, high = vertices.min(axis=0), vertices.max(axis=0)
+    centre, size = (low + high) / 2.0, float(np.linalg.norm(high - low))
+    # From the side of the seam, if it has one.
+    aside = -1.0 if solid.seam_line[:, 0].mean() < centre[0] - 1e-6 * size else 1.0
+    camera = _Camera(centre, size, aside=aside)
+    lines = _lines(solid)
+    with matplotlib.rc_context():
+        matplotlib.rcdefaults()  # a user's own settings must not change the picture
+        figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
+        axes = figure.add_axes((0.02, 0.02, 0.96, 0.88))
+        axes.set_axis_off()
+        axes.set_aspect("equal")
+        polygons, fill, stroke, widths = _scene(camera, vertices, faces, lines)
+        axes.add_collection(
+            PolyCollection(
+                polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round"
+            )
+        )
+        seam = camera.project(solid.seam_line)
+        axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
+        corners = camera.project(vertices)
+        for text, start, end, colour in _words(camera, solid):
+            axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
+            ahead = (end - start) / np.hypot(*(end - start))
+            x, y = end + 0.012 * ahead
+            axes.text(
+                x, y, text, fontsize=13, weight="bold", color=colour,
+                ha=_side(float(ahead[0]), "right", "left"), va=_side(float(ahead[1]), "top", "bottom"),
+            )  # fmt: skip
+        (x0, y0), (x1, y1) = corners.min(axis=0), corners.max(axis=0)
+        pad = 0.19 * max(x1 - x0, y1 - y0)
+        axes.set_xlim(x0 - pad, x1 + pad)
+        axes.set_ylim(y0 - pad, y1 + pad)
+        size_of_title = min(14.0, 14.0 * 64.0 / max(len(title), 1))
+        figure.text(
+            0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE, parse_math=False
+        )
+        buffer = io.BytesIO()
+        FigureCanvasAgg(figure)
+        figure.savefig(buffer, format="png", metadata={"Software": None})
+    return buffer.getvalue()
+
+
+def _side(way: float, back: str, ahead: str) -> str:
+    """Which side of a word is tied to its leader."""
+    return "center" if abs(way) < 0.5 else (ahead if way > 0.0 else back)
+
+
+def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]:
+    """The words with their leaders: text, start and end of the leader in the picture (2,), colour."""
+    words = []
+    rim_a, rim_b = solid.rim_a(_RIM), solid.rim_b(_RIM)
+    corners = np.vstack([camera.project(rim_a + t * (rim_b - rim_a)) for t in np.linspace(0.0, 1.0, 25)])
+    height = (rim_a[:, 1].mean() + rim_b[:, 1].mean()) / 2.0
+    middle = corners.mean(axis=0)
+    for text, rim in (("END A", rim_a), ("END B", rim_b)):
+        places = camera.project(rim)
+        away = places.mean(axis=0) - middle
+        away = np.array([math.copysign(0.85, away[0]), math.copysign(0.35, away[1])])
+        start = places[int(np.argmax(places @ away))]
+        words.append((text, start, start + 0.07 * away / np.hypot(*away), _EDGE))
+    ends: list[Array] = []
+    lines = (("TOP", solid.top_line, 0.6, _TOP), ("SEAM", solid.seam_line, 0.35, _SEAM))
+    for text, line, share, colour in lines:
+        start = camera.project(line[0] + share * (line[1] - line[0]))
+        column = corners[np.abs(corners[:, 0] - start[0]) < 0.04]
+        up = text == "TOP" or line[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])
+        edge = float(column[:, 1].max() + 0.06 if up else column[:, 1].min() - 0.06)
+        end = np.array([start[0], edge])
+        for other in ends:  # a seam at the top: its word beside the other
+            if abs(end[0] - other[0]) < 0.2 and abs(end[1] - other[1]) < 0.2:
+                end[0] = other[0] + math.copysign(0.2, end[0] - other[0])
+        ends.append(end)
+        words.append((text, start, end, colour))
+    return words
+
+
+def _lines(solid: Piece) -> list[tuple[Array, str, float]]:
+    """Lines on the piece: points (n, 3), colour, width in points."""
+    rims = [np.vstack([rim, rim[:1]]) for rim in (solid.rim_a(_RIM), solid.rim_b(_RIM))]
+    share = np.linspace(0.0, 1.0, 61)[:, None]
+    seam, top = (
+        line[0] + share * (line[1] - line[0]) for line in (solid.seam_line, solid.top_line)
+    )
+    return [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7), (seam, _SEAM, 2.2)]
+
+
+def _scene(
+    camera: _Camera, vertices: Array, faces: NDArray[np.int64], lines: list[tuple[Array, str, float]]
+) -> tuple[list[Array], Array, Array, Array]:
+    """Polygons (2-D) from the back to the front, fill and stroke colours (n, 4), stroke widths (n,)."""
+    from matplotlib.colors import to_rgba
+
+    corners = vertices[faces]
+    normal = _outward(corners)
+    middle = corners.mean(axis=1)
+    outside = _faces_eye(camera, middle, normal)
+    flat = camera.project(corners)
+    # Places on each face from end A to end B, to find the face that a line runs on.
+    share = np.linspace(0.0, 1.0, 7)[:, None, None]
+    at_a, at_b = corners[:, :2].mean(axis=1), corners[:, 2:].mean(axis=1)
+    grid = (at_a + share * (at_b - at_a)).reshape(-1, 3)
+    colours = np.hstack([_shades(camera, normal, outside), np.ones((len(faces), 1))])
+    polygons: list[Array] = []
+    fill: list[Array] = []
+    stroke: list[Array] = []
+    widths: list[Array] = []
+    for front in (False, True):
+        some = outside == front
+        polygons += list(flat[some])
+        fill.append(colours[some])
+        stroke.append(colours[some])  # closes the hair gaps between the polygons
+        widths.append(np.full(int(some.sum()), 0.4))
+        for points, colour, width in lines:
+            middles = (points[:-1] + points[1:]) / 2.0
+            far = (grid**2).sum(axis=1) - 2.0 * middles @ grid.T
+            nearest = np.argmin(far, axis=1) % len(faces)
+            seen = _faces_eye(camera, middles, normal[nearest]) == front
+            flat_line = camera.project(points)
+            polygons += list(np.stack([flat_line[:-1], flat_line[1:]], axis=1)[seen])
+            count = int(seen.sum())
+            fill.append(np.zeros((count, 4)))
+            stroke.append(np.tile(to_rgba(colour), (count, 1)))
+            widths.append(np.full(count, width))
+    return polygons, np.vstack(fill), np.vstack(stroke), np.concatenate(widths)
+
+
+def _outward(corners: Array) -> Array:
+    """Unit normals (m, 3) of faces (m, 4, 3), out of the piece."""
+    normal = np.cross(corners[:, 2] - corners[:, 0], corners[:, 3] - corners[:, 1])
+    # The faces all wind the same way round; outward is the way that on the whole leaves the piece.
+    middle = corners.mean(axis=1)
+    leaves = float((normal * (middle - middle.mean(axis=0))).sum())
+    length = np.linalg.norm(normal, axis=1)
+    return np.asarray(math.copysign(1.0, leaves) * normal / np.where(length > 0.0, length, 1.0)[:, None])
+
+
+def _faces_eye(camera: _Camera, points: Array, normal: Array) -> NDArray[np.bool_]:
+    """Whether the outside of the wall is seen at each point, (n,)."""
+    return np.asarray((normal * (camera.eye - points)).sum(axis=1) > 0.0)
+
+
+def _shades(camera: _Camera, normal: Array, outside: NDArray[np.bool_]) -> Array:
+    """Colour (m, 3) of each face: by the light on it, and by which side of the wall is seen."""
+    facing = np.where(outside, 1.0, -1.0)[:, None] * normal
+    light = np.array([0.25, 0.85, 0.45]) / np.linalg.norm([0.25, 0.85, 0.45])
+    bright = (0.5 + 0.5 * facing @ light) ** 1.4  # softer than Lambert's law: no side is quite dark
+    halfway = light + camera.towards
+    gloss = np.clip(facing @ (halfway / np.linalg.norm(halfway)), 0.0, 1.0) ** 24
+    base = np.where(outside[:, None], _OUTSIDE, _INSIDE)
+    shade = base * (0.5 + 0.72 * bright)[:, None] + 0.2 * (gloss * outside)[:, None]
+    return np.asarray(np.clip(shade, 0.0, 1.0))
