@@ -38,5 +38,5 @@ def _chords(points: Array) -> Array:
     count = len(points) - 1
     if count <= 0:
         return points[:0]
-    pick = np.unique(np.linspace(0, count, min(count, _CHORDS) + 1).astype(int))[:-1]
+    pick = np.linspace(0, count, min(count, _CHORDS) + 1).astype(int)[:-1]
     return np.asarray(points[pick])

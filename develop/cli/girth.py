@@ -61,6 +61,16 @@ def _show(values: Mapping[str, object]) -> int:
     return 0
 
 
+def _named(spec: SectionSpec, unit: str) -> str:
+    """The section, its sizes in the unit of the table; a pipe has a name instead."""
+    if spec.kind == "pipe":
+        return spec.text
+    if unit == "mm":
+        return f"{spec.text} mm"
+    sizes = [spec.width] if spec.kind == "round" else [spec.width, spec.height]
+    return f"{spec.kind} {' x '.join(format_length(size, unit=unit) for size in sizes)}"
+
+
 def _table(
     spec: SectionSpec,
     girth: float,
@@ -84,7 +94,7 @@ def _table(
     digits = 0 if unit == "mm" else 2
     unit_name = "mm" if unit == "mm" else "inches"
     head = [
-        f"{spec.text}{'' if spec.kind == 'pipe' else ' mm'}: girth {format_length(girth, unit=unit)}, "
+        f"{_named(spec, unit)}: girth {format_length(girth, unit=unit)}, "
         f"area {area / size**2:.{digits}f} {'mm²' if unit == 'mm' else 'square inches'}",
         f"Lengths in {unit_name}, directions in degrees: anticlockwise from the right, facing end B.",
         "",

@@ -37,7 +37,7 @@ def svg(pattern: Pattern) -> bytes:
         [curve.polyline(0.001) for outline in (pattern.cut, pattern.net) for _, curve in outline.curves]
     )
     low, high = points.min(axis=0), points.max(axis=0)
-    width, height = (math.ceil((size + 2.0 * _EDGE) * 1000.0) / 1000.0 for size in high - low)
+    width, height = (math.ceil((size + 2.0 * _EDGE) * 1000.0 - 1e-3) / 1000.0 for size in high - low)
     root = ET.Element(
         "svg",
         {

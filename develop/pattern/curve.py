@@ -53,6 +53,32 @@ class Curve:
         """The curve with every point p at turn · p + shift; turn (2, 2) keeps lengths."""
         return Curve(self.controls @ turn.T + shift, self.length, self.straight)
 
+    def bounds(self) -> Array:
+        """Least and greatest x and y of the chain, (2, 2) [mm], exactly.
+
+        They lie at end points or where a cubic's derivative, a quadratic in t, is zero.
+        """
+        p = self.pieces
+        c, b, a = (
+            p[:, 1] - p[:, 0],
+            p[:, 0] - 2 * p[:, 1] + p[:, 2],
+            p[:, 3] - p[:, 0] + 3 * (p[:, 1] - p[:, 2]),
+        )
+        with np.errstate(divide="ignore", invalid="ignore"):
+            root = np.sqrt(b * b - a * c)
+            # Citardauq's form stays exact where a is small.
+            q = -(b + np.where(b < 0.0, -root, root))
+            t = np.stack([q / a, c / q])
+        t = np.clip(np.where(np.isfinite(t), t, 0.0), 0.0, 1.0)
+        turning = (
+            (1 - t) ** 3 * p[:, 0]
+            + 3 * (1 - t) ** 2 * t * p[:, 1]
+            + 3 * (1 - t) * t**2 * p[:, 2]
+            + t**3 * p[:, 3]
+        ).reshape(-1, 2)
+        points = np.vstack([turning, self.controls[::3]])
+        return np.stack([points.min(axis=0), points.max(axis=0)])
+
     def polyline(self, tolerance: float) -> Array:
         """Points (k, 2) on the chain whose chords stay within `tolerance` [mm] of it.
 

@@ -238,10 +238,10 @@ class _View:
 
     @staticmethod
     def of(curves: Sequence[tuple[str, Curve]], finish: Lines, *, mirror: bool) -> _View:
-        points = np.vstack([curve.polyline(1e-3) for _, curve in curves])
+        bounds = np.vstack([curve.bounds() for _, curve in curves])
         if mirror:
-            points = points * _FLIP
-        return _View(mirror, -points.min(axis=0), finish)
+            bounds = bounds * _FLIP
+        return _View(mirror, -bounds.min(axis=0), finish)
 
     def contour(self, curves: Sequence[tuple[str, Curve]]) -> tuple[tuple[str, Curve], ...]:
         turn = np.diag(_FLIP) if self.mirror else np.eye(2)

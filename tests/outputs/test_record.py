@@ -94,7 +94,12 @@ def test_flat_lines_have_no_radius_and_turns_are_in_degrees(samples):
     line = RollLine(np.array([0.0, 0.0]), np.array([-1e-9, 10.0]), math.pi / 6, (120.5, math.inf))
     content = read(replace(samples.rectangle(), lines=(line,)))
     (found,) = content["patterns"][0]["lines"]
-    assert found == {"from": [0.0, 0.0], "to": [0.0, 10.0], "turn": pytest.approx(30.0), "radius": [120.5, None]}
+    assert found == {
+        "from": [0.0, 0.0],
+        "to": [0.0, 10.0],
+        "turn": pytest.approx(30.0),
+        "radius": [120.5, None],
+    }
 
 
 def test_directions_are_in_degrees(samples):
@@ -111,7 +116,9 @@ def test_an_end_that_is_a_point_has_no_length(samples):
 
 
 def test_openings_are_taken_off_the_area(samples):
-    hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * math.pi)),), math.pi * 2500)
+    hole = Outline(
+        (("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * math.pi)),), math.pi * 2500
+    )
     content = read(replace(samples.rectangle(1256.6, 450.0), openings=(hole,)))
     net, cut = content["patterns"][0]["net"], content["patterns"][0]["cut"]
     assert net["area"] == cut["area"] == pytest.approx(1256.6 * 450.0 - math.pi * 2500.0, rel=1e-14)

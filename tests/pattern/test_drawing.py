@@ -105,13 +105,18 @@ def test_full_lines_run_from_edge_to_edge_but_for_the_text(samples):
     words = []
     for centre, along, half in zip(*boxes, strict=True):
         across = np.array([-along[1], along[0]])
-        corners = [centre + s * along * half[0] + t * across * half[1] for s, t in ((-1, -1), (1, -1), (1, 1), (-1, 1))]
+        corners = [
+            centre + s * along * half[0] + t * across * half[1]
+            for s, t in ((-1, -1), (1, -1), (1, 1), (-1, 1))
+        ]
         words.append(LineString([*corners, corners[0]]).convex_hull)
     lines = [LineString(s) for s in lines_of(layers[ROLL_LINES])]
     assert not any(line.intersects(word) for line in lines for word in words)
     # Line 7 meets the numbers at both edges and no other word: three pieces, from edge to edge.
     x = pattern.divisions[7].a[0]
-    pieces = sorted((s[:, 1].min(), s[:, 1].max()) for s in lines_of(layers[ROLL_LINES]) if abs(s[0][0] - x) < 1e-9)
+    pieces = sorted(
+        (s[:, 1].min(), s[:, 1].max()) for s in lines_of(layers[ROLL_LINES]) if abs(s[0][0] - x) < 1e-9
+    )
     assert pieces[0][0] == 0.0
     assert pieces[-1][1] == 450.0
     assert sum(b - a for a, b in pieces) > 0.8 * 450.0
@@ -121,11 +126,18 @@ def test_net_line_is_drawn_only_where_it_is_not_cut(samples):
     pattern = samples.rectangle(width=600.0, height=100.0)
     corner = np.array([[0.0, 0.0], [625.0, 0.0], [625.0, 100.0], [0.0, 100.0]])
     names = ("a", "seam_right", "b", "seam_left")
-    lapped = Outline(tuple((n, segment(corner[k], corner[(k + 1) % 4])) for k, n in enumerate(names)), 62500.0)
+    lapped = Outline(
+        tuple((n, segment(corner[k], corner[(k + 1) % 4])) for k, n in enumerate(names)), 62500.0
+    )
     layers = notes_of(replace(pattern, cut=lapped))
     assert [kind for kind, _ in layers[NET]] == ["curve"]
     assert layers[NET][0][1].start.tolist() == [600.0, 0.0]
-    wide = Outline(tuple((n, segment(corner[k] * 1.5 - 20, corner[(k + 1) % 4] * 1.5 - 20)) for k, n in enumerate(names)), 1.0)
+    wide = Outline(
+        tuple(
+            (n, segment(corner[k] * 1.5 - 20, corner[(k + 1) % 4] * 1.5 - 20)) for k, n in enumerate(names)
+        ),
+        1.0,
+    )
     assert [kind for kind, _ in notes_of(replace(pattern, cut=wide))[NET]] == ["contour"]
     assert NET not in notes_of(pattern)
 

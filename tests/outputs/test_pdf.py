@@ -1,0 +1,320 @@
+"""PDF files read back by pypdf, by operators of the page, and as pixels by poppler."""
+
+from __future__ import annotations
+
+import io
+import math
+import re
+import shutil
+import subprocess
+
+import numpy as np
+import pytest
+from pypdf import PdfReader
+from pypdf.generic import ContentStream
+from shapely import LineString, Point, Polygon
+
+from develop.outputs.fonts import width
+from develop.outputs.pdf import pdf
+
+MM = 72.0 / 25.4
+LARGEST = 14400.0  # [points] the largest page that PDF 1.6 allows without UserUnit (its Annex C)
+
+
+def read(*patterns, **options):
+    return PdfReader(io.BytesIO(pdf(patterns, **options)))
+
+
+def contents(reader, page):
+    """Paths [mm] of a page, each (Bézier or line segments, closed), and texts as (x, y) [mm]."""
+    paths, texts, at, now = [], [], None, []
+    for operands, operator in ContentStream(page.get_contents(), reader).operations:
+        numbers = [float(v) / MM for v in operands] if operator in (b"m", b"l", b"c") else operands
+        if operator == b"m":
+            now, at = [], np.array(numbers)
+        elif operator == b"l":
+            now.append(np.array([at, numbers]))
+            at = now[-1][-1]
+        elif operator == b"c":
+            now.append(np.vstack([at, np.reshape(numbers, (3, 2))]))
+            at = now[-1][-1]
+        elif operator in (b"s", b"S"):
+            paths.append((now, operator == b"s"))
+        elif operator == b"Tm":
+            texts.append(np.array([float(v) for v in operands[4:6]]) / MM)
+        # Nothing moves, scales, clips or fills the drawing.
+        assert operator not in (b"W", b"W*", b"f", b"F", b"f*", b"B", b"b", b"Do")
+        if operator == b"cm":
+            assert [float(v) for v in operands] == [1, 0, 0, 1, 0, 0]
+    return paths, texts
+
+
+def squares(paths, side):
+    found = []
+    for segments, closed in paths:
+        points = np.array([s[0] for s in segments])
+        if closed and len(points) == 4 and all(len(s) == 2 for s in segments):
+            across = np.ptp(points, axis=0)
+            if abs(across - side).max() < 1.0:
+                found.append(across)
+    return found
+
+
+def contour(paths):
+    """The contour of the pattern: the closed path of the greatest reach."""
+    closed = [segments for segments, is_closed in paths if is_closed]
+    return max(closed, key=lambda segments: np.ptp(np.vstack(segments), axis=0).max())
+
+
+def sampled(segments, count=17):
+    points = []
+    for s in segments:
+        t = np.linspace(0.0, 1.0, count)[:, None]
+        if len(s) == 2:
+            points.append(s[0] + t * (s[1] - s[0]))
+        else:
+            points.append(
+                (1 - t) ** 3 * s[0] + 3 * (1 - t) ** 2 * t * s[1] + 3 * (1 - t) * t**2 * s[2] + t**3 * s[3]
+            )
+    return np.vstack(points)
+
+
+def size(page):
+    return [float(v) / MM for v in page.mediabox[2:]]
+
+
+def test_one_page_for_each_pattern_at_full_size(samples):
+    reader = read(samples.rectangle(), samples.fan())
+    assert len(reader.pages) == 2
+    for page in reader.pages:
+        assert "/UserUnit" not in page
+        assert page.mediabox[:2] == [0, 0]
+        assert page.get("/Rotate", 0) == 0
+    assert reader.trailer["/Root"]["/ViewerPreferences"]["/PrintScaling"] == "/None"
+
+
+@pytest.mark.parametrize(("shape", "side"), [((1256.6, 450.0), 100.0), ((60.0, 40.0), 50.0)])
+def test_check_square_measures_what_it_says(samples, shape, side):
+    reader = read(samples.rectangle(*shape))
+    (found,) = squares(contents(reader, reader.pages[0])[0], side)
+    assert found == pytest.approx([side, side], abs=0.01)
+    text = reader.pages[0].extract_text()
+    assert f"{side:.0f} mm x {side:.0f} mm" in text
+    assert "measure both ways" in text
+
+
+def test_contour_is_true_to_scale_and_made_of_curves(samples):
+    reader = read(samples.fan(300.0, 200.0, 250.0))
+    segments = contour(contents(reader, reader.pages[0])[0])
+    slant = math.hypot(250.0, 100.0)
+    curved = [s for s in segments if len(s) == 4]
+    assert len(segments) - len(curved) == 2
+    assert segments[-1][-1] == pytest.approx(segments[0][0], abs=1e-4)
+    points = sampled(curved)
+    left, right = points[:, 0].min(), points[:, 0].max()
+    centre = np.array([(left + right) / 2, points[:, 1].min() + 3 * slant])
+    radius = np.hypot(*(points - centre).T)
+    miss = np.minimum(np.abs(radius - 3 * slant), np.abs(radius - 2 * slant))
+    assert miss.max() < 2e-3
+    assert (radius > 2.9 * slant).any()
+
+
+def test_nothing_is_near_the_paper_edge_nor_over_the_pattern(samples):
+    for pattern in (samples.rectangle(), samples.slanting(), samples.fan(), samples.rectangle(60.0, 30.0)):
+        reader = read(pattern)
+        page = reader.pages[0]
+        paths, texts = contents(reader, page)
+        every = np.vstack([*(s for segments, _ in paths for s in segments), *texts])
+        wide, high = size(page)
+        assert every.min() >= 10.0 - 1e-6
+        assert every[:, 0].max() <= wide - 10.0 + 1e-6
+        assert every[:, 1].max() <= high - 10.0 + 1e-6
+        sheet = Polygon(sampled(contour(paths)))
+        inside = [point for point in texts if sheet.buffer(1.0).contains(Point(point))]
+        assert len(inside) == len(pattern.labels) + len(pattern.arrows)
+        square = next(
+            np.vstack(segments) for segments, closed in paths if closed and squares([(segments, closed)], 100.0)
+            or squares([(segments, closed)], 50.0)
+        )  # fmt: skip
+        assert not sheet.intersects(LineString(square).convex_hull)
+
+
+def test_words_on_the_sheet(samples):
+    pattern = samples.slanting()
+    text = read(pattern).pages[0].extract_text()
+    plain = " ".join(text.split())
+    for fact in pattern.facts:
+        assert " ".join(fact.split()) in plain
+    for words in (
+        "PRINT AT ACTUAL SIZE",
+        "sheet 1 of 1",
+        "facing END B",
+        "anticlockwise",
+        "0 RIGHT",
+        "90 TOP",
+        "180 LEFT",
+        "270 BOTTOM",
+        "x = 0",
+        "y = 0",
+        "END A, the line y = 0",
+        "sharp edges",
+        "gloves and eye protection",
+        "Local codes and licensed practice",
+    ):
+        assert words in plain, words
+
+
+def test_divisions_table_is_printed(samples):
+    lines = read(samples.slanting(150.0, 60.0, 45.0)).pages[0].extract_text().split("\n")
+    numbers = " ".join(lines)
+    for n in range(25):
+        # Ordinate of an oblique cut at equal divisions: 60 + 150 (1 - cos); the figure is in the table.
+        ordinate = 60.0 + 150.0 * (1.0 - math.cos(2 * math.pi * n / 24))
+        assert f"{ordinate:.1f}" in numbers
+        assert f"{300.0 * math.pi * n / 24:.1f}" in numbers
+
+
+def test_inches(samples):
+    plain = read(samples.rectangle(48 * 25.4, 12.375 * 25.4), units="in").pages[0].extract_text()
+    assert "12-3/8" in plain
+    assert "(inches)" in plain
+
+
+def test_every_font_is_embedded(samples):
+    reader = read(samples.rectangle(), samples.fan())
+    fonts = {}
+    for page in reader.pages:
+        fonts.update(page["/Resources"]["/Font"])
+    assert fonts
+    for font in fonts.values():
+        font = font.get_object()
+        assert "DejaVuSans" in font["/BaseFont"]
+        assert len(font["/FontDescriptor"]["/FontFile2"].get_data()) > 1000
+
+
+@pytest.fixture(scope="module")
+def parted(samples):
+    """A sheet of 11 m by 6.4 m, of 3 columns and 2 rows."""
+    reader = read(samples.rectangle(11000.0, 6400.0))
+    return reader, [contents(reader, page) for page in reader.pages]
+
+
+def test_a_sheet_over_5080_mm_goes_on_to_further_pages(parted):
+    reader, pages = parted
+    assert len(pages) == 6
+    for page in reader.pages:
+        assert max(float(v) for v in page.mediabox[2:]) <= LARGEST
+    heads = [" ".join(page.extract_text().split()) for page in reader.pages]
+    for n, head in enumerate(heads):
+        assert f"sheet {n + 1} of 6" in head
+        assert "PRINT AT ACTUAL SIZE" in head
+    assert "right: sheet 2" in heads[0]
+    assert "below: sheet 4" in heads[0]
+    assert "left:" not in heads[0]
+    assert "left: sheet 4 · right: sheet 6 · above: sheet 2" in heads[4]
+    # The check square and the table are whole on the first page, and there alone.
+    assert [len(squares(paths, 100.0)) for paths, _ in pages] == [1, 0, 0, 0, 0, 0]
+    assert ["Lines to mark out" in head for head in heads] == [True, False, False, False, False, False]
+
+
+def test_pages_lay_the_same_contour_over_each_other(parted):
+    reader, pages = parted
+    corners = [contour(paths)[0][0] for paths, _ in pages]  # the pattern's (0, 0) on each page
+    wide, high = size(reader.pages[0])
+    steps = {tuple(np.round(corners[k] - corners[k + 1], 3)) for k in (0, 1, 3, 4)}
+    ((step, level),) = steps
+    assert level == 0.0
+    overlap = wide - 24.0 - step  # 12 mm margins
+    assert overlap == pytest.approx(60.0, abs=0.01)
+    down = corners[3] - corners[0]
+    assert down[0] == pytest.approx(0.0, abs=1e-3)
+    # The pages' windows together cover the sheet: the pattern ends before the last one does.
+    assert corners[2][0] + 11000.0 < wide - 12.0
+    assert 12.0 < corners[3][1] < high
+    assert 0.0 < corners[0][1] + 6400.0 < high - 12.0
+    assert 0.0 < down[1] < high - 24.0
+
+
+def test_crosses_of_neighbours_lie_on_each_other(parted):
+    reader, pages = parted
+
+    def crosses(paths, corner):
+        lines = [np.vstack(segments) for segments, closed in paths if not closed and len(segments) == 1]
+        arms = [s for s in lines if s.shape == (2, 2) and abs(np.ptp(s, axis=0).max() - 16.0) < 1e-3]
+        level = {
+            tuple(np.round(s.mean(axis=0) - corner, 2)) for s in arms if abs(np.ptp(s, axis=0)[1]) < 1e-3
+        }
+        upright = {
+            tuple(np.round(s.mean(axis=0) - corner, 2)) for s in arms if abs(np.ptp(s, axis=0)[0]) < 1e-3
+        }
+        return level & upright
+
+    found = [crosses(paths, contour(paths)[0][0]) for paths, _ in pages]
+    wide, _ = size(reader.pages[0])
+    for left, right in ((0, 1), (1, 2), (3, 4), (4, 5)):
+        corner = contour(pages[left][0])[0][0]
+        shared = wide - 12.0 - 30.0 - corner[0]  # the middle of the overlap, from the pattern's corner
+        mine = {c for c in found[left] if abs(c[0] - shared) < 0.02}
+        assert len(mine) > 10
+        assert mine <= found[right]
+
+
+def test_what_is_wholly_off_a_page_is_not_written(samples):
+    reader = read(samples.rectangle(11000.0, 400.0))
+    assert len(reader.pages) == 3
+    for page in reader.pages:
+        wide, high = size(page)
+        for segments, closed in contents(reader, page)[0]:
+            if not closed:
+                low, top = np.vstack(segments).min(axis=0), np.vstack(segments).max(axis=0)
+                assert low[0] <= wide
+                assert top[0] >= 0.0
+
+
+def test_a_page_just_small_enough_stays_one(samples):
+    page, *more = read(samples.rectangle(4950.0, 400.0)).pages
+    assert more == []
+    assert float(page.mediabox[2]) <= LARGEST
+
+
+def test_the_same_patterns_give_the_same_bytes(samples):
+    one, other = (pdf([samples.fan(), samples.rectangle()]) for _ in range(2))
+    assert one == other
+    assert pdf([samples.fan()]) != one
+
+
+def test_no_version_or_user_in_the_file(samples):
+    details = read(samples.rectangle()).metadata
+    assert details["/Producer"] == details["/Creator"] == "develop"
+    assert details["/Author"] == ""
+    assert "2000" in details["/CreationDate"]  # the fixed date of reportlab's invariant mode
+
+
+def test_width_of_text_is_that_of_the_face():
+    # Digits of DejaVu Sans are 1303 units of 2048 wide, its capitals 1493 high (its hmtx and OS/2 tables).
+    assert width("8", 1493.0) == pytest.approx(1303.0, abs=4.0)
+    assert width("88", 3.0) == pytest.approx(2 * width("8", 3.0))
+
+
+@pytest.mark.skipif(shutil.which("pdftoppm") is None, reason="poppler is not installed")
+def test_rendered_at_its_size_the_pattern_measures_true(samples, tmp_path):
+    file = tmp_path / "A1.pdf"
+    file.write_bytes(pdf([samples.rectangle(600.0, 300.0)]))
+    subprocess.run(
+        ["pdftoppm", "-r", "127", "-gray", "-singlefile", str(file), str(tmp_path / "A1")], check=True
+    )
+    raw = (tmp_path / "A1.pgm").read_bytes()
+    head = re.match(rb"P5\s+(\d+)\s+(\d+)\s+255\s", raw)
+    wide, high = int(head[1]), int(head[2])
+    dark = np.frombuffer(raw[head.end() :], np.uint8).reshape(high, wide) < 128
+    # 127 dots an inch are 5 dots a mm. Longest runs of dark dots: the pattern's sides.
+    assert longest(dark) / 5.0 == pytest.approx(600.0, abs=0.6)
+    assert longest(dark.T) / 5.0 == pytest.approx(300.0, abs=0.6)
+
+
+def longest(dark):
+    best = 0
+    for row in dark[dark.sum(axis=1) > 250]:
+        steps = np.flatnonzero(np.diff(np.concatenate([[0], row.astype(np.int8), [0]])))
+        best = max(best, int((steps[1::2] - steps[::2]).max()))
+    return best

@@ -1,0 +1,154 @@
+"""Pictures of the finished piece, decoded and looked at dot by dot."""
+
+from __future__ import annotations
+
+import io
+import math
+import struct
+import subprocess
+import sys
+from dataclasses import dataclass
+
+import numpy as np
+import pytest
+from shapely import MultiPoint, Point
+
+from develop.outputs import picture as module
+from develop.outputs.picture import picture
+
+
+@pytest.fixture(scope="module")
+def solid(samples):
+    return samples.Frustum()
+
+
+def dots(data):
+    from PIL import Image
+
+    return np.asarray(Image.open(io.BytesIO(data)).convert("RGB")).astype(int)
+
+
+def chunks(data):
+    assert data[:8] == b"\x89PNG\r\n\x1a\n"
+    at = 8
+    while at < len(data):
+        (length,) = struct.unpack(">I", data[at : at + 4])
+        yield data[at + 4 : at + 8], data[at + 8 : at + 8 + length]
+        at += 12 + length
+
+
+def test_png_of_a_fixed_size_that_names_no_program(solid):
+    found = list(chunks(picture(solid, "T1")))
+    kinds = [kind for kind, _ in found]
+    assert struct.unpack(">II", found[0][1][:8]) == (1200, 900)
+    assert not {b"tEXt", b"iTXt", b"zTXt", b"tIME"} & set(kinds)
+
+
+def test_the_same_piece_gives_the_same_bytes_whatever_the_user_has_set(solid):
+    import matplotlib
+
+    one = picture(solid, "T1")
+    with matplotlib.rc_context({"savefig.dpi": 30, "figure.facecolor": "black", "font.size": 30}):
+        assert picture(solid, "T1") == one
+    assert picture(solid, "T2") != one
+
+
+def test_pyplot_is_not_imported():
+    code = (
+        "import sys; from develop.outputs.picture import picture; import matplotlib.figure;"
+        "assert 'matplotlib.pyplot' not in sys.modules"
+    )
+    subprocess.run([sys.executable, "-c", code], check=True)
+
+
+def test_white_ground_and_a_piece_in_the_middle(solid):
+    image = dots(picture(solid, "T1"))
+    for corner in (image[0, 0], image[0, -1], image[-1, 0], image[-1, -1]):
+        assert corner.tolist() == [255, 255, 255]
+    border = np.concatenate(
+        [image[:10].reshape(-1, 3), image[-10:].reshape(-1, 3), image[:, :10].reshape(-1, 3)]
+    )
+    assert (border == 255).all()  # nothing is cut off
+    filled = (image.sum(axis=2) < 3 * 250).mean()
+    assert 0.15 < filled < 0.6
+
+
+def red(image):
+    return (image[..., 0] > 150) & (image[..., 1] < 70) & (image[..., 2] < 70)
+
+
+def test_the_seam_is_drawn_where_it_is(samples):
+    # At the left side of the piece the view is from the left, so the whole seam is to be seen.
+    @dataclass(frozen=True)
+    class Seamless(samples.Frustum):
+        @property
+        def seam_line(self):
+            return np.full((2, 3), 0.0)
+
+    seen = red(dots(picture(samples.Frustum(seam_at=math.pi), "")))
+    assert seen.sum() > 2000
+    across = np.flatnonzero(seen.any(axis=0))
+    assert np.ptp(across) > 300
+    hidden = red(dots(picture(samples.Frustum(seam_at=-math.pi / 2), "")))
+    assert 300 < hidden.sum() < seen.sum()
+
+
+@pytest.mark.parametrize("seam_at", [0.0, math.pi / 2, math.pi, -math.pi / 2])
+@pytest.mark.parametrize("sizes", [(300.0, 200.0, 450.0), (150.0, 150.0, 1500.0), (200.0, 400.0, 150.0)])
+def test_words_stand_outside_the_piece_and_apart(samples, sizes, seam_at):
+    solid = samples.Frustum(*sizes, seam_at=seam_at)
+    vertices, _ = solid.faces()
+    middle = (vertices.min(axis=0) + vertices.max(axis=0)) / 2.0
+    reach = float(np.linalg.norm(np.ptp(vertices, axis=0)))
+    for aside in (1.0, -1.0):
+        camera = module._Camera(middle, reach, aside=aside)
+        shape = MultiPoint(camera.project(vertices)).convex_hull
+        words = module._words(camera, solid)
+        assert [word[0] for word in words] == ["END A", "END B", "TOP", "SEAM"]
+        for _, _, end, _ in words:
+            assert shape.distance(Point(end)) > 0.02
+        for n, (_, _, end, _) in enumerate(words):
+            for _, _, other, _ in words[:n]:
+                assert np.hypot(*(end - other)) > 0.08
+
+
+def test_the_view_is_facing_end_b_from_above_with_x_to_the_right_and_y_up():
+    camera = module._Camera(np.zeros(3), 1.0, aside=1.0)
+    origin, x, y, z = camera.project(np.array([[0.0, 0, 0], [0.1, 0, 0], [0, 0.1, 0], [0, 0, 0.1]]))
+    assert origin.tolist() == [0.0, 0.0]
+    assert x[0] > 0.0
+    assert y[0] == pytest.approx(0.0, abs=1e-12)
+    assert y[1] > 0.05
+    assert z[0] < 0.0  # end B comes towards the eye, on the left
+    other = module._Camera(np.zeros(3), 1.0, aside=-1.0)
+    assert other.project(np.array([0.0, 0.0, 0.1]))[0] > 0.0
+
+
+def test_equal_scale_in_all_directions():
+    # A sphere at the middle looks round in a true perspective, whatever the direction of view.
+    camera = module._Camera(np.zeros(3), 1000.0, aside=1.0)
+    t = np.linspace(0.0, math.pi, 181)
+    p = np.linspace(0.0, 2 * math.pi, 361)
+    sphere = 50.0 * np.stack(
+        [np.outer(np.sin(t), np.cos(p)), np.outer(np.cos(t), 0 * p + 1), np.outer(np.sin(t), np.sin(p))],
+        axis=-1,
+    )
+    flat = camera.project(sphere.reshape(-1, 3))
+    assert np.ptp(flat, axis=0) == pytest.approx([0.1, 0.1], rel=3e-3)
+
+
+def test_near_things_look_larger():
+    camera = module._Camera(np.zeros(3), 100.0, aside=1.0)
+    ends = np.array([[0.0, -10.0, 0.0], [0.0, 10.0, 0.0]])
+    near, far = (np.ptp(camera.project(ends + z * camera.towards)[:, 1]) for z in (40.0, -40.0))
+    assert near > 1.2 * far
+
+
+def test_outside_and_inside_are_told_apart(samples):
+    solid = samples.Frustum(150.0, 150.0, 400.0, shift=(0.0, 0.0))
+    image = dots(picture(solid, ""))
+    bluish = (image[..., 2] - image[..., 0] > 25).sum()  # the outside
+    brownish = ((image[..., 0] - image[..., 2] > 4) & (image[..., 0] < 200) & ~red(image)).sum()  # the inside
+    assert bluish > 50000
+    assert brownish > 20000
+    assert bluish > brownish
