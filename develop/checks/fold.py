@@ -37,17 +37,19 @@ def folded(pattern: Pattern, solid: Solid) -> tuple[Array, Array, Array]:
     bend[1:] += half[:-1]
     alpha, beta = _running_product(0.5 * bend[:-1], axis[:-1])
     x, y, z = _axes(alpha, beta)
+    strips = np.concatenate([np.arange(len(x)), [len(x) - 1]])
 
     def turned(vector: Array) -> Array:
         return vector[:, :1] * x + vector[:, 1:] * y
 
     steps = turned(np.diff(flat_a, axis=0))
     a = np.vstack([np.zeros(3), np.cumsum(steps, axis=0)])
-    legs = turned(leg[:-1])
-    b = np.vstack([a[:-1] + legs, a[-1:] + (leg[-1:, :1] * x[-1] + leg[-1:, 1:] * y[-1])])
-    normal = np.vstack([np.array([0.0, 0.0, 1.0]), z])
-    normal[1:-1] += z[1:]
-    normal /= np.linalg.norm(normal, axis=1)[:, None]
+    along = np.vstack([turned(axis[:-1]), axis[-1:, :1] * x[-1] + axis[-1:, 1:] * y[-1]])
+    b = a + np.hypot(*leg.T)[:, None] * along
+    # On a line the sheet stands between its strips: half a turn back from the one on the right.
+    lean = np.append(half[:-1], -half[-2])[:, None]
+    up = z[strips]
+    normal = np.cos(lean) * up - np.sin(lean) * np.cross(along, up)
 
     place = _seam_axes(solid) @ _flat_axes(axis[0]).T
     start = solid.strip(np.array([solid.seam]))

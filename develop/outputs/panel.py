@@ -150,7 +150,7 @@ def _notes(pattern: Pattern, units: str) -> _Block:
         " Paper stretches: where it matters, mark out from the table.",
         f"All figures in {'inches' if units == 'in' else 'mm'}; x from the datum line x = 0 at the left,"
         " y from the datum line y = 0 at the bottom; running lengths from the left seam.",
-        f"Datum: {pattern.datum}." if pattern.datum else "",
+        f"Measured from: {pattern.datum}." if pattern.datum else "",
         "Cut on the middle of the thick line.",
         *_CAUTION,
     ]

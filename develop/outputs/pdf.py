@@ -59,16 +59,37 @@ def pdf(patterns: Sequence[Pattern], *, units: str = "mm") -> bytes:
     register()
     buffer = io.BytesIO()
     canvas = Canvas(buffer, invariant=1, pageCompression=1, pdfVersion=(1, 6), initialFontName=FACE)
-    canvas.setTitle(", ".join(pattern.mark for pattern in patterns))
-    canvas.setAuthor("")
-    canvas.setCreator("develop")
-    canvas.setProducer("develop")
-    canvas.setSubject("flat pattern, true scale: print at actual size")
+    _describe(canvas, ", ".join(pattern.mark for pattern in patterns))
     canvas.setViewerPreference("PrintScaling", "None")
     for pattern in patterns:
         _draw_sheet(canvas, pattern, _arranged(pattern, units))
     canvas.save()
     return buffer.getvalue()
+
+
+def _describe(canvas: Canvas, title: str) -> None:
+    """Title and kind of the document, and nothing of the time it was made.
+
+    reportlab always writes a date, and mixes it into the file's ID; where the environment sets
+    SOURCE_DATE_EPOCH not even its invariant mode keeps both still.
+    """
+    from hashlib import md5
+
+    from reportlab.pdfbase.pdfdoc import PDFDictionary, PDFDocument, PDFInfo, PDFString
+
+    class Details(PDFInfo):  # type: ignore[misc]
+        def format(self, document: PDFDocument) -> bytes:
+            words = {
+                "Title": title,
+                "Subject": "flat pattern, true scale: print at actual size",
+                "Creator": "develop",
+                "Producer": "develop",
+            }
+            entries = {key: PDFString(word) for key, word in words.items()}
+            return bytes(PDFDictionary(entries).format(document))
+
+    canvas._doc.info = Details()
+    canvas._doc.signature = md5(title.encode(), usedforsecurity=False)
 
 
 def _arranged(pattern: Pattern, units: str) -> _Sheet:
@@ -155,9 +176,9 @@ def _datum_lines(ink: Ink, sheet: _Sheet) -> None:
     for at in (y + low_y - _STUB - 2.0, y + high_y + 2.0):
         ink.line(x, at, x, at + _STUB)
         ink.text(x + 1.5, at + 3.5, "x = 0", 3.0)
-    for at in (x + low_x - _STUB - 2.0, x + high_x + 2.0):
+    for at, word in ((x + low_x - _STUB - 2.0, -1.0), (x + high_x + 2.0, 1.0)):
         ink.line(at, y, at + _STUB, y)
-        ink.text(at - 1.0, y + 1.5, "y = 0", 3.0)
+        ink.text(at + word, y + 1.5, "y = 0", 3.0)
 
 
 def _match_line(ink: Ink, start: tuple[float, float], end: tuple[float, float]) -> None:

@@ -93,9 +93,7 @@ def picture(solid: Piece, title: str) -> bytes:
         axes.set_aspect("equal")
         polygons, fill, stroke, widths = _scene(camera, vertices, faces, lines)
         axes.add_collection(
-            PolyCollection(
-                polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round"
-            )
+            PolyCollection(polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round")
         )
         seam = camera.project(solid.seam_line)
         axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
@@ -160,9 +158,7 @@ def _lines(solid: Piece) -> list[tuple[Array, str, float]]:
     """Lines on the piece: points (n, 3), colour, width in points."""
     rims = [np.vstack([rim, rim[:1]]) for rim in (solid.rim_a(_RIM), solid.rim_b(_RIM))]
     share = np.linspace(0.0, 1.0, 61)[:, None]
-    seam, top = (
-        line[0] + share * (line[1] - line[0]) for line in (solid.seam_line, solid.top_line)
-    )
+    seam, top = (line[0] + share * (line[1] - line[0]) for line in (solid.seam_line, solid.top_line))
     return [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7), (seam, _SEAM, 2.2)]
 
 

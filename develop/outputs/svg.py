@@ -101,9 +101,7 @@ class _SvgPen:
     def _steps(self, curve: Curve) -> str:
         if curve.straight:
             return f"L{self._point(curve.end)}"
-        return " ".join(
-            "C" + " ".join(self._point(point) for point in piece[1:]) for piece in curve.pieces
-        )
+        return " ".join("C" + " ".join(self._point(point) for point in piece[1:]) for piece in curve.pieces)
 
     def _flip(self, point: Array) -> tuple[float, float]:
         return self._origin[0] + float(point[0]), self._origin[1] - float(point[1])

@@ -111,9 +111,7 @@ def _along(curve: Curve, shares: Array) -> tuple[Array, Array]:
     return points[k] + tangent * (where - sums[k])[:, None], tangent
 
 
-def _witness_words(
-    marks: Sequence[WitnessMark], lengths: Array, height: float, size: float
-) -> list[Word]:
+def _witness_words(marks: Sequence[WitnessMark], lengths: Array, height: float, size: float) -> list[Word]:
     """The word of each witness mark: beyond its inner end, or beside it."""
 
     def word(mark: WitnessMark, length: float) -> Word:

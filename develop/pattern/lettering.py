@@ -14,8 +14,18 @@ import numpy as np
 from develop.pattern.curve import Array
 from develop.pattern.pattern import Label, Outline
 
-__all__ = ["ASCENT", "CAPITAL", "DESCENT", "Boxes", "arrow_box", "arrow_label", "boxes_of", "text_height",
-           "text_width", "upright"]
+__all__ = [
+    "ASCENT",
+    "CAPITAL",
+    "DESCENT",
+    "Boxes",
+    "arrow_box",
+    "arrow_label",
+    "boxes_of",
+    "text_height",
+    "text_width",
+    "upright",
+]
 
 CAPITAL = 0.729
 """Height of a capital over the size of the type, DejaVu Sans (its OS/2 table)."""
@@ -28,7 +38,7 @@ _WIDE = 1.38
 _CLASSES = (
     (" ilj.,'IJ·", 0.45),
     (":;|!()[]-/\\ft", 0.56),
-    ("rcsz*?_`–\"°L", 0.77),
+    ('rcsz*?_`–"°L', 0.77),
     ("0123456789abdeghknopquvxyFETPYZSVXKAB$äöüß", 0.965),
     ("CDGHNOQRUw=+<>×±&ÄÖÜ", 1.16),
 )

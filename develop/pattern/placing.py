@@ -187,5 +187,3 @@ def overlaps(boxes: Boxes, others: Boxes) -> Flags:
 def left_of(vectors: Array) -> Array:
     """Vectors (n, 2) a quarter turn to the left."""
     return np.stack([-vectors[:, 1], vectors[:, 0]], axis=1)
-
-

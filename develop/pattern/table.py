@@ -49,4 +49,3 @@ def divisions_table(divisions: Sequence[Division], *, units: str = "mm") -> Tabl
         for d in divisions
     )
     return Table(f"Lines to mark out ({'inches' if units == 'in' else 'mm'})", heads, rows)
-

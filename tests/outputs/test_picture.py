@@ -7,7 +7,6 @@ import math
 import struct
 import subprocess
 import sys
-from dataclasses import dataclass
 
 import numpy as np
 import pytest
@@ -79,12 +78,6 @@ def red(image):
 
 def test_the_seam_is_drawn_where_it_is(samples):
     # At the left side of the piece the view is from the left, so the whole seam is to be seen.
-    @dataclass(frozen=True)
-    class Seamless(samples.Frustum):
-        @property
-        def seam_line(self):
-            return np.full((2, 3), 0.0)
-
     seen = red(dots(picture(samples.Frustum(seam_at=math.pi), "")))
     assert seen.sum() > 2000
     across = np.flatnonzero(seen.any(axis=0))

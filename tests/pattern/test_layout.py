@@ -126,15 +126,13 @@ def test_ends_are_named_once_along_their_edges_and_no_text_is_under_2_mm(samples
             points = curve.polyline(0.01)
             near = int(np.argmin(np.hypot(*(points - found[0].at).T)))
             near = min(max(near, 1), len(points) - 2)
-            if len(points) > 2:
-                tangent = points[near + 1] - points[near - 1]
-            else:
-                tangent = points[-1] - points[0]
+            curved = len(points) > 2
+            tangent = points[near + 1] - points[near - 1] if curved else points[-1] - points[0]
             across = abs(math.sin(math.atan2(tangent[1], tangent[0]) - found[0].angle))
             assert across < 0.2  # it follows its edge
-            here = np.hypot(*(points - found[0].at).T).min() if len(points) > 2 else 0.0
+            here = np.hypot(*(points - found[0].at).T).min()
             other = pattern.net.curve("b" if edge == "a" else "a")
-            if other is not None and len(points) > 2:
+            if other is not None and curved:
                 there = np.hypot(*(other.polyline(0.01) - found[0].at).T).min()
                 assert here < there
 

