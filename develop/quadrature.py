@@ -9,6 +9,9 @@ of Lagrange interpolation (Berrut & Trefethen, SIAM Review 46, 2004).
 
 from __future__ import annotations
 
+from collections.abc import Callable
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -22,8 +25,10 @@ __all__ = [
     "Indices",
     "Mask",
     "between",
+    "Panels",
     "halves",
     "nodes_of",
+    "resolved",
     "running",
     "tail",
 ]
@@ -148,6 +153,78 @@ def between(x: Array) -> Array:
     if rows.any():
         share[rows] = np.where(hit[rows], 1.0, 0.0)
     return np.asarray(share / share.sum(axis=1)[:, None])
+
+
+@dataclass(frozen=True)
+class Panels:
+    """Panels (m,) from start to end; kind is a mark that both halves of a panel inherit."""
+
+    start: Array
+    end: Array
+    kind: Mask
+
+    @staticmethod
+    def between(ends: Array) -> Panels:
+        """The panels between ends (m + 1,), all of one kind."""
+        return Panels(ends[:-1], ends[1:], np.ones(len(ends) - 1, dtype=bool))
+
+    @property
+    def half(self) -> Array:
+        """Half lengths (m,)."""
+        return 0.5 * (self.end - self.start)
+
+    @property
+    def nodes(self) -> Array:
+        """The Gauss nodes (m, ORDER)."""
+        return nodes_of(self.start, self.end)
+
+    def take(self, which: Mask | Indices) -> Panels:
+        """Some of the panels."""
+        return Panels(self.start[which], self.end[which], self.kind[which])
+
+    def halved(self) -> Panels:
+        """First halves, then second halves, (2 m,)."""
+        middle = 0.5 * (self.start + self.end)
+        return Panels(
+            np.concatenate([self.start, middle]),
+            np.concatenate([middle, self.end]),
+            np.concatenate([self.kind, self.kind]),
+        )
+
+
+def resolved(
+    panels: Panels,
+    values: Callable[[Panels], Array],
+    loose: Callable[[Panels, Array], Mask],
+    *,
+    rounds: int,
+) -> tuple[Panels, Array]:
+    """Halve panels until none is loose, or `rounds` times; in order, with their values.
+
+    values: of some panels, (m, ORDER, c). loose: which of them, (m,), do not resolve their values.
+    """
+    order = np.arange(len(panels.start), dtype=float)
+    done: list[tuple[Array, Panels, Array]] = []
+    step = 1.0
+    for turn in range(rounds + 1):
+        found = values(panels)
+        open_ = loose(panels, found) if turn < rounds else np.zeros(len(order), dtype=bool)
+        if not (done or open_.any()):
+            return panels, found
+        done.append((order[~open_], panels.take(~open_), found[~open_]))
+        if not open_.any():
+            break
+        step *= 0.5
+        panels = panels.take(open_).halved()
+        order = np.concatenate([order[open_], order[open_] + step])
+    index = np.argsort(np.concatenate([part[0] for part in done]))
+    parts = [part[1] for part in done]
+    whole = Panels(
+        np.concatenate([each.start for each in parts]),
+        np.concatenate([each.end for each in parts]),
+        np.concatenate([each.kind for each in parts]),
+    )
+    return whole.take(index), np.concatenate([part[2] for part in done])[index]
 
 
 def tail(values: Array) -> Array:

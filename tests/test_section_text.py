@@ -5,11 +5,11 @@ from __future__ import annotations
 from fractions import Fraction
 
 import pytest
-from hypothesis import given
+from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from develop.errors import InputError
-from develop.sections.text import SectionSpec, parse_section
+from develop.sections.text import FLATTEST, SectionSpec, parse_section
 
 
 @pytest.mark.parametrize(
@@ -43,6 +43,7 @@ def test_bare_numbers_are_in_the_unit_of_the_job() -> None:
 
 @given(st.floats(0.1, 1e5), st.floats(0.1, 1e5))
 def test_the_canonical_text_loses_nothing(width: float, height: float) -> None:
+    assume(max(width, height) <= FLATTEST * min(width, height))
     spec = parse_section(f"ellipse {width!r} x {height!r}")
     assert (spec.width, spec.height) == (width, height)
     assert parse_section(spec.text) == spec
@@ -133,3 +134,9 @@ def test_any_text_is_a_section_or_refused(text: str) -> None:
             continue
         assert 0.1 <= spec.width <= 1e5
         assert 0.1 <= spec.height <= 1e5
+
+
+def test_a_flatter_ellipse_than_one_to_a_thousand_is_refused() -> None:
+    assert parse_section("ellipse 1000 x 1").height == 1
+    with pytest.raises(InputError, match="flatter than 1 to 1000"):
+        parse_section("ellipse 1 x 1000.1")

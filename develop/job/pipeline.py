@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from develop.job.writing import write_all
@@ -17,6 +17,7 @@ __all__ = ["FORMATS", "Outcome", "make"]
 
 # In the order in which they are written and named.
 FORMATS = ("svg", "pdf", "json", "png")
+_DRAWN = {"svg", "pdf"}
 
 
 @dataclass(frozen=True)
@@ -43,6 +44,10 @@ def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS) -> Outc
     built = piece.build()
     checks = tuple(one for pattern in built.patterns for one in check(pattern, built.solid))
     files: dict[str, bytes] = {}
+    if _DRAWN.intersection(formats):
+        from develop.pattern.layout import lettered
+
+        built = replace(built, patterns=tuple(lettered(pattern) for pattern in built.patterns))
     for each in FORMATS:
         if each in formats:
             files |= _files(each, piece, built, checks)

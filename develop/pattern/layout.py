@@ -10,20 +10,39 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
 from develop.pattern.lettering import ASCENT, DESCENT, Boxes, arrow_box, text_height, text_width, upright
-from develop.pattern.pattern import Division, Label, Outline, RollLine, WitnessMark
+from develop.pattern.pattern import Division, Label, Outline, Pattern, RollLine, WitnessMark
 from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, left_of, rows_of
 
-__all__ = ["lay_out"]
+__all__ = ["lay_out", "lettered"]
 
 _FLOW = "FLOW"
 _LINE = 1.75  # from baseline to baseline over the height of capitals
 _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0.82, 0.12, 0.88])
+
+
+def lettered(pattern: Pattern) -> Pattern:
+    """The pattern with its words, as every drawing of it needs them."""
+    rows = pattern.divisions
+    seams = [np.vstack([row.a, row.b]) for row in (rows[0], rows[len(rows) // 2], rows[-1])]
+    labels, arrows = lay_out(
+        pattern.net,
+        pattern.facts,
+        left_seam=seams[0],
+        mid_line=seams[1],
+        right_seam=seams[2],
+        flow=pattern.flow,
+        marks=pattern.marks,
+        lines=pattern.lines,
+        divisions=rows,
+        full_lines=pattern.full_lines,
+    )
+    return replace(pattern, labels=labels, arrows=arrows)
 
 
 def lay_out(

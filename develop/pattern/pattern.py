@@ -107,7 +107,8 @@ class Pattern:
 
     face: `outside` or `inside`, the face of the finished piece that is up.
     facts: lines of text that every sheet states: mark and kind, name and sizes, material, face.
-    arrows: pairs of points (2, 2) with a text, such as the flow.
+    flow: `a to b`, `b to a`, or empty where nothing flows.
+    labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
     """
 
@@ -121,10 +122,11 @@ class Pattern:
     lines: tuple[RollLine, ...]
     divisions: tuple[Division, ...]
     marks: tuple[WitnessMark, ...]
-    labels: tuple[Label, ...]
     facts: tuple[str, ...]
     datum: str
     full_lines: bool
     rulings: Rulings
+    flow: str = ""
+    labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())

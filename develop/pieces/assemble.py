@@ -9,7 +9,6 @@ from math import pi
 import numpy as np
 
 from develop.pattern.curve import Array, Curve, segment
-from develop.pattern.layout import lay_out
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.sections.section import Section
 from develop.surfaces.edges import edges
@@ -80,7 +79,7 @@ def pattern_of(
     moved = section_a.offset(distance)
     ends = sheet.ends
     at_ends = sheet.lines(ends)
-    steps = np.append(np.arange(divisions) / divisions, 0.5)
+    steps = np.arange(divisions) / divisions
     # Every ruling that is asked for, in one walk.
     wanted = [
         sheet.from_a(moved.at_arc(moved.arc(at_ends.u_a[:1]) + steps * moved.girth)),
@@ -101,7 +100,6 @@ def pattern_of(
     net = Outline(view.contour(net_curves), sheet.area)
     cut_outline = net if cut is None else Outline(view.contour(cut_curves), cut.area)
     rows_at = view.lines(found.take([*range(divisions), last]))
-    middle = view.lines(found.take([divisions]))
     dense = view.lines(found.take(range(counts[4], counts[5])))
     lines = _roll_lines(rows_at)
     rows = _divisions(rows_at, section_a)
@@ -111,18 +109,6 @@ def pattern_of(
         if net.curve(edge) is not None
         for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
     ]
-    labels, arrows = lay_out(
-        net,
-        wording.facts,
-        left_seam=np.vstack([rows_at.a[0], rows_at.b[0]]),
-        right_seam=np.vstack([rows_at.a[-1], rows_at.b[-1]]),
-        mid_line=np.vstack([middle.a[0], middle.b[0]]),
-        flow=wording.flow,
-        marks=marks,
-        lines=lines,
-        divisions=rows,
-        full_lines=wording.full_lines,
-    )
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -134,12 +120,11 @@ def pattern_of(
         lines=lines,
         divisions=rows,
         marks=tuple(marks),
-        labels=labels,
         facts=wording.facts,
         datum=wording.datum,
         full_lines=wording.full_lines,
         rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), distance),
-        arrows=arrows,
+        flow=wording.flow,
     )
 
 
@@ -148,13 +133,17 @@ def _dense(ends: Place, at: Lines) -> Place:
 
     n strips of a panel with arc s and turn t come s t² / (24 n²) too long for the bent sheet; where
     the curvature changes by e^v over the panel, their mid planes are also out by s t v / (12 n²).
+    Where they fan out by an angle f in the flat, the strips' bends are out by t f² / (24 n²).
     The miss is shared out so that the fewest strips do (n as the cube root of a panel's part).
     """
     turn = np.diff(at.turn)
     arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
     bend = np.log(np.maximum(at.radius_a, 1e-9))
     change = np.minimum(np.abs(np.diff(bend)), _MOST_CHANGE)
-    part = np.cbrt(arc * turn * (turn + 2.0 * change) / 24.0)
+    leg = at.b - at.a
+    fan = np.diff(np.unwrap(np.arctan2(leg[:, 1], leg[:, 0])))
+    reach = max(float(np.max(at.length)), float(np.sum(arc)) / pi)
+    part = np.cbrt((arc * turn * (turn + 2.0 * change) + reach * turn * fan * fan) / 24.0)
     counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / _FOLD_MISS)), 1).astype(int)
     owner = np.repeat(np.arange(len(counts)), counts)
     first = np.repeat(np.cumsum(counts) - counts, counts)

@@ -3,13 +3,18 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from math import ceil, floor
 from typing import TYPE_CHECKING, ClassVar
 
+from develop.errors import Refusal
 from develop.pieces.common import Plate
 from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice
 from develop.pieces.fields import about
 from develop.sections.text import SectionSpec
 from develop.units import number_text
+
+# Shorter than this part of its largest size, a transition is a flat ring and not a side to be rolled.
+_FLATTEST = 1000.0
 
 if TYPE_CHECKING:
     from develop.pieces.built import Built
@@ -61,10 +66,44 @@ class Transition(Plate):
             for field, spec in (("end_a", self.end_a), ("end_b", self.end_b))
         )
         shift = self.offset if self.flush is None else self._level(a, b, self.flush)
-        return Band(
+        size = max(a.width, a.height, b.width, b.height)
+        if self.length < size / _FLATTEST:
+            raise Refusal(
+                field="length",
+                given=f"{number_text(self.length)} mm between ends of up to {number_text(round(size, 1))} mm "
+                "makes a side as good as flat",
+                allowed=f"{number_text(ceil(size / _FLATTEST * 10.0) / 10.0)} mm or more; "
+                "for less, a flat ring",
+            )
+        band = Band(
             Rim(a, Frame.square()),
             Rim(b, Frame.square(at=(*shift, self.length), rotate=self.rotate)),
             neutral_distance(thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line),
+        )
+        self._bend(band)
+        return band
+
+    def _bend(self, band: Band) -> None:
+        """Raises Refusal where the side is bent tighter than its wall allows."""
+        import numpy as np
+
+        from develop.pieces.wall import PLACES
+
+        inner = self.thickness * PLACES[self.sizes]
+        if inner == 0.0:
+            return
+        section = band.rim_a.section
+        radii = band.radii(section.at_direction(np.radians(np.arange(360.0))))
+        tightest = float(radii.min())
+        if tightest > inner:
+            return
+        end = "A" if radii[:, 0].min() <= radii[:, 1].min() else "B"
+        most = floor(self.thickness * tightest / inner * 10.0) / 10.0
+        raise Refusal(
+            field="thickness",
+            given=f"{number_text(self.thickness)} mm leaves no inside where the slanting side is bent to a "
+            f"radius of {tightest:.3g} mm, near END {end}",
+            allowed=f"{number_text(most)} mm or less, or a longer piece" if most > 0.0 else "a longer piece",
         )
 
     def _level(self, a: Section, b: Section, side: str) -> tuple[float, float]:

@@ -10,10 +10,12 @@ from develop.errors import InputError, Problem
 from develop.units import number_text, parse_length
 from develop.wording import listed, near_miss, shown
 
-__all__ = ["LARGEST", "SMALLEST", "SectionSpec", "parse_section"]
+__all__ = ["FLATTEST", "LARGEST", "SMALLEST", "SectionSpec", "parse_section"]
 
 SMALLEST = 0.1
 LARGEST = 100_000.0
+# Flatter than this an ellipse is a folded sheet; results are proven down to here.
+FLATTEST = 1000.0
 
 _FORMS = {
     "round": "round 400",
@@ -94,6 +96,11 @@ def _ellipse(text: str, rest: str, unit: str) -> SectionSpec:
     if len(sizes) != 2 or not all(size.strip() for size in sizes):
         raise _refused(f"{shown(text)} does not have two sizes", "ellipse 600 x 300; width, then height")
     width, height = (_size(text, size, unit) for size in sizes)
+    if max(width, height) > FLATTEST * min(width, height):
+        raise _refused(
+            f"{shown(text)} is flatter than 1 to {FLATTEST:g}",
+            f"width and height within 1 to {FLATTEST:g} of each other",
+        )
     return SectionSpec("ellipse", width, height, f"ellipse {number_text(width)} x {number_text(height)}")
 
 

@@ -11,15 +11,16 @@ from typing import Literal
 
 import numpy as np
 
-from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, nodes_of, tail
+from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, Mask, Panels, resolved, tail
 from develop.solid.end import End
 
 __all__ = ["Measures", "Solid", "Strip"]
 
 _BISECTIONS = 56
 _SAME = 1e-9
-# Panels are halved until what their nodes leave out is less than this part of the whole.
-_LOOSE = 2e-13
+# Panels are halved until what their nodes leave out is less than this part of the whole. Smaller
+# would only add the rounding of ever shorter panels.
+_LOOSE = 5e-12
 _ROUNDS = 8
 
 
@@ -96,27 +97,19 @@ class Solid:
         Between lines a→b and their neighbours the area is ½ (|R × a'| + |R × b'|) du, as one
         plane touches the side all along a line; a' and b' come from differentiating positions.
         """
-        ends = self._panel_ends()
-        start, end = ends[:-1], ends[1:]
-        totals, whole = np.zeros(3), None
-        for last in [False] * _ROUNDS + [True]:
-            half = 0.5 * (end - start)[:, None]
-            values = self._speeds(nodes_of(start, end), half[:, 0])
-            parts = (WEIGHTS @ values) * half
-            whole = parts.sum(axis=0) if whole is None else whole
-            loose = (tail(values) * half > _LOOSE * whole).any(axis=1) & (not last)
-            totals += parts[~loose].sum(axis=0)
-            if not loose.any():
-                break
-            middle = 0.5 * (start + end)[loose]
-            start, end = (
-                np.concatenate([start[loose], middle]),
-                np.concatenate([middle, end[loose]]),
-            )
+        first = Panels.between(self._panel_ends())
+        whole = ((WEIGHTS @ self._speeds(first)) * first.half[:, None]).sum(axis=0)
+
+        def loose(panels: Panels, speeds: Array) -> Mask:
+            return np.asarray((tail(speeds) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+
+        panels, speeds = resolved(first, self._speeds, loose, rounds=_ROUNDS)
+        totals = ((WEIGHTS @ speeds) * panels.half[:, None]).sum(axis=0)
         return Measures(*(float(total) for total in totals))
 
-    def _speeds(self, u: Array, half: Array) -> Array:
-        """Speeds of both edges and of the area by u, (m, k, 3), at nodes u (m, k)."""
+    def _speeds(self, panels: Panels) -> Array:
+        """Speeds of both edges and of the area by u, (m, ORDER, 3), at the panels' nodes."""
+        u, half = panels.nodes, panels.half
         shape = (*u.shape, 3)
         strip = self.strip(u.ravel())
         lift = self.distance * strip.normal

@@ -22,8 +22,9 @@ from develop.quadrature import (
     WEIGHTS,
     Array,
     Mask,
+    Panels,
     between,
-    nodes_of,
+    resolved,
     running,
     tail,
 )
@@ -69,25 +70,6 @@ class _Rulings:
     dphi_b: Array
     ds_a: Array
     ds_b: Array
-
-
-@dataclass(frozen=True)
-class _Panels:
-    """Panels of a walk: from `start` to `end` of the parameter of rim A or B, whichever `on_a` says."""
-
-    on_a: Mask
-    start: Array
-    end: Array
-
-    @property
-    def half(self) -> Array:
-        return 0.5 * (self.end - self.start)
-
-    def at(self, place: Place) -> Array:
-        return self.start[place.panel] + self.half[place.panel] * (place.x + 1.0)
-
-    def take(self, which: Mask) -> _Panels:
-        return _Panels(self.on_a[which], self.start[which], self.end[which])
 
 
 @dataclass(frozen=True)
@@ -185,6 +167,21 @@ class Band:
         """Lengths (n,) [mm] of the rulings through the points u (n,) of end A's section."""
         return self._rulings(True, u).length
 
+    def radii(self, u: Array) -> Array:
+        """Roll radii (n, 2) [mm] at ends A and B of the rulings through u (n,) of end A's section.
+
+        On the surface that carries the rims: ρ (R·W)² / (cos ψ |R|²), by Euler's formula for the
+        normal curvature square to a ruling.
+        """
+        return self._radii(self._rulings(True, u))
+
+    def _radii(self, r: _Rulings) -> Array:
+        rows = []
+        for rim, contact, over in ((self.rim_a, r.a, r.over), (self.rim_b, r.b, r.over_b)):
+            plane = rim.section.radius(contact.normal_x, contact.normal_y)
+            rows.append(plane * over**2 / (contact.cos_psi * r.length**2))
+        return np.stack(rows, axis=-1)
+
     def foot(self, u: Array) -> Array:
         """Parameters (n,) of end B's section on the rulings through u (n,) of end A's."""
         return self._foot(True, u)
@@ -197,13 +194,13 @@ class Band:
 
     # ---- the flat map -------------------------------------------------------------------
 
-    def _rates(self, panels: _Panels) -> Array:
+    def _rates(self, panels: Panels) -> Array:
         """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W."""
-        nodes = nodes_of(panels.start, panels.end)
+        nodes = panels.nodes
         m, k = nodes.shape
         rates = np.empty((m, k, 6))
         for on_a in (True, False):
-            which = panels.on_a == on_a
+            which = panels.kind == on_a
             if not which.any():
                 continue
             r = self._rulings(on_a, nodes[which].ravel())
@@ -232,38 +229,21 @@ class Band:
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
         size += float(np.linalg.norm(self.rim_b.frame.origin - self.rim_a.frame.origin))
         allowed = max(tolerance, 4e-14 * size)
-        order = np.arange(len(panels.start), dtype=float)
-        done: list[tuple[Array, _Panels, Array]] = []
-        for turn in range(_ROUNDS):
-            rates = self._rates(panels)
+
+        def loose(panels: Panels, rates: Array) -> Mask:
             half = panels.half[:, None]
             # Angles count by how far they swing the whole piece; R itself is used unintegrated.
             scale = np.concatenate([size * half, size * half, half, half, np.ones((len(half), 2))], axis=1)
             noise = 4e-14 * np.max(np.abs(rates), axis=1) * scale
-            unresolved = (tail(rates) * scale > np.maximum(allowed, noise)).any(axis=1)
-            if turn == _ROUNDS - 1:
-                unresolved[:] = False
-            done.append((order[~unresolved], panels.take(~unresolved), rates[~unresolved]))
-            if not unresolved.any():
-                break
-            rest = panels.take(unresolved)
-            middle = 0.5 * (rest.start + rest.end)
-            panels = _Panels(
-                np.concatenate([rest.on_a, rest.on_a]),
-                np.concatenate([rest.start, middle]),
-                np.concatenate([middle, rest.end]),
-            )
-            order = np.concatenate([order[unresolved], order[unresolved] + 0.5 ** (turn + 1)])
-        index = np.argsort(np.concatenate([part[0] for part in done]))
-        final = _Panels(
-            np.concatenate([part[1].on_a for part in done])[index],
-            np.concatenate([part[1].start for part in done])[index],
-            np.concatenate([part[1].end for part in done])[index],
-        )
-        return BandSheet(self, final, np.concatenate([part[2] for part in done])[index])
+            return np.asarray((tail(rates) * scale > np.maximum(allowed, noise)).any(axis=1))
 
-    def _first_panels(self, seam: float) -> _Panels:
-        """Panels that end at the breaks of both rims, B's pulled back to A, from the seam once round."""
+        return BandSheet(self, *resolved(panels, self._rates, loose, rounds=_ROUNDS))
+
+    def _first_panels(self, seam: float) -> Panels:
+        """Panels that end at the breaks of both rims, B's pulled back to A, from the seam once round.
+
+        Their kind is whether they are walked on rim A.
+        """
         a, b = self.rim_a.section, self.rim_b.section
         u_a = np.append(seam, a.breaks[:-1])
         u_b = self._foot(True, u_a)
@@ -280,10 +260,10 @@ class Band:
         # Walked from the rim whose contact moves farther, the other moves smoothly along. Where it
         # makes little difference end A is walked throughout, which is one pass instead of two.
         on_a = _FARTHER * np.diff(a.arc(ends_a)) >= np.diff(b.arc(ends_b))
-        return _Panels(
-            on_a,
+        return Panels(
             np.where(on_a, ends_a[:-1], ends_b[:-1]),
             np.where(on_a, ends_a[1:], ends_b[1:]),
+            on_a,
         )
 
 
@@ -299,7 +279,7 @@ class BandSheet:
     Unrolled by θ' = φ' sin ψ (the geodesic curvature of end A's edge) and P' along T and W.
     """
 
-    def __init__(self, band: Band, panels: _Panels, rates: Array) -> None:
+    def __init__(self, band: Band, panels: Panels, rates: Array) -> None:
         self.band = band
         self._panels = panels
         half = panels.half
@@ -352,8 +332,8 @@ class BandSheet:
 
     def lines(self, place: Place) -> Lines:
         panels = self._panels
-        u = panels.at(place)
-        on_a = panels.on_a[place.panel]
+        u = panels.start[place.panel] + panels.half[place.panel] * (place.x + 1.0)
+        on_a = panels.kind[place.panel]
         table = np.einsum("nk,nkc->nc", between(place.x), self._table[place.panel])
         if on_a.all() or not on_a.any():
             return self._lines(bool(on_a[0]) if len(on_a) else True, u, table)
@@ -385,7 +365,7 @@ class BandSheet:
             go, rise = r.ds_b + d * turn_b, -d * turn_b * along_b / r.over_b
             tw, ww = (np.einsum("ni,ni->n", b.across, v) for v in (a.tangent, a.across))
             tangent_b = _unit(flat(go * t + rise * tw, go * w + rise * ww))
-        square = r.length**2
+        radii = band._radii(r) + d
         return Lines(
             a=p,
             b=p + flat(r.along, r.over),
@@ -394,9 +374,8 @@ class BandSheet:
             arc_a=table[:, 4],
             arc_b=table[:, 5],
             turn=table[:, 1],
-            radius_a=band.rim_a.section.radius(a.normal_x, a.normal_y) * r.over**2 / (a.cos_psi * square) + d,
-            radius_b=band.rim_b.section.radius(b.normal_x, b.normal_y) * r.over_b**2 / (b.cos_psi * square)
-            + d,
+            radius_a=radii[:, 0],
+            radius_b=radii[:, 1],
             u_a=u if on_a else band.rim_a.section.parameter(a.normal_x, a.normal_y),
             length=r.length,
         )
@@ -406,7 +385,7 @@ class BandSheet:
         """Parameters of both rims at the panels' ends, (m + 1,) each, growing from the seam."""
         panels, band = self._panels, self.band
         mine = np.append(panels.start, panels.end[-1])
-        on_a = np.append(panels.on_a, panels.on_a[-1])
+        on_a = np.append(panels.kind, panels.kind[-1])
         spans = []
         for side, section in ((True, band.rim_a.section), (False, band.rim_b.section)):
             u = mine.copy()
@@ -431,7 +410,7 @@ class BandSheet:
         local = ends[0] + _past(u, ends[0], mine.period)
         panel = np.clip(np.searchsorted(ends, local, side="right") - 1, 0, len(ends) - 2)
         walked = local.copy()
-        cross = panels.on_a[panel] != side
+        cross = panels.kind[panel] != side
         if cross.any():
             foot = band._foot(side, u[cross])
             start = panels.start[panel[cross]]

@@ -11,13 +11,16 @@ from math import atan2, degrees, hypot
 
 import numpy as np
 
-from develop.quadrature import ORDER, WEIGHTS, Array, between, halves, nodes_of, running
-from develop.sections.section import Section
+from develop.quadrature import WEIGHTS, Array, Mask, Panels, between, resolved, running, tail
+from develop.sections.section import Section, Walk
 from develop.surfaces.sheet import Lines, Place
 
 __all__ = ["Cylinder", "CylinderSheet", "Trim"]
 
 _SAME = 1e-9
+# What a panel's nodes leave out, in parts of the girth.
+_LOOSE = 1e-14
+_ROUNDS = 40
 
 
 @dataclass(frozen=True)
@@ -110,23 +113,35 @@ class CylinderSheet:
             last = float(moved.at_arc(start + moved.girth + beyond)[0]) - seam
             further = ends[1:-1] + section.period
             ends = np.concatenate([ends, further[further < last - _SAME], [last]])
-        self._ends = seam + ends
-        self._half = halves(self._ends)
-        nodes = nodes_of(self._ends[:-1], self._ends[1:])
-        at = section.walk(nodes)
-        go = at.ds + cylinder.distance * at.dphi
-        heights = []
-        speeds = [go]
-        for trim in (cylinder.trim_a, cylinder.trim_b):
-            climb = at.ds * (-trim.rise[0] * at.ey + trim.rise[1] * at.ex)
-            heights.append(trim.at(at.x, at.y))
-            speeds.append(np.sqrt(go * go + climb * climb))
-        self._columns, last_row = running(
-            np.stack([*speeds, at.dphi], axis=-1).reshape(-1, ORDER, 4), self._half
+        whole = section.girth + 2.0 * np.pi * cylinder.distance
+
+        def loose(panels: Panels, rates: Array) -> Mask:
+            unresolved = tail(rates[..., :3]) * panels.half[:, None]
+            return np.asarray((unresolved > _LOOSE * whole).any(axis=1))
+
+        self._panels, rates = resolved(Panels.between(seam + ends), self._rates, loose, rounds=_ROUNDS)
+        self._half = self._panels.half
+        self._columns, totals = running(rates[..., :4], self._half)
+        self.edge_a, self.edge_b = float(totals[-1, 1]), float(totals[-1, 2])
+        self.area = float(np.sum(self._half * (rates[..., 4] @ WEIGHTS)))
+
+    def _rates(self, panels: Panels) -> Array:
+        """At the nodes (m, ORDER, 5): rates of the stretch-out, edges A and B, turn and area."""
+        at = self.cylinder.section.walk(panels.nodes)
+        go = at.ds + self.cylinder.distance * at.dphi
+        (low, climb_a), (high, climb_b) = (
+            _trimmed(trim, at) for trim in (self.cylinder.trim_a, self.cylinder.trim_b)
         )
-        self.edge_a, self.edge_b = float(last_row[-1, 1]), float(last_row[-1, 2])
-        self.turn = 0.0
-        self.area = float(np.sum(self._half * (((heights[1] - heights[0]) * go) @ WEIGHTS)))
+        return np.stack(
+            [
+                go,
+                np.sqrt(go * go + climb_a * climb_a),
+                np.sqrt(go * go + climb_b * climb_b),
+                at.dphi,
+                (high - low) * go,
+            ],
+            axis=-1,
+        )
 
     @property
     def ends(self) -> Place:
@@ -135,14 +150,13 @@ class CylinderSheet:
 
     def lines(self, place: Place) -> Lines:
         cylinder, section, d = self.cylinder, self.cylinder.section, self.cylinder.distance
-        u = self._ends[place.panel] + self._half[place.panel] * (place.x + 1.0)
+        u = self._panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
         at = section.walk(u)
         row = np.einsum("nk,nkc->nc", between(place.x), self._columns[place.panel])
         go = at.ds + d * at.dphi
         ends, tangents = [], []
         for trim in (cylinder.trim_a, cylinder.trim_b):
-            z = trim.at(at.x, at.y)
-            climb = at.ds * (-trim.rise[0] * at.ey + trim.rise[1] * at.ex)
+            z, climb = _trimmed(trim, at)
             size = np.sqrt(go * go + climb * climb)
             ends.append(np.stack([row[:, 0], z], axis=-1))
             tangents.append(np.stack([go / size, climb / size], axis=-1))
@@ -164,10 +178,15 @@ class CylinderSheet:
     def from_a(self, u: Array) -> Place:
         period = self.cylinder.section.period
         past = (np.asarray(u, dtype=float) - self._seam) % period
-        past = np.where(past > period * (1.0 - _SAME), 0.0, past)
-        local = self._seam + past
-        panel = np.clip(np.searchsorted(self._ends, local, side="right") - 1, 0, len(self._half) - 1)
-        return Place(panel, np.clip((local - self._ends[panel]) / self._half[panel] - 1.0, -1.0, 1.0))
+        local = self._seam + np.where(past > period * (1.0 - _SAME), 0.0, past)
+        start = self._panels.start
+        panel = np.clip(np.searchsorted(start, local, side="right") - 1, 0, len(start) - 1)
+        return Place(panel, np.clip((local - start[panel]) / self._half[panel] - 1.0, -1.0, 1.0))
 
     def from_b(self, u: Array) -> Place:
         return self.from_a(u)
+
+
+def _trimmed(trim: Trim, at: Walk) -> tuple[Array, Array]:
+    """Height of the trim and its rate along the section, at a walk."""
+    return trim.at(at.x, at.y), at.ds * (trim.rise[1] * at.ex - trim.rise[0] * at.ey)

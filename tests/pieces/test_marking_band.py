@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import cos, pi, sin, tan, radians
+from math import cos, pi, radians, sin, tan
 
 import numpy as np
 import pytest

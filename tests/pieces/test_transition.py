@@ -154,3 +154,25 @@ def test_a_wall_with_no_inside_is_refused_naming_the_end() -> None:
     with pytest.raises(InputError) as caught:
         make("transition", end_a="round 400", end_b="round 10", length=450, thickness=12, sizes="outside")
     assert "end_b" in str(caught.value)
+
+
+@pytest.mark.parametrize("sizes", ["mean", "outside"])
+def test_a_side_bent_tighter_than_its_wall_is_refused_with_what_works(sizes: str) -> None:
+    # Elementary: a cone's roll radius is its radius over the cosine of its lean. Here the side also
+    # slants so far sideways that it is bent tighter than either end.
+    given = {"end_a": "round 668.3", "end_b": "round 60", "length": 87.1, "offset": [316.7, -160.1]}
+    make("transition", **given, thickness=12.6, sizes="inside")
+    with pytest.raises(InputError) as caught:
+        make("transition", **given, thickness=25, sizes=sizes)
+    (problem,) = caught.value.problems
+    assert problem.field == "thickness"
+    most = float(problem.allowed.split()[0])
+    make("transition", **given, thickness=most, sizes=sizes)
+
+
+def test_a_transition_as_good_as_flat_is_refused_with_the_least_length() -> None:
+    with pytest.raises(InputError) as caught:
+        make("transition", end_a="round 394", end_b="round 219", length=0.3)
+    (problem,) = caught.value.problems
+    assert problem.field == "length"
+    make("transition", end_a="round 394", end_b="round 219", length=float(problem.allowed.split()[0]))

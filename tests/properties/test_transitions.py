@@ -19,7 +19,7 @@ from develop.pieces.transition import Transition
 from develop.sections.text import SectionSpec, parse_section
 from develop.solid import Solid
 from develop.surfaces.edges import TOLERANCE, edges
-from develop.surfaces.sheet import Lines, Place, Sheet
+from develop.surfaces.sheet import Place, Sheet
 
 Array = NDArray[np.float64]
 
@@ -95,10 +95,9 @@ def test_edges_equal_the_girths(piece: Transition) -> None:
 )
 def test_every_check_holds(piece: Transition, face: str, sizes: str, line: float, share: float) -> None:
     """For any thickness that leaves an inside; only a flat that truly overlaps itself says so."""
-    tightest = min(
-        min(each.width, each.height) ** 2 / max(each.width, each.height) / 2.0
-        for each in (piece.end_a, piece.end_b)
-    )
+    sheet = piece.surface().sheet(0.0)
+    lines = sheet.lines(places(sheet, 12))
+    tightest = min(float(lines.radius_a.min()), float(lines.radius_b.min()))
     thickness = round(min(20.0, share * tightest), 3)
     piece = replace(piece, face=face, sizes=sizes, neutral_line=line, thickness=thickness)
     built = piece.build()
@@ -107,7 +106,7 @@ def test_every_check_holds(piece: Transition, face: str, sizes: str, line: float
     assert len(checks) >= 8
     assert [each for each in checks if not each.holds and each.name != CROSSING] == []
     (crossing,) = (each for each in checks if each.name == CROSSING)
-    ring = np.vstack([curve.polyline(1e-3)[:-1] for _, curve in pattern.cut.curves])
+    ring = np.vstack([curve.polyline(0.01)[:-1] for _, curve in pattern.cut.curves])
     event(f"overlaps itself: {not crossing.holds}")
     assert crossing.holds == Polygon(ring).is_valid
 
@@ -121,37 +120,37 @@ def test_drawn_edges_lie_on_the_exact_ones(piece: Transition) -> None:
         (edges(sheet)[0], lines.a, lines.tangent_a, lines.arc_a),
         (edges(sheet)[1], lines.b, lines.tangent_b, lines.arc_b),
     ):
-        t = np.linspace(0.0, 1.0, 33)
-        first = np.arange(0, len(chain) - 1, 3)
-        p = chain[first[:, None] + np.arange(4)]
-        drawn = np.vstack(
-            [
-                (1 - t)[:, None] ** 3 * q[0]
-                + 3 * ((1 - t) ** 2 * t)[:, None] * q[1]
-                + 3 * ((1 - t) * t**2)[:, None] * q[2]
-                + t[:, None] ** 3 * q[3]
-                for q in p
-            ]
-        )
-        # Running length along what is drawn finds the exact point beside it.
-        along = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(drawn, axis=0).T))])
-        along *= arcs[-1] / along[-1]
-        beside = np.clip(np.searchsorted(along, arcs), 1, len(along) - 1)
-        near = np.minimum(
-            distance_to_segment(points, drawn[beside - 1], drawn[beside]),
-            np.minimum(
-                distance_to_segment(points, drawn[np.maximum(beside - 2, 0)], drawn[beside - 1]),
-                distance_to_segment(points, drawn[beside], drawn[np.minimum(beside + 1, len(drawn) - 1)]),
-            ),
-        )
-        # A chord of 1/32 of a Bézier lies within 1/1024 of its sagitta of it.
-        sagitta = np.abs(drawn[1::2][: len(drawn) // 2 - 1] - 0.5 * (drawn[:-2:2] + drawn[2::2])[: len(drawn) // 2 - 1])
-        assert near.max() <= 1.05 * TOLERANCE + sagitta.max()
+        # The fit is tried at three points inside each Bézier; between them it may pass a little.
+        assert distance_from_chain(points, chain, arcs).max() <= 1.1 * TOLERANCE
         # End points and end directions are exact.
         assert np.hypot(*(chain[0] - points[0])) < 1e-9
         assert np.hypot(*(chain[-1] - points[-1])) < 1e-9
         for tip, tangent in ((chain[1] - chain[0], tangents[0]), (chain[-1] - chain[-2], tangents[-1])):
             assert abs(tip[0] * tangent[1] - tip[1] * tangent[0]) < 1e-9 * np.hypot(*tip) + 1e-12
+
+
+def distance_from_chain(points: Array, chain: Array, arcs: Array) -> Array:
+    """Distance (n,) of points that lie along a chain of Béziers, given their running lengths."""
+    p = chain[np.arange(0, len(chain) - 1, 3)[:, None] + np.arange(4)]
+    steps = 16
+    samples = np.array([bezier(p, np.full(len(p), k / steps))[0] for k in range(steps)])
+    drawn = np.vstack([samples.transpose(1, 0, 2).reshape(-1, 2), chain[-1:]])
+    along = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(drawn, axis=0).T))])
+    beside = np.interp(arcs / arcs[-1], along / along[-1], np.arange(len(along)) / steps)
+    piece = np.clip(beside.astype(int), 0, len(p) - 1)
+    t = beside - piece
+    for _ in range(6):
+        at, speed = bezier(p[piece], t)
+        t = np.clip(t - ((at - points) * speed).sum(axis=1) / (speed * speed).sum(axis=1), -0.05, 1.05)
+    return np.asarray(np.hypot(*(bezier(p[piece], t)[0] - points).T))
+
+
+def bezier(p: Array, t: Array) -> tuple[Array, Array]:
+    """Points and derivatives (n, 2) of Béziers (n, 4, 2) at t (n,)."""
+    s, t = (1.0 - t)[:, None], t[:, None]
+    at = s**3 * p[:, 0] + 3 * s * s * t * p[:, 1] + 3 * s * t * t * p[:, 2] + t**3 * p[:, 3]
+    slopes = (p[:, 1] - p[:, 0], p[:, 2] - p[:, 1], p[:, 3] - p[:, 2])
+    return at, 3.0 * (s * s * slopes[0] + 2.0 * s * t * slopes[1] + t * t * slopes[2])
 
 
 def distance_to_segment(points: Array, start: Array, end: Array) -> Array:
@@ -179,7 +178,9 @@ def test_rulings_and_the_angles_at_their_ends_keep_from_space_to_flat(piece: Tra
     assert np.abs(np.hypot(*r.T) - lines.length).max() < 1e-11 * size
     for edge in "ab":
         flat = (getattr(lines, f"tangent_{edge}") * r).sum(axis=1)
-        assert np.abs(flat - (tangent_in_space(solid, edge, space.normal) * R).sum(axis=1)).max() < 1e-9 * size
+        assert (
+            np.abs(flat - (tangent_in_space(solid, edge, space.normal) * R).sum(axis=1)).max() < 1e-9 * size
+        )
 
 
 def tangent_in_space(solid: Solid, edge: str, normal: Array) -> Array:
@@ -207,7 +208,10 @@ def test_lines_and_diagonals_of_the_pattern_against_the_solid(piece: Transition)
     # bends: at most about (arc · turn) · turn / 8 of the strip.
     turn = np.array([line.turn for line in pattern.lines[1:]])
     arc = np.maximum(np.diff([row.arc_a for row in rows]), np.diff([row.arc_b for row in rows]))
-    for start, end, s, e in ((a[:-1], b[1:], space.a[:-1], space.b[1:]), (b[:-1], a[1:], space.b[:-1], space.a[1:])):
+    for start, end, s, e in (
+        (a[:-1], b[1:], space.a[:-1], space.b[1:]),
+        (b[:-1], a[1:], space.b[:-1], space.a[1:]),
+    ):
         longer = np.hypot(*(end - start).T) - np.linalg.norm(e - s, axis=1)
         assert longer.min() > -1e-10 * size
         assert np.all(longer <= arc * turn * np.maximum(turn, 1e-3) / 2.0 + 1e-10 * size)
@@ -223,9 +227,10 @@ def test_marks_stand_where_the_solid_says(piece: Transition) -> None:
         curve = pattern.net.curve(mark.edge)
         assert curve is not None
         points = curve.polyline(1e-4)
-        assert distance_to_segment(
-            np.broadcast_to(mark.at, (len(points) - 1, 2)), points[:-1], points[1:]
-        ).min() < 4e-4
+        assert (
+            distance_to_segment(np.broadcast_to(mark.at, (len(points) - 1, 2)), points[:-1], points[1:]).min()
+            < 4e-4
+        )
     names = {(mark.text, mark.edge) for mark in pattern.marks}
     assert names == {(text, edge) for text in ("RIGHT", "TOP", "LEFT", "BOTTOM") for edge in "ab"}
     # On end A, TOP lies a quarter of the girth from RIGHT, where the seam is.
@@ -375,15 +380,12 @@ def test_inside_up_is_the_mirror_image(piece: Transition) -> None:
         [line.turn for line in one.lines[:0:-1]], abs=1e-12
     )
     assert two.lines[0].turn == one.lines[0].turn == 0.0
-    key = {(mark.text, mark.edge, *np.round(mirrored(mark.at), 6)) for mark in one.marks}
-    assert {(mark.text, mark.edge, *np.round(mark.at, 6)) for mark in two.marks} <= {
-        (text, edge, x + dx, y + dy)
-        for text, edge, x, y in key
-        for dx in (-1e-6, 0.0, 1e-6)
-        for dy in (-1e-6, 0.0, 1e-6)
-    } | key or np.allclose(
-        sorted(k[2] for k in key), sorted(float(mark.at[0]) for mark in two.marks), atol=2e-6
-    )
+    assert len(two.marks) == len(one.marks)
+    for mark in one.marks:
+        twins = [twin for twin in two.marks if (twin.text, twin.edge) == (mark.text, mark.edge)]
+        gap, twin = min((float(np.hypot(*(twin.at - mirrored(mark.at)))), n) for n, twin in enumerate(twins))
+        assert gap < 1e-9 * size
+        assert np.abs(twins[twin].inward - mark.inward * np.array([-1.0, 1.0])).max() < 1e-9
 
 
 # ---- signs --------------------------------------------------------------------------------
@@ -511,11 +513,9 @@ def test_flush_levels_that_side(piece: Transition, side: tuple[str, int, float])
     assert abs(solid.end_b.origin[1 - axis]) < 1e-9
 
 
-def test_lines_of_a_right_cone_frustum() -> None:
-    """Sanity of the helper that moves points: a rotation is no mirror image, and the other way round."""
+def test_congruence_tells_a_mirror_image_from_a_turned_one() -> None:
     points = np.array([[0.0, 0.0], [2.0, 0.0], [0.0, 1.0]])
     turned = points @ np.array([[0.6, 0.8], [-0.8, 0.6]]) + 7.0
     assert congruence(points, turned, mirrored=False) < 1e-12
     assert congruence(points, turned * np.array([-1.0, 1.0]), mirrored=True) < 1e-12
     assert congruence(points, turned, mirrored=True) > 0.1
-    assert isinstance(Lines, type)

@@ -32,9 +32,7 @@ def test_table_17_6(phi: int, alpha: int, expected: float) -> None:
     assert arcs[0] - arcs[2] == pytest.approx(expected, rel=0, abs=LAST_DIGIT_OF_17_6)
     # Standing upright, the short axis ends at the right, where running lengths start.
     upright = Ellipse(width=2.0 * short, height=2.0)
-    assert upright.arc(np.array([radians(phi)]))[0] == pytest.approx(
-        expected, rel=0, abs=LAST_DIGIT_OF_17_6
-    )
+    assert upright.arc(np.array([radians(phi)]))[0] == pytest.approx(expected, rel=0, abs=LAST_DIGIT_OF_17_6)
 
 
 @pytest.mark.parametrize(

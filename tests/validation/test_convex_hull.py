@@ -40,6 +40,7 @@ class Placed:
     @property
     def axes(self) -> tuple[Array, Array]:
         """Half axes as vectors: turned in the level, then leant towards `long`."""
+
         def leant(v: Array) -> Array:
             towards = np.array([cos(radians(self.long)), sin(radians(self.long)), 0.0])
             up, along = np.array([0.0, 0.0, 1.0]), float(v @ towards)
@@ -156,4 +157,6 @@ def test_points_joined_at_equal_angles_are_another_surface() -> None:
 def test_cone_closed_form() -> None:
     """A right cone, so that the extrapolation itself is seen to be right: area π r s."""
     one, other = Placed(300, 300, (0, 0, 0)), Placed(0, 0, (0, 0, 400))
-    assert extrapolated(one, other, 60)[0] == pytest.approx(np.pi * 300.0 * sqrt(300.0**2 + 400.0**2), rel=1e-11)
+    assert extrapolated(one, other, 60)[0] == pytest.approx(
+        np.pi * 300.0 * sqrt(300.0**2 + 400.0**2), rel=1e-11
+    )

@@ -52,7 +52,9 @@ def test_oblique_cut_cylinder_p_89() -> None:
 
 def test_cone_p_90() -> None:
     """Diameter 6, height 4: area 47.124, slant 5, so the flat is a fan of 216 degrees."""
-    band = Band(Rim(Ellipse(width=6.0, height=6.0), Frame.square()), Rim(Point(), Frame.square(at=(0.0, 0.0, 4.0))))
+    band = Band(
+        Rim(Ellipse(width=6.0, height=6.0), Frame.square()), Rim(Point(), Frame.square(at=(0.0, 0.0, 4.0)))
+    )
     sheet = band.sheet(0.0)
     assert sheet.area == pytest.approx(47.124, rel=0, abs=5e-4)
     assert sheet.area == pytest.approx(15.0 * pi, rel=1e-13)

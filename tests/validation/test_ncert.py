@@ -39,7 +39,9 @@ def test_question_2_frustum_from_its_girths() -> None:
 def test_tin_funnel() -> None:
     """A pipe of 8, 10 long, on a cone from 18 to 8, height 12: 781.86 with π = 3.14, that is 249 π."""
     cone = frustum(9.0, 4.0, 12.0)
-    pipe = Cylinder(Ellipse(width=8.0, height=8.0), Trim(0.0, np.zeros(2)), Trim(10.0, np.zeros(2))).sheet(0.0)
+    pipe = Cylinder(Ellipse(width=8.0, height=8.0), Trim(0.0, np.zeros(2)), Trim(10.0, np.zeros(2))).sheet(
+        0.0
+    )
     assert cone.area + pipe.area == pytest.approx(249.0 * pi, rel=1e-13)
     assert (cone.area + pipe.area) * 3.14 / pi == pytest.approx(781.86, abs=5e-3)
     assert radii(cone) == pytest.approx((23.4, 10.4), rel=1e-13)

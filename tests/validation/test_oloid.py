@@ -20,7 +20,9 @@ from develop.surfaces.band import Band
 
 def circles(apart: float) -> tuple[Rim, Rim]:
     """Unit circles: one about the origin in z = 0, one standing on edge, its centre `apart` to the right."""
-    standing = Frame(np.array([apart, 0.0, 0.0]), np.array([[1.0, 0.0, 0.0], [0.0, 0.0, 1.0], [0.0, -1.0, 0.0]]))
+    standing = Frame(
+        np.array([apart, 0.0, 0.0]), np.array([[1.0, 0.0, 0.0], [0.0, 0.0, 1.0], [0.0, -1.0, 0.0]])
+    )
     unit = Ellipse(width=2.0, height=2.0)
     return Rim(unit, Frame.square()), Rim(unit, standing)
 

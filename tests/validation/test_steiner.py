@@ -46,7 +46,9 @@ def test_inward_down_to_the_tightest_radius_and_no_further(width: float, height:
     tightest = min(width, height) ** 2 / max(width, height) / 2.0
     assert section.least_radius == pytest.approx(tightest, rel=1e-15)
     inside = section.offset(-0.999 * tightest)
-    assert section.girth - inside.girth == pytest.approx(2.0 * pi * 0.999 * tightest, abs=2e-13 * section.girth)
+    assert section.girth - inside.girth == pytest.approx(
+        2.0 * pi * 0.999 * tightest, abs=2e-13 * section.girth
+    )
     assert inside.least_radius == pytest.approx(0.001 * tightest, rel=1e-9)
     with pytest.raises(Refusal, match="tightest radius"):
         section.offset(-1.001 * tightest)
