@@ -79,4 +79,4 @@ def _files(ending: str, piece: Piece, built: Built, checks: tuple[Check, ...]) -
         return {f"{mark}.json": data}
     from develop.outputs.picture import picture
 
-    return {f"{mark}.png": picture(built.solid, mark)}
+    return {f"{mark}.png": picture(built.solid, f"{mark}: {built.patterns[0].facts[1]}")}

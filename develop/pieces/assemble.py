@@ -16,7 +16,7 @@ from develop.surfaces.sheet import Lines, Place, Sheet
 
 __all__ = ["Wording", "pattern_of", "seam_parameter"]
 
-_FOLD_MISS = 2e-3
+_FOLD_MISS = 4e-3
 _MOST_CHANGE = 6.0
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 _DIRECTIONS: Array = 0.5 * pi * np.arange(4.0)
@@ -78,15 +78,14 @@ def pattern_of(
     """
     moved = section_a.offset(distance)
     ends = sheet.ends
-    at_ends = sheet.lines(ends)
     steps = np.arange(divisions) / divisions
     # Every ruling that is asked for, in one walk.
     wanted = [
-        sheet.from_a(moved.at_arc(moved.arc(at_ends.u_a[:1]) + steps * moved.girth)),
+        sheet.from_a(moved.at_arc(moved.arc(sheet.at_ends.u_a[:1]) + steps * moved.girth)),
         sheet.from_a(section_a.at_direction(_DIRECTIONS)),
         sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b)),
         ends[np.array([0, -1])],
-        _dense(ends, at_ends),
+        _dense(ends, sheet.at_ends),
     ]
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
     found = sheet.lines(

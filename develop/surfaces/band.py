@@ -320,8 +320,8 @@ class BandSheet:
             cross = point[..., 0] * rate[..., 1] - point[..., 1] * rate[..., 0]
             return float(np.sum(half * (cross @ WEIGHTS)))
 
-        corner = self.lines(self.ends[np.array([0, -1])])
-        (a0, a1), (b0, b1) = corner.a, corner.b
+        self.at_ends = self.lines(self.ends)
+        a0, a1, b0, b1 = *self.at_ends.a[[0, -1]], *self.at_ends.b[[0, -1]]
         seams = a1[0] * b1[1] - a1[1] * b1[0] - (a0[0] * b0[1] - a0[1] * b0[0])
         self.area = 0.5 * (swept(p, step[..., :2]) - swept(q, q_step) + float(seams))
 

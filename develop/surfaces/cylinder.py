@@ -124,6 +124,7 @@ class CylinderSheet:
         self._columns, totals = running(rates[..., :4], self._half)
         self.edge_a, self.edge_b = float(totals[-1, 1]), float(totals[-1, 2])
         self.area = float(np.sum(self._half * (rates[..., 4] @ WEIGHTS)))
+        self.at_ends = self.lines(self.ends)
 
     def _rates(self, panels: Panels) -> Array:
         """At the nodes (m, ORDER, 5): rates of the stretch-out, edges A and B, turn and area."""

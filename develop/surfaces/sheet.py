@@ -53,11 +53,16 @@ class Lines:
 
 
 class Sheet(Protocol):
-    """A surface slit along its seam and laid flat, end A at the bottom, outside up."""
+    """A surface slit along its seam and laid flat, end A at the bottom, outside up.
+
+    area [mm²] and edge_a, edge_b, the lengths of its edges [mm], are exact. at_ends: the rulings
+    at the panels' `ends`.
+    """
 
     area: float
     edge_a: float
     edge_b: float
+    at_ends: Lines
 
     @property
     def ends(self) -> Place:

@@ -1,0 +1,108 @@
+"""The documents say what the program does today."""
+
+from __future__ import annotations
+
+import importlib.util
+import re
+import shlex
+import sys
+from pathlib import Path
+
+import pytest
+
+from develop.cli.main import main
+from develop.pieces import KINDS, kind_of
+from develop.pieces.reference import kinds_page
+
+ROOT = Path(__file__).resolve().parent.parent
+DOCS = ROOT / "docs"
+PAGES = [ROOT / "README.md", ROOT / "DEVELOPERS.md", *sorted(DOCS.glob("*.md"))]
+
+
+def figure(name: str):
+    spec = importlib.util.spec_from_file_location(f"figure_{name}", DOCS / "figures" / f"{name}.py")
+    assert spec is not None
+    assert spec.loader is not None
+    module = importlib.util.module_from_spec(spec)
+    sys.modules[spec.name] = module
+    spec.loader.exec_module(module)
+    return module
+
+
+def test_the_reference_page_is_made_from_the_declarations() -> None:
+    assert (DOCS / "kinds.md").read_text(encoding="utf-8") == kinds_page()
+
+
+def test_the_accuracy_page_shows_what_its_script_finds() -> None:
+    text = (DOCS / "accuracy.md").read_text(encoding="utf-8")
+    assert figure("accuracy").page(text) == text
+
+
+def test_the_accuracy_page_tells_the_truth_about_its_methods() -> None:
+    # Stepping n chords round a circle of diameter 400 loses girth by elementary geometry.
+    from math import pi, sin
+
+    for miss in figure("accuracy").misses((12, 24, 96)):
+        n = miss.divisions
+        assert miss.short_b == pytest.approx(400 * pi - n * 400 * sin(pi / n), rel=1e-9)
+        assert miss.short_a > 0
+
+
+@pytest.mark.parametrize("name", ["accuracy", "directions", "demo"])
+def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
+    file = tmp_path / "figure.png"
+    figure(name).plot(file)
+    assert file.read_bytes().startswith(b"\x89PNG")
+
+
+@pytest.mark.parametrize("page", PAGES, ids=lambda page: page.name)
+def test_links_and_pictures_lead_somewhere(page: Path) -> None:
+    for target in re.findall(r"\]\(([^)#]+)\)", page.read_text(encoding="utf-8")):
+        assert (page.parent / target).exists(), target
+
+
+def commands(page: Path) -> list[str]:
+    """Commands of `develop` in the page's shell blocks, continued lines joined."""
+    found = []
+    for block in re.findall(r"```sh\n(.*?)```", page.read_text(encoding="utf-8"), re.DOTALL):
+        for line in block.replace("\\\n", " ").splitlines():
+            at = re.search(r"(?:^|&& |\.venv/bin/)develop (?=[a-z])(.*)$", line)
+            if at and not line.startswith("#"):
+                found.append(at[1])
+    return found
+
+
+@pytest.mark.parametrize("page", PAGES, ids=lambda page: page.name)
+def test_every_command_of_the_documents_runs(page: Path, tmp_path: Path, monkeypatch) -> None:
+    monkeypatch.chdir(tmp_path)
+    (tmp_path / "patterns").symlink_to(ROOT / "patterns")
+    for command in commands(page):
+        words = [word.split("#")[0] for word in shlex.split(command, comments=True)]
+        assert main(words) == 0, command
+
+
+def test_the_readme_has_commands_to_run() -> None:
+    assert len(commands(ROOT / "README.md")) >= 2
+
+
+@pytest.mark.parametrize("kind", sorted(KINDS))
+def test_every_kind_has_an_example_that_runs(kind: str, tmp_path: Path, monkeypatch) -> None:
+    from develop.pieces.reference import command_line, job_text
+
+    monkeypatch.chdir(tmp_path)
+    words = shlex.split(command_line(kind_of(kind)))
+    assert main([*words[1:], "--formats", "json"]) == 0
+    (tmp_path / "job.toml").write_text(job_text(kind_of(kind)), encoding="utf-8")
+    assert main(["job", "job.toml", "-o", "again", "--formats", "json"]) == 0
+    (first,) = (tmp_path / "out").iterdir()
+    assert first.read_bytes() == (tmp_path / "again" / first.name).read_bytes()
+
+
+def test_the_job_file_page_shows_a_job_that_reads(tmp_path: Path) -> None:
+    from develop.job.file import read_job
+
+    text = (DOCS / "job_file.md").read_text(encoding="utf-8")
+    (block,) = re.findall(r"```toml\n(.*?)```", text, re.DOTALL)
+    file = tmp_path / "plant.toml"
+    file.write_text(block, encoding="utf-8")
+    assert [placed.piece.mark for placed in read_job(str(file)).pieces] == ["T1", "S1"]
