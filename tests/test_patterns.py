@@ -59,7 +59,17 @@ def test_the_demo_runs_from_the_command_line_and_gives_the_same_bytes_again(tmp_
     folders = [tmp_path / "first", tmp_path / "second"]
     for folder in folders:
         done = subprocess.run(
-            [sys.executable, "-m", "develop", "job", str(job), "-o", str(folder), "--formats", "svg,pdf,json"],
+            [
+                sys.executable,
+                "-m",
+                "develop",
+                "job",
+                str(job),
+                "-o",
+                str(folder),
+                "--formats",
+                "svg,pdf,json",
+            ],
             capture_output=True,
             text=True,
             check=False,
@@ -67,7 +77,9 @@ def test_the_demo_runs_from_the_command_line_and_gives_the_same_bytes_again(tmp_
         assert done.returncode == 0, done.stderr
     names = sorted(file.name for file in folders[0].iterdir())
     assert names == sorted(
-        f"{mark}.{ending}" for mark in ("M1", "M2", "T1", "T2", "B1", "P1") for ending in ("svg", "pdf", "json")
+        f"{mark}.{ending}"
+        for mark in ("M1", "M2", "T1", "T2", "B1", "P1")
+        for ending in ("svg", "pdf", "json")
     )
     for name in names:
         assert (folders[0] / name).read_bytes() == (folders[1] / name).read_bytes(), name

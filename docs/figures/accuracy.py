@@ -123,7 +123,8 @@ def misses(divisions: tuple[int, ...]) -> list[Miss]:
 def table() -> str:
     """The table of docs/accuracy.md."""
     rows = [
-        "| divisions | END A's edge short by | END B's edge short by | out by, best pairing | out by, equal parts |",
+        "| divisions | END A's edge short by | END B's edge short by "
+        "| out by, best pairing | out by, equal parts |",
         "|---|---|---|---|---|",
     ]
     rows += [
