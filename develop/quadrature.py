@@ -157,16 +157,16 @@ def between(x: Array) -> Array:
 
 @dataclass(frozen=True)
 class Panels:
-    """Panels (m,) from start to end; kind is a mark that both halves of a panel inherit."""
+    """Panels (m,) from start to end; origin is a number that both halves of a panel inherit."""
 
     start: Array
     end: Array
-    kind: Mask
+    origin: Indices
 
     @staticmethod
     def between(ends: Array) -> Panels:
-        """The panels between ends (m + 1,), all of one kind."""
-        return Panels(ends[:-1], ends[1:], np.ones(len(ends) - 1, dtype=bool))
+        """The panels between ends (m + 1,), numbered in order."""
+        return Panels(ends[:-1], ends[1:], np.arange(len(ends) - 1))
 
     @property
     def half(self) -> Array:
@@ -180,7 +180,7 @@ class Panels:
 
     def take(self, which: Mask | Indices) -> Panels:
         """Some of the panels."""
-        return Panels(self.start[which], self.end[which], self.kind[which])
+        return Panels(self.start[which], self.end[which], self.origin[which])
 
     def halved(self) -> Panels:
         """First halves, then second halves, (2 m,)."""
@@ -188,7 +188,7 @@ class Panels:
         return Panels(
             np.concatenate([self.start, middle]),
             np.concatenate([middle, self.end]),
-            np.concatenate([self.kind, self.kind]),
+            np.concatenate([self.origin, self.origin]),
         )
 
 
@@ -222,7 +222,7 @@ def resolved(
     whole = Panels(
         np.concatenate([each.start for each in parts]),
         np.concatenate([each.end for each in parts]),
-        np.concatenate([each.kind for each in parts]),
+        np.concatenate([each.origin for each in parts]),
     )
     return whole.take(index), np.concatenate([part[2] for part in done])[index]
 

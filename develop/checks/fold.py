@@ -108,7 +108,7 @@ def _flat_axes(axis: Array) -> Array:
 def _seam_axes(solid: Solid) -> Array:
     """The same three on the finished piece's seam, (3, 3)."""
     strip = solid.strip(np.array([solid.seam]))
-    along = strip.b[0] - strip.a[0]
+    along = solid.seam_line[1] - solid.seam_line[0]
     along = along / np.linalg.norm(along)
     up = strip.normal[0]
     return np.stack([along, np.cross(along, up), up], axis=1)

@@ -68,4 +68,4 @@ def cylinder_solid(surface: Cylinder, seam: float) -> Solid:
         End.cut(surface.section, height=each.height, rise=each.rise)
         for each in (surface.trim_a, surface.trim_b)
     )
-    return Solid(a, b, side="parallel", seam=seam, distance=surface.distance)
+    return Solid(a, b, side="parallel", seam=seam, seam_b=seam, distance=surface.distance)

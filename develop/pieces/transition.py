@@ -134,8 +134,9 @@ class Transition(Plate):
         shift = f"END B {number_text(round(right, 3))} right and {number_text(round(up, 3))} up"
         place = f"flush at the {self.flush}, " if self.flush else ""
         turned = f", rotated {number_text(round(degrees(self.rotate), 6))}°" if self.rotate else ""
+        sheet = surface.sheet(seam)
         pattern = pattern_of(
-            surface.sheet(seam),
+            sheet,
             a.section,
             b.section,
             wording=self.wording(
@@ -151,6 +152,7 @@ class Transition(Plate):
             End.placed(b.section, b.frame),
             side="hull",
             seam=seam,
+            seam_b=sheet.seam_b,
             distance=surface.distance,
         )
         return Built((pattern,), solid)

@@ -18,7 +18,7 @@ from functools import cached_property
 import numpy as np
 
 from develop.errors import Refusal
-from develop.quadrature import Array, between, halves, nodes_of, running
+from develop.quadrature import Array, Indices, between, halves, nodes_of, running
 
 __all__ = ["Array", "Parallel", "Section", "Walk"]
 
@@ -68,6 +68,33 @@ class Section(ABC):
     @abstractmethod
     def parameter(self, nx: Array, ny: Array) -> Array:
         """The u in one turn from breaks[0] at which the normal has the direction of n."""
+
+    def parameters(self, nx: Array, ny: Array) -> tuple[Array, Array]:
+        """First and last u at which the normal has the direction of n: the ends of a straight side.
+
+        Equal where the curve turns. The last is not below the first, so it may pass breaks[-1].
+        """
+        u = self.parameter(nx, ny)
+        return u, u
+
+    def within(self, nx: Array, ny: Array, low: Array, high: Array) -> Array:
+        """The u nearest to the stretch from low to high, in its turn, where the normal is n.
+
+        Where a whole straight side has that normal, the part of it in the stretch decides.
+        """
+        first, last = self.parameters(nx, ny)
+        middle = 0.5 * (low + high)
+        turns = np.round((middle - 0.5 * (first + last)) / self.period) * self.period
+        return np.clip(np.clip(middle, first + turns, last + turns), low, high)
+
+    def foot(self, nx: Array, ny: Array, low: Array, high: Array) -> tuple[Array, Array]:
+        """The touching point for the normal n in the stretch of u from low to high."""
+        return self.touch(nx, ny)
+
+    @property
+    def kinks(self) -> Array:
+        """Directions φ of the normals at which the support is not smooth (k,) [rad]."""
+        return np.zeros(0)
 
     @abstractmethod
     def radius(self, nx: Array, ny: Array) -> Array:
@@ -179,10 +206,14 @@ class Section(ABC):
         whole = arc_known[-1]
         turns = np.floor(arc / whole)
         local = arc - turns * whole
-        u = self._inverse(local, u_known, arc_known)
+        i = np.clip(np.searchsorted(arc_known, local, side="right") - 1, 0, len(arc_known) - 2)
+        low, high = u_known[i], u_known[i + 1]
+        u = self._inverse(i, local, u_known, arc_known)
         for _ in range(_STEPS):
-            step = (self._run(u, 0) - local) / np.maximum(self.walk(u).ds, 1e-300)
-            u = np.clip(u - step, u_known[0], u_known[-1])
+            ds = self.walk(u).ds
+            # On a corner the arc stands, and every u on it is right.
+            step = (self._run(u, 0) - local) / np.where(ds > 0.0, ds, np.inf)
+            u = np.clip(u - step, low, high)
             if np.max(np.abs(step), initial=0.0) <= 4e-9 * self.period:
                 break
         return np.asarray(u + turns * self.period)
@@ -191,26 +222,27 @@ class Section(ABC):
         """The u (n,) whose point lies in the directions (n,) [rad], seen from the centre."""
         u_known, seen = self._known[0], self._seen
         wanted = seen[0] + (np.asarray(direction, dtype=float) - seen[0]) % (2.0 * np.pi)
-        u = np.interp(wanted, seen, u_known)
+        i = np.clip(np.searchsorted(seen, wanted, side="right") - 1, 0, len(seen) - 2)
+        low, high = u_known[i], u_known[i + 1]
+        gap = seen[i + 1] - seen[i]
+        u = low + (wanted - seen[i]) / np.where(gap > 0.0, gap, np.inf) * (high - low)
         for _ in range(_STEPS):
             at = self.walk(u)
             square = at.x * at.x + at.y * at.y
             miss = (np.arctan2(at.y, at.x) - wanted + np.pi) % (2.0 * np.pi) - np.pi
             rate = at.ds * (at.x * at.ex + at.y * at.ey) / np.maximum(square, 1e-300)
-            step = miss / np.maximum(rate, 1e-300)
-            u = np.clip(u - step, u_known[0], u_known[-1])
+            step = miss / np.where(rate > 0.0, rate, np.inf)
+            u = np.clip(u - step, low, high)
             if np.max(np.abs(step), initial=0.0) <= 1e-15 * self.period:
                 break
         return np.asarray(u)
 
-    def _inverse(self, local: Array, u_known: Array, arc_known: Array) -> Array:
+    def _inverse(self, i: Indices, local: Array, u_known: Array, arc_known: Array) -> Array:
         # Cubic Hermite of u over s: its slopes 1/ds are known, so that one Newton step suffices.
-        i = np.clip(np.searchsorted(arc_known, local, side="right") - 1, 0, len(arc_known) - 2)
         gap = arc_known[i + 1] - arc_known[i]
-        with np.errstate(divide="ignore", invalid="ignore"):
-            t = np.where(gap > 0.0, (local - arc_known[i]) / gap, 0.0)
-            slope = self._slopes
-            low, high = slope[i] * gap, slope[i + 1] * gap
+        t = (local - arc_known[i]) / np.where(gap > 0.0, gap, np.inf)
+        slope = self._slopes
+        low, high = slope[i] * gap, slope[i + 1] * gap
         u0, u1 = u_known[i], u_known[i + 1]
         smooth = (
             u0
@@ -218,12 +250,12 @@ class Section(ABC):
             + t * t * (3.0 * (u1 - u0) - 2.0 * low - high)
             + t * t * t * (low + high - 2.0 * (u1 - u0))
         )
-        return np.asarray(np.where(np.isfinite(smooth), smooth, u0 + t * (u1 - u0)))
+        return np.asarray(np.clip(smooth, u0, u1))
 
     @cached_property
     def _slopes(self) -> Array:
-        with np.errstate(divide="ignore"):
-            return np.asarray(1.0 / self.walk(self._known[0]).ds)
+        ds = self.walk(self._known[0]).ds
+        return np.asarray(np.where(ds > 0.0, 1.0 / np.where(ds > 0.0, ds, 1.0), 0.0))
 
 
 class Parallel(Section):
@@ -251,6 +283,18 @@ class Parallel(Section):
 
     def parameter(self, nx: Array, ny: Array) -> Array:
         return self.base.parameter(nx, ny)
+
+    def parameters(self, nx: Array, ny: Array) -> tuple[Array, Array]:
+        return self.base.parameters(nx, ny)
+
+    def foot(self, nx: Array, ny: Array, low: Array, high: Array) -> tuple[Array, Array]:
+        x, y = self.base.foot(nx, ny, low, high)
+        share = self.distance / np.hypot(nx, ny)
+        return x + share * nx, y + share * ny
+
+    @property
+    def kinks(self) -> Array:
+        return self.base.kinks
 
     def radius(self, nx: Array, ny: Array) -> Array:
         return self.base.radius(nx, ny) + self.distance

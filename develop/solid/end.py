@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
 
-from develop.quadrature import Array
+from develop.quadrature import WEIGHTS, Array, Mask, Panels, resolved, tail
 from develop.sections.section import Section
 from develop.solid.frame import Frame
 
@@ -16,6 +17,21 @@ __all__ = ["End"]
 _NEAREST_STEPS = 12
 _NEAR_ENOUGH = 1e-9  # [mm²]
 _MOST_STEPS = 1 << 21
+_LOOSE = 1e-15
+_ROUNDS = 30
+
+
+def _on_panels(support: Callable[[Array], Array], ends: Array) -> float:
+    """The integral of a support over the directions between ends, on panels that resolve it."""
+
+    def values(panels: Panels) -> Array:
+        return support(panels.nodes)[..., None]
+
+    def loose(panels: Panels, found: Array) -> Mask:
+        return np.asarray((tail(found)[:, 0] * panels.half) > _LOOSE * np.max(found))
+
+    panels, found = resolved(Panels.between(ends), values, loose, rounds=_ROUNDS)
+    return float(np.sum((found[..., 0] @ WEIGHTS) * panels.half))
 
 
 @dataclass(frozen=True)
@@ -63,19 +79,28 @@ class End:
     @cached_property
     def girth(self) -> float:
         """Length of the curve [mm] by Cauchy's formula: the integral of the support over all
-        directions in its plane, by the trapezoidal rule doubled until it stands still.
+        directions in its plane.
 
-        It shares nothing with the arc lengths of the sections.
+        It shares nothing with the arc lengths of the sections. A smooth support is summed by the
+        trapezoidal rule, doubled until it stands still; one with kinks on panels between them.
         """
         first = self.spans[:, 0] / np.linalg.norm(self.spans[:, 0])
         second = self.spans[:, 1] - first * (first @ self.spans[:, 1])
         second = second / np.linalg.norm(second)
         into = self.spans.T @ np.stack([first, second], axis=1)
 
-        def mean(start: float, count: int) -> float:
-            angle = start + np.arange(count) * (2.0 * np.pi / count)
+        def support(angle: Array) -> Array:
             n = np.stack([np.cos(angle), np.sin(angle)], axis=-1) @ into.T
-            return float(np.mean(self.section.support(n[:, 0], n[:, 1])))
+            return self.section.support(n[..., 0], n[..., 1])
+
+        kinks = self.section.kinks
+        if len(kinks):
+            back = np.linalg.solve(into, np.stack([np.cos(kinks), np.sin(kinks)]))
+            at = np.sort(np.arctan2(back[1], back[0]) % (2.0 * np.pi))
+            return _on_panels(support, np.append(at, at[0] + 2.0 * np.pi))
+
+        def mean(start: float, count: int) -> float:
+            return float(np.mean(support(start + np.arange(count) * (2.0 * np.pi / count))))
 
         count, value = 128, mean(0.0, 128)
         while count < _MOST_STEPS:

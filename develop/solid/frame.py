@@ -23,7 +23,8 @@ class Frame:
     @staticmethod
     def square(*, at: tuple[float, float, float] = (0.0, 0.0, 0.0), rotate: float = 0.0) -> Frame:
         """Square to the axis +z at a centre [mm], turned by `rotate` [rad] anticlockwise."""
-        c, s = cos(rotate), sin(rotate)
+        # Exact for quarter turns, so that straight sides which should be parallel are.
+        c, s = (0.0 if abs(each) < 1e-15 else each for each in (cos(rotate), sin(rotate)))
         return Frame(np.array(at, dtype=float), np.array([[c, s, 0.0], [-s, c, 0.0], [0.0, 0.0, 1.0]]))
 
     def tilted(self, *, slope: float, long: float) -> Frame:

@@ -5,6 +5,7 @@ Nothing here knows how the side is unrolled; it is what the pattern is checked a
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 from typing import Literal
@@ -21,7 +22,9 @@ _SAME = 1e-9
 # Panels are halved until what their nodes leave out is less than this part of the whole. Smaller
 # would only add the rounding of ever shorter panels.
 _LOOSE = 5e-12
-_ROUNDS = 8
+_ROUNDS = 16
+# Less than this [mm, mm²] an edge is a point.
+_LEAST = 1e-3
 
 
 @dataclass(frozen=True)
@@ -48,7 +51,7 @@ class Solid:
 
     side: `parallel`, lines along +z between two cuts of one section, or `hull`, the side of the
         convex hull of the two ends.
-    seam: parameter of end A's section where the seam runs.
+    seam, seam_b: parameters of the two ends' sections between which the seam runs.
     distance: of the developed sheet outside the surface that carries the ends [mm].
     """
 
@@ -56,6 +59,7 @@ class Solid:
     end_b: End
     side: Literal["parallel", "hull"]
     seam: float
+    seam_b: float
     distance: float = 0.0
 
     def strip(self, u: Array) -> Strip:
@@ -66,6 +70,13 @@ class Solid:
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
         normal = self._touching(self.end_a, self.end_b, u)
         return Strip(self.end_a.point(u), self.end_b.touch(normal), normal)
+
+    def _strip_b(self, u: Array) -> Strip:
+        """The side's straight lines through end B at its section's parameter u (n,)."""
+        if self.side == "parallel":
+            return self.strip(u)
+        normal = self._touching(self.end_b, self.end_a, u)
+        return Strip(self.end_a.touch(normal), self.end_b.point(u), normal)
 
     def _touching(self, on: End, other: End, u: Array) -> Array:
         """Unit normals (n, 3) of the planes through the tangents of one end that touch the other.
@@ -94,41 +105,48 @@ class Solid:
     def measures(self) -> Measures:
         """Lengths of the two edges of the sheet and its area, by quadrature in space.
 
-        Between lines a→b and their neighbours the area is ½ (|R × a'| + |R × b'|) du, as one
-        plane touches the side all along a line; a' and b' come from differentiating positions.
+        Between lines a→b and their neighbours the area is ½ |R × a'| + ½ |R × b'|, as one plane
+        touches the side all along a line. Each part is taken round its own end, so that a straight
+        side of one end, where the other stands, is counted once.
         """
-        first = Panels.between(self._panel_ends())
-        whole = ((WEIGHTS @ self._speeds(first)) * first.half[:, None]).sum(axis=0)
+        (edge_a, area_a), (edge_b, area_b) = (
+            self._swept(walk, ends, edge)
+            for walk, ends, edge in (
+                (self.strip, (self.end_a, self.end_b), "a"),
+                (self._strip_b, (self.end_b, self.end_a), "b"),
+            )
+        )
+        return Measures(edge_a, edge_b, area_a + area_b)
 
-        def loose(panels: Panels, speeds: Array) -> Mask:
-            return np.asarray((tail(speeds) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+    def _swept(self, walk: Callable[[Array], Strip], ends: tuple[End, End], edge: str) -> tuple[float, float]:
+        """Length of one edge of the sheet and its half of the area, walked round that end."""
 
-        panels, speeds = resolved(first, self._speeds, loose, rounds=_ROUNDS)
-        totals = ((WEIGHTS @ speeds) * panels.half[:, None]).sum(axis=0)
-        return Measures(*(float(total) for total in totals))
+        def speeds(panels: Panels) -> Array:
+            u, half = panels.nodes, panels.half
+            strip = walk(u.ravel())
+            ruling = (strip.b - strip.a).reshape(*u.shape, 3)
+            points = (getattr(strip, edge) + self.distance * strip.normal).reshape(*u.shape, 3)
+            velocity = (DERIVATIVE @ points) / half[:, None, None]
+            length = np.linalg.norm(velocity, axis=-1)
+            return np.stack([length, 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)], axis=-1)
 
-    def _speeds(self, panels: Panels) -> Array:
-        """Speeds of both edges and of the area by u, (m, ORDER, 3), at the panels' nodes."""
-        u, half = panels.nodes, panels.half
-        shape = (*u.shape, 3)
-        strip = self.strip(u.ravel())
-        lift = self.distance * strip.normal
-        ruling = (strip.b - strip.a).reshape(shape)
-        velocities = [
-            (DERIVATIVE @ (edge + lift).reshape(shape)) / half[:, None, None] for edge in (strip.a, strip.b)
-        ]
-        swept = [np.linalg.norm(np.cross(ruling, velocity), axis=-1) for velocity in velocities]
-        speeds = [np.linalg.norm(velocity, axis=-1) for velocity in velocities]
-        return np.stack([*speeds, 0.5 * (swept[0] + swept[1])], axis=-1)
+        first = Panels.between(self._panel_ends(*ends))
+        whole = np.maximum(((WEIGHTS @ speeds(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
-    def _panel_ends(self) -> Array:
-        """Panels of end A's parameter that end at the breaks of both ends."""
-        section = self.end_a.section
+        def loose(panels: Panels, found: Array) -> Mask:
+            return np.asarray((tail(found) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+
+        panels, found = resolved(first, speeds, loose, rounds=_ROUNDS)
+        edge_length, area = ((WEIGHTS @ found) * panels.half[:, None]).sum(axis=0)
+        return float(edge_length), float(area)
+
+    def _panel_ends(self, mine: End, yours: End) -> Array:
+        """Panels of one end's parameter that end at the breaks of both ends."""
+        section = mine.section
         start, period = section.breaks[0], section.period
         ends = section.breaks - start
         if self.side == "hull":
-            other = self.end_b.section.breaks[:-1]
-            flat = self._touching(self.end_b, self.end_a, other) @ self.end_a.spans
+            flat = self._touching(yours, mine, yours.section.breaks[:-1]) @ mine.spans
             past = (section.parameter(flat[:, 0], flat[:, 1]) - start) % period
             ends = np.sort(np.concatenate([ends, past]))
             ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
@@ -170,8 +188,7 @@ class Solid:
     @property
     def seam_line(self) -> Array:
         """The seam (2, 3) [mm], from end A to end B."""
-        strip = self.strip(np.array([self.seam]))
-        return np.vstack([strip.a, strip.b])
+        return np.vstack([self.end_a.point(np.array([self.seam])), self.end_b.point(np.array([self.seam_b]))])
 
     @property
     def top_line(self) -> Array:

@@ -11,6 +11,7 @@ plane with normal n, N = cos ψ e + sin ψ n, T = the rim's tangent, W = N × T,
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass, fields
 from functools import cached_property
 
@@ -21,6 +22,7 @@ from develop.quadrature import (
     DERIVATIVE,
     WEIGHTS,
     Array,
+    Indices,
     Mask,
     Panels,
     between,
@@ -28,6 +30,7 @@ from develop.quadrature import (
     running,
     tail,
 )
+from develop.sections.section import Section
 from develop.solid.frame import Rim
 from develop.surfaces.sheet import Lines, Place
 
@@ -70,6 +73,23 @@ class _Rulings:
     dphi_b: Array
     ds_a: Array
     ds_b: Array
+
+
+@dataclass(frozen=True)
+class _Course:
+    """The stretches that the walk round a band is made of; arrays (m,).
+
+    Each runs from start to end of the parameter of rim A or, where not on_a, of rim B; low and high
+    are the other rim's parameters at its ends. On a facet both rims run along parallel straight
+    sides and the plane stands, so the other parameter goes in proportion.
+    """
+
+    on_a: Mask
+    facet: Mask
+    start: Array
+    end: Array
+    low: Array
+    high: Array
 
 
 @dataclass(frozen=True)
@@ -123,8 +143,18 @@ class Band:
             last = worst
         return tau
 
-    def _rulings(self, walking_a: bool, u: Array) -> _Rulings:
-        """The rulings through the points u (n,) of the walking rim's section."""
+    def _rulings(
+        self,
+        walking_a: bool,
+        u: Array,
+        reach: tuple[Array, Array] | None = None,
+        fixed: Array | None = None,
+    ) -> _Rulings:
+        """The rulings through the points u (n,) of the walking rim's section.
+
+        reach: the stretch of the other rim in which its foot lies, where known; it decides on a
+        straight side. fixed: the other rim's parameter itself, on facets.
+        """
         walking, other = (self.rim_a, self.rim_b) if walking_a else (self.rim_b, self.rim_a)
         axes = walking.frame.axes
         at = walking.section.walk(u)
@@ -145,7 +175,14 @@ class Band:
         ox, oy, oz = other.local(normal)
         size = np.sqrt(ox * ox + oy * oy)
         ox, oy = ox / size, oy / size
-        there = contact(other, other.place(*other.section.touch(ox, oy)), size, oz, ox, oy)
+        if fixed is not None:
+            on = other.section.walk(fixed)
+            foot = on.x, on.y
+        elif reach is not None:
+            foot = other.section.foot(ox, oy, *reach)
+        else:
+            foot = other.section.touch(ox, oy)
+        there = contact(other, other.place(*foot), size, oz, ox, oy)
 
         a, b = (here, there) if walking_a else (there, here)
         ruling = b.point - a.point
@@ -156,10 +193,10 @@ class Band:
         ratio = (a.cos_psi * over_b) / (b.cos_psi * over)
         if walking_a:
             dphi_a, dphi_b = at.dphi, at.dphi * ratio
-            ds_a, ds_b = at.ds, other.section.radius(ox, oy) * dphi_b
+            ds_a, ds_b = at.ds, _speed(other.section.radius(ox, oy), dphi_b)
         else:
             dphi_b, dphi_a = at.dphi, at.dphi / ratio
-            ds_b, ds_a = at.ds, other.section.radius(ox, oy) * dphi_a
+            ds_b, ds_a = at.ds, _speed(other.section.radius(ox, oy), dphi_a)
         length = np.sqrt(np.einsum("ni,ni->n", ruling, ruling))
         return _Rulings(a, b, ruling, along, over, over_b, length, dphi_a, dphi_b, ds_a, ds_b)
 
@@ -194,19 +231,29 @@ class Band:
 
     # ---- the flat map -------------------------------------------------------------------
 
-    def _rates(self, panels: Panels) -> Array:
-        """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W."""
-        nodes = panels.nodes
-        m, k = nodes.shape
-        rates = np.empty((m, k, 6))
-        for on_a in (True, False):
-            which = panels.kind == on_a
+    def _on_course(self, course: _Course, origin: Indices, u: Array) -> Iterator[tuple[Mask, bool, _Rulings]]:
+        """The rulings at u (n,) of the stretches `origin` (n,), in up to three groups."""
+        on_a, facet = course.on_a[origin], course.facet[origin]
+        for walking_a, which in ((True, on_a & ~facet), (False, ~on_a), (True, facet)):
             if not which.any():
                 continue
-            r = self._rulings(on_a, nodes[which].ravel())
+            i, mine = origin[which], u[which]
+            low, high = course.low[i], course.high[i]
+            if walking_a and facet[which][0]:
+                share = (mine - course.start[i]) / (course.end[i] - course.start[i])
+                yield which, True, self._rulings(True, mine, fixed=low + share * (high - low))
+            else:
+                yield which, walking_a, self._rulings(walking_a, mine, (low, high))
+
+    def _rates(self, course: _Course, panels: Panels) -> Array:
+        """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W."""
+        nodes = panels.nodes
+        origin = np.repeat(panels.origin, nodes.shape[1])
+        rates = np.empty((nodes.size, 6))
+        for which, _, r in self._on_course(course, origin, nodes.ravel()):
             turn = r.a.cos_psi * r.dphi_a
             slant = turn / r.over
-            values = np.stack(
+            rates[which] = np.stack(
                 [
                     r.dphi_a * r.a.sin_psi,
                     slant * r.length,
@@ -217,15 +264,14 @@ class Band:
                 ],
                 axis=-1,
             )
-            rates[which] = values.reshape(-1, k, 6)
-        return rates
+        return rates.reshape(*nodes.shape, 6)
 
     def sheet(self, seam: float, *, tolerance: float = 1e-10) -> BandSheet:
         """The band slit along the ruling at parameter `seam` of end A's section, laid flat.
 
         tolerance: what the unresolved part of each panel may move a point [mm].
         """
-        panels = self._first_panels(seam)
+        course = self._course(seam)
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
         size += float(np.linalg.norm(self.rim_b.frame.origin - self.rim_a.frame.origin))
         allowed = max(tolerance, 4e-14 * size)
@@ -237,34 +283,68 @@ class Band:
             noise = 4e-14 * np.max(np.abs(rates), axis=1) * scale
             return np.asarray((tail(rates) * scale > np.maximum(allowed, noise)).any(axis=1))
 
-        return BandSheet(self, *resolved(panels, self._rates, loose, rounds=_ROUNDS))
+        def rates(panels: Panels) -> Array:
+            return self._rates(course, panels)
 
-    def _first_panels(self, seam: float) -> Panels:
-        """Panels that end at the breaks of both rims, B's pulled back to A, from the seam once round.
+        first = Panels(course.start, course.end, np.arange(len(course.start)))
+        return BandSheet(self, course, *resolved(first, rates, loose, rounds=_ROUNDS))
 
-        Their kind is whether they are walked on rim A.
-        """
+    def _course(self, seam: float) -> _Course:
+        """The walk once round from the seam, its stretches ending at the breaks of both rims."""
         a, b = self.rim_a.section, self.rim_b.section
-        u_a = np.append(seam, a.breaks[:-1])
-        u_b = self._foot(True, u_a)
-        start_b = u_b[0]
-        u_a = np.concatenate([u_a, self._foot(False, b.breaks[:-1])])
-        u_b = np.concatenate([u_b, b.breaks[:-1]])
-        past_a, past_b = _past(u_a, seam, a.period), _past(u_b, start_b, b.period)
+        u_a, u_b = np.append(seam, a.breaks[:-1]), b.breaks[:-1]
+        by_a, by_b = self._rulings(True, u_a), self._rulings(False, u_b)
+        u_a, paired_b = _paired(a, by_a.a, u_a, b, by_a.b)
+        u_b, paired_a = _paired(b, by_b.b, u_b, a, by_b.a)
+        ends_a, ends_b = np.concatenate([u_a, paired_a]), np.concatenate([paired_b, u_b])
+        start_b = ends_b[0]
+        past_a, past_b = _past(ends_a, seam, a.period), _past(ends_b, start_b, b.period)
+        # Where one rim stands at the seam, the other's place tells whether the turn begins or ends.
+        past_a, past_b = (
+            np.where((past_a == 0.0) & (past_b > 0.5 * b.period), a.period, past_a),
+            np.where((past_b == 0.0) & (past_a > 0.5 * a.period), b.period, past_b),
+        )
         # A break of one rim that falls on the seam or on a break of the other is one end, not two.
         share = past_a / a.period + past_b / b.period
         index = np.argsort(share, kind="stable")
-        index = index[np.diff(share[index], prepend=-1.0) > _SAME]
+        index = index[(np.diff(share[index], prepend=-1.0) > _SAME) & (share[index] < 2.0 - _SAME)]
         ends_a = np.append(past_a[index], a.period) + seam
         ends_b = np.append(past_b[index], b.period) + start_b
+        middle_a, middle_b = (0.5 * (ends[1:] + ends[:-1]) for ends in (ends_a, ends_b))
+        moves_a, moves_b = np.diff(ends_a) > _SAME, np.diff(ends_b) > _SAME
+        stands_a, stands_b = a.walk(middle_a).dphi == 0.0, b.walk(middle_b).dphi == 0.0
+        facet = moves_a & moves_b & stands_a & stands_b
         # Walked from the rim whose contact moves farther, the other moves smoothly along. Where it
         # makes little difference end A is walked throughout, which is one pass instead of two.
-        on_a = _FARTHER * np.diff(a.arc(ends_a)) >= np.diff(b.arc(ends_b))
-        return Panels(
+        farther = _FARTHER * np.diff(a.arc(ends_a)) >= np.diff(b.arc(ends_b))
+        on_a = facet | (moves_a & (farther | ~moves_b))
+        return _Course(
+            on_a,
+            facet,
             np.where(on_a, ends_a[:-1], ends_b[:-1]),
             np.where(on_a, ends_a[1:], ends_b[1:]),
-            on_a,
+            np.where(on_a, ends_b[:-1], ends_a[:-1]),
+            np.where(on_a, ends_b[1:], ends_a[1:]),
         )
+
+
+def _paired(
+    mine: Section, contact: _Contact, u: Array, yours: Section, other: _Contact
+) -> tuple[Array, Array]:
+    """The other rim's parameters (n,) to those of one rim (n,), in proportion along parallel sides."""
+    low, high = yours.parameters(other.normal_x, other.normal_y)
+    first, last = mine.parameters(contact.normal_x, contact.normal_y)
+    past = (u - first) % mine.period
+    past = np.where(past > mine.period - _SAME, 0.0, past)
+    length = last - first
+    share = np.where(length > 0.0, past / np.where(length > 0.0, length, 1.0), 0.0)
+    return u, low + np.clip(share, 0.0, 1.0) * (high - low)
+
+
+def _speed(radius: Array, dphi: Array) -> Array:
+    """ds = ρ dφ, and none where the normal stands, though the radius be infinite there."""
+    turns = dphi > 0.0
+    return np.where(turns, np.where(turns, radius, 0.0) * dphi, 0.0)
 
 
 def _past(u: Array, start: float, period: float) -> Array:
@@ -279,9 +359,9 @@ class BandSheet:
     Unrolled by θ' = φ' sin ψ (the geodesic curvature of end A's edge) and P' along T and W.
     """
 
-    def __init__(self, band: Band, panels: Panels, rates: Array) -> None:
+    def __init__(self, band: Band, course: _Course, panels: Panels, rates: Array) -> None:
         self.band = band
-        self._panels = panels
+        self._course, self._panels = course, panels
         half = panels.half
         legs = rates[..., 4:]
         angles, angle_ends = running(rates[..., :2], half)
@@ -333,19 +413,18 @@ class BandSheet:
     def lines(self, place: Place) -> Lines:
         panels = self._panels
         u = panels.start[place.panel] + panels.half[place.panel] * (place.x + 1.0)
-        on_a = panels.kind[place.panel]
         table = np.einsum("nk,nkc->nc", between(place.x), self._table[place.panel])
-        if on_a.all() or not on_a.any():
-            return self._lines(bool(on_a[0]) if len(on_a) else True, u, table)
-        parts = [self._lines(side, u[on_a == side], table[on_a == side]) for side in (True, False)]
-        index = np.argsort(np.concatenate([np.flatnonzero(on_a), np.flatnonzero(~on_a)]))
+        groups = list(self.band._on_course(self._course, panels.origin[place.panel], u))
+        parts = [self._lines(on_a, u[which], table[which], r) for which, on_a, r in groups]
+        if len(parts) == 1:
+            return parts[0]
+        index = np.argsort(np.concatenate([np.flatnonzero(which) for which, _, _ in groups]))
         return Lines(
             *(np.concatenate([getattr(part, f.name) for part in parts])[index] for f in fields(Lines))
         )
 
-    def _lines(self, on_a: bool, u: Array, table: Array) -> Lines:
+    def _lines(self, on_a: bool, u: Array, table: Array, r: _Rulings) -> Lines:
         band, d = self.band, self.band.distance
-        r = band._rulings(on_a, u)
         a, b = r.a, r.b
         theta = table[:, 0]
         c, s = np.cos(theta), np.sin(theta)
@@ -356,15 +435,14 @@ class BandSheet:
         p = table[:, 2:4]
         along_b = np.einsum("ni,ni->n", r.ruling, b.tangent)
         t, w = (np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))
-        if d == 0.0:
-            tangent_a, tangent_b = flat(np.ones_like(c), np.zeros_like(c)), flat(t, w)
-        else:
+        tangent_a, tangent_b = flat(np.ones_like(c), np.zeros_like(c)), flat(t, w)
+        if d != 0.0:
             # The edge moves along the rim and, as the sheet leans more or less, across it.
             turn_a, turn_b = a.cos_psi * r.dphi_a, b.cos_psi * r.dphi_b
-            tangent_a = _unit(flat(r.ds_a + d * turn_a, -d * turn_a * r.along / r.over))
+            tangent_a = _unit(flat(r.ds_a + d * turn_a, -d * turn_a * r.along / r.over), tangent_a)
             go, rise = r.ds_b + d * turn_b, -d * turn_b * along_b / r.over_b
             tw, ww = (np.einsum("ni,ni->n", b.across, v) for v in (a.tangent, a.across))
-            tangent_b = _unit(flat(go * t + rise * tw, go * w + rise * ww))
+            tangent_b = _unit(flat(go * t + rise * tw, go * w + rise * ww), tangent_b)
         radii = band._radii(r) + d
         return Lines(
             a=p,
@@ -383,18 +461,26 @@ class BandSheet:
     @cached_property
     def _spans(self) -> tuple[Array, Array]:
         """Parameters of both rims at the panels' ends, (m + 1,) each, growing from the seam."""
-        panels, band = self._panels, self.band
+        panels, course, band = self._panels, self._course, self.band
+        origin = np.append(panels.origin, panels.origin[-1])
         mine = np.append(panels.start, panels.end[-1])
-        on_a = np.append(panels.kind, panels.kind[-1])
-        spans = []
-        for side, section in ((True, band.rim_a.section), (False, band.rim_b.section)):
-            u = mine.copy()
-            if (on_a != side).any():
-                u[on_a != side] = band._foot(not side, mine[on_a != side])
-            u = np.unwrap(u, period=section.period)
-            u[-1] = u[0] + section.period
-            spans.append(u)
-        return spans[0], spans[1]
+        low, high, on_a = course.low[origin], course.high[origin], course.on_a[origin]
+        yours = np.empty_like(mine)
+        for which, walking_a, r in band._on_course(course, origin, mine):
+            rim, c = (band.rim_b, r.b) if walking_a else (band.rim_a, r.a)
+            yours[which] = rim.section.within(c.normal_x, c.normal_y, low[which], high[which])
+        share = (mine - course.start[origin]) / (course.end[origin] - course.start[origin])
+        yours = np.where(course.facet[origin], low + share * (high - low), yours)
+        # Stretches end exactly where the next begins.
+        whole = np.append(panels.start == course.start[panels.origin], False)
+        yours = np.where(whole, low, yours)
+        yours[-1] = high[-1]
+        return np.where(on_a, mine, yours), np.where(on_a, yours, mine)
+
+    @property
+    def seam_b(self) -> float:
+        """Parameter of end B's section where the seam meets it."""
+        return float(self._spans[1][0])
 
     def from_a(self, u: Array) -> Place:
         return self._from(True, np.asarray(u, dtype=float))
@@ -403,22 +489,32 @@ class BandSheet:
         return self._from(False, np.asarray(u, dtype=float))
 
     def _from(self, side: bool, u: Array) -> Place:
-        band, panels = self.band, self._panels
+        band, panels, course = self.band, self._panels, self._course
         ends = self._spans[0 if side else 1]
-        mine = (band.rim_a if side else band.rim_b).section
-        yours = (band.rim_b if side else band.rim_a).section
-        local = ends[0] + _past(u, ends[0], mine.period)
+        section = (band.rim_a if side else band.rim_b).section
+        local = ends[0] + _past(u, ends[0], section.period)
         panel = np.clip(np.searchsorted(ends, local, side="right") - 1, 0, len(ends) - 2)
+        origin = panels.origin[panel]
+        on_a, facet = course.on_a[origin], course.facet[origin]
         walked = local.copy()
-        cross = panels.kind[panel] != side
+        # On a facet both rims go in proportion; elsewhere a rim that is not walked is found by its plane.
+        go = facet & (not side)
+        if go.any():
+            i = origin[go]
+            share = (local[go] - course.low[i]) / (course.high[i] - course.low[i])
+            walked[go] = course.start[i] + share * (course.end[i] - course.start[i])
+        cross = (on_a != side) & ~facet
         if cross.any():
-            foot = band._foot(side, u[cross])
-            start = panels.start[panel[cross]]
-            walked[cross] = start + _past(foot, start, yours.period)
-        base = np.where(cross, panels.start[panel], ends[panel])
-        x = np.clip((walked - base) / panels.half[panel] - 1.0, -1.0, 1.0)
+            i = origin[cross]
+            r = band._rulings(side, local[cross], (course.start[i], course.end[i]))
+            walking, c = (band.rim_b, r.b) if side else (band.rim_a, r.a)
+            walked[cross] = walking.section.within(c.normal_x, c.normal_y, course.start[i], course.end[i])
+        x = np.clip((walked - panels.start[panel]) / panels.half[panel] - 1.0, -1.0, 1.0)
         return Place(panel, x)
 
 
-def _unit(vector: Array) -> Array:
-    return np.asarray(vector / np.sqrt((vector**2).sum(axis=-1))[:, None])
+def _unit(vector: Array, fallback: Array) -> Array:
+    """Unit vectors (n, 2); the fallback where an edge stands at a corner."""
+    size = np.sqrt((vector**2).sum(axis=-1))[:, None]
+    moves = np.isfinite(size) & (size > 0.0)
+    return np.where(moves, vector / np.where(moves, size, 1.0), fallback)

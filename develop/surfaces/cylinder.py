@@ -160,7 +160,9 @@ class CylinderSheet:
             z, climb = _trimmed(trim, at)
             size = np.sqrt(go * go + climb * climb)
             ends.append(np.stack([row[:, 0], z], axis=-1))
-            tangents.append(np.stack([go / size, climb / size], axis=-1))
+            # At a sharp corner of the section the edge stands.
+            size = np.where(size > 0.0, size, 1.0)
+            tangents.append(np.stack([np.where(go > 0.0, go, 1.0) / size, climb / size], axis=-1))
         radius = section.radius(at.ex, at.ey) + d
         return Lines(
             a=ends[0],
