@@ -2,27 +2,28 @@
 
 from __future__ import annotations
 
-from math import degrees
+from math import atan2, degrees, hypot
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from develop.errors import Refusal
 from develop.solid import End, Solid, cut_slopes
-from develop.surfaces.cylinder import Cylinder, Trim
+from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
     from develop.pieces.field_types import Cut
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["cylinder_between", "cylinder_solid", "trim"]
+__all__ = ["cylinder_between", "cylinder_solid", "shortest", "trim"]
 
 
-def trim(cut: Cut | None, *, height: float, end_b: bool) -> Trim:
+def trim(cut: Cut | None, *, height: float, end_b: bool) -> Plane:
     """The trim of an end whose cut meets the axis at a height [mm]."""
     rise: Array = np.zeros(2) if cut is None else cut_slopes(slope=cut.slope, long=cut.long, end_b=end_b)
-    return Trim(height, rise)
+    return Plane(height, rise)
 
 
 def cylinder_between(
@@ -33,19 +34,14 @@ def cylinder_between(
     Raises Refusal naming the cut that runs past the other end, with the steepest slope that works
     and the least length that does.
     """
-    surface = Cylinder(
-        section,
-        trim(cut_a, height=0.0, end_b=False),
-        trim(cut_b, height=length, end_b=True),
-        distance,
-    )
-    short = surface.shortest
+    low, high = trim(cut_a, height=0.0, end_b=False), trim(cut_b, height=length, end_b=True)
+    short = shortest(section, low, high)
     if short > 0.0:
-        return surface
+        return Cylinder(section, low, high, distance)
     # The steeper cut is named; the other stays as it is.
     name, cut = ("cut_a", cut_a) if _slope(cut_a) > _slope(cut_b) else ("cut_b", cut_b)
     assert cut is not None
-    steepest = surface.steepest(which=name[-1])
+    steepest = _steepest(section, low, high, which=name[-1])
     # Rounded down, to a slope that does work.
     works = np.floor(steepest * 10.0 - 1e-6) / 10.0
     other = "the other end" if not _slope(cut_a) * _slope(cut_b) else "the other end's cut"
@@ -62,10 +58,41 @@ def _slope(cut: Cut | None) -> float:
     return cut.slope if cut else 0.0
 
 
+def shortest(section: Section, low: Plane, high: Plane) -> float:
+    """The least height [mm] between two planes over a section, negative where they cross."""
+    rise = high.rise - low.rise
+    down = float(section.support(np.array(-rise[0]), np.array(-rise[1])))
+    return high.height - low.height - down
+
+
+def _steepest(section: Section, low: Plane, high: Plane, *, which: str) -> float:
+    """The steepest slope [deg] of cut `a` (low) or `b`, in its own direction, that the piece allows.
+
+    0 where none does, as the other cut alone already runs past.
+    """
+    mine = low if which == "a" else high
+    unit = mine.rise / hypot(*mine.rise)
+
+    def left(t: float) -> float:
+        turned = Plane(mine.height, t * unit)
+        return shortest(section, *((turned, high) if which == "a" else (low, turned)))
+
+    if left(0.0) <= 0.0:
+        return 0.0
+    under, over = 0.0, 1.0
+    while left(over) > 0.0 and over < 1e6:
+        under, over = over, 2.0 * over
+    for _ in range(60):
+        middle = 0.5 * (under + over)
+        under, over = (middle, over) if left(middle) > 0.0 else (under, middle)
+    return degrees(atan2(under, 1.0))
+
+
 def cylinder_solid(surface: Cylinder, seam: float) -> Solid:
-    """The finished piece of a cylinder; seam is a parameter of its section."""
+    """The finished piece of a cylinder between plane cuts; seam is a parameter of its section."""
     a, b = (
         End.cut(surface.section, height=each.height, rise=each.rise)
         for each in (surface.trim_a, surface.trim_b)
+        if isinstance(each, Plane)
     )
     return Solid(a, b, side="parallel", seam=seam, seam_b=seam, distance=surface.distance)

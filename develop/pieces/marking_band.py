@@ -51,7 +51,8 @@ class MarkingBand(Marked):
 
         from develop.pieces.cuts import trim
         from develop.pieces.wall import PLACES, given_section
-        from develop.surfaces.cylinder import Cylinder, Trim
+        from develop.surfaces.cylinder import Cylinder
+        from develop.surfaces.trim import Plane
 
         outside = self.face == "outside"
         if not outside and self.section.outside and self.thickness == 0.0:
@@ -67,7 +68,7 @@ class MarkingBand(Marked):
         # END A is the band's own square edge, so far below the cut that the band is nowhere too narrow.
         return Cylinder(
             face,
-            Trim(-down - self.narrowest, np.zeros(2)),
+            Plane(-down - self.narrowest, np.zeros(2)),
             cut,
             0.5 * self.paper if outside else -0.5 * self.paper,
         )

@@ -7,32 +7,20 @@ of a round cylinder becomes a sinusoid.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import atan2, degrees, hypot
-
 import numpy as np
 
 from develop.quadrature import WEIGHTS, Array, Mask, Panels, between, resolved, running, tail
 from develop.sections.section import Section, Walk
 from develop.surfaces.sheet import Lines, Place
+from develop.surfaces.trim import Trim
 
-__all__ = ["Cylinder", "CylinderSheet", "Trim"]
+__all__ = ["Cylinder", "CylinderSheet"]
 
 _SAME = 1e-9
 # What a panel's nodes leave out, in parts of the girth.
 _LOOSE = 1e-14
 _ROUNDS = 40
-
-
-@dataclass(frozen=True)
-class Trim:
-    """A plane trim: height z = height + rise · (x, y) [mm]; rise (2,), zero for a square end."""
-
-    height: float
-    rise: Array
-
-    def at(self, x: Array, y: Array) -> Array:
-        """Height of the trim over the points x, y [mm]."""
-        return np.asarray(self.height + self.rise[0] * x + self.rise[1] * y)
+_AXIS = np.array([0.0, 0.0, 1.0])
 
 
 @dataclass(frozen=True)
@@ -40,53 +28,20 @@ class Cylinder:
     """A section carried along +z between two trims, the sheet lying `distance` [mm] outside of it.
 
     The trims meet the given section; an edge is cut square to the plate, so its height does not
-    change across the thickness. Where the trims cross, `shortest` is not above zero; whoever makes a
-    piece refuses that in terms of the piece's own fields.
+    change across the thickness. breaks: further parameters at which panels must end, where a trim
+    has corners. That the trims do not cross is for whoever makes a piece to see to.
     """
 
     section: Section
     trim_a: Trim
     trim_b: Trim
     distance: float = 0.0
-
-    @property
-    def shortest(self) -> float:
-        """The least height between the trims [mm], negative where they cross."""
-        rise = self.trim_b.rise - self.trim_a.rise
-        down = float(self.section.support(np.array(-rise[0]), np.array(-rise[1])))
-        return self.trim_b.height - self.trim_a.height - down
+    breaks: tuple[float, ...] = ()
 
     def lengths(self, u: Array) -> Array:
         """Lengths (n,) [mm] of the rulings at the section's parameters u (n,)."""
         at = self.section.walk(u)
-        return self.trim_b.at(at.x, at.y) - self.trim_a.at(at.x, at.y)
-
-    def steepest(self, *, which: str) -> float:
-        """The steepest slope [deg] of cut `a` or `b`, in its own direction, that the piece allows.
-
-        0 where none does, as the other cut alone already runs past.
-        """
-        mine, other = (self.trim_a, self.trim_b) if which == "a" else (self.trim_b, self.trim_a)
-        size = hypot(*mine.rise)
-        if size == 0.0:
-            return 0.0
-        length = self.trim_b.height - self.trim_a.height
-        sign = 1.0 if which == "b" else -1.0
-        unit = sign * mine.rise / size
-
-        def left(t: float) -> float:
-            down = -(t * unit - sign * other.rise)
-            return length - float(self.section.support(np.array(down[0]), np.array(down[1])))
-
-        if left(0.0) <= 0.0:
-            return 0.0
-        low, high = 0.0, 1.0
-        while left(high) > 0.0 and high < 1e6:
-            low, high = high, 2.0 * high
-        for _ in range(60):
-            middle = 0.5 * (low + high)
-            low, high = (middle, high) if left(middle) > 0.0 else (low, middle)
-        return degrees(atan2(low, 1.0))
+        return _trimmed(self.trim_b, at)[0] - _trimmed(self.trim_a, at)[0]
 
     def sheet(self, seam: float, *, beyond: float = 0.0) -> CylinderSheet:
         """The cylinder slit along the ruling at parameter `seam`, laid flat.
@@ -103,9 +58,10 @@ class CylinderSheet:
         self.cylinder = cylinder
         section = cylinder.section
         self._seam = seam
-        past = (section.breaks[:-1] - seam) % section.period
+        breaks = np.concatenate([section.breaks[:-1], cylinder.breaks])
+        past = (breaks - seam) % section.period
         past = np.sort(np.where(past > section.period * (1.0 - _SAME), 0.0, past))
-        past = past[past > section.period * _SAME]
+        past = past[np.diff(past, prepend=0.0) > section.period * _SAME]
         ends = np.concatenate([[0.0], past, [section.period]])
         if beyond > 0.0:
             moved = section.offset(cylinder.distance)
@@ -191,5 +147,13 @@ class CylinderSheet:
 
 
 def _trimmed(trim: Trim, at: Walk) -> tuple[Array, Array]:
-    """Height of the trim and its rate along the section, at a walk."""
-    return trim.at(at.x, at.y), at.ds * (trim.rise[1] * at.ex - trim.rise[0] * at.ey)
+    """Height of the trim over a walk round the section, and its rate along it."""
+    shape = at.x.shape
+    start = np.stack([at.x.ravel(), at.y.ravel(), np.zeros(at.x.size)], axis=-1)
+    z = trim.meet(start, np.broadcast_to(_AXIS, start.shape))
+    normal = trim.normal(np.stack([start[:, 0], start[:, 1], z], axis=-1))
+    # Along the joint the tangent T + climb·axis lies square to the normal.
+    across = at.ex.ravel() * normal[:, 1] - at.ey.ravel() * normal[:, 0]
+    upright = normal[:, 2]
+    climb = -across / np.where(upright == 0.0, np.inf, upright)
+    return z.reshape(shape), at.ds * climb.reshape(shape)
