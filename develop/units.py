@@ -18,6 +18,7 @@ __all__ = [
     "format_length",
     "number_text",
     "parse_angle",
+    "parse_area",
     "parse_direction",
     "parse_length",
     "parse_number",
@@ -124,6 +125,35 @@ def parse_length(given: object, *, unit: str = "mm", allowed: str = _LENGTHS) ->
     if len(names) > 1 and names != ["ft", "in"]:
         raise _problem(f"{shown(given)} is not a length", allowed)
     return _quotient(-total if sign[1] in ("-", "−") else total, under)
+
+
+_AREAS = "an area such as 125000 mm2, 0.125 m2, 194 in2 or 1-1/2 ft2"
+_SIZED = re.compile(rf"\s*(?:{_AMOUNT})\s*(?P<unit>.*?)\s*")
+
+
+def parse_area(given: object, *, unit: str = "mm", allowed: str = _AREAS) -> float:
+    """An area [mm²] from text or a number; a bare number is in the square of `unit`.
+
+    Suffixes mm2, cm2, m2, in2 and ft2, also as mm² or sq mm; fractions. Raises InputError.
+
+    >>> parse_area("0.125 m2"), parse_area("1-1/2 sq in"), parse_area(2, unit="in")
+    (125000.0, 967.74, 1290.32)
+    """
+    text = _as_text(given, what="an area", allowed=allowed)
+    sign = _SIGN.match(text)
+    assert sign is not None  # every part of the pattern is optional
+    found = _SIZED.fullmatch(text, sign.end())
+    ratio = _ratio(found) if found else None
+    if found is None or ratio is None:
+        raise _problem(f"{shown(given)} is not an area", allowed)
+    squares = {f"{name}2": size for name, size in UNITS.items()}
+    written = found["unit"]
+    name = re.sub(r"(?:\^2|²)$", "2", re.sub(r"^sq\.?\s*([a-z]+)$", r"\g<1>2", written.lower())) or f"{unit}2"
+    if name not in squares:
+        raise _problem(f"{shown(given)} has the unit {shown(written)}", f"{listed(squares)}; {allowed}")
+    over, under = squares[name]
+    number = -ratio[0] if sign[1] in ("-", "−") else ratio[0]
+    return _quotient(number * over * over, ratio[1] * under * under)
 
 
 def parse_number(given: object, *, what: str, allowed: str, suffixes: tuple[str, ...] = ()) -> float:

@@ -46,11 +46,7 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     by halving angles. "As drawn" measures the Béziers that leave the program.
     """
     net = pattern.net
-    on_surface = solid.distance == 0.0
-    girths = {
-        "a": solid.end_a.girth if on_surface else solid.measures.edge_a,
-        "b": solid.end_b.girth if on_surface else solid.measures.edge_b,
-    }
+    girths = dict(zip("ab", solid.girths(), strict=True))
     checks = []
     for name, girth in girths.items():
         curve = net.curve(name)

@@ -62,13 +62,8 @@ def closing_miss(pattern: Pattern, solid: Solid) -> float:
     a, b, normal = folded(pattern, solid)
     lift = solid.distance * normal
     closing = max(np.linalg.norm(a[-1] - a[0]), np.linalg.norm(b[-1] - b[0]))
-    return float(
-        max(
-            np.max(solid.end_a.distance(a - lift)),
-            np.max(solid.end_b.distance(b - lift)),
-            closing,
-        )
-    )
+    u = pattern.rulings.u[::-1] if pattern.face == "inside" else pattern.rulings.u
+    return float(max(solid.misses(a - lift, b - lift, u), closing))
 
 
 def _running_product(half_angle: Array, axis: Array) -> tuple[_Complex, _Complex]:

@@ -92,12 +92,14 @@ class Rulings:
     """Dense straight lines of the sheet, from the left seam to the right, for the closing check.
 
     a, b: their ends on the two edges, (n, 2) [mm]. turn: of the sheet since the line before, (n,) [rad].
+    u: parameter of end A's section that the line starts at, (n,).
     distance: of the developed sheet outside the surface that the ends are given on [mm].
     """
 
     a: Array
     b: Array
     turn: Array
+    u: Array
     distance: float = 0.0
 
 

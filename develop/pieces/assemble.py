@@ -122,7 +122,7 @@ def pattern_of(
         facts=wording.facts,
         datum=wording.datum,
         full_lines=wording.full_lines,
-        rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), distance),
+        rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), dense.u_a, distance),
         flow=wording.flow,
     )
 

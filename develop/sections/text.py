@@ -1,51 +1,48 @@
-"""The text form of a section: `round 400`, `ellipse 600 x 300`, `pipe DN 150`."""
+"""The text form of a section: `round 400`, `ellipse 600 x 300`, `flat-oval girth 1256 height 200`."""
 
 from __future__ import annotations
 
 import re
-from collections.abc import Callable
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
+from math import pi, sqrt
 
-from develop.errors import InputError, Problem
-from develop.units import number_text, parse_length
+from develop.errors import InputError
+from develop.sections.measured_text import read_measured
+from develop.sections.pipe_text import read_pipe
+from develop.sections.sizes import PAIRS, NoSuchSize, sizes_of
+from develop.sections.spec import FLATTEST, LARGEST, SMALLEST, SectionSpec, refused
+from develop.sections.words import Words, read_words, size_of
+from develop.units import number_text
 from develop.wording import listed, near_miss, shown
 
-__all__ = ["FLATTEST", "LARGEST", "SMALLEST", "SectionSpec", "parse_section"]
-
-SMALLEST = 0.1
-LARGEST = 100_000.0
-# Flatter than this an ellipse is a folded sheet; results are proven down to here.
-FLATTEST = 1000.0
+__all__ = ["ALLOWED", "FLATTEST", "LARGEST", "SMALLEST", "SectionSpec", "parse_section"]
 
 _FORMS = {
     "round": "round 400",
     "ellipse": "ellipse 600 x 300",
-    "pipe": "pipe DN 150 or pipe NPS 6",
+    "flat-oval": "flat-oval 600 x 300",
+    "superellipse": "superellipse 600 x 300 n 2.5",
+    "rectangle": "rectangle 500 x 300 r 40",
+    "pipe": "pipe DN 150",
+    "measured": "measured 0:322 45:326 90:327 135:323",
 }
-_ALLOWED = f"{listed(_FORMS.values())}; sizes from 0.1 mm to 100 m"
-_LONGEST_SIZE = 12
-_BETWEEN = re.compile(r"[xX×]")
-_PIPE = re.compile(r"(DN|NPS)\s*([^a-z]*?)(?:\s+([a-z0-9.]+(?:\s.*)?))?", re.IGNORECASE)
+ALLOWED = (
+    f"{listed(_FORMS.values())}; sizes from 0.1 mm to 100 m; round, ellipse and flat-oval also by girth, "
+    "area or ratio: ellipse girth 1256.6 height 300"
+)
+"""What a section may be, as messages and the help say it."""
 
-
-@dataclass(frozen=True)
-class SectionSpec:
-    """A section as its text says it.
-
-    kind: `round`, `ellipse` or `pipe`. width, height: overall [mm].
-    text: the same section in one canonical form, sizes in mm.
-    outside: the size is the outside whatever the piece's `sizes` says, as for every pipe.
-    """
-
-    kind: str
-    width: float
-    height: float
-    text: str
-    outside: bool = False
-
-
-def _refused(given: str, allowed: str = _ALLOWED) -> InputError:
-    return InputError(Problem(field="", given=given, allowed=allowed))
+_SIZED = "width x height; or two of girth, area, width, height, ratio (height over width)"
+_LEAST_N, _MOST_N = 1.2, 20.0
+# Words that people say for one of the kinds and that no spelling is near to.
+_OTHER_NAMES = {"square": "rectangle", "circle": "round", "circular": "round", "oval": "flat-oval"}
+# `ellipse600x300` and `flat oval 600 x 300` are clear enough to be taken for what they are.
+_NAME = re.compile(
+    r"\s*(round|ellipse|flat[- ]oval|superellipse|rectangle|pipe|measured)(?![^\W\d_])\s*(.*)",
+    re.IGNORECASE | re.DOTALL,
+)
+# Sizes that follow from others are written to this many decimals of a mm.
+_DECIMALS = 4
 
 
 def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
@@ -53,110 +50,175 @@ def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
 
     >>> parse_section("ellipse 24 in × 300").text
     'ellipse 609.6 x 300'
+    >>> parse_section("ellipse height 300 girth 1256.6").text
+    'ellipse 486.5656 x 300 (girth 1256.6, height 300)'
     """
     if not isinstance(text, str):
-        raise _refused(f"{shown(text)} is not a section")
-    name, _, rest = text.strip().partition(" ")
-    read = _READERS.get(name.lower())
-    if read is None:
-        # `ellipse600x300` and `round400` are clear enough to be taken for what they are.
-        joined = re.fullmatch(r"\s*(round|ellipse|pipe)\s*(.*)", text, re.IGNORECASE | re.DOTALL)
-        if joined is None:
-            hint = near_miss(name, _FORMS) if name else ""
-            raise _refused(f"{shown(text)} is not a section{hint}")
-        read, rest = _READERS[joined[1].lower()], joined[2]
-    return read(text, rest.strip(), unit)
-
-
-def _size(text: str, size: str, unit: str) -> float:
-    """One size of a section [mm]."""
-    try:
-        mm = parse_length(size, unit=unit)
-    except InputError as error:
-        (problem,) = error.problems
-        raise _refused(f"{shown(text)}: {problem.given}") from None
-    if mm <= 0:
-        raise _refused(f"{shown(text)}: {shown(size.strip())} is not above zero")
-    if not SMALLEST <= mm <= LARGEST:
-        raise _refused(f"{shown(text)}: {shown(size.strip())} is too {'small' if mm < 1 else 'large'}")
-    return mm
+        raise refused(f"{shown(text)} is not a section", ALLOWED)
+    found = _NAME.fullmatch(text)
+    if found is None:
+        name = text.strip().partition(" ")[0]
+        other = _OTHER_NAMES.get(name.lower(), "")
+        hint = f'; did you mean "{other}"?' if other else near_miss(name, _FORMS)
+        raise refused(f"{shown(text)} is not a section{hint}", ALLOWED)
+    name = found[1].lower().replace(" ", "-")
+    return _READERS[name](text, found[2].strip(), unit)
 
 
 def _round(text: str, rest: str, unit: str) -> SectionSpec:
-    if not rest:
-        raise _refused(f"{shown(text)} has no diameter", "round 400; 0.1 mm to 100 m")
-    if _BETWEEN.search(rest):
-        raise _refused(f"{shown(text)} has two sizes; a round section has one, its diameter")
-    size = _size(text, rest, unit)
-    return SectionSpec("round", size, size, f"round {number_text(size)}")
+    words = read_words(text, rest, ("girth", "area"), unit=unit, form=_FORMS["round"])
+    given = words.values
+    if len(words.sizes) > 1:
+        raise refused(
+            f"{shown(text)} has two sizes; a round section has one, its diameter", f"{_FORMS['round']}, or {_TWO}"
+        )
+    if len(given) > 1 or (given and words.sizes and not words.bracketed):
+        raise refused(f"{shown(text)} is given more than once", "one of diameter, girth and area")
+    if not given:
+        if not words.sizes:
+            raise refused(f"{shown(text)} has no diameter", "round 400; 0.1 mm to 100 m; or girth or area")
+        (size,) = words.sizes
+        return SectionSpec("round", size, size, f"round {number_text(size)}")
+    size = given["girth"] / pi if "girth" in given else 2.0 * sqrt(given["area"] / pi)
+    if not SMALLEST <= size <= LARGEST:
+        raise refused(
+            f"{shown(text)} makes a diameter of {number_text(float(f'{size:.4g}'))} mm", "0.1 mm to 100 m"
+        )
+    _agree(text, words, (size,))
+    # A tape goes round the outside, whatever the piece's `sizes` says of its other sections.
+    name = f"round {_short(size)} ({_canonical(given)})"
+    return SectionSpec("round", size, size, name, outside="girth" in given)
 
 
-def _ellipse(text: str, rest: str, unit: str) -> SectionSpec:
-    sizes = _BETWEEN.split(rest)
-    if len(sizes) != 2 or not all(size.strip() for size in sizes):
-        raise _refused(f"{shown(text)} does not have two sizes", "ellipse 600 x 300; width, then height")
-    width, height = (_size(text, size, unit) for size in sizes)
+_TWO = "ellipse 600 x 300"
+
+
+def _two_sized(kind: str) -> Callable[[str, str, str], SectionSpec]:
+    keys = ("girth", "area", "width", "height", "ratio")
+
+    def read(text: str, rest: str, unit: str) -> SectionSpec:
+        words = read_words(text, rest, keys, unit=unit, form=f"{_FORMS[kind]}; {_SIZED}")
+        given = words.values
+        if not given:
+            width, height = _two(text, words, kind)
+            return SectionSpec(kind, width, height, f"{kind} {number_text(width)} x {number_text(height)}")
+        if words.sizes and not words.bracketed:
+            raise refused(f"{shown(text)} has sizes and more that would set them", _SIZED)
+        if frozenset(given) not in PAIRS:
+            if set(given) >= {"girth", "area"}:
+                said = "girth and area together fit two sections, one wide and one high"
+            else:
+                said = f"has {listed(given)} alone" if len(given) == 1 else "has more than two of them"
+            raise refused(f"{shown(text)}: {said}", f"{kind} with {_SIZED}")
+        try:
+            width, height = sizes_of(kind, given)
+        except NoSuchSize as error:
+            raise _impossible(text, kind, given, error) from None
+        _agree(text, words, (width, height))
+        if "girth" in given or "area" in given or "ratio" in given:
+            name = f"{kind} {_short(width)} x {_short(height)} ({_canonical(given)})"
+        else:
+            name = f"{kind} {number_text(width)} x {number_text(height)}"
+        return SectionSpec(kind, width, height, name)
+
+    return read
+
+
+def _two(text: str, words: Words, kind: str) -> tuple[float, float]:
+    """Width and height where they are given as such."""
+    if len(words.sizes) != 2:
+        raise refused(f"{shown(text)} does not have two sizes", f"{_FORMS[kind]}; width, then height")
+    width, height = words.sizes
     if max(width, height) > FLATTEST * min(width, height):
-        raise _refused(
+        raise refused(
             f"{shown(text)} is flatter than 1 to {FLATTEST:g}",
             f"width and height within 1 to {FLATTEST:g} of each other",
         )
-    return SectionSpec("ellipse", width, height, f"ellipse {number_text(width)} x {number_text(height)}")
+    return width, height
 
 
-def _pipe(text: str, rest: str, unit: str) -> SectionSpec:
-    from develop.tables.pipes import SERIES
-
-    found = _PIPE.fullmatch(rest)
-    if found is None or not 0 < len(found[2].strip()) <= _LONGEST_SIZE:
-        raise _refused(f"{shown(text)} is not a pipe", "pipe DN 150 or pipe NPS 6, perhaps with asme or en")
-    system, size = found[1].upper(), "-".join(found[2].replace("-", " ").split())
-    series = (found[3] or "").lower()
-    if series and series not in SERIES:
-        hint = near_miss(series, SERIES)
-        raise _refused(
-            f"{shown(text)}: {shown(found[3])} is not a series{hint}",
-            listed(f"{word} ({standard})" for word, standard in SERIES.items()),
+def _impossible(text: str, kind: str, given: Mapping[str, float], error: NoSuchSize) -> InputError:
+    whole = next((word for word in ("girth", "area", "width", "height") if word in given), "")
+    unit = "mm²" if whole == "area" else "mm"
+    article = "an" if kind[0] == "e" else "a"
+    what = f"{article} {kind} of {whole} {number_text(given[whole])} {unit}"
+    if not error.least <= error.most:
+        return refused(
+            f"{shown(text)}: there is no {what.partition(' ')[2]} within the limits of size",
+            f"sizes from 0.1 mm to 100 m, within 1 to {FLATTEST:g} of each other",
         )
-    return (_by_dn if system == "DN" else _by_nps)(text, size, series)
+    length = "" if error.word == "ratio" else " mm"
+    return refused(
+        f"{shown(text)}: {what} cannot have the {error.word} {number_text(given[error.word])}{length}",
+        f"{error.word} from {_inward(error.least, 1)} to {_inward(error.most, -1)}{length}",
+    )
 
 
-def _by_dn(text: str, size: str, series: str) -> SectionSpec:
-    from develop.tables.pipes import SERIES, by_dn
+def _inward(value: float, side: int) -> str:
+    """A bound to five digits, rounded to the side on which it still works."""
+    text = f"{value:.5g}"
+    if side * (float(text) - value) < 0:
+        step = 10.0 ** (int(f"{value:e}".partition("e")[2]) - 4)
+        text = f"{value + side * step:.5g}"
+    return number_text(float(text))
 
-    tables = {word: by_dn(word) for word in SERIES if series in ("", word)}
-    found = {word: table[size] for word, table in tables.items() if size in table}
-    if not found:
-        sizes = sorted({int(each) for table in tables.values() for each in table})
-        where = SERIES[series] if series else listed(SERIES.values())
-        raise _refused(
-            f"{shown(text)}: DN {size} is not in {where}", f"pipe DN and one of {listed(map(str, sizes))}"
+
+def _superellipse(text: str, rest: str, unit: str) -> SectionSpec:
+    words = read_words(text, rest, ("n",), unit=unit, form=_FORMS["superellipse"])
+    width, height = _two(text, words, "superellipse")
+    allowed = "n from 1.2 to 20: 2 is an ellipse, more is squarer"
+    if "n" not in words.values:
+        raise refused(f"{shown(text)} has no exponent", f"{_FORMS['superellipse']}; {allowed}")
+    n = words.values["n"]
+    if not _LEAST_N <= n <= _MOST_N:
+        raise refused(f"{shown(text)} has the exponent {number_text(n)}", allowed)
+    name = f"superellipse {number_text(width)} x {number_text(height)} n {number_text(n)}"
+    return SectionSpec("superellipse", width, height, name, n=n)
+
+
+def _rectangle(text: str, rest: str, unit: str) -> SectionSpec:
+    words = read_words(text, rest, ("r",), unit=unit, form=_FORMS["rectangle"])
+    width, height = _two(text, words, "rectangle")
+    r = words.values.get("r", 0.0)
+    half = 0.5 * min(width, height)
+    if r > half:
+        raise refused(
+            f"{shown(text)}: corners of radius {number_text(r)} mm do not fit",
+            f"r from 0 to {number_text(half)} mm, half the smaller size",
         )
-    if len(set(found.values())) > 1:
-        both = ", ".join(f"{number_text(mm)} mm in {SERIES[word]}" for word, mm in found.items())
-        raise _refused(f"{shown(text)} is {both}", listed(f"pipe DN {size} {word}" for word in found))
-    outside = next(iter(found.values()))
-    # The series is part of the name only where it makes a difference.
-    differ = len({by_dn(word).get(size, outside) for word in SERIES}) > 1
-    name = f"pipe DN {size} {series}" if differ else f"pipe DN {size}"
-    return SectionSpec("pipe", outside, outside, name, outside=True)
+    name = f"rectangle {number_text(width)} x {number_text(height)}"
+    return SectionSpec("rectangle", width, height, f"{name} r {number_text(r)}" if r else name, r=r)
 
 
-def _by_nps(text: str, size: str, series: str) -> SectionSpec:
-    from develop.tables.pipes import by_nps
+def _short(size: float) -> str:
+    return number_text(round(size, _DECIMALS))
 
-    table = by_nps()
-    if series == "en":
-        raise _refused(f"{shown(text)}: EN 10220 has no NPS sizes", f"pipe NPS {size} or a DN size")
-    if size not in table:
-        raise _refused(
-            f"{shown(text)}: NPS {size} is not in the table", f"pipe NPS and one of {listed(table)}"
+
+def _canonical(given: Mapping[str, float]) -> str:
+    order = ("girth", "area", "width", "height", "ratio")
+    return ", ".join(f"{word} {number_text(given[word])}" for word in order if word in given)
+
+
+def _agree(text: str, words: Words, sizes: tuple[float, ...]) -> None:
+    """Refuse sizes that do not follow from what stands in brackets behind them."""
+    if not words.bracketed:
+        return
+    near = 0.6 * 10.0**-_DECIMALS
+    if len(words.sizes) != len(sizes) or any(
+        abs(said - size) > near + 1e-12 * size for said, size in zip(words.sizes, sizes, strict=True)
+    ):
+        made = " x ".join(map(_short, sizes))
+        raise refused(
+            f"{shown(text)}: what stands in brackets makes {made} mm", f"the sizes {made}, or one of the two alone"
         )
-    return SectionSpec("pipe", table[size], table[size], f"pipe NPS {size}", outside=True)
 
 
 _READERS: dict[str, Callable[[str, str, str], SectionSpec]] = {
     "round": _round,
-    "ellipse": _ellipse,
-    "pipe": _pipe,
+    "ellipse": _two_sized("ellipse"),
+    "flat-oval": _two_sized("flat-oval"),
+    "superellipse": _superellipse,
+    "rectangle": _rectangle,
+    "pipe": read_pipe,
+    "measured": read_measured,
 }

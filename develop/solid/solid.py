@@ -53,6 +53,7 @@ class Solid:
         convex hull of the two ends.
     seam, seam_b: parameters of the two ends' sections between which the seam runs.
     distance: of the developed sheet outside the surface that carries the ends [mm].
+    cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
     """
 
     end_a: End
@@ -61,6 +62,7 @@ class Solid:
     seam: float
     seam_b: float
     distance: float = 0.0
+    cut_b: tuple[float, Array] | None = None
 
     def strip(self, u: Array) -> Strip:
         """The side's straight lines through end A at its section's parameter u (n,)."""
@@ -69,7 +71,30 @@ class Solid:
             normal = np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1)
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
         normal = self._touching(self.end_a, self.end_b, u)
-        return Strip(self.end_a.point(u), self.end_b.touch(normal), normal)
+        a = self.end_a.point(u)
+        return Strip(a, self._cut(a, self.end_b.touch(normal)), normal)
+
+    def _cut(self, a: Array, b: Array) -> Array:
+        """The far ends (n, 3) of lines from a to b, at the cut where there is one."""
+        if self.cut_b is None:
+            return b
+        height, rise = self.cut_b
+        over_a, over_b = (p[:, 2] - height - p[:, :2] @ rise for p in (a, b))
+        return np.asarray(a + (over_a / (over_a - over_b))[:, None] * (b - a))
+
+    def girths(self) -> tuple[float, float]:
+        """Lengths [mm] of the sheet's two edges, from the ends alone where it lies on them."""
+        if self.distance == 0.0 and self.cut_b is None:
+            return self.end_a.girth, self.end_b.girth
+        return self.measures.edge_a, self.measures.edge_b
+
+    def misses(self, a: Array, b: Array, u: Array) -> float:
+        """Largest distance [mm] of points a, b (n, 3), on the given surface, from the two ends.
+
+        u: (n,) parameters of end A's section that the points belong to, for an end that is a cut.
+        """
+        far = self.end_b.distance(b) if self.cut_b is None else np.linalg.norm(b - self.strip(u).b, axis=1)
+        return float(max(np.max(self.end_a.distance(a)), np.max(far)))
 
     def _strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
@@ -109,6 +134,10 @@ class Solid:
         touches the side all along a line. Each part is taken round its own end, so that a straight
         side of one end, where the other stands, is counted once.
         """
+        if self.cut_b is not None:
+            # Both parts round end A: a cut side has no line on which end A stands.
+            both = [self._swept(self.strip, (self.end_a, self.end_b), edge) for edge in "ab"]
+            return Measures(both[0][0], both[1][0], both[0][1] + both[1][1])
         (edge_a, area_a), (edge_b, area_b) = (
             self._swept(walk, ends, edge)
             for walk, ends, edge in (
@@ -188,7 +217,8 @@ class Solid:
     @property
     def seam_line(self) -> Array:
         """The seam (2, 3) [mm], from end A to end B."""
-        return np.vstack([self.end_a.point(np.array([self.seam])), self.end_b.point(np.array([self.seam_b]))])
+        a, b = self.end_a.point(np.array([self.seam])), self.end_b.point(np.array([self.seam_b]))
+        return np.vstack([a, self._cut(a, b)])
 
     @property
     def top_line(self) -> Array:

@@ -33,6 +33,7 @@ from develop.quadrature import (
 from develop.sections.section import Section
 from develop.solid.frame import Rim
 from develop.surfaces.sheet import Lines, Place
+from develop.surfaces.trim import Trim
 
 __all__ = ["Band", "BandSheet"]
 
@@ -96,12 +97,15 @@ class _Course:
 class Band:
     """The side of the convex hull of two rims, the sheet lying `distance` [mm] outside of it.
 
+    cut_a, cut_b: where an end of the sheet is not its rim but a cut across the rulings.
     Raises Refusal where a rim reaches through the other's plane.
     """
 
     rim_a: Rim
     rim_b: Rim
     distance: float = 0.0
+    cut_a: Trim | None = None
+    cut_b: Trim | None = None
 
     def __post_init__(self) -> None:
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
@@ -387,9 +391,16 @@ class BandSheet:
             ],
             axis=-1,
         )
-        # The speed along edge B is taken from the flat map itself, not from end B's section, so
+        p_step = step[..., :2]
+        if band.cut_a or band.cut_b:
+            low, high = self._shares_at_nodes()
+            p, q = p + low[..., None] * (q - p), p + high[..., None] * (q - p)
+        # The speed along an edge is taken from the flat map itself, not from the end's section, so
         # that its length proves the map.
-        q_step = np.einsum("jk,mkc->mjc", DERIVATIVE, q) / half[:, None, None]
+        if band.cut_a:
+            p_step = (DERIVATIVE @ p) / half[:, None, None]
+            path[..., 2], path_ends[:, 2] = running(np.sqrt((p_step**2).sum(axis=-1)), half)
+        q_step = (DERIVATIVE @ q) / half[:, None, None]
         speed, speed_ends = running(np.sqrt((q_step**2).sum(axis=-1)), half)
         self._table = np.concatenate([angles, path, speed[..., None]], axis=-1)
         self.edge_a = float(path_ends[-1, 2])
@@ -403,7 +414,7 @@ class BandSheet:
         self.at_ends = self.lines(self.ends)
         a0, a1, b0, b1 = *self.at_ends.a[[0, -1]], *self.at_ends.b[[0, -1]]
         seams = a1[0] * b1[1] - a1[1] * b1[0] - (a0[0] * b0[1] - a0[1] * b0[0])
-        self.area = 0.5 * (swept(p, step[..., :2]) - swept(q, q_step) + float(seams))
+        self.area = 0.5 * (swept(p, p_step) - swept(q, q_step) + float(seams))
 
     @property
     def ends(self) -> Place:
@@ -432,31 +443,61 @@ class BandSheet:
         def flat(along: Array, over: Array) -> Array:
             return np.stack([along * c - over * s, along * s + over * c], axis=-1)
 
-        p = table[:, 2:4]
-        along_b = np.einsum("ni,ni->n", r.ruling, b.tangent)
-        t, w = (np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))
-        tangent_a, tangent_b = flat(np.ones_like(c), np.zeros_like(c)), flat(t, w)
-        if d != 0.0:
-            # The edge moves along the rim and, as the sheet leans more or less, across it.
-            turn_a, turn_b = a.cos_psi * r.dphi_a, b.cos_psi * r.dphi_b
-            tangent_a = _unit(flat(r.ds_a + d * turn_a, -d * turn_a * r.along / r.over), tangent_a)
-            go, rise = r.ds_b + d * turn_b, -d * turn_b * along_b / r.over_b
-            tw, ww = (np.einsum("ni,ni->n", b.across, v) for v in (a.tangent, a.across))
-            tangent_b = _unit(flat(go * t + rise * tw, go * w + rise * ww), tangent_b)
-        radii = band._radii(r) + d
+        p, leg = table[:, 2:4], flat(r.along, r.over)
+        radii = band._radii(r)
+        turn = a.cos_psi * r.dphi_a
+        ends = []
+        for cut, share, tangent in (
+            (band.cut_a, 0.0, (np.ones_like(c), np.zeros_like(c))),
+            (band.cut_b, 1.0, tuple(np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))),
+        ):
+            at, radius = np.full(len(c), share), radii[:, int(share)]
+            if cut is not None:
+                at = cut.meet(a.point, r.ruling)
+                radius = radii[:, 0] + at * (radii[:, 1] - radii[:, 0])
+                normal = cut.normal(a.point + at[:, None] * r.ruling)
+                # The joint runs along N × n; its part to the right of the ruling must be positive.
+                t, w = (
+                    -np.einsum("ni,ni->n", normal, a.across),
+                    np.einsum("ni,ni->n", normal, a.tangent),
+                )
+                tangent = t, w
+            t, w = tangent
+            right = (t * r.over - w * r.along) / r.length
+            t, w = (np.where(right < 0.0, -each, each) for each in (t, w))
+            straight = _unit(flat(t, w), flat(np.ones_like(c), np.zeros_like(c)))
+            if d != 0.0:
+                # The edge goes on across the rulings and, as the sheet leans more or less, with d N'.
+                across = (1.0 - at) * r.ds_a * r.over + at * r.ds_b * r.over_b
+                size = across / (r.length * np.abs(np.where(right == 0.0, np.inf, right)))
+                moved = flat(size * t + d * turn, size * w - d * turn * r.along / r.over)
+                straight = _unit(moved, straight)
+            ends.append((p + at[:, None] * leg, straight, radius + d, at))
+        (end_a, tangent_a, radius_a, low), (end_b, tangent_b, radius_b, high) = ends
         return Lines(
-            a=p,
-            b=p + flat(r.along, r.over),
+            a=end_a,
+            b=end_b,
             tangent_a=tangent_a,
             tangent_b=tangent_b,
             arc_a=table[:, 4],
             arc_b=table[:, 5],
             turn=table[:, 1],
-            radius_a=radii[:, 0],
-            radius_b=radii[:, 1],
+            radius_a=radius_a,
+            radius_b=radius_b,
             u_a=u if on_a else band.rim_a.section.parameter(a.normal_x, a.normal_y),
-            length=r.length,
+            length=(high - low) * r.length,
         )
+
+    def _shares_at_nodes(self) -> tuple[Array, Array]:
+        """Where the cuts meet the rulings at the panels' nodes, in parts of R, (m, ORDER) each."""
+        nodes = self._panels.nodes
+        origin = np.repeat(self._panels.origin, nodes.shape[1])
+        low, high = np.zeros(nodes.size), np.ones(nodes.size)
+        for which, _, r in self.band._on_course(self._course, origin, nodes.ravel()):
+            for cut, share in ((self.band.cut_a, low), (self.band.cut_b, high)):
+                if cut is not None:
+                    share[which] = cut.meet(r.a.point, r.ruling)
+        return low.reshape(nodes.shape), high.reshape(nodes.shape)
 
     @cached_property
     def _spans(self) -> tuple[Array, Array]:

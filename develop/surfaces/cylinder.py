@@ -7,6 +7,7 @@ of a round cylinder becomes a sinusoid.
 from __future__ import annotations
 
 from dataclasses import dataclass
+
 import numpy as np
 
 from develop.quadrature import WEIGHTS, Array, Mask, Panels, between, resolved, running, tail

@@ -53,7 +53,7 @@ def _pattern(
     return Pattern(
         mark=mark, kind=kind, quantity=2, face="outside", net=net, cut=net, openings=openings, lines=lines,
         divisions=divisions, marks=marks, labels=labels, facts=facts, datum="END A, the line y = 0",
-        full_lines=full, rulings=Rulings(np.array(ends_a), np.array(ends_b), np.zeros(len(ends_a))),
+        full_lines=full, rulings=Rulings(np.array(ends_a), np.array(ends_b), *np.zeros((2, len(ends_a)))),
         arrows=arrows,
     )  # fmt: skip
 
