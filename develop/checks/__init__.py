@@ -5,6 +5,7 @@ Nothing here reaches the code that unrolls, not even through others; a test hold
 
 from __future__ import annotations
 
-from develop.checks.check import Check, check
+from develop.checks.check import Check, check, check_joint
+from develop.checks.joint import Side
 
-__all__ = ["Check", "check"]
+__all__ = ["Check", "Side", "check", "check_joint"]

@@ -9,10 +9,11 @@ import numpy as np
 from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.checks.fold import closing_miss
+from develop.checks.joint import Side, joint_miss
 from develop.pattern.pattern import Pattern
 from develop.solid.solid import Solid
 
-__all__ = ["Check", "check"]
+__all__ = ["Check", "check", "check_joint"]
 
 _RELATIVE = 1e-11
 _ROUNDING = 1e-13
@@ -36,6 +37,15 @@ class Check:
     def holds(self) -> bool:
         """Whether the difference is within the limit; not for a got that is no number."""
         return bool(abs(self.got - self.expected) <= self.limit)
+
+
+def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
+    """The checks of a joint: equal edges that lie on each other within the limit of the closing check."""
+    limit = max(_SMALLEST, _RELATIVE * side.length)
+    return (
+        Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"),
+        Check(f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"),
+    )
 
 
 def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
     from develop.checks import Check
     from develop.pieces.built import Built
 
-__all__ = ["FORMATS", "Outcome", "make"]
+__all__ = ["FORMATS", "Outcome", "checks_of", "make"]
 
 # In the order in which they are written and named.
 FORMATS = ("svg", "pdf", "json", "png")
@@ -39,20 +39,40 @@ def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS) -> Outc
 
     Raises Refusal for a piece that cannot be, WriteError for a place that cannot be written.
     """
-    from develop.checks import check
-
     built = piece.build()
-    checks = tuple(one for pattern in built.patterns for one in check(pattern, built.solid))
+    checks = checks_of(built)
     files: dict[str, bytes] = {}
     if _DRAWN.intersection(formats):
         from develop.pattern.layout import lettered
 
-        built = replace(built, patterns=tuple(lettered(pattern) for pattern in built.patterns))
+        built = built.with_patterns([lettered(pattern) for pattern in built.patterns])
     for each in FORMATS:
         if each in formats:
             files |= _files(each, piece, built, checks)
     write_all(folder, files)
     return Outcome(mark=piece.mark, files=tuple(files), checks=checks)
+
+
+def checks_of(built: Built) -> tuple[Check, ...]:
+    """Every check of a piece: of each part, named by its mark where there are several, and of the joints."""
+    from develop.checks import Side, check, check_joint
+
+    found: list[Check] = []
+    for part in built.parts:
+        own = check(part.pattern, part.solid)
+        if len(built.parts) > 1:
+            own = tuple(replace(each, name=f"{part.pattern.mark}: {each.name}") for each in own)
+        found += own
+    for joint in built.joints:
+        sides = [
+            Side(part.pattern, part.solid, part.frames[place], end)
+            for part, end, place in (
+                (built.parts[joint.part], joint.end, joint.place),
+                (built.parts[joint.other], joint.other_end, joint.other_place),
+            )
+        ]
+        found += check_joint(" to ".join(side.pattern.mark for side in sides), *sides)
+    return tuple(found)
 
 
 def _files(ending: str, piece: Piece, built: Built, checks: tuple[Check, ...]) -> dict[str, bytes]:

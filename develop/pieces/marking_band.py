@@ -76,7 +76,7 @@ class MarkingBand(Marked):
     def build(self) -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import Wording, pattern_of, seam_parameter
-        from develop.pieces.built import Built
+        from develop.pieces.built import one
         from develop.pieces.cuts import cylinder_solid
 
         surface = self.surface()
@@ -107,4 +107,4 @@ class MarkingBand(Marked):
             distance=surface.distance,
             cut=surface.sheet(seam, beyond=self.lap) if self.lap else None,
         )
-        return Built((pattern,), cylinder_solid(surface, seam))
+        return one(pattern, cylinder_solid(surface, seam))

@@ -50,7 +50,7 @@ class Straight(Plate):
     def build(self) -> Built:
         """Raises Refusal where a cut runs past the other end."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import Built
+        from develop.pieces.built import one
         from develop.pieces.cuts import cylinder_solid
 
         surface = self.surface()
@@ -67,4 +67,4 @@ class Straight(Plate):
             divisions=self.divisions,
             distance=surface.distance,
         )
-        return Built((pattern,), cylinder_solid(surface, seam))
+        return one(pattern, cylinder_solid(surface, seam))

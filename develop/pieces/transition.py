@@ -124,7 +124,7 @@ class Transition(Plate):
         from math import degrees
 
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import Built
+        from develop.pieces.built import one
         from develop.solid import End, Solid
 
         surface = self.surface()
@@ -155,4 +155,4 @@ class Transition(Plate):
             seam_b=sheet.seam_b,
             distance=surface.distance,
         )
-        return Built((pattern,), solid)
+        return one(pattern, solid)

@@ -11,7 +11,7 @@ from develop.sections.measured_text import read_measured
 from develop.sections.pipe_text import read_pipe
 from develop.sections.sizes import PAIRS, NoSuchSize, sizes_of
 from develop.sections.spec import FLATTEST, LARGEST, SMALLEST, SectionSpec, refused
-from develop.sections.words import Words, read_words, size_of
+from develop.sections.words import Words, read_words
 from develop.units import number_text
 from develop.wording import listed, near_miss, shown
 
@@ -70,7 +70,8 @@ def _round(text: str, rest: str, unit: str) -> SectionSpec:
     given = words.values
     if len(words.sizes) > 1:
         raise refused(
-            f"{shown(text)} has two sizes; a round section has one, its diameter", f"{_FORMS['round']}, or {_TWO}"
+            f"{shown(text)} has two sizes; a round section has one, its diameter",
+            f"{_FORMS['round']}, or {_TWO}",
         )
     if len(given) > 1 or (given and words.sizes and not words.bracketed):
         raise refused(f"{shown(text)} is given more than once", "one of diameter, girth and area")
@@ -209,7 +210,8 @@ def _agree(text: str, words: Words, sizes: tuple[float, ...]) -> None:
     ):
         made = " x ".join(map(_short, sizes))
         raise refused(
-            f"{shown(text)}: what stands in brackets makes {made} mm", f"the sizes {made}, or one of the two alone"
+            f"{shown(text)}: what stands in brackets makes {made} mm",
+            f"the sizes {made}, or one of the two alone",
         )
 
 

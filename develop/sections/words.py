@@ -102,7 +102,5 @@ def _value(text: str, word: str, value: str, unit: str, form: str) -> float:
     if not 0.0 < number < float("inf"):
         raise refused(f"{shown(text)}: {word} {shown(value)} is not above zero", f"{word} above zero")
     if word == "ratio" and not _LEAST_RATIO <= number <= _MOST_RATIO:
-        raise refused(
-            f"{shown(text)}: ratio {shown(value)}", "ratio (height over width) from 0.001 to 1000"
-        )
+        raise refused(f"{shown(text)}: ratio {shown(value)}", "ratio (height over width) from 0.001 to 1000")
     return number

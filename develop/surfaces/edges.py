@@ -1,13 +1,16 @@
-"""The edges of a sheet as chains of cubic Béziers, found once for both surfaces."""
+"""Curves in the flat as chains of cubic Béziers, found once for sheets and for flat plates."""
 
 from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
 
 import numpy as np
 
 from develop.quadrature import Array, Indices
-from develop.surfaces.sheet import Lines, Place, Sheet
+from develop.surfaces.sheet import Place, Sheet
 
-__all__ = ["TOLERANCE", "edges"]
+__all__ = ["TOLERANCE", "Trace", "chains", "edges"]
 
 TOLERANCE = 2e-4
 """Largest distance of a chain from its curve [mm]; leaves most of 0.001 mm to who draws chords."""
@@ -18,33 +21,54 @@ _STANDS = 1e-9  # [mm]
 _INSIDE = np.array([0.25, 0.5, 0.75])
 
 
-def edges(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[Array, Array]:
-    """Control points (3 n + 1, 2) [mm] of edge A and edge B, both from left to right.
+@dataclass(frozen=True)
+class Trace:
+    """A curve at some places: points (n, 2), unit tangents (n, 2), running lengths (n,); mm."""
 
+    points: Array
+    tangents: Array
+    arcs: Array
+
+
+def edges(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[Array, Array]:
+    """Control points (3 n + 1, 2) [mm] of edge A and edge B, both from left to right."""
+
+    def traces(panel: Indices, x: Array) -> tuple[Trace, ...]:
+        lines = sheet.lines(Place(panel, x))
+        return (
+            Trace(lines.a, lines.tangent_a, lines.arc_a),
+            Trace(lines.b, lines.tangent_b, lines.arc_b),
+        )
+
+    a, b = chains(traces, len(sheet.ends.panel) - 1, tolerance=tolerance)
+    return a, b
+
+
+def chains(
+    traces: Callable[[Indices, Array], tuple[Trace, ...]], panels: int, *, tolerance: float = TOLERANCE
+) -> tuple[Array, ...]:
+    """Control points (3 n + 1, 2) [mm] of curves that are smooth on each of a number of panels.
+
+    traces: the curves at positions (n,) in [-1, 1] of panels (n,), all of them at once.
     End points and end tangents of each Bézier are exact; a piece is cut up until it lies within
-    `tolerance` [mm] of the curve at three points inside.
+    `tolerance` [mm] of the curve at three points inside, on every curve.
     """
-    ends = sheet.ends
-    panel = ends.panel[:-1]
-    start, end = np.full(len(panel), -1.0), np.full(len(panel), 1.0)
-    done: list[tuple[Array, Array, Array]] = []
+    panel = np.arange(panels)
+    start, end = np.full(panels, -1.0), np.full(panels, 1.0)
+    done: list[tuple[Array, tuple[Array, ...]]] = []
     for _ in range(_ROUNDS):
         n = len(panel)
         x = start[:, None] + (end - start)[:, None] * np.array([0.0, *_INSIDE, 1.0])
-        lines = sheet.lines(Place(np.repeat(panel, 5), x.ravel()))
-        first, inside, last = (
-            np.arange(0, 5 * n, 5),
-            np.arange(5 * n).reshape(n, 5)[:, 1:4],
-            np.arange(4, 5 * n, 5),
-        )
-        chains, misses = [], []
-        for points, tangents, arcs in _each(lines):
-            control = _fit(points, tangents, arcs, first, last)
-            chains.append(control)
-            misses.append(_miss(control, points[inside], tangents[inside], arcs, first, inside, last))
-        miss = np.maximum(*misses)
+        fits, misses = [], []
+        for trace in traces(np.repeat(panel, 5), x.ravel()):
+            each = Trace(
+                trace.points.reshape(n, 5, 2), trace.tangents.reshape(n, 5, 2), trace.arcs.reshape(n, 5)
+            )
+            fits.append(_fit(each))
+            misses.append(_miss(fits[-1], each))
+        miss = np.max(misses, axis=0)
         good = miss <= tolerance
-        done.append(((panel + 0.5 * (start + 1.0))[good], chains[0][good], chains[1][good]))
+        done.append(((panel + 0.5 * (start + 1.0))[good], tuple(fit[good] for fit in fits)))
         if good.all():
             break
         bad = ~good
@@ -55,47 +79,35 @@ def edges(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[Array, Array]:
         step = (end - start)[owner] / np.repeat(parts, parts)
         start = start[owner] + number * step
         panel, end = panel[owner], start + step
-    order = np.argsort(np.concatenate([part[0] for part in done]))
-    return _chain(np.concatenate([part[1] for part in done])[order]), _chain(
-        np.concatenate([part[2] for part in done])[order]
+    order = np.argsort(np.concatenate([place for place, _ in done]))
+    return tuple(
+        _chain(np.concatenate([fits[i] for _, fits in done])[order]) for i in range(len(done[0][1]))
     )
 
 
-def _each(lines: Lines) -> tuple[tuple[Array, Array, Array], tuple[Array, Array, Array]]:
-    return (lines.a, lines.tangent_a, lines.arc_a), (lines.b, lines.tangent_b, lines.arc_b)
-
-
-def _fit(points: Array, tangents: Array, arcs: Array, first: Indices, last: Indices) -> Array:
+def _fit(trace: Trace) -> Array:
     """Béziers (n, 4, 2) with exact end points and tangents, handles as for an arc of equal turn."""
-    t0, t1 = tangents[first], tangents[last]
+    t0, t1 = trace.tangents[:, 0], trace.tangents[:, -1]
     turn = np.arctan2(t0[:, 0] * t1[:, 1] - t0[:, 1] * t1[:, 0], (t0 * t1).sum(axis=1))
     quarter = np.where(np.abs(turn) < 1e-4, 1.0, turn / 4.0)
     stretch = np.where(np.abs(turn) < 1e-4, 1.0, np.tan(quarter) / quarter)
-    handle = ((arcs[last] - arcs[first]) * stretch / 3.0)[:, None]
-    p0, p1 = points[first], points[last]
+    handle = ((trace.arcs[:, -1] - trace.arcs[:, 0]) * stretch / 3.0)[:, None]
+    p0, p1 = trace.points[:, 0], trace.points[:, -1]
     return np.stack([p0, p0 + handle * t0, p1 - handle * t1, p1], axis=1)
 
 
-def _miss(
-    control: Array,
-    points: Array,
-    tangents: Array,
-    arcs: Array,
-    first: Indices,
-    inside: Indices,
-    last: Indices,
-) -> Array:
+def _miss(control: Array, trace: Trace) -> Array:
     """Largest distance (n,) [mm] of the Béziers from points inside, measured square to the curve."""
-    whole = np.maximum(arcs[last] - arcs[first], 1e-300)
-    t = ((arcs[inside] - arcs[first][:, None]) / whole[:, None])[..., None]
+    arcs = trace.arcs - trace.arcs[:, :1]
+    t = (arcs[:, 1:4] / np.maximum(arcs[:, -1:], 1e-300))[..., None]
     on = (
         (1 - t) ** 3 * control[:, None, 0]
         + 3 * (1 - t) ** 2 * t * control[:, None, 1]
         + 3 * (1 - t) * t**2 * control[:, None, 2]
         + t**3 * control[:, None, 3]
     )
-    gap = on - points
-    square = tangents[..., 0] * gap[..., 1] - tangents[..., 1] * gap[..., 0]
+    gap, along = on - trace.points[:, 1:4], trace.tangents[:, 1:4]
+    square = along[..., 0] * gap[..., 1] - along[..., 1] * gap[..., 0]
     return np.asarray(np.abs(square).max(axis=1))
 
 
@@ -103,6 +115,6 @@ def _chain(control: Array) -> Array:
     """Béziers (n, 4, 2) head to tail as one list (3 n + 1, 2), without those where the edge stands."""
     moves = np.abs(control[:, 3] - control[:, 0]).max(axis=1) > _STANDS
     if not moves.any():
-        return control[0, :1]
+        return np.asarray(control[0, :1])
     control = control[moves]
     return np.vstack([control[:, :3].reshape(-1, 2), control[-1:, 3]])
