@@ -27,6 +27,7 @@ __all__ = [
     "between",
     "Panels",
     "halves",
+    "inside",
     "nodes_of",
     "resolved",
     "running",
@@ -94,6 +95,7 @@ def _barycentric_weights(points: Array) -> Array:
 
 
 _POINT_WEIGHTS = _barycentric_weights(_POINTS)
+_NODE_WEIGHTS = _barycentric_weights(NODES)
 
 
 def _derivative_matrix() -> Array:
@@ -145,14 +147,23 @@ def between(x: Array) -> Array:
 
     The value in panel i is weights · table[i] with the table of `running`.
     """
-    gaps = x[:, None] - _POINTS
+    return _barycentric(x, _POINTS, _POINT_WEIGHTS)
+
+
+def _barycentric(x: Array, points: Array, weights: Array) -> Array:
+    gaps = x[:, None] - points
     hit = np.abs(gaps) < 1e-300
     gaps[hit] = 1.0
-    share = _POINT_WEIGHTS / gaps
+    share = weights / gaps
     rows = hit.any(axis=1)
     if rows.any():
         share[rows] = np.where(hit[rows], 1.0, 0.0)
     return np.asarray(share / share.sum(axis=1)[:, None])
+
+
+def inside(x: Array) -> Array:
+    """Weights (n, ORDER) that give a function at x (n,) in [-1, 1] from its values at the nodes."""
+    return _barycentric(x, NODES, _NODE_WEIGHTS)
 
 
 @dataclass(frozen=True)

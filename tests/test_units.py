@@ -15,6 +15,7 @@ from develop.units import (
     format_length,
     number_text,
     parse_angle,
+    parse_area,
     parse_direction,
     parse_length,
     parse_number,
@@ -237,3 +238,44 @@ def test_a_plain_number_has_no_unit() -> None:
     assert parse_number("-1-1/2", what="a number", allowed="") == -1.5
     with pytest.raises(InputError, match='"3 mm" is not a number; allowed: any'):
         parse_number("3 mm", what="a number", allowed="any")
+
+
+@pytest.mark.parametrize(
+    ("text", "unit", "mm2"),
+    [
+        ("125000", "mm", 125_000),
+        (125000, "mm", 125_000),
+        ("125000 mm2", "in", 125_000),
+        ("125000mm²", "mm", 125_000),
+        ("1250 cm^2", "mm", 125_000),
+        ("1250 sq cm", "mm", 125_000),
+        ("0.125 m2", "mm", 125_000),
+        ("100", "in", INCH**2 * 100),
+        ("100 IN2", "mm", INCH**2 * 100),
+        ("1-1/2 sq. ft", "mm", INCH**2 * 216),
+        ("2", "ft", INCH**2 * 288),
+    ],
+)
+def test_an_area_in_the_square_of_the_unit(text: object, unit: str, mm2: Fraction) -> None:
+    assert parse_area(text, unit=unit) == float(mm2)
+
+
+@pytest.mark.parametrize(
+    ("text", "said"),
+    [
+        ("", "is empty"),
+        ("x", "not an area"),
+        (True, "not an area"),
+        ("1/0 m2", "not an area"),
+        ("125000 mm", 'has the unit "mm"'),
+        ("125000 mm3", 'has the unit "mm3"'),
+        ("1 acre", 'has the unit "acre"'),
+        ("1 sq", 'has the unit "sq"'),
+    ],
+)
+def test_what_is_not_an_area(text: object, said: str) -> None:
+    with pytest.raises(InputError) as refused:
+        parse_area(text)
+    (problem,) = refused.value.problems
+    assert said in problem.given
+    assert "mm2" in problem.allowed

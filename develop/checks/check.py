@@ -10,12 +10,15 @@ from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.checks.fold import closing_miss
 from develop.checks.joint import Side, joint_miss
-from develop.pattern.pattern import Pattern
+from develop.checks.openings import opening_miss
+from develop.pattern.pattern import Outline, Pattern
+from develop.solid.meeting import MeetingEnd
 from develop.solid.solid import Solid
 
 __all__ = ["Check", "check", "check_joint"]
 
 _RELATIVE = 1e-11
+_AREA = 1e-10
 _ROUNDING = 1e-13
 _SMALLEST = 1e-9
 # Drawn chains lie within 0.0002 mm of the exact edges.
@@ -40,12 +43,15 @@ class Check:
 
 
 def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
-    """The checks of a joint: equal edges that lie on each other within the limit of the closing check."""
+    """The checks of a joint: equal edges that lie on each other within the limit of the closing check.
+
+    Where one sheet is developed on another surface than its edge lies on, the lengths differ.
+    """
     limit = max(_SMALLEST, _RELATIVE * side.length)
-    return (
-        Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"),
-        Check(f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"),
-    )
+    found = Check(f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm")
+    if side.distance != other.distance:
+        return (found,)
+    return (Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"), found)
 
 
 def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
@@ -77,13 +83,13 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
         Check("seam against the finished piece", true_length, drawn_length(left), limit, "mm"),
     ]
-    area = solid.measures.area
+    area = solid.measures.area - sum(joint.opened for joint in solid.openings)
     checks += [
-        Check("area against the finished side", area, net.area, max(1e-6, _RELATIVE * area), "mm²"),
+        Check("area against the finished side", area, net.area, max(1e-6, _AREA * area), "mm²"),
         Check(
             "area as drawn, against the finished side",
             area,
-            drawn_area(net),
+            drawn_area(net) - sum(drawn_area(each) for each in pattern.openings),
             # A strip of the chains' tolerance along the whole outline.
             max(1e-3, 1e-3 * (girths["a"] + girths["b"])),
             "mm²",
@@ -97,4 +103,26 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         ),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
+    for outline, joint in zip(pattern.openings, solid.openings, strict=True):
+        checks += _opening(pattern, solid, outline, joint)
     return tuple(checks)
+
+
+def _opening(pattern: Pattern, solid: Solid, outline: Outline, joint: MeetingEnd) -> list[Check]:
+    """The checks of an opening of a header against its joint with a branch."""
+    ((_, curve),) = outline.curves
+    found = [
+        Check("opening, area against the joint", joint.opened, outline.area, max(1e-6, _AREA * joint.opened), "mm²"),
+        Check(
+            "opening, largest distance from the joint",
+            0.0,
+            opening_miss(pattern, solid, curve, joint),
+            _CLOSING,
+            "mm",
+        ),
+        Check("opening crosses itself", 0.0, float(crossings(outline)), 0.0, "times"),
+    ]
+    if solid.distance == 0.0:
+        limit = max(_SMALLEST, _RELATIVE * joint.girth)
+        found.insert(0, Check("opening, edge against the joint", joint.girth, curve.length, limit, "mm"))
+    return found

@@ -1,4 +1,4 @@
-"""Whether an outline crosses itself, with numpy alone."""
+"""Whether outlines cross themselves or each other, with numpy alone."""
 
 from __future__ import annotations
 
@@ -7,7 +7,7 @@ import numpy as np
 from develop.pattern.pattern import Outline
 from develop.quadrature import Array
 
-__all__ = ["crossings"]
+__all__ = ["crossings", "meet", "within"]
 
 # Fine enough that a chord strays little from its curve, coarse enough for all pairs at once.
 _CHORDS = 96
@@ -31,6 +31,32 @@ def crossings(outline: Outline) -> int:
     both = across & across.T
     i, j = np.nonzero(np.triu(both, k=2))
     return int(np.count_nonzero((j - i) != n - 1))
+
+
+def meet(one: Array, other: Array) -> bool:
+    """Whether two closed polylines (n, 2) and (m, 2) have a point in common."""
+    p, d = one, np.roll(one, -1, axis=0) - one
+    q, e = other, np.roll(other, -1, axis=0) - other
+    for start in range(0, len(p), _CHORDS):
+        a, b = p[start : start + _CHORDS, None], d[start : start + _CHORDS, None]
+        gap = q - a
+        square = b[..., 0] * e[:, 1] - b[..., 1] * e[:, 0]
+        with np.errstate(divide="ignore", invalid="ignore"):
+            t = (gap[..., 0] * e[:, 1] - gap[..., 1] * e[:, 0]) / square
+            s = (gap[..., 0] * b[..., 1] - gap[..., 1] * b[..., 0]) / square
+        if ((t >= 0.0) & (t <= 1.0) & (s >= 0.0) & (s <= 1.0)).any():
+            return True
+    return False
+
+
+def within(points: Array, outline: Array) -> bool:
+    """Whether all points (n, 2) lie inside the closed polyline (m, 2), by counting crossings."""
+    start, end = outline, np.roll(outline, -1, axis=0)
+    x, y = points[:, :1], points[:, 1:]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        cross = start[:, 0] + (y - start[:, 1]) * (end - start)[:, 0] / (end - start)[:, 1]
+    hits = ((start[:, 1] > y) != (end[:, 1] > y)) & (x < cross)
+    return bool((hits.sum(axis=1) % 2 == 1).all())
 
 
 def _chords(points: Array) -> Array:

@@ -7,26 +7,47 @@ piece. Where the strips then lie follows from the pattern alone.
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import NDArray
 
 from develop.pattern.pattern import Pattern
-from develop.quadrature import Array
+from develop.quadrature import Array, Indices
 from develop.solid.solid import Solid
 
-__all__ = ["closing_miss", "folded"]
+__all__ = ["closing_miss", "folded", "placed"]
 
 _Complex = NDArray[np.complex128]
+_FLIP = np.array([-1.0, 1.0])
 
 
-def folded(pattern: Pattern, solid: Solid) -> tuple[Array, Array, Array]:
-    """The lines' ends (n, 3) [mm] and outward normals (n, 3) of the folded sheet, in the piece frame."""
+@dataclass(frozen=True)
+class _Folded:
+    """A sheet folded up: its lines in the flat, and each strip's place in the piece frame.
+
+    starts (n, 2): the lines' ends on edge A in the flat; axes (n, 2): their directions.
+    a, b, normal: (n, 3) in space. x, y, up: (n - 1, 3), where each strip's axes have gone; turn
+    (n - 1,): of the sheet over each strip [rad].
+    """
+
+    starts: Array
+    axes: Array
+    a: Array
+    b: Array
+    normal: Array
+    x: Array
+    y: Array
+    up: Array
+    turn: Array
+
+
+def _fold(pattern: Pattern, solid: Solid) -> _Folded:
     lines = pattern.rulings
     flat_a, flat_b, turn = lines.a, lines.b, lines.turn
     if pattern.face == "inside":
         # The inside is up: seen from the outside, the sheet is the mirror image.
-        flip = np.array([-1.0, 1.0])
-        flat_a, flat_b = (flat_a * flip)[::-1], (flat_b * flip)[::-1]
+        flat_a, flat_b = (flat_a * _FLIP)[::-1], (flat_b * _FLIP)[::-1]
         turn = np.append(0.0, turn[1:][::-1])
 
     leg = flat_b - flat_a
@@ -36,25 +57,51 @@ def folded(pattern: Pattern, solid: Solid) -> tuple[Array, Array, Array]:
     bend = half.copy()
     bend[1:] += half[:-1]
     alpha, beta = _running_product(0.5 * bend[:-1], axis[:-1])
-    x, y, z = _axes(alpha, beta)
-    strips = np.concatenate([np.arange(len(x)), [len(x) - 1]])
+    place = _seam_axes(solid) @ _flat_axes(axis[0]).T
+    x, y, z = (each @ place.T for each in _axes(alpha, beta))
 
     def turned(vector: Array) -> Array:
         return vector[:, :1] * x + vector[:, 1:] * y
 
-    steps = turned(np.diff(flat_a, axis=0))
-    a = np.vstack([np.zeros(3), np.cumsum(steps, axis=0)])
+    start = solid.strip(np.array([solid.seam]))
+    origin = start.a[0] + solid.distance * start.normal[0]
+    a = origin + np.vstack([np.zeros(3), np.cumsum(turned(np.diff(flat_a, axis=0)), axis=0)])
     along = np.vstack([turned(axis[:-1]), axis[-1:, :1] * x[-1] + axis[-1:, 1:] * y[-1]])
     b = a + np.hypot(*leg.T)[:, None] * along
     # On a line the sheet stands between its strips: half a turn back from the one on the right.
     lean = np.append(half[:-1], -half[-2])[:, None]
-    up = z[strips]
+    up = np.vstack([z, z[-1:]])
     normal = np.cos(lean) * up - np.sin(lean) * np.cross(along, up)
+    return _Folded(flat_a, axis, a, b, normal, x, y, z, turn[1:])
 
-    place = _seam_axes(solid) @ _flat_axes(axis[0]).T
-    start = solid.strip(np.array([solid.seam]))
-    origin = start.a[0] + solid.distance * start.normal[0]
-    return a @ place.T + origin, b @ place.T + origin, normal @ place.T
+
+def folded(pattern: Pattern, solid: Solid) -> tuple[Array, Array, Array]:
+    """The lines' ends (n, 3) [mm] and outward normals (n, 3) of the folded sheet, in the piece frame."""
+    sheet = _fold(pattern, solid)
+    return sheet.a, sheet.b, sheet.normal
+
+
+def placed(pattern: Pattern, solid: Solid, points: Array) -> tuple[Array, Array]:
+    """Where points (k, 2) [mm] of the flat lie on the folded sheet, (k, 3), and the normals there (k, 3)."""
+    sheet = _fold(pattern, solid)
+    flat = points * _FLIP if pattern.face == "inside" else points
+    # The strip is told by how many lines a point lies to the right of.
+    gap = flat[:, None] - sheet.starts[None, 1:-1]
+    right = sheet.axes[1:-1, 1] * gap[..., 0] - sheet.axes[1:-1, 0] * gap[..., 1] > 0.0
+    strip = right.sum(axis=1)
+    step = flat - sheet.starts[strip]
+    points = sheet.a[strip] + step[:, :1] * sheet.x[strip] + step[:, 1:] * sheet.y[strip]
+
+    def beyond(line: Indices) -> Array:
+        gap = flat - sheet.starts[line]
+        return np.abs(sheet.axes[line, 1] * gap[:, 0] - sheet.axes[line, 0] * gap[:, 1])
+
+    # Across a strip the sheet that it stands for turns evenly.
+    left, rest = beyond(strip), beyond(strip + 1)
+    lean = (sheet.turn[strip] * (left / np.maximum(left + rest, 1e-300) - 0.5))[:, None]
+    along = sheet.axes[strip, :1] * sheet.x[strip] + sheet.axes[strip, 1:] * sheet.y[strip]
+    up = sheet.up[strip]
+    return points, np.cos(lean) * up + np.sin(lean) * np.cross(along, up)
 
 
 def closing_miss(pattern: Pattern, solid: Solid) -> float:

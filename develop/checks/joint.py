@@ -9,31 +9,55 @@ import numpy as np
 from develop.checks.fold import folded
 from develop.pattern.pattern import Pattern
 from develop.quadrature import Array
+from develop.solid.end import End
+from develop.solid.flat import FlatPlate, FlatRing
 from develop.solid.frame import Frame
 from develop.solid.solid import Solid
 
 __all__ = ["Side", "joint_miss"]
 
+_CHORDS = 1e-3  # [mm]
+
 
 @dataclass(frozen=True)
 class Side:
-    """One side of a joint: end `a` or `b` of a part, and where the part stands in the piece."""
+    """One side of a joint: end `a` or `b` of a rolled part or an edge of a flat one, and where the part
+    stands in the piece."""
 
     pattern: Pattern
-    solid: Solid
+    solid: Solid | FlatRing | FlatPlate
     frame: Frame
     end: str
 
     @property
     def length(self) -> float:
         """Length of the edge [mm]."""
-        curve = self.pattern.net.curve(self.end)
-        return curve.length if curve else 0.0
+        outlines = (self.pattern.net, *self.pattern.openings)
+        curves = (curve for outline in outlines for name, curve in outline.curves if name == self.end)
+        return sum(curve.length for curve in curves)
+
+    @property
+    def distance(self) -> float:
+        """Of the developed sheet outside the surface that its ends are given on [mm]."""
+        return self.solid.distance if isinstance(self.solid, Solid) else 0.0
+
+    @property
+    def curve(self) -> End:
+        """Where the edge should lie, in the part's own frame."""
+        if isinstance(self.solid, Solid):
+            return self.solid.end_a if self.end == "a" else self.solid.end_b
+        return self.solid.end(self.end)
 
     def edge(self) -> Array:
         """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame."""
-        a, b, normal = folded(self.pattern, self.solid)
-        points = (a if self.end == "a" else b) - self.solid.distance * normal
+        if isinstance(self.solid, Solid):
+            a, b, normal = folded(self.pattern, self.solid)
+            points = (a if self.end == "a" else b) - self.solid.distance * normal
+        else:
+            outlines = (self.pattern.net, *self.pattern.openings)
+            curves = (curve for outline in outlines for name, curve in outline.curves if name == self.end)
+            flat = np.vstack([curve.polyline(_CHORDS) for curve in curves]) - self.solid.shift
+            points = np.column_stack([flat, np.zeros(len(flat))])
         return points @ self.frame.axes + self.frame.origin
 
 
@@ -42,6 +66,5 @@ def joint_miss(side: Side, other: Side) -> float:
     misses = []
     for mine, yours in ((side, other), (other, side)):
         local = (mine.edge() - yours.frame.origin) @ yours.frame.axes.T
-        end = yours.solid.end_a if yours.end == "a" else yours.solid.end_b
-        misses.append(float(np.max(end.distance(local))))
+        misses.append(float(np.max(yours.curve.distance(local))))
     return max(misses)

@@ -224,9 +224,9 @@ def _piece(
     # What a piece says itself goes before a default, also where the two exclude each other.
     settled = {*own, *_NEVER_DEFAULTS}
     for each in fields_of(kind):
-        if each.not_with:
-            settled |= {each.not_with} if each.name in own else set()
-            settled |= {each.name} if each.not_with in own else set()
+        for other in each.not_with:
+            settled |= {other} if each.name in own else set()
+            settled |= {each.name} if other in own else set()
     shared = {
         each.name: defaults[each.name]
         for each in fields_of(kind)

@@ -8,12 +8,13 @@ from typing import TYPE_CHECKING
 
 from develop.job.writing import write_all
 from develop.pieces.fields import Piece, record_of
+from develop.pieces.hand import builds_of
 
 if TYPE_CHECKING:
     from develop.checks import Check
     from develop.pieces.built import Built
 
-__all__ = ["FORMATS", "Outcome", "checks_of", "make"]
+__all__ = ["FORMATS", "Outcome", "checks_of", "checks_of_all", "make"]
 
 # In the order in which they are written and named.
 FORMATS = ("svg", "pdf", "json", "png")
@@ -39,27 +40,42 @@ def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS) -> Outc
 
     Raises Refusal for a piece that cannot be, WriteError for a place that cannot be written.
     """
-    built = piece.build()
-    checks = checks_of(built)
+    builds = builds_of(piece)
+    checks = checks_of_all(builds)
     files: dict[str, bytes] = {}
     if _DRAWN.intersection(formats):
         from develop.pattern.layout import lettered
 
-        built = built.with_patterns([lettered(pattern) for pattern in built.patterns])
+        builds = tuple(
+            built.with_patterns([lettered(pattern) for pattern in built.patterns]) for built in builds
+        )
     for each in FORMATS:
         if each in formats:
-            files |= _files(each, piece, built, checks)
+            files |= _files(each, piece, builds, checks)
     write_all(folder, files)
     return Outcome(mark=piece.mark, files=tuple(files), checks=checks)
 
 
+def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
+    """Every check of a piece as built and of its opposite hand, if it has one."""
+    from develop.checks import check_hand
+
+    found = list(checks_of(builds[0]))
+    for other in builds[1:]:
+        mark = other.patterns[0].mark
+        found += [replace(each, name=f"{mark}: {each.name}") for each in checks_of(other)]
+        sides = ([(part.solid, part.frames) for part in built.parts] for built in (builds[0], other))
+        found.append(check_hand(mark, *sides))
+    return tuple(found)
+
+
 def checks_of(built: Built) -> tuple[Check, ...]:
     """Every check of a piece: of each part, named by its mark where there are several, and of the joints."""
-    from develop.checks import Side, check, check_joint
+    from develop.checks import Side, check_joint, check_part
 
     found: list[Check] = []
     for part in built.parts:
-        own = check(part.pattern, part.solid)
+        own = check_part(part.pattern, part.solid)
         if len(built.parts) > 1:
             own = tuple(replace(each, name=f"{part.pattern.mark}: {each.name}") for each in own)
         found += own
@@ -71,21 +87,25 @@ def checks_of(built: Built) -> tuple[Check, ...]:
                 (built.parts[joint.other], joint.other_end, joint.other_place),
             )
         ]
-        found += check_joint(" to ".join(side.pattern.mark for side in sides), *sides)
+        name = joint.name or " to ".join(side.pattern.mark for side in sides)
+        found += check_joint(name, *sides)
     return tuple(found)
 
 
-def _files(ending: str, piece: Piece, built: Built, checks: tuple[Check, ...]) -> dict[str, bytes]:
+def _files(
+    ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]
+) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
+    patterns = [pattern for built in builds for pattern in built.patterns]
     if ending == "svg":
         from develop.outputs.svg import svg
 
-        return {f"{pattern.mark}.svg": svg(pattern) for pattern in built.patterns}
+        return {f"{pattern.mark}.svg": svg(pattern) for pattern in patterns}
     if ending == "pdf":
         from develop.outputs.pdf import pdf
 
-        return {f"{mark}.pdf": pdf(built.patterns)}
+        return {f"{mark}.pdf": pdf(patterns)}
     if ending == "json":
         from develop.outputs.record import record
 
@@ -93,10 +113,18 @@ def _files(ending: str, piece: Piece, built: Built, checks: tuple[Check, ...]) -
             mark=mark,
             kind=piece.kind,
             fields=record_of(piece),
-            patterns=built.patterns,
+            patterns=patterns,
             checks=checks,
         )
         return {f"{mark}.json": data}
+    from develop.solid import Solid
+
+    title = f"{mark}: {patterns[0].facts[1]}"
+    solid = builds[0].solid
+    if not isinstance(solid, Solid):
+        from develop.outputs.flat_picture import flat_picture
+
+        return {f"{mark}.png": flat_picture(builds[0].parts, title)}
     from develop.outputs.picture import picture
 
-    return {f"{mark}.png": picture(built.solid, f"{mark}: {built.patterns[0].facts[1]}")}
+    return {f"{mark}.png": picture(builds[0].placed, title)}

@@ -14,7 +14,7 @@ from itertools import pairwise
 from develop.outputs.fonts import width
 from develop.outputs.ink import Ink
 from develop.pattern.pattern import Pattern
-from develop.pattern.table import Table, divisions_table
+from develop.pattern.table import Table, divisions_table, figures_table
 
 __all__ = ["Panel", "panels"]
 
@@ -56,11 +56,14 @@ class Panel:
 
 def panels(pattern: Pattern, *, units: str, tiny: bool, heights: Sequence[float]) -> Iterator[Panel]:
     """The panel packed into columns of at most each of the heights, where its largest block allows it."""
-    table = divisions_table(pattern.divisions, units=units)
+    tables = [
+        divisions_table(pattern.divisions, units=units),
+        *(figures_table(each, units=units) for each in pattern.figures),
+    ]
     fixed = [_square(50.0 if tiny else 100.0), _title(pattern), _view(), _notes(pattern, units)]
     for height in heights:
         height = max(height, *(block.high for block in fixed))
-        yield _packed([*fixed, *_tables(table, height)], height)
+        yield _packed([*fixed, *(part for table in tables for part in _tables(table, height))], height)
 
 
 def _packed(blocks: list[_Block], height: float) -> Panel:

@@ -1,15 +1,16 @@
 """Picture of the finished piece: shaded, in perspective, both ends and the seam shown, as PNG.
 
-The scene is projected and put in order here; matplotlib only fills the polygons. The wall of
-a piece is the side of a convex body: what is seen of its inside lies behind whatever is seen
-of its outside, and lines on the wall turned away from the eye lie between the two. So lines
-are hidden exactly where the piece hides them.
+The scene is projected and put in order here; matplotlib only fills the polygons. Walls are cut into
+cells of much the same size, which are drawn from the farthest to the nearest; a line on a wall is
+drawn with the nearest of the cells about it. So whatever lies in front hides what is behind, also
+where a piece of several parts bends round in front of itself.
 """
 
 from __future__ import annotations
 
 import io
 import math
+from collections.abc import Sequence
 from typing import Protocol
 
 import numpy as np
@@ -25,10 +26,12 @@ _OUTSIDE, _INSIDE = np.array([0.56, 0.64, 0.72]), np.array([0.47, 0.45, 0.43])
 _EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
 _RIM = 240
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
+_CELL = 1.0 / 40.0  # length of a cell along a wall over the size of the piece
+_ABOUT = 6  # cells that lie about a place on a wall
 
 
 class Piece(Protocol):
-    """What a finished piece must tell to be drawn."""
+    """What a part of a finished piece must tell to be drawn."""
 
     def faces(self) -> tuple[Array, NDArray[np.int64]]:
         """Vertices (n, 3) [mm] and faces (m, 4), indices into them, all the same way round.
@@ -71,34 +74,37 @@ class _Camera:
         return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
 
 
-def picture(solid: Piece, title: str) -> bytes:
-    """PNG of the piece in perspective, equal scale in all directions; the same piece gives the same bytes."""
+def picture(pieces: Sequence[Piece], title: str) -> bytes:
+    """PNG of a piece in perspective, equal scale in all directions; the same piece gives the same bytes.
+
+    pieces: its parts where they stand, the first with END A, the last with END B.
+    """
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.collections import PolyCollection
     from matplotlib.figure import Figure
 
-    vertices, faces = solid.faces()
+    vertices = np.vstack([piece.faces()[0] for piece in pieces])
     low, high = vertices.min(axis=0), vertices.max(axis=0)
     centre, size = (low + high) / 2.0, float(np.linalg.norm(high - low))
     # From the side of the seam, if it has one.
-    aside = -1.0 if solid.seam_line[:, 0].mean() < centre[0] - 1e-6 * size else 1.0
+    aside = -1.0 if pieces[0].seam_line[:, 0].mean() < centre[0] - 1e-6 * size else 1.0
     camera = _Camera(centre, size, aside=aside)
-    lines = _lines(solid)
     with matplotlib.rc_context():
         matplotlib.rcdefaults()  # a user's own settings must not change the picture
         figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
         axes = figure.add_axes((0.02, 0.02, 0.96, 0.88))
         axes.set_axis_off()
         axes.set_aspect("equal")
-        polygons, fill, stroke, widths = _scene(camera, vertices, faces, lines)
+        polygons, fill, stroke, widths = _scene(camera, pieces, _CELL * size)
         axes.add_collection(
             PolyCollection(polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round")
         )
-        seam = camera.project(solid.seam_line)
-        axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
+        for piece in pieces:
+            seam = camera.project(piece.seam_line)
+            axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
         corners = camera.project(vertices)
-        for text, start, end, colour in _words(camera, solid):
+        for text, start, end, colour in _words(camera, pieces):
             axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
             ahead = (end - start) / np.hypot(*(end - start))
             x, y = end + 0.012 * ahead
@@ -125,21 +131,22 @@ def _side(way: float, back: str, ahead: str) -> str:
     return "center" if abs(way) < 0.5 else (ahead if way > 0.0 else back)
 
 
-def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]:
+def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, Array, str]]:
     """The words with their leaders: text, start and end of the leader in the picture (2,), colour."""
     words = []
-    rim_a, rim_b = solid.rim_a(_RIM), solid.rim_b(_RIM)
-    corners = np.vstack([camera.project(rim_a + t * (rim_b - rim_a)) for t in np.linspace(0.0, 1.0, 25)])
+    first, rims = pieces[0], [(piece.rim_a(_RIM), piece.rim_b(_RIM)) for piece in pieces]
+    corners = np.vstack([camera.project(a + t * (b - a)) for a, b in rims for t in np.linspace(0.0, 1.0, 25)])
+    rim_a, rim_b = rims[0]
     height = (rim_a[:, 1].mean() + rim_b[:, 1].mean()) / 2.0
     middle = corners.mean(axis=0)
-    for text, rim in (("END A", rim_a), ("END B", rim_b)):
+    for text, rim in (("END A", rim_a), ("END B", rims[-1][1])):
         places = camera.project(rim)
         away = places.mean(axis=0) - middle
         away = np.array([math.copysign(0.85, away[0]), math.copysign(0.35, away[1])])
         start = places[int(np.argmax(places @ away))]
         words.append((text, start, start + 0.07 * away / np.hypot(*away), _EDGE))
     ends: list[Array] = []
-    lines = (("TOP", solid.top_line, 0.6, _TOP), ("SEAM", solid.seam_line, 0.35, _SEAM))
+    lines = (("TOP", first.top_line, 0.6, _TOP), ("SEAM", first.seam_line, 0.35, _SEAM))
     for text, line, share, colour in lines:
         start = camera.project(line[0] + share * (line[1] - line[0]))
         column = corners[np.abs(corners[:, 0] - start[0]) < 0.04]
@@ -154,52 +161,61 @@ def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]
     return words
 
 
-def _lines(solid: Piece) -> list[tuple[Array, str, float]]:
+def _lines(piece: Piece) -> list[tuple[Array, str, float]]:
     """Lines on the piece: points (n, 3), colour, width in points."""
-    rims = [np.vstack([rim, rim[:1]]) for rim in (solid.rim_a(_RIM), solid.rim_b(_RIM))]
+    rims = [np.vstack([rim, rim[:1]]) for rim in (piece.rim_a(_RIM), piece.rim_b(_RIM))]
     share = np.linspace(0.0, 1.0, 61)[:, None]
-    seam, top = (line[0] + share * (line[1] - line[0]) for line in (solid.seam_line, solid.top_line))
+    seam, top = (line[0] + share * (line[1] - line[0]) for line in (piece.seam_line, piece.top_line))
     return [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7), (seam, _SEAM, 2.2)]
 
 
-def _scene(
-    camera: _Camera, vertices: Array, faces: NDArray[np.int64], lines: list[tuple[Array, str, float]]
-) -> tuple[list[Array], Array, Array, Array]:
-    """Polygons (2-D) from the back to the front, fill and stroke colours (n, 4), stroke widths (n,)."""
+def _scene(camera: _Camera, pieces: Sequence[Piece], cell: float) -> tuple[list[Array], Array, Array, Array]:
+    """Polygons (2-D) from the back to the front, fill and stroke colours (n, 4), stroke widths (n,).
+
+    cell: how long a cell of a wall may be [mm].
+    """
     from matplotlib.colors import to_rgba
 
-    corners = vertices[faces]
-    normal = _outward(corners)
-    middle = corners.mean(axis=1)
-    outside = _faces_eye(camera, middle, normal)
-    flat = camera.project(corners)
-    # Places on each face from end A to end B, to find the face that a line runs on.
-    share = np.linspace(0.0, 1.0, 7)[:, None, None]
-    at_a, at_b = corners[:, :2].mean(axis=1), corners[:, 2:].mean(axis=1)
-    grid = (at_a + share * (at_b - at_a)).reshape(-1, 3)
-    colours = np.hstack([_shades(camera, normal, outside), np.ones((len(faces), 1))])
     polygons: list[Array] = []
-    fill: list[Array] = []
-    stroke: list[Array] = []
-    widths: list[Array] = []
-    for front in (False, True):
-        some = outside == front
-        polygons += list(flat[some])
-        fill.append(colours[some])
-        stroke.append(colours[some])  # closes the hair gaps between the polygons
-        widths.append(np.full(int(some.sum()), 0.4))
-        for points, colour, width in lines:
+    far, fill, stroke, widths = [], [], [], []
+    for piece in pieces:
+        vertices, faces = piece.faces()
+        corners = vertices[faces]
+        corners, normal = _cells(corners, _outward(corners), cell)
+        middle = corners.mean(axis=1)
+        away = np.linalg.norm(middle - camera.eye, axis=1)
+        outside = _faces_eye(camera, middle, normal)
+        colours = np.hstack([_shades(camera, normal, outside), np.ones((len(corners), 1))])
+        polygons += list(camera.project(corners))
+        far.append(away)
+        fill.append(colours)
+        stroke.append(colours)  # closes the hair gaps between the polygons
+        widths.append(np.full(len(corners), 0.4))
+        for points, colour, width in _lines(piece):
             middles = (points[:-1] + points[1:]) / 2.0
-            far = (grid**2).sum(axis=1) - 2.0 * middles @ grid.T
-            nearest = np.argmin(far, axis=1) % len(faces)
-            seen = _faces_eye(camera, middles, normal[nearest]) == front
-            flat_line = camera.project(points)
-            polygons += list(np.stack([flat_line[:-1], flat_line[1:]], axis=1)[seen])
-            count = int(seen.sum())
-            fill.append(np.zeros((count, 4)))
-            stroke.append(np.tile(to_rgba(colour), (count, 1)))
-            widths.append(np.full(count, width))
-    return polygons, np.vstack(fill), np.vstack(stroke), np.concatenate(widths)
+            apart = (middle**2).sum(axis=1) - 2.0 * middles @ middle.T
+            about = np.argpartition(apart, min(_ABOUT, len(middle) - 1), axis=1)[:, :_ABOUT]
+            flat = camera.project(points)
+            polygons += list(np.stack([flat[:-1], flat[1:]], axis=1))
+            # After the last of the cells about it, of which the line hides a little.
+            far.append(np.nextafter(away[about].min(axis=1), 0.0))
+            fill.append(np.zeros((len(middles), 4)))
+            stroke.append(np.tile(to_rgba(colour), (len(middles), 1)))
+            widths.append(np.full(len(middles), width))
+    order = np.argsort(-np.concatenate(far), kind="stable")
+    inks = [np.concatenate(each)[order] for each in (fill, stroke, widths)]
+    return [polygons[i] for i in order], inks[0], inks[1], inks[2]
+
+
+def _cells(corners: Array, normal: Array, cell: float) -> tuple[Array, Array]:
+    """Faces (m, 4, 3) cut across from end A to end B into equal cells, with their normals (n, 3)."""
+    a, b = corners[:, :2], corners[:, :1:-1]  # both from left to right
+    longest = float(np.linalg.norm(b - a, axis=-1).max())
+    rows = max(math.ceil(longest / cell), 1)
+    share = (np.arange(rows + 1) / rows)[:, None, None, None]
+    cuts = a + share * (b - a)
+    cells = np.concatenate([cuts[:-1], cuts[1:, :, ::-1]], axis=2)
+    return cells.reshape(-1, 4, 3), np.tile(normal, (rows, 1))
 
 
 def _outward(corners: Array) -> Array:

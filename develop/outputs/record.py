@@ -10,7 +10,7 @@ from typing import Protocol
 import numpy as np
 
 from develop.pattern.curve import Array
-from develop.pattern.pattern import Outline, Pattern
+from develop.pattern.pattern import Figures, Outline, Pattern
 
 __all__ = ["Verdict", "record"]
 
@@ -105,6 +105,16 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
             }
             for division in pattern.divisions
         ],
+        **({"figures": [_figures(each) for each in pattern.figures]} if pattern.figures else {}),
+    }
+
+
+def _figures(figures: Figures) -> dict[str, object]:
+    """A further table, lengths with all their digits."""
+    return {
+        "title": figures.title,
+        "heads": [" ".join(filter(None, head)) for head in figures.heads],
+        "rows": [list(row) for row in figures.rows],
     }
 
 

@@ -15,15 +15,16 @@ from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of, t
 from develop.pattern.pattern import Label, Outline, Pattern
 from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
 
-__all__ = ["CUT", "LAYERS", "NET", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
+__all__ = ["CUT", "LAYERS", "NET", "PRESS_LINES", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
 
 CUT = "cut"
 NET = "net"
 ROLL_LINES = "roll-lines"
+PRESS_LINES = "press-lines"
 WITNESS_MARKS = "witness-marks"
 TEXT = "text"
 _ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
-LAYERS = (CUT, NET, ROLL_LINES, WITNESS_MARKS, TEXT)
+LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, WITNESS_MARKS, TEXT)
 
 
 class Pen(Protocol):
@@ -67,7 +68,7 @@ def draw(pattern: Pattern, pen: Pen) -> None:
     if pattern.full_lines:
         strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
     if len(strokes):
-        pen.layer(ROLL_LINES)
+        pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
         for start, end in strokes:
             pen.line(start, end)
     marks = witness_strokes(pattern.marks, lengths)

@@ -22,6 +22,7 @@ from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, l
 __all__ = ["lay_out", "lettered"]
 
 _FLOW = "FLOW"
+_TINIEST = 0.02  # [mm]
 _LINE = 1.75  # from baseline to baseline over the height of capitals
 _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0.82, 0.12, 0.88])
 
@@ -29,7 +30,17 @@ _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0
 def lettered(pattern: Pattern) -> Pattern:
     """The pattern with its words, as every drawing of it needs them."""
     rows = pattern.divisions
-    seams = [np.vstack([row.a, row.b]) for row in (rows[0], rows[len(rows) // 2], rows[-1])]
+    across = np.array([(row.a, row.b) for row in rows]) if rows else pattern.places
+    middle = across[len(rows) // 2]
+    bent = any(line.press for line in pattern.lines)
+    if bent:
+        # Between press lines the widest flat has the most room.
+        between = (across[1:] + across[:-1]) / 2.0
+        wide = np.hypot(*np.moveaxis(np.diff(across, axis=0), -1, 0)).sum(axis=1).round(3)
+        from_middle = np.abs(np.arange(len(wide)) - (len(wide) - 1) / 2.0)
+        middle = between[np.lexsort((from_middle, -wide))[0]]
+    seams = across[[0, 0, -1]].copy()
+    seams[1] = middle
     labels, arrows = lay_out(
         pattern.net,
         pattern.facts,
@@ -40,7 +51,12 @@ def lettered(pattern: Pattern) -> Pattern:
         marks=pattern.marks,
         lines=pattern.lines,
         divisions=rows,
+        seam_words=("SEAM", "SEAM") if rows else ("", ""),
         full_lines=pattern.full_lines,
+        openings=pattern.openings,
+        places=None if rows else pattern.places,
+        avoid=pattern.dashed,
+        arrow=pattern.arrow,
     )
     return replace(pattern, labels=labels, arrows=arrows)
 
@@ -59,6 +75,9 @@ def lay_out(
     avoid: Sequence[Curve] = (),
     seam_words: tuple[str, str] = ("SEAM", "SEAM"),
     full_lines: bool = False,
+    openings: Sequence[Outline] = (),
+    places: Array | None = None,
+    arrow: str = _FLOW,
 ) -> tuple[tuple[Label, ...], tuple[tuple[Array, str], ...]]:
     """Labels and arrows of a sheet, none over another, over a mark or over the outline.
 
@@ -67,18 +86,28 @@ def lay_out(
     flow: `a to b`, `b to a`, or empty for none. marks: their words are placed. lines: only
     their ticks are kept clear; full lines are interrupted by whoever draws them. divisions:
     numbered at the edges where that stays clear. avoid: further curves to be kept clear.
+    openings: no word stands in them. places: lines (n, 2, 2) [mm] that words may stand on, where
+    there are no divisions. arrow: the word at the arrow of the flow.
 
     What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
     height = text_height(net)
     words = max(SMALLEST, 0.8 * height)
-    sheet = Sheet(net, marks, lines, avoid, full_lines)
+    sheet = Sheet(net, marks, lines, avoid, full_lines, openings)
     sheet.write([*_witness_words(marks, sheet.lengths, height, words), *_end_words(net, height)])
-    strip = _Strip.of(net, np.asarray(mid_line, dtype=float), divisions)
-    block = _facts(sheet, strip, tuple(facts), height)
-    arrows = _flow(sheet, strip, block, flow, height)
+    if places is not None and not divisions:
+        strip = _Strip(places[:, 0], places[:, 1])
+    else:
+        strip = _Strip.of(net, np.asarray(mid_line, dtype=float), divisions)
+    flat = not divisions and places is not None
+    block = _facts(sheet, strip, tuple(facts), height, least=sheet.least if flat else _TINIEST)
+    if flat and block is None:
+        # On a narrow ring the mark is worth more than all the facts too small to be read.
+        block = _facts(sheet, strip, tuple(facts[:1]), height)
+    arrows = _flow(sheet, strip, block, flow, height, arrow)
     sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
-    _numbers(sheet, divisions, height, max(SMALLEST, 0.5 * height))
+    sheet.write(_press_words(lines, max(SMALLEST, 0.5 * height)))
+    _numbers(sheet, divisions, height, max(SMALLEST, 0.5 * height), fans=any(line.press for line in lines))
     return tuple(sheet.labels), arrows
 
 
@@ -170,8 +199,10 @@ def _end_words(net: Outline, height: float) -> list[Word]:
     return [word(text, curve, shares) for text, curve, shares in ends if curve is not None]
 
 
-def _facts(sheet: Sheet, strip: _Strip, facts: tuple[str, ...], height: float) -> Boxes | None:
-    """The block of facts; returns its box."""
+def _facts(
+    sheet: Sheet, strip: _Strip, facts: tuple[str, ...], height: float, *, least: float = _TINIEST
+) -> Boxes | None:
+    """The block of facts, in text of `least` [mm] or more; returns its box."""
     if not facts:
         return None
     square = strip.angle
@@ -180,8 +211,9 @@ def _facts(sheet: Sheet, strip: _Strip, facts: tuple[str, ...], height: float) -
     # Share of the height wanted, and whether the lines run along the roll lines; the other
     # way of reading is worth a loss of a third in height, not less.
     steps = [(1.0, 0), (0.8, 0), (0.65, 0), (1.0, 1), (0.8, 1), (0.5, 0), (0.65, 1), (0.4, 0), (0.5, 1)]
-    while steps[-1][0] * height > 0.02:
+    while steps[-1][0] * height > _TINIEST:
         steps += [(0.8 * share, way) for share, way in steps[-2:]]
+    steps = [step for step in steps if step[0] * height >= least]
     for share, way in steps:
         size = share * height
         for lines in _wrapped(facts, narrow=share > 0.6):
@@ -217,7 +249,7 @@ def _wrapped(facts: tuple[str, ...], *, narrow: bool) -> list[tuple[str, ...]]:
 
 
 def _flow(
-    sheet: Sheet, strip: _Strip, block: Boxes | None, flow: str, height: float
+    sheet: Sheet, strip: _Strip, block: Boxes | None, flow: str, height: float, word: str
 ) -> tuple[tuple[Array, str], ...]:
     """The arrow of the flow: beside the block of facts, else where there is room."""
     if not flow:
@@ -240,12 +272,12 @@ def _flow(
         tips = np.stack([centre - ahead * 0.33 * size, centre + ahead * 0.67 * size], axis=1)
         if flow == "b to a":
             tips = np.stack([centre + ahead * 0.33 * size, centre - ahead * 0.67 * size], axis=1)
-        each = [arrow_box(arrow, _FLOW) for arrow in tips]
+        each = [arrow_box(arrow, word) for arrow in tips]
         boxes = Boxes(*(np.vstack(part) for part in zip(*each, strict=True)))
         good = np.flatnonzero(sheet.free(boxes, 0.08 * size))
         if len(good):
             sheet.take(rows_of(boxes, good[:1]))
-            return ((tips[good[0]], _FLOW),)
+            return ((tips[good[0]], word),)
     return ()
 
 
@@ -272,10 +304,34 @@ def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: floa
     ]
 
 
-def _numbers(sheet: Sheet, divisions: Sequence[Division], tick: float, height: float) -> None:
-    """The numbers of the divisions at both edges; every second, third, ... where they are close."""
+def _press_words(lines: Sequence[RollLine], height: float) -> list[Word]:
+    """The angle of each press line, on the line."""
+
+    def word(line: RollLine) -> Word:
+        ahead = line.end - line.start
+        angle = upright(math.atan2(ahead[1], ahead[0]))
+        on = line.start + np.array([0.62, 0.7, 0.55, 0.78, 0.48])[:, None] * ahead
+
+        def places(size: float) -> tuple[Array, Array]:
+            return on, np.full(len(on), angle)
+
+        return Word(f"{math.degrees(line.turn):.1f}°", height, places)
+
+    return [word(line) for line in lines if line.press]
+
+
+def _numbers(
+    sheet: Sheet, divisions: Sequence[Division], tick: float, height: float, *, fans: bool = False
+) -> None:
+    """The numbers of the divisions at both edges; every second, third, ... where they are close.
+
+    fans: lines meet in corners, and are numbered only at the edge where they lie farther apart.
+    """
     rows = [row for row in divisions if np.hypot(*(row.b - row.a)) > 0.0]
-    edges = (0, 1) if sheet.both_ends else (0,)  # at a point there is no room for numbers
+    edges: tuple[int, ...] = (0, 1) if sheet.both_ends else (0,)  # at a point there is no room for numbers
+    if fans and len(edges) > 1 and len(rows) > 1:
+        ends = np.array([(row.a, row.b) for row in rows])
+        edges = (int(np.argmax(np.median(np.hypot(*np.moveaxis(np.diff(ends, axis=0), -1, 0)), axis=0))),)
     for edge in edges if len(rows) > 1 else ():
         at = np.array([(row.a, row.b)[edge] for row in rows])
         ahead = np.array([(row.b, row.a)[edge] for row in rows]) - at

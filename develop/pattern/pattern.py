@@ -8,9 +8,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 
+import numpy as np
+
 from develop.pattern.curve import Array, Curve
 
-__all__ = ["Division", "Label", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
+__all__ = ["Division", "Figures", "Label", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
 
 
 @dataclass(frozen=True)
@@ -36,12 +38,14 @@ class RollLine:
 
     start, end: (2,) [mm]. turn: of the sheet from the line before [rad].
     radius: roll radius where the line meets edge A and edge B [mm], inf where flat.
+    press: the line is a press line, bent by `turn` at once; it may stop short of the edges.
     """
 
     start: Array
     end: Array
     turn: float
     radius: tuple[float, float]
+    press: bool = False
 
 
 @dataclass(frozen=True)
@@ -77,6 +81,18 @@ class WitnessMark:
 
 
 @dataclass(frozen=True)
+class Figures:
+    """A further table of figures to mark out by. heads: two lines each, the lower may be empty.
+
+    rows: words as they are, numbers as lengths [mm].
+    """
+
+    title: str
+    heads: tuple[tuple[str, str], ...]
+    rows: tuple[tuple[str | float, ...], ...]
+
+
+@dataclass(frozen=True)
 class Label:
     """A line of text. at: middle of its baseline (2,) [mm]; angle anticlockwise [rad];
     height of its capitals [mm]."""
@@ -109,7 +125,11 @@ class Pattern:
 
     face: `outside` or `inside`, the face of the finished piece that is up.
     facts: lines of text that every sheet states: mark and kind, name and sizes, material, face.
-    flow: `a to b`, `b to a`, or empty where nothing flows.
+    openings_as: whether the openings are `cut`, only `marked`, or cut but left on `ties`.
+    flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
+    places: lines (n, 2, 2) [mm] across a flat part, best first, that its words stand on square;
+        a rolled part has its divisions for that.
+    figures: further tables.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
     """
@@ -128,7 +148,11 @@ class Pattern:
     datum: str
     full_lines: bool
     rulings: Rulings
+    openings_as: str = "cut"
     flow: str = ""
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())
+    arrow: str = "FLOW"
+    places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
+    figures: tuple[Figures, ...] = ()

@@ -44,12 +44,16 @@ class Sheet:
         lines: Sequence[RollLine],
         avoid: Sequence[Curve],
         full_lines: bool,
+        openings: Sequence[Outline] = (),
     ) -> None:
         tolerance = 0.05 * text_height(net)
         self.outline = ring(net, tolerance)
+        rings = [self.outline, *(ring(opening, tolerance) for opening in openings)]
+        # Start and end of every side of the outline and of the openings.
+        self.sides = np.vstack([np.stack([each, np.roll(each, -1, axis=0)], axis=1) for each in rings])
         self.lengths = witness_lengths(net, marks, self.outline)
         strokes = [
-            np.stack([self.outline, np.roll(self.outline, -1, axis=0)], axis=1),
+            self.sides,
             witness_strokes(marks, self.lengths),
         ]
         if not full_lines:
@@ -66,11 +70,11 @@ class Sheet:
         self.labels: list[Label] = []
 
     def clear(self, boxes: Boxes, air: Array | float) -> Flags:
-        """Which boxes, with `air` [mm] round them, lie in the outline and off all strokes, (n,) bool."""
+        """Which boxes, with `air` [mm] round them, lie on the sheet and off all strokes, (n,) bool."""
         half = boxes.half + np.reshape(air, (-1, 1))
         good = ~_crossed(boxes._replace(half=half), self.middle, self.reach)
         some = np.flatnonzero(good)
-        good[some] = _inside(boxes.centre[some], self.outline)
+        good[some] = _inside(boxes.centre[some], self.sides)
         return good
 
     def free(self, boxes: Boxes, air: float) -> Flags:
@@ -152,9 +156,10 @@ def _crossed(boxes: Boxes, middle: Array, reach: Array) -> Flags:
     return crossed
 
 
-def _inside(points: Array, outline: Array) -> Flags:
-    """Which points (n, 2) lie inside the closed polyline, by counting crossings, (n,) bool."""
-    start, end = outline, np.roll(outline, -1, axis=0)
+def _inside(points: Array, sides: Array) -> Flags:
+    """Which points (n, 2) lie inside the outline and outside its openings, whose sides (m, 2, 2) these
+    are, by counting crossings, (n,) bool."""
+    start, end = sides[:, 0], sides[:, 1]
     x, y = points[:, :1], points[:, 1:]
     with np.errstate(divide="ignore", invalid="ignore"):
         cross = start[:, 0] + (y - start[:, 1]) * (end - start)[:, 0] / (end - start)[:, 1]

@@ -6,10 +6,10 @@ import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from develop.pattern.pattern import Division
+from develop.pattern.pattern import Division, Figures
 from develop.units import format_length
 
-__all__ = ["Table", "divisions_table"]
+__all__ = ["Table", "divisions_table", "figures_table"]
 
 
 @dataclass(frozen=True)
@@ -49,3 +49,15 @@ def divisions_table(divisions: Sequence[Division], *, units: str = "mm") -> Tabl
         for d in divisions
     )
     return Table(f"Lines to mark out ({'inches' if units == 'in' else 'mm'})", heads, rows)
+
+
+def figures_table(figures: Figures, *, units: str = "mm") -> Table:
+    """A further table of a pattern: lengths in `mm` to 0.1, or in `in` to 1/32."""
+    rows = tuple(
+        tuple(
+            cell if isinstance(cell, str) else format_length(float(cell), unit=units, suffix=False)
+            for cell in row
+        )
+        for row in figures.rows
+    )
+    return Table(f"{figures.title} ({'inches' if units == 'in' else 'mm'})", figures.heads, rows)

@@ -10,11 +10,12 @@ import numpy as np
 
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.pieces.press import Press, PressLines, press_lines
 from develop.sections.section import Section
 from develop.surfaces.edges import edges
 from develop.surfaces.sheet import Lines, Place, Sheet
 
-__all__ = ["Wording", "pattern_of", "seam_parameter"]
+__all__ = ["Hole", "Wording", "pattern_of", "seam_parameter"]
 
 _FOLD_MISS = 4e-3
 _MOST_CHANGE = 6.0
@@ -41,6 +42,19 @@ class Wording:
     full_lines: bool
 
 
+@dataclass(frozen=True)
+class Hole:
+    """An opening in a sheet: a closed chain anticlockwise, controls (3 n + 1, 2), with its exact length
+    [mm] and area [mm²], and marks on it: points (k, 2), unit tangents (k, 2) and texts."""
+
+    controls: Array
+    length: float
+    area: float
+    points: Array
+    tangents: Array
+    texts: tuple[str, ...]
+
+
 def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
     """Parameter of end A's section at which the seam runs.
 
@@ -62,19 +76,24 @@ def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted
 def pattern_of(
     sheet: Sheet,
     section_a: Section,
-    section_b: Section,
+    section_b: Section | None,
     *,
     wording: Wording,
     divisions: int,
     distance: float,
     turn_b: float = 0.0,
     cut: Sheet | None = None,
+    holes: Sequence[Hole] = (),
+    press: Press | None = None,
 ) -> Pattern:
     """The pattern of a sheet.
 
+    section_b: None where end B is a cut of the side, so that its marks lie on the lines of end A's.
     divisions: equal arcs of end A. distance: of the sheet outside the given surface [mm].
     turn_b: how far end B's section is turned in the piece frame [rad]. cut: the sheet that leaves
     the shear, where it is more than the net one; it lies so that both have the same left seam.
+    holes: openings in the sheet, in the sheet's own coordinates. press: bent on a press brake, not
+    rolled: the lines and the divisions are then the press lines.
     """
     moved = section_a.offset(distance)
     ends = sheet.ends
@@ -83,10 +102,15 @@ def pattern_of(
     wanted = [
         sheet.from_a(moved.at_arc(moved.arc(sheet.at_ends.u_a[:1]) + steps * moved.girth)),
         sheet.from_a(section_a.at_direction(_DIRECTIONS)),
-        sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b)),
+        sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b))
+        if section_b
+        else sheet.from_a(section_a.at_direction(_DIRECTIONS)),
         ends[np.array([0, -1])],
         _dense(ends, sheet.at_ends),
     ]
+    bends = press_lines(sheet, section_a, press) if press else None
+    if bends is not None:
+        wanted.append(bends.place)
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
     found = sheet.lines(
         Place(np.concatenate([w.panel for w in wanted]), np.concatenate([w.x for w in wanted]))
@@ -101,6 +125,10 @@ def pattern_of(
     rows_at = view.lines(found.take([*range(divisions), last]))
     dense = view.lines(found.take(range(counts[4], counts[5])))
     lines = _roll_lines(rows_at)
+    if bends is not None:
+        # The lines to mark out are then the seams and the press lines.
+        rows_at = view.lines(found.take([first, *range(counts[5], counts[6]), last]))
+        lines = _bent_lines(rows_at, bends, mirror=view.mirror)
     rows = _divisions(rows_at, section_a)
     marks = [
         mark
@@ -108,6 +136,12 @@ def pattern_of(
         if net.curve(edge) is not None
         for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
     ]
+    marks += [mark for hole in holes for mark in view.hole_marks(hole)]
+    whole = sheet.area - sum(hole.area for hole in holes)
+    net, cut_outline = (
+        replace(net, area=whole),
+        replace(cut_outline, area=cut_outline.area - sheet.area + whole),
+    )
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -115,15 +149,16 @@ def pattern_of(
         face=wording.face,
         net=net,
         cut=cut_outline,
-        openings=(),
+        openings=tuple(view.hole(hole) for hole in holes),
         lines=lines,
         divisions=rows,
         marks=tuple(marks),
-        facts=wording.facts,
+        facts=wording.facts if bends is None else (*wording.facts[:-1], bends.facts(), *wording.facts[-1:]),
         datum=wording.datum,
-        full_lines=wording.full_lines,
+        full_lines=wording.full_lines or bends is not None,
         rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), dense.u_a, distance),
         flow=wording.flow,
+        figures=() if bends is None else (bends.figures(mirror=view.mirror),),
     )
 
 
@@ -156,6 +191,18 @@ def _roll_lines(at: Lines) -> tuple[RollLine, ...]:
         RollLine(at.a[i], at.b[i], float(turns[i]), (float(at.radius_a[i]), float(at.radius_b[i])))
         for i in range(len(turns))
     )
+
+
+def _bent_lines(at: Lines, bends: PressLines, *, mirror: bool) -> tuple[RollLine, ...]:
+    """The press lines among the rows, the first and last of which are seams."""
+    step = -1 if mirror else 1
+    found = []
+    for i, (angle, short) in enumerate(zip(bends.angle[::step], bends.short[::step], strict=True), start=1):
+        along = (at.b[i] - at.a[i]) / at.length[i]
+        radius = (float(at.radius_a[i]), float(at.radius_b[i]))
+        start, end = at.a[i] + short[0] * along, at.b[i] - short[1] * along
+        found.append(RollLine(start, end, float(angle), radius, press=True))
+    return tuple(found)
 
 
 def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
@@ -240,6 +287,21 @@ class _View:
         other = {"seam_left": "seam_right", "seam_right": "seam_left"}
         back = {other.get(name, name): curve.reversed() for name, curve in moved}
         return tuple((name, back[name]) for name in _ORDER if name in back)
+
+    def hole(self, hole: Hole) -> Outline:
+        """A hole as a closed contour, anticlockwise."""
+        turn = np.diag(_FLIP) if self.mirror else np.eye(2)
+        curve = Curve(hole.controls, hole.length).moved(turn=turn, shift=self.shift)
+        return Outline((("opening", curve.reversed() if self.mirror else curve),), hole.area)
+
+    def hole_marks(self, hole: Hole) -> list[WitnessMark]:
+        """The marks round a hole, pointing into the sheet."""
+        flip = _FLIP if self.mirror else np.ones(2)
+        outward = np.stack([hole.tangents[:, 1], -hole.tangents[:, 0]], axis=-1) * flip
+        points = hole.points * flip + self.shift
+        return [
+            WitnessMark(points[i], outward[i], text, "opening") for i, text in enumerate(hole.texts)
+        ]
 
     def lines(self, lines: Lines) -> Lines:
         if not self.mirror:

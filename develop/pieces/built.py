@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING, Literal
+from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
-    from develop.solid import Frame, Solid
+    from develop.solid import FlatPlate, FlatRing, Frame, Placed, Solid
 
 __all__ = ["Built", "Joint", "Part", "one"]
 
@@ -17,12 +17,13 @@ __all__ = ["Built", "Joint", "Part", "one"]
 class Part:
     """A pattern with the finished side that it makes.
 
-    solid: the side in a frame of its own, from sections alone; what the pattern is checked against.
+    solid: the side, or the flat plate, in a frame of its own, from sections alone; what the pattern is
+    checked against.
     frames: where that frame stands in the piece's, once for each time the part is used.
     """
 
     pattern: Pattern
-    solid: Solid
+    solid: Solid | FlatRing | FlatPlate
     frames: tuple[Frame, ...]
 
 
@@ -30,15 +31,19 @@ class Part:
 class Joint:
     """Two edges that meet: end `end` of part number `part` with end `other_end` of part `other`.
 
+    An end is `a` or `b` of a rolled part, or an edge of a flat one by name.
+
     place, other_place: which of the parts' frames they stand in.
+    name: of the joint, in checks; else the marks of the two patterns.
     """
 
     part: int
-    end: Literal["a", "b"]
+    end: str
     other: int
-    other_end: Literal["a", "b"]
+    other_end: str
     place: int = 0
     other_place: int = 0
+    name: str = ""
 
 
 @dataclass(frozen=True)
@@ -54,9 +59,21 @@ class Built:
         return tuple(part.pattern for part in self.parts)
 
     @property
-    def solid(self) -> Solid:
+    def solid(self) -> Solid | FlatRing | FlatPlate:
         """The finished side of the first part."""
         return self.parts[0].solid
+
+    @property
+    def placed(self) -> tuple[Placed, ...]:
+        """Every rolled part where it stands in the piece, as often as it is used."""
+        from develop.solid import Placed, Solid
+
+        return tuple(
+            Placed(part.solid, frame)
+            for part in self.parts
+            if isinstance(part.solid, Solid)
+            for frame in part.frames
+        )
 
     def with_patterns(self, patterns: Sequence[Pattern]) -> Built:
         """The same piece with other patterns for its parts."""
@@ -64,7 +81,7 @@ class Built:
         return replace(self, parts=tuple(replace(part, pattern=pattern) for part, pattern in parts))
 
 
-def one(pattern: Pattern, solid: Solid) -> Built:
+def one(pattern: Pattern, solid: Solid | FlatRing | FlatPlate) -> Built:
     """A piece of one part that stands in the piece's own frame."""
     from develop.solid import Frame
 

@@ -20,7 +20,7 @@ from develop.pieces.wording import sizes_words, wall_words
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
 
-__all__ = ["Marked", "Plate"]
+__all__ = ["Flat", "Marked", "Named", "Plate"]
 
 # From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
 # practice, no source.
@@ -28,15 +28,34 @@ _PLATE = 3.0
 
 
 @dataclass(frozen=True, kw_only=True)
-class Marked(Piece):
+class Named(Piece):
     """What every piece has. mark: each kind gives its own name as the default.
 
-    thickness: of the wall [mm]. seam_at: direction [rad], or `shortest`.
+    thickness: of the wall [mm].
     """
 
     mark: str = field(metadata=about(MARK, "name of the piece and of its files", own=False))
-    quantity: int = field(default=1, metadata=about(Count(), "how many to make", own=False))
+    quantity: int = field(default=1, metadata=about(Count(), "how many to make, as drawn", own=False))
+    opposite_hand: int = field(
+        default=0,
+        metadata=about(
+            Count(least=0), "how many more to make mirrored, right for left, on patterns of their own", own=False
+        ),
+    )
     thickness: float = field(default=0.0, metadata=about(THICKNESS, "thickness of the wall", own=False))
+
+
+@dataclass(frozen=True, kw_only=True)
+class Flat(Named):
+    """What every flat plate has."""
+
+    material: str = field(default="", metadata=about(TEXT, "stated on the pattern", own=False))
+
+
+@dataclass(frozen=True, kw_only=True)
+class Marked(Named):
+    """What every rolled piece has. seam_at: direction [rad], or `shortest`."""
+
     sizes: str = field(
         default="mean",
         metadata=about(

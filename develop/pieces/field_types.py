@@ -12,13 +12,13 @@ from dataclasses import dataclass
 from typing import Protocol
 
 from develop.errors import InputError, Problem
-from develop.sections.text import SectionSpec, parse_section
+from develop.sections.text import ALLOWED, SectionSpec, parse_section
 from develop.units import number_text, parse_angle, parse_direction, parse_length, parse_number
 from develop.wording import listed, near_miss, shown
 
 __all__ = [
-    "ANGLE", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT", "THICKNESS",
-    "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number",
+    "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT", "THICKNESS",
+    "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number", "Pitch",
 ]  # fmt: skip
 
 
@@ -88,7 +88,7 @@ class Length:
         return value
 
     def text(self, value: object) -> str:
-        return f"{number_text(_number(value))} mm"
+        return "" if value is None else f"{number_text(_number(value))} mm"
 
 
 def _number(value: object) -> float:
@@ -126,6 +126,10 @@ class Angle:
         return number_text(_degrees(_number(value)))
 
 
+def _mirrored_direction(direction: float) -> float:
+    return (math.pi - direction) % (2.0 * math.pi)
+
+
 @dataclass(frozen=True, eq=False, repr=False)
 class Direction:
     """A direction round the section [rad], or one of the `words`, which stay words."""
@@ -158,6 +162,22 @@ class Direction:
 
     def text(self, value: object) -> str:
         return value if isinstance(value, str) else number_text(_degrees(_number(value)))
+
+    def mirrored(self, value: object) -> object:
+        """The direction with right and left exchanged."""
+        return value if isinstance(value, str) else _mirrored_direction(_number(value))
+
+
+@dataclass(frozen=True, eq=False, repr=False)
+class BendSeam(Direction):
+    """Where the seam of a bend is."""
+
+    words: tuple[str, ...] = ("shortest", "throat", "heel", "side", "other side")
+
+    def mirrored(self, value: object) -> object:
+        """The place with right and left exchanged, on a bend that turns to the mirrored direction."""
+        other = {"side": "other side", "other side": "side"}
+        return other.get(value, value) if isinstance(value, str) else super().mirrored(value)
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -211,7 +231,7 @@ class Number:
         return value
 
     def text(self, value: object) -> str:
-        return number_text(_number(value))
+        return "" if value is None else number_text(_number(value))
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -238,6 +258,10 @@ class Choice:
 
     def text(self, value: object) -> str:
         return "" if value is None else str(value)
+
+    def mirrored(self, value: object) -> object:
+        """The word with right and left exchanged."""
+        return {"right": "left", "left": "right"}.get(str(value), value)
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -308,7 +332,7 @@ class SectionText:
 
     @property
     def allowed(self) -> str:
-        return "round 400, ellipse 600 x 300, pipe DN 150 or pipe NPS 6; sizes from 0.1 mm to 100 m"
+        return ALLOWED
 
     def read(self, given: object, *, unit: str) -> SectionSpec:
         return parse_section(given, unit=unit)
@@ -319,6 +343,15 @@ class SectionText:
     def text(self, value: object) -> str:
         assert isinstance(value, SectionSpec)
         return value.text
+
+    def mirrored(self, value: object) -> object:
+        """The section with right and left exchanged: only a measured one changes."""
+        assert isinstance(value, SectionSpec)
+        if value.taped is None:
+            return value
+        pairs = zip(value.taped.directions, value.taped.diameters, strict=True)
+        readings = " ".join(f"{number_text((180.0 - d) % 180.0)}:{number_text(s)}" for d, s in pairs)
+        return parse_section(f"measured {readings} {value.taped.fit}")
 
 
 @dataclass(frozen=True)
@@ -391,6 +424,13 @@ class CutText:
         assert isinstance(value, Cut)
         return f"slope {number_text(_degrees(value.slope))} long {number_text(_degrees(value.long))}"
 
+    def mirrored(self, value: object) -> object:
+        """The cut with right and left exchanged."""
+        if value is None:
+            return None
+        assert isinstance(value, Cut)
+        return Cut(slope=value.slope, long=_mirrored_direction(value.long))
+
 
 @dataclass(frozen=True, eq=False, repr=False)
 class Offset:
@@ -425,10 +465,46 @@ class Offset:
     def text(self, value: object) -> str:
         return ",".join(number_text(each) for each in self._pair(value))
 
+    def mirrored(self, value: object) -> object:
+        """The shift with right and left exchanged."""
+        right, up = self._pair(value)
+        return -right + 0.0, up
+
     def _pair(self, value: object) -> tuple[float, float]:
         assert isinstance(value, tuple)
         right, up = value
         return right, up
+
+
+@dataclass(frozen=True, eq=False, repr=False)
+class Pitch:
+    """A roof's pitch as a rise in a run, `5 in 12` or `5:12`: its slope [rad]."""
+
+    steepest: float = 85.0
+    metavar: str = "PITCH"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        return f"a rise in a run, such as 5 in 12 or 5:12, up to {number_text(self.steepest)} degrees"
+
+    def read(self, given: object, *, unit: str) -> float:
+        parts = given.replace(":", " in ").split(" in ") if isinstance(given, str) else []
+        if len(parts) != 2:
+            raise _refused(f"{shown(given)} is not a pitch", self.allowed)
+        rise, run = (parse_number(part, what="a pitch", allowed=self.allowed) for part in parts)
+        if rise < 0.0 or run <= 0.0:
+            raise _refused(f"{shown(given)} is not a rise of 0 or more in a run", self.allowed)
+        slope = math.atan2(rise, run)
+        if math.degrees(slope) > self.steepest:
+            raise _refused(f"{shown(given)} is too steep", self.allowed)
+        return slope
+
+    def record(self, value: object) -> object:
+        return None if value is None else self.text(value)
+
+    def text(self, value: object) -> str:
+        return "" if value is None else f"{number_text(round(12.0 * math.tan(_number(value)), 9))} in 12"
 
 
 LENGTH = Length()
@@ -436,6 +512,7 @@ THICKNESS = Length(least=0.0, most=1000.0)
 ANGLE = Angle()
 DIRECTION = Direction()
 SEAM = Direction(words=("shortest",))
+BEND_SEAM = BendSeam()
 MARK = Text(name=True, longest=60)
 TEXT = Text()
 SECTION = SectionText()

@@ -43,9 +43,21 @@ class Piece(ABC):
         """The flat patterns and the finished piece. Raises Refusal."""
 
 
-def about(kind: FieldType, text: str, *, not_with: str = "", own: bool = True) -> dict[str, object]:
-    """Metadata of a field: its type, its help, the field it excludes, and whether it is the kind's own."""
-    return {"type": kind, "help": text, "not_with": not_with, "own": own}
+def about(
+    kind: FieldType,
+    text: str,
+    *,
+    not_with: str | tuple[str, ...] = (),
+    own: bool = True,
+    handed: bool = False,
+) -> dict[str, object]:
+    """Metadata of a field: its type, its help, the fields it excludes, and whether it is the kind's own.
+
+    handed: a number that counts to the right or anticlockwise, so that the opposite hand has it
+    negative. Directions, cuts, offsets and sections are mirrored by their types.
+    """
+    others = (not_with,) if isinstance(not_with, str) else not_with
+    return {"type": kind, "help": text, "not_with": others, "own": own, "handed": handed}
 
 
 @dataclass(frozen=True)
@@ -57,8 +69,9 @@ class Declared:
     help: str
     required: bool
     default: object = field(default=None)
-    not_with: str = ""
+    not_with: tuple[str, ...] = ()
     own: bool = True
+    handed: bool = False
 
     @property
     def option(self) -> str:
@@ -81,7 +94,7 @@ def fields_of(kind: type[Piece]) -> tuple[Declared, ...]:
                 name=each.name,
                 required=required,
                 default=None if required else each.default,
-                **{key: each.metadata[key] for key in ("type", "help", "not_with", "own")},
+                **{key: each.metadata[key] for key in ("type", "help", "not_with", "own", "handed")},
             )
         )
     return tuple(sorted(found, key=lambda declared: not declared.own))
@@ -116,12 +129,11 @@ def read_fields(
             for problem in error.problems:
                 inside = f"{name}.{problem.field}" if problem.field else name
                 problems.append(Problem(inside, problem.given, problem.allowed))
-        if each.not_with in given and each.not_with:
-            problems.append(
-                Problem(
-                    name, f"{shown(given[name])} is given together with {each.not_with}", "one of the two"
-                )
-            )
+        problems += [
+            Problem(name, f"{shown(given[name])} is given together with {other}", "one of the two")
+            for other in each.not_with
+            if other in given
+        ]
     return values, problems
 
 

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 
 from develop.pieces import KINDS, kind_of
 from develop.pieces.fields import Declared, Piece, fields_of
+from develop.wording import listed
 
 __all__ = ["command_line", "job_text", "kind_text", "kinds_page", "kinds_text"]
 
@@ -55,7 +56,7 @@ def kind_text(kind: type[Piece]) -> str:
 
 def _allowed(field: Declared) -> str:
     unit = " (a bare number is in the job's unit, else mm)" if field.type.unit == "mm" else ""
-    other = f"; not together with {field.not_with}" if field.not_with else ""
+    other = f"; not together with {listed(field.not_with)}" if field.not_with else ""
     return f"{field.type.allowed}{unit}{other}"
 
 

@@ -1,4 +1,4 @@
-"""A change from one section to another, the two ends parallel."""
+"""A change from one section to another, the ends parallel or end B tilted."""
 
 from __future__ import annotations
 
@@ -8,17 +8,23 @@ from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
 from develop.pieces.common import Plate
-from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice
+from develop.pieces.field_types import ANGLE, CUT, LENGTH, MARK, OFFSET, SECTION, Choice, Count, Cut, Length
 from develop.pieces.fields import about
+from develop.pieces.wording import direction_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 # Shorter than this part of its largest size, a transition is a flat ring and not a side to be rolled.
 _FLATTEST = 1000.0
+# What the ends must leave between each other's planes, in parts of their sizes; a little more than
+# the band itself needs.
+_CLEAR = 2e-6
+_HALVINGS = 50
 
 if TYPE_CHECKING:
     from develop.pieces.built import Built
     from develop.sections.section import Section
+    from develop.solid import Rim
     from develop.surfaces.band import Band
 
 __all__ = ["Transition"]
@@ -26,7 +32,7 @@ __all__ = ["Transition"]
 
 @dataclass(frozen=True, kw_only=True)
 class Transition(Plate):
-    """A change from one section to another, the two ends parallel; lengths in mm, angles in radians."""
+    """A change from one section to another; lengths in mm, angles in radians."""
 
     kind: ClassVar[str] = "transition"
     example: ClassVar[dict[str, str | float]] = {
@@ -38,7 +44,9 @@ class Transition(Plate):
 
     end_a: SectionSpec = field(metadata=about(SECTION, "section of end A"))
     end_b: SectionSpec = field(metadata=about(SECTION, "section of end B"))
-    length: float = field(metadata=about(LENGTH, "distance between the planes of the ends"))
+    length: float = field(
+        metadata=about(LENGTH, "on the axis, from the plane of end A to the centre of end B")
+    )
     offset: tuple[float, float] = field(
         default=(0.0, 0.0), metadata=about(OFFSET, "centre of end B, right of and above that of end A")
     )
@@ -51,13 +59,39 @@ class Transition(Plate):
         ),
     )
     rotate: float = field(
-        default=0.0, metadata=about(ANGLE, "end B turned anticlockwise about its own centre, facing end B")
+        default=0.0,
+        metadata=about(ANGLE, "end B turned anticlockwise about its own centre, facing end B", handed=True),
+    )
+    tilt: Cut | None = field(
+        default=None,
+        metadata=about(
+            CUT, "end B turned about its centre, so that the piece is longest at `long`; after it is rotated"
+        ),
+    )
+    kicks: int = field(
+        default=0,
+        metadata=about(
+            Count(least=0, most=90),
+            "bent on a press brake: so many bends to every right angle that the section turns; 0: rolled",
+        ),
+    )
+    die: float = field(
+        default=0.0,
+        metadata=about(
+            Length(least=0.0, most=1000.0), "smallest spacing of press lines that the die allows; 0: not known"
+        ),
+    )
+    swing: float = field(
+        default=10_000.0,
+        metadata=about(
+            Length(), "longest radius that can be swung; beyond it the pattern gives offsets from a chord"
+        ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
 
     def surface(self) -> Band:
         """The band between the two ends. Raises Refusal."""
-        from develop.pieces.wall import given_section, neutral_distance
+        from develop.pieces.wall import check_bend, given_section, neutral_distance
         from develop.solid import Frame, Rim
         from develop.surfaces.band import Band
 
@@ -65,7 +99,6 @@ class Transition(Plate):
             given_section(spec, field=field, thickness=self.thickness, sizes=self.sizes)
             for field, spec in (("end_a", self.end_a), ("end_b", self.end_b))
         )
-        shift = self.offset if self.flush is None else self._level(a, b, self.flush)
         size = max(a.width, a.height, b.width, b.height)
         if self.length < size / _FLATTEST:
             raise Refusal(
@@ -75,49 +108,70 @@ class Transition(Plate):
                 allowed=f"{number_text(ceil(size / _FLATTEST * 10.0) / 10.0)} mm or more; "
                 "for less, a flat ring",
             )
+        rim = Rim(a, Frame.square())
+        slope = self.tilt.slope if self.tilt else 0.0
+        if slope and not self._clear(rim, b, slope):
+            self._refuse_tilt(rim, b)
         band = Band(
-            Rim(a, Frame.square()),
-            Rim(b, Frame.square(at=(*shift, self.length), rotate=self.rotate)),
+            rim,
+            self._end_b(a, b, slope),
             neutral_distance(thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line),
         )
-        self._bend(band)
+        check_bend(band, thickness=self.thickness, sizes=self.sizes, instead="a longer piece")
         return band
 
-    def _bend(self, band: Band) -> None:
-        """Raises Refusal where the side is bent tighter than its wall allows."""
+    def _end_b(self, a: Section, b: Section, slope: float) -> Rim:
+        """End B, tilted by a slope [rad] in the direction asked for; flush or offset."""
         import numpy as np
 
-        from develop.pieces.wall import PLACES
+        from develop.solid import Frame, Rim
 
-        inner = self.thickness * PLACES[self.sizes]
-        if inner == 0.0:
-            return
-        section = band.rim_a.section
-        radii = band.radii(section.at_direction(np.radians(np.arange(360.0))))
-        tightest = float(radii.min())
-        if tightest > inner:
-            return
-        end = "A" if radii[:, 0].min() <= radii[:, 1].min() else "B"
-        most = floor(self.thickness * tightest / inner * 10.0) / 10.0
+        def placed(right: float, up: float) -> Rim:
+            frame = Frame.square(at=(right, up, self.length), rotate=self.rotate)
+            return Rim(b, frame.tilted(slope=slope, long=self.tilt.long) if self.tilt and slope else frame)
+
+        if self.flush is None:
+            return placed(*self.offset)
+        x, y = {"right": (1.0, 0.0), "top": (0.0, 1.0), "left": (-1.0, 0.0), "bottom": (0.0, -1.0)}[self.flush]
+        reach_b = float(placed(0.0, 0.0).support(np.array([x, y, 0.0])))
+        more = float(a.support(np.array(x), np.array(y))) - reach_b
+        return placed(more * x, more * y)
+
+    def _clear(self, rim_a: Rim, b: Section, slope: float) -> bool:
+        """Whether each end lies on one side of the other's plane, end B tilted by a slope [rad]."""
+        rim_b = self._end_b(rim_a.section, b, slope)
+        size = sum(each.width + each.height for each in (rim_a.section, b))
+        low_b = -rim_b.highest_over(rim_a.frame, sign=-1.0)
+        low_a = -rim_a.highest_over(rim_b.frame, sign=1.0)
+        return min(low_a, low_b) > _CLEAR * size
+
+    def _refuse_tilt(self, rim_a: Rim, b: Section) -> None:
+        """Raises Refusal with the largest tilt that works, and the least length."""
+        from dataclasses import replace
+        from math import degrees, radians
+
+        assert self.tilt is not None
+        low, high = 0.0, self.tilt.slope
+        for _ in range(_HALVINGS):
+            middle = 0.5 * (low + high)
+            low, high = (middle, high) if self._clear(rim_a, b, middle) else (low, middle)
+        most = floor(degrees(low) * 10.0 - 1e-6) / 10.0
+        works = most > 0.0 and self._clear(rim_a, b, radians(most))
+        short, long = self.length, self.length + 2.0 * (max(rim_a.section.width, rim_a.section.height) + 2.0 * max(b.width, b.height))
+        longer = replace(self, length=long)
+        while not longer._clear(rim_a, b, self.tilt.slope) and long < 1e6:
+            long *= 2.0
+            longer = replace(self, length=long)
+        for _ in range(_HALVINGS):
+            middle = 0.5 * (short + long)
+            fits = replace(self, length=middle)._clear(rim_a, b, self.tilt.slope)
+            short, long = (short, middle) if fits else (middle, long)
+        tilt = f"slope {number_text(most)} or less, or a " if works else "a "
         raise Refusal(
-            field="thickness",
-            given=f"{number_text(self.thickness)} mm leaves no inside where the slanting side is bent to a "
-            f"radius of {tightest:.3g} mm, near END {end}",
-            allowed=f"{number_text(most)} mm or less, or a longer piece" if most > 0.0 else "a longer piece",
+            field="tilt",
+            given=f"slope {number_text(round(degrees(self.tilt.slope), 6))} makes the ends cross",
+            allowed=f"{tilt}length of {number_text(ceil(long * 10.0 + 1e-6) / 10.0)} mm or more",
         )
-
-    def _level(self, a: Section, b: Section, side: str) -> tuple[float, float]:
-        """The offset [mm] at which both ends reach equally far to one side."""
-        from math import cos, sin
-
-        import numpy as np
-
-        x, y = {"right": (1.0, 0.0), "top": (0.0, 1.0), "left": (-1.0, 0.0), "bottom": (0.0, -1.0)}[side]
-        c, s = cos(self.rotate), sin(self.rotate)
-        reach_a = a.support(np.array(x), np.array(y))
-        reach_b = b.support(np.array(c * x + s * y), np.array(c * y - s * x))
-        more = float(reach_a - reach_b)
-        return more * x, more * y
 
     def build(self) -> Built:
         """Raises Refusal."""
@@ -125,6 +179,8 @@ class Transition(Plate):
 
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import one
+        from develop.pieces.chord import with_chords
+        from develop.pieces.press import Press
         from develop.solid import End, Solid
 
         surface = self.surface()
@@ -141,11 +197,12 @@ class Transition(Plate):
             b.section,
             wording=self.wording(
                 sizes=f"END A {self.end_a.text} to END B {self.end_b.text}",
-                more=(f"length {number_text(self.length)}, {place}{shift}{turned}",),
+                more=(f"length {number_text(self.length)}, {place}{shift}{turned}", *self._tilt_words()),
             ),
             divisions=self.divisions,
             distance=surface.distance,
             turn_b=self.rotate,
+            press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
         )
         solid = Solid(
             End.placed(a.section, a.frame),
@@ -155,4 +212,12 @@ class Transition(Plate):
             seam_b=sheet.seam_b,
             distance=surface.distance,
         )
-        return one(pattern, solid)
+        return one(with_chords(pattern, self.swing), solid)
+
+    def _tilt_words(self) -> tuple[str, ...]:
+        from math import degrees
+
+        if self.tilt is None or self.tilt.slope == 0.0:
+            return ()
+        slope = number_text(round(degrees(self.tilt.slope), 6))
+        return (f"END B tilted {slope}°, the piece longest at {direction_words(self.tilt.long)}",)

@@ -9,8 +9,9 @@ from develop.errors import InputError, Problem, Refusal
 if TYPE_CHECKING:
     from develop.sections.section import Section
     from develop.sections.text import SectionSpec
+    from develop.surfaces.band import Band
 
-__all__ = ["PLACES", "given_section", "neutral_distance"]
+__all__ = ["PLACES", "check_bend", "given_section", "neutral_distance", "reach"]
 
 PLACES = {"inside": 0.0, "mean": 0.5, "outside": 1.0}
 """Where sizes can be measured, as a share of the thickness from the inside."""
@@ -36,13 +37,16 @@ def _moved(section: Section, distance: float, field: str, thickness: float) -> S
     try:
         return section.offset(distance)
     except Refusal:
+        most = thickness * section.least_radius / -distance
+        ways = [section.rounder(-distance)]
+        if most > 0.0:
+            ways.insert(0, f"a wall that lies within that radius: here at most {most:.4g} mm")
         raise InputError(
             Problem(
                 field="thickness",
                 given=f"{thickness:g} mm leaves no inside to the {field}, whose tightest radius is "
                 f"{section.least_radius:.4g} mm",
-                allowed=f"a wall that lies within that radius: here at most "
-                f"{thickness * section.least_radius / -distance:.4g} mm",
+                allowed=", or ".join(ways),
             )
         ) from None
 
@@ -50,3 +54,43 @@ def _moved(section: Section, distance: float, field: str, thickness: float) -> S
 def neutral_distance(*, thickness: float, sizes: str, neutral_line: float) -> float:
     """How far outside the given surface the neutral line lies [mm]."""
     return thickness * (neutral_line - PLACES[sizes])
+
+
+def reach(section: Section, direction: float) -> float:
+    """How far a section reaches from its centre in a direction [rad], [mm]."""
+    from math import cos, sin
+
+    import numpy as np
+
+    return float(section.support(np.array(cos(direction)), np.array(sin(direction))))
+
+
+def check_bend(band: Band, *, thickness: float, sizes: str, instead: str, ends: str = "AB") -> None:
+    """Raises Refusal where a tapered side is bent tighter than its wall allows.
+
+    thickness [mm]. instead: what helps beside a thinner wall, in words. ends: at which of its
+    ends the side is looked at.
+    """
+    from math import floor
+
+    import numpy as np
+
+    from develop.units import number_text
+
+    inner = thickness * PLACES[sizes]
+    if inner == 0.0:
+        return
+    section = band.rim_a.section
+    radii = band.radii(section.at_direction(np.radians(np.arange(360.0))))
+    at = dict(zip("AB", radii.min(axis=0).tolist(), strict=True))
+    end = min(ends, key=lambda each: at[each])
+    tightest = at[end]
+    if tightest > inner:
+        return
+    most = floor(thickness * tightest / inner * 10.0) / 10.0
+    raise Refusal(
+        field="thickness",
+        given=f"{number_text(thickness)} mm leaves no inside where the slanting side is bent to a "
+        f"radius of {tightest:.3g} mm, near END {end}",
+        allowed=f"{number_text(most)} mm or less, or {instead}" if most > 0.0 else instead,
+    )

@@ -10,7 +10,7 @@ from develop.units import number_text
 if TYPE_CHECKING:
     from develop.pieces.field_types import Cut
 
-__all__ = ["cut_words", "direction_words", "sizes_words", "wall_words"]
+__all__ = ["cut_words", "direction_words", "plate_words", "sizes_words", "wall_words"]
 
 _WORDS = {0.0: "right", 90.0: "top", 180.0: "left", 270.0: "bottom"}
 
@@ -38,4 +38,10 @@ def sizes_words(sizes: str, thickness: float) -> str:
 def wall_words(material: str, thickness: float) -> str:
     """Material and thickness."""
     plate = f"{number_text(thickness)} mm thick" if thickness else "no thickness allowed for"
+    return ", ".join(part for part in (material, plate) if part)
+
+
+def plate_words(material: str, thickness: float) -> str:
+    """Material and thickness of a flat plate, whose pattern they do not change."""
+    plate = f"{number_text(thickness)} mm thick" if thickness else "thickness not stated"
     return ", ".join(part for part in (material, plate) if part)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from functools import cached_property
-from math import atanh, pi, sqrt
+from math import atan2, atanh, pi, sqrt
 
 import numpy as np
 
@@ -85,6 +85,11 @@ class Ellipse(Section):
 
     def at_direction(self, direction: Array) -> Array:
         return np.asarray(np.arctan2(self.a * np.sin(direction), self.b * np.cos(direction)) % (2.0 * pi))
+
+    def at_side(self, nx: float, ny: float, reach: Array) -> Array:
+        # x n_x + y n_y = A cos(u − u0) with A the support of n.
+        far, start = sqrt((self.a * nx) ** 2 + (self.b * ny) ** 2), atan2(self.b * ny, self.a * nx)
+        return np.asarray(start + np.arccos(np.clip(reach / far, -1.0, 1.0)))
 
     def radius(self, nx: Array, ny: Array) -> Array:
         size = np.hypot(nx, ny)

@@ -23,6 +23,8 @@ __all__ = ["NotConvex", "Smooth", "curve_of", "fitted"]
 _STEPS = 60
 # Phase of the highest harmonic on one panel of 20 nodes [rad]: resolved to rounding.
 _PHASE = 4.0
+# A fit that foretells readings at most so many times worse than the best may stand for it.
+_AS_GOOD = 2.0
 
 
 class NotConvex(ValueError):
@@ -104,9 +106,7 @@ class Smooth(Section):
     @property
     def area(self) -> float:
         weight = 1.0 - self._even**2
-        return float(
-            pi * self._constant**2 + 0.5 * pi * (weight * (self._cos**2 + self._sin**2)).sum()
-        )
+        return float(pi * self._constant**2 + 0.5 * pi * (weight * (self._cos**2 + self._sin**2)).sum())
 
     @property
     def least_radius(self) -> float:
@@ -179,15 +179,17 @@ def _ellipse(phi: Array, width: Array) -> tuple[Sequence[float], Array]:
 def _smooth(phi: Array, width: Array) -> tuple[Sequence[float], Array]:
     """The Fourier series with as many harmonics as the readings carry.
 
-    At most so many that two readings fall on every wave, also in the widest gap, and one is left
-    over to judge by. Among those the number is taken that foretells each reading best from the
-    others (leave-one-out; its error is residual / (1 − leverage), exactly). That is what smooths:
-    a harmonic that follows the errors of reading foretells worse.
+    At most so many that two readings fall on every wave, also in the widest gap, and that a third
+    of the readings is left over to judge by. Among those the number is taken that foretells each
+    reading best from the others (leave-one-out; its error is residual / (1 − leverage), exactly). That
+    is what smooths:
+    a harmonic that follows the errors of reading foretells worse. Of those that foretell nearly
+    as well the first convex one is taken, as errors alone can make a curve hollow.
     """
     n = len(phi)
     gap = float(np.max(np.diff(np.append(phi, phi[0] + pi))))
-    most = max(1, min((n - 2) // 2, int(0.5 * pi / gap + 1e-9)))
-    best: tuple[float, Sequence[float], Array] | None = None
+    most = max(1, min((n - 2) // 3, int(0.5 * pi / gap + 1e-9)))
+    found: list[tuple[float, Sequence[float], Array]] = []
     for harmonics in range(1, most + 1):
         even = 2.0 * np.arange(1, harmonics + 1)
         waves = np.stack([np.cos(phi[:, None] * even), np.sin(phi[:, None] * even)], axis=-1).reshape(n, -1)
@@ -200,8 +202,19 @@ def _smooth(phi: Array, width: Array) -> tuple[Sequence[float], Array]:
             error = float(np.sqrt(np.mean(((width - model) / np.maximum(left, 1e-12)) ** 2)))
         else:
             error = 0.0  # three readings: one curve, and nothing to judge it by
-        if best is None or error < best[0] * (1.0 - 1e-6) - 1e-12 * float(width.max()):
-            best = error, (0.5 * coefficients).tolist(), model
-    assert best is not None
-    Smooth(best[1])  # raises NotConvex
-    return best[1], best[2]
+        found.append((error, (0.5 * coefficients).tolist(), model))
+    # What differs by rounding alone is alike, and the fewest harmonics do.
+    rounding = 1e-12 * float(width.max())
+    found.sort(key=lambda each: (max(each[0], rounding), len(each[1])))
+    hollow: NotConvex | None = None
+    for error, curve, model in found:
+        if error > _AS_GOOD * max(found[0][0], rounding):
+            break
+        try:
+            Smooth(curve)
+        except NotConvex as failed:
+            hollow = hollow or failed
+        else:
+            return curve, model
+    assert hollow is not None
+    raise hollow

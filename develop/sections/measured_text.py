@@ -37,7 +37,9 @@ def read_measured(text: str, rest: str, unit: str) -> SectionSpec:
     taped = _sorted(text, [(_direction(text, d), size_of(text, s, unit)) for d, s in readings])
     directions, diameters = tuple(d for d, _ in taped), tuple(s for _, s in taped)
     _check_spread(text, directions)
-    return _fitted(text, directions, diameters, fit or ("ellipse" if len(taped) <= MOST_BY_ELLIPSE else "smooth"))
+    return _fitted(
+        text, directions, diameters, fit or ("ellipse" if len(taped) <= MOST_BY_ELLIPSE else "smooth")
+    )
 
 
 def _split(text: str, rest: str) -> tuple[list[tuple[str, str]], str]:
@@ -88,9 +90,7 @@ def _check_spread(text: str, directions: tuple[float, ...]) -> None:
             )
 
 
-def _fitted(
-    text: str, directions: tuple[float, ...], diameters: tuple[float, ...], fit: str
-) -> SectionSpec:
+def _fitted(text: str, directions: tuple[float, ...], diameters: tuple[float, ...], fit: str) -> SectionSpec:
     from develop.sections.measured import NotConvex, curve_of, fitted
 
     try:

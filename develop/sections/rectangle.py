@@ -73,7 +73,7 @@ class Rectangle(Section):
         return np.copysign(w, nx) + share * nx, np.copysign(h, ny) + share * ny
 
     def parameter(self, nx: Array, ny: Array) -> Array:
-        return self.parameters(nx, ny)[0]
+        return np.asarray(self.parameters(nx, ny)[0])
 
     def parameters(self, nx: Array, ny: Array) -> tuple[Array, Array]:
         turned = (np.arctan2(ny, nx) % (2.0 * pi)) / _QUARTER
@@ -90,7 +90,7 @@ class Rectangle(Section):
 
     @property
     def _corner_starts(self) -> Array:
-        return self.breaks[:-1][~self._is_side]
+        return np.asarray(self.breaks[:-1][~self._is_side])
 
     def foot(self, nx: Array, ny: Array, low: Array, high: Array) -> tuple[Array, Array]:
         at = self.walk(self.within(nx, ny, low, high))
@@ -98,7 +98,7 @@ class Rectangle(Section):
 
     @property
     def kinks(self) -> Array:
-        return _QUARTER * np.arange(4)
+        return _QUARTER * np.arange(4.0)
 
     def radius(self, nx: Array, ny: Array) -> Array:
         return np.full_like(nx, self.r)
@@ -115,6 +115,10 @@ class Rectangle(Section):
     @property
     def least_radius(self) -> float:
         return self.r
+
+    def rounder(self, distance: float) -> str:
+        half = 0.5 * min(self.width, self.height)
+        return f"r {distance:.10g} mm or more" if distance <= half else "a larger section"
 
     def _moved(self, distance: float) -> Section:
         r = self.r + distance

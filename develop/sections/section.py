@@ -23,6 +23,7 @@ from develop.quadrature import Array, Indices, between, halves, nodes_of, runnin
 __all__ = ["Array", "Parallel", "Section", "Walk"]
 
 _STEPS = 12
+_BISECTIONS = 60
 
 
 @dataclass(frozen=True)
@@ -141,9 +142,13 @@ class Section(ABC):
                 field="sizes",
                 given=f"the wall lies {-distance:g} mm inside the given size, where the tightest "
                 f"radius is {self.least_radius:.4g} mm",
-                allowed="a wall within the tightest radius: a larger or rounder section, a thinner wall",
+                allowed=f"a wall within the tightest radius: {self.rounder(-distance)}, a thinner wall",
             )
         return self._moved(distance)
+
+    def rounder(self, distance: float) -> str:
+        """What would let a wall lie `distance` [mm] inside, for messages."""
+        return "a larger or rounder section"
 
     def _moved(self, distance: float) -> Section:
         return Parallel(self, distance)
@@ -226,14 +231,49 @@ class Section(ABC):
         low, high = u_known[i], u_known[i + 1]
         gap = seen[i + 1] - seen[i]
         u = low + (wanted - seen[i]) / np.where(gap > 0.0, gap, np.inf) * (high - low)
+        c, s = np.cos(wanted), np.sin(wanted)
         for _ in range(_STEPS):
             at = self.walk(u)
-            square = at.x * at.x + at.y * at.y
-            miss = (np.arctan2(at.y, at.x) - wanted + np.pi) % (2.0 * np.pi) - np.pi
-            rate = at.ds * (at.x * at.ex + at.y * at.ey) / np.maximum(square, 1e-300)
-            step = miss / np.where(rate > 0.0, rate, np.inf)
+            # The point's distance from the line in that direction: linear along a straight side.
+            rate = at.ds * (c * at.ex + s * at.ey)
+            step = (c * at.y - s * at.x) / np.where(rate > 0.0, rate, np.inf)
             u = np.clip(u - step, low, high)
             if np.max(np.abs(step), initial=0.0) <= 1e-15 * self.period:
+                break
+        return np.asarray(u)
+
+    def at_side(self, nx: float, ny: float, reach: Array) -> Array:
+        """The u (n,) where the curve lies `reach` [mm] along the unit vector n, on its way anticlockwise
+        from the farthest point in the direction n to the farthest against it.
+
+        reach: (n,), from −h(−n) to h(n).
+        """
+        one = np.ones(1)
+        first = float(self.parameters(nx * one, ny * one)[1][0])
+        last = float(self.parameters(-nx * one, -ny * one)[0][0])
+        first -= np.floor((first - self.breaks[0]) / self.period) * self.period
+        last += np.ceil((first - last) / self.period) * self.period
+        known = self._known[0][:-1]
+        known = np.concatenate([known, known + self.period])
+        known = np.concatenate([[first], known[(known > first) & (known < last)], [last]])
+        at = self.walk(known)
+        # Falling from the one to the other: the curve is convex.
+        reached = np.minimum.accumulate(at.x * nx + at.y * ny)
+        i = np.clip(len(known) - np.searchsorted(reached[::-1], reach, side="left") - 1, 0, len(known) - 2)
+        low, high = known[i], known[i + 1]
+        u = 0.5 * (low + high)
+        for _ in range(_BISECTIONS):
+            at = self.walk(u)
+            miss = at.x * nx + at.y * ny - reach
+            low, high = np.where(miss > 0.0, u, low), np.where(miss > 0.0, high, u)
+            rate = at.ds * (at.ex * ny - at.ey * nx)
+            step = miss / np.where(rate < 0.0, rate, -np.inf)
+            newton = u - step
+            inside = (newton > low) & (newton < high) & (rate < 0.0)
+            following = np.where(inside, newton, 0.5 * (low + high))
+            moved = np.max(np.abs(following - u), initial=0.0)
+            u = following
+            if moved <= 1e-15 * self.period:
                 break
         return np.asarray(u)
 

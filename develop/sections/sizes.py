@@ -52,8 +52,8 @@ def sizes_of(kind: str, given: Mapping[str, float]) -> tuple[float, float]:
     Both lie within SMALLEST and LARGEST and within FLATTEST of each other, else NoSuchSize says
     what range the size or the ratio would have to lie in.
 
-    >>> sizes_of("flat-oval", {"girth": 2 * 300 + 3.141592653589793 * 300, "height": 300})
-    (600.0, 300.0)
+    >>> sizes_of("flat-oval", {"girth": 600 + 300 * pi, "height": 300})
+    (600.0, 300)
     """
     width, height = _solved(kind, given)
     if not _possible(width, height):

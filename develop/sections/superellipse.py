@@ -103,7 +103,7 @@ class Superellipse(Section):
         power = self.q - 1.0
         x = self.a * np.sign(nx) * (self.a * np.abs(nx) / h) ** power
         y = self.b * np.sign(ny) * (self.b * np.abs(ny) / h) ** power
-        return x, y
+        return np.asarray(x), np.asarray(y)
 
     def parameter(self, nx: Array, ny: Array) -> Array:
         nx, ny = np.asarray(nx, dtype=float), np.asarray(ny, dtype=float)
@@ -131,7 +131,7 @@ class Superellipse(Section):
 
     @property
     def kinks(self) -> Array:
-        return 0.5 * pi * np.arange(4)
+        return 0.5 * pi * np.arange(4.0)
 
     @cached_property
     def _girth(self) -> float:
@@ -154,11 +154,17 @@ class Superellipse(Section):
 
     @cached_property
     def _least_radius(self) -> float:
-        if self.n > 2.0:
-            at = self.walk(np.linspace(0.0, 8.0, 8001))
-            return float(np.min(self.radius(at.ex, at.ey)))
-        at = self.walk(np.linspace(0.0, 8.0, 8001))
-        return float(np.min(self.radius(at.ex, at.ey))) if self.n == 2.0 else 0.0
+        if self.n < 2.0:
+            return 0.0  # on the axes, where ρ goes with |cos sin|^(q − 2)
+        # One quarter has all radii; the place of the least is closed in on.
+        best, step = 1.0, 1.0 / 64.0
+        u = np.linspace(0.0, 2.0, 129)
+        for _ in range(12):
+            at = self.walk(u)
+            found = self.radius(at.ex, at.ey)
+            best, least = float(u[np.argmin(found)]), float(np.min(found))
+            u, step = np.clip(best + step * np.linspace(-1.0, 1.0, 17), 0.0, 2.0), 0.125 * step
+        return least
 
     @property
     def least_radius(self) -> float:

@@ -32,6 +32,7 @@ ALLOWED = (
 )
 """What a section may be, as messages and the help say it."""
 
+_ROUND = "round 400, round girth 1257 or round area 125000"
 _SIZED = "width x height; or two of girth, area, width, height, ratio (height over width)"
 _LEAST_N, _MOST_N = 1.2, 20.0
 # Words that people say for one of the kinds and that no spelling is near to.
@@ -51,7 +52,7 @@ def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
     >>> parse_section("ellipse 24 in × 300").text
     'ellipse 609.6 x 300'
     >>> parse_section("ellipse height 300 girth 1256.6").text
-    'ellipse 486.5656 x 300 (girth 1256.6, height 300)'
+    'ellipse 488.6535 x 300 (girth 1256.6, height 300)'
     """
     if not isinstance(text, str):
         raise refused(f"{shown(text)} is not a section", ALLOWED)
@@ -66,18 +67,18 @@ def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
 
 
 def _round(text: str, rest: str, unit: str) -> SectionSpec:
-    words = read_words(text, rest, ("girth", "area"), unit=unit, form=_FORMS["round"])
+    words = read_words(text, rest, ("girth", "area"), unit=unit, form=_ROUND)
     given = words.values
     if len(words.sizes) > 1:
         raise refused(
             f"{shown(text)} has two sizes; a round section has one, its diameter",
-            f"{_FORMS['round']}, or {_TWO}",
+            f"{_ROUND}; or ellipse 600 x 300",
         )
     if len(given) > 1 or (given and words.sizes and not words.bracketed):
-        raise refused(f"{shown(text)} is given more than once", "one of diameter, girth and area")
+        raise refused(f"{shown(text)} is given more than once", _ROUND)
     if not given:
         if not words.sizes:
-            raise refused(f"{shown(text)} has no diameter", "round 400; 0.1 mm to 100 m; or girth or area")
+            raise refused(f"{shown(text)} has no diameter", f"{_ROUND}; 0.1 mm to 100 m")
         (size,) = words.sizes
         return SectionSpec("round", size, size, f"round {number_text(size)}")
     size = given["girth"] / pi if "girth" in given else 2.0 * sqrt(given["area"] / pi)
@@ -89,9 +90,6 @@ def _round(text: str, rest: str, unit: str) -> SectionSpec:
     # A tape goes round the outside, whatever the piece's `sizes` says of its other sections.
     name = f"round {_short(size)} ({_canonical(given)})"
     return SectionSpec("round", size, size, name, outside="girth" in given)
-
-
-_TWO = "ellipse 600 x 300"
 
 
 def _two_sized(kind: str) -> Callable[[str, str, str], SectionSpec]:
@@ -211,7 +209,7 @@ def _agree(text: str, words: Words, sizes: tuple[float, ...]) -> None:
         made = " x ".join(map(_short, sizes))
         raise refused(
             f"{shown(text)}: what stands in brackets makes {made} mm",
-            f"the sizes {made}, or one of the two alone",
+            "sizes that follow from it, or one of the two alone",
         )
 
 

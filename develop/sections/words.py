@@ -47,7 +47,7 @@ def read_words(text: str, rest: str, words: Sequence[str], *, unit: str, form: s
     strange = next((word for word in _WORD.findall(rest) if _is_strange(word, words)), "")
     if strange:
         hint = near_miss(strange, [word for word in words if len(word) > 1])
-        if hint or first.startswith(strange):
+        if hint or (first.startswith(strange) and len(pieces) > 1):
             raise refused(f"{shown(text)} has the word {shown(strange)}{hint}", form)
     sizes = _BETWEEN.split(first) if first else []
     if not all(size.strip() for size in sizes):
@@ -99,8 +99,9 @@ def _value(text: str, word: str, value: str, unit: str, form: str) -> float:
         raise refused(f"{shown(text)}: {word}: {problem.given}", problem.allowed) from None
     if word == "r" and number == 0.0:
         return 0.0
+    least = "0 or more" if word == "r" else "above zero"
     if not 0.0 < number < float("inf"):
-        raise refused(f"{shown(text)}: {word} {shown(value)} is not above zero", f"{word} above zero")
+        raise refused(f"{shown(text)}: {word} {shown(value)} is not {least}", f"{word} {least}")
     if word == "ratio" and not _LEAST_RATIO <= number <= _MOST_RATIO:
         raise refused(f"{shown(text)}: ratio {shown(value)}", "ratio (height over width) from 0.001 to 1000")
     return number

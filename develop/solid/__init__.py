@@ -3,7 +3,23 @@
 from __future__ import annotations
 
 from develop.solid.end import End
+from develop.solid.flat import FlatPlate, FlatRing, Holes, Stretch
 from develop.solid.frame import Frame, Rim, cut_slopes
+from develop.solid.meeting import MeetingEnd
+from develop.solid.placed import Placed
 from develop.solid.solid import Solid
+from develop.solid.taper_meeting import TaperMeetingEnd
 
-__all__ = ["End", "Frame", "Rim", "Solid", "cut_slopes"]
+__all__ = [
+    "End",
+    "FlatPlate",
+    "FlatRing",
+    "Frame",
+    "Holes",
+    "MeetingEnd",
+    "Placed",
+    "Rim",
+    "Solid",
+    "Stretch", "TaperMeetingEnd",
+    "cut_slopes",
+]

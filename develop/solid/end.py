@@ -60,6 +60,11 @@ class End:
         spans = np.array([[1.0, 0.0], [0.0, 1.0], [float(rise[0]), float(rise[1])]])
         return End(section, np.array([0.0, 0.0, height]), spans, np.eye(3)[:2])
 
+    @property
+    def breaks(self) -> Array:
+        """Parameters (k,) where the curve has corners that its section has not."""
+        return np.zeros(0)
+
     def point(self, u: Array) -> Array:
         """Points (n, 3) [mm] at the section's parameter u (n,)."""
         return np.asarray(self.origin + self.section.point(u) @ self.spans.T)

@@ -14,6 +14,7 @@ import numpy as np
 
 from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, Mask, Panels, resolved, tail
 from develop.solid.end import End
+from develop.solid.meeting import MeetingEnd
 
 __all__ = ["Measures", "Solid", "Strip"]
 
@@ -25,6 +26,8 @@ _LOOSE = 5e-12
 _ROUNDS = 16
 # Less than this [mm, mm²] an edge is a point.
 _LEAST = 1e-3
+# The nodes' places are exact to a few parts in 1e16 of the whole piece, and their derivatives amplify that.
+_NOISE = 1e-13
 
 
 @dataclass(frozen=True)
@@ -53,6 +56,7 @@ class Solid:
         convex hull of the two ends.
     seam, seam_b: parameters of the two ends' sections between which the seam runs.
     distance: of the developed sheet outside the surface that carries the ends [mm].
+    openings: where branches meet this side, placed in its frame.
     cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
     """
 
@@ -63,6 +67,7 @@ class Solid:
     seam_b: float
     distance: float = 0.0
     cut_b: tuple[float, Array] | None = None
+    openings: tuple[MeetingEnd, ...] = ()
 
     def strip(self, u: Array) -> Strip:
         """The side's straight lines through end A at its section's parameter u (n,)."""
@@ -162,8 +167,11 @@ class Solid:
         first = Panels.between(self._panel_ends(*ends))
         whole = np.maximum(((WEIGHTS @ speeds(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
+        size = float(max(np.abs(end.point(end.section.breaks)).max() for end in ends))
+        allowed = np.maximum(_LOOSE * whole, _NOISE * np.array([size, size * size]))
+
         def loose(panels: Panels, found: Array) -> Mask:
-            return np.asarray((tail(found) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+            return np.asarray((tail(found) * panels.half[:, None] > allowed).any(axis=1))
 
         panels, found = resolved(first, speeds, loose, rounds=_ROUNDS)
         edge_length, area = ((WEIGHTS @ found) * panels.half[:, None]).sum(axis=0)
@@ -178,6 +186,11 @@ class Solid:
             flat = self._touching(yours, mine, yours.section.breaks[:-1]) @ mine.spans
             past = (section.parameter(flat[:, 0], flat[:, 1]) - start) % period
             ends = np.sort(np.concatenate([ends, past]))
+            ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
+            ends[-1] = period
+        else:
+            corners = np.concatenate([end.breaks for end in (mine, yours)])
+            ends = np.sort(np.concatenate([ends, (corners - start) % period]))
             ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
             ends[-1] = period
         return np.asarray(start + ends)

@@ -204,17 +204,41 @@ class Band:
         length = np.sqrt(np.einsum("ni,ni->n", ruling, ruling))
         return _Rulings(a, b, ruling, along, over, over_b, length, dphi_a, dphi_b, ds_a, ds_b)
 
+    def rulings(self, u: Array) -> tuple[Array, Array]:
+        """Points on end A and the rulings to end B, (n, 3) each, at end A's parameters u (n,)."""
+        r = self._rulings(True, u)
+        return r.a.point, r.ruling
+
+    def normals(self, u: Array) -> Array:
+        """Outward unit normals (n, 3) along the rulings from end A's parameters u (n,)."""
+        r = self._rulings(True, u)
+        return np.cross(r.a.tangent, r.a.across)
+
     def lengths(self, u: Array) -> Array:
-        """Lengths (n,) [mm] of the rulings through the points u (n,) of end A's section."""
-        return self._rulings(True, u).length
+        """Lengths (n,) [mm] of the rulings through the points u (n,) of end A's section, between the cuts."""
+        r = self._rulings(True, u)
+        low, high = self._shares(r)
+        return np.asarray((high - low) * r.length)
+
+    def _shares(self, r: _Rulings) -> tuple[Array, Array]:
+        """Where the sheet's two ends lie on rulings, in parts of R, (n,) each."""
+        low, high = np.zeros(len(r.length)), np.ones(len(r.length))
+        return (
+            self.cut_a.meet(r.a.point, r.ruling) if self.cut_a else low,
+            self.cut_b.meet(r.a.point, r.ruling) if self.cut_b else high,
+        )
 
     def radii(self, u: Array) -> Array:
-        """Roll radii (n, 2) [mm] at ends A and B of the rulings through u (n,) of end A's section.
+        """Roll radii (n, 2) [mm] at both ends of the rulings through u (n,) of end A's section.
 
         On the surface that carries the rims: ρ (R·W)² / (cos ψ |R|²), by Euler's formula for the
-        normal curvature square to a ruling.
+        normal curvature square to a ruling; from rim to rim they change in proportion.
         """
-        return self._radii(self._rulings(True, u))
+        r = self._rulings(True, u)
+        radii = self._radii(r)
+        if not (self.cut_a or self.cut_b):
+            return radii
+        return np.stack([_part_way(radii, share) for share in self._shares(r)], axis=-1)
 
     def _radii(self, r: _Rulings) -> Array:
         rows = []
@@ -250,10 +274,14 @@ class Band:
                 yield which, walking_a, self._rulings(walking_a, mine, (low, high))
 
     def _rates(self, course: _Course, panels: Panels) -> Array:
-        """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W."""
+        """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W.
+
+        Of a cut band (m, k, 8): also where the sheet's two ends lie, in parts of R.
+        """
         nodes = panels.nodes
         origin = np.repeat(panels.origin, nodes.shape[1])
-        rates = np.empty((nodes.size, 6))
+        cut = bool(self.cut_a or self.cut_b)
+        rates = np.empty((nodes.size, 8 if cut else 6))
         for which, _, r in self._on_course(course, origin, nodes.ravel()):
             turn = r.a.cos_psi * r.dphi_a
             slant = turn / r.over
@@ -265,10 +293,11 @@ class Band:
                     -self.distance * slant * r.along,
                     r.along,
                     r.over,
+                    *(self._shares(r) if cut else ()),
                 ],
                 axis=-1,
             )
-        return rates.reshape(*nodes.shape, 6)
+        return rates.reshape(*nodes.shape, -1)
 
     def sheet(self, seam: float, *, tolerance: float = 1e-10) -> BandSheet:
         """The band slit along the ruling at parameter `seam` of end A's section, laid flat.
@@ -282,8 +311,11 @@ class Band:
 
         def loose(panels: Panels, rates: Array) -> Mask:
             half = panels.half[:, None]
-            # Angles count by how far they swing the whole piece; R itself is used unintegrated.
-            scale = np.concatenate([size * half, size * half, half, half, np.ones((len(half), 2))], axis=1)
+            # Angles count by how far they swing the whole piece; R itself is used unintegrated, and
+            # parts of it count by how long it can be.
+            one = np.ones_like(half)
+            columns = [size * half, size * half, half, half, one, one, size * one, size * one]
+            scale = np.concatenate(columns[: rates.shape[2]], axis=1)
             noise = 4e-14 * np.max(np.abs(rates), axis=1) * scale
             return np.asarray((tail(rates) * scale > np.maximum(allowed, noise)).any(axis=1))
 
@@ -345,6 +377,13 @@ def _paired(
     return u, low + np.clip(share, 0.0, 1.0) * (high - low)
 
 
+def _part_way(radii: Array, share: Array) -> Array:
+    """Roll radii (n,) part of the way along rulings, from those at both rims (n, 2)."""
+    flat = np.asarray(~np.isfinite(radii).all(axis=1))
+    first, last = np.where(flat[:, None], 0.0, radii).T
+    return np.where(flat, np.inf, first + share * (last - first))
+
+
 def _speed(radius: Array, dphi: Array) -> Array:
     """ds = ρ dφ, and none where the normal stands, though the radius be infinite there."""
     turns = dphi > 0.0
@@ -367,7 +406,7 @@ class BandSheet:
         self.band = band
         self._course, self._panels = course, panels
         half = panels.half
-        legs = rates[..., 4:]
+        legs = rates[..., 4:6]
         angles, angle_ends = running(rates[..., :2], half)
         lean = -0.5 * angle_ends[-1, 0]
         angles[..., 0] += lean
@@ -393,8 +432,8 @@ class BandSheet:
         )
         p_step = step[..., :2]
         if band.cut_a or band.cut_b:
-            low, high = self._shares_at_nodes()
-            p, q = p + low[..., None] * (q - p), p + high[..., None] * (q - p)
+            low, high = rates[..., 6:7], rates[..., 7:8]
+            p, q = p + low * (q - p), p + high * (q - p)
         # The speed along an edge is taken from the flat map itself, not from the end's section, so
         # that its length proves the map.
         if band.cut_a:
@@ -454,7 +493,7 @@ class BandSheet:
             at, radius = np.full(len(c), share), radii[:, int(share)]
             if cut is not None:
                 at = cut.meet(a.point, r.ruling)
-                radius = radii[:, 0] + at * (radii[:, 1] - radii[:, 0])
+                radius = _part_way(radii, at)
                 normal = cut.normal(a.point + at[:, None] * r.ruling)
                 # The joint runs along N × n; its part to the right of the ruling must be positive.
                 t, w = (
@@ -487,17 +526,6 @@ class BandSheet:
             u_a=u if on_a else band.rim_a.section.parameter(a.normal_x, a.normal_y),
             length=(high - low) * r.length,
         )
-
-    def _shares_at_nodes(self) -> tuple[Array, Array]:
-        """Where the cuts meet the rulings at the panels' nodes, in parts of R, (m, ORDER) each."""
-        nodes = self._panels.nodes
-        origin = np.repeat(self._panels.origin, nodes.shape[1])
-        low, high = np.zeros(nodes.size), np.ones(nodes.size)
-        for which, _, r in self.band._on_course(self._course, origin, nodes.ravel()):
-            for cut, share in ((self.band.cut_a, low), (self.band.cut_b, high)):
-                if cut is not None:
-                    share[which] = cut.meet(r.a.point, r.ruling)
-        return low.reshape(nodes.shape), high.reshape(nodes.shape)
 
     @cached_property
     def _spans(self) -> tuple[Array, Array]:

@@ -10,7 +10,18 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from develop.quadrature import WEIGHTS, Array, Mask, Panels, between, resolved, running, tail
+from develop.quadrature import (
+    DERIVATIVE,
+    WEIGHTS,
+    Array,
+    Mask,
+    Panels,
+    between,
+    inside,
+    resolved,
+    running,
+    tail,
+)
 from develop.sections.section import Section, Walk
 from develop.surfaces.sheet import Lines, Place
 from develop.surfaces.trim import Trim
@@ -18,9 +29,10 @@ from develop.surfaces.trim import Trim
 __all__ = ["Cylinder", "CylinderSheet"]
 
 _SAME = 1e-9
-# What a panel's nodes leave out, in parts of the girth.
-_LOOSE = 1e-14
-_ROUNDS = 40
+# What a panel's nodes may leave out, in parts of the piece's size; less is lost in the rounding of
+# heights, which differentiating brings up some hundred times.
+_LOOSE = 2e-13
+_ROUNDS = 16
 _AXIS = np.array([0.0, 0.0, 1.0])
 
 
@@ -42,7 +54,7 @@ class Cylinder:
     def lengths(self, u: Array) -> Array:
         """Lengths (n,) [mm] of the rulings at the section's parameters u (n,)."""
         at = self.section.walk(u)
-        return _trimmed(self.trim_b, at)[0] - _trimmed(self.trim_a, at)[0]
+        return _heights(self.trim_b, at) - _heights(self.trim_a, at)
 
     def sheet(self, seam: float, *, beyond: float = 0.0) -> CylinderSheet:
         """The cylinder slit along the ruling at parameter `seam`, laid flat.
@@ -74,32 +86,34 @@ class CylinderSheet:
 
         def loose(panels: Panels, rates: Array) -> Mask:
             unresolved = tail(rates[..., :3]) * panels.half[:, None]
-            return np.asarray((unresolved > _LOOSE * whole).any(axis=1))
+            size = whole + float(np.max(np.abs(rates[..., 4:6])))
+            return np.asarray((unresolved > _LOOSE * size).any(axis=1))
 
-        self._panels, rates = resolved(Panels.between(seam + ends), self._rates, loose, rounds=_ROUNDS)
-        self._half = self._panels.half
+        self.panels, rates = resolved(Panels.between(seam + ends), self._rates, loose, rounds=_ROUNDS)
+        self._half = self.panels.half
         self._columns, totals = running(rates[..., :4], self._half)
+        # Heights of both trims and their rates: taken from the nodes everywhere, as a trim may have a
+        # corner at a panel's end.
+        self._climbs = rates[..., 4:8]
         self.edge_a, self.edge_b = float(totals[-1, 1]), float(totals[-1, 2])
-        self.area = float(np.sum(self._half * (rates[..., 4] @ WEIGHTS)))
+        rise = self._climbs[..., 1] - self._climbs[..., 0]
+        self.area = float(np.sum(self._half * ((rise * rates[..., 0]) @ WEIGHTS)))
         self.at_ends = self.lines(self.ends)
 
+    @property
+    def heights_a(self) -> Array:
+        """Heights of trim A at the panels' nodes, (m, ORDER) [mm]."""
+        return np.asarray(self._climbs[..., 0])
+
     def _rates(self, panels: Panels) -> Array:
-        """At the nodes (m, ORDER, 5): rates of the stretch-out, edges A and B, turn and area."""
+        """At the nodes (m, ORDER, 8): rates of the stretch-out, edges A and B and turn; heights of A
+        and B and their rates."""
         at = self.cylinder.section.walk(panels.nodes)
         go = at.ds + self.cylinder.distance * at.dphi
-        (low, climb_a), (high, climb_b) = (
-            _trimmed(trim, at) for trim in (self.cylinder.trim_a, self.cylinder.trim_b)
-        )
-        return np.stack(
-            [
-                go,
-                np.sqrt(go * go + climb_a * climb_a),
-                np.sqrt(go * go + climb_b * climb_b),
-                at.dphi,
-                (high - low) * go,
-            ],
-            axis=-1,
-        )
+        heights = [_heights(trim, at) for trim in (self.cylinder.trim_a, self.cylinder.trim_b)]
+        climbs = [(z @ DERIVATIVE.T) / panels.half[:, None] for z in heights]
+        speeds = [np.sqrt(go * go + climb * climb) for climb in climbs]
+        return np.stack([go, *speeds, at.dphi, *heights, *climbs], axis=-1)
 
     @property
     def ends(self) -> Place:
@@ -108,18 +122,18 @@ class CylinderSheet:
 
     def lines(self, place: Place) -> Lines:
         cylinder, section, d = self.cylinder, self.cylinder.section, self.cylinder.distance
-        u = self._panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
+        u = self.panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
         at = section.walk(u)
         row = np.einsum("nk,nkc->nc", between(place.x), self._columns[place.panel])
         go = at.ds + d * at.dphi
+        climbs = np.einsum("nk,nkc->nc", inside(place.x), self._climbs[place.panel])
         ends, tangents = [], []
-        for trim in (cylinder.trim_a, cylinder.trim_b):
-            z, climb = _trimmed(trim, at)
-            size = np.sqrt(go * go + climb * climb)
+        for z, climb in ((climbs[:, 0], climbs[:, 2]), (climbs[:, 1], climbs[:, 3])):
             ends.append(np.stack([row[:, 0], z], axis=-1))
-            # At a sharp corner of the section the edge stands.
-            size = np.where(size > 0.0, size, 1.0)
-            tangents.append(np.stack([np.where(go > 0.0, go, 1.0) / size, climb / size], axis=-1))
+            # At a sharp corner of the section the edge stands, and a climb there is rounding.
+            along, up = np.where(go > 0.0, go, 1.0), np.where(go > 0.0, climb, 0.0)
+            size = np.sqrt(along * along + up * up)
+            tangents.append(np.stack([along / size, up / size], axis=-1))
         radius = section.radius(at.ex, at.ey) + d
         return Lines(
             a=ends[0],
@@ -139,7 +153,7 @@ class CylinderSheet:
         period = self.cylinder.section.period
         past = (np.asarray(u, dtype=float) - self._seam) % period
         local = self._seam + np.where(past > period * (1.0 - _SAME), 0.0, past)
-        start = self._panels.start
+        start = self.panels.start
         panel = np.clip(np.searchsorted(start, local, side="right") - 1, 0, len(start) - 1)
         return Place(panel, np.clip((local - start[panel]) / self._half[panel] - 1.0, -1.0, 1.0))
 
@@ -147,14 +161,7 @@ class CylinderSheet:
         return self.from_a(u)
 
 
-def _trimmed(trim: Trim, at: Walk) -> tuple[Array, Array]:
-    """Height of the trim over a walk round the section, and its rate along it."""
-    shape = at.x.shape
+def _heights(trim: Trim, at: Walk) -> Array:
+    """Heights of a trim over a walk round the section, of the walk's shape."""
     start = np.stack([at.x.ravel(), at.y.ravel(), np.zeros(at.x.size)], axis=-1)
-    z = trim.meet(start, np.broadcast_to(_AXIS, start.shape))
-    normal = trim.normal(np.stack([start[:, 0], start[:, 1], z], axis=-1))
-    # Along the joint the tangent T + climb·axis lies square to the normal.
-    across = at.ex.ravel() * normal[:, 1] - at.ey.ravel() * normal[:, 0]
-    upright = normal[:, 2]
-    climb = -across / np.where(upright == 0.0, np.inf, upright)
-    return z.reshape(shape), at.ds * climb.reshape(shape)
+    return trim.meet(start, np.broadcast_to(_AXIS, start.shape)).reshape(at.x.shape)

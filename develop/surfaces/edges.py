@@ -80,9 +80,7 @@ def chains(
         start = start[owner] + number * step
         panel, end = panel[owner], start + step
     order = np.argsort(np.concatenate([place for place, _ in done]))
-    return tuple(
-        _chain(np.concatenate([fits[i] for _, fits in done])[order]) for i in range(len(done[0][1]))
-    )
+    return tuple(_chain(np.concatenate([fits[i] for _, fits in done])[order]) for i in range(len(done[0][1])))
 
 
 def _fit(trace: Trace) -> Array:
@@ -99,7 +97,8 @@ def _fit(trace: Trace) -> Array:
 def _miss(control: Array, trace: Trace) -> Array:
     """Largest distance (n,) [mm] of the Béziers from points inside, measured square to the curve."""
     arcs = trace.arcs - trace.arcs[:, :1]
-    t = (arcs[:, 1:4] / np.maximum(arcs[:, -1:], 1e-300))[..., None]
+    # Where the edge stands at a corner its arcs are rounding and nothing else.
+    t = (arcs[:, 1:4] / np.maximum(arcs[:, -1:], _STANDS))[..., None]
     on = (
         (1 - t) ** 3 * control[:, None, 0]
         + 3 * (1 - t) ** 2 * t * control[:, None, 1]

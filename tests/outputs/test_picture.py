@@ -10,7 +10,7 @@ import sys
 
 import numpy as np
 import pytest
-from shapely import MultiPoint, Point
+from shapely import LineString, MultiPoint, Point, Polygon
 
 from develop.outputs import picture as module
 from develop.outputs.picture import picture
@@ -37,7 +37,7 @@ def chunks(data):
 
 
 def test_png_of_a_fixed_size_that_names_no_program(solid):
-    found = list(chunks(picture(solid, "T1")))
+    found = list(chunks(picture([solid], "T1")))
     kinds = [kind for kind, _ in found]
     assert struct.unpack(">II", found[0][1][:8]) == (1200, 900)
     assert not {b"tEXt", b"iTXt", b"zTXt", b"tIME"} & set(kinds)
@@ -46,10 +46,10 @@ def test_png_of_a_fixed_size_that_names_no_program(solid):
 def test_the_same_piece_gives_the_same_bytes_whatever_the_user_has_set(solid):
     import matplotlib
 
-    one = picture(solid, "T1")
+    one = picture([solid], "T1")
     with matplotlib.rc_context({"savefig.dpi": 30, "figure.facecolor": "black", "font.size": 30}):
-        assert picture(solid, "T1") == one
-    assert picture(solid, "T2") != one
+        assert picture([solid], "T1") == one
+    assert picture([solid], "T2") != one
 
 
 def test_pyplot_is_not_imported():
@@ -61,7 +61,7 @@ def test_pyplot_is_not_imported():
 
 
 def test_white_ground_and_a_piece_in_the_middle(solid):
-    image = dots(picture(solid, "T1"))
+    image = dots(picture([solid], "T1"))
     for corner in (image[0, 0], image[0, -1], image[-1, 0], image[-1, -1]):
         assert corner.tolist() == [255, 255, 255]
     border = np.concatenate(
@@ -78,11 +78,11 @@ def red(image):
 
 def test_the_seam_is_drawn_where_it_is(samples):
     # At the left side of the piece the view is from the left, so the whole seam is to be seen.
-    seen = red(dots(picture(samples.Frustum(seam_at=math.pi), "")))
+    seen = red(dots(picture([samples.Frustum(seam_at=math.pi)], "")))
     assert seen.sum() > 2000
     across = np.flatnonzero(seen.any(axis=0))
     assert np.ptp(across) > 300
-    hidden = red(dots(picture(samples.Frustum(seam_at=-math.pi / 2), "")))
+    hidden = red(dots(picture([samples.Frustum(seam_at=-math.pi / 2)], "")))
     assert 300 < hidden.sum() < seen.sum()
 
 
@@ -96,7 +96,7 @@ def test_words_stand_outside_the_piece_and_apart(samples, sizes, seam_at):
     for aside in (1.0, -1.0):
         camera = module._Camera(middle, reach, aside=aside)
         shape = MultiPoint(camera.project(vertices)).convex_hull
-        words = module._words(camera, solid)
+        words = module._words(camera, [solid])
         assert [word[0] for word in words] == ["END A", "END B", "TOP", "SEAM"]
         for _, _, end, _ in words:
             assert shape.distance(Point(end)) > 0.02
@@ -139,9 +139,66 @@ def test_near_things_look_larger():
 
 def test_outside_and_inside_are_told_apart(samples):
     solid = samples.Frustum(150.0, 150.0, 400.0, shift=(0.0, 0.0))
-    image = dots(picture(solid, ""))
+    image = dots(picture([solid], ""))
     bluish = (image[..., 2] - image[..., 0] > 25).sum()  # the outside
     brownish = ((image[..., 0] - image[..., 2] > 4) & (image[..., 0] < 200) & ~red(image)).sum()  # the inside
     assert bluish > 50000
     assert brownish > 20000
     assert bluish > brownish
+
+
+class Moved:
+    """A sample part carried elsewhere; from elementary geometry, as the samples are."""
+
+    def __init__(self, part, by):
+        self.part, self.by = part, np.asarray(by, dtype=float)
+
+    def faces(self):
+        vertices, faces = self.part.faces()
+        return vertices + self.by, faces
+
+    def rim_a(self, n):
+        return self.part.rim_a(n) + self.by
+
+    def rim_b(self, n):
+        return self.part.rim_b(n) + self.by
+
+    @property
+    def seam_line(self):
+        return self.part.seam_line + self.by
+
+    @property
+    def top_line(self):
+        return self.part.top_line + self.by
+
+
+@pytest.mark.parametrize("front_first", [False, True])
+def test_a_part_hides_what_lies_behind_it_in_whatever_order_they_come(samples, front_first):
+    camera = module._Camera(np.zeros(3), 1000.0, aside=1.0)
+    small = samples.Frustum(100.0, 100.0, 300.0, shift=(0.0, 0.0), seam_at=0.0)
+    front = Moved(samples.Frustum(200.0, 200.0, 400.0, shift=(0.0, 0.0)), 400.0 * camera.towards - [0, 0, 50])
+    behind = Moved(front.part, -900.0 * camera.towards)
+    seam = Point(camera.project(small.seam_line.mean(axis=0)))
+
+    def last_seen(other):
+        """What is painted last on the middle of the small part's seam: a wall or a line."""
+        pair = [other, small] if front_first else [small, other]
+        polygons, *_ = module._scene(camera, pair, 25.0)
+        for polygon in reversed(polygons):
+            if len(polygon) == 2 and LineString(polygon).distance(seam) < 1e-9:
+                return "line"
+            if len(polygon) == 4 and Polygon(polygon).contains(seam):
+                return "wall"
+        return None
+
+    assert last_seen(behind) == "line"
+    assert last_seen(front) == "wall"
+
+
+def test_ends_are_those_of_the_first_and_the_last_part(samples):
+    first = samples.Frustum(100.0, 100.0, 300.0, shift=(0.0, 0.0))
+    last = Moved(first, (0.0, 0.0, 300.0))
+    camera = module._Camera(np.array([0.0, 0.0, 300.0]), 700.0, aside=1.0)
+    words = {word: start for word, start, _, _ in module._words(camera, [first, last])}
+    for word, rim in (("END A", first.rim_a(240)), ("END B", last.rim_b(240))):
+        assert np.abs(camera.project(rim) - words[word]).sum(axis=1).min() < 1e-12

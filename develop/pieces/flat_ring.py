@@ -1,0 +1,200 @@
+"""Rings of plate round a curve, whole or in parts, with holes along a pitch line."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from develop.pattern.curve import Array, Curve, segment
+from develop.pattern.pattern import Figures, Outline
+from develop.pieces.built import Part
+from develop.pieces.flat import Plate, closed, direction_marks, drawn, holes_at, pattern_of_plate
+from develop.sections.section import Parallel, Section
+from develop.solid import FlatRing, Frame, Holes
+from develop.surfaces.plane import PlaneCurve, plane_curve
+
+__all__ = ["parts_of"]
+
+_PLACES = 48
+_ALIKE = 1e-6  # [mm]
+_SAMPLES = 33
+
+
+def parts_of(
+    inner: Section,
+    *,
+    width: float,
+    line: Parallel,
+    holes: Array,
+    radius: float,
+    ends: Array | None,
+    blank: bool,
+    others: Sequence[tuple[float, str]],
+    mark: str,
+    kind: str,
+    quantity: int,
+    facts: tuple[str, ...],
+) -> tuple[Part, ...]:
+    """The parts of a ring from the curve `inner` to its parallel at `width` [mm], or of a blank.
+
+    line: the pitch line; holes: parameters of their centres (n,), radius [mm]. ends: parameters
+    (m + 1,) at which the ring is parted, None for a whole one. others: directions [rad] that are
+    marked beside the four, with their words. Parts that are alike, also when turned over, are one
+    pattern with a quantity.
+    """
+    spans = [None] if ends is None else list(zip(ends[:-1].tolist(), ends[1:].tolist(), strict=True))
+    groups: list[list[int]] = []
+    shapes = [None if span is None else _Shape(inner, line, span, _here(inner, holes, span)) for span in spans]
+    for i, shape in enumerate(shapes):
+        alike = next((g for g in groups if shape is not None and shape.like(shapes[g[0]]) is not None), None)
+        if alike is None:
+            groups.append([i])
+        else:
+            alike.append(i)
+    parts = []
+    for number, group in enumerate(groups, start=1):
+        span, first = spans[group[0]], shapes[group[0]]
+        here = holes if span is None else _here(inner, holes, span)
+        plate = _plate(inner, width, line, here, radius, span, blank, others if len(group) == 1 else None)
+        name = mark if len(groups) == 1 else f"{mark}-{number}"
+        count = quantity * len(group)
+        which = f", {len(group)} of the {len(spans)} parts of the ring" if ends is not None else ""
+        title = f"{name}: {kind}" if name != kind else name
+        solid = FlatRing(
+            inner,
+            width,
+            plate.shift,
+            span,
+            blank,
+            Holes(line, len(holes), len(here), radius) if len(holes) else None,
+        )
+        frames = [Frame.square()]
+        for i in group[1:]:
+            other = shapes[i]
+            assert first is not None
+            assert other is not None
+            frame = first.like(other)
+            assert frame is not None
+            frames.append(frame)
+        pattern = pattern_of_plate(
+            plate,
+            mark=name,
+            kind=kind,
+            quantity=count,
+            facts=(f"{title}{which}", *facts, f"quantity {count}, drawn facing END B"),
+            figures=_figures(line, here, plate.shift),
+        )
+        parts.append(Part(pattern, solid, tuple(frames)))
+    return tuple(parts)
+
+
+def _here(inner: Section, holes: Array, span: tuple[float, float]) -> Array:
+    """The holes (k,) between the ends of a part, in its own turn of the parameter."""
+    past = (holes - span[0]) % inner.period
+    return np.sort(span[0] + past[past < span[1] - span[0]])
+
+
+class _Shape:
+    """The shape of a part: points of its two edges and its holes, to be compared with another's."""
+
+    def __init__(self, inner: Section, line: Parallel, span: tuple[float, float], holes: Array) -> None:
+        arcs = line.arc(np.array(span))
+        u = line.at_arc(np.linspace(arcs[0], arcs[1], _SAMPLES))
+        u[[0, -1]] = span
+        self.points = np.vstack([inner.point(u), line.point(u), line.point(holes)])
+        self.back = np.vstack([inner.point(u[::-1]), line.point(u[::-1]), line.point(holes[::-1])])
+
+    def like(self, other: _Shape | None) -> Frame | None:
+        """Where this shape lies when it covers the other one: turned, or turned over and turned; or None."""
+        if other is None or len(self.points) != len(other.points):
+            return None
+        for mirror in (1.0, -1.0):
+            mine = self.points * [1.0, mirror]
+            target = other.points if mirror > 0.0 else other.back
+            a, b = mine - mine.mean(axis=0), target - target.mean(axis=0)
+            # The turn that brings one set of points nearest to the other.
+            angle = np.arctan2((a[:, 0] * b[:, 1] - a[:, 1] * b[:, 0]).sum(), (a * b).sum())
+            c, s = np.cos(angle), np.sin(angle)
+            turn = np.array([[c, -s], [s, c]])
+            if np.abs(a @ turn.T - b).max() > _ALIKE:
+                continue
+            shift = target.mean(axis=0) - turn @ mine.mean(axis=0)
+            axes = np.zeros((3, 3))
+            axes[:2, :2] = (turn @ np.diag([1.0, mirror])).T
+            axes[2, 2] = mirror
+            return Frame(np.array([*shift, 0.0]), axes)
+        return None
+
+
+def _plate(
+    inner: Section,
+    width: float,
+    line: Parallel,
+    holes: Array,
+    radius: float,
+    span: tuple[float, float] | None,
+    blank: bool,
+    others: Sequence[tuple[float, str]] | None,
+) -> Plate:
+    """A part in the plane of the curve. others: further marks, None for a part without any marks."""
+    outside = Parallel(inner, width)
+    openings = holes_at(line.point(holes), radius) if len(holes) else ()
+    marked = [] if others is None else direction_marks(inner, "inner", outward=True, others=_new(others))
+    low, high = (float(inner.breaks[0]), float(inner.breaks[-1])) if span is None else span
+    marks = tuple(m for u, m in marked if span is None or (u - low) % inner.period <= high - low)
+    places = _places(inner, outside, line, low, high)
+    if span is not None:
+        curves = [plane_curve(each, start=low, stop=high) for each in (inner, outside)]
+        return Plate(_segment(*curves), openings, marks, (), places)
+    rim = plane_curve(outside)
+    if blank:
+        cross = tuple(
+            segment(*(outside.point(outside.at_direction(np.array([d, d + np.pi])))))
+            for d in (0.0, 0.5 * np.pi)
+        )
+        # In the quarters between the centre lines.
+        low_high = np.array([[[x, y], [x, y + 0.4]] for y in (0.05, -0.45) for x in (-0.22, 0.22)])
+        flat = low_high * [inner.width, inner.height]
+        return Plate(closed("outer", rim), openings, (), cross, np.concatenate([flat, places]))
+    return Plate(closed("outer", rim), (closed("inner", plane_curve(inner)), *openings), marks, (), places)
+
+
+def _new(others: Sequence[tuple[float, str]]) -> list[tuple[float, str]]:
+    """Those directions that are none of the four which are marked anyhow."""
+    return [(d, word) for d, word in others if abs((d / (0.5 * np.pi) + 0.5) % 1.0 - 0.5) > 1e-9]
+
+
+def _segment(inner: PlaneCurve, outer: PlaneCurve) -> Outline:
+    """A part of a ring between two square ends."""
+    out, back = drawn(outer), drawn(inner).reversed()
+    end_2, end_1 = segment(out.end, back.start), segment(back.end, out.start)
+    swept = outer.swept - inner.swept
+    for straight in (end_2, end_1):
+        swept += 0.5 * float(straight.start[0] * straight.end[1] - straight.start[1] * straight.end[0])
+    curves: tuple[tuple[str, Curve], ...] = (("outer", out), ("end_2", end_2), ("inner", back), ("end_1", end_1))
+    return Outline(curves, swept)
+
+
+def _places(inner: Section, outside: Parallel, line: Parallel, low: float, high: float) -> Array:
+    """Lines from edge to edge that words may stand on, where the ring is straightest first."""
+    arcs = line.arc(np.array([low, high]))
+    shares = (np.arange(_PLACES) + 0.5) / _PLACES
+    u = line.at_arc(arcs[0] + shares * (arcs[1] - arcs[0]))
+    at = line.walk(u)
+    bent = 1.0 / np.maximum(line.radius(at.ex, at.ey), 1.0)
+    order = np.lexsort((np.abs(shares - 0.5), np.round(bent / bent.max(), 2)))
+    return np.stack([inner.point(u), outside.point(u)], axis=1)[order]
+
+
+def _figures(line: Parallel, holes: Array, shift: Array) -> tuple[Figures, ...]:
+    """The holes' centres, to be marked out by tape."""
+    if not len(holes):
+        return ()
+    arcs = line.arc(holes)
+    rows = [
+        (str(n + 1), float(arcs[n] - arcs[0]), float(x), float(y))
+        for n, (x, y) in enumerate(line.point(holes) + shift)
+    ]
+    heads = (("hole", "no."), ("running", "along pitch line"), ("centre", "x"), ("centre", "y"))
+    return (Figures("Centres of the holes", heads, tuple(rows)),)

@@ -1,0 +1,136 @@
+"""Mitred work: legs of one section whose axis turns at each mitre, as bends and offsets are made.
+
+At a mitre the plane halves the angle between the two axes, so both legs are cut by half the turn
+and their edges are one curve. The section is carried along without twisting.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from math import cos, pi, sin, tau
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from develop.pieces.assemble import pattern_of
+from develop.pieces.built import Built, Joint, Part
+from develop.pieces.cuts import cylinder_solid, trim
+from develop.pieces.field_types import Cut
+from develop.solid import Frame
+from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.trim import Plane
+
+if TYPE_CHECKING:
+    from develop.pieces.assemble import Wording
+    from develop.sections.section import Section
+
+__all__ = ["Leg", "Turn", "built_of", "farthest", "legs_of"]
+
+
+@dataclass(frozen=True)
+class Turn:
+    """A mitre: how far the axis turns there [rad], and to which direction round the section [rad]."""
+
+    angle: float
+    towards: float
+
+    @property
+    def cut(self) -> Cut:
+        """The cut of both legs: half the turn, longest on the side that the axis turns away from."""
+        return Cut(slope=0.5 * self.angle, long=self.towards + pi)
+
+
+@dataclass(frozen=True)
+class Leg:
+    """One leg: its surface in a frame of its own, whose +z is the leg's axis, and that frame's place."""
+
+    surface: Cylinder
+    frame: Frame
+
+    @property
+    def shape(self) -> tuple[float, ...]:
+        """What two legs of one section have in common when they are alike."""
+        a, b = self.surface.trim_a, self.surface.trim_b
+        assert isinstance(a, Plane)
+        assert isinstance(b, Plane)
+        return a.height, *map(float, a.rise), b.height, *map(float, b.rise)
+
+
+def farthest(section: Section, towards: float) -> float:
+    """The direction [rad] in which the section's point lies that reaches farthest towards a direction.
+
+    The throat of a leg that turns there. Of a straight side the middle.
+    """
+    nx, ny = np.array([cos(towards)]), np.array([sin(towards)])
+    first, last = section.parameters(nx, ny)
+    return float(section.direction(0.5 * (first + last))[0])
+
+
+def legs_of(
+    section: Section, lengths: Sequence[float], turns: Sequence[Turn], *, distance: float
+) -> tuple[Leg, ...]:
+    """The legs, n of them, from their lengths on the axis [mm] and the n − 1 turns between them.
+
+    Whether a leg is long enough for its cuts is for whoever makes a piece to see to.
+    """
+    legs: list[Leg] = []
+    origin, axes = np.zeros(3), np.eye(3)
+    for i, length in enumerate(lengths):
+        before = turns[i - 1] if i else None
+        after = turns[i] if i < len(turns) else None
+        surface = Cylinder(
+            section,
+            trim(before.cut if before else None, height=0.0, end_b=False),
+            trim(after.cut if after else None, height=length, end_b=True),
+            distance,
+        )
+        legs.append(Leg(surface, Frame(origin, axes)))
+        origin = origin + length * axes[2]
+        if after is not None:
+            # Tilted so that it stands highest at the heel: its normal leans to the throat.
+            axes = Frame.square().tilted(slope=after.angle, long=after.towards + pi).axes @ axes
+    return tuple(legs)
+
+
+def built_of(
+    legs: Sequence[Leg],
+    seams: Sequence[float],
+    *,
+    wording: Callable[[tuple[int, ...]], Wording],
+    divisions: int,
+    name: str,
+) -> Built:
+    """The piece of these legs; those alike, seam and all, are one pattern that is used several times.
+
+    seams: the direction of each leg's seam [rad]. wording: of the pattern that serves the legs of
+    these numbers, counted from 1. name: what a leg is called, such as `gore`.
+    """
+    groups: dict[tuple[float, ...], list[int]] = {}
+    for i, (leg, seam) in enumerate(zip(legs, seams, strict=True)):
+        # So far apart as a seam can be told from another; a whole turn is none.
+        told = round(seam % tau, 9) % round(tau, 9)
+        groups.setdefault((*leg.shape, told), []).append(i)
+    parts: list[Part] = []
+    place_of: dict[int, tuple[int, int]] = {}
+    for number, members in enumerate(groups.values()):
+        surface, section = legs[members[0]].surface, legs[members[0]].surface.section
+        seam = float(section.at_direction(np.array([seams[members[0]]]))[0])
+        pattern = pattern_of(
+            surface.sheet(seam),
+            section,
+            section,
+            wording=wording(tuple(i + 1 for i in members)),
+            divisions=divisions,
+            distance=surface.distance,
+        )
+        frames = tuple(legs[i].frame for i in members)
+        parts.append(Part(pattern, cylinder_solid(surface, seam), frames))
+        place_of |= {i: (number, place) for place, i in enumerate(members)}
+    joints = []
+    for i in range(len(legs) - 1):
+        (part, place), (other, other_place) = place_of[i], place_of[i + 1]
+        joints.append(
+            Joint(part, "b", other, "a", place, other_place, name=f"{name} {i + 1} to {name} {i + 2}")
+        )
+    return Built(tuple(parts), tuple(joints))

@@ -1,0 +1,155 @@
+"""The opposite hand: mirrored pieces, their words, files and checks."""
+
+from __future__ import annotations
+
+import json
+from dataclasses import replace
+from math import degrees, radians
+
+import numpy as np
+import pytest
+
+from develop.job.pipeline import checks_of_all
+from develop.job.pipeline import make as write
+from develop.pieces import KINDS, kind_of
+from develop.pieces.fields import read_piece
+from develop.pieces.hand import OPPOSITE, builds_of, opposite
+
+SIDED = {
+    "straight": {"section": "ellipse 600 x 300", "length": 800, "cut_a": "slope 10 long 200", "cut_b": "slope 30 long 25"},
+    "transition": {
+        "end_a": "rectangle 600 x 300 r 50",
+        "end_b": "ellipse 400 x 200",
+        "length": 450,
+        "offset": "40,-25",
+        "rotate": 20,
+        "tilt": "slope 12 long 30",
+    },
+    "marking-band": {"section": "pipe DN 200", "cut": "slope 45 long 20"},
+    "flange": {"section": "measured 0:322 45:326 90:327 120:323", "width": 40, "holes": 9, "hole_diameter": 9,
+               "centre_line": 20, "first_hole": "on"},
+    "opening": {"section": "ellipse 500 x 300", "slope": 25, "high_side": 35, "clearance": 10, "collar": 90},
+}  # fmt: skip
+
+
+def piece(kind: str, **given):
+    found, problems = read_piece(kind_of(kind), {"opposite_hand": 2, **given})
+    assert not problems, problems
+    assert found is not None
+    return found
+
+
+@pytest.mark.parametrize("kind", KINDS)
+def test_the_opposite_hand_of_every_kind_is_its_mirror_image(kind: str) -> None:
+    builds = builds_of(piece(kind, **SIDED.get(kind, dict(kind_of(kind).example))))
+    checks = checks_of_all(builds)
+    mirror = [check for check in checks if check.name.endswith("from the mirror image")]
+    assert len(mirror) == 1
+    assert all(check.holds for check in checks), [check for check in checks if not check.holds]
+    # The mirrored pattern is proved like the drawn one, each check again.
+    assert len(checks) == 2 * len([c for c in checks if not c.name.startswith(builds[1].patterns[0].mark)]) + 1 or (
+        len(builds[0].parts) > 1
+    )
+
+
+@pytest.mark.parametrize("kind", ["straight", "transition", "flange", "opening"])
+def test_edges_and_areas_are_those_of_the_drawn_piece(kind: str) -> None:
+    drawn, other = builds_of(piece(kind, **SIDED[kind]))
+    for mine, yours in zip(drawn.patterns, other.patterns, strict=True):
+        assert yours.net.area == pytest.approx(mine.net.area, rel=1e-11)
+        for (_, a), (_, b) in zip(sorted(mine.net.curves, key=_name), sorted(yours.net.curves, key=_name), strict=True):
+            assert a.length == pytest.approx(b.length, rel=1e-9)
+
+
+def _name(pair):
+    # Mirrored, the left seam is the right one.
+    return pair[0].replace("left", "side").replace("right", "side")
+
+
+def test_the_outline_of_a_mirrored_sheet_is_the_mirrored_outline() -> None:
+    drawn, other = builds_of(piece("transition", **SIDED["transition"], seam_at=100))
+    wide = max(curve.bounds()[1, 0] for _, curve in drawn.patterns[0].net.curves)
+    for mine, yours in zip(drawn.patterns[0].divisions, other.patterns[0].divisions[::-1], strict=True):
+        assert yours.a == pytest.approx(mine.a * [-1, 1] + [wide, 0], abs=1e-3)
+        assert yours.b == pytest.approx(mine.b * [-1, 1] + [wide, 0], abs=1e-3)
+        turned = degrees(mine.direction + yours.direction) % 360
+        assert turned == pytest.approx(180, abs=1e-6)
+
+
+@pytest.mark.parametrize(("long", "word"), [("right", "LEFT"), ("left", "RIGHT"), ("top", "TOP")])
+def test_words_on_the_mirrored_piece_are_right_for_it(long: str, word: str) -> None:
+    # A cut that is longest at the right makes the mirrored piece longest at its left.
+    _, other = builds_of(piece("straight", section="round 300", length=500, cut_b=f"slope 25 long {long}"))
+    pattern = other.patterns[0]
+    at_b = {mark.text: mark.at[1] for mark in pattern.marks if mark.edge == "b"}
+    assert max(at_b, key=lambda each: at_b[each]) == word
+    assert any(f"longest at {word.lower()}" in fact for fact in pattern.facts)
+    assert any("OPPOSITE HAND" in fact for fact in pattern.facts)
+
+
+def test_a_seam_that_was_chosen_to_the_right_is_to_the_left_of_the_mirrored_piece() -> None:
+    given = {"end_a": "ellipse 300 x 600", "end_b": "round 620", "length": 400}
+    drawn, other = builds_of(piece("transition", **given))
+    seams = [degrees(built.patterns[0].divisions[0].direction) for built in (drawn, other)]
+    assert sum(seams) % 360 == pytest.approx(180, abs=1e-6)
+
+
+def test_fields_are_mirrored_each_by_its_type() -> None:
+    mirrored = opposite(piece("transition", **{**SIDED["transition"], "seam_at": "2:00"}))
+    assert mirrored.offset == (-40.0, -25.0)
+    assert mirrored.rotate == pytest.approx(radians(-20))
+    assert mirrored.tilt.long == pytest.approx(radians(150))
+    assert mirrored.tilt.slope == pytest.approx(radians(12))
+    assert mirrored.seam_at == pytest.approx(radians(150))
+    flush = opposite(piece("transition", end_a="round 400", end_b="round 300", length=400, flush="left"))
+    assert flush.flush == "right"
+    measured = opposite(piece("flange", section="measured 0:322 45:326 90:327 120:323", width=40))
+    assert measured.section.text == "measured 0:322 60:323 90:327 135:326 ellipse"
+
+
+def test_twice_mirrored_is_the_piece_itself() -> None:
+    given = piece("transition", **SIDED["transition"])
+    again = opposite(opposite(given))
+    assert again.offset == given.offset
+    assert again.rotate == pytest.approx(given.rotate)
+    assert again.tilt.long == pytest.approx(given.tilt.long)
+
+
+def test_both_hands_are_written_with_their_quantities(tmp_path) -> None:
+    found = piece("transition", **SIDED["transition"], mark="A1", quantity=3)
+    outcome = write(found, folder=str(tmp_path), formats=("svg", "json"))
+    assert not outcome.failed
+    assert {each.name for each in tmp_path.iterdir()} == {"A1.svg", f"A1{OPPOSITE}.svg", "A1.json"}
+    record = json.loads((tmp_path / "A1.json").read_text())
+    assert [(p["mark"], p["quantity"]) for p in record["patterns"]] == [("A1", 3), (f"A1{OPPOSITE}", 2)]
+    assert record["fields"]["opposite_hand"] == 2
+    for net in (p["net"] for p in record["patterns"]):
+        assert net["area"] == pytest.approx(record["patterns"][0]["net"]["area"], rel=1e-11)
+    assert "OPPOSITE HAND of A1" in (tmp_path / f"A1{OPPOSITE}.svg").read_text()
+
+
+def test_without_an_opposite_hand_nothing_is_said_of_it() -> None:
+    (built,) = builds_of(piece("transition", **SIDED["transition"], opposite_hand=0))
+    assert not any("hand" in fact for fact in built.patterns[0].facts)
+
+
+def test_a_piece_that_is_not_the_mirror_image_fails_the_check() -> None:
+    drawn, other = builds_of(piece("transition", **SIDED["transition"]))
+    assert checks_of_all((drawn, other))[-1].holds
+    for wrong in (
+        replace(opposite(piece("transition", **SIDED["transition"])), rotate=radians(20)),
+        piece("transition", **SIDED["transition"], opposite_hand=0),
+    ):
+        last = checks_of_all((drawn, wrong.build()))[-1]
+        assert last.name.endswith("from the mirror image")
+        assert not last.holds
+        assert last.got > 1.0
+
+
+def test_the_mirrored_solid_is_the_mirror_image_point_by_point() -> None:
+    drawn, other = (built.solid for built in builds_of(piece("straight", **SIDED["straight"])))
+    u = drawn.end_a.section.at_direction(np.radians(np.arange(0, 360, 10)))
+    mirrored = other.end_a.section.at_direction(np.radians(180 - np.arange(0, 360, 10)))
+    for name in ("end_a", "end_b"):
+        mine, yours = getattr(drawn, name).point(u), getattr(other, name).point(mirrored)
+        assert np.abs(mine * [-1, 1, 1] - yours).max() < 1e-9

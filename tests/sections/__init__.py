@@ -1,0 +1,1 @@
+"""Tests of the sections; `agreement` is shared by them."""
