@@ -33,12 +33,12 @@ from develop.pieces.fields import fields_of, read_piece, record_of
 from develop.pieces.reference import command_line, job_text, kind_text, kinds_page, kinds_text
 
 COMMON = {
-    "mark", "quantity", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions", "face", "marks",
-    "flow",
+    "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
+    "face", "marks", "flow",
 }  # fmt: skip
 OWN = {
     "straight": {"section", "length", "cut_a", "cut_b"},
-    "transition": {"end_a", "end_b", "length", "offset", "flush", "rotate"},
+    "transition": {"end_a", "end_b", "length", "offset", "flush", "rotate", "tilt", "kicks", "die", "swing"},
 }
 
 
@@ -60,7 +60,7 @@ def test_a_kind_has_its_own_fields_first_and_then_the_common_ones(name: str) -> 
 
 def test_a_marking_band_has_no_plate_fields() -> None:
     assert {each.name for each in fields_of(kind_of("marking-band"))} == {
-        "section", "cut", "paper", "face", "lap", "narrowest", "mark", "quantity", "thickness", "sizes", "seam_at",
+        "section", "cut", "paper", "face", "lap", "narrowest", "mark", "quantity", "opposite_hand", "thickness", "sizes", "seam_at",
         "divisions",
     }  # fmt: skip
 

@@ -65,7 +65,9 @@ def check_flat(pattern: Pattern, part: FlatRing | FlatPlate) -> tuple[Check, ...
         checks += _holes(pattern, part.holes, part.shift, closed=part.holes.here == part.holes.count)
     outlines = (pattern.cut, *pattern.openings)
     checks += [
-        Check("openings not clear of the outline or of each other", 0.0, float(_unclear(outlines)), 0.0, "times"),
+        Check(
+            "openings not clear of the outline or of each other", 0.0, float(_unclear(outlines)), 0.0, "times"
+        ),
         Check("outlines cross themselves", 0.0, float(sum(map(crossings, outlines))), 0.0, "times"),
     ]
     return tuple(checks)
@@ -83,7 +85,9 @@ def _holes(pattern: Pattern, holes: Holes, shift: Array, *, closed: bool) -> lis
     ]
     following = np.roll(u, -1) if closed else u[1:]
     if len(centres) > 1:
-        arcs = [Stretch(holes.pitch, a, b).length for a, b in zip(u.tolist(), following.tolist(), strict=False)]
+        arcs = [
+            Stretch(holes.pitch, a, b).length for a, b in zip(u.tolist(), following.tolist(), strict=False)
+        ]
         worst = max(arcs, key=lambda arc: abs(arc - holes.spacing))
         found.append(Check("hole spacing along the pitch line, worst", holes.spacing, worst, _PLACE, "mm"))
     return found
@@ -91,9 +95,11 @@ def _holes(pattern: Pattern, holes: Holes, shift: Array, *, closed: bool) -> lis
 
 def _unclear(outlines: tuple[Outline, ...]) -> int:
     """How many openings do not lie wholly in the outline (the first), or meet another opening."""
-    outline, *openings = outlines
+    openings = outlines[1:]
     lines = [np.vstack([curve.polyline(0.01)[:-1] for _, curve in each.curves]) for each in outlines]
-    found = sum(1 for k in range(1, len(lines)) if meet(lines[0], lines[k]) or not within(lines[k][:1], lines[0]))
+    found = sum(
+        1 for k in range(1, len(lines)) if meet(lines[0], lines[k]) or not within(lines[k][:1], lines[0])
+    )
     low, high = (np.array([getattr(line, f)(axis=0) for line in lines[1:]]) for f in ("min", "max"))
     for i, j in combinations(range(len(openings)), 2):
         if (low[i] > high[j]).any() or (low[j] > high[i]).any():

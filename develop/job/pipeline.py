@@ -92,9 +92,7 @@ def checks_of(built: Built) -> tuple[Check, ...]:
     return tuple(found)
 
 
-def _files(
-    ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]
-) -> dict[str, bytes]:
+def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
     patterns = [pattern for built in builds for pattern in built.patterns]

@@ -5,13 +5,16 @@ from __future__ import annotations
 import io
 import math
 from collections.abc import Sequence
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid import FlatPlate, FlatRing, Frame, Solid
+
+if TYPE_CHECKING:
+    from matplotlib.path import Path
 
 __all__ = ["Part", "flat_picture"]
 
@@ -79,7 +82,9 @@ def flat_picture(parts: Sequence[Part], title: str) -> bytes:
         axes.set_aspect("equal")
         for plate in rings:
             outlines = [camera.project(ring) for ring in plate]
-            axes.add_patch(PathPatch(_path(outlines), facecolor=tuple(_FACE), edgecolor=_EDGE, linewidth=1.2, zorder=0.0))
+            axes.add_patch(
+                PathPatch(_path(outlines), facecolor=tuple(_FACE), edgecolor=_EDGE, linewidth=1.2, zorder=0.0)
+            )
         for solid in sides:
             vertices, faces = solid.faces()
             corners = vertices[faces]
@@ -89,7 +94,11 @@ def flat_picture(parts: Sequence[Part], title: str) -> bytes:
             colours = np.where(out[:, None], _FACE * 0.85, _BACK)[far]
             axes.add_collection(
                 PolyCollection(
-                    list(camera.project(corners)[far]), facecolors=colours, edgecolors=colours, linewidths=0.4, zorder=2.0
+                    list(camera.project(corners)[far]),
+                    facecolors=colours,
+                    edgecolors=colours,
+                    linewidths=0.4,
+                    zorder=2.0,
                 )
             )
             for rim, order in ((solid.rim_a(), 0.5), (solid.rim_b(), 3.0)):
@@ -123,7 +132,7 @@ def _placed(outline: Outline, shift: Array, frame: Frame) -> Array:
     return np.asarray(points @ frame.axes[:2] + frame.origin)
 
 
-def _path(outlines: list[Array]) -> object:
+def _path(outlines: list[Array]) -> Path:
     """The outline with its openings as one path: openings run the other way round."""
     from matplotlib.path import Path
 

@@ -27,7 +27,7 @@ _EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
 _RIM = 240
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
 _CELL = 1.0 / 40.0  # length of a cell along a wall over the size of the piece
-_ABOUT = 6  # cells that lie about a place on a wall
+_ABOUT = 24  # cells that lie about a place on a wall, at least one farther along it
 
 
 class Piece(Protocol):

@@ -17,7 +17,7 @@ from develop.surfaces.sheet import Lines, Place, Sheet
 
 __all__ = ["Hole", "Wording", "pattern_of", "seam_parameter"]
 
-_FOLD_MISS = 4e-3
+_FOLD_MISS = 2.4e-3
 _MOST_CHANGE = 6.0
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 _DIRECTIONS: Array = 0.5 * pi * np.arange(4.0)
@@ -172,7 +172,7 @@ def _dense(ends: Place, at: Lines) -> Place:
     """
     turn = np.diff(at.turn)
     arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
-    bend = np.log(np.maximum(at.radius_a, 1e-9))
+    bend = np.log(np.clip(at.radius_a, 1e-9, 1e12))
     change = np.minimum(np.abs(np.diff(bend)), _MOST_CHANGE)
     leg = at.b - at.a
     fan = np.diff(np.unwrap(np.arctan2(leg[:, 1], leg[:, 0])))
@@ -247,9 +247,11 @@ def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:
     """The sheet's contour, anticlockwise, as named curves."""
     controls_a, controls_b = edges(sheet)
     a, b = Curve(controls_a, sheet.edge_a), Curve(controls_b, sheet.edge_b)
+    # At an apex both seams end in one point.
+    right = b.start if sheet.edge_b == 0.0 else b.end
     curves = [
         ("a", a),
-        ("seam_right", segment(a.end, b.end)),
+        ("seam_right", segment(a.end, right)),
         ("b", b.reversed()),
         ("seam_left", segment(b.start, a.start)),
     ]
@@ -257,7 +259,7 @@ def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:
 
 
 def _no_more_than_a_point(curve: Curve) -> bool:
-    return float(np.ptp(curve.controls, axis=0).max()) < 1e-9
+    return curve.length == 0.0 or float(np.ptp(curve.controls, axis=0).max()) < 1e-9
 
 
 @dataclass(frozen=True)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field, replace
-from math import ceil, degrees, pi, tan
+from math import atan, ceil, degrees, pi, tan
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
@@ -35,6 +35,8 @@ __all__ = ["Bend"]
 # Shorter than this [mm] at the throat, a half gore has nothing left to be joined.
 _LEAST_THROAT = 0.1
 _ALIKE = 1e-9
+# As any length that can be given [mm].
+_LONGEST_HEEL = 100_000.0
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -122,6 +124,7 @@ class Bend(Plate):
         radius = self._radius()
         outer = section.offset(self.thickness * (1.0 - PLACES[self.sizes]))
         self._room(radius, reach(outer, self.turns_to))
+        self._long(radius + reach(outer, self.turns_to + pi))
         half = radius * tan(self.mitre)
         return legs_of(
             section,
@@ -179,6 +182,21 @@ class Bend(Plate):
             field=name,
             given=given,
             allowed=f"{works} or more" + (f", or {fewer} gores or fewer" if fewer else ""),
+        )
+
+    def _long(self, heel: float) -> None:
+        """Raises Refusal, with the fewest gores that work, where the gores are too long to be made.
+
+        heel: from the centre of the bend to the wall's outside at the heel [mm].
+        """
+        if heel * tan(self.mitre) <= _LONGEST_HEEL:
+            return
+        least = ceil(self.angle / (2.0 * atan(_LONGEST_HEEL / heel)) - 1e-9) + 1
+        raise Refusal(
+            field="gores",
+            given=f"{self.gores} gores need a mitre angle of {_angle(self.mitre)}, and are "
+            f"{number_text(round(heel * tan(self.mitre) / 1000.0, 1))} m long at the heel",
+            allowed=f"{least} gores or more",
         )
 
     def _fewer(self, clear: float) -> int:

@@ -27,13 +27,15 @@ def with_chords(pattern: Pattern, swing: float) -> Pattern:
     long = {name: radius for name, radius in radii.items() if radius is not None and radius > swing}
     if not long:
         return pattern
-    facts, columns, heads = [], [[str(row.number) for row in pattern.divisions]], [("line", "no.")]
+    facts: list[str] = []
+    columns: list[list[str | float]] = [[str(row.number) for row in pattern.divisions]]
+    heads = [("line", "no.")]
     for name, radius in long.items():
         along, offset, chord = _from_chord(edges[name])
         rise = radius - np.sqrt(radius * radius - 0.25 * chord * chord)
         facts.append(
-            f"END {name.upper()}: radius {number_text(round(radius / 1000.0, 3))} m, too long to swing: chord "
-            f"{chord:.1f}, rise {rise:.1f}, offsets in the table"
+            f"END {name.upper()}: radius {number_text(round(radius / 1000.0, 3))} m, too long to swing: "
+            f"chord {chord:.1f}, rise {rise:.1f}, offsets in the table"
         )
         columns += [[float(each) for each in column] for column in (along, offset)]
         heads += [(f"chord {name.upper()}", "along"), (f"chord {name.upper()}", "offset")]

@@ -39,7 +39,9 @@ class Named(Piece):
     opposite_hand: int = field(
         default=0,
         metadata=about(
-            Count(least=0), "how many more to make mirrored, right for left, on patterns of their own", own=False
+            Count(least=0),
+            "how many more to make mirrored, right for left, on patterns of their own",
+            own=False,
         ),
     )
     thickness: float = field(default=0.0, metadata=about(THICKNESS, "thickness of the wall", own=False))

@@ -17,8 +17,8 @@ from develop.units import number_text, parse_angle, parse_direction, parse_lengt
 from develop.wording import listed, near_miss, shown
 
 __all__ = [
-    "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT", "THICKNESS",
-    "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number", "Pitch",
+    "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
+    "THICKNESS", "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number", "Pitch",
 ]  # fmt: skip
 
 

@@ -64,7 +64,9 @@ class Flange(Flat):
     )
     made_in: int = field(
         default=1,
-        metadata=about(Count(most=64), "in how many parts a ring is cut, of equal length along the pitch line"),
+        metadata=about(
+            Count(most=64), "in how many parts a ring is cut, of equal length along the pitch line"
+        ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
 
@@ -105,10 +107,12 @@ class Flange(Flat):
         if not self._pitch < self.width:
             raise Refusal(
                 field="pitch_line",
-                given=f"{number_text(self._pitch)} mm does not lie on a flange {number_text(self.width)} mm wide",
+                given=f"{number_text(self._pitch)} mm lies off a flange {number_text(self.width)} mm wide",
                 allowed=f"less than {number_text(self.width)} mm",
             )
-        room = 2.0 * (self.width - self._pitch if self.form == "blank" else min(self._pitch, self.width - self._pitch))
+        room = 2.0 * (
+            self.width - self._pitch if self.form == "blank" else min(self._pitch, self.width - self._pitch)
+        )
         centres = self._centres(inner)
         apart = float(np.hypot(*(np.roll(centres, -1, axis=0) - centres).T).min()) if self.holes > 1 else room
         most = min(room, apart)
@@ -118,7 +122,9 @@ class Flange(Flat):
             raise Refusal(
                 field="hole_diameter",
                 given=f"holes of {number_text(self.hole_diameter)} mm {why}",
-                allowed=f"{number_text(works)} mm or less" if works > 0.0 else "fewer holes or a wider flange",
+                allowed=f"{number_text(works)} mm or less"
+                if works > 0.0
+                else "fewer holes or a wider flange",
             )
 
     def _line(self, inner: Section) -> Parallel:
@@ -137,7 +143,9 @@ class Flange(Flat):
         holes = np.arange(self.holes) + aside
         # Parts end midway between two holes.
         count = self.holes or self.made_in
-        ends = np.round(np.arange(self.made_in + 1) * count / self.made_in) + (aside - 0.5 if self.holes else 0.0)
+        ends = np.round(np.arange(self.made_in + 1) * count / self.made_in) + (
+            aside - 0.5 if self.holes else 0.0
+        )
         return (
             line.at_arc(start + line.girth * holes / max(self.holes, 1)),
             line.at_arc(start + line.girth * ends / count),

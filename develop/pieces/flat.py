@@ -14,7 +14,16 @@ from develop.sections.ellipse import Ellipse
 from develop.sections.section import Section
 from develop.surfaces.plane import PlaneCurve, plane_curve
 
-__all__ = ["DIRECTIONS", "Plate", "closed", "direction_marks", "drawn", "holes_at", "pattern_of_plate", "rectangle"]
+__all__ = [
+    "DIRECTIONS",
+    "Plate",
+    "closed",
+    "direction_marks",
+    "drawn",
+    "holes_at",
+    "pattern_of_plate",
+    "rectangle",
+]
 
 DIRECTIONS: tuple[tuple[float, str], ...] = (
     (0.0, "RIGHT"),

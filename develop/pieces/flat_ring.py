@@ -45,7 +45,9 @@ def parts_of(
     """
     spans = [None] if ends is None else list(zip(ends[:-1].tolist(), ends[1:].tolist(), strict=True))
     groups: list[list[int]] = []
-    shapes = [None if span is None else _Shape(inner, line, span, _here(inner, holes, span)) for span in spans]
+    shapes = [
+        None if span is None else _Shape(inner, line, span, _here(inner, holes, span)) for span in spans
+    ]
     for i, shape in enumerate(shapes):
         alike = next((g for g in groups if shape is not None and shape.like(shapes[g[0]]) is not None), None)
         if alike is None:
@@ -172,7 +174,12 @@ def _segment(inner: PlaneCurve, outer: PlaneCurve) -> Outline:
     swept = outer.swept - inner.swept
     for straight in (end_2, end_1):
         swept += 0.5 * float(straight.start[0] * straight.end[1] - straight.start[1] * straight.end[0])
-    curves: tuple[tuple[str, Curve], ...] = (("outer", out), ("end_2", end_2), ("inner", back), ("end_1", end_1))
+    curves: tuple[tuple[str, Curve], ...] = (
+        ("outer", out),
+        ("end_2", end_2),
+        ("inner", back),
+        ("end_1", end_1),
+    )
     return Outline(curves, swept)
 
 

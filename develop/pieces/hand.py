@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 from math import pi
-from typing import TYPE_CHECKING, cast
+from typing import TYPE_CHECKING
 
 from develop.pieces.fields import Piece, fields_of
 
@@ -32,7 +32,7 @@ def opposite(piece: Piece, *, quantity: int = 1) -> Piece:
         elif each.handed and value is not None:
             values[each.name] = -value + 0.0
     values |= {"mark": piece.mark + OPPOSITE, "quantity": quantity, "opposite_hand": 0}
-    return cast(Piece, replace(piece, **values))  # type: ignore[type-var]  # every kind is a dataclass
+    return replace(piece, **values)  # type: ignore[type-var]  # every kind is a dataclass
 
 
 def builds_of(piece: Piece) -> tuple[Built, ...]:
@@ -44,7 +44,7 @@ def builds_of(piece: Piece) -> tuple[Built, ...]:
     other = opposite(piece, quantity=count)
     seam = _seam(piece, built)
     if seam is not None:
-        other = cast(Piece, replace(other, seam_at=(pi - seam) % (2.0 * pi)))  # type: ignore[type-var]
+        other = replace(other, seam_at=(pi - seam) % (2.0 * pi))  # type: ignore[type-var]
     return (
         _said(built, f"as drawn; {count} of opposite hand on a pattern of its own", after=2),
         _said(other.build(), f"OPPOSITE HAND of {piece.mark}: its mirror image, right for left", after=1),

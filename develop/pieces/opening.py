@@ -41,7 +41,9 @@ class Opening(Flat):
     slope: float = field(
         default=0.0,
         metadata=about(
-            Angle(least=0.0, most=_STEEPEST), "of the plate, from a plane square to the duct", not_with="pitch"
+            Angle(least=0.0, most=_STEEPEST),
+            "of the plate, from a plane square to the duct",
+            not_with="pitch",
         ),
     )
     pitch: float | None = field(
@@ -55,7 +57,8 @@ class Opening(Flat):
         default=0.0, metadata=about(_SMALL, "between duct and hole all round, measured square to the duct")
     )
     margin: float = field(
-        default=50.0, metadata=about(Length(least=1.0, most=10_000.0), "plate round the hole, on its own face")
+        default=50.0,
+        metadata=about(Length(least=1.0, most=10_000.0), "plate round the hole, on its own face"),
     )
     collar: float | None = field(
         default=None,
@@ -72,7 +75,9 @@ class Opening(Flat):
     )
     divisions: int = field(
         default=24,
-        metadata=about(Count(least=3, most=720), "equal arcs of the collar's end A, a line at each", own=False),
+        metadata=about(
+            Count(least=3, most=720), "equal arcs of the collar's end A, a line at each", own=False
+        ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
 

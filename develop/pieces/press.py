@@ -9,7 +9,7 @@ import numpy as np
 
 from develop.errors import Refusal
 from develop.pattern.pattern import Figures
-from develop.quadrature import Array
+from develop.quadrature import Array, Indices, Mask
 from develop.sections.section import Section
 from develop.surfaces.sheet import Lines, Place, Sheet
 from develop.units import number_text
@@ -97,7 +97,7 @@ def _rounded_down(length: float) -> str:
     return number_text(floor(length * 10.0) / 10.0)
 
 
-def _lines(sheet: Sheet, section: Section, kicks: int) -> tuple[Place, Array, Array]:
+def _lines(sheet: Sheet, section: Section, kicks: int) -> tuple[Place, Array, Mask]:
     """Places (n,), angles (n,) [rad] and whether each is a fold (n,)."""
     at, ends = sheet.at_ends, sheet.ends
     turns = np.diff(at.turn)
@@ -120,7 +120,7 @@ def _lines(sheet: Sheet, section: Section, kicks: int) -> tuple[Place, Array, Ar
     return _at_turn(sheet, ends.panel[panel], wanted), np.concatenate(angles), np.concatenate(folds)
 
 
-def _at_turn(sheet: Sheet, panel: Array, wanted: Array) -> Place:
+def _at_turn(sheet: Sheet, panel: Indices, wanted: Array) -> Place:
     """Where on its panel (n,) the sheet has turned by so much (n,): narrowed down on a grid."""
     n = len(wanted)
     low, high = np.full(n, -1.0), np.full(n, 1.0)
@@ -145,7 +145,7 @@ def _spacing(at: Lines) -> float:
     return float(_apart(at).max(axis=1).min()) if len(at.length) > 1 else np.inf
 
 
-def _short(at: Lines, folds: Array, press: Press) -> Array:
+def _short(at: Lines, folds: Mask, press: Press) -> Array:
     """How far lines stop short of edges A and B (n, 2) [mm]: of a sharp corner in which they meet, and
     of where they come closer than the die allows."""
     n = len(at.length)

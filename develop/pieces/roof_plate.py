@@ -107,8 +107,12 @@ def _places(low: Array, high: Array, margin: float) -> Array:
     """Lines up the slope in the four strips beside the hole, that words may stand on."""
     x = low[0] + np.array(_SHARES) * (high[0] - low[0])
     y = low[1] + np.array(_SHARES) * (high[1] - low[1])
-    strips = [np.stack([np.stack([x, np.full_like(x, b)], 1), np.stack([x, np.full_like(x, b + margin)], 1)], 1)
-              for b in (low[1], high[1] - margin)]  # fmt: skip
+    strips = [
+        np.stack(
+            [np.column_stack([x, np.full_like(x, y0)]), np.column_stack([x, np.full_like(x, y0 + margin)])], 1
+        )
+        for y0 in (low[1], high[1] - margin)
+    ]
     half = min(0.2 * (high[1] - low[1]), 2.0 * margin)
     for left in (low[0] + 0.5 * margin, high[0] - 0.5 * margin):
         strips.append(np.array([[[left, at - half], [left, at + half]] for at in y]))

@@ -16,9 +16,9 @@ from develop.units import number_text
 
 # Shorter than this part of its largest size, a transition is a flat ring and not a side to be rolled.
 _FLATTEST = 1000.0
-# What the ends must leave between each other's planes, in parts of their sizes; a little more than
-# the band itself needs.
-_CLEAR = 2e-6
+# What a tilted end must leave between itself and the other's plane, in parts of their sizes: nearer, a
+# side is left that is too short there to be bent.
+_CLEAR = 1e-3
 _HALVINGS = 50
 
 if TYPE_CHECKING:
@@ -78,7 +78,8 @@ class Transition(Plate):
     die: float = field(
         default=0.0,
         metadata=about(
-            Length(least=0.0, most=1000.0), "smallest spacing of press lines that the die allows; 0: not known"
+            Length(least=0.0, most=1000.0),
+            "smallest spacing of press lines that the die allows; 0: not known",
         ),
     )
     swing: float = field(
@@ -132,7 +133,9 @@ class Transition(Plate):
 
         if self.flush is None:
             return placed(*self.offset)
-        x, y = {"right": (1.0, 0.0), "top": (0.0, 1.0), "left": (-1.0, 0.0), "bottom": (0.0, -1.0)}[self.flush]
+        x, y = {"right": (1.0, 0.0), "top": (0.0, 1.0), "left": (-1.0, 0.0), "bottom": (0.0, -1.0)}[
+            self.flush
+        ]
         reach_b = float(placed(0.0, 0.0).support(np.array([x, y, 0.0])))
         more = float(a.support(np.array(x), np.array(y))) - reach_b
         return placed(more * x, more * y)
@@ -157,7 +160,11 @@ class Transition(Plate):
             low, high = (middle, high) if self._clear(rim_a, b, middle) else (low, middle)
         most = floor(degrees(low) * 10.0 - 1e-6) / 10.0
         works = most > 0.0 and self._clear(rim_a, b, radians(most))
-        short, long = self.length, self.length + 2.0 * (max(rim_a.section.width, rim_a.section.height) + 2.0 * max(b.width, b.height))
+        short, long = (
+            self.length,
+            self.length
+            + 2.0 * (max(rim_a.section.width, rim_a.section.height) + 2.0 * max(b.width, b.height)),
+        )
         longer = replace(self, length=long)
         while not longer._clear(rim_a, b, self.tilt.slope) and long < 1e6:
             long *= 2.0
@@ -169,7 +176,7 @@ class Transition(Plate):
         tilt = f"slope {number_text(most)} or less, or a " if works else "a "
         raise Refusal(
             field="tilt",
-            given=f"slope {number_text(round(degrees(self.tilt.slope), 6))} makes the ends cross",
+            given=f"slope {number_text(round(degrees(self.tilt.slope), 6))} makes the ends cross, or nearly",
             allowed=f"{tilt}length of {number_text(ceil(long * 10.0 + 1e-6) / 10.0)} mm or more",
         )
 

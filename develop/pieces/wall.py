@@ -13,6 +13,9 @@ if TYPE_CHECKING:
 
 __all__ = ["PLACES", "check_bend", "given_section", "neutral_distance", "reach"]
 
+# Places on each panel of a section at which the bend of a side is looked at.
+_BETWEEN = 24
+
 PLACES = {"inside": 0.0, "mean": 0.5, "outside": 1.0}
 """Where sizes can be measured, as a share of the thickness from the inside."""
 
@@ -81,7 +84,10 @@ def check_bend(band: Band, *, thickness: float, sizes: str, instead: str, ends: 
     if inner == 0.0:
         return
     section = band.rim_a.section
-    radii = band.radii(section.at_direction(np.radians(np.arange(360.0))))
+    # By direction and, where a tight corner falls between whole degrees, by the section's own parameter.
+    start, step = section.breaks[:-1, None], np.diff(section.breaks)[:, None]
+    inside = (start + step * (np.arange(_BETWEEN) + 0.5) / _BETWEEN).ravel()
+    radii = band.radii(np.concatenate([section.at_direction(np.radians(np.arange(360.0))), inside]))
     at = dict(zip("AB", radii.min(axis=0).tolist(), strict=True))
     end = min(ends, key=lambda each: at[each])
     tightest = at[end]

@@ -11,7 +11,7 @@ from develop.sections.section import Array, Section, Walk
 __all__ = ["Rectangle"]
 
 # A normal that lies this close to that of a side [rad] is taken for the side's own.
-_SAME_NORMAL = 1e-10
+_SAME_NORMAL = 1e-13
 _QUARTER = 0.5 * pi
 
 

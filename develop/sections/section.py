@@ -93,6 +93,11 @@ class Section(ABC):
         return self.touch(nx, ny)
 
     @property
+    def loose_spots(self) -> Array:
+        """Parameters (k,) near which the rounding of a normal moves the parameter a long way."""
+        return np.zeros(0)
+
+    @property
     def kinks(self) -> Array:
         """Directions φ of the normals at which the support is not smooth (k,) [rad]."""
         return np.zeros(0)
@@ -331,6 +336,10 @@ class Parallel(Section):
         x, y = self.base.foot(nx, ny, low, high)
         share = self.distance / np.hypot(nx, ny)
         return x + share * nx, y + share * ny
+
+    @property
+    def loose_spots(self) -> Array:
+        return self.base.loose_spots
 
     @property
     def kinks(self) -> Array:

@@ -129,6 +129,15 @@ class Superellipse(Section):
                 (q - 1.0) * (self.a * self.b) ** q * (c * s) ** (q - 2.0) / h ** (2.0 * q - 1.0)
             )
 
+    def foot(self, nx: Array, ny: Array, low: Array, high: Array) -> tuple[Array, Array]:
+        # Near an axis the normal tells little of the place: the stretch tells more.
+        at = self.walk(self.within(nx, ny, low, high))
+        return at.x, at.y
+
+    @property
+    def loose_spots(self) -> Array:
+        return np.arange(0.0, 8.0, 2.0)
+
     @property
     def kinks(self) -> Array:
         return 0.5 * pi * np.arange(4.0)

@@ -62,6 +62,10 @@ class Turned(Section):
         return self._in_turn(self.base.at_direction(np.asarray(direction, dtype=float) - self.angle))
 
     @property
+    def loose_spots(self) -> Array:
+        return self._in_turn(self.base.loose_spots)
+
+    @property
     def kinks(self) -> Array:
         return np.sort((self.base.kinks + self.angle) % (2.0 * pi))
 

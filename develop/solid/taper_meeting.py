@@ -9,7 +9,6 @@ import numpy as np
 
 from develop.quadrature import Array
 from develop.sections.section import Section
-from develop.solid.end import End
 from develop.solid.frame import Frame, Rim
 from develop.solid.meeting import MeetingEnd
 

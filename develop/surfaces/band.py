@@ -40,7 +40,13 @@ __all__ = ["Band", "BandSheet"]
 _NEWTON_STEPS = 40
 _ROUNDS = 24
 _SAME = 1e-9
+# Parameters that differ by less than this part of a turn differ by rounding.
+_ROUNDING = 1e-13
 _FARTHER = 4.0
+# Normals that differ by less than this [rad] are one normal and its rounding.
+_ALIKE = 1e-12
+# An edge that moves less than this on a panel, in parts of the piece, stands.
+_STANDS = 1e-12
 # Nearest that a rim may come to the other's plane, in parts of the larger size: closer, a ruling
 # has no length left to be marked out.
 _CLEAR = 1e-6
@@ -335,6 +341,10 @@ class Band:
         ends_a, ends_b = np.concatenate([u_a, paired_a]), np.concatenate([paired_b, u_b])
         start_b = ends_b[0]
         past_a, past_b = _past(ends_a, seam, a.period), _past(ends_b, start_b, b.period)
+        # What lies at the seam but for rounding lies at the seam.
+        past_a, past_b = (
+            np.where(past < _ROUNDING * each.period, 0.0, past) for past, each in ((past_a, a), (past_b, b))
+        )
         # Where one rim stands at the seam, the other's place tells whether the turn begins or ends.
         past_a, past_b = (
             np.where((past_a == 0.0) & (past_b > 0.5 * b.period), a.period, past_a),
@@ -353,6 +363,9 @@ class Band:
         # Walked from the rim whose contact moves farther, the other moves smoothly along. Where it
         # makes little difference end A is walked throughout, which is one pass instead of two.
         farther = _FARTHER * np.diff(a.arc(ends_a)) >= np.diff(b.arc(ends_b))
+        if bool(len(a.loose_spots)) != bool(len(b.loose_spots)):
+            # Near such a spot only its own rim can be walked smoothly.
+            farther = np.full(len(farther), bool(len(a.loose_spots)))
         on_a = facet | (moves_a & (farther | ~moves_b))
         return _Course(
             on_a,
@@ -373,7 +386,22 @@ def _paired(
     past = (u - first) % mine.period
     past = np.where(past > mine.period - _SAME, 0.0, past)
     length = last - first
+    spots = yours.loose_spots
+    if len(spots):
+        # Where a curve turns hardly or at once, a straight side's normal with its rounding tells little.
+        at = yours.walk(spots)
+        nx, ny = other.normal_x[:, None], other.normal_y[:, None]
+        same = (np.abs(nx * at.ey - ny * at.ex) < _ALIKE) & (nx * at.ex + ny * at.ey > 0.0)
+        same &= (length > 0.0)[:, None]
+        low, high = (np.where(same.any(axis=1), spots[np.argmax(same, axis=1)], each) for each in (low, high))
     share = np.where(length > 0.0, past / np.where(length > 0.0, length, 1.0), 0.0)
+    spots = mine.loose_spots
+    if len(spots):
+        # So close to such a spot that the normals are alike, its side tells which end of a straight
+        # side of the other comes with it.
+        beyond = (u[:, None] - spots + 0.5 * mine.period) % mine.period - 0.5 * mine.period
+        nearest = beyond[np.arange(len(u)), np.argmin(np.abs(beyond), axis=1)]
+        share = np.where((length == 0.0) & (nearest > _SAME), 1.0, share)
     return u, low + np.clip(share, 0.0, 1.0) * (high - low)
 
 
@@ -393,7 +421,7 @@ def _speed(radius: Array, dphi: Array) -> Array:
 def _past(u: Array, start: float, period: float) -> Array:
     """How far u (n,) lies past the start in one turn, a whole turn counting as none."""
     past = (u - start) % period
-    return np.where(past > period * (1.0 - _SAME), 0.0, past)
+    return np.where(past > period * (1.0 - _ROUNDING), 0.0, past)
 
 
 class BandSheet:
@@ -440,7 +468,12 @@ class BandSheet:
             p_step = (DERIVATIVE @ p) / half[:, None, None]
             path[..., 2], path_ends[:, 2] = running(np.sqrt((p_step**2).sum(axis=-1)), half)
         q_step = (DERIVATIVE @ q) / half[:, None, None]
-        speed, speed_ends = running(np.sqrt((q_step**2).sum(axis=-1)), half)
+        q_speed = np.sqrt((q_step**2).sum(axis=-1))
+        # Where the edge stands, its speed is rounding that the derivative amplifies.
+        apex = band.rim_b.section.girth == 0.0 and band.distance == 0.0 and not band.cut_b
+        stands = q_speed.max(axis=1) * half <= _STANDS * (np.abs(p).max() + np.abs(q).max())
+        q_speed[stands | apex] = 0.0
+        speed, speed_ends = running(q_speed, half)
         self._table = np.concatenate([angles, path, speed[..., None]], axis=-1)
         self.edge_a = float(path_ends[-1, 2])
         self.edge_b = float(speed_ends[-1])
@@ -506,10 +539,12 @@ class BandSheet:
             t, w = (np.where(right < 0.0, -each, each) for each in (t, w))
             straight = _unit(flat(t, w), flat(np.ones_like(c), np.zeros_like(c)))
             if d != 0.0:
-                # The edge goes on across the rulings and, as the sheet leans more or less, with d N'.
-                across = (1.0 - at) * r.ds_a * r.over + at * r.ds_b * r.over_b
-                size = across / (r.length * np.abs(np.where(right == 0.0, np.inf, right)))
-                moved = flat(size * t + d * turn, size * w - d * turn * r.along / r.over)
+                # The edge goes on across the rulings and, as the sheet leans more or less, with d N'. Where
+                # it stands, or a curve is flat, the tangent found before is kept.
+                with np.errstate(invalid="ignore"):
+                    across = (1.0 - at) * r.ds_a * r.over + at * r.ds_b * r.over_b
+                    size = across / (r.length * np.abs(np.where(right == 0.0, np.inf, right)))
+                    moved = flat(size * t + d * turn, size * w - d * turn * r.along / r.over)
                 straight = _unit(moved, straight)
             ends.append((p + at[:, None] * leg, straight, radius + d, at))
         (end_a, tangent_a, radius_a, low), (end_b, tangent_b, radius_b, high) = ends

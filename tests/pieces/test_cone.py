@@ -134,9 +134,13 @@ def test_a_cut_oblique_cone_against_quadrature(slope: float, long: float) -> Non
 
     def area(u):
         along = cut_at(u) - side(u)
-        return (mpmath.norm(cross(slope_of(side, u), along)) + mpmath.norm(cross(slope_of(cut_at, u), along))) / 2
+        return (
+            mpmath.norm(cross(slope_of(side, u), along)) + mpmath.norm(cross(slope_of(cut_at, u), along))
+        ) / 2
 
-    assert pattern.net.curve("b").length == pytest.approx(around(lambda u: mpmath.norm(slope_of(cut_at, u))), rel=1e-10)
+    assert pattern.net.curve("b").length == pytest.approx(
+        around(lambda u: mpmath.norm(slope_of(cut_at, u))), rel=1e-10
+    )
     assert pattern.net.area == pytest.approx(around(area), rel=1e-10)
 
 
@@ -212,7 +216,9 @@ def test_the_wall_lies_square_to_the_plate() -> None:
 def test_at_a_point_of_the_inside_the_plate_leaves_a_ring() -> None:
     t, radius, height = 4.0, 250.0, 600.0
     pattern = cone(section="round 500", height=height, thickness=t, sizes="inside")
-    assert pattern.net.curve("b").length == pytest.approx(2 * pi * t / 2 * height / hypot(radius, height), rel=1e-9)
+    assert pattern.net.curve("b").length == pytest.approx(
+        2 * pi * t / 2 * height / hypot(radius, height), rel=1e-9
+    )
 
 
 # ---- checks and records ----------------------------------------------------------------------
@@ -358,10 +364,18 @@ def test_a_cut_past_the_base_is_refused_with_what_works(height, slope, long) -> 
 
 def test_a_plane_along_the_line_of_centres_misses_the_apex() -> None:
     # The line of centres leans 45° to the right: so does this plane, which never comes to the apex.
-    problem = refused(section="round 200", height=500, apex_offset=[500, 0], cut_b="height 400 slope 50 long right")
+    problem = refused(
+        section="round 200", height=500, apex_offset=[500, 0], cut_b="height 400 slope 50 long right"
+    )
     assert problem.field == "cut_b"
     steepest = float(problem.allowed.split()[1])
-    make("cone", section="round 200", height=500, apex_offset=[500, 0], cut_b=f"height 400 slope {steepest} long right")
+    make(
+        "cone",
+        section="round 200",
+        height=500,
+        apex_offset=[500, 0],
+        cut_b=f"height 400 slope {steepest} long right",
+    )
 
 
 def test_a_cone_as_good_as_flat_is_refused() -> None:
@@ -398,7 +412,9 @@ def test_checks_do_not_chase_rounding_at_the_apex() -> None:
 
 @settings(max_examples=25, deadline=None)
 @given(
-    section=st.sampled_from(["round 400", "ellipse 700 x 250", "flat-oval 300 x 500", "rectangle 400 x 300 r 0"]),
+    section=st.sampled_from(
+        ["round 400", "ellipse 700 x 250", "flat-oval 300 x 500", "rectangle 400 x 300 r 0"]
+    ),
     height=st.floats(100, 2000),
     x=st.floats(-600, 600),
     y=st.floats(-600, 600),
@@ -411,7 +427,8 @@ def test_any_cone_holds_or_is_refused(section, height, x, y, share, slope, long)
     try:
         built = make("cone", section=section, height=height, apex_offset=[x, y], cut_b=cut)
     except InputError as error:
-        assert [each.field for each in error.problems] == ["cut_b"]
+        if [each.field for each in error.problems] != ["cut_b"]:
+            raise
         return
     checks = checks_of(built)
     assert all(check.holds for check in checks), [check for check in checks if not check.holds]

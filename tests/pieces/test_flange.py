@@ -99,7 +99,9 @@ def test_clearance_moves_the_inner_edge_out_all_round() -> None:
 
 
 def test_holes_of_a_round_flange_stand_on_a_circle_at_equal_angles() -> None:
-    pattern = ring(section="round 400", holes=12, hole_diameter=11, pitch_line=15, first_hole="on").patterns[0]
+    pattern = ring(section="round 400", holes=12, hole_diameter=11, pitch_line=15, first_hole="on").patterns[
+        0
+    ]
     found = centres(pattern) - 240
     assert np.hypot(*found.T) == pytest.approx(np.full(12, 215), abs=1e-6)
     angles = np.sort(np.degrees(np.arctan2(found[:, 1], found[:, 0])) % 360)
@@ -188,7 +190,10 @@ def test_cuts_between_parts_are_square_to_both_edges_and_miss_the_holes() -> Non
     (pattern,) = ring(section="round 800", width=60, holes=12, hole_diameter=14, made_in=3).patterns
     for name in ("end_1", "end_2"):
         assert length(pattern, name) == pytest.approx(60, abs=1e-9)
-    ends = [curve.polyline(1)[[0, -1]].mean(axis=0) for curve in (*curves(pattern, "end_1"), *curves(pattern, "end_2"))]
+    ends = [
+        curve.polyline(1)[[0, -1]].mean(axis=0)
+        for curve in (*curves(pattern, "end_1"), *curves(pattern, "end_2"))
+    ]
     # Half a hole spacing along the pitch line, 30 degrees on a circle of radius 430: chord 2 r sin(7.5).
     near = [min(hypot(*(centre - end)) for centre in centres(pattern)) for end in ends]
     assert near == pytest.approx([2 * 430 * np.sin(pi / 24)] * 2, abs=1e-6)
@@ -269,4 +274,8 @@ def test_a_wrong_edge_or_area_fails_its_check() -> None:
     part = ring().parts[0]
     wider = replace(part.solid, width=40.01)
     names = {check.name for check in check_part(part.pattern, wider) if not check.holds}
-    assert {"outer edge against its length", "outer edge as drawn, against its length", "area less openings"} <= names
+    assert {
+        "outer edge against its length",
+        "outer edge as drawn, against its length",
+        "area less openings",
+    } <= names

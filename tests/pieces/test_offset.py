@@ -39,7 +39,9 @@ def test_the_legs_are_as_long_as_trigonometry_says() -> None:
     built = make("offset", **{**GIVEN, "length": 1500, "angle": 30})
     girth = pi * 250 + 2 * 250  # two straights and a whole circle
     middle, ends = aside / sin(angle), (1500 - aside / tan(angle)) / 2
-    for (pattern, _, frame), length, lean in zip(legs(built), (ends, middle, ends), (0, angle, 0), strict=True):
+    for (pattern, _, frame), length, lean in zip(
+        legs(built), (ends, middle, ends), (0, angle, 0), strict=True
+    ):
         # A cylinder's area is its girth times its length on the axis, however its ends are cut.
         assert pattern.net.area == pytest.approx(girth * length, rel=1e-12)
         assert frame.axes[2, 2] == pytest.approx(cos(lean), abs=1e-12)
@@ -124,7 +126,9 @@ def test_no_offset_is_no_offset() -> None:
 
 @settings(max_examples=25, deadline=None)
 @given(
-    section=st.sampled_from(["round 300", "ellipse 500 x 200", "flat-oval 200 x 450", "rectangle 300 x 200 r 20"]),
+    section=st.sampled_from(
+        ["round 300", "ellipse 500 x 200", "flat-oval 200 x 450", "rectangle 300 x 200 r 20"]
+    ),
     right=st.floats(-500, 500),
     up=st.floats(-500, 500),
     angle=st.floats(5, 90),
@@ -134,7 +138,8 @@ def test_any_offset_holds_or_is_refused(section, right, up, angle) -> None:
     try:
         built = make("offset", section=section, length=1500, offset=[right, up], angle=angle)
     except InputError as error:
-        assert [each.field for each in error.problems] == ["length"]
+        if [each.field for each in error.problems] != ["length"]:
+            raise
         return
     checks = checks_of(built)
     assert all(check.holds for check in checks), [check for check in checks if not check.holds]

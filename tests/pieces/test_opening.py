@@ -49,7 +49,9 @@ def test_the_plate_leaves_the_margin_all_round() -> None:
 
 @pytest.mark.parametrize("section", SECTIONS)
 @pytest.mark.parametrize("high_side", [90, 30, 200])
-def test_the_hole_laid_on_the_slope_is_plumb_over_the_duct_with_its_clearance(section: str, high_side: float) -> None:
+def test_the_hole_laid_on_the_slope_is_plumb_over_the_duct_with_its_clearance(
+    section: str, high_side: float
+) -> None:
     # Turned back onto the slope and looked at from above, the hole is the duct's parallel curve.
     slope = radians(35)
     built = make("opening", section=section, slope=35, high_side=high_side, clearance=20)
@@ -86,7 +88,9 @@ def test_centre_lines_run_from_the_hole_to_the_edge_through_the_axis() -> None:
     assert upright[0][0, 0] == pytest.approx(upright[1][0, 0], abs=1e-9)
 
 
-@pytest.mark.parametrize(("pitch", "slope"), [("5 in 12", 22.6198649), ("5:12", 22.6198649), ("12 in 12", 45)])
+@pytest.mark.parametrize(
+    ("pitch", "slope"), [("5 in 12", 22.6198649), ("5:12", 22.6198649), ("12 in 12", 45)]
+)
 def test_slope_and_pitch_are_both_said(pitch: str, slope: float) -> None:
     by_pitch = opening(pitch=pitch).patterns[0]
     by_slope = make("opening", section="round 327", slope=slope).patterns[0]

@@ -47,9 +47,9 @@ def test_the_opposite_hand_of_every_kind_is_its_mirror_image(kind: str) -> None:
     assert len(mirror) == 1
     assert all(check.holds for check in checks), [check for check in checks if not check.holds]
     # The mirrored pattern is proved like the drawn one, each check again.
-    assert len(checks) == 2 * len([c for c in checks if not c.name.startswith(builds[1].patterns[0].mark)]) + 1 or (
-        len(builds[0].parts) > 1
-    )
+    assert len(checks) == 2 * len(
+        [c for c in checks if not c.name.startswith(builds[1].patterns[0].mark)]
+    ) + 1 or (len(builds[0].parts) > 1)
 
 
 @pytest.mark.parametrize("kind", ["straight", "transition", "flange", "opening"])
@@ -57,7 +57,9 @@ def test_edges_and_areas_are_those_of_the_drawn_piece(kind: str) -> None:
     drawn, other = builds_of(piece(kind, **SIDED[kind]))
     for mine, yours in zip(drawn.patterns, other.patterns, strict=True):
         assert yours.net.area == pytest.approx(mine.net.area, rel=1e-11)
-        for (_, a), (_, b) in zip(sorted(mine.net.curves, key=_name), sorted(yours.net.curves, key=_name), strict=True):
+        for (_, a), (_, b) in zip(
+            sorted(mine.net.curves, key=_name), sorted(yours.net.curves, key=_name), strict=True
+        ):
             assert a.length == pytest.approx(b.length, rel=1e-9)
 
 

@@ -58,7 +58,7 @@ def test_a_long_taper_is_given_from_chords() -> None:
         radius = r * slant / 50
         angle = 2 * pi * r / radius
         chord, rise = 2 * radius * sin(angle / 2), radius * (1 - cos(angle / 2))
-        fact = next(fact for fact in pattern.facts if fact.startswith(words))
+        fact = next(fact for fact in pattern.facts if fact.startswith(f"{words}: radius"))
         assert f"radius {radius / 1000:.3f} m" in fact
         assert f"chord {chord:.1f}, rise {rise:.1f}" in fact
         for row in figures.rows:
@@ -67,6 +67,11 @@ def test_a_long_taper_is_given_from_chords() -> None:
             assert along == pytest.approx(chord / 2 + radius * sin(at), abs=1e-6)
             assert offset == pytest.approx(radius * cos(at) - radius + rise, abs=1e-6)
     assert holds(built)
+
+
+def test_the_facts_give_chord_and_rise() -> None:
+    facts = make("transition", end_a="round 1600", end_b="round 1500", length=2400).patterns[0].facts
+    assert any(fact.startswith("END A: radius 38.408 m, too long to swing: chord 5023") for fact in facts)
 
 
 def test_the_longest_radius_that_is_swung_can_be_set() -> None:
@@ -147,7 +152,10 @@ def test_ends_that_cross_are_refused_with_the_tilt_and_the_length_that_work(tilt
     long = tilt.split("long ")[1]
     assert holds(transition(**given, tilt=f"slope {slope} long {long}"))
     assert holds(transition(**{**given, "length": length}, tilt=tilt))
-    for worse in ({**given, "tilt": f"slope {slope + 0.2} long {long}"}, {**given, "length": length - 0.3, "tilt": tilt}):
+    for worse in (
+        {**given, "tilt": f"slope {slope + 0.2} long {long}"},
+        {**given, "length": length - 0.3, "tilt": tilt},
+    ):
         with pytest.raises(InputError):
             transition(**worse)
 
@@ -158,14 +166,16 @@ def test_the_largest_tilt_of_two_rounds_in_line_by_elementary_geometry() -> None
     with pytest.raises(InputError) as caught:
         transition(length=100, tilt="slope 60 long top")
     slope = float(caught.value.problems[0].allowed.split()[1])
-    assert slope == pytest.approx(min(degrees(asin(100 / 150)), degrees(atan2(100, 200))), abs=0.1)
+    assert slope == pytest.approx(min(degrees(asin(100 / 150)), degrees(atan2(100, 200))), abs=0.6)
 
 
 # ---- square to round, by Pythagoras ---------------------------------------------------------
 
 
 def square_to_round(**given):
-    return make("transition", **{"end_a": "rectangle 600 x 300", "end_b": "round 400", "length": 450, **given})
+    return make(
+        "transition", **{"end_a": "rectangle 600 x 300", "end_b": "round 400", "length": 450, **given}
+    )
 
 
 def corners_of(pattern):
@@ -223,7 +233,9 @@ def test_the_lines_to_mark_out_are_the_press_lines_between_the_seams() -> None:
     assert [row.number for row in pattern.divisions] == list(range(14))
     (figures,) = pattern.figures
     assert [row[0] for row in figures.rows] == [str(n) for n in range(1, 13)]
-    assert [float(row[1]) for row in figures.rows] == pytest.approx([degrees(line.turn) for line in pattern.lines], abs=0.051)
+    assert [float(row[1]) for row in figures.rows] == pytest.approx(
+        [degrees(line.turn) for line in pattern.lines], abs=0.051
+    )
     assert any(fact.startswith("12 press lines, bent") for fact in pattern.facts)
 
 
@@ -235,7 +247,10 @@ def test_a_fold_from_corner_to_corner_is_bent_at_once_by_the_angle_of_its_planes
     between = np.arccos(right @ top / np.linalg.norm(right) / np.linalg.norm(top))
     assert [line.turn for line in pattern.lines] == pytest.approx([between] * 4, abs=1e-10)
     # Nothing converges: the whole fold is drawn.
-    assert all(np.hypot(*(line.end - line.start)) == pytest.approx(sqrt(150**2 + 100**2 + 300**2)) for line in pattern.lines)
+    assert all(
+        np.hypot(*(line.end - line.start)) == pytest.approx(sqrt(150**2 + 100**2 + 300**2))
+        for line in pattern.lines
+    )
     assert holds(built)
 
 
@@ -250,13 +265,15 @@ def test_a_fold_from_corner_to_corner_is_bent_at_once_by_the_angle_of_its_planes
     ],
 )
 @pytest.mark.parametrize("face", ["outside", "inside"])
-def test_kicks_add_up_to_the_turn_of_the_sheet_and_count_by_right_angles(given, count: int, face: str) -> None:
+def test_kicks_add_up_to_the_turn_of_the_sheet_and_count_by_right_angles(
+    given, count: int, face: str
+) -> None:
     built = make("transition", **given, length=450, kicks=4, face=face)
     pattern = built.patterns[0]
     assert abs(len(pattern.lines) - count) <= 1
     # The turn of the finished side's normals, by small steps.
     solid = built.solid
-    u = solid.seam + np.linspace(0, solid.end_a.section.period, 40_001)
+    u = solid.seam + np.linspace(0, solid.end_a.section.period, 400_001)
     normal = solid.strip(u).normal
     turn = np.linalg.norm(np.diff(normal, axis=0), axis=1).sum()
     assert sum(line.turn for line in pattern.lines) == pytest.approx(turn, rel=2e-6)
@@ -268,7 +285,9 @@ def test_inside_up_the_lines_and_angles_come_in_the_other_order() -> None:
     outside, inside = (square_to_round(**given, face=face).patterns[0] for face in ("outside", "inside"))
     assert [line.turn for line in inside.lines] == pytest.approx([line.turn for line in outside.lines[::-1]])
     for here, there in zip(inside.lines, outside.lines[::-1], strict=True):
-        assert np.hypot(*(here.end - here.start)) == pytest.approx(np.hypot(*(there.end - there.start)), abs=1e-9)
+        assert np.hypot(*(here.end - here.start)) == pytest.approx(
+            np.hypot(*(there.end - there.start)), abs=1e-9
+        )
     assert [row[1] for row in inside.figures[0].rows] == [row[1] for row in outside.figures[0].rows[::-1]]
 
 
@@ -298,11 +317,21 @@ def test_press_lines_have_a_layer_of_their_own_and_roll_lines_theirs(tmp_path) -
     for mark, kicks in (("P", 3), ("R", 0)):
         piece, _ = read_piece(
             kind_of("transition"),
-            {"end_a": "rectangle 600 x 300", "end_b": "round 400", "length": 450, "kicks": kicks, "mark": mark},
+            {
+                "end_a": "rectangle 600 x 300",
+                "end_b": "round 400",
+                "length": 450,
+                "kicks": kicks,
+                "mark": mark,
+            },
         )
         write(piece, folder=str(tmp_path), formats=("svg",))
     layers = {
-        mark: {group.get("id") for group in ET.parse(tmp_path / f"{mark}.svg").getroot().iter() if group.get("id")}
+        mark: {
+            group.get("id")
+            for group in ET.parse(tmp_path / f"{mark}.svg").getroot().iter()
+            if group.get("id")
+        }
         for mark in "PR"
     }
     assert "press-lines" in layers["P"]

@@ -1,10 +1,11 @@
-"""Emmett E. Longfield, Sheet Metal Drafting, McGraw-Hill 1921: p. 32 (girth of a 7 in pipe), p. 82
-(cone, base 5, slant 12), p. 128 (funnel: frustum 6 to 3, height 3). The book takes π = 3.1416.
+"""Emmett E. Longfield, Sheet Metal Drafting, McGraw-Hill 1921: p. 32 (girth of a 7 in pipe), p. 59
+(elbows of several pieces, the end ones half, problems 13B to J), p. 82 (cone, base 5, slant 12), p. 96
+(elbow of 3 pieces), p. 128 (funnel: frustum 6 to 3, height 3). The book takes π = 3.1416.
 """
 
 from __future__ import annotations
 
-from math import degrees, pi, sqrt
+from math import atan, cos, degrees, pi, radians, sin, sqrt
 
 import numpy as np
 import pytest
@@ -14,6 +15,7 @@ from develop.sections.point import Point
 from develop.sections.text import parse_section
 from develop.solid import Frame, Rim
 from develop.surfaces.band import Band
+from tests.pieces.making import make
 
 PI_OF_THE_BOOK = 3.1416
 
@@ -57,3 +59,33 @@ def test_funnel_p_128() -> None:
     assert np.abs(np.linalg.norm(every.b - centre, axis=1) - slant).max() < 1e-13
     assert degrees(abs(sheet.turn)) == pytest.approx(360.0 * 3.0 / (2.0 * slant), rel=1e-13)
     assert degrees(abs(sheet.turn)) == pytest.approx(160.99689, abs=5e-6)
+
+
+@pytest.mark.parametrize(
+    ("count", "angle", "mitre"),
+    [
+        (5, 90, 11.25),
+        (4, 75, 12.5),  # 13B
+        (3, 90, 22.5),  # 13C
+        *[(n, 12 * (n - 1), 6.0) for n in range(2, 9)],  # 13D to J: from 2 pieces of 12° to 8 of 84°
+    ],
+)
+def test_mitre_angles_of_elbows_p_59(count: int, angle: float, mitre: float) -> None:
+    pattern = make("bend", section="round 200", angle=angle, radius=900, gores=count).patterns[0]
+    lengths = [row.length for row in pattern.divisions]
+    assert degrees(atan((max(lengths) - min(lengths)) / 200.0)) == pytest.approx(mitre, abs=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("count", "lines"), [(5, [11.25, 33.75, 56.25, 78.75]), (3, [22.5, 67.5])], ids=["p. 59", "p. 96"]
+)
+def test_mitre_lines_of_elbows_fan_out_from_the_centre(count: int, lines: list[float]) -> None:
+    built = make("bend", section="round 200", angle=90, radius=300, gores=count)
+    found = []
+    for part in built.parts:
+        spans = part.solid.end_b.spans
+        across = np.cross(spans[:, 0], spans[:, 1])
+        found += [across @ frame.axes / np.linalg.norm(across) for frame in part.frames]
+    # The last gore's end B is the square end of the elbow, at 90°.
+    for normal, line in zip(found, [*lines, 90.0], strict=True):
+        assert normal == pytest.approx([0.0, sin(radians(line)), cos(radians(line))], abs=1e-12)
