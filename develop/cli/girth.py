@@ -31,7 +31,7 @@ def command(summary: str) -> click.Command:
         text=f"Show {summary}.\n\n"
         "The points start at the right and go round anticlockwise; x is to the right "
         "of the centre, y above it. Running lengths are laid off from the start, each rounded by itself, so "
-        "that no rounding adds up. Facing end B of a piece; see develop kinds.",
+        "that no rounding adds up. In a piece, seen facing end B.",
         epilog='\b\nFor example:\n  develop girth "ellipse 600 x 300" --divisions 12',
     )
 

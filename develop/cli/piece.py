@@ -41,7 +41,7 @@ def piece_command(name: str) -> click.Command:
         action,
         options=[*fields, OUT, FORMATS_OPTION, units_option("unit of lengths given as bare numbers")],
         text=f"Make the pattern of {KINDS[name][2]}.\n\nLengths take mm, cm, m, in or ft, and fractions: "
-        "12-3/8 in, 1' 6\". Directions are read facing end B: degrees anticlockwise from right, a word, or a "
-        "clock time.",
+        "12-3/8 in, 1' 6\". Directions are read facing end B (in front of it, looking in): degrees "
+        "anticlockwise from right, a word, or a clock time.",
         epilog=f"\b\nFor example:\n  {command_line(kind)}",
     )

@@ -117,7 +117,7 @@ def _view() -> _Block:
     )
 
     def draw(ink: Ink, left: float, top: float) -> None:
-        ink.text(left, top - _TEXT, "Directions, facing END B: degrees, anticlockwise", _TEXT)
+        ink.text(left, top - _TEXT, "Facing END B: in front of it, looking in", _TEXT)
         x, y = left + wide / 2.0, top - high / 2.0 - 3.0
 
         def at(degrees: float, r: float) -> tuple[float, float]:
