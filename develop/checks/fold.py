@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 
 from develop.pattern.pattern import Pattern
 from develop.quadrature import Array
-from develop.solid.solid import Solid
+from develop.solid.solid import Solid, Strip
 
 __all__ = ["closing_miss", "folded"]
 
@@ -51,15 +51,18 @@ def folded(pattern: Pattern, solid: Solid) -> tuple[Array, Array, Array]:
     up = z[strips]
     normal = np.cos(lean) * up - np.sin(lean) * np.cross(along, up)
 
-    place = _seam_axes(solid) @ _flat_axes(axis[0]).T
     start = solid.strip(np.array([solid.seam]))
+    place = _seam_axes(start) @ _flat_axes(axis[0]).T
     origin = start.a[0] + solid.distance * start.normal[0]
     return a @ place.T + origin, b @ place.T + origin, normal @ place.T
 
 
-def closing_miss(pattern: Pattern, solid: Solid) -> float:
-    """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first."""
-    a, b, normal = folded(pattern, solid)
+def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Array] | None = None) -> float:
+    """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first.
+
+    lines: what `folded` returns, if the caller has it.
+    """
+    a, b, normal = folded(pattern, solid) if lines is None else lines
     lift = solid.distance * normal
     closing = max(np.linalg.norm(a[-1] - a[0]), np.linalg.norm(b[-1] - b[0]))
     return float(
@@ -105,9 +108,8 @@ def _flat_axes(axis: Array) -> Array:
     return np.array([[axis[0], axis[1], 0.0], [axis[1], -axis[0], 0.0], [0.0, 0.0, 1.0]])
 
 
-def _seam_axes(solid: Solid) -> Array:
+def _seam_axes(strip: Strip) -> Array:
     """The same three on the finished piece's seam, (3, 3)."""
-    strip = solid.strip(np.array([solid.seam]))
     along = strip.b[0] - strip.a[0]
     along = along / np.linalg.norm(along)
     up = strip.normal[0]

@@ -10,8 +10,9 @@ import click
 from develop.cli.options import JSON, FieldsCommand, units_option
 from develop.pieces.field_types import SECTION, Count
 from develop.pieces.fields import Declared
+from develop.pieces.wording import section_words
 from develop.sections.text import SectionSpec
-from develop.units import UNITS, format_length
+from develop.units import UNITS, format_length, sheet_unit
 
 __all__ = ["command"]
 
@@ -26,7 +27,7 @@ def command(summary: str) -> click.Command:
     return FieldsCommand(
         "girth",
         _show,
-        options=[_DIVISIONS, JSON, units_option("unit of bare numbers and of the table")],
+        options=[_DIVISIONS, JSON, units_option("unit of bare numbers; in and ft give a table in inches")],
         argument=_SECTION,
         text=f"Show {summary}.\n\n"
         "The points start at the right and go round anticlockwise; x is to the right "
@@ -41,7 +42,7 @@ def _show(values: Mapping[str, object]) -> int:
 
     from develop.sections import section_of
 
-    spec, count, unit = values["section"], values["divisions"], str(values["units"])
+    spec, count, unit = values["section"], values["divisions"], sheet_unit(str(values["units"]))
     assert isinstance(spec, SectionSpec)
     assert isinstance(count, int)
     section = section_of(spec)
@@ -63,12 +64,7 @@ def _show(values: Mapping[str, object]) -> int:
 
 def _named(spec: SectionSpec, unit: str) -> str:
     """The section, its sizes in the unit of the table; a pipe has a name instead."""
-    if spec.kind == "pipe":
-        return spec.text
-    if unit == "mm":
-        return f"{spec.text} mm"
-    sizes = [spec.width] if spec.kind == "round" else [spec.width, spec.height]
-    return f"{spec.kind} {' x '.join(format_length(size, unit=unit) for size in sizes)}"
+    return section_words(spec, unit) + (" mm" if unit == "mm" and spec.kind != "pipe" else "")
 
 
 def _table(

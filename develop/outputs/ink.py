@@ -22,7 +22,7 @@ __all__ = ["POINT", "Ink", "PatternPen"]
 POINT = 72.0 / 25.4
 """Points of a PDF in a mm."""
 
-_WIDTHS = {CUT: 0.35, NET: 0.25, ROLL_LINES: 0.18, WITNESS_MARKS: 0.35, TEXT: 0.25}  # [mm]
+_WIDTHS = {CUT: 0.5, NET: 0.25, ROLL_LINES: 0.18, WITNESS_MARKS: 0.25, TEXT: 0.25}  # [mm]
 _DASHES = {NET: (4.0, 1.5)}  # [mm]
 
 

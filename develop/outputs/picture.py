@@ -10,6 +10,7 @@ from __future__ import annotations
 
 import io
 import math
+from collections.abc import Sequence
 from typing import Protocol
 
 import numpy as np
@@ -24,6 +25,9 @@ _DOTS = 150  # [1/in]
 _OUTSIDE, _INSIDE = np.array([0.56, 0.64, 0.72]), np.array([0.47, 0.45, 0.43])
 _EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
 _RIM = 240
+_BETWEEN = "  ·  "
+_TYPE = 14.0  # size of the caption [points], at which a line takes so many letters:
+_LINE = 62
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
 
 
@@ -71,8 +75,11 @@ class _Camera:
         return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
 
 
-def picture(solid: Piece, title: str) -> bytes:
-    """PNG of the piece in perspective, equal scale in all directions; the same piece gives the same bytes."""
+def picture(solid: Piece, facts: Sequence[str]) -> bytes:
+    """PNG of the piece in perspective, equal scale in all directions; the same piece gives the same bytes.
+
+    facts: what stands above it, in one line or two.
+    """
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.collections import PolyCollection
@@ -88,7 +95,7 @@ def picture(solid: Piece, title: str) -> bytes:
     with matplotlib.rc_context():
         matplotlib.rcdefaults()  # a user's own settings must not change the picture
         figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
-        axes = figure.add_axes((0.02, 0.02, 0.96, 0.88))
+        axes = figure.add_axes((0.02, 0.02, 0.96, 0.86))
         axes.set_axis_off()
         axes.set_aspect("equal")
         polygons, fill, stroke, widths = _scene(camera, vertices, faces, lines)
@@ -110,14 +117,24 @@ def picture(solid: Piece, title: str) -> bytes:
         pad = 0.19 * max(x1 - x0, y1 - y0)
         axes.set_xlim(x0 - pad, x1 + pad)
         axes.set_ylim(y0 - pad, y1 + pad)
-        size_of_title = min(14.0, 14.0 * 64.0 / max(len(title), 1))
+        title, size_of_title = _caption(facts)
         figure.text(
-            0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE, parse_math=False
-        )
+            0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE,
+            linespacing=1.4, parse_math=False,
+        )  # fmt: skip
         buffer = io.BytesIO()
         FigureCanvasAgg(figure)
         figure.savefig(buffer, format="png", metadata={"Software": None})
     return buffer.getvalue()
+
+
+def _caption(facts: Sequence[str]) -> tuple[str, float]:
+    """The facts in one line or, where that is too long, two of like length; and the size of the type."""
+    lines = [_BETWEEN.join(facts)]
+    if len(lines[0]) > _LINE and len(facts) > 1:
+        ways = ((_BETWEEN.join(facts[:n]), _BETWEEN.join(facts[n:])) for n in range(1, len(facts)))
+        lines = list(min(ways, key=lambda way: max(map(len, way))))
+    return "\n".join(lines), _TYPE * min(1.0, _LINE / max(map(len, lines)))
 
 
 def _side(way: float, back: str, ahead: str) -> str:
@@ -132,6 +149,7 @@ def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]
     corners = np.vstack([camera.project(rim_a + t * (rim_b - rim_a)) for t in np.linspace(0.0, 1.0, 25)])
     height = (rim_a[:, 1].mean() + rim_b[:, 1].mean()) / 2.0
     middle = corners.mean(axis=0)
+    away = np.zeros(2)
     for text, rim in (("END A", rim_a), ("END B", rim_b)):
         places = camera.project(rim)
         away = places.mean(axis=0) - middle
@@ -139,11 +157,14 @@ def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]
         start = places[int(np.argmax(places @ away))]
         words.append((text, start, start + 0.07 * away / np.hypot(*away), _EDGE))
     ends: list[Array] = []
-    lines = (("TOP", solid.top_line, 0.6, _TOP), ("SEAM", solid.seam_line, 0.35, _SEAM))
-    for text, line, share, colour in lines:
+    seam = solid.seam_line
+    lines = (
+        ("TOP", solid.top_line, 0.6, _TOP, True),
+        ("SEAM", seam, 0.35, _SEAM, seam[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])),
+    )
+    for text, line, share, colour, up in lines:
         start = camera.project(line[0] + share * (line[1] - line[0]))
         column = corners[np.abs(corners[:, 0] - start[0]) < 0.04]
-        up = text == "TOP" or line[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])
         edge = float(column[:, 1].max() + 0.06 if up else column[:, 1].min() - 0.06)
         end = np.array([start[0], edge])
         for other in ends:  # a seam at the top: its word beside the other
@@ -151,7 +172,30 @@ def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]
                 end[0] = other[0] + math.copysign(0.2, end[0] - other[0])
         ends.append(end)
         words.append((text, start, end, colour))
+    # Out of the picture of the piece where no other word is, and never to the left, as that would read left.
+    start = camera.project(_right_of(rim_b))
+    ways = (22, 40, 0, 60, -20) if away[0] > 0.0 else (-90, -75, -60, -45, -30, -15, 0, 15, 30)
+    tries = [_way_out(corners, start, math.radians(way)) for way in ways]
+    apart = [min(float(np.hypot(*(end - word[2]))) for word in words) for end in tries]
+    clear = next((n for n, gap in enumerate(apart) if gap > 0.17), int(np.argmax(apart)))
+    words.append(("RIGHT", start, tries[clear], _EDGE))
     return words
+
+
+def _way_out(points: Array, start: Array, way: float) -> Array:
+    """The place (2,) a little outside the hull of points (n, 2), gone from `start` inside it in a direction [rad]."""
+    ahead = np.array([math.cos(way), math.sin(way)])
+    turn = way + np.radians(np.arange(-88.0, 89.0, 2.0))
+    normal = np.stack([np.cos(turn), np.sin(turn)])
+    far = ((points @ normal).max(axis=0) - start @ normal) / (ahead @ normal)
+    return np.asarray(start + ahead * (max(float(far.min()), 0.0) + 0.06))
+
+
+def _right_of(rim: Array) -> Array:
+    """The point (3,) of a rim (n, 3) to the right of its centre, for one who faces END B."""
+    centre = (rim.max(axis=0) + rim.min(axis=0)) / 2.0
+    x, y, _ = (rim - centre).T
+    return np.asarray(rim[int(np.argmin(np.abs(np.arctan2(y, x))))])
 
 
 def _lines(solid: Piece) -> list[tuple[Array, str, float]]:

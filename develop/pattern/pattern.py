@@ -68,12 +68,14 @@ class WitnessMark:
 
     at: on the edge (2,) [mm]. inward: unit vector into the sheet (2,).
     text: what it marks, such as TOP. edge: `a` or `b`.
+    arc: running length along the edge from the left seam [mm].
     """
 
     at: Array
     inward: Array
     text: str
     edge: str
+    arc: float
 
 
 @dataclass(frozen=True)
@@ -106,10 +108,13 @@ class Pattern:
     """One flat part. `net` is the geometry, `cut` what leaves the shear; equal without allowances.
 
     face: `outside` or `inside`, the face of the finished piece that is up.
-    facts: lines of text that every sheet states: mark and kind, name and sizes, material, face.
+    facts: lines of text that every sheet states. The first four tell which piece it is: mark and
+        kind, sizes, length or cuts, where the sizes are measured.
+    units: of the figures on the sheets, `mm` or `in`; all values here are in mm.
     flow: `a to b`, `b to a`, or empty where nothing flows.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
+    seam_words: what is written along the left and the right seam.
     """
 
     mark: str
@@ -127,6 +132,8 @@ class Pattern:
     full_lines: bool
     rulings: Rulings
     flow: str = ""
+    units: str = "mm"
+    seam_words: tuple[str, str] = ("SEAM", "SEAM")
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())

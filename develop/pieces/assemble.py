@@ -29,7 +29,7 @@ _TIE = 1e-9
 
 @dataclass(frozen=True)
 class Wording:
-    """What the pattern says and how it lies."""
+    """What the pattern says and how it lies. units: of the figures on the sheets, `mm` or `in`."""
 
     mark: str
     kind: str
@@ -39,6 +39,8 @@ class Wording:
     datum: str
     flow: str
     full_lines: bool
+    units: str = "mm"
+    seam_words: tuple[str, str] = ("SEAM", "SEAM")
 
 
 def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
@@ -85,8 +87,9 @@ def pattern_of(
         sheet.from_a(section_a.at_direction(_DIRECTIONS)),
         sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b)),
         ends[np.array([0, -1])],
-        _dense(ends, sheet.at_ends),
     ]
+    # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
+    wanted.append(_merged([_dense(ends, sheet.at_ends), *wanted]))
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
     found = sheet.lines(
         Place(np.concatenate([w.panel for w in wanted]), np.concatenate([w.x for w in wanted]))
@@ -124,6 +127,8 @@ def pattern_of(
         full_lines=wording.full_lines,
         rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), distance),
         flow=wording.flow,
+        units=wording.units,
+        seam_words=wording.seam_words,
     )
 
 
@@ -148,6 +153,19 @@ def _dense(ends: Place, at: Lines) -> Place:
     first = np.repeat(np.cumsum(counts) - counts, counts)
     x = 2.0 * (np.arange(len(owner)) - first) / counts[owner] - 1.0
     return Place(np.append(ends.panel[:-1][owner], ends.panel[-1]), np.append(x, ends.x[-1]))
+
+
+def _merged(places: Sequence[Place]) -> Place:
+    """All the places from left to right, each once; the two seams stay as they are."""
+    panel = np.concatenate([each.panel for each in places])
+    x = np.concatenate([each.x for each in places])
+    order = np.lexsort((x, panel))
+    panel, x = panel[order], x[order]
+    along = panel + 0.5 * (x + 1.0)
+    keep = np.diff(along, prepend=-1.0) > _ON_SEAM
+    keep &= along < along[-1] - _ON_SEAM
+    keep[-1] = True
+    return Place(panel[keep], x[keep])
 
 
 def _roll_lines(at: Lines) -> tuple[RollLine, ...]:
@@ -190,10 +208,10 @@ def _witness(
         texts += [text] * len(places)
     order = rows[::-1] if view.mirror else rows
     at = view.lines(found.take(order))
-    points, tangents = (at.a, at.tangent_a) if edge == "a" else (at.b, at.tangent_b)
+    points, tangents, arcs = (at.a, at.tangent_a, at.arc_a) if edge == "a" else (at.b, at.tangent_b, at.arc_b)
     side = 1.0 if edge == "a" else -1.0
     inward = side * np.stack([-tangents[:, 1], tangents[:, 0]], axis=-1)
-    return [WitnessMark(points[i], inward[i], texts[i], edge) for i in range(len(texts))]
+    return [WitnessMark(points[i], inward[i], texts[i], edge, float(arcs[i])) for i in range(len(texts))]
 
 
 def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:

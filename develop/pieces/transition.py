@@ -10,6 +10,7 @@ from develop.errors import Refusal
 from develop.pieces.common import Plate
 from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice
 from develop.pieces.fields import about
+from develop.pieces.wording import section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -119,7 +120,7 @@ class Transition(Plate):
         more = float(reach_a - reach_b)
         return more * x, more * y
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from math import degrees
 
@@ -130,17 +131,24 @@ class Transition(Plate):
         surface = self.surface()
         a, b = surface.rim_a, surface.rim_b
         seam = seam_parameter(a.section, surface.lengths, self.seam_at)
+        flat = surface.sheet(seam)
         right, up, _ = (float(each) for each in b.frame.origin)
-        shift = f"END B {number_text(round(right, 3))} right and {number_text(round(up, 3))} up"
-        place = f"flush at the {self.flush}, " if self.flush else ""
-        turned = f", rotated {number_text(round(degrees(self.rotate), 6))}°" if self.rotate else ""
+        place = [f"length {size_words(self.length, units)}"]
+        if self.flush:
+            place.append(f"flush at the {self.flush}")
+        place.append(shift_words(right, up, units))
+        if self.rotate and self.end_b.width != self.end_b.height:  # a round end looks the same turned
+            place.append(f"rotated {number_text(round(degrees(self.rotate), 6))}°")
         pattern = pattern_of(
-            surface.sheet(seam),
+            flat,
             a.section,
             b.section,
             wording=self.wording(
-                sizes=f"END A {self.end_a.text} to END B {self.end_b.text}",
-                more=(f"length {number_text(self.length)}, {place}{shift}{turned}",),
+                flat,
+                (self.end_a, self.end_b),
+                sizes=f"END A {section_words(self.end_a, units)} to END B {section_words(self.end_b, units)}",
+                place=", ".join(place),
+                units=units,
             ),
             divisions=self.divisions,
             distance=surface.distance,

@@ -94,41 +94,56 @@ class Solid:
     def measures(self) -> Measures:
         """Lengths of the two edges of the sheet and its area, by quadrature in space.
 
-        Between lines a→b and their neighbours the area is ½ (|R × a'| + |R × b'|) du, as one
-        plane touches the side all along a line; a' and b' come from differentiating positions.
+        Between a line R and its neighbour the area is ½ (|R × a'| + |R × b'|) du, as one plane
+        touches the side all along a line; each half is integrated along its own end.
         """
-        first = Panels.between(self._panel_ends())
-        whole = ((WEIGHTS @ self._speeds(first)) * first.half[:, None]).sum(axis=0)
+        (edge_a, area_a), (edge_b, area_b) = (
+            self._swept(on, other) for on, other in ((self.end_a, self.end_b), (self.end_b, self.end_a))
+        )
+        return Measures(edge_a, edge_b, area_a + area_b)
 
-        def loose(panels: Panels, speeds: Array) -> Mask:
-            return np.asarray((tail(speeds) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+    def _swept(self, on: End, other: End) -> tuple[float, float]:
+        """Length of the edge at one end [mm] and its part of the area [mm²]."""
+        first = Panels.between(self._panel_ends(on, other))
 
-        panels, speeds = resolved(first, self._speeds, loose, rounds=_ROUNDS)
-        totals = ((WEIGHTS @ speeds) * panels.half[:, None]).sum(axis=0)
-        return Measures(*(float(total) for total in totals))
+        def rates(panels: Panels) -> Array:
+            return self._rates(on, other, panels)
 
-    def _speeds(self, panels: Panels) -> Array:
-        """Speeds of both edges and of the area by u, (m, ORDER, 3), at the panels' nodes."""
-        u, half = panels.nodes, panels.half
-        shape = (*u.shape, 3)
-        strip = self.strip(u.ravel())
-        lift = self.distance * strip.normal
-        ruling = (strip.b - strip.a).reshape(shape)
-        velocities = [
-            (DERIVATIVE @ (edge + lift).reshape(shape)) / half[:, None, None] for edge in (strip.a, strip.b)
-        ]
-        swept = [np.linalg.norm(np.cross(ruling, velocity), axis=-1) for velocity in velocities]
-        speeds = [np.linalg.norm(velocity, axis=-1) for velocity in velocities]
-        return np.stack([*speeds, 0.5 * (swept[0] + swept[1])], axis=-1)
+        reach = float(np.linalg.norm(other.origin - on.origin)) + other.section.width + other.section.height
+        whole = on.section.girth * np.array([1.0, reach])
 
-    def _panel_ends(self) -> Array:
-        """Panels of end A's parameter that end at the breaks of both ends."""
-        section = self.end_a.section
+        def loose(panels: Panels, found: Array) -> Mask:
+            return np.asarray((tail(found) * panels.half[:, None] > _LOOSE * whole).any(axis=1))
+
+        panels, found = resolved(first, rates, loose, rounds=_ROUNDS)
+        edge, area = ((WEIGHTS @ found) * panels.half[:, None]).sum(axis=0)
+        return float(edge), float(area)
+
+    def _rates(self, on: End, other: End, panels: Panels) -> Array:
+        """At the nodes along one end: rates of its edge and of ½ |R × edge| (m, ORDER, 2)."""
+        nodes = panels.nodes
+        u = nodes.ravel()
+        at = on.section.walk(u)
+        if self.side == "parallel":
+            normal = np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1)
+            far = other.point(u)
+        else:
+            normal = self._touching(on, other, u)
+            far = other.touch(normal)
+        velocity = at.ds[:, None] * (np.stack([-at.ey, at.ex], axis=-1) @ on.spans.T)
+        if self.distance != 0.0:
+            turn = (DERIVATIVE @ normal.reshape(*nodes.shape, 3)) / panels.half[:, None, None]
+            velocity = velocity + self.distance * turn.reshape(-1, 3)
+        swept = np.linalg.norm(np.cross(far - on.point(u), velocity), axis=-1)
+        return np.stack([np.linalg.norm(velocity, axis=-1), 0.5 * swept], axis=-1).reshape(*nodes.shape, 2)
+
+    def _panel_ends(self, on: End, other: End) -> Array:
+        """Panels of one end's parameter that end at the breaks of both ends."""
+        section = on.section
         start, period = section.breaks[0], section.period
         ends = section.breaks - start
         if self.side == "hull":
-            other = self.end_b.section.breaks[:-1]
-            flat = self._touching(self.end_b, self.end_a, other) @ self.end_a.spans
+            flat = self._touching(other, on, other.section.breaks[:-1]) @ on.spans
             past = (section.parameter(flat[:, 0], flat[:, 1]) - start) % period
             ends = np.sort(np.concatenate([ends, past]))
             ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
