@@ -84,7 +84,9 @@ def imports(module: str, *, typing: bool = True) -> frozenset[str]:
             assert node.level == 0, f"{module}: a relative import"
             base = node.module or ""
             # `from develop.solid import Frame` or `from develop import units`.
-            found |= {f"{base}.{alias.name}" if f"{base}.{alias.name}" in known else base for alias in node.names}
+            found |= {
+                f"{base}.{alias.name}" if f"{base}.{alias.name}" in known else base for alias in node.names
+            }
     return frozenset(name for name in found if name in known and name != module)
 
 

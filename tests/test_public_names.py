@@ -163,7 +163,9 @@ def test_docstrings_name_the_units(name: str) -> None:
         if inspect.isfunction(found):
             missing += lacking(each, found, above)
         elif inspect.isclass(found):
-            own = f"{above}\n{found.__doc__}\n" + "\n".join(base.__doc__ or "" for base in found.__mro__[1:-1])
+            own = f"{above}\n{found.__doc__}\n" + "\n".join(
+                base.__doc__ or "" for base in found.__mro__[1:-1]
+            )
             fields = set(getattr(found, "__dataclass_fields__", {}))
             missing += wanting(each, fields, own)
             for method, function in methods(found):

@@ -14,7 +14,7 @@ from develop.pieces.fields import Declared, read_fields
 from develop.units import UNITS
 from develop.wording import listed, near_miss, nearest, shown
 
-__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "units_option"]
+__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "Words", "units_option"]
 
 
 @dataclass(frozen=True, eq=False, repr=False)

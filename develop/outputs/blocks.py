@@ -75,7 +75,7 @@ def title(pattern: Pattern, wide: float) -> Block:
 
 def view(wide: float) -> Block:
     """The circle of directions, as one sees it facing end B. wide [mm]."""
-    radius, high = 18.0, 62.0
+    radius, high = 16.0, 58.0
     words = (
         (0.0, "0  RIGHT", 0.0),
         (90.0, "90  TOP", 0.5),
@@ -84,7 +84,7 @@ def view(wide: float) -> Block:
     )
 
     def draw(ink: Ink, left: float, top: float) -> None:
-        for n, line in enumerate(_wrap("Facing END B: in front of it, looking in", wide - 6.0, _TEXT)):
+        for n, line in enumerate(_wrap("Facing END B: in front of it, looking in", wide - 16.0, _TEXT)):
             ink.text(left, top - _TEXT - n * _TEXT * _LEAD, line, _TEXT)
         x, y = left + wide / 2.0, top - high / 2.0 - 3.0
 

@@ -17,6 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from develop.pattern.curve import Array
+from develop.pattern.lettering import CAPITAL, text_width
 
 __all__ = ["Piece", "picture"]
 
@@ -26,8 +27,7 @@ _OUTSIDE, _INSIDE = np.array([0.56, 0.64, 0.72]), np.array([0.47, 0.45, 0.43])
 _EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
 _RIM = 240
 _BETWEEN = "  ·  "
-_TYPE = 14.0  # size of the caption [points], at which a line takes so many letters:
-_LINE = 62
+_TYPE = 14.0  # size of the caption [points]
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
 
 
@@ -107,6 +107,7 @@ def picture(solid: Piece, facts: Sequence[str]) -> bytes:
         corners = camera.project(vertices)
         for text, start, end, colour in _words(camera, solid):
             axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
+            axes.plot(*start, color=colour, marker="o", markersize=3.2)
             ahead = (end - start) / np.hypot(*(end - start))
             x, y = end + 0.012 * ahead
             axes.text(
@@ -131,10 +132,16 @@ def picture(solid: Piece, facts: Sequence[str]) -> bytes:
 def _caption(facts: Sequence[str]) -> tuple[str, float]:
     """The facts in one line or, where that is too long, two of like length; and the size of the type."""
     lines = [_BETWEEN.join(facts)]
-    if len(lines[0]) > _LINE and len(facts) > 1:
-        ways = ((_BETWEEN.join(facts[:n]), _BETWEEN.join(facts[n:])) for n in range(1, len(facts)))
-        lines = list(min(ways, key=lambda way: max(map(len, way))))
-    return "\n".join(lines), _TYPE * min(1.0, _LINE / max(map(len, lines)))
+    if _size_of(lines) < _TYPE and len(facts) > 1:
+        ways = [[_BETWEEN.join(facts[:n]), _BETWEEN.join(facts[n:])] for n in range(1, len(facts))]
+        lines = max(ways, key=_size_of)
+    return "\n".join(lines), _size_of(lines)
+
+
+def _size_of(lines: list[str]) -> float:
+    """The size of type [points] at which the lines have room, at most `_TYPE`."""
+    widest = max(text_width(line, CAPITAL) for line in lines)
+    return min(_TYPE, 0.95 * _SIZE[0] * 72.0 / max(widest, 1.0))
 
 
 def _side(way: float, back: str, ahead: str) -> str:
@@ -174,21 +181,21 @@ def _words(camera: _Camera, solid: Piece) -> list[tuple[str, Array, Array, str]]
         words.append((text, start, end, colour))
     # Out of the picture of the piece where no other word is, and never to the left, as that would read left.
     start = camera.project(_right_of(rim_b))
-    ways = (22, 40, 0, 60, -20) if away[0] > 0.0 else (-90, -75, -60, -45, -30, -15, 0, 15, 30)
-    tries = [_way_out(corners, start, math.radians(way)) for way in ways]
+    ways = (22, 40, 0, 60, 75, -20) if away[0] > 0.0 else (-90, -75, -60, -45, -30, -15, 0, 15, 30)
+    tries = [_way_out(corners, start, math.radians(way), by) for by in (0.06, 0.12, 0.18) for way in ways]
     apart = [min(float(np.hypot(*(end - word[2]))) for word in words) for end in tries]
-    clear = next((n for n, gap in enumerate(apart) if gap > 0.17), int(np.argmax(apart)))
+    clear = next((n for n, gap in enumerate(apart) if gap > 0.13), int(np.argmax(apart)))
     words.append(("RIGHT", start, tries[clear], _EDGE))
     return words
 
 
-def _way_out(points: Array, start: Array, way: float) -> Array:
-    """The place (2,) a little outside the hull of points (n, 2), gone from `start` inside it in a direction [rad]."""
+def _way_out(points: Array, start: Array, way: float, by: float) -> Array:
+    """The place (2,) outside the hull of points (n, 2) `by` so much, from `start` in a direction [rad]."""
     ahead = np.array([math.cos(way), math.sin(way)])
     turn = way + np.radians(np.arange(-88.0, 89.0, 2.0))
     normal = np.stack([np.cos(turn), np.sin(turn)])
     far = ((points @ normal).max(axis=0) - start @ normal) / (ahead @ normal)
-    return np.asarray(start + ahead * (max(float(far.min()), 0.0) + 0.06))
+    return np.asarray(start + ahead * (max(float(far.min()), 0.0) + by))
 
 
 def _right_of(rim: Array) -> Array:

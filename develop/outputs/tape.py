@@ -24,7 +24,7 @@ _PAPER = {"mm": (210.0, 297.0), "in": (215.9, 279.4)}  # A4 (ISO 216), Letter (A
 _STRIP = 8.0  # [mm] heading of a page
 _GAP = 7.0
 _TEXT = 3.0  # read at a table, not from an arm's length
-_VIEW = 88.0  # [mm] width of the view of directions
+_VIEW = 92.0  # [mm] width of the view of directions
 _MANY = 12  # rows of witness marks that do not stand beside the view any more
 _FEW = 3  # rows of a table that are not worth a beginning at the foot of a page
 
@@ -53,7 +53,7 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
     wide, high = (size - 2.0 * MARGIN for size in paper(pattern))
     flow = _Flow(high - _STRIP)
     flow.block(title(pattern, wide))
-    marks = Grid(marks_table(pattern.marks, units=pattern.units), most=wide - _VIEW)
+    marks = Grid(marks_table(pattern.marks, units=pattern.units), most=wide - _VIEW - 2.0)
     count = len(marks.table.rows)
     if count <= _MANY:
         flow.block(view(_VIEW), marks.part(0, count), apart=wide - marks.wide)

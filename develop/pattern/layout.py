@@ -80,10 +80,8 @@ def lay_out(
     height = text_height(net)
     words = max(SMALLEST, 0.8 * height)
     sheet = Sheet(net, marks, lines, avoid, full_lines)
-    seams = _seam_words((left_seam, right_seam), seam_words, words)
-    told = seam_words != ("SEAM", "SEAM")
-    if told:  # how the sides meet is told in more than a word, and there is one place for it
-        sheet.write(seams)
+    # First what has one place: along a short seam the words for its corners can stand farther off.
+    sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
     sheet.write(_witness_words(marks, sheet.lengths, height, words))
     numbers = Numbers(divisions, marks, tick=height, height=max(SMALLEST, 0.5 * height))
     numbers.write_first(sheet)
@@ -91,8 +89,6 @@ def lay_out(
     strip = _Strip.of(net, np.asarray(mid_line, dtype=float), divisions)
     block = _facts(sheet, strip, tuple(facts), height)
     arrows = _flow(sheet, strip, block, flow, height)
-    if not told:
-        sheet.write(seams)
     numbers.write_others(sheet)
     return tuple(sheet.labels) + _lap_words(net, cut, words), arrows
 
@@ -205,7 +201,7 @@ def _facts(sheet: Sheet, strip: _Strip, facts: tuple[str, ...], height: float) -
         for lines in _wrapped(facts, narrow=share > 0.6):
             wide, tall = _block_size(lines, size)
             angles = np.tile((square, lengthwise)[way], 3)
-            boxes = boxes_at(centres, angles, wide, tall)
+            boxes = boxes_at(centres, angles, width=wide, height=tall)
             good = np.flatnonzero(sheet.free(boxes, 0.4 * size))
             if len(good):
                 best = rows_of(boxes, good[:1])

@@ -9,13 +9,14 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.lettering import ASCENT, DESCENT, Boxes, text_width, upright
 from develop.pattern.pattern import Division, WitnessMark
-from develop.pattern.placing import Sheet, label_at
+from develop.pattern.placing import Sheet, label_at, overlaps, rows_of
 
 __all__ = ["Numbers"]
 
@@ -34,12 +35,23 @@ class _Row:
     ahead: Array
     tick: Array
 
-    @property
-    def aside(self) -> Array:
-        return np.stack([self.ahead[:, 1], -self.ahead[:, 0]], axis=1)
+    @cached_property
+    def turned(self) -> Array:
+        """At which angles the numbers stand upright, square to their ticks, (n,) [rad]."""
+        return np.array([upright(math.atan2(-x, y)) for x, y in self.ahead])
+
+    @cached_property
+    def along(self) -> Array:
+        """Unit vectors along the numbers, (n, 2)."""
+        return np.stack([np.cos(self.turned), np.sin(self.turned)], axis=1)
+
+    @cached_property
+    def _unit_widths(self) -> Array:
+        return np.array([text_width(str(number), 1.0) for number in self.numbers])
 
     def widths(self, size: float) -> Array:
-        return np.array([text_width(str(number), size) for number in self.numbers])
+        """Widths of the numbers, (n,) [mm]."""
+        return size * self._unit_widths
 
     def centres(self, size: float, *, deeper: float = 0.0) -> Array:
         """Middles (n, 2) of numbers of this size, just beyond the ticks or `deeper` sizes more."""
@@ -51,16 +63,12 @@ class _Row:
         step = np.hypot(*np.diff(centres, axis=0).T)
         return np.asarray(np.minimum(np.append(step, np.inf), np.insert(step, 0, np.inf)))
 
-    def boxes(self, rows: Sequence[int], centres: Array, size: float) -> Boxes:
-        """Boxes of these rows' numbers; their angles come from `angle`."""
-        turned = np.array([self.angle(n) for n in rows])
-        half = np.array([(wide, size * (ASCENT + DESCENT)) for wide in self.widths(size)[list(rows)]]) / 2.0
-        return Boxes(centres, np.stack([np.cos(turned), np.sin(turned)], axis=1), half)
-
-    def angle(self, n: int) -> float:
-        """At which the number stands upright, square to its tick [rad]."""
-        x, y = self.aside[n]
-        return upright(math.atan2(y, x))
+    def boxes(self, rows: Sequence[int] | Array, centres: Array, size: float) -> Boxes:
+        """Boxes of these rows' numbers at centres (k, 2) [mm]."""
+        which = np.asarray(rows, dtype=int)
+        wide = self.widths(size)[which]
+        half = np.stack([wide, np.full(len(wide), size * (ASCENT + DESCENT))], axis=1) / 2.0
+        return Boxes(centres, self.along[which], half)
 
 
 class Numbers:
@@ -86,47 +94,58 @@ class Numbers:
             self._first.append(np.flatnonzero(marked).tolist())
 
     def write_first(self, sheet: Sheet) -> None:
-        """The first, the last, and those at witness marks."""
+        """The first, the last, and those at witness marks: as large as they can be, beside their ticks."""
+        sizes = [self._height]
+        while sizes[-1] > sheet.least + 1e-9:
+            sizes.append(max(sheet.least, 0.8 * sizes[-1]))
         for row, wanted, done in self._edges(sheet, self._first):
-            corners = {wanted[0], wanted[-1]}
-            for n in (wanted[0], wanted[-1], *(n for n in wanted if n not in corners)):
-                if self._set(sheet, row, n):
-                    done.add(n)
+            corners = [wanted[0], wanted[-1]]
+            order = [*corners, *wanted[1:-1]]
+            for size in sizes:
+                self._try(sheet, row, [n for n in order if n not in done], size, most=_NEARER, done=done)
+            # In a corner a number is not likely to be taken for another line's.
+            for size in sizes:
+                self._try(sheet, row, [n for n in corners if n not in done], size, most=math.inf, done=done)
+
+    def _try(
+        self, sheet: Sheet, row: _Row, rows: list[int], size: float, *, most: float, done: set[int]
+    ) -> None:
+        """Write numbers in this size where that is free, at `most` so far aside in shares of the gap."""
+        if not rows:
+            return
+        off = row.widths(size)[rows] / 2.0 + 0.45 * size
+        # On the line, right of it, left of it; the farther ones are clear of a word along the seam.
+        sides = np.stack(
+            [0.0 * off, *(way * (off + more * size) for more in (0.0, 1.0, 2.0) for way in (1.0, -1.0))]
+        )
+        tries, near = [], []
+        for deeper in (0.0, 0.6, 1.2, -0.8):
+            centres = row.centres(size, deeper=deeper)
+            tries.append(centres[rows] + sides[..., None] * row.along[rows])
+            near.append(np.abs(sides) <= most * row.gaps(centres)[rows])
+        places = np.concatenate(tries).swapaxes(0, 1)  # (numbers, places, 2)
+        count = places.shape[1]
+        boxes = row.boxes(np.repeat(rows, count), places.reshape(-1, 2), size)
+        good = np.concatenate(near).T.ravel()
+        some = np.flatnonzero(good)
+        good[some] = sheet.clear(rows_of(boxes, some), 0.2 * size)
+        for k, n in enumerate(rows):
+            some = k * count + np.flatnonzero(good[k * count : (k + 1) * count])
+            some = some[~overlaps(rows_of(boxes, some, 0.2 * size), sheet.taken)]
+            if len(some):
+                self._write(sheet, row, [n], boxes.centre[some[:1]], size)
+                done.add(n)
 
     def _edges(self, sheet: Sheet, wanted: list[list[int]]) -> list[tuple[_Row, list[int], set[int]]]:
         edges = list(zip(self._rows, wanted, self._done, strict=False))
         return edges if sheet.both_ends else edges[:1]  # at a point there is no room for numbers
 
-    def _set(self, sheet: Sheet, row: _Row, n: int) -> bool:
-        """Write one number, as large as it can be, beside its tick or farther in."""
-        corner = n in (0, len(row.at) - 1)
-        size = self._height
-        while True:
-            wide = row.widths(size)[n]
-            off = wide / 2.0 + 0.45 * size
-            gap = row.gaps(row.centres(size))[n]
-            # The numbers at the corners cannot be taken for another line's.
-            sides = [0.0, off, -off] if corner or off <= _NEARER * gap else [0.0]
-            if corner:  # clear of a word along the seam
-                sides += [way * (off + more * size) for more in (1.0, 2.0) for way in (1.0, -1.0)]
-            turned = row.angle(n)
-            ahead = np.array([math.cos(turned), math.sin(turned)])
-            tries = [
-                row.centres(size, deeper=deeper)[n] + side * ahead
-                for deeper in (0.0, 0.6, 1.2, -0.8) for side in sides
-            ]  # fmt: skip
-            boxes = row.boxes([n] * len(tries), np.array(tries), size)
-            good = np.flatnonzero(sheet.free(boxes, 0.2 * size))
-            if len(good):
-                self._write(sheet, row, n, tries[good[0]], size)
-                return True
-            if size <= sheet.least + 1e-9:
-                return False
-            size = max(sheet.least, 0.8 * size)
-
-    def _write(self, sheet: Sheet, row: _Row, n: int, centre: Array, size: float) -> None:
-        sheet.take(row.boxes([n], centre[None], size))
-        sheet.labels.append(label_at(str(row.numbers[n]), centre, row.angle(n), size))
+    def _write(self, sheet: Sheet, row: _Row, rows: list[int], centres: Array, size: float) -> None:
+        sheet.take(row.boxes(rows, centres, size))
+        sheet.labels += [
+            label_at(str(row.numbers[n]), centre, float(row.turned[n]), size)
+            for n, centre in zip(rows, centres, strict=True)
+        ]
 
     def write_others(self, sheet: Sheet) -> None:
         """The rest; every second, third, ... where they are close, none where few would find room."""
@@ -142,7 +161,7 @@ class Numbers:
                 if not left:
                     continue
                 off = widths[left] / 2.0 + 0.45 * size
-                moved = centres[left] + side * row.aside[left] * off[:, None]
+                moved = centres[left] + side * row.along[left] * off[:, None]
                 good = sheet.free(row.boxes(left, moved, size), 0.2 * size)
                 good &= (side == 0.0) | (off <= _NEARER * gaps[left])
                 found.update((left[k], moved[k]) for k in np.flatnonzero(good))
@@ -153,5 +172,4 @@ class Numbers:
                     kept.append(n)
             # A few numbers here and there would puzzle more than they help.
             if 2 * len({*kept, *done}.intersection(chosen)) > len(chosen):
-                for n in kept:
-                    self._write(sheet, row, n, found[n], size)
+                self._write(sheet, row, kept, np.array([found[n] for n in kept]).reshape(-1, 2), size)

@@ -50,7 +50,7 @@ def divisions_table(divisions: Sequence[Division], *, units: str = "mm") -> Tabl
         )
         for d in divisions
     )
-    return Table(f"Lines to mark out ({_UNITS[units]}; directions in degrees)", heads, rows)
+    return Table(f"Lines to mark out ({_UNITS[units]}; directions in degrees anticlockwise)", heads, rows)
 
 
 def _length(mm: float, units: str) -> str:

@@ -81,11 +81,12 @@ class Plate(Marked):
     )
 
     def wording(
-        self, flat: Sheet, sections: tuple[SectionSpec, ...], *, sizes: str, place: str, units: str
+        self, flat: Sheet, sections: tuple[SectionSpec, ...], *, sizes: str, place: str, held: str, units: str
     ) -> Wording:
-        """What the pattern says: the sizes in words, and how the ends lie."""
+        """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes."""
         from develop.pieces.assemble import Wording
 
+        plate = ("edges square to the plate", f"{held} at the given sizes")
         full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
         return Wording(
             mark=self.mark,
@@ -99,11 +100,7 @@ class Plate(Marked):
                 sizes_words(self.sizes, self.thickness, *sections),
                 edges_words((flat.edge_a, flat.edge_b), units),
                 *wall_words(self.material, self.thickness, units),
-                *(
-                    ("edges square to the plate", "length and cuts at the given sizes")
-                    if self.thickness >= _PLATE
-                    else ()
-                ),
+                *(plate if self.thickness >= _PLATE else ()),
                 f"quantity {self.quantity}, {self.face} up",
             ),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",

@@ -18,7 +18,8 @@ from develop.wording import listed, near_miss, shown
 
 __all__ = [
     "ANGLE", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT", "THICKNESS",
-    "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number",
+    "Angle", "Choice", "Count", "Cut", "CutText", "Direction", "FieldType", "Length", "Number", "Offset",
+    "SectionText", "Text",
 ]  # fmt: skip
 
 

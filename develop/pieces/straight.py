@@ -66,6 +66,7 @@ class Straight(Plate):
                 (self.section,),
                 sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
                 place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
+                held="length and cuts" if not a == b == "square" else "length",
                 units=units,
             ),
             divisions=self.divisions,

@@ -148,6 +148,7 @@ class Transition(Plate):
                 (self.end_a, self.end_b),
                 sizes=f"END A {section_words(self.end_a, units)} to END B {section_words(self.end_b, units)}",
                 place=", ".join(place),
+                held="length",
                 units=units,
             ),
             divisions=self.divisions,

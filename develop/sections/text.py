@@ -24,6 +24,14 @@ _FORMS = {
 }
 _ALLOWED = f"{listed(_FORMS.values())}; sizes from 0.1 mm to 100 m"
 _LONGEST_SIZE = 12
+_SIZE_TEXT = r"[0-9][^xX×]{0,20}"
+# Ways in which people write a round section or an oval that are not forms of their own.
+_DIAMETER = re.compile(
+    rf"(?:circle|circular|dia(?:m(?:eter)?)?\.?|[Øø⌀∅])?\s*({_SIZE_TEXT}?)\s*(?:dia(?:m(?:eter)?)?\.?|[Øø⌀∅])?",
+    re.IGNORECASE,
+)
+_TWO_SIZES = re.compile(rf"{_SIZE_TEXT}[xX×]\s*{_SIZE_TEXT}")
+_OVAL = re.compile(rf"(flat[ -]?)?oval\s*({_TWO_SIZES.pattern})?.*", re.IGNORECASE | re.DOTALL)
 _BETWEEN = re.compile(r"[xX×]")
 _PIPE = re.compile(r"(DN|NPS)\s*([^a-z]*?)(?:\s+([a-z0-9.]+(?:\s.*)?))?", re.IGNORECASE)
 
@@ -62,10 +70,26 @@ def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
         # `ellipse600x300` and `round400` are clear enough to be taken for what they are.
         joined = re.fullmatch(r"\s*(round|ellipse|pipe)\s*(.*)", text, re.IGNORECASE | re.DOTALL)
         if joined is None:
-            hint = near_miss(name, _FORMS) if name else ""
-            raise _refused(f"{shown(text)} is not a section{hint}")
+            raise _refused(f"{shown(text)} is not a section{_hint(text)}")
         read, rest = _READERS[joined[1].lower()], joined[2]
     return read(text, rest.strip(), unit)
+
+
+def _hint(text: str) -> str:
+    """What a text that is no section was meant for, as far as it can be known."""
+    plain = text.strip()
+    diameter = _DIAMETER.fullmatch(plain)
+    if diameter:
+        return f"; did you mean {shown(f'round {diameter[1]}')}?"
+    oval = _OVAL.fullmatch(plain)
+    if oval:
+        no_flat = "an oval of two straights and two half circles is not made yet"
+        meant = f"did you mean {shown(f'ellipse {oval[2]}')}? " if oval[2] and not oval[1] else ""
+        return f"; {meant}{no_flat}"
+    if _TWO_SIZES.fullmatch(plain):
+        return f"; did you mean {shown(f'ellipse {plain}')}?"
+    name = plain.partition(" ")[0]
+    return near_miss(name, _FORMS) if name else ""
 
 
 def _size(text: str, size: str, unit: str) -> float:

@@ -91,7 +91,9 @@ def triangulated(n: int) -> tuple[Array, Array, float]:
     turn = open_ + foot + last - np.pi
     line = np.pi / 2 - np.concatenate([[0.0], np.cumsum(turn)])
     edge = line[:-1] - open_ - foot
-    flat_a = np.concatenate([[[0.0, 0.0]], np.cumsum(step_a[:, None] * np.stack([np.cos(edge), np.sin(edge)], 1), 0)])
+    flat_a = np.concatenate(
+        [[[0.0, 0.0]], np.cumsum(step_a[:, None] * np.stack([np.cos(edge), np.sin(edge)], 1), 0)]
+    )
     flat_b = flat_a + length[:, None] * np.stack([np.cos(line), np.sin(line)], axis=1)
     area = 0.5 * np.sum(length[:-1] * across * np.sin(open_) + across * step_a * np.sin(foot))
     return flat_a, flat_b, float(area)
@@ -107,18 +109,30 @@ def test_transition() -> None:
     rims = Rim(a, Frame.square()), Rim(b, Frame.square(at=(80.0, 40.0, 400.0)))
     seam = 1.5 * np.pi
     piece = Transition(
-        end_a=parse_section("ellipse 600 x 300"), end_b=parse_section("round 400"), length=400.0, offset=(80.0, 40.0)
+        end_a=parse_section("ellipse 600 x 300"),
+        end_b=parse_section("round 400"),
+        length=400.0,
+        offset=(80.0, 40.0),
     )
     geometry = median(lambda: Band(*rims).sheet(seam), repeats=101)
     whole = median(piece.build)
     sheet = Band(*rims).sheet(seam)
     corners = sheet.lines(sheet.ends[np.array([0, -1])])
-    rows = [("geometry to 1e-9 mm", ms(geometry), "goal 1.5 ms"), ("whole net pattern", ms(whole), "goal 4 ms")]
+    rows = [
+        ("geometry to 1e-9 mm", ms(geometry), "goal 1.5 ms"),
+        ("whole net pattern", ms(whole), "goal 4 ms"),
+    ]
     for n in (12, 24, 96, 10_000):
         took = median(lambda n=n: triangulated(n), repeats=11)
         flat_a, _, area = triangulated(n)
         off = abs(chord(flat_a) - chord(corners.a))
-        rows.append((f"plain triangulation, {n} divisions", ms(took), f"corner out by {off:.2g} mm, area by {area / sheet.area - 1:.1e}"))
+        rows.append(
+            (
+                f"plain triangulation, {n} divisions",
+                ms(took),
+                f"corner out by {off:.2g} mm, area by {area / sheet.area - 1:.1e}",
+            )
+        )
     show("One transition, ellipse 600 x 300 to round 400", rows)
     # The exact sheet is where triangulation goes as it is refined, and it is not reached by it.
     flat_a, _, area = triangulated(10_000)
@@ -141,7 +155,12 @@ def point_by_point(a: float, b: float, count: int) -> Array:
         return float(quad(speed, 0.0, u, epsabs=1e-12, epsrel=1e-13, limit=200)[0])
 
     girth = arc(2.0 * np.pi)
-    return np.array([brentq(lambda u, s=k * girth / count: arc(u) - s, 0.0, 2.0 * np.pi, xtol=1e-13) for k in range(count)])
+    return np.array(
+        [
+            brentq(lambda u, s=k * girth / count: arc(u) - s, 0.0, 2.0 * np.pi, xtol=1e-13)
+            for k in range(count)
+        ]
+    )
 
 
 def test_dividing_a_girth() -> None:

@@ -49,7 +49,9 @@ def test_area_under_a_parabola() -> None:
     back = (("b", arch.reversed()), ("a", base.reversed()))
     assert drawn_area(Outline(back, 0.0)) == pytest.approx(-3.0, rel=1e-14)
     # Far away on the sheet it is the same area.
-    moved = tuple((n, c.moved(turn=np.eye(2), shift=np.array([1e5, -2e5]))) for n, c in (("a", base), ("b", arch)))
+    moved = tuple(
+        (n, c.moved(turn=np.eye(2), shift=np.array([1e5, -2e5]))) for n, c in (("a", base), ("b", arch))
+    )
     assert drawn_area(Outline(moved, 0.0)) == pytest.approx(3.0, rel=1e-9)
 
 
@@ -108,7 +110,9 @@ def test_bow_tie() -> None:
 
 
 def test_a_side_through_another_part_counts_both_ways() -> None:
-    points = np.array([[0.0, 0.0], [10.0, 0.0], [10.0, 5.0], [5.0, 5.0], [5.0, -1.0], [4.0, -1.0], [4.0, 5.0], [0.0, 5.0]])
+    points = np.array(
+        [[0.0, 0.0], [10.0, 0.0], [10.0, 5.0], [5.0, 5.0], [5.0, -1.0], [4.0, -1.0], [4.0, 5.0], [0.0, 5.0]]
+    )
     assert not Polygon(points).is_valid
     assert crossings(polygon(points)) == 2
 

@@ -19,7 +19,10 @@ Array = NDArray[np.float64]
 
 PIECES: dict[str, Piece] = {
     "transition": Transition(
-        end_a=parse_section("ellipse 600 x 300"), end_b=parse_section("round 400"), length=450.0, offset=(0.0, 50.0)
+        end_a=parse_section("ellipse 600 x 300"),
+        end_b=parse_section("round 400"),
+        length=450.0,
+        offset=(0.0, 50.0),
     ),
     "inside up": Transition(
         end_a=parse_section("round 300"),

@@ -158,7 +158,9 @@ def test_outline_mirrored_without_its_lines(name: str) -> None:
     far = ring[:, 0].min() + ring[:, 0].max()
     sides = {"seam_left": "seam_right", "seam_right": "seam_left"}
     flipped = {
-        sides.get(each, each): moved(curve.reversed(), lambda p: np.array([far, 0.0]) + p * np.array([-1.0, 1.0]))
+        sides.get(each, each): moved(
+            curve.reversed(), lambda p: np.array([far, 0.0]) + p * np.array([-1.0, 1.0])
+        )
         for each, curve in pattern.net.curves
     }
     net = Outline(tuple((each, flipped[each]) for each, _ in pattern.net.curves), pattern.net.area)
@@ -197,7 +199,9 @@ def test_lines_in_another_order(name: str) -> None:
     r = pattern.rulings
     order = np.arange(len(r.a))
     order[100:200], order[200:300] = order[200:300].copy(), order[100:200].copy()
-    assert CLOSING in failing(replace(pattern, rulings=Rulings(r.a[order], r.b[order], r.turn, r.distance)), solid)
+    assert CLOSING in failing(
+        replace(pattern, rulings=Rulings(r.a[order], r.b[order], r.turn, r.distance)), solid
+    )
 
 
 @every
@@ -232,9 +236,7 @@ def test_edges_swapped(name: str) -> None:
 @pytest.mark.parametrize("name", ["transition", "inside up", "straight"])
 def test_ends_of_the_piece_swapped(name: str) -> None:
     pattern, solid = parts(name)
-    upside_down = Solid(
-        solid.end_b, solid.end_a, side=solid.side, seam=solid.seam, distance=solid.distance
-    )
+    upside_down = Solid(solid.end_b, solid.end_a, side=solid.side, seam=solid.seam, distance=solid.distance)
     assert {EXACT_A, EXACT_B} <= failing(pattern, upside_down)
 
 

@@ -46,7 +46,9 @@ def bands(draw: st.DrawFn, steepest: float = 60.0) -> Band:
         slope=radians(draw(st.floats(0.0, 80.0 - steepest))), long=radians(draw(angles))
     )
     shift = (draw(st.floats(-200.0, 200.0)), draw(st.floats(-200.0, 200.0)))
-    leant = Frame.square(rotate=radians(draw(angles))).tilted(slope=radians(slope), long=radians(draw(angles)))
+    leant = Frame.square(rotate=radians(draw(angles))).tilted(
+        slope=radians(slope), long=radians(draw(angles))
+    )
     clear = draw(sizes(5.0, 1000.0))
     rim_a = Rim(a, frame_a)
 
@@ -148,7 +150,10 @@ def test_coplanar_tangents(band: Band) -> None:
     volume = np.einsum("ni,ni->n", np.cross(*tangents), ruling) / size
     assert np.abs(volume).max() < 1e-7
     for tangent, edge in zip(tangents, (lines.tangent_a, lines.tangent_b), strict=True):
-        assert np.abs(np.einsum("ni,ni->n", tangent, ruling) - (edge * flat).sum(axis=1)).max() < 2e-7 * size.max()
+        assert (
+            np.abs(np.einsum("ni,ni->n", tangent, ruling) - (edge * flat).sum(axis=1)).max()
+            < 2e-7 * size.max()
+        )
 
 
 @given(ellipses(), st.floats(-500.0, 500.0), st.floats(-500.0, 500.0), sizes(20.0, 2000.0), st.booleans())
@@ -167,7 +172,9 @@ def test_cones_to_a_point(base: Ellipse, x: float, y: float, height: float, poin
     # ½ ∮ |r × r'|, r the vector from the apex: periodic, so the trapezoidal rule is enough.
     n = 1 << 14
     t = np.arange(n) * (2.0 * np.pi / n)
-    r = np.stack([base.a * np.cos(t) - x, base.b * np.sin(t) - y, np.full(n, -rims[1].frame.origin[2])], axis=1)
+    r = np.stack(
+        [base.a * np.cos(t) - x, base.b * np.sin(t) - y, np.full(n, -rims[1].frame.origin[2])], axis=1
+    )
     rate = np.stack([-base.a * np.sin(t), base.b * np.cos(t), np.zeros(n)], axis=1)
     exact = np.linalg.norm(np.cross(r, rate), axis=1).mean() * np.pi
     assert sheet.area == pytest.approx(float(exact), rel=1e-10)

@@ -133,7 +133,9 @@ def test_ordinates_are_the_heights_of_the_planes(piece: Straight) -> None:
 
 @given(
     straights(cut_a=None, cut_b=None),
-    st.sampled_from([("inside", 1.0), ("inside", 0.5), ("mean", 0.5), ("mean", 0.0), ("outside", 0.5), ("outside", 0.0)]),
+    st.sampled_from(
+        [("inside", 1.0), ("inside", 0.5), ("mean", 0.5), ("mean", 0.0), ("outside", 0.5), ("outside", 0.0)]
+    ),
     st.floats(0.01, 0.9),
 )
 def test_the_girth_grows_by_2_pi_times_the_distance_of_the_neutral_line(

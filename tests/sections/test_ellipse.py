@@ -44,7 +44,9 @@ def test_tangent_and_normal(name: str) -> None:
     dx, dy = (after.x - before.x) / (2 * h), (after.y - before.y) / (2 * h)
     assert np.abs(dx + at.ey * at.ds).max() < 1e-7 * size + 1e-12
     assert np.abs(dy - at.ex * at.ds).max() < 1e-7 * size + 1e-12
-    turn = np.arctan2(before.ex * after.ey - before.ey * after.ex, before.ex * after.ex + before.ey * after.ey)
+    turn = np.arctan2(
+        before.ex * after.ey - before.ey * after.ex, before.ex * after.ex + before.ey * after.ey
+    )
     # At the tips of the flat one the normal turns half round within 0.004: no difference is fine there.
     calm = at.dphi < 50.0
     assert np.abs(turn / (2 * h) - at.dphi)[calm].max() < 1e-4
@@ -113,7 +115,9 @@ def test_quarters(name: str) -> None:
     section = CURVES[name]
     u = section.at_direction(np.array([0.0, pi / 2, pi, 3 * pi / 2]))
     assert section.arc(u) / section.girth == pytest.approx([0.0, 0.25, 0.5, 0.75], abs=1e-13)
-    assert section.point(u)[[0, 1], [0, 1]] == pytest.approx([section.width / 2, section.height / 2], rel=1e-14)
+    assert section.point(u)[[0, 1], [0, 1]] == pytest.approx(
+        [section.width / 2, section.height / 2], rel=1e-14
+    )
 
 
 def test_a_parallel_of_a_circle_is_a_circle() -> None:
@@ -147,9 +151,7 @@ def test_the_curve_of_a_text(text: str, width: float, height: float) -> None:
 
 
 @settings(max_examples=60, deadline=None, derandomize=True, database=None)
-@given(
-    st.floats(0.1, 1e5), st.floats(0.1, 1e5), st.floats(1e-3, 1e3), st.floats(-3.0, 3.0)
-)
+@given(st.floats(0.1, 1e5), st.floats(0.1, 1e5), st.floats(1e-3, 1e3), st.floats(-3.0, 3.0))
 def test_scaling(width: float, height: float, k: float, share: float) -> None:
     one, two = Ellipse(width=width, height=height), Ellipse(width=k * width, height=k * height)
     assert two.girth == pytest.approx(k * one.girth, rel=1e-14)

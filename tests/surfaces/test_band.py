@@ -18,7 +18,9 @@ from develop.surfaces.edges import edges
 Array = NDArray[np.float64]
 
 
-def rim(width: float, height: float, *, at: tuple[float, float, float] = (0.0, 0.0, 0.0), rotate: float = 0.0) -> Rim:
+def rim(
+    width: float, height: float, *, at: tuple[float, float, float] = (0.0, 0.0, 0.0), rotate: float = 0.0
+) -> Rim:
     return Rim(Ellipse(width=width, height=height), Frame.square(at=at, rotate=rotate))
 
 
@@ -107,7 +109,9 @@ def test_apex_at_either_end_and_the_same_fan() -> None:
 def test_between_two_points_there_is_nothing_to_roll() -> None:
     """No side, no area: refused, or nothing at all, but never a number that looks like one."""
     try:
-        sheet = Band(Rim(Point(), Frame.square()), Rim(Point(), Frame.square(at=(0.0, 0.0, 100.0)))).sheet(0.0)
+        sheet = Band(Rim(Point(), Frame.square()), Rim(Point(), Frame.square(at=(0.0, 0.0, 100.0)))).sheet(
+            0.0
+        )
     except (Refusal, ValueError, ZeroDivisionError):
         return
     assert sheet.area == pytest.approx(0.0, abs=1e-9)

@@ -20,7 +20,9 @@ LEVEL = np.zeros(2)
 
 def pipe(radius: float = 100.0, *, distance: float = 0.0, slope: float = 0.0, long: float = 0.0) -> Cylinder:
     cut = cut_slopes(slope=radians(slope), long=radians(long), end_b=True)
-    return Cylinder(Ellipse(width=2 * radius, height=2 * radius), Trim(0.0, LEVEL), Trim(300.0, cut), distance)
+    return Cylinder(
+        Ellipse(width=2 * radius, height=2 * radius), Trim(0.0, LEVEL), Trim(300.0, cut), distance
+    )
 
 
 def test_square_pipe_is_a_rectangle() -> None:
@@ -117,7 +119,12 @@ def test_drawn_edge_is_the_sinusoid(slope: float) -> None:
     assert (len(b) - 1) % 3 == 0
     p = b[np.arange(0, len(b) - 1, 3)[:, None] + np.arange(4)]
     for t in (0.1, 0.3, 0.5, 0.77):
-        x, y = ((1 - t) ** 3 * p[:, 0] + 3 * (1 - t) ** 2 * t * p[:, 1] + 3 * (1 - t) * t**2 * p[:, 2] + t**3 * p[:, 3]).T
+        x, y = (
+            (1 - t) ** 3 * p[:, 0]
+            + 3 * (1 - t) ** 2 * t * p[:, 1]
+            + 3 * (1 - t) * t**2 * p[:, 2]
+            + t**3 * p[:, 3]
+        ).T
         rise = tan(radians(slope))
         gap = y - (300.0 + 100.0 * rise * np.cos(x / 100.0 - radians(30.0)))
         # Measured upwards; square to the curve it is less.
