@@ -22,6 +22,7 @@ __all__ = [
     "parse_direction",
     "parse_length",
     "parse_number",
+    "sheet_unit",
 ]
 
 # Each unit in mm as an exact fraction. The inch is 25.4 mm by definition (international yard and
@@ -230,6 +231,15 @@ def number_text(value: float) -> str:
     ('600', '355.6', '0')
     """
     return str(int(value)) if value == int(value) and abs(value) < 1e15 else repr(float(value))
+
+
+def sheet_unit(unit: str) -> str:
+    """The unit that sheets are written in when lengths were given in `unit`: `in` for in and ft, else `mm`.
+
+    >>> sheet_unit("ft"), sheet_unit("cm")
+    ('in', 'mm')
+    """
+    return "in" if unit in ("in", "ft") else "mm"
 
 
 def format_length(

@@ -106,3 +106,15 @@ def test_the_job_file_page_shows_a_job_that_reads(tmp_path: Path) -> None:
     file = tmp_path / "plant.toml"
     file.write_text(block, encoding="utf-8")
     assert [placed.piece.mark for placed in read_job(str(file)).pieces] == ["T1", "S1"]
+
+
+def test_the_page_of_checks_names_every_check() -> None:
+    from develop.checks import check
+    from develop.pieces.fields import read_piece
+
+    piece, _ = read_piece(kind_of("transition"), kind_of("transition").example)
+    built = piece.build()
+    page = (DOCS / "checks.md").read_text(encoding="utf-8").lower()
+    for each in check(built.patterns[0], built.solid):
+        words = each.name.split(",")[0].replace("edge at END A", "edge").replace("edge at END B", "edge")
+        assert words.split(" against")[0].lower() in page, each.name

@@ -78,7 +78,9 @@ def test_defaults_are_those_of_the_design(name: str) -> None:
         "mark": name, "quantity": 1, "thickness": 0.0, "sizes": "mean", "seam_at": "shortest", "divisions": 24,
         "face": "outside",
     }  # fmt: skip
-    if name != "marking-band":
+    if name == "marking-band":
+        expected |= {"sizes": "outside"}  # an existing pipe is taped on its outside
+    else:
         expected |= {"material": "", "neutral_line": 0.5, "flow": "a to b"}
     if name == "straight":
         expected |= {"cut_a": "square", "cut_b": "square"}
@@ -246,6 +248,8 @@ def test_cuts(given: object, cut: Cut | None) -> None:
 @pytest.mark.parametrize(
     ("wrong", "fields"),
     [
+        ("slope 30 long 90,", {""}), (", slope 30 long 90", {""}), ("slope 30,, long 90", {""}),
+        ("slope, 30 long, 90", {""}), ("slope 30 long 90 ,", {""}), (",", {""}),
         ("slope", {""}), ("slope 30", {""}), ("slope 30 long", {""}), ("slope 30 slope 30", {""}), (30, {""}),
         ("", {""}), ("slope 30 long 90 deep 3", {""}), ("slope 90 long 0", {"slope"}), ("slope -1 long 0", {"slope"}),
         ("slope nan long nan", {"slope", "long"}), ({}, {"slope", "long"}), ({"slope": 30}, {"long"}),

@@ -8,8 +8,9 @@ import numpy as np
 
 from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
-from develop.checks.fold import closing_miss
+from develop.checks.fold import closing_miss, folded
 from develop.checks.joint import Side, joint_miss
+from develop.checks.marked import drawn_miss, marks_miss, roll_lines_miss, table_miss
 from develop.checks.openings import opening_miss
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid.meeting import MeetingEnd
@@ -18,12 +19,15 @@ from develop.solid.solid import Solid
 __all__ = ["Check", "check", "check_joint"]
 
 _RELATIVE = 1e-11
+# Both areas are sums over panels whose ends differ; on extreme shapes their rounding reaches 1e-10.
 _AREA = 1e-10
 _ROUNDING = 1e-13
 _SMALLEST = 1e-9
 # Drawn chains lie within 0.0002 mm of the exact edges.
 _DRAWN_LENGTH = 0.01
 _CLOSING = 0.01
+_DRAWN = 1e-3
+_TURN = 1e-4  # [degrees]
 
 
 @dataclass(frozen=True)
@@ -48,7 +52,9 @@ def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
     Where one sheet is developed on another surface than its edge lies on, the lengths differ.
     """
     limit = max(_SMALLEST, _RELATIVE * side.length)
-    found = Check(f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm")
+    found = Check(
+        f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"
+    )
     if side.distance != other.distance:
         return (found,)
     return (Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"), found)
@@ -84,8 +90,11 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("seam against the finished piece", true_length, drawn_length(left), limit, "mm"),
     ]
     area = solid.measures.area - sum(joint.opened for joint in solid.openings)
+    got = net.area - sum(opening.area for opening in pattern.openings)
+    lines = folded(pattern, solid)
+    roll_off, turn_off = roll_lines_miss(pattern)
     checks += [
-        Check("area against the finished side", area, net.area, max(1e-6, _AREA * area), "mm²"),
+        Check("area against the finished side", area, got, max(1e-6, _AREA * area), "mm²"),
         Check(
             "area as drawn, against the finished side",
             area,
@@ -97,10 +106,15 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check(
             "closing check, largest distance from the ends",
             0.0,
-            closing_miss(pattern, solid),
+            closing_miss(pattern, solid, lines),
             _CLOSING,
             "mm",
         ),
+        Check("outline as drawn, largest distance from the lines", 0.0, drawn_miss(pattern), _DRAWN, "mm"),
+        Check("roll lines, largest distance from the lines", 0.0, roll_off, _DRAWN, "mm"),
+        Check("roll lines, largest error of a turn", 0.0, turn_off, _TURN, "degrees"),
+        Check("table, largest error", 0.0, table_miss(pattern, solid), 1e-6, "mm"),
+        Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm"),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
     for outline, joint in zip(pattern.openings, solid.openings, strict=True):
@@ -112,7 +126,13 @@ def _opening(pattern: Pattern, solid: Solid, outline: Outline, joint: MeetingEnd
     """The checks of an opening of a header against its joint with a branch."""
     ((_, curve),) = outline.curves
     found = [
-        Check("opening, area against the joint", joint.opened, outline.area, max(1e-6, _AREA * joint.opened), "mm²"),
+        Check(
+            "opening, area against the joint",
+            joint.opened,
+            outline.area,
+            max(1e-6, _AREA * joint.opened),
+            "mm²",
+        ),
         Check(
             "opening, largest distance from the joint",
             0.0,

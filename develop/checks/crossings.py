@@ -11,6 +11,7 @@ __all__ = ["crossings", "meet", "within"]
 
 # Fine enough that a chord strays little from its curve, coarse enough for all pairs at once.
 _CHORDS = 96
+_ON = 1e-7  # [mm]
 
 
 def crossings(outline: Outline) -> int:
@@ -21,13 +22,15 @@ def crossings(outline: Outline) -> int:
     p, q = p[keep], q[keep]
     n = len(p)
 
-    def side(origin: Array, towards: Array, point: Array) -> Array:
-        d = (towards - origin)[:, None]
-        r = point[None] - origin[:, None]
-        return np.asarray(d[..., 0] * r[..., 1] - d[..., 1] * r[..., 0])
+    along = (q - p) / np.linalg.norm(q - p, axis=1)[:, None]
 
-    apart_p, apart_q = side(p, q, p), side(p, q, q)
-    across = apart_p * apart_q < 0.0
+    def side(point: Array) -> Array:
+        """How far left of each line [mm]; what rounding may have moved counts as on it."""
+        r = point[None] - p[:, None]
+        apart = along[:, None, 0] * r[..., 1] - along[:, None, 1] * r[..., 0]
+        return np.asarray(np.where(np.abs(apart) < _ON, 0.0, apart))
+
+    across = side(p) * side(q) < 0.0
     both = across & across.T
     i, j = np.nonzero(np.triu(both, k=2))
     return int(np.count_nonzero((j - i) != n - 1))

@@ -104,9 +104,12 @@ def placed(pattern: Pattern, solid: Solid, points: Array) -> tuple[Array, Array]
     return points, np.cos(lean) * up + np.sin(lean) * np.cross(along, up)
 
 
-def closing_miss(pattern: Pattern, solid: Solid) -> float:
-    """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first."""
-    a, b, normal = folded(pattern, solid)
+def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Array] | None = None) -> float:
+    """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first.
+
+    lines: what `folded` returns, if the caller has it.
+    """
+    a, b, normal = folded(pattern, solid) if lines is None else lines
     lift = solid.distance * normal
     closing = max(np.linalg.norm(a[-1] - a[0]), np.linalg.norm(b[-1] - b[0]))
     u = pattern.rulings.u[::-1] if pattern.face == "inside" else pattern.rulings.u

@@ -28,7 +28,7 @@ def command(summary: str) -> click.Command:
     return FieldsCommand(
         "girth",
         _show,
-        options=[_DIVISIONS, JSON, units_option("unit of bare numbers and of the table")],
+        options=[_DIVISIONS, JSON, units_option("unit of bare numbers; in and ft give a table in inches")],
         argument=_SECTION,
         text=f"Show {summary}.\n\n"
         "The points start at the right and go round anticlockwise; x is to the right "

@@ -12,6 +12,7 @@ from develop.errors import InputError, Problem
 from develop.job.file import read_job
 from develop.job.pipeline import make
 from develop.pieces.fields import Declared
+from develop.units import sheet_unit
 
 __all__ = ["command"]
 
@@ -39,9 +40,10 @@ def _make_all(values: Mapping[str, object]) -> int:
     folder = str(values["out"])
     worst = 0
     problems: list[Problem] = []
-    for placed in read_job(str(values["file"])).pieces:
+    job = read_job(str(values["file"]))
+    for placed in job.pieces:
         try:
-            outcome = make(placed.piece, folder=folder, formats=formats)
+            outcome = make(placed.piece, folder=folder, formats=formats, units=sheet_unit(job.units))
         except InputError as error:
             problems += [each.at(placed.place(each.field)) for each in error.problems]
         else:

@@ -11,9 +11,10 @@ from develop.errors import InputError, Problem
 from develop.job.pipeline import FORMATS
 from develop.pieces.field_types import Choice, Text
 from develop.pieces.fields import Declared, read_fields
+from develop.units import UNITS
 from develop.wording import listed, near_miss, nearest, shown
 
-__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "units_option"]
+__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "Words", "units_option"]
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -94,11 +95,12 @@ FORMATS_OPTION = Declared(
 )
 JSON = Declared(name="json", type=Flag(), help="data alone, in mm", required=False, default=False)
 _SHORT = {"-o": "--out"}
+_UNITS = Choice(tuple(UNITS))
 
 
 def units_option(text: str) -> Declared:
-    """`--units mm|in`."""
-    return Declared(name="units", type=Choice(("mm", "in")), help=text, required=False, default="mm")
+    """`--units`, one of those that a job file can have."""
+    return Declared(name="units", type=_UNITS, help=text, required=False, default="mm")
 
 
 class FieldsCommand(click.Command):
@@ -155,8 +157,11 @@ class FieldsCommand(click.Command):
     ) -> dict[str, object]:
         """The values by name; a needed option that was misspelt is one problem, not two."""
         declared = (() if self.argument is None else (self.argument,)) + tuple(self.declared.values())
-        unit = str(given.get("units", "mm"))
-        values, found = read_fields(declared, given, unit=unit if unit in ("mm", "in") else "mm")
+        try:
+            unit = _UNITS.read(given.get("units", "mm"), unit="")
+        except InputError:
+            unit = "mm"  # the units are one of the problems then
+        values, found = read_fields(declared, given, unit=unit)
         problems += [self._named(each) for each in found if each.field not in meant or each.field in given]
         if problems:
             raise InputError(problems)

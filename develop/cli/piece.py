@@ -14,6 +14,7 @@ from develop.job.pipeline import make
 from develop.pieces import KINDS, kind_of
 from develop.pieces.fields import fields_of
 from develop.pieces.reference import command_line
+from develop.units import sheet_unit
 
 __all__ = ["piece_command"]
 
@@ -29,7 +30,9 @@ def piece_command(name: str) -> click.Command:
         formats = values["formats"]
         assert isinstance(formats, tuple)
         try:
-            outcome = make(piece, folder=str(values["out"]), formats=formats)
+            outcome = make(
+                piece, folder=str(values["out"]), formats=formats, units=sheet_unit(str(values["units"]))
+            )
         except InputError as error:
             raise InputError(
                 [replace(each, field=options.get(each.field, each.field)) for each in error.problems]
@@ -39,9 +42,14 @@ def piece_command(name: str) -> click.Command:
     return FieldsCommand(
         name,
         action,
-        options=[*fields, OUT, FORMATS_OPTION, units_option("unit of lengths given as bare numbers")],
+        options=[
+            *fields,
+            OUT,
+            FORMATS_OPTION,
+            units_option("unit of bare numbers; in and ft give sheets in inches"),
+        ],
         text=f"Make the pattern of {KINDS[name][2]}.\n\nLengths take mm, cm, m, in or ft, and fractions: "
-        "12-3/8 in, 1' 6\". Directions are read facing end B: degrees anticlockwise from right, a word, or a "
-        "clock time.",
+        "12-3/8 in, 1' 6\". Directions are read facing end B (in front of it, looking in): degrees "
+        "anticlockwise from right, a word, or a clock time.",
         epilog=f"\b\nFor example:\n  {command_line(kind)}",
     )

@@ -12,6 +12,8 @@ __all__ = ["report"]
 def report(outcome: Outcome, folder: str) -> int:
     """Say what was written and what its checks found; 0 when all hold, else 1."""
     wrote = f"{outcome.mark}: wrote {', '.join(outcome.files)} in {folder}"
+    if max(outcome.sheets, default=1) > 1:
+        wrote += f"; {sum(outcome.sheets)} large sheets in the PDF, to be laid together"
     failed = outcome.failed
     if not failed:
         count = len(outcome.checks)

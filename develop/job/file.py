@@ -61,9 +61,10 @@ class Placed:
 
 @dataclass(frozen=True)
 class Job:
-    """A job as read: its name, and its pieces in the file's order."""
+    """A job as read: its name, the unit of its bare lengths, and its pieces in the file's order."""
 
     name: str
+    units: str
     pieces: tuple[Placed, ...]
 
 
@@ -93,7 +94,7 @@ def read_job(file: str) -> Job:
     _check_marks(read, raw, places, problems)
     if problems:
         raise InputError(_once(problems))
-    return Job(name=name, pieces=tuple(placed for _, placed in read))
+    return Job(name=name, units=unit, pieces=tuple(placed for _, placed in read))
 
 
 def _text_of(file: str) -> str:
@@ -267,7 +268,7 @@ def _check_marks(
             continue
         given = raw[index]
         how = "is" if given and "mark" in given else "is by default"
-        where = places.of("piece", first[key])
+        where = places.of("piece", first[key], "mark")
         problems.append(
             Problem(
                 "mark",

@@ -23,11 +23,15 @@ _DRAWN = {"svg", "pdf"}
 
 @dataclass(frozen=True)
 class Outcome:
-    """What was written for one piece, and what the checks found."""
+    """What was written for one piece, and what the checks found.
+
+    sheets: how many large sheets each pattern takes in the PDF, if that was written.
+    """
 
     mark: str
     files: tuple[str, ...]
     checks: tuple[Check, ...]
+    sheets: tuple[int, ...] = ()
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -35,25 +39,33 @@ class Outcome:
         return tuple(check for check in self.checks if not check.holds)
 
 
-def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS) -> Outcome:
+def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS, units: str = "mm") -> Outcome:
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
-    Raises Refusal for a piece that cannot be, WriteError for a place that cannot be written.
+    units: of the figures on the sheets, `mm` or `in`; the record is always in mm. Raises Refusal
+    for a piece that cannot be, WriteError for a place that cannot be written.
     """
-    builds = builds_of(piece)
+    builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)
     files: dict[str, bytes] = {}
+    sheets: tuple[int, ...] = ()
     if _DRAWN.intersection(formats):
         from develop.pattern.layout import lettered
 
         builds = tuple(
             built.with_patterns([lettered(pattern) for pattern in built.patterns]) for built in builds
         )
-    for each in FORMATS:
-        if each in formats:
+    for each in (each for each in FORMATS if each in formats):
+        if each == "pdf":
+            from develop.outputs.pdf import printed
+
+            files[f"{piece.mark}.pdf"], sheets = printed(
+                [pattern for built in builds for pattern in built.patterns]
+            )
+        else:
             files |= _files(each, piece, builds, checks)
     write_all(folder, files)
-    return Outcome(mark=piece.mark, files=tuple(files), checks=checks)
+    return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets)
 
 
 def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
@@ -100,10 +112,6 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         from develop.outputs.svg import svg
 
         return {f"{pattern.mark}.svg": svg(pattern) for pattern in patterns}
-    if ending == "pdf":
-        from develop.outputs.pdf import pdf
-
-        return {f"{mark}.pdf": pdf(patterns)}
     if ending == "json":
         from develop.outputs.record import record
 
@@ -125,4 +133,4 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         return {f"{mark}.png": flat_picture(builds[0].parts, title)}
     from develop.outputs.picture import picture
 
-    return {f"{mark}.png": picture(builds[0].placed, title)}
+    return {f"{mark}.png": picture(builds[0].placed, patterns[0].facts[:4])}

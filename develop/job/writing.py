@@ -11,6 +11,14 @@ from develop.errors import WriteError
 
 __all__ = ["write_all"]
 
+_ELSEWHERE = "give another folder"
+_REMEDIES: dict[type[Exception], str] = {
+    FileExistsError: "a file is in its place: give another folder, or move the file away",
+    NotADirectoryError: "a file is where a folder should be: give another folder, or move the file away",
+    IsADirectoryError: "move that folder away, or give another folder or mark",
+    PermissionError: "give a folder that you may write in",
+}
+
 
 def write_all(folder: str, files: Mapping[str, bytes]) -> None:
     """Write files by name into a folder, which is made if it is not there.
@@ -68,4 +76,5 @@ def _copy(source: str, target: str) -> None:
 
 def _failed(place: str, error: Exception) -> WriteError:
     reason = error.strerror if isinstance(error, OSError) and error.strerror else str(error)
-    return WriteError(f"{place}: cannot be written: {reason}")
+    remedy = next((words for kind, words in _REMEDIES.items() if isinstance(error, kind)), _ELSEWHERE)
+    return WriteError(f"{place}: cannot be written: {reason}; {remedy}")

@@ -6,12 +6,12 @@ matplotlib itself is not imported; its folder is asked for, which costs nothing.
 from __future__ import annotations
 
 import importlib.util
-from functools import cache
+from functools import cache, lru_cache
 from pathlib import Path
 
 from develop.errors import WriteError
 
-__all__ = ["FACE", "register", "width"]
+__all__ = ["CAPITAL", "FACE", "register", "width"]
 
 FACE = "DejaVuSans"
 CAPITAL = 0.729  # height of a capital over the size of the type
@@ -39,5 +39,11 @@ def register() -> dict[int, float]:
 
 def width(text: str, height: float) -> float:
     """Width of a line of text whose capitals are `height` high, in the unit of `height`."""
+    return height / CAPITAL * _width(text)
+
+
+@lru_cache(maxsize=4096)
+def _width(text: str) -> float:
+    """Width of a line of text over the size of the type; the cells of tables come again and again."""
     widths = register()
-    return height / CAPITAL * sum(widths.get(ord(letter), 0.6) for letter in text)
+    return sum(widths.get(ord(letter), 0.6) for letter in text)

@@ -22,7 +22,7 @@ __all__ = ["POINT", "Ink", "PatternPen"]
 POINT = 72.0 / 25.4
 """Points of a PDF in a mm."""
 
-_WIDTHS = {CUT: 0.35, NET: 0.25, ROLL_LINES: 0.18, PRESS_LINES: 0.25, WITNESS_MARKS: 0.35, TEXT: 0.25}  # [mm]
+_WIDTHS = {CUT: 0.5, NET: 0.25, ROLL_LINES: 0.18, PRESS_LINES: 0.25, WITNESS_MARKS: 0.25, TEXT: 0.25}  # [mm]
 _DASHES = {NET: (4.0, 1.5)}  # [mm]
 
 
@@ -73,7 +73,10 @@ class Ink:
     def text(
         self, x: float, y: float, text: str, height: float, *, angle: float = 0.0, anchor: float = 0.0
     ) -> None:
-        """A line of text, capitals of `height` [mm]; anchor: 0 its left end, 0.5 middle, 1 right end."""
+        """A line of text, capitals of `height` [mm], turned by `angle` [rad].
+
+        anchor: which of its places is at (x, y) [mm], 0 its left end, 0.5 middle, 1 right end.
+        """
         wide = width(text, height) if anchor or angle else len(text) * height * 1.4
         reach = wide + 2.0 * height
         if not self._sees(x - reach, y - reach, x + reach, y + reach):
@@ -82,7 +85,11 @@ class Ink:
         x, y = x - anchor * wide * cos, y - anchor * wide * sin
         words = self._canvas.beginText()
         words.setFont(FACE, round(height / CAPITAL * POINT, 3))
-        words.setTextTransform(cos, sin, -sin, cos, (x - self._left) * POINT, (y - self._bottom) * POINT)
+        place = ((x - self._left) * POINT, (y - self._bottom) * POINT)
+        if angle:
+            words.setTextTransform(cos, sin, -sin, cos, *place)
+        else:  # the same in a third of the time
+            words.setTextOrigin(*place)
         words.textOut(text)
         self._canvas.drawText(words)
 

@@ -1,4 +1,7 @@
-"""PDF at true scale: one large sheet for each pattern, in as many pages as a sheet over 5080 mm needs."""
+"""PDF at true scale: one large sheet for each pattern, then its pages to mark it out by tape.
+
+A sheet over 5080 mm goes on to further pages.
+"""
 
 from __future__ import annotations
 
@@ -13,6 +16,7 @@ import numpy as np
 from develop.outputs.fonts import FACE, register
 from develop.outputs.ink import POINT, Ink, PatternPen
 from develop.outputs.panel import Panel, panels
+from develop.outputs.tape import MARGIN, paper, tape_pages
 from develop.pattern.curve import Array
 from develop.pattern.drawing import draw
 from develop.pattern.pattern import Pattern
@@ -20,7 +24,7 @@ from develop.pattern.pattern import Pattern
 if TYPE_CHECKING:
     from reportlab.pdfgen.canvas import Canvas
 
-__all__ = ["pdf"]
+__all__ = ["pdf", "printed"]
 
 _LARGEST = 5080.0  # [mm] 14400 points: what every viewer takes for a page
 _MARGIN = 12.0  # [mm] printers leave up to 10 empty
@@ -48,12 +52,16 @@ class _Sheet:
     corner: tuple[float, float]
 
 
-def pdf(patterns: Sequence[Pattern], *, units: str = "mm") -> bytes:
-    """The patterns as a PDF file, one sheet each, true to scale.
+def pdf(patterns: Sequence[Pattern]) -> bytes:
+    """The patterns as a PDF file: a sheet each, true to scale, then the pages for the tape.
 
-    units: of the figures in the tables, `mm` or `in`; the drawing is the same.
     Raises WriteError if the type face is missing.
     """
+    return printed(patterns)[0]
+
+
+def printed(patterns: Sequence[Pattern]) -> tuple[bytes, tuple[int, ...]]:
+    """The PDF file, and how many large sheets each pattern takes in it. Raises WriteError as `pdf`."""
     from reportlab.pdfgen.canvas import Canvas
 
     register()
@@ -61,10 +69,20 @@ def pdf(patterns: Sequence[Pattern], *, units: str = "mm") -> bytes:
     canvas = Canvas(buffer, invariant=1, pageCompression=1, pdfVersion=(1, 6), initialFontName=FACE)
     _describe(canvas, ", ".join(pattern.mark for pattern in patterns))
     canvas.setViewerPreference("PrintScaling", "None")
+    counts = tuple(_draw_sheet(canvas, pattern, _arranged(pattern)) for pattern in patterns)
     for pattern in patterns:
-        _draw_sheet(canvas, pattern, _arranged(pattern, units))
+        _draw_tape_pages(canvas, pattern)
     canvas.save()
-    return buffer.getvalue()
+    return buffer.getvalue(), counts
+
+
+def _draw_tape_pages(canvas: Canvas, pattern: Pattern) -> None:
+    size = paper(pattern)
+    wide, high = (side - 2.0 * MARGIN for side in size)
+    for page in tape_pages(pattern):
+        canvas.setPageSize((size[0] * POINT, size[1] * POINT))
+        page.draw(Ink(canvas, (0.0, 0.0, wide, high), MARGIN), high)
+        canvas.showPage()
 
 
 def _describe(canvas: Canvas, title: str) -> None:
@@ -92,7 +110,7 @@ def _describe(canvas: Canvas, title: str) -> None:
     canvas._doc.signature = md5(title.encode(), usedforsecurity=False)
 
 
-def _arranged(pattern: Pattern, units: str) -> _Sheet:
+def _arranged(pattern: Pattern) -> _Sheet:
     """The panel beside the pattern or below it: few pages, then a small sheet, then not a long strip."""
     points = np.vstack(
         [curve.polyline(0.01) for outline in (pattern.cut, pattern.net) for _, curve in outline.curves]
@@ -102,7 +120,7 @@ def _arranged(pattern: Pattern, units: str) -> _Sheet:
     inner = _LARGEST - 2.0 * _MARGIN - _STRIP
     heights = [min(h, inner) for h in (tall, 115.0, 150.0, 200.0, 270.0, 360.0, 500.0, 700.0, 1000.0)]
     choices = []
-    for panel in panels(pattern, units=units, tiny=max(wide, tall) < _TINY, heights=heights):
+    for panel in panels(pattern, tiny=max(wide, tall) < _TINY, heights=heights):
         beside = (wide + 3.0 * _AROUND + panel.wide, max(tall + 2.0 * _AROUND, panel.high))
         below = (max(wide + 2.0 * _AROUND, panel.wide), tall + 3.0 * _AROUND + panel.high)
         choices.append((beside, panel, True))
@@ -129,8 +147,8 @@ def _count(size: float, inner: float) -> int:
     return 1 if size <= inner else math.ceil((size - _OVERLAP) / (inner - _OVERLAP))
 
 
-def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> None:
-    """All pages of one sheet, from the top left, along the rows."""
+def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> int:
+    """All pages of one sheet, from the top left, along the rows; returns how many they are."""
     inner = _LARGEST - 2.0 * _MARGIN - _STRIP
     columns, rows = _count(sheet.wide, inner), _count(sheet.high, inner)
     wide = math.ceil((sheet.wide + (columns - 1) * _OVERLAP) / columns)
@@ -150,6 +168,7 @@ def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> None:
             for y in ([bottom + high] if row else []) + ([bottom + _OVERLAP] if row < rows - 1 else []):
                 _match_line(ink, (left, y - _OVERLAP / 2.0), (left + wide, y - _OVERLAP / 2.0))
             canvas.showPage()
+    return rows * columns
 
 
 def _heading(pattern: Pattern, row: int, column: int, rows: int, columns: int) -> str:

@@ -17,6 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from develop.pattern.curve import Array
+from develop.pattern.lettering import CAPITAL, text_width
 
 __all__ = ["Piece", "picture"]
 
@@ -25,6 +26,8 @@ _DOTS = 150  # [1/in]
 _OUTSIDE, _INSIDE = np.array([0.56, 0.64, 0.72]), np.array([0.47, 0.45, 0.43])
 _EDGE, _SEAM, _TOP = "#1b2530", "#b3261e", "#1b2530"
 _RIM = 240
+_BETWEEN = "  ·  "
+_TYPE = 14.0  # size of the caption [points]
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
 _CELL = 1.0 / 40.0  # length of a cell along a wall over the size of the piece
 _ABOUT = 24  # cells that lie about a place on a wall, at least one farther along it
@@ -74,10 +77,11 @@ class _Camera:
         return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
 
 
-def picture(pieces: Sequence[Piece], title: str) -> bytes:
+def picture(pieces: Sequence[Piece], facts: Sequence[str]) -> bytes:
     """PNG of a piece in perspective, equal scale in all directions; the same piece gives the same bytes.
 
-    pieces: its parts where they stand, the first with END A, the last with END B.
+    pieces: its parts where they stand, the first with END A, the last with END B. facts: what stands
+    above it, in one line or two.
     """
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
@@ -93,7 +97,7 @@ def picture(pieces: Sequence[Piece], title: str) -> bytes:
     with matplotlib.rc_context():
         matplotlib.rcdefaults()  # a user's own settings must not change the picture
         figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
-        axes = figure.add_axes((0.02, 0.02, 0.96, 0.88))
+        axes = figure.add_axes((0.02, 0.02, 0.96, 0.86))
         axes.set_axis_off()
         axes.set_aspect("equal")
         polygons, fill, stroke, widths = _scene(camera, pieces, _CELL * size)
@@ -106,6 +110,7 @@ def picture(pieces: Sequence[Piece], title: str) -> bytes:
         corners = camera.project(vertices)
         for text, start, end, colour in _words(camera, pieces):
             axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
+            axes.plot(*start, color=colour, marker="o", markersize=3.2)
             ahead = (end - start) / np.hypot(*(end - start))
             x, y = end + 0.012 * ahead
             axes.text(
@@ -116,14 +121,30 @@ def picture(pieces: Sequence[Piece], title: str) -> bytes:
         pad = 0.19 * max(x1 - x0, y1 - y0)
         axes.set_xlim(x0 - pad, x1 + pad)
         axes.set_ylim(y0 - pad, y1 + pad)
-        size_of_title = min(14.0, 14.0 * 64.0 / max(len(title), 1))
+        title, size_of_title = _caption(facts)
         figure.text(
-            0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE, parse_math=False
-        )
+            0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE,
+            linespacing=1.4, parse_math=False,
+        )  # fmt: skip
         buffer = io.BytesIO()
         FigureCanvasAgg(figure)
         figure.savefig(buffer, format="png", metadata={"Software": None})
     return buffer.getvalue()
+
+
+def _caption(facts: Sequence[str]) -> tuple[str, float]:
+    """The facts in one line or, where that is too long, two of like length; and the size of the type."""
+    lines = [_BETWEEN.join(facts)]
+    if _size_of(lines) < _TYPE and len(facts) > 1:
+        ways = [[_BETWEEN.join(facts[:n]), _BETWEEN.join(facts[n:])] for n in range(1, len(facts))]
+        lines = max(ways, key=_size_of)
+    return "\n".join(lines), _size_of(lines)
+
+
+def _size_of(lines: list[str]) -> float:
+    """The size of type [points] at which the lines have room, at most `_TYPE`."""
+    widest = max(text_width(line, CAPITAL) for line in lines)
+    return min(_TYPE, 0.95 * _SIZE[0] * 72.0 / max(widest, 1.0))
 
 
 def _side(way: float, back: str, ahead: str) -> str:
@@ -139,6 +160,7 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
     rim_a, rim_b = rims[0]
     height = (rim_a[:, 1].mean() + rim_b[:, 1].mean()) / 2.0
     middle = corners.mean(axis=0)
+    away = np.zeros(2)
     for text, rim in (("END A", rim_a), ("END B", rims[-1][1])):
         places = camera.project(rim)
         away = places.mean(axis=0) - middle
@@ -146,11 +168,14 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
         start = places[int(np.argmax(places @ away))]
         words.append((text, start, start + 0.07 * away / np.hypot(*away), _EDGE))
     ends: list[Array] = []
-    lines = (("TOP", first.top_line, 0.6, _TOP), ("SEAM", first.seam_line, 0.35, _SEAM))
-    for text, line, share, colour in lines:
+    seam = first.seam_line
+    lines = (
+        ("TOP", first.top_line, 0.6, _TOP, True),
+        ("SEAM", seam, 0.35, _SEAM, seam[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])),
+    )
+    for text, line, share, colour, up in lines:
         start = camera.project(line[0] + share * (line[1] - line[0]))
         column = corners[np.abs(corners[:, 0] - start[0]) < 0.04]
-        up = text == "TOP" or line[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])
         edge = float(column[:, 1].max() + 0.06 if up else column[:, 1].min() - 0.06)
         end = np.array([start[0], edge])
         for other in ends:  # a seam at the top: its word beside the other
@@ -158,7 +183,31 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
                 end[0] = other[0] + math.copysign(0.2, end[0] - other[0])
         ends.append(end)
         words.append((text, start, end, colour))
+    # Out of the picture of the piece where no other word is, and never to the left, as that would read left.
+    # Of several parts only the first stands square to the view that right is read in.
+    start = camera.project(_right_of(rim_b if len(rims) == 1 else rim_a))
+    ways = (22, 40, 0, 60, 75, -20) if away[0] > 0.0 else (-90, -75, -60, -45, -30, -15, 0, 15, 30)
+    tries = [_way_out(corners, start, math.radians(way), by) for by in (0.06, 0.12, 0.18) for way in ways]
+    apart = [min(float(np.hypot(*(end - word[2]))) for word in words) for end in tries]
+    clear = next((n for n, gap in enumerate(apart) if gap > 0.13), int(np.argmax(apart)))
+    words.append(("RIGHT", start, tries[clear], _EDGE))
     return words
+
+
+def _way_out(points: Array, start: Array, way: float, by: float) -> Array:
+    """The place (2,) outside the hull of points (n, 2) `by` so much, from `start` in a direction [rad]."""
+    ahead = np.array([math.cos(way), math.sin(way)])
+    turn = way + np.radians(np.arange(-88.0, 89.0, 2.0))
+    normal = np.stack([np.cos(turn), np.sin(turn)])
+    far = ((points @ normal).max(axis=0) - start @ normal) / (ahead @ normal)
+    return np.asarray(start + ahead * (max(float(far.min()), 0.0) + by))
+
+
+def _right_of(rim: Array) -> Array:
+    """The point (3,) of a rim (n, 3) to the right of its centre, for one who faces END B."""
+    centre = (rim.max(axis=0) + rim.min(axis=0)) / 2.0
+    x, y, _ = (rim - centre).T
+    return np.asarray(rim[int(np.argmin(np.abs(np.arctan2(y, x))))])
 
 
 def _lines(piece: Piece) -> list[tuple[Array, str, float]]:

@@ -16,7 +16,8 @@ __all__ = ["Verdict", "record"]
 
 # [mm] The Béziers keep within 0.0002 mm of the true curve; together that is 0.001 mm.
 _CHORDS = 0.0008
-_DIGITS = 6
+_DIGITS = 6  # of a coordinate [mm]
+_DEGREES = 9
 
 
 class Verdict(Protocol):
@@ -45,8 +46,8 @@ def record(
 ) -> bytes:
     """The record of one piece as JSON: mm and degrees.
 
-    Coordinates are rounded to 1e-6 mm; lengths, areas and checks keep all their digits. An
-    infinite roll radius is null. fields: the fields as understood, ready for JSON.
+    Coordinates are rounded to 1e-6 mm, directions to 1e-9 degrees; lengths, areas and checks keep
+    all their digits. An infinite roll radius is null. fields: the fields as understood, ready for JSON.
     """
     content = {
         "mark": mark,
@@ -98,12 +99,16 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
         ],
         "divisions": [
             {
-                "direction": math.degrees(division.direction),
+                "direction": _direction(division.direction),
                 "a": _rounded(division.a),
                 "b": _rounded(division.b),
                 "length": float(division.length),
             }
             for division in pattern.divisions
+        ],
+        "marks": [
+            {"edge": mark.edge, "text": mark.text, "at": _rounded(mark.at), "arc": float(mark.arc)}
+            for mark in pattern.marks
         ],
         **({"figures": [_figures(each) for each in pattern.figures]} if pattern.figures else {}),
     }
@@ -140,6 +145,11 @@ def _points(outline: Outline) -> list[list[float]]:
 
 def _rounded(point: Array) -> list[float]:
     return [round(float(value), _DIGITS) + 0.0 for value in point]
+
+
+def _direction(angle: float) -> float:
+    """A direction [rad] in degrees from 0, below 360, without the last digits that pi has cost."""
+    return round(math.degrees(angle), _DEGREES) % 360.0
 
 
 def _finite(value: float) -> float | None:

@@ -66,6 +66,8 @@ class _SvgPen:
 
     def layer(self, name: str) -> None:
         style = {"id": name, "fill": "none", "stroke": _COLOURS[name], "stroke-width": _HAIRLINE}
+        if name == NET:
+            style["stroke-dasharray"] = "6 3"
         self._group = ET.SubElement(self._root, "g", style)
 
     def contour(self, outline: Outline) -> None:

@@ -14,8 +14,9 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from develop.pattern.curve import Array, Curve
+from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.lettering import ASCENT, DESCENT, Boxes, arrow_box, text_height, text_width, upright
+from develop.pattern.numbering import Numbers
 from develop.pattern.pattern import Division, Label, Outline, Pattern, RollLine, WitnessMark
 from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, left_of, rows_of
 
@@ -24,6 +25,7 @@ __all__ = ["lay_out", "lettered"]
 _FLOW = "FLOW"
 _TINIEST = 0.02  # [mm]
 _LINE = 1.75  # from baseline to baseline over the height of capitals
+_MOST_OF_SEAM = 0.6  # share of a seam that a word along it takes, if it is legible so
 _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0.82, 0.12, 0.88])
 
 
@@ -51,12 +53,13 @@ def lettered(pattern: Pattern) -> Pattern:
         marks=pattern.marks,
         lines=pattern.lines,
         divisions=rows,
-        seam_words=("SEAM", "SEAM") if rows else ("", ""),
         full_lines=pattern.full_lines,
         openings=pattern.openings,
         places=None if rows else pattern.places,
         avoid=pattern.dashed,
         arrow=pattern.arrow,
+        seam_words=pattern.seam_words if rows else ("", ""),
+        cut=pattern.cut,
     )
     return replace(pattern, labels=labels, arrows=arrows)
 
@@ -78,6 +81,7 @@ def lay_out(
     openings: Sequence[Outline] = (),
     places: Array | None = None,
     arrow: str = _FLOW,
+    cut: Outline | None = None,
 ) -> tuple[tuple[Label, ...], tuple[tuple[Array, str], ...]]:
     """Labels and arrows of a sheet, none over another, over a mark or over the outline.
 
@@ -88,13 +92,21 @@ def lay_out(
     numbered at the edges where that stays clear. avoid: further curves to be kept clear.
     openings: no word stands in them. places: lines (n, 2, 2) [mm] that words may stand on, where
     there are no divisions. arrow: the word at the arrow of the flow.
+    seam_words: along the left and the right seam. cut: what leaves the shear; where it goes on
+    beyond a seam, that is called LAP.
 
     What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
     height = text_height(net)
     words = max(SMALLEST, 0.8 * height)
     sheet = Sheet(net, marks, lines, avoid, full_lines, openings)
-    sheet.write([*_witness_words(marks, sheet.lengths, height, words), *_end_words(net, height)])
+    # First what has one place: along a short seam the words for its corners can stand farther off.
+    sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
+    sheet.write(_witness_words(marks, sheet.lengths, height, words))
+    fans = any(line.press for line in lines)
+    numbers = Numbers(divisions, marks, tick=height, height=max(SMALLEST, 0.5 * height), fans=fans)
+    numbers.write_first(sheet)
+    sheet.write(_end_words(net, height))
     if places is not None and not divisions:
         strip = _Strip(places[:, 0], places[:, 1])
     else:
@@ -105,10 +117,9 @@ def lay_out(
         # On a narrow ring the mark is worth more than all the facts too small to be read.
         block = _facts(sheet, strip, tuple(facts[:1]), height)
     arrows = _flow(sheet, strip, block, flow, height, arrow)
-    sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
     sheet.write(_press_words(lines, max(SMALLEST, 0.5 * height)))
-    _numbers(sheet, divisions, height, max(SMALLEST, 0.5 * height), fans=any(line.press for line in lines))
-    return tuple(sheet.labels), arrows
+    numbers.write_others(sheet)
+    return tuple(sheet.labels) + _lap_words(net, cut, words), arrows
 
 
 @dataclass(frozen=True)
@@ -171,7 +182,10 @@ def _witness_words(marks: Sequence[WitnessMark], lengths: Array, height: float, 
             # A corner's word stands in one row with the others, beyond the ticks and their numbers.
             beyond = (length or 2.0 * height) + 0.4 * size + tall
             deeper = height + 0.4 * size + tall
-            on = np.array([(x, y) for y in (beyond, deeper) for x in (0.0, beside, -beside)])
+            farther = beside + 2.0 * size  # clear of a word along the seam
+            on = np.array(
+                [(x, y) for y in (beyond, deeper) for x in (0.0, beside, -beside, farther, -farther)]
+            )
             return mark.at + on[:, :1] * aside + on[:, 1:] * mark.inward, np.full(len(on), angle)
 
         return Word(mark.text, size, places)
@@ -219,7 +233,7 @@ def _facts(
         for lines in _wrapped(facts, narrow=share > 0.6):
             wide, tall = _block_size(lines, size)
             angles = np.tile((square, lengthwise)[way], 3)
-            boxes = boxes_at(centres, angles, wide, tall)
+            boxes = boxes_at(centres, angles, width=wide, height=tall)
             good = np.flatnonzero(sheet.free(boxes, 0.4 * size))
             if len(good):
                 best = rows_of(boxes, good[:1])
@@ -286,7 +300,8 @@ def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: floa
     shares = np.array([0.5, 0.4, 0.6, 0.3, 0.7, 0.2, 0.8])[:, None]
 
     def word(text: str, start: Array, end: Array) -> Word:
-        ahead = (end - start) / np.hypot(*(end - start))
+        length = float(np.hypot(*(end - start)))
+        ahead = (end - start) / length
         aside, angle = np.array([-ahead[1], ahead[0]]), upright(math.atan2(ahead[1], ahead[0]))
         on = start + shares * (end - start)
 
@@ -294,7 +309,9 @@ def _seam_words(seams: tuple[Array, Array], texts: tuple[str, str], height: floa
             off = aside * size * (0.6 + (ASCENT + DESCENT) / 2.0)
             return np.vstack([on - off, on + off]), np.full(2 * len(on), angle)  # one side is outside
 
-        return Word(text, height, places)
+        # Much longer, it would take the place of what belongs into the corners.
+        fitting = _MOST_OF_SEAM * length / text_width(text, 1.0)
+        return Word(text, min(height, max(SMALLEST, fitting)), places)
 
     lines = [np.asarray(seam, dtype=float) for seam in seams]
     return [
@@ -320,46 +337,24 @@ def _press_words(lines: Sequence[RollLine], height: float) -> list[Word]:
     return [word(line) for line in lines if line.press]
 
 
-def _numbers(
-    sheet: Sheet, divisions: Sequence[Division], tick: float, height: float, *, fans: bool = False
-) -> None:
-    """The numbers of the divisions at both edges; every second, third, ... where they are close.
-
-    fans: lines meet in corners, and are numbered only at the edge where they lie farther apart.
-    """
-    rows = [row for row in divisions if np.hypot(*(row.b - row.a)) > 0.0]
-    edges: tuple[int, ...] = (0, 1) if sheet.both_ends else (0,)  # at a point there is no room for numbers
-    if fans and len(edges) > 1 and len(rows) > 1:
-        ends = np.array([(row.a, row.b) for row in rows])
-        edges = (int(np.argmax(np.median(np.hypot(*np.moveaxis(np.diff(ends, axis=0), -1, 0)), axis=0))),)
-    for edge in edges if len(rows) > 1 else ():
-        at = np.array([(row.a, row.b)[edge] for row in rows])
-        ahead = np.array([(row.b, row.a)[edge] for row in rows]) - at
-        length = np.hypot(*ahead.T)
-        ahead /= length[:, None]
-        deep = np.minimum(tick, length / 4.0) + height * (0.4 + (ASCENT + DESCENT) / 2.0)
-        centres = at + ahead * deep[:, None]
-        width = np.array([text_width(str(row.number), height) for row in rows])
-        pitch = float(np.hypot(*np.diff(centres, axis=0).T).min())
-        stride = next((n for n in (1, 2, 3, 4, 6, 12, 24) if n * pitch > 1.4 * width.max()), 0)
-        chosen = np.array([n for n, row in enumerate(rows) if stride and row.number % stride == 0], dtype=int)
-        aside = np.stack([ahead[:, 1], -ahead[:, 0]], axis=1)
-        angles = np.array([upright(math.atan2(y, x)) for x, y in aside])
-        along = np.stack([np.cos(angles), np.sin(angles)], axis=1)
-        half = np.stack([width, np.full(len(rows), height * (ASCENT + DESCENT))], axis=1) / 2.0
-        found: dict[int, Array] = {}
-        for side in (0.0, 1.0, -1.0):  # on the line, right of it, left of it
-            left = np.array([n for n in chosen if n not in found], dtype=int)
-            if len(left):
-                moved = centres[left] + side * aside[left] * (width[left] / 2.0 + 0.45 * height)[:, None]
-                good = sheet.free(Boxes(moved, along[left], half[left]), 0.2 * height)
-                found.update(zip(left[good].tolist(), moved[good], strict=True))
-        kept: list[int] = []
-        for n in sorted(found):
-            apart = np.hypot(*half[n]) + np.hypot(*half[kept[-1]]) if kept else 0.0
-            if not kept or np.hypot(*(found[n] - found[kept[-1]])) >= apart:
-                kept.append(n)
-        # A few numbers here and there would puzzle more than they help.
-        if 2 * len(kept) > len(chosen):
-            sheet.take(Boxes(np.array([found[n] for n in kept]), along[kept], half[kept]))
-            sheet.labels += [label_at(str(rows[n].number), found[n], float(angles[n]), height) for n in kept]
+def _lap_words(net: Outline, cut: Outline | None, height: float) -> tuple[Label, ...]:
+    """LAP, along the middle of what is cut beyond each seam."""
+    labels: list[Label] = []
+    for side in ("seam_left", "seam_right"):
+        inner, outer = net.curve(side), cut.curve(side) if cut else None
+        if inner is None or outer is None:
+            continue
+        corners = [inner.start, inner.end, outer.end, outer.start]
+        wide = float(np.hypot(*(outer.start + outer.end - inner.start - inner.end))) / 2.0
+        size = min(height, 0.4 * wide)
+        if size < 1.0:  # nothing that could be read
+            continue
+        steps = zip(corners, [*corners[1:], corners[0]], strict=True)
+        lap = Outline(tuple((str(n), segment(*ends)) for n, ends in enumerate(steps)), wide * wide)
+        start, end = (inner.start + outer.start) / 2.0, (inner.end + outer.end) / 2.0
+        angle = upright(math.atan2(end[1] - start[1], end[0] - start[0]))
+        on = start + np.array([[0.5], [0.4], [0.6], [0.3], [0.7]]) * (end - start)
+        strip = Sheet(lap, (), (), (), False)
+        strip.write([Word("LAP", size, lambda _, on=on, angle=angle: (on, np.full(len(on), angle)))])  # type: ignore[misc]
+        labels += strip.labels
+    return tuple(labels)

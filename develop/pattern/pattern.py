@@ -72,12 +72,14 @@ class WitnessMark:
 
     at: on the edge (2,) [mm]. inward: unit vector into the sheet (2,).
     text: what it marks, such as TOP. edge: `a` or `b`.
+    arc: running length along the edge from the left seam [mm].
     """
 
     at: Array
     inward: Array
     text: str
     edge: str
+    arc: float
 
 
 @dataclass(frozen=True)
@@ -124,7 +126,9 @@ class Pattern:
     """One flat part. `net` is the geometry, `cut` what leaves the shear; equal without allowances.
 
     face: `outside` or `inside`, the face of the finished piece that is up.
-    facts: lines of text that every sheet states: mark and kind, name and sizes, material, face.
+    facts: lines of text that every sheet states. The first four tell which piece it is: mark and
+        kind, sizes, length or cuts, where the sizes are measured.
+    units: of the figures on the sheets, `mm` or `in`; all values here are in mm.
     openings_as: whether the openings are `cut`, only `marked`, or cut but left on `ties`.
     flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
     places: lines (n, 2, 2) [mm] across a flat part, best first, that its words stand on square;
@@ -132,6 +136,7 @@ class Pattern:
     figures: further tables.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
+    seam_words: what is written along the left and the right seam.
     """
 
     mark: str
@@ -150,6 +155,8 @@ class Pattern:
     rulings: Rulings
     openings_as: str = "cut"
     flow: str = ""
+    units: str = "mm"
+    seam_words: tuple[str, str] = ("SEAM", "SEAM")
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())

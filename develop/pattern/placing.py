@@ -14,7 +14,9 @@ from develop.pattern.lettering import ASCENT, DESCENT, Boxes, text_height, text_
 from develop.pattern.pattern import Label, Outline, RollLine, WitnessMark
 from develop.pattern.strokes import ring, roll_strokes, witness_lengths, witness_strokes
 
-__all__ = ["SMALLEST", "Sheet", "Word", "boxes_at", "label_at", "left_of", "overlaps", "rows_of"]
+__all__ = [
+    "SMALLEST", "Flags", "Rows", "Sheet", "Word", "boxes_at", "label_at", "left_of", "overlaps", "rows_of",
+]  # fmt: skip
 
 SMALLEST = 2.0
 """Least height [mm] of text that is to be read on the bench; on a sheet of 60 mm a little less must do."""
@@ -27,7 +29,10 @@ Flags = NDArray[np.bool_]
 
 @dataclass(frozen=True)
 class Word:
-    """A word to be placed; places(size) gives middles (n, 2) of its box and angles (n,), best first."""
+    """A word to be placed. height: of its capitals [mm].
+
+    places(size) gives middles (n, 2) of its box [mm] and angles (n,) [rad], best first.
+    """
 
     text: str
     height: float
@@ -107,7 +112,7 @@ class Sheet:
 
     def _tries(self, word: Word, size: float) -> Boxes:
         centres, angles = word.places(size)
-        return boxes_at(centres, angles, text_width(word.text, size), size * (ASCENT + DESCENT))
+        return boxes_at(centres, angles, width=text_width(word.text, size), height=size * (ASCENT + DESCENT))
 
     def _set(self, text: str, boxes: Boxes, good: Flags, size: float) -> bool:
         some = np.flatnonzero(good)
@@ -125,14 +130,14 @@ def rows_of(boxes: Boxes, rows: Rows, air: float = 0.0) -> Boxes:
     return Boxes(boxes.centre[rows], boxes.along[rows], boxes.half[rows] + air)
 
 
-def boxes_at(centres: Array, angles: Array, width: float, height: float) -> Boxes:
+def boxes_at(centres: Array, angles: Array, *, width: float, height: float) -> Boxes:
     """Boxes of one size [mm] at centres (n, 2) [mm], turned by angles (n,) [rad]."""
     along = np.stack([np.cos(angles), np.sin(angles)], axis=1)
     return Boxes(centres, along, np.broadcast_to(np.array([width, height]) / 2.0, centres.shape))
 
 
 def label_at(text: str, centre: Array, angle: float, height: float) -> Label:
-    """A line of text whose box, with room for descenders, has this centre."""
+    """A line of text, its height [mm] and angle [rad], whose box with room for descenders is centred here."""
     up = np.array([-math.sin(angle), math.cos(angle)])
     return Label(text, centre - up * (height * (ASCENT - DESCENT) / 2.0), angle, height)
 

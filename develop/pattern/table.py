@@ -6,10 +6,12 @@ import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from develop.pattern.pattern import Division, Figures
+from develop.pattern.pattern import Division, Figures, WitnessMark
 from develop.units import format_length
 
-__all__ = ["Table", "divisions_table", "figures_table"]
+__all__ = ["Table", "divisions_table", "figures_table", "marks_table"]
+
+_UNITS = {"mm": "mm", "in": "inches"}
 
 
 @dataclass(frozen=True)
@@ -28,27 +30,49 @@ def divisions_table(divisions: Sequence[Division], *, units: str = "mm") -> Tabl
     """
     heads = (
         ("line", "no."),
-        ("direction", "degrees"),
+        ("direction", "at END A"),
         ("running", "along A"),
         ("running", "along B"),
         ("length", "of line"),
-        ("end A", "x"),
-        ("end A", "y"),
-        ("end B", "x"),
-        ("end B", "y"),
+        ("END A", "x"),
+        ("END A", "y"),
+        ("END B", "x"),
+        ("END B", "y"),
     )
     rows = tuple(
         (
             str(d.number),
             f"{round(math.degrees(d.direction), 1) % 360.0:.1f}",
             *(
-                format_length(float(length), unit=units, suffix=False)
+                _length(length, units)
                 for length in (d.arc_a, d.arc_b, d.length, d.a[0], d.a[1], d.b[0], d.b[1])
             ),
         )
         for d in divisions
     )
-    return Table(f"Lines to mark out ({'inches' if units == 'in' else 'mm'})", heads, rows)
+    return Table(f"Lines to mark out ({_UNITS[units]}; directions in degrees anticlockwise)", heads, rows)
+
+
+def _length(mm: float, units: str) -> str:
+    """A length; what lies halfway is written the same wherever it stands, whatever its last digits."""
+    return format_length(round(float(mm), 6), unit=units, suffix=False)
+
+
+def marks_table(marks: Sequence[WitnessMark], *, units: str = "mm") -> Table:
+    """The table of witness marks, END A first, each end from the left seam on.
+
+    units: as in `divisions_table`.
+    """
+    heads = (("edge", ""), ("mark", ""), ("running", "along edge"), ("", "x"), ("", "y"))
+    rows = tuple(
+        (
+            f"END {mark.edge.upper()}",
+            mark.text,
+            *(_length(length, units) for length in (mark.arc, mark.at[0], mark.at[1])),
+        )
+        for mark in sorted(marks, key=lambda mark: (mark.edge, mark.arc))
+    )
+    return Table(f"Witness marks ({_UNITS[units]})", heads, rows)
 
 
 def figures_table(figures: Figures, *, units: str = "mm") -> Table:
@@ -60,4 +84,4 @@ def figures_table(figures: Figures, *, units: str = "mm") -> Table:
         )
         for row in figures.rows
     )
-    return Table(f"{figures.title} ({'inches' if units == 'in' else 'mm'})", figures.heads, rows)
+    return Table(f"{figures.title} ({_UNITS[units]})", figures.heads, rows)

@@ -30,7 +30,7 @@ _TIE = 1e-9
 
 @dataclass(frozen=True)
 class Wording:
-    """What the pattern says and how it lies."""
+    """What the pattern says and how it lies. units: of the figures on the sheets, `mm` or `in`."""
 
     mark: str
     kind: str
@@ -40,6 +40,8 @@ class Wording:
     datum: str
     flow: str
     full_lines: bool
+    units: str = "mm"
+    seam_words: tuple[str, str] = ("SEAM", "SEAM")
 
 
 @dataclass(frozen=True)
@@ -106,9 +108,11 @@ def pattern_of(
         if section_b
         else sheet.from_a(section_a.at_direction(_DIRECTIONS)),
         ends[np.array([0, -1])],
-        _dense(ends, sheet.at_ends),
     ]
+    # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
     bends = press_lines(sheet, section_a, press) if press else None
+    drawn = wanted if bends is None else [*wanted, bends.place]
+    wanted.append(_merged([_dense(ends, sheet.at_ends), *drawn]))
     if bends is not None:
         wanted.append(bends.place)
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
@@ -137,11 +141,6 @@ def pattern_of(
         for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
-    whole = sheet.area - sum(hole.area for hole in holes)
-    net, cut_outline = (
-        replace(net, area=whole),
-        replace(cut_outline, area=cut_outline.area - sheet.area + whole),
-    )
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -159,6 +158,8 @@ def pattern_of(
         rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), dense.u_a, distance),
         flow=wording.flow,
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
+        units=wording.units,
+        seam_words=wording.seam_words,
     )
 
 
@@ -183,6 +184,19 @@ def _dense(ends: Place, at: Lines) -> Place:
     first = np.repeat(np.cumsum(counts) - counts, counts)
     x = 2.0 * (np.arange(len(owner)) - first) / counts[owner] - 1.0
     return Place(np.append(ends.panel[:-1][owner], ends.panel[-1]), np.append(x, ends.x[-1]))
+
+
+def _merged(places: Sequence[Place]) -> Place:
+    """All the places from left to right, each once; the two seams stay as they are."""
+    panel = np.concatenate([each.panel for each in places])
+    x = np.concatenate([each.x for each in places])
+    order = np.lexsort((x, panel))
+    panel, x = panel[order], x[order]
+    along = panel + 0.5 * (x + 1.0)
+    keep = np.diff(along, prepend=-1.0) > _ON_SEAM
+    keep &= along < along[-1] - _ON_SEAM
+    keep[-1] = True
+    return Place(panel[keep], x[keep])
 
 
 def _roll_lines(at: Lines) -> tuple[RollLine, ...]:
@@ -237,10 +251,10 @@ def _witness(
         texts += [text] * len(places)
     order = rows[::-1] if view.mirror else rows
     at = view.lines(found.take(order))
-    points, tangents = (at.a, at.tangent_a) if edge == "a" else (at.b, at.tangent_b)
+    points, tangents, arcs = (at.a, at.tangent_a, at.arc_a) if edge == "a" else (at.b, at.tangent_b, at.arc_b)
     side = 1.0 if edge == "a" else -1.0
     inward = side * np.stack([-tangents[:, 1], tangents[:, 0]], axis=-1)
-    return [WitnessMark(points[i], inward[i], texts[i], edge) for i in range(len(texts))]
+    return [WitnessMark(points[i], inward[i], texts[i], edge, float(arcs[i])) for i in range(len(texts))]
 
 
 def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:
@@ -301,9 +315,7 @@ class _View:
         flip = _FLIP if self.mirror else np.ones(2)
         outward = np.stack([hole.tangents[:, 1], -hole.tangents[:, 0]], axis=-1) * flip
         points = hole.points * flip + self.shift
-        return [
-            WitnessMark(points[i], outward[i], text, "opening") for i, text in enumerate(hole.texts)
-        ]
+        return [WitnessMark(points[i], outward[i], text, "opening") for i, text in enumerate(hole.texts)]
 
     def lines(self, lines: Lines) -> Lines:
         if not self.mirror:

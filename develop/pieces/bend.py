@@ -20,7 +20,7 @@ from develop.pieces.field_types import (
     Number,
 )
 from develop.pieces.fields import about
-from develop.pieces.wording import direction_words
+from develop.pieces.wording import direction_words, measured_words, section_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -29,6 +29,7 @@ if TYPE_CHECKING:
     from develop.pieces.built import Built
     from develop.pieces.mitred import Leg
     from develop.sections.section import Section
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Bend"]
 
@@ -221,7 +222,7 @@ class Bend(Plate):
         opposite = {throat: heel, heel: throat}.get(first, first + pi)
         return [opposite if k % 2 else first for k in range(self.gores)]
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.mitred import built_of
 
@@ -230,12 +231,12 @@ class Bend(Plate):
         return built_of(
             gores,
             self._seams(section),
-            wording=lambda numbers: self._wording(section, numbers),
+            wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             name="gore",
         )
 
-    def _wording(self, section: Section, numbers: tuple[int, ...]) -> Wording:
+    def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the gores of these numbers says."""
         from develop.pieces.wall import reach
 
@@ -244,27 +245,30 @@ class Bend(Plate):
             (radius - reach(section, self.turns_to)) * slope,
             (radius + reach(section, self.turns_to + pi)) * slope,
         )
+
+        def short(mm: float) -> str:
+            return measured_words(mm, units)
+
         way = {1: ", hard way", -1: ", easy way", 0: ""}[_way(section, self.turns_to)]
-        lengths = f"end gores: throat {_short(throat)}, heel {_short(heel)}"
+        lengths = f"end gores: throat {short(throat)}, heel {short(heel)}"
         if self.gores > 2:
-            lengths += f"; full gores: throat {_short(2.0 * throat)}, heel {_short(2.0 * heel)}"
+            lengths += f"; full gores: throat {short(2.0 * throat)}, heel {short(2.0 * heel)}"
         width = 2.0 * throat if self.gores > 2 else throat
         which = ", ".join(map(str, numbers))
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
         return alone.wording(
-            sizes=f"{self.section.text}, bend of {_angle(self.angle)}{way}, "
-            f"radius {_short(radius)} to the axis",
-            more=(
+            sheet,
+            (self.section,),
+            sizes=f"{section_words(self.section, units)}, bend of {_angle(self.angle)}{way}, "
+            f"radius {short(radius)} to the axis",
+            held="lengths and cuts",
+            units=units,
+            place=(
                 f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}, throat at "
-                f"{direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}",
-                lengths,
-                f"smallest throat width {_short(width)}",
+                f"{direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}"
             ),
+            more=(lengths, f"smallest throat width {short(width)}"),
         )
-
-
-def _short(mm: float) -> str:
-    return number_text(round(mm, 2))
 
 
 def _angle(angle: float) -> str:

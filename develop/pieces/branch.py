@@ -11,7 +11,7 @@ from develop.pieces.common import Plate
 from develop.pieces.field_types import ANGLE, DIRECTION, LENGTH, MARK, SECTION, Angle, Choice, Length
 from develop.pieces.fields import Piece, about
 from develop.pieces.header import HEADER
-from develop.pieces.wording import direction_words
+from develop.pieces.wording import direction_words, section_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -268,7 +268,7 @@ class Branch(Plate):
 
     # ---- the two patterns -------------------------------------------------------------------
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from dataclasses import replace
 
@@ -286,13 +286,18 @@ class Branch(Plate):
         seam = seam_parameter(branch_section, surface.lengths, self.seam_at)
         sheet = surface.sheet(seam)
         leaning = f"{number_text(round(degrees(self.angle), 6))}° to the header's axis"
-        where = (
-            f"{leaning}, leaves at {direction_words(self.leaves_at)}, "
-            f"off centre {number_text(self.off_centre)}, {self.joint}"
-        )
+        off = f", {size_words(self.off_centre, units)} off centre" if self.off_centre else ""
+        where = f"{leaning}, leaves at {direction_words(self.leaves_at)}{off}, {self.joint}"
+        sections = tuple(each for each in (self.branch, self.header) if isinstance(each, SectionSpec))
         wording = self.wording(
-            sizes=f"branch {self.branch.text}, centre to end {number_text(self.centre_to_end)}",
-            more=(f"into header {self._header_words()}", where, "END A: the joint; END B: the free end"),
+            sheet,
+            sections,
+            sizes=f"branch {section_words(self.branch, units)}, "
+            f"centre to end {size_words(self.centre_to_end, units)}",
+            place=f"into header {self._header_words(units)}, {where}",
+            held="lengths and joint",
+            units=units,
+            more=("END A: the joint; END B: the free end",),
         )
         branch = pattern_of(
             sheet,
@@ -319,6 +324,14 @@ class Branch(Plate):
         through = header.through(frame)
         header_seam = float(header.section.at_direction(np.array([self.leaves_at + pi]))[0])
         header_sheet = header.sheet(header_seam)
+        over = self.wording(
+            header_sheet,
+            sections,
+            sizes=f"header {self._header_words(units)}",
+            place=f"opening for branch {section_words(self.branch, units)}, {self.opening}, {where}",
+            held="length and opening",
+            units=units,
+        )
         hole_sheet = Cylinder(
             hole_section,
             through,
@@ -331,15 +344,9 @@ class Branch(Plate):
             header.section,
             header.section_b,
             wording=replace(
-                wording,
+                over,
                 mark=f"{self.mark}-header",
-                facts=(
-                    f"{self.mark}-header",
-                    f"header {self._header_words()}",
-                    f"opening for branch {self.branch.text}, {self.opening}",
-                    where,
-                    *wording.facts[-3:],
-                ),
+                facts=(f"{self.mark}-header", *over.facts[1:]),
             ),
             divisions=self.divisions,
             distance=header.distance,
@@ -354,10 +361,10 @@ class Branch(Plate):
             )
         )
 
-    def _header_words(self) -> str:
+    def _header_words(self, units: str) -> str:
         if isinstance(self.header, SectionSpec):
             assert self.header_length is not None
-            return f"{self.header.text}, length {number_text(self.header_length)}"
+            return f"{section_words(self.header, units)}, length {size_words(self.header_length, units)}"
         return f"a {self.header.kind} of its own"
 
     def _hole(self, branch: CylinderSheet, header: Sheet, trim: BandTrim | CylinderTrim) -> Hole:

@@ -15,10 +15,12 @@ from develop.pieces.field_types import (
     Number,
 )
 from develop.pieces.fields import Piece, about
-from develop.pieces.wording import sizes_words, wall_words
+from develop.pieces.wording import edges_words, sizes_words, wall_words
 
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
+    from develop.sections.text import SectionSpec
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Flat", "Marked", "Named", "Plate"]
 
@@ -99,10 +101,22 @@ class Plate(Marked):
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)
     )
 
-    def wording(self, *, sizes: str, more: tuple[str, ...] = ()) -> Wording:
-        """What the pattern says: the sizes in words, then further lines of the kind's own."""
+    def wording(
+        self,
+        flat: Sheet,
+        sections: tuple[SectionSpec, ...],
+        *,
+        sizes: str,
+        place: str,
+        held: str,
+        units: str,
+        more: tuple[str, ...] = (),
+    ) -> Wording:
+        """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes, and
+        further lines of the kind's own."""
         from develop.pieces.assemble import Wording
 
+        plate = ("edges square to the plate", f"{held} at the given sizes")
         full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
         return Wording(
             mark=self.mark,
@@ -112,12 +126,16 @@ class Plate(Marked):
             facts=(
                 f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
                 sizes,
+                place,
                 *more,
-                sizes_words(self.sizes, self.thickness),
-                wall_words(self.material, self.thickness),
+                sizes_words(self.sizes, self.thickness, *sections),
+                edges_words((flat.edge_a, flat.edge_b), units),
+                *wall_words(self.material, self.thickness, units),
+                *(plate if self.thickness >= _PLATE else ()),
                 f"quantity {self.quantity}, {self.face} up",
             ),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
             flow=self.flow,
             full_lines=full,
+            units=units,
         )

@@ -11,7 +11,7 @@ from develop.pieces.common import Plate
 from develop.pieces.field_types import LENGTH, MARK, OFFSET, SECTION
 from develop.pieces.fields import about
 from develop.pieces.level_cut import LEVEL_CUT, LevelCut
-from develop.pieces.wording import direction_words
+from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -152,7 +152,7 @@ class Cone(Plate):
             return
         check_bend(band, thickness=self.thickness, sizes=self.sizes, instead="a lower cut_b")
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import one
@@ -167,8 +167,13 @@ class Cone(Plate):
             section,
             None,
             wording=self.wording(
-                sizes=f"{self.section.text}, cone, height to the apex {number_text(self.height)}",
-                more=(f"{self._apex_words()}, {self._cut_words()}",),
+                sheet,
+                (self.section,),
+                sizes=f"{section_words(self.section, units)}, cone, height to the apex "
+                f"{size_words(self.height, units)}",
+                place=f"{self._apex_words(units)}, {self._cut_words(units)}",
+                held="heights",
+                units=units,
             ),
             divisions=self.divisions,
             distance=surface.distance,
@@ -185,16 +190,15 @@ class Cone(Plate):
         )
         return one(pattern, solid)
 
-    def _apex_words(self) -> str:
+    def _apex_words(self, units: str) -> str:
         if self.apex_offset == (0.0, 0.0):
             return "apex over the centre"
-        right, up = (number_text(round(each, 3)) for each in self.apex_offset)
-        return f"apex {right} right and {up} up"
+        return shift_words(*self.apex_offset, units).replace("END B", "apex")
 
-    def _cut_words(self) -> str:
+    def _cut_words(self, units: str) -> str:
         if self.cut_b is None:
             return "to the point"
-        at = f"cut at height {number_text(self.cut_b.height)}"
+        at = f"cut at height {size_words(self.cut_b.height, units)}"
         if self.cut_b.slope == 0.0:
             return f"{at}, square"
         slope = number_text(round(degrees(self.cut_b.slope), 6))

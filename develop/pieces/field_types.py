@@ -18,7 +18,8 @@ from develop.wording import listed, near_miss, shown
 
 __all__ = [
     "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
-    "THICKNESS", "Angle", "Choice", "Count", "Cut", "FieldType", "Length", "Number", "Pitch",
+    "THICKNESS", "Angle", "Choice", "Count", "Cut", "CutText", "Direction", "FieldType", "Length", "Number",
+    "Offset", "Pitch", "SectionText", "Text",
 ]  # fmt: skip
 
 
@@ -385,9 +386,15 @@ class CutText:
         elif isinstance(given, str):
             if given.strip().lower() == "square":
                 return None
-            words = given.replace("=", " ").replace(",", " ").split()
+            pairs = [part.split() for part in given.replace("=", " ").split(",")]
+            words = [word for pair in pairs for word in pair]
             names, values = [word.lower() for word in words[::2]], words[1::2]
-            if sorted(names) != ["long", "slope"] or len(values) != 2:
+            # A comma stands between two pairs and nowhere else.
+            if (
+                not all(pair and len(pair) % 2 == 0 for pair in pairs)
+                or sorted(names) != ["long", "slope"]
+                or len(values) != 2
+            ):
                 raise _refused(f"{shown(given)} is not a cut", self.allowed)
             parts = dict(zip(names, values, strict=True))
         else:

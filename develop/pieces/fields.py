@@ -39,8 +39,11 @@ class Piece(ABC):
         """The surface that carries the piece, cheaply: raises Refusal for one that cannot be."""
 
     @abstractmethod
-    def build(self) -> Built:
-        """The flat patterns and the finished piece. Raises Refusal."""
+    def build(self, *, units: str = "mm") -> Built:
+        """The flat patterns and the finished piece. units: of the figures on the sheets, `mm` or `in`.
+
+        Raises Refusal.
+        """
 
 
 def about(

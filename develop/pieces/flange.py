@@ -155,7 +155,7 @@ class Flange(Flat):
         """Centres of the holes (holes, 2) [mm], in the section's plane."""
         return self._line(inner).point(self._set_out(inner)[0])
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.built import Built
         from develop.pieces.flat_ring import parts_of

@@ -35,9 +35,12 @@ def opposite(piece: Piece, *, quantity: int = 1) -> Piece:
     return replace(piece, **values)  # type: ignore[type-var]  # every kind is a dataclass
 
 
-def builds_of(piece: Piece) -> tuple[Built, ...]:
-    """The piece as built, and its opposite hand where some are wanted. Raises Refusal."""
-    built = piece.build()
+def builds_of(piece: Piece, *, units: str = "mm") -> tuple[Built, ...]:
+    """The piece as built, and its opposite hand where some are wanted; units as for `build`.
+
+    Raises Refusal.
+    """
+    built = piece.build(units=units)
     count: int = getattr(piece, "opposite_hand", 0)
     if not count:
         return (built,)
@@ -47,7 +50,11 @@ def builds_of(piece: Piece) -> tuple[Built, ...]:
         other = replace(other, seam_at=(pi - seam) % (2.0 * pi))  # type: ignore[type-var]
     return (
         _said(built, f"as drawn; {count} of opposite hand on a pattern of its own", after=2),
-        _said(other.build(), f"OPPOSITE HAND of {piece.mark}: its mirror image, right for left", after=1),
+        _said(
+            other.build(units=units),
+            f"OPPOSITE HAND of {piece.mark}: its mirror image, right for left",
+            after=1,
+        ),
     )
 
 

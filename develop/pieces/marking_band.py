@@ -9,12 +9,12 @@ from develop.errors import Refusal
 from develop.pieces.common import Marked
 from develop.pieces.field_types import CUT, MARK, SECTION, Choice, Cut, Length
 from develop.pieces.fields import about
-from develop.pieces.wording import cut_words
+from develop.pieces.wording import cut_words, measured_words, section_words, size_words
 from develop.sections.text import SectionSpec
-from develop.units import number_text
 
 if TYPE_CHECKING:
     from develop.pieces.built import Built
+    from develop.sections.section import Section
     from develop.surfaces.cylinder import Cylinder
 
 __all__ = ["MarkingBand"]
@@ -41,6 +41,14 @@ class MarkingBand(Marked):
         default=50.0, metadata=about(Length(least=1.0, most=10_000.0), "least width of the band")
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
+    sizes: str = field(
+        default="outside",
+        metadata=about(
+            Choice(("inside", "outside", "mean")),
+            "where the given sizes are measured; a pipe's size is always its outside",
+            own=False,
+        ),
+    )
 
     def surface(self) -> Cylinder:
         """The pipe's face from the band's square edge to the cut, the paper half its thickness off it.
@@ -55,11 +63,12 @@ class MarkingBand(Marked):
         from develop.surfaces.trim import Plane
 
         outside = self.face == "outside"
-        if not outside and self.section.outside and self.thickness == 0.0:
+        if not outside and self.thickness == 0.0 and (self.section.outside or self.sizes != "inside"):
+            where = "at mid-thickness" if self.sizes == "mean" else "its outside"
             raise Refusal(
                 field="thickness",
-                given="not given, but the band is laid inside a pipe, whose size is its outside",
-                allowed="the pipe's wall thickness",
+                given=f"not given, but the band is laid inside a pipe whose size is {where}",
+                allowed="the pipe's wall thickness" + ("" if self.section.outside else ", or sizes = inside"),
             )
         given = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
         face = given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
@@ -73,7 +82,36 @@ class MarkingBand(Marked):
             0.5 * self.paper if outside else -0.5 * self.paper,
         )
 
-    def build(self) -> Built:
+    def _facts(self, face: Section, girth: float, units: str) -> tuple[str, ...]:
+        """What the sheet says; face: the pipe's face that the band lies on; girth of the band [mm]."""
+        outside = self.face == "outside"
+        size = size_words(face.width, units)
+        if self.section.width != self.section.height:
+            size = f"{size} x {size_words(face.height, units)}"
+        wall = f", wall {size_words(self.thickness, units)}" if self.thickness else ""
+        cut = cut_words(self.cut)
+        return (
+            f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
+            f"{section_words(self.section, units)}, {size} {self.face}{wall}",
+            "square cut" if cut == "square" else cut,
+            "mark along END B",
+            "the pipe stays on the END A side",
+            "wrap round, this side out" if outside else "lay inside, this side in towards you",
+            f"girth of the band {measured_words(girth, units)}",
+            f"lap {size_words(self.lap, units)}, its edge as on the other side" if self.lap else "no lap",
+            f"paper {size_words(self.paper, units)}{' mm' if units == 'mm' else ''} thick",
+            f"quantity {self.quantity}",
+        )
+
+    def _seam_words(self) -> tuple[str, str]:
+        """What the left and the right side say of how the band closes."""
+        if not self.lap:
+            return ("EDGES MEET", "EDGES MEET")
+        words = ("THIS EDGE TO DASHED LINE", "MEETS HERE")
+        # Seen from the inside the band is mirrored, its lap at the left.
+        return words if self.face == "outside" else (words[1], words[0])
+
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import Wording, pattern_of, seam_parameter
         from develop.pieces.built import one
@@ -82,9 +120,9 @@ class MarkingBand(Marked):
         surface = self.surface()
         face = surface.section
         seam = seam_parameter(face, surface.lengths, self.seam_at)
-        where = "round the outside" if self.face == "outside" else "inside, against the wall"
+        flat = surface.sheet(seam)
         pattern = pattern_of(
-            surface.sheet(seam),
+            flat,
             face,
             face,
             wording=Wording(
@@ -92,16 +130,12 @@ class MarkingBand(Marked):
                 kind=self.kind,
                 quantity=self.quantity,
                 face=self.face,
-                facts=(
-                    f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
-                    f"{self.section.text}, {cut_words(self.cut)}",
-                    f"wrap {where}; mark along END B",
-                    f"paper {number_text(self.paper)} mm, lap {number_text(self.lap)}",
-                    f"quantity {self.quantity}",
-                ),
+                facts=self._facts(face, flat.edge_a, units),
                 datum="datum line y = 0, the band's square edge",
                 flow="",
                 full_lines=False,
+                units=units,
+                seam_words=self._seam_words(),
             ),
             divisions=self.divisions,
             distance=surface.distance,

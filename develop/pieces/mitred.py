@@ -24,6 +24,7 @@ from develop.surfaces.trim import Plane
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
     from develop.sections.section import Section
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Leg", "Turn", "built_of", "farthest", "legs_of"]
 
@@ -97,14 +98,14 @@ def built_of(
     legs: Sequence[Leg],
     seams: Sequence[float],
     *,
-    wording: Callable[[tuple[int, ...]], Wording],
+    wording: Callable[[Sheet, tuple[int, ...]], Wording],
     divisions: int,
     name: str,
 ) -> Built:
     """The piece of these legs; those alike, seam and all, are one pattern that is used several times.
 
-    seams: the direction of each leg's seam [rad]. wording: of the pattern that serves the legs of
-    these numbers, counted from 1. name: what a leg is called, such as `gore`.
+    seams: the direction of each leg's seam [rad]. wording: of the pattern of a sheet that serves the legs
+    of these numbers, counted from 1. name: what a leg is called, such as `gore`.
     """
     groups: dict[tuple[float, ...], list[int]] = {}
     for i, (leg, seam) in enumerate(zip(legs, seams, strict=True)):
@@ -116,11 +117,12 @@ def built_of(
     for number, members in enumerate(groups.values()):
         surface, section = legs[members[0]].surface, legs[members[0]].surface.section
         seam = float(section.at_direction(np.array([seams[members[0]]]))[0])
+        sheet = surface.sheet(seam)
         pattern = pattern_of(
-            surface.sheet(seam),
+            sheet,
             section,
             section,
-            wording=wording(tuple(i + 1 for i in members)),
+            wording=wording(sheet, tuple(i + 1 for i in members)),
             divisions=divisions,
             distance=surface.distance,
         )

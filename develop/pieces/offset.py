@@ -10,6 +10,7 @@ from develop.errors import Refusal
 from develop.pieces.common import Plate
 from develop.pieces.field_types import LENGTH, MARK, OFFSET, SECTION, Angle
 from develop.pieces.fields import about
+from develop.pieces.wording import measured_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -18,6 +19,7 @@ if TYPE_CHECKING:
     from develop.pieces.built import Built
     from develop.pieces.mitred import Leg
     from develop.sections.section import Section
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Offset"]
 
@@ -134,7 +136,7 @@ class Offset(Plate):
         towards = atan2(self.offset[1], self.offset[0])
         return [farthest(section, towards), 1.5 * pi, farthest(section, towards + pi)]
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.mitred import built_of
 
@@ -142,22 +144,26 @@ class Offset(Plate):
         return built_of(
             legs,
             self._seams(legs[0].surface.section),
-            wording=self._wording,
+            wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
             divisions=self.divisions,
             name="leg",
         )
 
-    def _wording(self, numbers: tuple[int, ...]) -> Wording:
+    def _wording(self, sheet: Sheet, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""
         right, up = self.offset
         on_axis = self.middle if numbers[0] == 2 else self.ends
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
         return alone.wording(
-            sizes=f"{self.section.text}, offset, length {number_text(self.length)}",
+            sheet,
+            (self.section,),
+            sizes=f"{section_words(self.section, units)}, offset, length {size_words(self.length, units)}",
+            place=f"{shift_words(right, up, units)}, "
+            f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
+            held="lengths and cuts",
+            units=units,
             more=(
-                f"END B {number_text(round(right, 3))} right and {number_text(round(up, 3))} up, "
-                f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
-                f"{number_text(round(on_axis, 2))} long on the axis",
+                f"{measured_words(on_axis, units)} long on the axis",
             ),
         )

@@ -102,7 +102,7 @@ class Opening(Flat):
         distance = self.thickness * self.neutral_line
         return Cylinder(hole, Plane(0.0, rise), Plane(high + (self.collar or 1.0), np.zeros(2)), distance)
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.built import Built, Joint, Part
         from develop.pieces.roof_plate import collar_part, plate_part

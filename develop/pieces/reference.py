@@ -69,7 +69,8 @@ def kinds_page() -> str:
         "",
         "A field is an option of the command line with `--` in front and `-` for `_`, and a key of a",
         "`[[piece]]` in a job file. Bare lengths are in the job's unit, mm unless it says another.",
-        "Directions are read facing end B: degrees anticlockwise from right.",
+        "Directions, right and up are read facing end B, that is standing in front of it and looking in,",
+        "with end A behind it: degrees anticlockwise from right. See [directions.md](directions.md).",
     ]
     for name in KINDS:
         kind = kind_of(name)

@@ -8,9 +8,8 @@ from typing import TYPE_CHECKING, ClassVar
 from develop.pieces.common import Plate
 from develop.pieces.field_types import CUT, LENGTH, MARK, SECTION, Cut
 from develop.pieces.fields import about
-from develop.pieces.wording import cut_words
+from develop.pieces.wording import cut_words, section_words, size_words
 from develop.sections.text import SectionSpec
-from develop.units import number_text
 
 if TYPE_CHECKING:
     from develop.pieces.built import Built
@@ -47,7 +46,7 @@ class Straight(Plate):
         )
         return cylinder_between(section, self.cut_a, self.cut_b, length=self.length, distance=distance)
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal where a cut runs past the other end."""
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import one
@@ -56,13 +55,19 @@ class Straight(Plate):
         surface = self.surface()
         section = surface.section
         seam = seam_parameter(section, surface.lengths, self.seam_at)
+        flat = surface.sheet(seam)
+        a, b = cut_words(self.cut_a), cut_words(self.cut_b)
         pattern = pattern_of(
-            surface.sheet(seam),
+            flat,
             section,
             section,
             wording=self.wording(
-                sizes=f"{self.section.text}, length {number_text(self.length)}",
-                more=(f"END A {cut_words(self.cut_a)}, END B {cut_words(self.cut_b)}",),
+                flat,
+                (self.section,),
+                sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
+                place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
+                held="length and cuts" if not a == b == "square" else "length",
+                units=units,
             ),
             divisions=self.divisions,
             distance=surface.distance,

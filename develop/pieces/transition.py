@@ -10,7 +10,7 @@ from develop.errors import Refusal
 from develop.pieces.common import Plate
 from develop.pieces.field_types import ANGLE, CUT, LENGTH, MARK, OFFSET, SECTION, Choice, Count, Cut, Length
 from develop.pieces.fields import about
-from develop.pieces.wording import direction_words
+from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -180,7 +180,7 @@ class Transition(Plate):
             allowed=f"{tilt}length of {number_text(ceil(long * 10.0 + 1e-6) / 10.0)} mm or more",
         )
 
-    def build(self) -> Built:
+    def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from math import degrees
 
@@ -194,17 +194,24 @@ class Transition(Plate):
         a, b = surface.rim_a, surface.rim_b
         seam = seam_parameter(a.section, surface.lengths, self.seam_at)
         right, up, _ = (float(each) for each in b.frame.origin)
-        shift = f"END B {number_text(round(right, 3))} right and {number_text(round(up, 3))} up"
-        place = f"flush at the {self.flush}, " if self.flush else ""
-        turned = f", rotated {number_text(round(degrees(self.rotate), 6))}°" if self.rotate else ""
         sheet = surface.sheet(seam)
+        place = [f"length {size_words(self.length, units)}"]
+        if self.flush:
+            place.append(f"flush at the {self.flush}")
+        place.append(shift_words(right, up, units))
+        if self.rotate and self.end_b.width != self.end_b.height:  # a round end looks the same turned
+            place.append(f"rotated {number_text(round(degrees(self.rotate), 6))}°")
         pattern = pattern_of(
             sheet,
             a.section,
             b.section,
             wording=self.wording(
-                sizes=f"END A {self.end_a.text} to END B {self.end_b.text}",
-                more=(f"length {number_text(self.length)}, {place}{shift}{turned}", *self._tilt_words()),
+                sheet,
+                (self.end_a, self.end_b),
+                sizes=f"END A {section_words(self.end_a, units)} to END B {section_words(self.end_b, units)}",
+                place=", ".join([*place, *self._tilt_words()]),
+                held="length",
+                units=units,
             ),
             divisions=self.divisions,
             distance=surface.distance,

@@ -1,18 +1,38 @@
-"""What the sheets say of a piece, in the words of the shop."""
+"""What the sheets say of a piece, in the words of the shop.
+
+units: `mm` or `in`. In mm a size stands bare, in inches with its unit, as a fraction where it is one.
+"""
 
 from __future__ import annotations
 
 from math import degrees
 from typing import TYPE_CHECKING
 
-from develop.units import number_text
+from develop.units import format_length, number_text
 
 if TYPE_CHECKING:
     from develop.pieces.field_types import Cut
+    from develop.sections.text import SectionSpec
 
-__all__ = ["cut_words", "direction_words", "plate_words", "sizes_words", "wall_words"]
+__all__ = [
+    "cut_words",
+    "direction_words",
+    "edges_words",
+    "measured_words",
+    "plate_words",
+    "section_words",
+    "shift_words",
+    "size_words",
+    "sizes_words",
+    "wall_words",
+]
 
 _WORDS = {0.0: "right", 90.0: "top", 180.0: "left", 270.0: "bottom"}
+_INCH = 25.4
+# Nearer than this to a sixty-fourth of an inch [mm] a size is that fraction.
+_SAME = 1e-3
+# A line of facts is not to be much longer than the others, or all are written small.
+_LONGEST_LINE = 44
 
 
 def direction_words(direction: float) -> str:
@@ -28,17 +48,90 @@ def cut_words(cut: Cut | None) -> str:
     return f"cut {number_text(round(degrees(cut.slope), 6))}°, longest at {direction_words(cut.long)}"
 
 
-def sizes_words(sizes: str, thickness: float) -> str:
-    """Where the given sizes are measured."""
+def size_words(mm: float, units: str) -> str:
+    """A size as it was given [mm]: a decimal, or in inches a fraction where it is one to the 64th.
+
+    >>> size_words(314.325, "mm"), size_words(314.325, "in"), size_words(0.8, "in")
+    ('314.325', '12-3/8 in', '0.031 in')
+    """
+    if units == "mm":
+        return number_text(round(mm, 3))
+    if abs(mm - round(mm / _INCH * 64) * _INCH / 64) < _SAME:
+        return format_length(mm, unit="in", fraction=64)
+    return f"{mm / _INCH:.3f} in"
+
+
+def measured_words(mm: float, units: str) -> str:
+    """A length [mm] to be measured with a tape: to 0.1 mm or 1/32 in.
+
+    >>> measured_words(1455.817, "mm"), measured_words(1455.817, "in")
+    ('1455.8', '57-5/16 in')
+    """
+    return format_length(mm, unit=units, suffix=units != "mm")
+
+
+def section_words(spec: SectionSpec, units: str) -> str:
+    """A section with its sizes; a pipe by its name."""
+    if spec.kind == "pipe":
+        return spec.text
+    if spec.taped is not None:
+        name = f"measured, {len(spec.taped.directions)} readings, {spec.taped.fit}, overall"
+    else:
+        name = spec.kind
+    sizes = [spec.width] if spec.kind == "round" else [spec.width, spec.height]
+    words = f"{name} {' x '.join(size_words(round(size, 4), units) for size in sizes)}"
+    if spec.kind == "rectangle" and spec.r:
+        words += f" r {size_words(spec.r, units)}"
+    if spec.kind == "superellipse":
+        words += f" n {number_text(spec.n)}"
+    return words
+
+
+def shift_words(right: float, up: float, units: str) -> str:
+    """Where the centre of END B lies [mm], facing it.
+
+    >>> shift_words(50.0, -50.8, "mm"), shift_words(0.0, 0.0, "mm")
+    ('END B 50 right, 50.8 down', 'END B centred')
+    """
+    ways = ((right, "right", "left"), (up, "up", "down"))
+    parts = [f"{size_words(abs(by), units)} {on if by > 0.0 else back}" for by, on, back in ways
+             if abs(by) > _SAME / 2.0]  # fmt: skip
+    return f"END B {', '.join(parts) or 'centred'}"
+
+
+def sizes_words(sizes: str, thickness: float, *sections: SectionSpec) -> str:
+    """Where the given sizes are measured. thickness [mm]."""
     if thickness == 0.0:
-        return "sizes on the developed line"
-    return {"mean": "sizes to mid-thickness"}.get(sizes, f"sizes {sizes}")
+        return "net, no thickness"
+    pipes = [spec.outside for spec in sections]
+    if pipes and all(pipes):
+        return "sizes outside"
+    words = {"mean": "sizes mean (mid-thickness)"}.get(sizes, f"sizes {sizes}")
+    return f"{words}, the pipe's outside" if any(pipes) and sizes != "outside" else words
 
 
-def wall_words(material: str, thickness: float) -> str:
-    """Material and thickness."""
-    plate = f"{number_text(thickness)} mm thick" if thickness else "no thickness allowed for"
-    return ", ".join(part for part in (material, plate) if part)
+def edges_words(edges: tuple[float, float], units: str) -> str:
+    """The stretch-outs of END A and END B as developed [mm]."""
+    a, b = (measured_words(edge, units) for edge in edges)
+    return f"edges: END A {a}, END B {b}"
+
+
+def wall_words(material: str, thickness: float, units: str) -> tuple[str, ...]:
+    """Material and thickness [mm], in as many lines as that takes."""
+    wall = f"{size_words(thickness, units)}{' mm' if units == 'mm' else ''} thick" if thickness else ""
+    return _lines(", ".join(part for part in (material, wall) if part))
+
+
+def _lines(text: str) -> tuple[str, ...]:
+    """The text in lines of about equal length, none much over `_LONGEST_LINE`."""
+    count = -(-len(text) // _LONGEST_LINE)
+    lines: list[str] = []
+    for word in text.split():
+        if lines and len(lines[-1]) + len(word) / 2.0 < len(text) / count:
+            lines[-1] += f" {word}"
+        else:
+            lines.append(word)
+    return tuple(lines)
 
 
 def plate_words(material: str, thickness: float) -> str:

@@ -138,11 +138,11 @@ class Section(ABC):
     def offset(self, distance: float) -> Section:
         """The parallel curve at `distance` [mm] outward (inward when negative).
 
-        Raises Refusal where an inward move is more than the tightest radius.
+        Raises Refusal where an inward move is more than the tightest radius, or leaves nothing.
         """
         if distance == 0.0:
             return self
-        if -distance > self.least_radius:
+        if -distance > self.least_radius or -2.0 * distance >= min(self.width, self.height):
             raise Refusal(
                 field="sizes",
                 given=f"the wall lies {-distance:g} mm inside the given size, where the tightest "

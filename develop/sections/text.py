@@ -31,6 +31,13 @@ ALLOWED = (
     "area or ratio: ellipse girth 1256.6 height 300"
 )
 """What a section may be, as messages and the help say it."""
+_SIZE_TEXT = r"[0-9][^xX×]{0,20}"
+# Ways in which people write a section that are not forms of their own.
+_DIAMETER = re.compile(
+    rf"(?:circle|circular|dia(?:m(?:eter)?)?\.?|[Øø⌀∅])?\s*({_SIZE_TEXT}?)\s*(?:dia(?:m(?:eter)?)?\.?|[Øø⌀∅])?",
+    re.IGNORECASE,
+)
+_TWO_SIZES = re.compile(rf"(?:oval\s*)?({_SIZE_TEXT}[xX×]\s*{_SIZE_TEXT})", re.IGNORECASE)
 
 _ROUND = "round 400, round girth 1257 or round area 125000"
 _SIZED = "width x height; or two of girth, area, width, height, ratio (height over width)"
@@ -58,12 +65,22 @@ def parse_section(text: object, *, unit: str = "mm") -> SectionSpec:
         raise refused(f"{shown(text)} is not a section", ALLOWED)
     found = _NAME.fullmatch(text)
     if found is None:
-        name = text.strip().partition(" ")[0]
-        other = _OTHER_NAMES.get(name.lower(), "")
-        hint = f'; did you mean "{other}"?' if other else near_miss(name, _FORMS)
-        raise refused(f"{shown(text)} is not a section{hint}", ALLOWED)
+        raise refused(f"{shown(text)} is not a section{_hint(text.strip())}", ALLOWED)
     name = found[1].lower().replace(" ", "-")
     return _READERS[name](text, found[2].strip(), unit)
+
+
+def _hint(text: str) -> str:
+    """What a text that is no section was meant for, as far as it can be known."""
+    diameter, two = _DIAMETER.fullmatch(text), _TWO_SIZES.fullmatch(text)
+    if diameter:
+        return f"; did you mean {shown(f'round {diameter[1]}')}?"
+    if two:
+        kinds = ("ellipse", "flat-oval") if text[0].isalpha() else ("ellipse", "flat-oval", "rectangle")
+        return f"; did you mean {listed([shown(f'{kind} {two[1]}') for kind in kinds])}?"
+    name = text.partition(" ")[0]
+    other = _OTHER_NAMES.get(name.lower(), "")
+    return f'; did you mean "{other}"?' if other else near_miss(name, _FORMS) if name else ""
 
 
 def _round(text: str, rest: str, unit: str) -> SectionSpec:

@@ -20,6 +20,7 @@ __all__ = [
     "Placed",
     "Rim",
     "Solid",
-    "Stretch", "TaperMeetingEnd",
+    "Stretch",
+    "TaperMeetingEnd",
     "cut_slopes",
 ]

@@ -159,8 +159,17 @@ class Solid:
             u, half = panels.nodes, panels.half
             strip = walk(u.ravel())
             ruling = (strip.b - strip.a).reshape(*u.shape, 3)
-            points = (getattr(strip, edge) + self.distance * strip.normal).reshape(*u.shape, 3)
-            velocity = (DERIVATIVE @ points) / half[:, None, None]
+            if type(ends[0]) is End and (edge == "a" or self.cut_b is None):
+                # Differentiating positions would only add rounding: the end's tangent is known.
+                at = ends[0].section.walk(u.ravel())
+                along = np.stack([-at.ey, at.ex], axis=-1) @ ends[0].spans.T
+                velocity = (at.ds[:, None] * along).reshape(*u.shape, 3)
+                if self.distance:
+                    turn = (DERIVATIVE @ strip.normal.reshape(*u.shape, 3)) / half[:, None, None]
+                    velocity = velocity + self.distance * turn
+            else:
+                points = (getattr(strip, edge) + self.distance * strip.normal).reshape(*u.shape, 3)
+                velocity = (DERIVATIVE @ points) / half[:, None, None]
             length = np.linalg.norm(velocity, axis=-1)
             return np.stack([length, 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)], axis=-1)
 

@@ -121,7 +121,7 @@ class CylinderSheet:
         return Place(np.append(np.arange(m), m - 1), np.append(np.full(m, -1.0), 1.0))
 
     def lines(self, place: Place) -> Lines:
-        cylinder, section, d = self.cylinder, self.cylinder.section, self.cylinder.distance
+        section, d = self.cylinder.section, self.cylinder.distance
         u = self.panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
         at = section.walk(u)
         row = np.einsum("nk,nkc->nc", between(place.x), self._columns[place.panel])

@@ -113,7 +113,7 @@ class BandTrim:
         return self._found(start)[2]
 
     def place(self, start: Array) -> tuple[Array, Array]:
-        """Parameters (n,) of the band's end A and lengths (n,) [mm] on its rulings, from there, of the joint."""
+        """Parameters (n,) of the band's end A and lengths (n,) [mm] on its rulings of the joint."""
         u, share, _ = self._found(start)
         return u, share * np.linalg.norm(self._rulings(u)[1], axis=1)
 

@@ -76,7 +76,7 @@ def plot(file: Path) -> None:
     figure = Figure(figsize=(width, flat + solid), dpi=dpi)
     FigureCanvasAgg(figure)
     above = figure.add_axes((0.0, flat / (flat + solid), 1.0, solid / (flat + solid)))
-    above.imshow(imread(BytesIO(picture(built.placed, "T2: " + pattern.facts[1]))), interpolation="lanczos")
+    above.imshow(imread(BytesIO(picture(built.placed, pattern.facts[:4]))), interpolation="lanczos")
     above.axis("off")
     below = figure.add_axes((0.0, 0.0, 1.0, flat / (flat + solid)))
     draw(pattern, PlotPen(below, inches_per_mm * 72.0))

@@ -64,13 +64,13 @@ def _around(axes: Axes) -> None:
     arc = np.radians(np.linspace(0, 40, 30))
     axes.plot(90 * np.cos(arc), 90 * np.sin(arc), "k-", linewidth=0.9)
     axes.text(104, 26, "40°", fontsize=10)
-    axes.set_title("Directions, standing at END A and facing END B", fontsize=11)
+    axes.set_title("Directions, facing END B: standing in front of it, looking in", fontsize=11)
 
 
 def _placed(axes: Axes) -> None:
     shift = (110.0, 70.0)
-    axes.plot(*_ring(600, 300).T, "k-", linewidth=1.6)
-    axes.plot(*_ring(380, 240, at=shift, turn=_TURN).T, "k--", linewidth=1.4)
+    axes.plot(*_ring(600, 300).T, "k--", linewidth=1.4)
+    axes.plot(*_ring(380, 240, at=shift, turn=_TURN).T, "k-", linewidth=1.6)
     axes.plot(0, 0, "k+", markersize=12)
     axes.plot(*shift, "k+", markersize=12)
     _arrow(axes, (0, 0), (shift[0], 0))
@@ -92,8 +92,8 @@ def _placed(axes: Axes) -> None:
         0.2,
     )
     axes.text(shift[0] + 235, shift[1] + 40, "rotate", fontsize=10, ha="left")
-    axes.text(-235, -140, "END A", fontsize=11, ha="right", va="top")
-    axes.text(-60, 172, "END B (far end)", fontsize=11, ha="right", va="bottom")
+    axes.text(-235, -140, "END A (far end)", fontsize=11, ha="right", va="top")
+    axes.text(-60, 172, "END B (near end)", fontsize=11, ha="right", va="bottom")
     axes.set_title("offset and rotate, seen the same way", fontsize=11)
 
 

@@ -1,6 +1,6 @@
 """The reference page docs/kinds.md, made from the declarations of the kinds.
 
-    python docs/figures/kinds.py
+python docs/figures/kinds.py
 """
 
 from __future__ import annotations

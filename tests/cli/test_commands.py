@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from pathlib import Path
 
 import pytest
+from pypdf import PdfReader
 
 import develop.checks
 import develop.job.pipeline
@@ -109,6 +110,59 @@ def test_bare_numbers_are_in_the_units_given(run, tmp_path: Path) -> None:  # ty
     assert (fields["section"], fields["length"], fields["thickness"]) == ("round 406.4", 24.0, 2.54)
 
 
+def test_units_are_those_of_a_job_in_any_case(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    for unit, mm in (("mm", 6.0), ("CM", 60.0), ("m", 6000.0), ("In", 152.4), ("ft", 1828.8)):
+        words = ("straight", "--section", "round 100 mm", "--length", "6", "--units", unit, "-o", "out")
+        assert run(*words, "--formats", "json").code == 0
+        record = json.loads((tmp_path / "out" / "straight.json").read_bytes())
+        assert record["fields"]["length"] == pytest.approx(mm, rel=1e-15)
+        assert record["units"] == "mm"
+
+
+@pytest.mark.parametrize(
+    ("unit", "said"), [("mm", "round 16, length 24"), ("cm", "round 160, length 240"),
+                       ("in", "round 16 in, length 24 in"), ("ft", "round 192 in, length 288 in")]
+)  # fmt: skip
+def test_sheets_are_in_the_units_of_the_command(run, tmp_path: Path, unit: str, said: str) -> None:  # type: ignore[no-untyped-def]
+    words = (
+        "straight",
+        "--section",
+        "round 16",
+        "--length",
+        "24",
+        "--units",
+        unit,
+        "-o",
+        "out",
+        "--formats",
+        "svg",
+    )
+    assert run(*words).code == 0
+    assert said in (tmp_path / "out" / "straight.svg").read_text(encoding="utf-8")
+
+
+def test_a_job_in_inches_gives_sheets_in_inches(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    piece = '[[piece]]\nkind = "straight"\nsection = "round 16"\nlength = "24-3/8"\nthickness = "1/4"\n'
+    (tmp_path / "hall.toml").write_text(f'[job]\nunits = "in"\n{piece}')
+    assert run("job", "hall.toml", "-o", "out", "--formats", "svg,pdf,json").code == 0
+    said = (tmp_path / "out" / "straight.svg").read_text(encoding="utf-8")
+    # 16 pi = 50.2655 in, to the nearest 1/32 (0.03125): 50-1/4.
+    for words in ("round 16 in, length 24-3/8 in", "1/4 in thick", "edges: END A 50-1/4 in, END B 50-1/4 in"):
+        assert words in said
+    pages = PdfReader(tmp_path / "out" / "straight.pdf").pages
+    assert "(inches; directions in degrees anticlockwise)" in pages[0].extract_text()
+    # Letter: 8.5 x 11 in of 72 points.
+    assert [float(side) for side in pages[1].mediabox[2:]] == pytest.approx([612.0, 792.0], abs=0.01)
+    assert json.loads((tmp_path / "out" / "straight.json").read_bytes())["fields"]["length"] == 619.125
+
+
+def test_more_than_one_large_sheet_is_told(run) -> None:  # type: ignore[no-untyped-def]
+    # The girth, 6283 mm, takes two sheets of at most 5080 mm.
+    words = ("straight", "--section", "round 2000", "--length", "300", "-o", "out", "--formats", "pdf")
+    assert "; 2 large sheets in the PDF, to be laid together; all " in run(*words).out
+    assert "large sheets" not in run(*words[:2], "round 400", *words[3:]).out
+
+
 def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
     done = run(
         "transition", "--end-a", "ellipse 600", "--lenght", "450", "--offset", "0,x", "--flush", "top", "--rotate", "1",
@@ -131,7 +185,7 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
         '--mark: "a/b" has the character "/"; allowed: letters',
         '--neutral-line: "2" is out of range; allowed: a number from 0 to 1',
         '--formats: "dxf" is not one of them; did you mean "pdf"?; allowed: svg, pdf, json or png',
-        '--units: "furlong" is not one of them; allowed: mm or in',
+        '--units: "furlong" is not one of them; allowed: mm, cm, m, in or ft',
     ]
     assert len(done.said) == len(starts)
     for start in starts:
@@ -154,7 +208,9 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
         (["girth", "--", "round", "-5"], 'SECTION: "round -5": "-5" is not above zero; allowed: '),
         (["girth", "round 4", "--divisions", "0"], '--divisions: "0" is out of range; allowed: a whole number from 1'),
         (["girth", "round 4", "--json=1"], '--json: "1" is given; allowed: the option alone'),
-        (["girth", "round 4", "--units", "ft"], '--units: "ft" is not one of them; allowed: mm or in'),
+        (["girth", "round 4", "--units", "yd"], '--units: "yd" is not one of them; allowed: mm, cm, m, in or ft'),
+        (["girth", "dia", "300"], 'SECTION: "dia 300" is not a section; did you mean "round 300"?; allowed: '),
+        ([*STRAIGHT, "--cut-b", "slope 5 long top,"], '--cut-b: "slope 5 long top," is not a cut; allowed: square, or'),
         (["job", "-o", "out"], "FILE: not given; allowed: a job file"),
         (["job", "", "-o", "out"], 'FILE: "" is not a path; allowed: a job file'),
         (["job", "none.toml", "-o", "out"], "none.toml: cannot be read: No such file or directory; allowed: a job"),
@@ -209,7 +265,9 @@ def test_what_cannot_be_written_ends_with_3(run, tmp_path: Path) -> None:  # typ
     done = run(*STRAIGHT)
     assert done.code == 3
     assert done.out == ""
-    assert done.said == ["out: cannot be written: File exists"]
+    assert done.said == [
+        "out: cannot be written: File exists; a file is in its place: give another folder, or move the file away"
+    ]
     assert (tmp_path / "out").read_text() == "in the way"
 
 

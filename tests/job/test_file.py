@@ -194,6 +194,19 @@ def test_two_pieces_need_two_marks(tmp_path: Path) -> None:
     assert "hall.toml:1; allowed: a mark of its own for each piece" in said
 
 
+def test_the_message_points_to_the_line_of_the_other_mark(tmp_path: Path) -> None:
+    text = PIECE + 'mark = "A"\n'
+    (said,) = problems_of(tmp_path, text + text)
+    lines = [n for n, line in enumerate((text + text).splitlines(), 1) if line == 'mark = "A"']
+    assert said.startswith(f'hall.toml:{lines[1]}: mark: "A" is the mark of this piece, and of the one at ')
+    assert f"hall.toml:{lines[0]}; allowed:" in said
+
+
+def test_the_job_knows_its_units(tmp_path: Path) -> None:
+    assert job_of(tmp_path, PIECE.encode()).units == "mm"
+    assert job_of(tmp_path, b'[job]\nunits = "in"\n' + PIECE.encode()).units == "in"
+
+
 @pytest.mark.parametrize(("one", "other"), [("A1", "a1"), ("Ä", "A\u0308"), ("straße", "STRASSE")])
 def test_marks_that_some_systems_do_not_tell_apart_are_one_mark(tmp_path: Path, one: str, other: str) -> None:
     marks = [f'mark = "{each}"\n' for each in (one, "B", other)]

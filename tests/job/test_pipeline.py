@@ -60,6 +60,13 @@ def test_only_the_formats_asked_for_are_written(tmp_path: Path) -> None:
     assert {each.name for each in tmp_path.iterdir()} == {"straight.svg", "straight.json"}
 
 
+def test_the_record_and_the_cutting_file_do_not_depend_on_the_units_of_the_sheets(tmp_path: Path) -> None:
+    for units in ("mm", "in"):
+        make(example("transition"), folder=str(tmp_path / units), formats=("json",), units=units)
+    mm, inches = (tmp_path / units / "transition.json" for units in ("mm", "in"))
+    assert mm.read_bytes() == inches.read_bytes()
+
+
 def test_a_check_that_does_not_hold_is_told_and_recorded(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
@@ -75,7 +82,7 @@ def test_a_check_that_does_not_hold_is_told_and_recorded(
     ]
 
 
-@pytest.mark.parametrize("writer", ["svg.svg", "pdf.pdf", "record.record", "picture.picture"])
+@pytest.mark.parametrize("writer", ["svg.svg", "pdf.printed", "record.record", "picture.picture"])
 def test_when_a_format_fails_nothing_is_written(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, writer: str
 ) -> None:

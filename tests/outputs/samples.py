@@ -83,7 +83,7 @@ def rectangle(
     x = np.linspace(0.0, width, divisions + 1)
     a, b = np.stack([x, 0 * x], axis=1), np.stack([x, 0 * x + height], axis=1)
     marks = tuple(
-        WitnessMark(np.array([width * k / 4, y]), np.array([0.0, s]), word, edge)
+        WitnessMark(np.array([width * k / 4, y]), np.array([0.0, s]), word, edge, width * k / 4)
         for edge, y, s in (("a", 0.0, 1.0), ("b", height, -1.0))
         for k, word in _WORDS.items()
     )
@@ -125,10 +125,11 @@ def slanting(
     marks = []
     for k, word in _WORDS.items():
         w = k * math.pi / 2
-        marks.append(WitnessMark(np.array([radius * w, 0.0]), np.array([0.0, 1.0]), word, "a"))
+        marks.append(WitnessMark(np.array([radius * w, 0.0]), np.array([0.0, 1.0]), word, "a", radius * w))
         normal = np.array([rise * math.sin(w), -radius]) / math.hypot(radius, rise * math.sin(w))
         at = np.array([radius * w, short + rise * (1.0 - math.cos(w))])
-        marks.append(WitnessMark(at, normal, word, "b"))
+        running = float(np.interp(w, dense, _running(radius, rise, dense)))
+        marks.append(WitnessMark(at, normal, word, "b", running))
     arcs = np.stack([radius * v, np.interp(v, dense, _running(radius, rise, dense))], axis=1)
     facts = _facts("P7", "straight", f"round {2 * radius:.0f}, cut {slope:.0f} degrees")
     return _pattern(
@@ -180,9 +181,9 @@ def fan(large: float = 300.0, small: float = 200.0, height: float = 250.0, *, fu
     for k, word in _WORDS.items():
         t = first + turn * k / 4
         e = np.array([math.cos(t), math.sin(t)])
-        marks.append(WitnessMark(a[6 * k], -e, word, "a"))
+        marks.append(WitnessMark(a[6 * k], -e, word, "a", turn * k / 4 * outer))
         if small:
-            marks.append(WitnessMark(b[6 * k], e, word, "b"))
+            marks.append(WitnessMark(b[6 * k], e, word, "b", turn * k / 4 * inner))
     facts = _facts("C2", "transition", f"round {2 * large:.0f} to round {2 * small:.0f}, length {height:.0f}")
     sweep = angles - first
     return _pattern("C2", "transition", net, a, b, np.linspace(-math.pi / 2, 1.5 * math.pi, 25),

@@ -7,6 +7,7 @@ import math
 import re
 import subprocess
 import sys
+from dataclasses import replace
 
 import numpy as np
 import pypdfium2
@@ -16,14 +17,27 @@ from pypdf.generic import ContentStream
 from shapely import LineString, Point, Polygon
 
 from develop.outputs.fonts import width
-from develop.outputs.pdf import pdf
+from develop.outputs.pdf import pdf, printed
+from develop.pattern.table import divisions_table
 
 MM = 72.0 / 25.4
 LARGEST = 14400.0  # [points] the largest page that PDF 1.6 allows without UserUnit (its Annex C)
 
 
-def read(*patterns, **options):
-    return PdfReader(io.BytesIO(pdf(patterns, **options)))
+def read(*patterns):
+    return PdfReader(io.BytesIO(pdf(patterns)))
+
+
+def large(reader):
+    """The pages that carry a pattern."""
+    return [page for page in reader.pages if "PRINT AT ACTUAL SIZE" in page.extract_text().split("\n")[0]]
+
+
+def tape(reader):
+    """The pages that a pattern is marked out from by tape; they come last."""
+    count = len(large(reader))
+    assert not any("PRINT AT ACTUAL SIZE" in page.extract_text() for page in reader.pages[count:])
+    return reader.pages[count:]
 
 
 def contents(reader, page):
@@ -88,7 +102,9 @@ def size(page):
 
 def test_one_page_for_each_pattern_at_full_size(samples):
     reader = read(samples.rectangle(), samples.fan())
-    assert len(reader.pages) == 2
+    assert len(large(reader)) == 2
+    assert large(reader) == list(reader.pages[:2])
+    assert printed([samples.rectangle(), samples.fan()])[1] == (1, 1)
     for page in reader.pages:
         assert "/UserUnit" not in page
         assert page.mediabox[:2] == [0, 0]
@@ -149,7 +165,7 @@ def test_words_on_the_sheet(samples):
     for words in (
         "PRINT AT ACTUAL SIZE",
         "sheet 1 of 1",
-        "facing END B",
+        "Facing END B: in front of it, looking in",
         "anticlockwise",
         "0 RIGHT",
         "90 TOP",
@@ -158,6 +174,7 @@ def test_words_on_the_sheet(samples):
         "x = 0",
         "y = 0",
         "END A, the line y = 0",
+        "at END A",
         "sharp edges",
         "gloves and eye protection",
         "Local codes and licensed practice",
@@ -176,9 +193,109 @@ def test_divisions_table_is_printed(samples):
 
 
 def test_inches(samples):
-    plain = read(samples.rectangle(48 * 25.4, 12.375 * 25.4), units="in").pages[0].extract_text()
-    assert "12-3/8" in plain
-    assert "(inches)" in plain
+    reader = read(replace(samples.rectangle(48 * 25.4, 12.375 * 25.4), units="in"))
+    for page in (reader.pages[0], reader.pages[-1]):
+        plain = page.extract_text()
+        assert "12-3/8" in plain
+        assert "(inches; directions in degrees anticlockwise)" in plain
+        assert "All figures in mm" not in plain
+
+
+def test_the_cut_line_is_the_heaviest(samples):
+    """Strokes of the pattern as they stand in the page, widths in mm, by what they draw."""
+    reader = read(samples.rectangle(1256.6, 450.0))
+    widths, now, wide = {}, None, 0.0
+    for operands, operator in ContentStream(reader.pages[0].get_contents(), reader).operations:
+        if operator == b"w":
+            wide = round(float(operands[0]) / MM, 3)
+        elif operator == b"m":
+            now = [np.array([float(v) for v in operands]) / MM]
+        elif operator == b"l":
+            now.append(np.array([float(v) for v in operands]) / MM)
+        elif operator == b"s" and len(now) in (4, 5) and np.ptp(np.vstack(now), axis=0)[0] > 1000.0:
+            widths["cut"] = wide
+        elif operator == b"S" and len(now) == 2 and now[0][0] == now[1][0]:
+            # The sheet's capitals, 0.018 of the root of its area but at most 12, are a tick's length and half a mark's.
+            length = float(np.ptp(np.vstack(now), axis=0)[1])
+            name = {12.0: "tick", 24.0: "mark"}.get(round(length, 2))
+            if name:
+                widths.setdefault(name, set()).add(wide)
+    assert widths == {"cut": 0.5, "mark": {0.25}, "tick": {0.18}}
+
+
+@pytest.mark.parametrize(("units", "sides"), [("mm", (210.0, 297.0)), ("in", (215.9, 279.4))])
+def test_pages_for_the_tape_are_of_office_paper_and_numbered(samples, units, sides):
+    # A4 is 210 x 297 mm (ISO 216), Letter 8.5 x 11 in (ANSI Y14.1).
+    pages = tape(read(replace(samples.rectangle(divisions=180), units=units)))
+    assert len(pages) > 3
+    for n, page in enumerate(pages, 1):
+        assert size(page) == pytest.approx(sides, abs=0.01)
+        assert f"page {n} of {len(pages)}" in page.extract_text()
+        assert "S1" in page.extract_text()
+
+
+@pytest.mark.parametrize("units", ["mm", "in"])
+def test_pages_for_the_tape_say_all_that_is_needed(samples, units):
+    pattern = replace(samples.slanting(150.0, 60.0, 45.0), units=units)
+    plain = " ".join(" ".join(page.extract_text().split()) for page in tape(read(pattern)))
+    for words in (
+        *(" ".join(fact.split()) for fact in pattern.facts), "Facing END B: in front of it, looking in", "90 TOP",
+        "Witness marks", "Lines to mark out", "at END A", "check square", "smooth curve", "sharp edges",
+        "Local codes and licensed practice", "END A, the line y = 0",
+    ):  # fmt: skip
+        assert words in plain, words
+
+
+def test_the_check_across_is_that_of_the_corners(samples):
+    plain = " ".join(
+        " ".join(page.extract_text().split()) for page in tape(read(samples.rectangle(1200.0, 350.0)))
+    )
+    # 1200 and 350 are the sides of a triangle whose long side is 1250 (24, 7, 25).
+    assert plain.count("1250.0 mm") == 2
+    assert "from line 0 at END A straight to line 24 at END B is 1250.0 mm" in plain
+
+
+def test_rows_of_the_tables_stand_whole_on_their_page_under_heads(samples):
+    pattern = samples.slanting(150.0, 60.0, 45.0)
+    rows = divisions_table(pattern.divisions).rows
+    dense = replace(
+        pattern, divisions=tuple(replace(d, number=n) for n, d in enumerate(pattern.divisions * 8))
+    )
+    reader = read(dense)
+    seen = []
+    for page in tape(reader):
+        lines = rows_of(reader, page)
+        numbered = [line for line in lines if len(line) == len(rows[0]) and line[0].isdigit()]
+        if numbered:
+            assert any(line[:2] == ["line", "direction"] for line in lines)
+        seen += numbered
+        paths, texts = contents(reader, page)
+        every = np.vstack([*(s for segments, _ in paths for s in segments), *texts])
+        assert every.min() >= 12.0 - 1e-4
+        assert every[:, 0].max() <= 198.0 + 1e-6
+    assert [line[0] for line in seen] == [str(n) for n in range(200)]
+    assert [tuple(line[1:]) for line in seen] == [row[1:] for row in rows] * 8
+
+
+def rows_of(reader, page):
+    """The words of a page by the height they stand at, from the left."""
+    found = {}
+
+    def visit(text, cm, tm, font, size):
+        if text.strip():
+            found.setdefault(round(tm[5], 2), []).append((tm[4], text.strip()))
+
+    page.extract_text(visitor_text=visit)
+    return [[text for _, text in sorted(line)] for _, line in sorted(found.items(), reverse=True)]
+
+
+def test_witness_marks_are_in_a_table_with_their_running_lengths(samples):
+    reader = read(samples.rectangle(1256.0, 450.0))
+    lines = [line for page in tape(reader) for line in rows_of(reader, page)]
+    words = ("BOTTOM", "RIGHT", "TOP", "LEFT", "BOTTOM")
+    for end, y in (("END A", "0.0"), ("END B", "450.0")):
+        found = [line[-5:] for line in lines if end in line and line[-4:-3] and line[-4] in words]
+        assert found == [[end, word, f"{314 * n}.0", f"{314 * n}.0", y] for n, word in enumerate(words)]
 
 
 def test_every_font_is_embedded(samples):
@@ -197,7 +314,7 @@ def test_every_font_is_embedded(samples):
 def parted(samples):
     """A sheet of 11 m by 6.4 m, of 3 columns and 2 rows."""
     reader = read(samples.rectangle(11000.0, 6400.0))
-    return reader, [contents(reader, page) for page in reader.pages]
+    return reader, [contents(reader, page) for page in large(reader)]
 
 
 def test_a_sheet_over_5080_mm_goes_on_to_further_pages(parted):
@@ -205,7 +322,7 @@ def test_a_sheet_over_5080_mm_goes_on_to_further_pages(parted):
     assert len(pages) == 6
     for page in reader.pages:
         assert max(float(v) for v in page.mediabox[2:]) <= LARGEST
-    heads = [" ".join(page.extract_text().split()) for page in reader.pages]
+    heads = [" ".join(page.extract_text().split()) for page in large(reader)]
     for n, head in enumerate(heads):
         assert f"sheet {n + 1} of 6" in head
         assert "PRINT AT ACTUAL SIZE" in head
@@ -262,8 +379,8 @@ def test_crosses_of_neighbours_lie_on_each_other(parted):
 
 def test_what_is_wholly_off_a_page_is_not_written(samples):
     reader = read(samples.rectangle(11000.0, 400.0))
-    assert len(reader.pages) == 3
-    for page in reader.pages:
+    assert len(large(reader)) == 3
+    for page in large(reader):
         wide, _ = size(page)
         for segments, closed in contents(reader, page)[0]:
             if not closed:
@@ -273,7 +390,7 @@ def test_what_is_wholly_off_a_page_is_not_written(samples):
 
 
 def test_a_page_just_small_enough_stays_one(samples):
-    page, *more = read(samples.rectangle(4950.0, 400.0)).pages
+    page, *more = large(read(samples.rectangle(4950.0, 400.0)))
     assert more == []
     assert float(page.mediabox[2]) <= LARGEST
 

@@ -37,7 +37,7 @@ def chunks(data):
 
 
 def test_png_of_a_fixed_size_that_names_no_program(solid):
-    found = list(chunks(picture([solid], "T1")))
+    found = list(chunks(picture([solid], ["T1"])))
     kinds = [kind for kind, _ in found]
     assert struct.unpack(">II", found[0][1][:8]) == (1200, 900)
     assert not {b"tEXt", b"iTXt", b"zTXt", b"tIME"} & set(kinds)
@@ -46,10 +46,10 @@ def test_png_of_a_fixed_size_that_names_no_program(solid):
 def test_the_same_piece_gives_the_same_bytes_whatever_the_user_has_set(solid):
     import matplotlib
 
-    one = picture([solid], "T1")
+    one = picture([solid], ["T1"])
     with matplotlib.rc_context({"savefig.dpi": 30, "figure.facecolor": "black", "font.size": 30}):
-        assert picture([solid], "T1") == one
-    assert picture([solid], "T2") != one
+        assert picture([solid], ["T1"]) == one
+    assert picture([solid], ["T2"]) != one
 
 
 def test_pyplot_is_not_imported():
@@ -61,7 +61,7 @@ def test_pyplot_is_not_imported():
 
 
 def test_white_ground_and_a_piece_in_the_middle(solid):
-    image = dots(picture([solid], "T1"))
+    image = dots(picture([solid], ["T1"]))
     for corner in (image[0, 0], image[0, -1], image[-1, 0], image[-1, -1]):
         assert corner.tolist() == [255, 255, 255]
     border = np.concatenate(
@@ -78,11 +78,11 @@ def red(image):
 
 def test_the_seam_is_drawn_where_it_is(samples):
     # At the left side of the piece the view is from the left, so the whole seam is to be seen.
-    seen = red(dots(picture([samples.Frustum(seam_at=math.pi)], "")))
+    seen = red(dots(picture([samples.Frustum(seam_at=math.pi)], [])))
     assert seen.sum() > 2000
     across = np.flatnonzero(seen.any(axis=0))
     assert np.ptp(across) > 300
-    hidden = red(dots(picture([samples.Frustum(seam_at=-math.pi / 2)], "")))
+    hidden = red(dots(picture([samples.Frustum(seam_at=-math.pi / 2)], [])))
     assert 300 < hidden.sum() < seen.sum()
 
 
@@ -97,12 +97,44 @@ def test_words_stand_outside_the_piece_and_apart(samples, sizes, seam_at):
         camera = module._Camera(middle, reach, aside=aside)
         shape = MultiPoint(camera.project(vertices)).convex_hull
         words = module._words(camera, [solid])
-        assert [word[0] for word in words] == ["END A", "END B", "TOP", "SEAM"]
+        assert [word[0] for word in words] == ["END A", "END B", "TOP", "SEAM", "RIGHT"]
         for _, _, end, _ in words:
             assert shape.distance(Point(end)) > 0.02
         for n, (_, _, end, _) in enumerate(words):
             for _, _, other, _ in words[:n]:
                 assert np.hypot(*(end - other)) > 0.08
+
+
+@pytest.mark.parametrize("shift", [(0.0, 0.0), (120.0, 0.0), (-250.0, -80.0)])
+def test_right_is_the_right_side_of_end_b_and_its_word_is_not_to_the_left_of_it(samples, shift):
+    solid = samples.Frustum(shift=shift)
+    for aside in (1.0, -1.0):
+        camera = module._Camera(np.zeros(3), 900.0, aside=aside)
+        text, start, end, _ = module._words(camera, [solid])[-1]
+        assert text == "RIGHT"
+        # The circle of END B: radius 200 about the shift, at the height of its centre, 450 from END A.
+        assert start == pytest.approx(camera.project(np.array([200.0 + shift[0], shift[1], 450.0])), abs=1e-9)
+        assert end[0] >= start[0] - 1e-12
+
+
+def test_a_long_caption_goes_on_two_lines_of_like_length():
+    facts = ["T1: transition", "END A ellipse 800 x 360 to END B ellipse 600 x 300", "length 550, END B 120 right",
+             "sizes mean (mid-thickness)"]  # fmt: skip
+    text, size = module._caption(facts)
+    assert text.split("\n") == [f"{facts[0]}  ·  {facts[1]}", f"{facts[2]}  ·  {facts[3]}"]
+    assert 11.0 < size <= 14.0
+    assert module._caption(facts[:1]) == (facts[0], 14.0)
+    assert module._caption([])[0] == ""
+
+
+def test_the_caption_stays_in_the_picture_and_off_the_piece(samples):
+    facts = ["M" * 40, "M" * 40, "M" * 40]
+    bare, full = (dots(picture(samples.Frustum(), each)) for each in ([], facts))
+    changed = np.argwhere((bare != full).any(axis=2))
+    assert changed[:, 0].min() > 5
+    assert changed[:, 0].max() < 0.12 * 900
+    assert changed[:, 1].min() > 20
+    assert changed[:, 1].max() < 1180
 
 
 def test_the_view_is_facing_end_b_from_above_with_x_to_the_right_and_y_up():
@@ -139,7 +171,7 @@ def test_near_things_look_larger():
 
 def test_outside_and_inside_are_told_apart(samples):
     solid = samples.Frustum(150.0, 150.0, 400.0, shift=(0.0, 0.0))
-    image = dots(picture([solid], ""))
+    image = dots(picture([solid], []))
     bluish = (image[..., 2] - image[..., 0] > 25).sum()  # the outside
     brownish = ((image[..., 0] - image[..., 2] > 4) & (image[..., 0] < 200) & ~red(image)).sum()  # the inside
     assert bluish > 50000

@@ -42,12 +42,13 @@ def test_keys(samples):
     assert (content["mark"], content["kind"], content["units"]) == ("C2", "transition", "mm")
     assert content["fields"] == {"length": 250.0, "material": "galvanised"}
     (pattern,) = content["patterns"]
-    assert list(pattern) == ["mark", "quantity", "face", "net", "cut", "lines", "divisions"]
+    assert list(pattern) == ["mark", "quantity", "face", "net", "cut", "lines", "divisions", "marks"]
     assert (pattern["quantity"], pattern["face"]) == (2, "outside")
     assert set(pattern["net"]) == {"outline", "openings", "area", "edges"}
     assert set(pattern["cut"]) == {"outline", "openings", "area"}
     assert set(pattern["lines"][0]) == {"from", "to", "turn", "radius"}
     assert set(pattern["divisions"][0]) == {"direction", "a", "b", "length"}
+    assert set(pattern["marks"][0]) == {"edge", "text", "at", "arc"}
     assert set(content["checks"][0]) == {"name", "expected", "got", "limit", "unit", "holds"}
 
 
@@ -104,9 +105,29 @@ def test_flat_lines_have_no_radius_and_turns_are_in_degrees(samples):
 
 def test_directions_are_in_degrees(samples):
     rows = read(samples.rectangle())["patterns"][0]["divisions"]
-    assert [row["direction"] for row in rows[:3]] == pytest.approx([-90.0, -75.0, -60.0])
+    assert [row["direction"] for row in rows[:7]] == [270.0, 285.0, 300.0, 315.0, 330.0, 345.0, 0.0]
     assert rows[6]["a"] == [314.15, 0.0]
     assert rows[6]["length"] == 450.0
+
+
+@pytest.mark.parametrize(
+    ("radians", "degrees"),
+    [(2 * math.pi, 0.0), (-1e-13, 0.0), (2 * math.pi - 1e-13, 0.0), (math.radians(90) - 2e-16, 90.0), (math.pi, 180.0),
+     (math.radians(12.3456789), 12.3456789)],
+)  # fmt: skip
+def test_directions_read_as_they_are_meant(samples, radians, degrees):
+    row = replace(samples.rectangle().divisions[0], direction=radians)
+    (found,) = read(replace(samples.rectangle(), divisions=(row,)))["patterns"][0]["divisions"]
+    assert str(found["direction"]) == str(degrees)
+
+
+def test_witness_marks_with_their_running_lengths(samples):
+    marks = read(samples.rectangle(1256.0, 450.0))["patterns"][0]["marks"]
+    words = ("BOTTOM", "RIGHT", "TOP", "LEFT", "BOTTOM")
+    assert marks == [
+        {"edge": edge, "text": word, "at": [314.0 * n, y], "arc": 314.0 * n}
+        for edge, y in (("a", 0.0), ("b", 450.0)) for n, word in enumerate(words)
+    ]  # fmt: skip
 
 
 def test_an_end_that_is_a_point_has_no_length(samples):

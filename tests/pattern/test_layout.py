@@ -173,3 +173,42 @@ def test_text_is_never_wider_than_estimated(face):
 )
 def test_upright(angle, turned):
     assert math.degrees(upright(math.radians(angle))) == pytest.approx(turned, abs=1e-9)
+
+
+def numbers_at(pattern, edge):
+    """The numbers at one edge, each known to be nearest to its own line."""
+    ends = np.array([(row.a, row.b)[edge] for row in pattern.divisions])
+    other = np.array([(row.b, row.a)[edge] for row in pattern.divisions])
+    along = (other - ends) / np.hypot(*(other - ends).T)[:, None]
+    found = []
+    for label in (label for label in pattern.labels if label.text.isdigit()):
+        gap = label.at - ends
+        if np.hypot(*gap.T).min() > np.hypot(*(other - label.at).T).min():
+            continue
+        off = np.abs(gap[:, 0] * along[:, 1] - gap[:, 1] * along[:, 0])  # from each line
+        near = int(np.argmin(np.where((gap * along).sum(axis=1) > 0.0, off, np.inf)))
+        number = int(label.text)
+        # A number in a corner may stand before the next line where the lines are very close.
+        assert abs(near - number) <= (2 if number in (0, len(ends) - 1) and len(ends) > 100 else 0)
+        found.append(number)
+    assert len(set(found)) == len(found)
+    return set(found)
+
+
+@pytest.mark.parametrize(
+    "shape", ["rectangle", "slanting", "fan", "340 degrees", "narrow ring", "huge", "low strip"]
+)
+@pytest.mark.parametrize("edge", [0, 1])
+def test_first_last_and_numbers_at_witness_marks_stand_by_their_ticks(samples, shape, edge):
+    name, sizes = SHAPES[shape]
+    assert {0, 6, 12, 18, 24} <= numbers_at(getattr(samples, name)(**sizes), edge)
+
+
+@pytest.mark.parametrize("edge", [0, 1])
+def test_numbers_that_find_no_room_leave_the_others_clear(samples, edge):
+    found = numbers_at(samples.rectangle(divisions=180), edge)
+    assert {0, 180} <= found
+    between = sorted(found - {45, 90, 135})
+    assert len(between) > 30
+    # Every fourth, but for what the words at the marks have displaced.
+    assert all(number % 4 == 0 for number in between)

@@ -7,7 +7,7 @@ from itertools import pairwise
 
 import pytest
 
-from develop.pattern.table import divisions_table
+from develop.pattern.table import divisions_table, marks_table
 
 
 def test_running_lengths_are_rounded_from_the_start_and_not_added_up(samples):
@@ -42,3 +42,24 @@ def test_a_full_turn_is_written_as_0(samples, direction):
 
     row = replace(samples.rectangle().divisions[0], direction=direction)
     assert divisions_table([row]).rows[0][1] == "0.0"
+
+
+def test_what_lies_halfway_is_written_the_same_whatever_its_last_digits(samples):
+    from dataclasses import replace
+
+    row = samples.rectangle().divisions[3]
+    lengths = {
+        divisions_table([replace(row, length=length)]).rows[0][4]
+        for length in (159.55, 159.55 - 3e-14, 159.55 + 3e-14)
+    }
+    assert len(lengths) == 1
+
+
+def test_marks_by_end_and_running_length(samples):
+    table = marks_table(samples.rectangle(width=48 * 25.4, height=12.375 * 25.4).marks[::-1], units="in")
+    assert [row[:3] for row in table.rows[:5]] == [
+        ("END A", word, str(12 * n)) for n, word in enumerate(("BOTTOM", "RIGHT", "TOP", "LEFT", "BOTTOM"))
+    ]
+    assert table.rows[-1] == ("END B", "BOTTOM", "48", "48", "12-3/8")
+    assert "inches" in table.title
+    assert all(len(row) == len(table.heads) for row in table.rows)

@@ -8,6 +8,9 @@ import numpy as np
 import pytest
 
 from develop.errors import InputError
+from develop.pattern.layout import lettered
+from develop.pieces import kind_of
+from develop.pieces.fields import read_piece
 from tests.pieces.making import make
 
 
@@ -93,3 +96,88 @@ def test_sine_of_the_slanting_tangent() -> None:
     i = np.searchsorted(points[:, 0], x)
     climb = (points[i + 1, 1] - points[i - 1, 1]) / (points[i + 1, 0] - points[i - 1, 0])
     assert climb == pytest.approx(sin(pi / 2), abs=1e-3)
+
+
+def test_its_sheet_says_what_it_fits_and_how() -> None:
+    facts = band(thickness=6.3).facts
+    # DN 200 is 219.1 outside; round the paper's middle that is pi 219.2 = 688.6.
+    for words in (
+        "pipe DN 200, 219.1 outside, wall 6.3", "cut 45°, longest at right", "mark along END B",
+        "the pipe stays on the END A side", "wrap round, this side out", "girth of the band 688.6",
+        "paper 0.1 mm thick",
+    ):  # fmt: skip
+        assert words in facts
+
+
+def test_inside_its_sheet_says_wall_and_inside() -> None:
+    facts = band(thickness=6.3, face="inside").facts
+    # 219.1 - 2 x 6.3 = 206.5; less the paper pi 206.4 = 648.4.
+    for words in (
+        "pipe DN 200, 206.5 inside, wall 6.3", "lay inside, this side in towards you", "girth of the band 648.4",
+    ):  # fmt: skip
+        assert words in facts
+
+
+def test_sizes_are_outside_unless_told() -> None:
+    assert "round 300, 300 outside, wall 8" in band(section="round 300", thickness=8).facts
+    assert "round 300, 316 outside, wall 8" in band(section="round 300", thickness=8, sizes="inside").facts
+    assert (
+        "ellipse 400 x 200, 416 x 216 outside, wall 8"
+        in band(section="ellipse 400 x 200", thickness=8, sizes="inside").facts
+    )
+    assert band(section="round 300").net.curve("a").length == pytest.approx(pi * 300.1, rel=1e-12)
+
+
+@pytest.mark.parametrize("sizes", ["outside", "mean"])
+def test_inside_a_round_that_is_not_measured_inside_needs_its_wall(sizes: str) -> None:
+    with pytest.raises(InputError) as caught:
+        band(section="round 300", face="inside", sizes=sizes)
+    (problem,) = caught.value.problems
+    assert problem.field == "thickness"
+    assert problem.allowed == "the pipe's wall thickness, or sizes = inside"
+    made = band(section="round 300", face="inside", sizes="inside")
+    assert made.net.curve("a").length == pytest.approx(pi * 299.9, rel=1e-12)
+
+
+def words_of(pattern):
+    return {label.text: label for label in lettered(pattern).labels}
+
+
+@pytest.mark.parametrize("face", ["outside", "inside"])
+def test_the_sides_say_how_they_meet_and_the_lap_is_called_so(face: str) -> None:
+    pattern = band(face=face, thickness=6.3, lap=30, seam_at="bottom", cut="slope 30 long top", narrowest=80)
+    words = words_of(pattern)
+    assert "SEAM" not in words
+    whole = pattern.cut.curve("a").length
+    girth = pattern.net.curve("a").length
+    # Outside up the lap is beyond the right end; mirrored, beyond the left one.
+    edge, dashed, lap = (0.0, girth, girth + 15.0) if face == "outside" else (whole, 30.0, 15.0)
+    for text, x, off in (
+        ("THIS EDGE TO DASHED LINE", edge, 8.0),
+        ("MEETS HERE", dashed, 8.0),
+        ("LAP", lap, 4.0),
+    ):
+        label = words[text]
+        assert abs(label.at[0] - x) < off, text
+        assert abs(label.angle) == pytest.approx(pi / 2, abs=1e-6)
+        assert label.height >= 2.0
+    # The last word on the band's own side of the line, the first within the sheet.
+    assert 0.0 < words["THIS EDGE TO DASHED LINE"].at[0] < whole
+    assert bool(words["MEETS HERE"].at[0] < dashed) is (face == "outside")
+    # The net line where the edge must meet is drawn, dashed, at the place the words say.
+    assert pattern.net.curve("seam_right" if face == "outside" else "seam_left").start[0] == pytest.approx(
+        dashed
+    )
+
+
+def test_without_a_lap_the_edges_meet() -> None:
+    pattern = band(lap=0, narrowest=80)
+    texts = [label.text for label in lettered(pattern).labels]
+    assert texts.count("EDGES MEET") == 2
+    assert "LAP" not in texts
+
+
+def test_inches() -> None:
+    piece, _ = read_piece(kind_of("marking-band"), {"section": "pipe NPS 8", "cut": "slope 45 long 0"})
+    # NPS 8 is 8.625 in outside (ASME B36.10M).
+    assert "pipe NPS 8, 8-5/8 in outside" in piece.build(units="in").patterns[0].facts

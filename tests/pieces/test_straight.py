@@ -145,3 +145,16 @@ def test_full_lines_on_plate_and_ticks_on_sheet() -> None:
     assert full(thickness=3)
     assert full(marks="full")
     assert not full(thickness=12, marks="ticks")
+
+
+@pytest.mark.parametrize("face", ["outside", "inside"])
+def test_witness_marks_know_their_running_lengths(face: str) -> None:
+    (pattern,) = make("straight", section="round 300", length=500, seam_at="bottom", face=face).patterns
+    quarter = 300 * pi / 4
+    words = ["BOTTOM", "RIGHT", "TOP", "LEFT", "BOTTOM"]
+    for edge in "ab":
+        marks = sorted((mark.arc, mark.text) for mark in pattern.marks if mark.edge == edge)
+        assert [text for _, text in marks] == (words if face == "outside" else words[::-1])
+        assert [arc for arc, _ in marks] == pytest.approx([n * quarter for n in range(5)], abs=1e-9)
+        for mark in pattern.marks:
+            assert mark.at[0] == pytest.approx(mark.arc, abs=1e-9)  # square edges are straight

@@ -24,7 +24,10 @@ WRITTEN = 0.001  # [mm] the outline's promise
 
 PIECES: dict[str, Piece] = {
     "transition": Transition(
-        end_a=parse_section("ellipse 600 x 300"), end_b=parse_section("round 400"), length=400.0, offset=(80.0, 40.0)
+        end_a=parse_section("ellipse 600 x 300"),
+        end_b=parse_section("round 400"),
+        length=400.0,
+        offset=(80.0, 40.0),
     ),
     "inside up": Transition(
         end_a=parse_section("round 250"),
@@ -78,7 +81,9 @@ def test_length_of_the_written_edges(name: str) -> None:
     assert at == sorted(at)  # anticlockwise: along a, up the right seam, back along b
     ring = np.vstack([ring, ring[:1]])
     edges = pattern["net"]["edges"]
-    for start, end, edge in zip(at, [*at[1:], len(ring) - 1], ("a", "seam_right", "b", "seam_left"), strict=True):
+    for start, end, edge in zip(
+        at, [*at[1:], len(ring) - 1], ("a", "seam_right", "b", "seam_left"), strict=True
+    ):
         drawn = np.hypot(*np.diff(ring[start : end + 1], axis=0).T).sum()
         assert drawn == pytest.approx(edges[edge], abs=0.01)
         assert drawn <= edges[edge] + 1e-3

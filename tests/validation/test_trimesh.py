@@ -25,7 +25,10 @@ from develop.surfaces.band import Band
 
 PIECES: dict[str, Piece] = {
     "transition": Transition(
-        end_a=parse_section("ellipse 600 x 300"), end_b=parse_section("round 400"), length=450.0, offset=(0.0, 50.0)
+        end_a=parse_section("ellipse 600 x 300"),
+        end_b=parse_section("round 400"),
+        length=450.0,
+        offset=(0.0, 50.0),
     ),
     "rotated": Transition(
         end_a=parse_section("ellipse 600 x 300"),
@@ -116,8 +119,13 @@ def test_volume_of_the_marking_band() -> None:
 
 
 def test_a_cone_closes_in_its_point() -> None:
-    base, apex = Rim(Ellipse(width=6.0, height=6.0), Frame.square()), Rim(Point(), Frame.square(at=(0, 0, 4.0)))
-    solid = Solid(End.placed(base.section, base.frame), End.placed(apex.section, apex.frame), side="hull", seam=0.0)
+    base, apex = (
+        Rim(Ellipse(width=6.0, height=6.0), Frame.square()),
+        Rim(Point(), Frame.square(at=(0, 0, 4.0))),
+    )
+    solid = Solid(
+        End.placed(base.section, base.frame), End.placed(apex.section, apex.frame), side="hull", seam=0.0
+    )
     coarse, fine = (side(solid, n).area for n in (1000, 2000))
     assert (4.0 * fine - coarse) / 3.0 == pytest.approx(15.0 * pi, rel=1e-9)
     assert Band(base, apex).sheet(0.0).area == pytest.approx(15.0 * pi, rel=1e-13)

@@ -1,0 +1,166 @@
+"""Whether all that is drawn on the sheet is where the folded lines have it.
+
+The closing check proves the dense lines. What a person works from is drawn beside them: the
+contour, the roll lines, the table, the witness marks. Each is held to the dense lines here.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from develop.pattern.curve import Curve
+from develop.pattern.pattern import Pattern
+from develop.quadrature import Array, Indices
+from develop.solid.solid import Solid
+
+__all__ = ["drawn_miss", "marks_miss", "roll_lines_miss", "table_miss"]
+
+_STEPS = 16
+_NEWTON_STEPS = 6
+_WINDOW = 24
+# Of the dense lines, spread evenly, so that the whole costs no more than the folding.
+_MOST = 400
+_DIRECTIONS = {"RIGHT": (1.0, 0.0), "TOP": (0.0, 1.0), "LEFT": (-1.0, 0.0), "BOTTOM": (0.0, -1.0)}
+
+
+@dataclass(frozen=True)
+class _Beside:
+    """Where points lie on an edge of the dense lines: strip (k,), share of it (k,), distance (k,) [mm]."""
+
+    strip: Indices
+    share: Array
+    gap: Array
+
+    def between(self, values: Array) -> Array:
+        """Values (n, ...) of the lines at those places."""
+        low, high = values[self.strip], values[self.strip + 1]
+        share = self.share.reshape(-1, *(1,) * (values.ndim - 1))
+        return np.asarray(low + share * (high - low))
+
+
+def _beside(points: Array, edge: Array) -> _Beside:
+    along = np.diff(edge, axis=0)
+    square = np.maximum((along * along).sum(axis=1), 1e-300)
+    from_start = points[:, None] - edge[:-1]
+    share = np.clip((from_start * along).sum(axis=-1) / square, 0.0, 1.0)
+    gap = np.hypot(*np.moveaxis(from_start - share[..., None] * along, -1, 0))
+    strip = np.argmin(gap, axis=1)
+    row = np.arange(len(points))
+    return _Beside(strip, share[row, strip], gap[row, strip])
+
+
+def drawn_miss(pattern: Pattern) -> float:
+    """Largest distance [mm] of the dense lines' ends from the drawn edges, or of corners from the seams."""
+    lines, worst = pattern.rulings, 0.0
+    for name, ends in (("a", lines.a), ("b", lines.b[::-1])):
+        curve = pattern.net.curve(name)
+        if curve is not None:
+            worst = max(worst, float(np.max(_distance(ends, curve))))
+        else:
+            worst = max(worst, float(np.max(np.hypot(*(ends - ends[0]).T))))
+    for name, line in (("seam_right", (lines.a[-1], lines.b[-1])), ("seam_left", (lines.b[0], lines.a[0]))):
+        curve = pattern.net.curve(name)
+        tips = np.array([curve.start, curve.end]) if curve else np.full((2, 2), np.inf)
+        worst = max(worst, float(np.max(np.hypot(*(tips - np.array(line)).T))))
+    return worst
+
+
+def _distance(points: Array, curve: Curve) -> Array:
+    """Distance (k,) [mm] from a chain of Béziers of points that follow one another along it, `_MOST` at most.
+
+    From the nearest of the samples about the same running length, Newton steps lead to the foot.
+    """
+    pieces = curve.pieces
+    grid = np.arange(_STEPS) / _STEPS
+    samples = _bezier(np.repeat(pieces, _STEPS, axis=0), np.tile(grid, len(pieces)))[0]
+    samples = np.vstack([samples, curve.end])
+    drawn, given = (
+        np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(each, axis=0).T))]) for each in (samples, points)
+    )
+    guess = np.searchsorted(drawn, given * (drawn[-1] / given[-1]))
+    some = np.unique(np.linspace(0, len(points) - 1, min(len(points), _MOST)).astype(int))
+    points, guess = points[some], guess[some]
+    window = np.clip(guess[:, None] + np.arange(-_WINDOW, _WINDOW + 1), 0, len(samples) - 1)
+    gap = samples[window] - points[:, None]
+    nearest = window[np.arange(len(points)), np.argmin((gap * gap).sum(axis=-1), axis=1)]
+    piece = np.minimum(nearest // _STEPS, len(pieces) - 1)
+    t = nearest / _STEPS - piece
+    best = np.full(len(points), np.inf)
+    for _ in range(_NEWTON_STEPS):
+        at, speed = _bezier(pieces[piece], t)
+        best = np.minimum(best, np.hypot(*(at - points).T))
+        size = np.maximum((speed * speed).sum(axis=1), 1e-300)
+        t = t - ((at - points) * speed).sum(axis=1) / size
+        over, under = (t > 1.0) & (piece < len(pieces) - 1), (t < 0.0) & (piece > 0)
+        piece = piece + over - under
+        t = np.where(over, 0.0, np.where(under, 1.0, np.clip(t, 0.0, 1.0)))
+    return np.asarray(best)
+
+
+def _bezier(p: Array, t: Array) -> tuple[Array, Array]:
+    """Points and derivatives (n, 2) of Béziers (n, 4, 2) at t (n,)."""
+    s, t = (1.0 - t)[:, None], t[:, None]
+    a, b, c = p[:, 1] - p[:, 0], p[:, 2] - p[:, 1], p[:, 3] - p[:, 2]
+    at = s**3 * p[:, 0] + 3.0 * s * s * t * p[:, 1] + 3.0 * s * t * t * p[:, 2] + t**3 * p[:, 3]
+    return at, 3.0 * (s * s * a + 2.0 * s * t * b + t * t * c)
+
+
+def _strips(pattern: Pattern) -> tuple[_Beside, Array]:
+    """The roll lines' places among the dense lines, and how far both ends lie from there (n,) [mm]."""
+    starts, ends = (np.array([getattr(line, tip) for line in pattern.lines]) for tip in ("start", "end"))
+    lines = pattern.rulings
+    # From the longer edge: an end that is a point has no places.
+    if np.ptp(lines.a, axis=0).max() >= np.ptp(lines.b, axis=0).max():
+        places = _beside(starts, lines.a)
+        far = np.hypot(*(places.between(lines.b) - ends).T)
+    else:
+        places = _beside(ends, lines.b)
+        far = np.hypot(*(places.between(lines.a) - starts).T)
+    return places, np.maximum(places.gap, far)
+
+
+def roll_lines_miss(pattern: Pattern) -> tuple[float, float]:
+    """How far the roll lines are from lines of the sheet that the piece is rolled along: the largest distance
+    of an end [mm], and the largest error of the turn [degrees] that one states since the line before."""
+    places, off = _strips(pattern)
+    turned = places.between(np.cumsum(pattern.rulings.turn))
+    stated = np.array([line.turn for line in pattern.lines])
+    error = np.abs(np.diff(turned, prepend=turned[0]) - stated)
+    return float(np.max(off)), float(np.degrees(np.max(error)))
+
+
+def table_miss(pattern: Pattern, solid: Solid) -> float:
+    """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
+    rows = pattern.divisions
+    section = solid.end_a.section
+    strip = solid.strip(section.at_direction(np.array([row.direction for row in rows])))
+    true = np.linalg.norm(strip.b - strip.a, axis=1)
+    points = np.array([(row.a, row.b) for row in rows])
+    drawn = np.array([(line.start, line.end) for line in pattern.lines])
+    flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
+    length = np.array([row.length for row in rows])
+    return float(max(np.max(np.abs(each)) for each in (length - true, flat - true, points - drawn)))
+
+
+def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Solid) -> float:
+    """Largest distance [mm] of a witness mark, on the folded sheet, from the direction that it names.
+
+    folded: the dense lines as `develop.checks.fold.folded` returns them.
+    """
+    a, b, normal = folded
+    lines = pattern.rulings
+    mirrored = pattern.face == "inside"
+    worst = 0.0
+    for edge, flat, space, end in (("a", lines.a, a, solid.end_a), ("b", lines.b, b, solid.end_b)):
+        marks = [mark for mark in pattern.marks if mark.edge == edge]
+        if not marks:
+            continue
+        places = _beside(np.array([mark.at for mark in marks]), flat[::-1] if mirrored else flat)
+        at = places.between(space - solid.distance * normal) - end.origin
+        to = np.array([_DIRECTIONS[mark.text] for mark in marks])
+        aside = np.abs(to[:, 0] * at[:, 1] - to[:, 1] * at[:, 0])
+        beyond = np.where((to * at[:, :2]).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))
+        worst = max(worst, float(np.max(np.maximum(beyond, places.gap))))
+    return worst

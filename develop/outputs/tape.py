@@ -1,0 +1,121 @@
+"""Pages of office paper from which a pattern is marked out by tape: facts, view, notes, tables.
+
+No row of a table is cut in two, and each part of a table has its heads. All lengths in mm.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from develop.outputs.blocks import CAUTIONS, Block, Grid, notes, title, view
+from develop.outputs.ink import Ink
+from develop.pattern.pattern import Pattern
+from develop.pattern.table import divisions_table, marks_table
+from develop.units import format_length
+
+__all__ = ["MARGIN", "TapePage", "paper", "tape_pages"]
+
+MARGIN = 12.0
+"""Left empty round each page [mm]."""
+
+_PAPER = {"mm": (210.0, 297.0), "in": (215.9, 279.4)}  # A4 (ISO 216), Letter (ANSI Y14.1)
+_STRIP = 8.0  # [mm] heading of a page
+_GAP = 7.0
+_TEXT = 3.0  # read at a table, not from an arm's length
+_VIEW = 92.0  # [mm] width of the view of directions
+_MANY = 12  # rows of witness marks that do not stand beside the view any more
+_FEW = 3  # rows of a table that are not worth a beginning at the foot of a page
+
+
+@dataclass(frozen=True)
+class TapePage:
+    """One page: its heading, and blocks with their left edge and their top below that of the page."""
+
+    heading: str
+    blocks: tuple[tuple[Block, float, float], ...]
+
+    def draw(self, ink: Ink, high: float) -> None:
+        """Draw on a page that is `high` within its margins [mm]."""
+        ink.text(0.0, high - 3.5, self.heading, 3.5)
+        for block, left, down in self.blocks:
+            block.draw(ink, left, high - _STRIP - down)
+
+
+def paper(pattern: Pattern) -> tuple[float, float]:
+    """Width and height of the pages [mm]: A4, or Letter where the figures are inches."""
+    return _PAPER[pattern.units]
+
+
+def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
+    """The pages of a pattern, in order."""
+    wide, high = (size - 2.0 * MARGIN for size in paper(pattern))
+    flow = _Flow(high - _STRIP)
+    flow.block(title(pattern, wide))
+    marks = Grid(marks_table(pattern.marks, units=pattern.units), most=wide - _VIEW - 2.0)
+    count = len(marks.table.rows)
+    if count <= _MANY:
+        flow.block(view(_VIEW), marks.part(0, count), apart=wide - marks.wide)
+    else:
+        flow.block(view(_VIEW))
+        flow.table(marks)
+    flow.block(notes(_texts(pattern), wide, _TEXT))
+    flow.table(Grid(divisions_table(pattern.divisions, units=pattern.units), most=wide))
+    count = len(flow.pages)
+    words = f"{pattern.mark}   ·   to mark out by tape, not to scale   ·   page"
+    return tuple(TapePage(f"{words} {n} of {count}", tuple(page)) for n, page in enumerate(flow.pages, 1))
+
+
+class _Flow:
+    """Blocks set one below the other, page by page of a height [mm]."""
+
+    def __init__(self, high: float) -> None:
+        self._high = high
+        self._down = 0.0
+        self.pages: list[list[tuple[Block, float, float]]] = [[]]
+
+    def block(self, block: Block, beside: Block | None = None, *, apart: float = 0.0) -> None:
+        """A block, and perhaps another `apart` from the left edge beside it [mm]."""
+        high = max(block.high, beside.high if beside else 0.0)
+        if self._down and self._down + high > self._high + 1e-9:
+            self._turn()
+        self.pages[-1].append((block, 0.0, self._down))
+        if beside:
+            self.pages[-1].append((beside, apart, self._down))
+        self._down += high + _GAP
+
+    def table(self, grid: Grid) -> None:
+        """The rows of a table, on as many pages as they take."""
+        first, count = 0, len(grid.table.rows)
+        while first < count:
+            some = min(grid.fits(self._high - self._down), count - first)
+            if self._down and some < min(_FEW, count - first):
+                self._turn()
+                continue
+            self.block(grid.part(first, max(1, some)))
+            first += max(1, some)
+
+    def _turn(self) -> None:
+        self.pages.append([])
+        self._down = 0.0
+
+
+def _texts(pattern: Pattern) -> list[str]:
+    units = pattern.units
+    figures = "inches" if units == "in" else "mm"
+    first, last = pattern.divisions[0], pattern.divisions[-1]
+    rising, falling = (
+        format_length(float(np.hypot(*(to - start))), unit=units)
+        for start, to in ((first.a, last.b), (last.a, first.b))
+    )
+    return [
+        f"All figures in {figures}. Strike the datum lines x = 0, at the left, and"
+        " y = 0, at the bottom, square to each other; lay off x and y of each point from them, then draw each"
+        " edge as a smooth curve through its points. Running lengths go along the edge, all from line 0.",
+        f"Measured from: {pattern.datum}.",
+        f"Check before cutting: from line {first.number} at END A straight to line {last.number} at END B"
+        f" is {rising}, from line {last.number} at END A to line {first.number} at END B {falling}.",
+        "The check square stands on the large sheet and is for that sheet; these figures hold at any scale.",
+        *CAUTIONS,
+    ]
