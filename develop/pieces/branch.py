@@ -78,6 +78,7 @@ class Branch(Plate):
         metadata=about(
             Length(least=-100_000.0, most=100_000.0),
             "the branch's axis moved sideways, to the right as the header's end B is faced with leaves_at up",
+            handed=True,
         ),
     )
     from_a: float | None = field(
@@ -87,7 +88,9 @@ class Branch(Plate):
     rotate: float = field(
         default=0.0,
         metadata=about(
-            ANGLE, "the branch's section about its own axis; at 0 its width lies across the header"
+            ANGLE,
+            "the branch's section about its own axis; at 0 its width lies across the header",
+            handed=True,
         ),
     )
     joint: str = field(

@@ -64,6 +64,15 @@ class HeaderText:
     def text(self, value: object) -> str:
         return value.text if isinstance(value, SectionSpec) else str(value)
 
+    def mirrored(self, value: object) -> object:
+        """The header with right and left exchanged."""
+        if isinstance(value, SectionSpec):
+            return SECTION.mirrored(value)
+        from develop.pieces.hand import mirrored
+
+        assert isinstance(value, Piece)
+        return mirrored(value)
+
 
 HEADER = HeaderText()
 
