@@ -43,11 +43,13 @@ OWN = {
 
 
 def test_the_list_of_kinds_and_the_classes_agree() -> None:
-    assert set(KINDS) == {"straight", "transition", "marking-band"}
+    assert set(KINDS) == {
+        "straight", "bend", "branch", "offset", "cone", "transition", "marking-band", "opening", "flange",
+    }  # fmt: skip
     for name in KINDS:
         assert kind_of(name).kind == name
     with pytest.raises(KeyError):
-        kind_of("cone")
+        kind_of("elbow")
 
 
 @pytest.mark.parametrize("name", OWN)
@@ -60,8 +62,8 @@ def test_a_kind_has_its_own_fields_first_and_then_the_common_ones(name: str) -> 
 
 def test_a_marking_band_has_no_plate_fields() -> None:
     assert {each.name for each in fields_of(kind_of("marking-band"))} == {
-        "section", "cut", "paper", "face", "lap", "narrowest", "mark", "quantity", "opposite_hand", "thickness", "sizes", "seam_at",
-        "divisions",
+        "section", "cut", "paper", "face", "lap", "narrowest", "mark", "quantity", "opposite_hand", "thickness",
+        "sizes", "seam_at", "divisions",
     }  # fmt: skip
 
 
@@ -74,10 +76,12 @@ def test_defaults_are_those_of_the_design(name: str) -> None:
     assert problems == []
     assert piece is not None
     record = record_of(piece)
-    expected = {
-        "mark": name, "quantity": 1, "thickness": 0.0, "sizes": "mean", "seam_at": "shortest", "divisions": 24,
-        "face": "outside",
-    }  # fmt: skip
+    expected = {"mark": name, "quantity": 1, "opposite_hand": 0, "thickness": 0.0}
+    if name in ("opening", "flange"):
+        assert record["material"] == ""
+        assert {key: record[key] for key in expected} == expected
+        return
+    expected |= {"sizes": "mean", "seam_at": "shortest", "divisions": 24, "face": "outside"}
     if name == "marking-band":
         expected |= {"sizes": "outside"}  # an existing pipe is taped on its outside
     else:

@@ -94,7 +94,7 @@ def placed(pattern: Pattern, solid: Solid, points: Array) -> tuple[Array, Array]
 
     def beyond(line: Indices) -> Array:
         gap = flat - sheet.starts[line]
-        return np.abs(sheet.axes[line, 1] * gap[:, 0] - sheet.axes[line, 0] * gap[:, 1])
+        return np.asarray(np.abs(sheet.axes[line, 1] * gap[:, 0] - sheet.axes[line, 0] * gap[:, 1]))
 
     # Across a strip the sheet that it stands for turns evenly.
     left, rest = beyond(strip), beyond(strip + 1)
@@ -111,9 +111,9 @@ def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Arra
     """
     a, b, normal = folded(pattern, solid) if lines is None else lines
     lift = solid.distance * normal
-    closing = max(np.linalg.norm(a[-1] - a[0]), np.linalg.norm(b[-1] - b[0]))
+    closing = max(float(np.linalg.norm(end[-1] - end[0])) for end in (a, b))
     u = pattern.rulings.u[::-1] if pattern.face == "inside" else pattern.rulings.u
-    return float(max(solid.misses(a - lift, b - lift, u), closing))
+    return max(solid.misses(a - lift, b - lift, u), closing)
 
 
 def _running_product(half_angle: Array, axis: Array) -> tuple[_Complex, _Complex]:

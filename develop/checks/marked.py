@@ -13,6 +13,7 @@ import numpy as np
 from develop.pattern.curve import Curve
 from develop.pattern.pattern import Pattern
 from develop.quadrature import Array, Indices
+from develop.solid.end import End
 from develop.solid.solid import Solid
 
 __all__ = ["drawn_miss", "marks_miss", "roll_lines_miss", "table_miss"]
@@ -22,6 +23,7 @@ _NEWTON_STEPS = 6
 _WINDOW = 24
 # Of the dense lines, spread evenly, so that the whole costs no more than the folding.
 _MOST = 400
+_TOGETHER = 1e-7  # [mm]
 _DIRECTIONS = {"RIGHT": (1.0, 0.0), "TOP": (0.0, 1.0), "LEFT": (-1.0, 0.0), "BOTTOM": (0.0, -1.0)}
 
 
@@ -107,28 +109,37 @@ def _bezier(p: Array, t: Array) -> tuple[Array, Array]:
     return at, 3.0 * (s * s * a + 2.0 * s * t * b + t * t * c)
 
 
-def _strips(pattern: Pattern) -> tuple[_Beside, Array]:
-    """The roll lines' places among the dense lines, and how far both ends lie from there (n,) [mm]."""
-    starts, ends = (np.array([getattr(line, tip) for line in pattern.lines]) for tip in ("start", "end"))
-    lines = pattern.rulings
-    # From the longer edge: an end that is a point has no places.
-    if np.ptp(lines.a, axis=0).max() >= np.ptp(lines.b, axis=0).max():
-        places = _beside(starts, lines.a)
-        far = np.hypot(*(places.between(lines.b) - ends).T)
-    else:
-        places = _beside(ends, lines.b)
-        far = np.hypot(*(places.between(lines.a) - starts).T)
-    return places, np.maximum(places.gap, far)
-
-
 def roll_lines_miss(pattern: Pattern) -> tuple[float, float]:
     """How far the roll lines are from lines of the sheet that the piece is rolled along: the largest distance
-    of an end [mm], and the largest error of the turn [degrees] that one states since the line before."""
-    places, off = _strips(pattern)
-    turned = places.between(np.cumsum(pattern.rulings.turn))
-    stated = np.array([line.turn for line in pattern.lines])
-    error = np.abs(np.diff(turned, prepend=turned[0]) - stated)
-    return float(np.max(off)), float(np.degrees(np.max(error)))
+    of an end [mm], and the largest error of the turn [degrees] that one states since the line before.
+
+    Press lines may stop short of the edges, and share out the whole turn as they like.
+    """
+    rulings = pattern.rulings
+    press = any(line.press for line in pattern.lines)
+    starts, ends = (np.array([getattr(line, tip) for line in pattern.lines]) for tip in ("start", "end"))
+    from_a, from_b = (points[:, None] - edge for points, edge in ((starts, rulings.a), (ends, rulings.b)))
+    if press:
+        leg = rulings.b - rulings.a
+        leg = leg / np.hypot(*leg.T)[:, None]
+        gaps = [np.abs(leg[:, 0] * gap[..., 1] - leg[:, 1] * gap[..., 0]) for gap in (from_a, from_b)]
+    else:
+        gaps = [np.hypot(gap[..., 0], gap[..., 1]) for gap in (from_a, from_b)]
+    off = np.maximum(*gaps)
+    turned = np.cumsum(rulings.turn)
+    stated = np.cumsum([line.turn for line in pattern.lines])
+    if press:
+        error = np.array([abs(stated[-1] - (turned[-1] - turned[0]))])
+    else:
+        # Folded at a corner the sheet has several lines in one place: any turn between them will do.
+        there = off <= off.min(axis=1)[:, None] + _TOGETHER
+        least, most = (
+            limit(np.where(there, turned, fill), axis=1)
+            for limit, fill in ((np.min, np.inf), (np.max, -np.inf))
+        )
+        start = stated - stated[0]
+        error = np.maximum(np.maximum(least - most[0] - start, start - (most - least[0])), 0.0)
+    return float(np.max(off.min(axis=1))), float(np.degrees(np.max(error)))
 
 
 def table_miss(pattern: Pattern, solid: Solid) -> float:
@@ -138,10 +149,14 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     strip = solid.strip(section.at_direction(np.array([row.direction for row in rows])))
     true = np.linalg.norm(strip.b - strip.a, axis=1)
     points = np.array([(row.a, row.b) for row in rows])
-    drawn = np.array([(line.start, line.end) for line in pattern.lines])
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
     length = np.array([row.length for row in rows])
-    return float(max(np.max(np.abs(each)) for each in (length - true, flat - true, points - drawn)))
+    misses = [flat - length]
+    if not any(line.press for line in pattern.lines):
+        # Of a corner's press lines several start in one direction, and stop short of the edges.
+        drawn = np.array([(line.start, line.end) for line in pattern.lines])
+        misses += [length - true, points - drawn]
+    return float(max(np.max(np.abs(each)) for each in misses))
 
 
 def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Solid) -> float:
@@ -158,9 +173,31 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
         if not marks:
             continue
         places = _beside(np.array([mark.at for mark in marks]), flat[::-1] if mirrored else flat)
-        at = places.between(space - solid.distance * normal) - end.origin
+        if edge == "b" and solid.cut_b is not None:
+            # A cut across the side has no centre of its own: its marks are on end A's lines.
+            space, end = a, solid.end_a
+        at = _seen(end, places.between(space - solid.distance * normal))
         to = np.array([_DIRECTIONS[mark.text] for mark in marks])
         aside = np.abs(to[:, 0] * at[:, 1] - to[:, 1] * at[:, 0])
-        beyond = np.where((to * at[:, :2]).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))
+        beyond = np.where((to * at).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))
         worst = max(worst, float(np.max(np.maximum(beyond, places.gap))))
     return worst
+
+
+def _seen(end: End, points: Array) -> Array:
+    """Points (n, 3) as one sees them from the end's centre, right and up (n, 2), before it was tilted."""
+    local = (points - end.origin) @ end.back.T
+    normal = np.cross(end.spans[:, 0], end.spans[:, 1])
+    normal = normal / np.linalg.norm(normal)
+    across = end.spans[:, 0]
+    if not np.allclose(end.back, np.eye(3)[:2]) and normal[2] < 1.0 - 1e-15:
+        # Turned back about the level line that it was tilted about (Rodrigues' formula).
+        axis = np.cross(normal, [0.0, 0.0, 1.0])
+        sine, cosine = float(np.linalg.norm(axis)), float(normal[2])
+        axis = axis / sine
+        across = (
+            across * cosine + np.cross(axis, across) * sine + axis * float(axis @ across) * (1.0 - cosine)
+        )
+    turn = np.arctan2(across[1], across[0])
+    c, s = np.cos(turn), np.sin(turn)
+    return np.asarray(local @ np.array([[c, s], [-s, c]]))

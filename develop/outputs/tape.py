@@ -104,18 +104,42 @@ class _Flow:
 def _texts(pattern: Pattern) -> list[str]:
     units = pattern.units
     figures = "inches" if units == "in" else "mm"
-    first, last = pattern.divisions[0], pattern.divisions[-1]
-    rising, falling = (
-        format_length(float(np.hypot(*(to - start))), unit=units)
-        for start, to in ((first.a, last.b), (last.a, first.b))
-    )
     return [
         f"All figures in {figures}. Strike the datum lines x = 0, at the left, and"
         " y = 0, at the bottom, square to each other; lay off x and y of each point from them, then draw each"
-        " edge as a smooth curve through its points. Running lengths go along the edge, all from line 0.",
+        " edge as a smooth curve through its points."
+        + (" Running lengths go along the edge, all from line 0." if pattern.divisions else ""),
+        *_seam_and_flow(pattern),
         f"Measured from: {pattern.datum}.",
-        f"Check before cutting: from line {first.number} at END A straight to line {last.number} at END B"
-        f" is {rising}, from line {last.number} at END A to line {first.number} at END B {falling}.",
+        *_diagonals(pattern),
         "The check square stands on the large sheet and is for that sheet; these figures hold at any scale.",
         *CAUTIONS,
+    ]
+
+
+def _seam_and_flow(pattern: Pattern) -> list[str]:
+    """What the lines at both ends are, and which way the air goes."""
+    if not pattern.divisions:
+        return []
+    first, last = pattern.divisions[0].number, pattern.divisions[-1].number
+    flow = {"a to b": " Flow from END A to END B.", "b to a": " Flow from END B to END A."}.get(
+        pattern.flow, ""
+    )
+    return [
+        f"END A is the lower edge. Lines {first} and {last} are the two sides of the seam, straight.{flow}"
+    ]
+
+
+def _diagonals(pattern: Pattern) -> list[str]:
+    """The two diagonals, for a check before cutting."""
+    if not pattern.divisions:
+        return []
+    first, last = pattern.divisions[0], pattern.divisions[-1]
+    rising, falling = (
+        format_length(float(np.hypot(*(to - start))), unit=pattern.units)
+        for start, to in ((first.a, last.b), (last.a, first.b))
+    )
+    return [
+        f"Check before cutting: from line {first.number} at END A straight to line {last.number} at END B"
+        f" is {rising}, from line {last.number} at END A to line {first.number} at END B {falling}."
     ]

@@ -66,7 +66,7 @@ def marks_table(marks: Sequence[WitnessMark], *, units: str = "mm") -> Table:
     heads = (("edge", ""), ("mark", ""), ("running", "along edge"), ("", "x"), ("", "y"))
     rows = tuple(
         (
-            f"END {mark.edge.upper()}",
+            f"END {mark.edge.upper()}" if mark.edge in ("a", "b") else mark.edge,
             mark.text,
             *(_length(length, units) for length in (mark.arc, mark.at[0], mark.at[1])),
         )

@@ -47,13 +47,15 @@ class Wording:
 @dataclass(frozen=True)
 class Hole:
     """An opening in a sheet: a closed chain anticlockwise, controls (3 n + 1, 2), with its exact length
-    [mm] and area [mm²], and marks on it: points (k, 2), unit tangents (k, 2) and texts."""
+    [mm] and area [mm²], and marks on it: points (k, 2), unit tangents (k, 2), running lengths (k,) [mm]
+    and texts."""
 
     controls: Array
     length: float
     area: float
     points: Array
     tangents: Array
+    arcs: Array
     texts: tuple[str, ...]
 
 
@@ -315,7 +317,10 @@ class _View:
         flip = _FLIP if self.mirror else np.ones(2)
         outward = np.stack([hole.tangents[:, 1], -hole.tangents[:, 0]], axis=-1) * flip
         points = hole.points * flip + self.shift
-        return [WitnessMark(points[i], outward[i], text, "opening") for i, text in enumerate(hole.texts)]
+        return [
+            WitnessMark(points[i], outward[i], text, "opening", float(hole.arcs[i]))
+            for i, text in enumerate(hole.texts)
+        ]
 
     def lines(self, lines: Lines) -> Lines:
         if not self.mirror:

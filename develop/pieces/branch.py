@@ -78,6 +78,7 @@ class Branch(Plate):
         metadata=about(
             Length(least=-100_000.0, most=100_000.0),
             "the branch's axis moved sideways, to the right as the header's end B is faced with leaves_at up",
+            handed=True,
         ),
     )
     from_a: float | None = field(
@@ -87,7 +88,9 @@ class Branch(Plate):
     rotate: float = field(
         default=0.0,
         metadata=about(
-            ANGLE, "the branch's section about its own axis; at 0 its width lies across the header"
+            ANGLE,
+            "the branch's section about its own axis; at 0 its width lies across the header",
+            handed=True,
         ),
     )
     joint: str = field(
@@ -171,7 +174,7 @@ class Branch(Plate):
         header = self._header()
         frame = self._frame(header)
         self._overhang(branch, header, frame)
-        trim = header.trim(frame)
+        trim: BandTrim | CylinderTrim = header.trim(frame)
         distance = neutral_distance(
             thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
         )
@@ -376,6 +379,14 @@ class Branch(Plate):
 
         opening = Opening(branch, header, trim)
         section = branch.cylinder.section
-        at = branch.from_a(section.at_direction(0.5 * pi * np.arange(4)))
+        at = branch.from_a(section.at_direction(np.radians([0.0, 90.0, 180.0, 270.0])))
         trace = opening.trace(at.panel, at.x)
-        return Hole(opening.controls, opening.length, opening.area, trace.points, trace.tangents, _WORDS)
+        return Hole(
+            opening.controls,
+            opening.length,
+            opening.area,
+            trace.points,
+            trace.tangents,
+            trace.arcs,
+            _WORDS,
+        )

@@ -17,7 +17,7 @@ if TYPE_CHECKING:
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["cylinder_between", "cylinder_solid", "shortest", "trim"]
+__all__ = ["cylinder_between", "cylinder_solid", "shortest", "steepest", "trim"]
 
 
 def trim(cut: Cut | None, *, height: float, end_b: bool) -> Plane:
@@ -41,9 +41,9 @@ def cylinder_between(
     # The steeper cut is named; the other stays as it is.
     name, cut = ("cut_a", cut_a) if _slope(cut_a) > _slope(cut_b) else ("cut_b", cut_b)
     assert cut is not None
-    steepest = _steepest(section, low, high, which=name[-1])
+    most = steepest(section, low, high, which=name[-1])
     # Rounded down, to a slope that does work.
-    works = np.floor(steepest * 10.0 - 1e-6) / 10.0
+    works = np.floor(most * 10.0 - 1e-6) / 10.0
     other = "the other end" if not _slope(cut_a) * _slope(cut_b) else "the other end's cut"
     least = np.ceil((length - short) * 10.0 + 1e-6) / 10.0
     slope = f"slope {works:g} or less, or a" if works > 0.0 else "a flatter cut at the other end, or a"
@@ -65,7 +65,7 @@ def shortest(section: Section, low: Plane, high: Plane) -> float:
     return high.height - low.height - down
 
 
-def _steepest(section: Section, low: Plane, high: Plane, *, which: str) -> float:
+def steepest(section: Section, low: Plane, high: Plane, *, which: str) -> float:
     """The steepest slope [deg] of cut `a` (low) or `b`, in its own direction, that the piece allows.
 
     0 where none does, as the other cut alone already runs past.

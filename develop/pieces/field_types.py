@@ -18,8 +18,8 @@ from develop.wording import listed, near_miss, shown
 
 __all__ = [
     "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
-    "THICKNESS", "Angle", "Choice", "Count", "Cut", "CutText", "Direction", "FieldType", "Length", "Number",
-    "Offset", "Pitch", "SectionText", "Text",
+    "THICKNESS", "Angle", "BendSeam", "Choice", "Count", "Cut", "CutText", "Direction", "FieldType",
+    "Length", "Number", "Offset", "Pitch", "SectionText", "Text",
 ]  # fmt: skip
 
 

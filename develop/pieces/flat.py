@@ -84,13 +84,17 @@ def direction_marks(
     """
     wanted = [*DIRECTIONS, *others]
     u = section.at_direction(np.array([direction for direction, _ in wanted]))
-    at = section.walk(u)
+    at, arcs = section.walk(u), section.arc(u)
     sign = 1.0 if outward else -1.0
     return [
         (
             float(u[i]),
             WitnessMark(
-                np.array([at.x[i], at.y[i]]), sign * np.array([at.ex[i], at.ey[i]]), wanted[i][1], edge
+                np.array([at.x[i], at.y[i]]),
+                sign * np.array([at.ex[i], at.ey[i]]),
+                wanted[i][1],
+                edge,
+                float(arcs[i]),
             ),
         )
         for i in range(len(wanted))
@@ -127,7 +131,7 @@ def pattern_of_plate(
         openings=tuple(moved(each) for each in plate.openings),
         lines=(),
         divisions=(),
-        marks=tuple(WitnessMark(m.at + shift, m.inward, m.text, m.edge) for m in plate.marks),
+        marks=tuple(WitnessMark(m.at + shift, m.inward, m.text, m.edge, m.arc) for m in plate.marks),
         facts=facts,
         datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
         full_lines=False,

@@ -11,14 +11,20 @@ from develop.pieces.fields import Piece, fields_of
 if TYPE_CHECKING:
     from develop.pieces.built import Built
 
-__all__ = ["OPPOSITE", "builds_of", "opposite"]
+__all__ = ["OPPOSITE", "builds_of", "mirrored", "opposite"]
 
 OPPOSITE = "-opposite-hand"
 """What the mark of an opposite hand ends in."""
 
 
 def opposite(piece: Piece, *, quantity: int = 1) -> Piece:
-    """The mirror image of a piece, as a piece of its own.
+    """The opposite hand of a piece, as a piece of its own with its own mark."""
+    own = {"mark": piece.mark + OPPOSITE, "quantity": quantity, "opposite_hand": 0}
+    return replace(mirrored(piece), **own)  # type: ignore[type-var]
+
+
+def mirrored(piece: Piece) -> Piece:
+    """The mirror image of a piece.
 
     Its directions, cuts, offsets and sections are mirrored by their types, numbers that count to the
     right or anticlockwise are negative (`handed` in their declaration), the rest stays.
@@ -31,7 +37,6 @@ def opposite(piece: Piece, *, quantity: int = 1) -> Piece:
             values[each.name] = None if value is None else mirror(value)
         elif each.handed and value is not None:
             values[each.name] = -value + 0.0
-    values |= {"mark": piece.mark + OPPOSITE, "quantity": quantity, "opposite_hand": 0}
     return replace(piece, **values)  # type: ignore[type-var]  # every kind is a dataclass
 
 

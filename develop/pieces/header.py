@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from develop.surfaces.meeting import BandTrim, CylinderTrim
     from develop.surfaces.sheet import Sheet
 
-__all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader"]
+__all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader", "tapered"]
 
 _TAPERED = ("transition", "cone")
 
@@ -64,13 +64,25 @@ class HeaderText:
     def text(self, value: object) -> str:
         return value.text if isinstance(value, SectionSpec) else str(value)
 
+    def mirrored(self, value: object) -> object:
+        """The header with right and left exchanged."""
+        if isinstance(value, SectionSpec):
+            return SECTION.mirrored(value)
+        from develop.pieces.hand import mirrored
+
+        assert isinstance(value, Piece)
+        return mirrored(value)
+
 
 HEADER = HeaderText()
 
 
 @dataclass(frozen=True)
 class StraightHeader:
-    """A cylinder. section: on the given surface. face: the section of the face that a branch meets."""
+    """A cylinder. section: on the given surface. face: the section of the face that a branch meets.
+
+    length [mm]; distance: of the sheet outside the given surface [mm].
+    """
 
     section: Section
     face: Section
@@ -249,7 +261,10 @@ class TaperHeader:
 
 
 def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> TaperHeader:
-    """The header that a transition or a cone makes, in the branch's wall. Raises Refusal."""
+    """The header that a transition or a cone makes, in the branch's wall.
+
+    thickness [mm]; outward: of the face that a branch meets, from the given surface [mm]. Raises Refusal.
+    """
     from dataclasses import replace
 
     from develop.pieces.cone import Cone

@@ -6,12 +6,12 @@ from math import cos, sin
 
 import numpy as np
 
-from develop.pattern.curve import Array, segment
+from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.pattern import WitnessMark
 from develop.pieces.assemble import Wording, pattern_of, seam_parameter
 from develop.pieces.built import Part
 from develop.pieces.cuts import cylinder_solid
-from develop.pieces.flat import Plate, closed, direction_marks, pattern_of_plate, rectangle
+from develop.pieces.flat import Plate, closed, direction_marks, drawn, pattern_of_plate, rectangle
 from develop.sections.section import Section
 from develop.solid import End, FlatPlate, Frame
 from develop.surfaces.cylinder import Cylinder
@@ -49,7 +49,8 @@ def plate_part(
     for _, m in direction_marks(hole, "opening", outward=True):
         # A normal goes over by the inverse transpose.
         inward = np.linalg.solve(into.T, m.inward)
-        marks.append(WitnessMark(into @ m.at, inward / np.hypot(*inward), m.text, m.edge))
+        at = into @ m.at
+        marks.append(WitnessMark(at, inward / np.hypot(*inward), m.text, m.edge, _along(drawn(curve), at)))
     for unit, edge in zip((*-np.eye(2), *np.eye(2)), (*-low, *high), strict=True):
         start, end = _on_axis(hole, into, unit), unit * edge
         if any(np.abs(m.at - start).max() < _SAME for m in marks):
@@ -151,3 +152,10 @@ def collar_part(
         distance=wall.distance,
     )
     return Part(pattern, cylinder_solid(wall, seam), (Frame.square(),))
+
+
+def _along(curve: Curve, point: Array) -> float:
+    """Running length [mm] along the hole's edge, from its start to a point on it, to 0.001 mm."""
+    points = curve.polyline(1e-6)
+    sums = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(points, axis=0).T))])
+    return float(sums[np.argmin(np.hypot(*(points - point).T))] / sums[-1] * curve.length)

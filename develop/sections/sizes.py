@@ -11,7 +11,7 @@ from math import isfinite, pi, sqrt
 
 from develop.sections.spec import FLATTEST, LARGEST, SMALLEST
 
-__all__ = ["PAIRS", "NoSuchSize", "girth_of", "sizes_of"]
+__all__ = ["PAIRS", "NoSuchSize", "girth_of", "root", "sizes_of"]
 
 PAIRS = (
     *(frozenset({whole, part}) for whole in ("girth", "area") for part in ("width", "height", "ratio")),
@@ -31,7 +31,7 @@ class NoSuchSize(ValueError):
         super().__init__(f"{word} from {least:g} to {most:g}")
 
 
-def girth_of(kind: str, width: float, height: float) -> float:
+def girth_of(kind: str, *, width: float, height: float) -> float:
     """Girth [mm] of an `ellipse` or a `flat-oval` of two sizes [mm]."""
     if kind == "flat-oval":
         return 2.0 * max(width, height) + (pi - 2.0) * min(width, height)
@@ -85,7 +85,7 @@ def _by_ratio(kind: str, given: Mapping[str, float]) -> tuple[float, float]:
     if "height" in given:
         return given["height"] / ratio, given["height"]
     if "girth" in given:
-        width = given["girth"] / girth_of(kind, 1.0, ratio)
+        width = given["girth"] / girth_of(kind, width=1.0, height=ratio)
     else:
         width = sqrt(given["area"] / _area_of(kind, 1.0, ratio))
     return width, ratio * width
@@ -114,7 +114,7 @@ def _ellipse_size(size: float, girth: float) -> float:
     # The girth lies above twice either size and below twice their sum plus a half turn.
     if girth <= 2.0 * size:
         return 0.0
-    return root(lambda other: girth_of("ellipse", size, other) - girth, 0.0, 0.5 * girth)
+    return root(lambda other: girth_of("ellipse", width=size, height=other) - girth, 0.0, 0.5 * girth)
 
 
 def root(function: Callable[[float], float], low: float, high: float) -> float:

@@ -95,7 +95,7 @@ class End:
         into = self.spans.T @ np.stack([first, second], axis=1)
 
         def support(angle: Array) -> Array:
-            n = np.stack([np.cos(angle), np.sin(angle)], axis=-1) @ into.T
+            n = np.asarray(np.stack([np.cos(angle), np.sin(angle)], axis=-1) @ into.T)
             return self.section.support(n[..., 0], n[..., 1])
 
         kinks = self.section.kinks
@@ -105,7 +105,8 @@ class End:
             return _on_panels(support, np.append(at, at[0] + 2.0 * np.pi))
 
         def mean(start: float, count: int) -> float:
-            return float(np.mean(support(start + np.arange(count) * (2.0 * np.pi / count))))
+            angle = np.asarray(start + np.arange(count) * (2.0 * np.pi / count), dtype=float)
+            return float(np.mean(support(angle)))
 
         count, value = 128, mean(0.0, 128)
         while count < _MOST_STEPS:

@@ -54,7 +54,8 @@ class Solid:
 
     side: `parallel`, lines along +z between two cuts of one section, or `hull`, the side of the
         convex hull of the two ends.
-    seam, seam_b: parameters of the two ends' sections between which the seam runs.
+    seam, seam_b: parameters of the two ends' sections between which the seam runs; left out, seam_b is
+        where the straight line from the seam leads.
     distance: of the developed sheet outside the surface that carries the ends [mm].
     openings: where branches meet this side, placed in its frame.
     cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
@@ -64,7 +65,7 @@ class Solid:
     end_b: End
     side: Literal["parallel", "hull"]
     seam: float
-    seam_b: float
+    seam_b: float | None = None
     distance: float = 0.0
     cut_b: tuple[float, Array] | None = None
     openings: tuple[MeetingEnd, ...] = ()
@@ -239,8 +240,10 @@ class Solid:
     @property
     def seam_line(self) -> Array:
         """The seam (2, 3) [mm], from end A to end B."""
-        a, b = self.end_a.point(np.array([self.seam])), self.end_b.point(np.array([self.seam_b]))
-        return np.vstack([a, self._cut(a, b)])
+        a = self.end_a.point(np.array([self.seam]))
+        if self.seam_b is None:
+            return np.vstack([a, self.strip(np.array([self.seam])).b])
+        return np.vstack([a, self._cut(a, self.end_b.point(np.array([self.seam_b])))])
 
     @property
     def top_line(self) -> Array:

@@ -87,7 +87,7 @@ class TaperMeetingEnd(MeetingEnd):
 
         def beyond(phi: Array) -> Array:
             a, ruling, _ = self._rulings(phi)
-            return np.einsum("ni,ni->n", np.cross(ruling, d), a - origins)
+            return np.asarray(np.einsum("ni,ni->n", np.cross(ruling, d), a - origins))
 
         start, end = self._near
         low, high = np.full(len(u), start), np.full(len(u), end)
@@ -97,6 +97,10 @@ class TaperMeetingEnd(MeetingEnd):
             same = (beyond(middle) > 0.0) == first
             low, high = np.where(same, middle, low), np.where(same, high, middle)
         phi = 0.5 * (low + high)
+        # A line that only grazes a silhouette has no change of sign: it meets the nearer one.
+        ends = [beyond(np.full(len(u), end_)) for end_ in (start, end)]
+        grazes = (ends[0] > 0.0) == (ends[1] > 0.0)
+        phi = np.where(grazes, np.where(np.abs(ends[0]) < np.abs(ends[1]), start, end), phi)
         a, ruling, _ = self._rulings(phi)
         # The line and the ruling cross where their gap has no part across both.
         square = np.cross(d, ruling)

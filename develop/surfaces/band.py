@@ -33,7 +33,7 @@ from develop.quadrature import (
 from develop.sections.section import Section
 from develop.solid.frame import Rim
 from develop.surfaces.sheet import Lines, Place
-from develop.surfaces.trim import Trim
+from develop.surfaces.trim import Plane
 
 __all__ = ["Band", "BandSheet"]
 
@@ -110,8 +110,8 @@ class Band:
     rim_a: Rim
     rim_b: Rim
     distance: float = 0.0
-    cut_a: Trim | None = None
-    cut_b: Trim | None = None
+    cut_a: Plane | None = None
+    cut_b: Plane | None = None
 
     def __post_init__(self) -> None:
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))

@@ -28,7 +28,7 @@ from develop.surfaces.trim import Trim
 
 __all__ = ["Cylinder", "CylinderSheet"]
 
-_SAME = 1e-9
+_SAME = 1e-13
 # What a panel's nodes may leave out, in parts of the piece's size; less is lost in the rounding of
 # heights, which differentiating brings up some hundred times.
 _LOOSE = 2e-13

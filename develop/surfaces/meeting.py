@@ -93,7 +93,7 @@ def sideways(frame: Frame) -> Array:
     frame: the branch's, in the header's; seen along the header's axis from its end B to its end A.
     """
     out = frame.axes[2, :2]
-    return np.array([out[1], -out[0]]) / np.hypot(*out)
+    return np.asarray(np.array([out[1], -out[0]]) / np.hypot(*out))
 
 
 @dataclass(frozen=True)
@@ -214,7 +214,7 @@ class BandTrim:
 
         def value(u: Array) -> Array:
             a, ruling = self._rulings(u)
-            return np.einsum("ni,ni->n", np.cross(ruling, self.frame.axes[2]), a - origins)
+            return np.asarray(np.einsum("ni,ni->n", np.cross(ruling, self.frame.axes[2]), a - origins))
 
         f_low, f_high = value(low), value(high)
         u = 0.5 * (low + high)

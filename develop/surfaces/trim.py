@@ -19,10 +19,6 @@ class Trim(Protocol):
         """Where lines from start (n, 3) along (n, 3) meet it, in parts (n,) of `along`."""
         ...
 
-    def normal(self, points: Array) -> Array:
-        """A normal (n, 3), of any length, at its points (n, 3)."""
-        ...
-
 
 @dataclass(frozen=True)
 class Plane:
@@ -40,4 +36,5 @@ class Plane:
         return np.asarray(short / (along[..., 2] - along[..., :2] @ self.rise))
 
     def normal(self, points: Array) -> Array:
+        """A normal (n, 3), of any length, at its points (n, 3)."""
         return np.broadcast_to(np.array([-self.rise[0], -self.rise[1], 1.0]), points.shape)

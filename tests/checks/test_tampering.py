@@ -200,7 +200,7 @@ def test_lines_in_another_order(name: str) -> None:
     order = np.arange(len(r.a))
     order[100:200], order[200:300] = order[200:300].copy(), order[100:200].copy()
     assert CLOSING in failing(
-        replace(pattern, rulings=Rulings(r.a[order], r.b[order], r.turn, r.distance)), solid
+        replace(pattern, rulings=Rulings(r.a[order], r.b[order], r.turn, r.u, r.distance)), solid
     )
 
 

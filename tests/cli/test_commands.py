@@ -196,7 +196,7 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
 @pytest.mark.parametrize(
     ("words", "said"),
     [
-        (["strait"], '"strait": no such command; did you mean "straight"?; allowed: straight, transition'),
+        (["strait"], '"strait": no such command; did you mean "straight"?; allowed: straight, bend'),
         (["--hepl"], '"--hepl": no such option; did you mean "--help"?; allowed: see develop --help'),
         (["-x", "straight"], '"-x": no such option'),
         ([""], '"": no such command; allowed: straight'),
@@ -250,7 +250,7 @@ def test_the_help_names_every_command(run) -> None:  # type: ignore[no-untyped-d
 
 def test_a_check_that_does_not_hold_ends_with_1(run, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:  # type: ignore[no-untyped-def]
     bad = Check(name="closing check", expected=0.0, got=2.0, limit=0.01, unit="mm")
-    monkeypatch.setattr(develop.checks, "check", lambda pattern, solid: (bad,))
+    monkeypatch.setattr(develop.checks, "check_part", lambda pattern, solid: (bad,))
     done = run(*STRAIGHT)
     assert done.code == 1
     assert done.out == (
@@ -275,7 +275,7 @@ def test_a_defect_is_owned_up_to_and_ends_with_70(run, monkeypatch: pytest.Monke
     def fails(*_: object) -> None:
         raise ZeroDivisionError("two\nlines")
 
-    monkeypatch.setattr(develop.checks, "check", fails)
+    monkeypatch.setattr(develop.checks, "check_part", fails)
     done = run(*STRAIGHT)
     assert done.code == 70
     assert done.out == ""
@@ -344,7 +344,7 @@ def test_one_failed_check_of_a_job_is_the_exit_code_of_all(
     def check(pattern, solid):  # type: ignore[no-untyped-def]
         return (Check(name="x", expected=0.0, got=float(pattern.mark == "S1"), limit=0.5, unit=""),)
 
-    monkeypatch.setattr(develop.checks, "check", check)
+    monkeypatch.setattr(develop.checks, "check_part", check)
     (tmp_path / "hall.toml").write_text(JOB)
     done = run("job", "hall.toml", "-o", "out", "--formats", "svg")
     assert done.code == 1

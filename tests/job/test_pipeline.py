@@ -72,7 +72,7 @@ def test_a_check_that_does_not_hold_is_told_and_recorded(
 ) -> None:
     good = Check(name="good", expected=1.0, got=1.0, limit=0.0, unit="mm")
     bad = Check(name="bad", expected=1.0, got=2.0, limit=0.5, unit="mm")
-    monkeypatch.setattr(develop.checks, "check", lambda pattern, solid: (good, bad))
+    monkeypatch.setattr(develop.checks, "check_part", lambda pattern, solid: (good, bad))
     outcome = make(example("straight"), folder=str(tmp_path), formats=("json",))
     assert outcome.checks == (good, bad)
     assert outcome.failed == (bad,)

@@ -129,7 +129,7 @@ def test_a_long_caption_goes_on_two_lines_of_like_length():
 
 def test_the_caption_stays_in_the_picture_and_off_the_piece(samples):
     facts = ["M" * 40, "M" * 40, "M" * 40]
-    bare, full = (dots(picture(samples.Frustum(), each)) for each in ([], facts))
+    bare, full = (dots(picture([samples.Frustum()], each)) for each in ([], facts))
     changed = np.argwhere((bare != full).any(axis=2))
     assert changed[:, 0].min() > 5
     assert changed[:, 0].max() < 0.12 * 900

@@ -130,10 +130,10 @@ def test_the_facts_of_the_hard_way_bend() -> None:
     slope = tan(radians(90 / 8))
     for words in (
         "mitre angle 11.25°",
-        f"end gores: throat {350 * slope:.2f}, heel {1050 * slope:.2f}",
-        f"full gores: throat {700 * slope:.2f}, heel {2100 * slope:.2f}",
-        f"smallest throat width {700 * slope:.2f}",
-        "radius 700 to the axis",
+        f"end gores: throat {350 * slope:.1f}, heel {1050 * slope:.1f}",
+        f"full gores: throat {700 * slope:.1f}, heel {2100 * slope:.1f}",
+        f"smallest throat width {700 * slope:.1f}",
+        "radius 700.0 to the axis",
         "gores 2, 3, 4 of 5",
     ):
         assert words in facts

@@ -13,7 +13,8 @@ import pytest
 from develop.sections.ellipse import Ellipse
 from develop.solid import Frame, Rim
 from develop.surfaces.band import Band, BandSheet
-from develop.surfaces.cylinder import Cylinder, Trim
+from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.trim import Plane
 
 
 def frustum(radius_a: float, radius_b: float, height: float) -> BandSheet:
@@ -39,7 +40,7 @@ def test_question_2_frustum_from_its_girths() -> None:
 def test_tin_funnel() -> None:
     """A pipe of 8, 10 long, on a cone from 18 to 8, height 12: 781.86 with π = 3.14, that is 249 π."""
     cone = frustum(9.0, 4.0, 12.0)
-    pipe = Cylinder(Ellipse(width=8.0, height=8.0), Trim(0.0, np.zeros(2)), Trim(10.0, np.zeros(2))).sheet(
+    pipe = Cylinder(Ellipse(width=8.0, height=8.0), Plane(0.0, np.zeros(2)), Plane(10.0, np.zeros(2))).sheet(
         0.0
     )
     assert cone.area + pipe.area == pytest.approx(249.0 * pi, rel=1e-13)

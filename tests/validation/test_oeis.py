@@ -12,7 +12,8 @@ import pytest
 
 from develop.sections.ellipse import Ellipse
 from develop.solid import cut_slopes
-from develop.surfaces.cylinder import Cylinder, Trim
+from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.trim import Plane
 
 # Two units in the last place of a double of this size.
 FLOAT = 4.5e-16
@@ -36,7 +37,7 @@ def test_girth(a: float, b: float, expected: float) -> None:
 def test_a105419_is_the_edge_of_a_45_degree_cut() -> None:
     round_ = Ellipse(width=2.0, height=2.0)
     cut = cut_slopes(slope=pi / 4, long=0.0, end_b=True)
-    sheet = Cylinder(round_, Trim(-2.0, np.zeros(2)), Trim(0.0, cut)).sheet(0.0)
+    sheet = Cylinder(round_, Plane(-2.0, np.zeros(2)), Plane(0.0, cut)).sheet(0.0)
     assert sheet.edge_b == pytest.approx(7.64039557805542403, rel=1e-14)
     assert sheet.edge_a == pytest.approx(2.0 * pi, rel=1e-14)
     # Unrolled, it is one period of the sine, here from its crest: x the arc, y the ordinate.

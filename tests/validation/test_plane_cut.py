@@ -14,7 +14,8 @@ import pytest
 
 from develop.sections.ellipse import Ellipse
 from develop.solid import End, cut_slopes
-from develop.surfaces.cylinder import Cylinder, Trim
+from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.trim import Plane
 
 CASES = [
     (600.0, 300.0, 30.0, 0.0),
@@ -48,7 +49,7 @@ def test_cut_edge_is_the_girth_of_the_ellipse(
     towards = rise @ np.array([cos(radians(long)), sin(radians(long))])
     assert (towards > 0.0) == end_b
     far = 4000.0 if end_b else -4000.0
-    square, cut = Trim(far * -1.0, np.zeros(2)), Trim(0.0, rise)
+    square, cut = Plane(far * -1.0, np.zeros(2)), Plane(0.0, rise)
     sheet = Cylinder(section, *((square, cut) if end_b else (cut, square))).sheet(1.0)
     expected = exact_girth(width, height, slope, long)
     assert (sheet.edge_b if end_b else sheet.edge_a) == pytest.approx(expected, rel=2e-14)
@@ -65,7 +66,7 @@ def test_every_point_of_the_unrolled_cut_lies_on_the_plane(
 ) -> None:
     section = Ellipse(width=width, height=height)
     rise = cut_slopes(slope=radians(slope), long=radians(long), end_b=True)
-    sheet = Cylinder(section, Trim(-3000.0, np.zeros(2)), Trim(7.0, rise)).sheet(0.0)
+    sheet = Cylinder(section, Plane(-3000.0, np.zeros(2)), Plane(7.0, rise)).sheet(0.0)
     arcs = section.girth * np.linspace(0.0, 0.999, 97)
     u = section.at_arc(arcs)
     lines = sheet.lines(sheet.from_a(u))
