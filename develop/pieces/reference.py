@@ -76,6 +76,7 @@ def kinds_page() -> str:
         kind = kind_of(name)
         fields = fields_of(kind)
         parts += ["", f"## {name}", "", f"{KINDS[name][2][0].upper()}{KINDS[name][2][1:]}.", ""]
+        parts += [f"![The example below, drawn](kinds/{name}.png)", ""]
         parts += _rows([each for each in fields if each.own])
         parts += ["", "Shared with other kinds:", ""]
         parts += _rows([each for each in fields if not each.own])
