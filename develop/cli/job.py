@@ -41,6 +41,8 @@ def _make_all(values: Mapping[str, object]) -> int:
     worst = 0
     problems: list[Problem] = []
     job = read_job(str(values["file"]))
+    if job.name:
+        click.echo(f"{job.name}: {len(job.pieces)} pieces")
     for placed in job.pieces:
         try:
             outcome = make(placed.piece, folder=folder, formats=formats, units=sheet_unit(job.units))

@@ -39,10 +39,11 @@ class Block:
     draw: Callable[[Ink, float, float], None]
 
 
-def square(side: float) -> Block:
-    """A square to be measured. side [mm]."""
-    words = ("CHECK SQUARE", f"{side:.0f} mm x {side:.0f} mm", "measure both ways", "before cutting")
-    height = 4.0 if side == 100.0 else 3.0
+def square(side: float, units: str) -> Block:
+    """A square to be measured. side [mm], a whole number of millimetres or of inches."""
+    size = f"{side:.0f} mm" if units == "mm" else f"{side / 25.4:.0f} in"
+    words = ("CHECK SQUARE", f"{size} x {size}", "measure both ways", "before cutting")
+    height = 4.0 if side >= 100.0 else 3.0
 
     def draw(ink: Ink, left: float, top: float) -> None:
         ink.pen(_THICK)

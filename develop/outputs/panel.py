@@ -37,8 +37,14 @@ def panels(pattern: Pattern, *, tiny: bool, heights: Sequence[float]) -> Iterato
         Grid(divisions_table(pattern.divisions, units=pattern.units)),
         *(Grid(figures_table(each, units=pattern.units)) for each in pattern.figures),
     ]
-    side = 50.0 if tiny else 100.0
-    fixed = [square(side), title(pattern, _WIDE), view(_WIDE), notes(_texts(pattern), _WIDE)]
+    # A rule must be able to prove it: a whole number of inches on a sheet in inches.
+    sides = (50.0, 100.0) if pattern.units == "mm" else (50.8, 101.6)
+    fixed = [
+        square(sides[0 if tiny else 1], pattern.units),
+        title(pattern, _WIDE),
+        view(_WIDE),
+        notes(_texts(pattern), _WIDE),
+    ]
     for height in heights:
         height = max(height, *(block.high for block in fixed))
         yield _packed([*fixed, *(part for grid in grids for part in _parts(grid, height))], height)

@@ -12,7 +12,7 @@ import numpy as np
 from develop.outputs.blocks import CAUTIONS, Block, Grid, notes, title, view
 from develop.outputs.ink import Ink
 from develop.pattern.pattern import Pattern
-from develop.pattern.table import divisions_table, marks_table
+from develop.pattern.table import divisions_table, figures_table, marks_table
 from develop.units import format_length
 
 __all__ = ["MARGIN", "TapePage", "paper", "tape_pages"]
@@ -26,6 +26,7 @@ _GAP = 7.0
 _TEXT = 3.0  # read at a table, not from an arm's length
 _VIEW = 92.0  # [mm] width of the view of directions
 _MANY = 12  # rows of witness marks that do not stand beside the view any more
+_SAME = 1e-6  # [mm]
 _FEW = 3  # rows of a table that are not worth a beginning at the foot of a page
 
 
@@ -62,6 +63,8 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
         flow.table(marks)
     flow.block(notes(_texts(pattern), wide, _TEXT))
     flow.table(Grid(divisions_table(pattern.divisions, units=pattern.units), most=wide))
+    for figures in pattern.figures:
+        flow.table(Grid(figures_table(figures, units=pattern.units), most=wide))
     count = len(flow.pages)
     words = f"{pattern.mark}   ·   to mark out by tape, not to scale   ·   page"
     return tuple(TapePage(f"{words} {n} of {count}", tuple(page)) for n, page in enumerate(flow.pages, 1))
@@ -110,6 +113,7 @@ def _texts(pattern: Pattern) -> list[str]:
         " edge as a smooth curve through its points."
         + (" Running lengths go along the edge, all from line 0." if pattern.divisions else ""),
         *_seam_and_flow(pattern),
+        *_lap_corners(pattern),
         f"Measured from: {pattern.datum}.",
         *_diagonals(pattern),
         "The check square stands on the large sheet and is for that sheet; these figures hold at any scale.",
@@ -143,3 +147,21 @@ def _diagonals(pattern: Pattern) -> list[str]:
         f"Check before cutting: from line {first.number} at END A straight to line {last.number} at END B"
         f" is {rising}, from line {last.number} at END A to line {first.number} at END B {falling}."
     ]
+
+
+def _lap_corners(pattern: Pattern) -> list[str]:
+    """Where the lap ends, beyond the side that the other one meets."""
+    for side in ("seam_left", "seam_right"):
+        inner, outer = pattern.net.curve(side), pattern.cut.curve(side)
+        if inner is None or outer is None or np.abs(outer.start - inner.start).max() < _SAME:
+            continue
+        low, high = sorted((outer.start, outer.end), key=lambda point: float(point[1]))
+        places = " and ".join(
+            ", ".join(
+                f"{name} {format_length(round(float(value), 6), unit=pattern.units, suffix=False)}"
+                for name, value in zip("xy", point, strict=True)
+            )
+            for point in (low, high)
+        )
+        return [f"The lap goes on beyond the dashed line, with the same curves, to its corners at {places}."]
+    return []

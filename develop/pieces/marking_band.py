@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from math import floor
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
@@ -11,6 +12,7 @@ from develop.pieces.field_types import CUT, MARK, SECTION, Choice, Cut, Length
 from develop.pieces.fields import about
 from develop.pieces.wording import cut_words, measured_words, section_words, size_words
 from develop.sections.text import SectionSpec
+from develop.units import number_text
 
 if TYPE_CHECKING:
     from develop.pieces.built import Built
@@ -71,6 +73,12 @@ class MarkingBand(Marked):
                 allowed="the pipe's wall thickness" + ("" if self.section.outside else ", or sizes = inside"),
             )
         given = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        if self.lap > 0.5 * given.girth:
+            raise Refusal(
+                field="lap",
+                given=f"{number_text(self.lap)} mm is more than half the pipe's girth",
+                allowed=f"{number_text(floor(0.5 * given.girth))} mm or less",
+            )
         face = given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
         cut = trim(self.cut, height=0.0, end_b=True)
         down = float(face.support(np.array(-cut.rise[0]), np.array(-cut.rise[1])))
@@ -98,7 +106,9 @@ class MarkingBand(Marked):
             "the pipe stays on the END A side",
             "wrap round, this side out" if outside else "lay inside, this side in towards you",
             f"girth of the band {measured_words(girth, units)}",
-            f"lap {size_words(self.lap, units)}, its edge as on the other side" if self.lap else "no lap",
+            f"lap {measured_words(self.lap, units)} beyond the dashed line, the edge goes on"
+            if self.lap
+            else "no lap",
             f"paper {size_words(self.paper, units)}{' mm' if units == 'mm' else ''} thick",
             f"quantity {self.quantity}",
         )

@@ -181,3 +181,9 @@ def test_inches() -> None:
     piece, _ = read_piece(kind_of("marking-band"), {"section": "pipe NPS 8", "cut": "slope 45 long 0"})
     # NPS 8 is 8.625 in outside (ASME B36.10M).
     assert "pipe NPS 8, 8-5/8 in outside" in piece.build(units="in").patterns[0].facts
+
+
+def test_a_lap_of_more_than_half_the_girth_is_refused() -> None:
+    with pytest.raises(InputError) as caught:
+        band(section="pipe DN 100", lap=500)
+    assert caught.value.problems[0].field == "lap"
