@@ -20,7 +20,7 @@ KINDS: dict[str, tuple[str, str, str]] = {
     "marking-band": (
         "marking_band",
         "MarkingBand",
-        "a paper band for marking a plane cut on an existing pipe",
+        "a paper band for marking a slanting cut on an existing pipe, or where it meets another",
     ),
     "opening": ("opening", "Opening", "a duct of any section through a flat sloping plate"),
     "flange": ("flange", "Flange", "a flat ring or blank to any section, whole or in parts"),

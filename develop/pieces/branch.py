@@ -136,27 +136,16 @@ class Branch(Plate):
 
     def _frame(self, header: StraightHeader | TaperHeader) -> Frame:
         """The branch's frame in the header's: z along its axis to the free end."""
-        from math import cos, sin
+        from develop.pieces.header import standing
 
-        import numpy as np
-
-        from develop.solid import Frame
-
-        def exact(value: float) -> float:
-            # Quarter turns leave nothing behind, so that what should be tangent is.
-            return 0.0 if abs(value) < 1e-15 else value
-
-        along = header.centre(header.length) - header.centre(0.0)
-        along = along / np.linalg.norm(along)
-        out = np.array([exact(cos(self.leaves_at)), exact(sin(self.leaves_at)), 0.0])
-        out = out - (out @ along) * along
-        out = out / np.linalg.norm(out)
-        right = np.cross(out, along)
-        axis = exact(sin(self.angle)) * out + exact(cos(self.angle)) * along
-        up = np.cross(axis, right)
-        x = exact(cos(self.rotate)) * right + exact(sin(self.rotate)) * up
-        from_a = 0.5 * header.length if self.from_a is None else self.from_a
-        return Frame(self.off_centre * right + header.centre(from_a), np.array([x, np.cross(axis, x), axis]))
+        return standing(
+            header,
+            angle=self.angle,
+            leaves_at=self.leaves_at,
+            off_centre=self.off_centre,
+            rotate=self.rotate,
+            from_a=self.from_a,
+        )
 
     def surface(self) -> Cylinder:
         """The branch between its joint and its free end. Raises Refusal."""

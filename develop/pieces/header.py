@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from develop.surfaces.meeting import BandTrim, CylinderTrim
     from develop.surfaces.sheet import Sheet
 
-__all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader", "tapered"]
+__all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader", "standing", "tapered"]
 
 _TAPERED = ("transition", "cone")
 
@@ -287,3 +287,39 @@ def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> Ta
             allowed="a transition or cone with parallel ends, round, ellipse or superellipse",
         )
     return TaperHeader(band, outward, getattr(piece, "rotate", 0.0))
+
+
+def standing(
+    header: StraightHeader | TaperHeader,
+    *,
+    angle: float,
+    leaves_at: float,
+    off_centre: float = 0.0,
+    rotate: float = 0.0,
+    from_a: float | None = None,
+) -> Frame:
+    """Where a branch stands on a header, in its frame: z along the branch's axis, away from the header.
+
+    angle, leaves_at, rotate [rad]; off_centre and from_a [mm], from_a the middle when left out.
+    """
+    from math import cos, sin
+
+    import numpy as np
+
+    from develop.solid import Frame
+
+    def exact(value: float) -> float:
+        # Quarter turns leave nothing behind, so that what should be tangent is.
+        return 0.0 if abs(value) < 1e-15 else value
+
+    along = header.centre(header.length) - header.centre(0.0)
+    along = along / np.linalg.norm(along)
+    out = np.array([exact(cos(leaves_at)), exact(sin(leaves_at)), 0.0])
+    out = out - (out @ along) * along
+    out = out / np.linalg.norm(out)
+    right = np.cross(out, along)
+    axis = exact(sin(angle)) * out + exact(cos(angle)) * along
+    up = np.cross(axis, right)
+    x = exact(cos(rotate)) * right + exact(sin(rotate)) * up
+    place = 0.5 * header.length if from_a is None else from_a
+    return Frame(off_centre * right + header.centre(place), np.array([x, np.cross(axis, x), axis]))

@@ -1,25 +1,34 @@
-"""A paper band, wrapped round an existing pipe, for marking an oblique plane cut on it."""
+"""A paper band, wrapped round an existing pipe, for marking a slanting cut or a saddle on it."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-from math import floor
+from dataclasses import dataclass, field, replace
+from math import degrees, floor, pi
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
 from develop.pieces.common import Marked
 from develop.pieces.field_types import CUT, MARK, SECTION, Choice, Cut, Length
 from develop.pieces.fields import about
+from develop.pieces.onto import ONTO, Onto
 from develop.pieces.wording import cut_words, measured_words, section_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
     from develop.pieces.built import Built
+    from develop.pieces.header import StraightHeader
+    from develop.quadrature import Array
     from develop.sections.section import Section
+    from develop.solid import Frame
     from develop.surfaces.cylinder import Cylinder
 
 __all__ = ["MarkingBand"]
+
+# How far beside the header may be rounding [mm].
+_TANGENT = 1e-9
+_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -30,7 +39,15 @@ class MarkingBand(Marked):
     example: ClassVar[dict[str, str | float]] = {"section": "pipe DN 200", "cut": "slope 45 long right"}
 
     section: SectionSpec = field(metadata=about(SECTION, "section of the pipe"))
-    cut: Cut | None = field(metadata=about(CUT, "the cut to mark"))
+    cut: Cut | None = field(default=None, metadata=about(CUT, "the cut to mark", not_with="onto"))
+    onto: Onto | None = field(
+        default=None,
+        metadata=about(
+            ONTO,
+            "a header that the pipe meets: its end is marked, and the hole on the header",
+            not_with="cut",
+        ),
+    )
     paper: float = field(default=0.1, metadata=about(Length(least=0.0, most=10.0), "thickness of the paper"))
     face: str = field(
         default="outside",
@@ -80,15 +97,54 @@ class MarkingBand(Marked):
                 allowed=f"{number_text(floor(0.5 * given.girth))} mm or less",
             )
         face = given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
+        paper = 0.5 * self.paper if outside else -0.5 * self.paper
+        if self.onto is not None:
+            return self._saddle(face, self.onto, paper)
         cut = trim(self.cut, height=0.0, end_b=True)
         down = float(face.support(np.array(-cut.rise[0]), np.array(-cut.rise[1])))
         # END A is the band's own square edge, so far below the cut that the band is nowhere too narrow.
-        return Cylinder(
-            face,
-            Plane(-down - self.narrowest, np.zeros(2)),
-            cut,
-            0.5 * self.paper if outside else -0.5 * self.paper,
+        return Cylinder(face, Plane(-down - self.narrowest, np.zeros(2)), cut, paper)
+
+    def _header(self, onto: Onto, length: float) -> StraightHeader:
+        """The outside of the header as an existing pipe has it, with paper on it [mm]."""
+        from develop.pieces.header import StraightHeader
+        from develop.sections import section_of
+
+        section = section_of(onto.header)
+        return StraightHeader(section, section, length, 0.5 * self.paper)
+
+    def _frame(self, header: StraightHeader, onto: Onto, *, from_a: float) -> Frame:
+        """The pipe's place on the header: z away from it."""
+        from develop.pieces.header import standing
+
+        return standing(
+            header, angle=onto.angle, leaves_at=0.5 * pi, off_centre=onto.off_centre, from_a=from_a
         )
+
+    def _saddle(self, face: Section, onto: Onto, paper: float) -> Cylinder:
+        """The pipe's face from the band's square edge to the header, facing which is END B."""
+        import numpy as np
+
+        from develop.surfaces.cylinder import Cylinder
+        from develop.surfaces.meeting import CylinderTrim
+        from develop.surfaces.trim import Plane
+
+        header = self._header(onto, 1.0)
+        frame = self._frame(header, onto, from_a=0.0)
+        over = header.overhang(face, frame)
+        if over > _TANGENT:
+            raise Refusal(
+                field="onto",
+                given=f"the pipe reaches {over:.4g} mm beside the header",
+                allowed="a pipe that lies within the header: a smaller off_centre or a larger header",
+            )
+        trim = CylinderTrim(header.section, _turned(frame), towards=True)
+        open_ended = Cylinder(face, Plane(0.0, np.zeros(2)), trim, paper, trim.breaks(face))
+        nearest = float(open_ended.sheet(0.0).at_ends.length.min())
+        nearest = min(
+            nearest, float(open_ended.lengths(face.at_direction(np.radians(np.arange(360.0)))).min())
+        )
+        return Cylinder(face, Plane(nearest - self.narrowest, np.zeros(2)), trim, paper, trim.breaks(face))
 
     def _facts(self, face: Section, girth: float, units: str) -> tuple[str, ...]:
         """What the sheet says; face: the pipe's face that the band lies on; girth of the band [mm]."""
@@ -97,7 +153,7 @@ class MarkingBand(Marked):
         if self.section.width != self.section.height:
             size = f"{size} x {size_words(face.height, units)}"
         wall = f", wall {size_words(self.thickness, units)}" if self.thickness else ""
-        cut = cut_words(self.cut)
+        cut = self._onto_words(units) if self.onto else cut_words(self.cut)
         return (
             f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
             f"{section_words(self.section, units)}, {size} {self.face}{wall}",
@@ -112,6 +168,12 @@ class MarkingBand(Marked):
             f"paper {size_words(self.paper, units)}{' mm' if units == 'mm' else ''} thick",
             f"quantity {self.quantity}",
         )
+
+    def _onto_words(self, units: str) -> str:
+        assert self.onto is not None
+        off = f", {size_words(self.onto.off_centre, units)} off centre" if self.onto.off_centre else ""
+        angle = number_text(round(degrees(self.onto.angle), 6))
+        return f"meets a header {section_words(self.onto.header, units)} at {angle}°{off}"
 
     def _seam_words(self) -> tuple[str, str]:
         """What the left and the right side say of how the band closes."""
@@ -151,4 +213,97 @@ class MarkingBand(Marked):
             distance=surface.distance,
             cut=surface.sheet(seam, beyond=self.lap) if self.lap else None,
         )
-        return one(pattern, cylinder_solid(surface, seam))
+        if self.onto is None:
+            return one(pattern, cylinder_solid(surface, seam))
+        return self._with_hole(self.onto, replace(pattern, mark=f"{self.mark}-band"), surface, seam, units)
+
+    def _with_hole(self, onto: Onto, pattern: Pattern, surface: Cylinder, seam: float, units: str) -> Built:
+        """The saddle's band, and the band that marks the hole on the header."""
+        import numpy as np
+
+        from develop.pieces.assemble import Hole, Wording, pattern_of
+        from develop.pieces.built import Built, Part
+        from develop.solid import End, Frame, MeetingEnd, Solid
+        from develop.surfaces.cylinder import Cylinder
+        from develop.surfaces.meeting import Opening
+        from develop.surfaces.trim import Plane
+
+        face, low = surface.section, surface.trim_a
+        assert isinstance(low, Plane)
+        frame = self._frame(self._header(onto, 1.0), onto, from_a=0.0)
+        band = Solid(
+            End.cut(face, height=low.height, rise=low.rise),
+            MeetingEnd.of(face, self._header(onto, 1.0).section, _turned(frame), towards=True),
+            side="parallel",
+            seam=seam,
+            seam_b=seam,
+            distance=surface.distance,
+        )
+
+        def cut_by(header: StraightHeader, place: Frame) -> tuple[Cylinder, Opening]:
+            through = header.through(place)
+            pipe = Cylinder(face, through, Plane(1e3, np.zeros(2)), 0.0, through.breaks(face))
+            return pipe, Opening(pipe.sheet(seam), header.sheet(opposite), through)
+
+        # The hole first on a header of any length, then on one that leaves the band its least width.
+        first = self._header(onto, 1.0)
+        opposite = float(first.section.at_direction(np.array([1.5 * pi]))[0])
+        _, rough = cut_by(first, frame)
+        heights = rough.controls[:, 1]
+        length = float(np.ptp(heights)) + 2.0 * self.narrowest
+        header = self._header(onto, length)
+        place = self._frame(header, onto, from_a=self.narrowest - float(heights.min()))
+        pipe, opening = cut_by(header, place)
+        at = pipe.sheet(seam).from_a(face.at_direction(np.radians([0.0, 90.0, 180.0, 270.0])))
+        trace = opening.trace(at.panel, at.x)
+        hole = Hole(
+            opening.controls, opening.length, opening.area, trace.points, trace.tangents, trace.arcs, _WORDS
+        )
+        flat = header.sheet(opposite)
+        lapped = header.surface().sheet(opposite, beyond=self.lap) if self.lap else None
+        on_header = pattern_of(
+            flat,
+            header.section,
+            header.section,
+            wording=Wording(
+                mark=f"{self.mark}-hole",
+                kind=self.kind,
+                quantity=self.quantity,
+                face="outside",
+                facts=(
+                    f"{self.mark}-hole: for the header",
+                    f"{section_words(onto.header, units)}, its outside",
+                    f"hole of {section_words(self.section, units)}, {self.face} of the pipe",
+                    self._onto_words(units),
+                    "wrap round, this side out; mark the hole",
+                    f"girth of the band {measured_words(flat.edge_a, units)}",
+                    f"quantity {self.quantity}",
+                ),
+                datum="datum line y = 0, the band's square edge",
+                flow="",
+                full_lines=False,
+                units=units,
+                seam_words=("THIS EDGE TO DASHED LINE", "MEETS HERE") if self.lap else ("EDGES MEET",) * 2,
+            ),
+            divisions=self.divisions,
+            distance=header.distance,
+            cut=lapped,
+            holes=(hole,),
+        )
+        solid = header.solid(opposite, flat, (header.hole(face, place),))
+        square = Frame.square()
+        return Built((Part(pattern, band, (square,)), Part(on_header, solid, (square,))))
+
+
+def _turned(frame: Frame) -> Frame:
+    """The same place with z towards the header: turned over about its y."""
+    from develop.solid import Frame
+
+    x, y, z = frame.axes
+    return Frame(frame.origin, _rows(-x, y, -z))
+
+
+def _rows(*rows: Array) -> Array:
+    import numpy as np
+
+    return np.array(rows)

@@ -25,17 +25,28 @@ class MeetingEnd(End):
     """The end A of a branch that is carried along its +z: where its lines enter the header.
 
     header: the header's section, about the z of its own frame. frame: the branch's, in the header's.
-    sheet: how far outside of that section the header's sheet is developed [mm].
+    sheet: how far outside of that section the header's sheet is developed [mm]. towards: the branch's
+        +z runs towards the header, so that this is its end B.
     """
 
     header: Section
     frame: Frame
     sheet: float = 0.0
+    towards: bool = False
 
     @staticmethod
-    def of(section: Section, header: Section, frame: Frame, *, sheet: float = 0.0) -> MeetingEnd:
-        """The end of a branch of a section; `sheet` as for the class."""
-        return MeetingEnd(section, np.zeros(3), np.eye(3)[:, :2], np.eye(3)[:2], header, frame, sheet)
+    def of(
+        section: Section, header: Section, frame: Frame, *, sheet: float = 0.0, towards: bool = False
+    ) -> MeetingEnd:
+        """The end of a branch of a section; `sheet` [mm] and `towards` as for the class."""
+        flat = np.eye(3)[:, :2]
+        return MeetingEnd(section, np.zeros(3), flat, flat.T, header, frame, sheet, towards)
+
+    @property
+    def _out(self) -> Array:
+        """The unit vector (2,) across the header's axis, from it along the branch."""
+        out = self.frame.axes[2, :2] * (-1.0 if self.towards else 1.0)
+        return np.asarray(out / np.hypot(*out))
 
     def on_header(self, u: Array) -> tuple[Array, Array]:
         """The header's parameter (n,) and the points (n, 3) [mm], in the header's frame, of the joint.
@@ -43,8 +54,7 @@ class MeetingEnd(End):
         Along the header's near side, from its farthest reach to one side to the other, how far a
         point lies to the side falls throughout: halving finds where it is that of the branch's line.
         """
-        axes = self.frame.axes
-        out = axes[2, :2] / np.hypot(*axes[2, :2])
+        axes, out = self.frame.axes, self._out
         right = np.array([out[1], -out[0]])
         at = self.section.walk(u)
         place = at.x[:, None] * axes[0] + at.y[:, None] * axes[1] + self.frame.origin
@@ -62,7 +72,7 @@ class MeetingEnd(End):
             low, high = np.where(beyond, middle, low), np.where(beyond, high, middle)
         middle = 0.5 * (low + high)
         on = header.walk(middle)
-        lift = (on.x * out[0] + on.y * out[1] - place[:, :2] @ out) / np.hypot(*axes[2, :2])
+        lift = (on.x * out[0] + on.y * out[1] - place[:, :2] @ out) / (axes[2, :2] @ out)
         return middle, place + lift[:, None] * axes[2]
 
     def point(self, u: Array) -> Array:
@@ -72,8 +82,7 @@ class MeetingEnd(End):
     @property
     def breaks(self) -> Array:
         """Parameters of the branch's section where the joint may have corners."""
-        axes = self.frame.axes
-        out = axes[2, :2] / np.hypot(*axes[2, :2])
+        axes, out = self.frame.axes, self._out
         right = np.array([out[1], -out[0]])
         mine = axes[:2, :2] @ right
         far = [self.section.parameters(*(s * mine[:, None])) for s in (1.0, -1.0)]

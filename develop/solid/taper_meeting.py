@@ -39,7 +39,7 @@ class TaperMeetingEnd(MeetingEnd):
         """The end of a branch of a section, in a header between two rims."""
         flat = np.eye(3)[:, :2]
         return TaperMeetingEnd(
-            section, np.zeros(3), flat, flat.T, rim_a.section, frame, sheet, rim_b, rim_a, outward
+            section, np.zeros(3), flat, flat.T, rim_a.section, frame, sheet, False, rim_b, rim_a, outward
         )
 
     def _rulings(self, phi: Array) -> tuple[Array, Array, Array]:

@@ -36,23 +36,24 @@ class CylinderTrim:
     """The near side of another cylinder, for lines that come from outside of it, all one way.
 
     section: of the other cylinder, whose axis is the z of its frame. frame: where the trimmed
-    cylinder stands in the other's frame.
+    cylinder stands in the other's frame. towards: its z runs towards the other, and not away from it.
     """
 
     section: Section
     frame: Frame
+    towards: bool = False
 
     def meet(self, start: Array, along: Array) -> Array:
-        into = along[0] @ self.frame.axes
-        size = float(np.hypot(into[0], into[1]))
-        out = into[:2] / size
+        right = sideways(self.frame, towards=self.towards)
+        out = np.array([-right[1], right[0]])
+        into = float((along[0] @ self.frame.axes)[:2] @ out)
         place = start @ self.frame.axes + self.frame.origin
         at = self.section.walk(self.on_section(start))
-        return np.asarray((at.x * out[0] + at.y * out[1] - place[:, :2] @ out) / size)
+        return np.asarray((at.x * out[0] + at.y * out[1] - place[:, :2] @ out) / into)
 
     def on_section(self, start: Array) -> Array:
         """Parameters (n,) of the other's section where lines through start (n, 3) leave it."""
-        right = sideways(self.frame)
+        right = sideways(self.frame, towards=self.towards)
         reach = (start @ self.frame.axes + self.frame.origin)[:, :2] @ right
         most, least = (float(self.section.support(*(s * right))) * s for s in (1.0, -1.0))
         return self.section.at_side(right[0], right[1], np.clip(reach, least, most))
@@ -70,7 +71,7 @@ class CylinderTrim:
         They are where that section reaches farthest to either side, and where its lines meet the
         breaks of the other's.
         """
-        right = sideways(self.frame)
+        right = sideways(self.frame, towards=self.towards)
         mine = self.frame.axes[:2, :2] @ right
         shift = float(self.frame.origin[:2] @ right)
         far, near = (section.parameters(*(s * mine[:, None])) for s in (1.0, -1.0))
@@ -87,12 +88,13 @@ class CylinderTrim:
         return tuple(float(u) for u in np.concatenate(found) % section.period)
 
 
-def sideways(frame: Frame) -> Array:
+def sideways(frame: Frame, *, towards: bool = False) -> Array:
     """The unit vector (2,) across a header, to the right when its branch points up.
 
     frame: the branch's, in the header's; seen along the header's axis from its end B to its end A.
+    towards: the frame's z runs towards the header.
     """
-    out = frame.axes[2, :2]
+    out = -frame.axes[2, :2] if towards else frame.axes[2, :2]
     return np.asarray(np.array([out[1], -out[0]]) / np.hypot(*out))
 
 

@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 
 from develop.errors import InputError
+from develop.job.pipeline import checks_of
 from develop.pattern.layout import lettered
 from develop.pieces import kind_of
 from develop.pieces.fields import read_piece
@@ -187,3 +188,87 @@ def test_a_lap_of_more_than_half_the_girth_is_refused() -> None:
     with pytest.raises(InputError) as caught:
         band(section="pipe DN 100", lap=500)
     assert caught.value.problems[0].field == "lap"
+
+
+def onto(**given: object):
+    return make("marking-band", **{"section": "pipe DN 150", "onto": "round 400", **given})
+
+
+def test_a_saddle_follows_the_two_circles() -> None:
+    # Elementary: at x to the side the header's face is R − sqrt(R² − x²) farther from the pipe's end.
+    band, hole = onto(narrowest=40).patterns
+    assert band.mark.endswith("-band")
+    assert hole.mark.endswith("-hole")
+    r = 168.3 / 2
+    for row in band.divisions:
+        expected = 40 + 200 - np.sqrt(200**2 - (r * cos(row.direction)) ** 2)
+        assert row.length == pytest.approx(expected, abs=1e-9)
+
+
+def test_the_hole_of_a_saddle_has_its_published_width_and_the_joints_length() -> None:
+    band, hole = onto(paper=0).patterns
+    ((_, edge),) = hole.openings[0].curves
+    assert edge.length == pytest.approx(band.net.curve("b").length, rel=1e-11)
+    points = edge.polyline(1e-5)
+    assert np.ptp(points[:, 1]) == pytest.approx(168.3, abs=1e-6)
+    assert np.ptp(points[:, 0]) == pytest.approx(2 * 200 * np.arcsin(168.3 / 400), abs=1e-6)
+    # The least width of the band lies above and below the hole.
+    assert points[:, 1].min() == pytest.approx(50, abs=1e-6)
+
+
+@pytest.mark.parametrize(
+    "given",
+    [
+        {"onto": "round 400 angle 60 off_centre 30"},
+        {"onto": "round 400 angle 120 off_centre -30", "thickness": 7.1, "face": "inside"},
+        {"onto": "pipe DN 150"},
+        {"onto": {"header": "ellipse 500 x 300", "angle": 75}, "seam_at": "left"},
+        {"onto": "round girth 1921", "lap": 0},
+    ],
+)
+def test_a_saddle_and_its_hole_pass_their_checks(given) -> None:
+    failed = [each for each in checks_of(onto(**given)) if not each.holds]
+    assert not failed, failed
+
+
+def test_off_centre_is_on_the_right_of_the_headers_top_seen_facing_its_end_b() -> None:
+    _, hole = onto(onto="round 400 off_centre 60").patterns
+    words = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "a"}
+    points = hole.openings[0].curves[0][1].polyline(1e-3)
+    middle = 0.5 * (points[:, 0].min() + points[:, 0].max())
+    assert (middle - words["TOP"]) * (words["RIGHT"] - words["TOP"]) > 0
+
+
+@pytest.mark.parametrize(
+    ("given", "field"),
+    [
+        ({"onto": "round 100"}, "onto"),
+        ({"onto": "round 400 off_centre 150"}, "onto"),
+    ],
+)
+def test_a_pipe_beside_the_header_is_refused(given, field) -> None:
+    with pytest.raises(InputError) as caught:
+        onto(**given)
+    assert caught.value.problems[0].field == field
+
+
+@pytest.mark.parametrize(
+    ("text", "field"),
+    [
+        ("round 400 angle 5", "onto.angle"),
+        ("round 400 angle 60 angle 70", "onto"),
+        ("angle 60", "onto.header"),
+        ({"header": "round 400", "agnle": 60}, "onto.agnle"),
+        (7, "onto"),
+    ],
+)
+def test_what_is_no_header_is_refused(text, field) -> None:
+    _, problems = read_piece(kind_of("marking-band"), {"section": "pipe DN 150", "onto": text})
+    assert [each.field for each in problems] == [field]
+
+
+def test_cut_and_onto_exclude_each_other() -> None:
+    _, problems = read_piece(
+        kind_of("marking-band"), {"section": "pipe DN 150", "onto": "round 400", "cut": "slope 45 long right"}
+    )
+    assert "onto" in " ".join(map(str, problems))
