@@ -77,7 +77,6 @@ class MarkingBand(Marked):
         import numpy as np
 
         from develop.pieces.cuts import trim
-        from develop.pieces.wall import PLACES, given_section
         from develop.surfaces.cylinder import Cylinder
         from develop.surfaces.trim import Plane
 
@@ -89,14 +88,13 @@ class MarkingBand(Marked):
                 given=f"not given, but the band is laid inside a pipe whose size is {where}",
                 allowed="the pipe's wall thickness" + ("" if self.section.outside else ", or sizes = inside"),
             )
-        given = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
-        if self.lap > 0.5 * given.girth:
+        face = self._face()
+        if self.lap > 0.5 * face.girth:
             raise Refusal(
                 field="lap",
                 given=f"{number_text(self.lap)} mm is more than half the pipe's girth",
-                allowed=f"{number_text(floor(0.5 * given.girth))} mm or less",
+                allowed=f"{number_text(floor(0.5 * face.girth))} mm or less",
             )
-        face = given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
         paper = 0.5 * self.paper if outside else -0.5 * self.paper
         if self.onto is not None:
             return self._saddle(face, self.onto, paper)
@@ -104,6 +102,15 @@ class MarkingBand(Marked):
         down = float(face.support(np.array(-cut.rise[0]), np.array(-cut.rise[1])))
         # END A is the band's own square edge, so far below the cut that the band is nowhere too narrow.
         return Cylinder(face, Plane(-down - self.narrowest, np.zeros(2)), cut, paper)
+
+    def _face(self, *, mirrored: bool = False) -> Section:
+        """The pipe's section at the face that the band lies on, or its mirror image. Raises Refusal."""
+        from develop.pieces.wall import PLACES, given_section
+
+        spec = SECTION.mirrored(self.section) if mirrored else self.section
+        assert isinstance(spec, SectionSpec)
+        given = given_section(spec, field="section", thickness=self.thickness, sizes=self.sizes)
+        return given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
 
     def _header(self, onto: Onto, length: float) -> StraightHeader:
         """The outside of the header as an existing pipe has it, with paper on it [mm]."""
@@ -240,9 +247,12 @@ class MarkingBand(Marked):
             distance=surface.distance,
         )
 
+        # The band's z runs towards the header, the hole's away from it: right and left change places.
+        pipe_face = self._face(mirrored=True)
+
         def cut_by(header: StraightHeader, place: Frame) -> tuple[Cylinder, Opening]:
             through = header.through(place)
-            pipe = Cylinder(face, through, Plane(1e3, np.zeros(2)), 0.0, through.breaks(face))
+            pipe = Cylinder(pipe_face, through, Plane(1e3, np.zeros(2)), 0.0, through.breaks(pipe_face))
             return pipe, Opening(pipe.sheet(seam), header.sheet(opposite), through)
 
         # The hole first on a header of any length, then on one that leaves the band its least width.
@@ -254,7 +264,7 @@ class MarkingBand(Marked):
         header = self._header(onto, length)
         place = self._frame(header, onto, from_a=self.narrowest - float(heights.min()))
         pipe, opening = cut_by(header, place)
-        at = pipe.sheet(seam).from_a(face.at_direction(np.radians([0.0, 90.0, 180.0, 270.0])))
+        at = pipe.sheet(seam).from_a(pipe_face.at_direction(np.radians([180.0, 90.0, 0.0, 270.0])))
         trace = opening.trace(at.panel, at.x)
         hole = Hole(
             opening.controls, opening.length, opening.area, trace.points, trace.tangents, trace.arcs, _WORDS
@@ -290,7 +300,7 @@ class MarkingBand(Marked):
             cut=lapped,
             holes=(hole,),
         )
-        solid = header.solid(opposite, flat, (header.hole(face, place),))
+        solid = header.solid(opposite, flat, (header.hole(pipe_face, place),))
         square = Frame.square()
         return Built((Part(pattern, band, (square,)), Part(on_header, solid, (square,))))
 

@@ -272,3 +272,23 @@ def test_cut_and_onto_exclude_each_other() -> None:
         kind_of("marking-band"), {"section": "pipe DN 150", "onto": "round 400", "cut": "slope 45 long right"}
     )
     assert "onto" in " ".join(map(str, problems))
+
+
+def test_the_marks_of_band_and_hole_meet() -> None:
+    # Moved to the header's right, the pipe reaches farther down on that side, which is the left for one
+    # who faces the saddle. The hole's mark of that name must lie on the header's right.
+    band, hole = onto(onto="round 400 off_centre 60").patterns
+    rows = {round(np.degrees(row.direction)) % 360: row.length for row in band.divisions}
+    assert rows[180] > rows[0]
+    words = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "a"}
+    on_hole = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "opening"}
+    towards_right = words["RIGHT"] - words["TOP"]
+    assert (on_hole["LEFT"] - on_hole["RIGHT"]) * towards_right > 0
+
+
+def test_an_out_of_round_pipe_fits_its_hole() -> None:
+    failed = [
+        each for each in checks_of(onto(section="measured 0:160 50:166 90:171 140:165", onto="round 400"))
+        if not each.holds
+    ]  # fmt: skip
+    assert not failed, failed
