@@ -85,16 +85,16 @@ def read_job(file: str) -> Job:
     defaults = _table(data, "defaults", places, problems)
     raw = _pieces(data, places, problems)
     _check_defaults(defaults, unit, places, problems)
-    read: list[tuple[int, Placed]] = []
+    read: list[Placed] = []
     for index, table in enumerate(raw):
         if table is not None:
             piece = _piece(index, table, defaults, unit, places, problems)
             if piece is not None:
-                read.append((index, piece))
-    _check_marks(read, raw, places, problems)
+                read.append(piece)
+    _check_marks(raw, places, problems)
     if problems:
         raise InputError(_once(problems))
-    return Job(name=name, units=unit, pieces=tuple(placed for _, placed in read))
+    return Job(name=name, units=unit, pieces=tuple(read))
 
 
 def _text_of(file: str) -> str:
@@ -250,29 +250,32 @@ def _piece(
     return Placed(piece, place)
 
 
-def _check_marks(
-    read: list[tuple[int, Placed]],
-    raw: list[dict[str, object] | None],
-    places: Places,
-    problems: list[Problem],
-) -> None:
-    """Two pieces of one mark would write the same files; on some systems capitals do not tell names apart."""
+def _check_marks(raw: list[dict[str, object] | None], places: Places, problems: list[Problem]) -> None:
+    """Two pieces of one mark would write the same files; on some systems capitals do not tell names apart.
+
+    As given, so that a piece with other mistakes is looked at too.
+    """
     from unicodedata import normalize
 
     first: dict[str, int] = {}
-    for index, placed in read:
-        piece = placed.piece
-        key = normalize("NFC", piece.mark).casefold()
+    faulty = {problem.place for problem in problems if problem.field == "mark"}
+    for index, given in enumerate(raw):
+        if places.of("piece", index, "mark") in faulty:
+            continue
+        mark = (given or {}).get("mark", (given or {}).get("kind"))
+        if given is None or not isinstance(mark, str) or ("mark" not in given and mark not in KINDS):
+            continue
+        mark = mark.strip()
+        key = normalize("NFC", mark).casefold()
         if key not in first:
             first[key] = index
             continue
-        given = raw[index]
-        how = "is" if given and "mark" in given else "is by default"
+        how = "is" if "mark" in given else "is by default"
         where = places.of("piece", first[key], "mark")
         problems.append(
             Problem(
                 "mark",
-                f"{shown(piece.mark)} {how} the mark of this piece, and of the one at {where}",
+                f"{shown(mark)} {how} the mark of this piece, and of the one at {where}",
                 "a mark of its own for each piece, such as A1 (capitals do not count)",
                 places.of("piece", index, "mark"),
             )

@@ -264,3 +264,18 @@ def test_a_file_too_large_for_a_job_is_not_read(tmp_path: Path) -> None:
         file.truncate(20_000_000)
     with pytest.raises(InputError, match="is too large for a job file; allowed: at most 16 MB"):
         read_job(str(tmp_path / "hall.toml"))
+
+
+def test_equal_marks_are_told_beside_other_mistakes(tmp_path) -> None:
+    file = tmp_path / "hall.toml"
+    file.write_text(
+        '[[piece]]\nmark = "A"\nkind = "straight"\nsection = "round 200"\nlenght = 100\n'
+        '[[piece]]\nmark = "a"\nkind = "strait"\n',
+        encoding="utf-8",
+    )
+    with pytest.raises(InputError) as caught:
+        read_job(str(file))
+    said = [str(problem) for problem in caught.value.problems]
+    assert any("lenght" in each for each in said)
+    assert any("is not a kind" in each for each in said)
+    assert any("is the mark of this piece" in each for each in said)
