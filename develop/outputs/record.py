@@ -73,6 +73,7 @@ def record(
 def _pattern(pattern: Pattern) -> dict[str, object]:
     openings = [_points(opening) for opening in pattern.openings]
     holes = math.fsum(opening.area for opening in pattern.openings)
+    marked = pattern.openings_as == "marked"
     return {
         "mark": pattern.mark,
         "quantity": pattern.quantity,
@@ -85,8 +86,8 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
         },
         "cut": {
             "outline": _points(pattern.cut),
-            "openings": openings,
-            "area": float(pattern.cut.area - holes),
+            "openings": [] if marked else openings,
+            "area": float(pattern.cut.area - (0.0 if marked else holes)),
         },
         "lines": [
             {

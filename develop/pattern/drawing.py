@@ -14,6 +14,7 @@ from develop.pattern.curve import Array, Curve
 from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of, text_height
 from develop.pattern.pattern import Label, Outline, Pattern
 from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
+from develop.pattern.ties import between_ties
 
 __all__ = ["CUT", "LAYERS", "NET", "PRESS_LINES", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
 
@@ -53,11 +54,19 @@ def draw(pattern: Pattern, pen: Pen) -> None:
     """
     pen.layer(CUT)
     pen.contour(pattern.cut)
-    for opening in pattern.openings:
-        pen.contour(opening)
+    marked = pattern.openings if pattern.openings_as == "marked" else ()
+    if not marked:
+        for opening in pattern.openings:
+            if pattern.openings_as == "ties":
+                for curve in between_ties(opening, pattern.tie):
+                    pen.curve(curve, dashed=False)
+            else:
+                pen.contour(opening)
     net = _off_the_cut(pattern.net, pattern.cut)
-    if net:
+    if net or marked:
         pen.layer(NET)
+        for opening in marked:
+            pen.contour(opening)
         if len(net) == len(pattern.net.curves):
             pen.contour(pattern.net)
         else:

@@ -129,7 +129,8 @@ class Pattern:
     facts: lines of text that every sheet states. The first four tell which piece it is: mark and
         kind, sizes, length or cuts, where the sizes are measured.
     units: of the figures on the sheets, `mm` or `in`; all values here are in mm.
-    openings_as: whether the openings are `cut`, only `marked`, or cut but left on `ties`.
+    openings_as: whether the openings are `cut`, only `marked` on the net line, or cut but left on `ties`.
+    tie: width of a tie [mm].
     flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
     places: lines (n, 2, 2) [mm] across a flat part, best first, that its words stand on square;
         a rolled part has its divisions for that.
@@ -154,6 +155,7 @@ class Pattern:
     full_lines: bool
     rulings: Rulings
     openings_as: str = "cut"
+    tie: float = 0.0
     flow: str = ""
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")

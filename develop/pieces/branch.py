@@ -266,6 +266,7 @@ class Branch(Plate):
 
         import numpy as np
 
+        from develop.pattern.ties import TIES, tie_width
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import Built, Part
         from develop.pieces.wall import PLACES
@@ -316,11 +317,17 @@ class Branch(Plate):
         through = header.through(frame)
         header_seam = float(header.section.at_direction(np.array([self.leaves_at + pi]))[0])
         header_sheet = header.sheet(header_seam)
+        tie = tie_width(self.thickness)
+        opening = {
+            "cut": "cut",
+            "marked": "only marked (dashed): cut after rolling",
+            "ties": f"left on {TIES} ties {size_words(tie, units)} wide",
+        }[self.opening]
         over = self.wording(
             header_sheet,
             sections,
             sizes=f"header {self._header_words(units)}",
-            place=f"opening for branch {section_words(self.branch, units)}, {self.opening}, {where}",
+            place=f"opening for branch {section_words(self.branch, units)}, {opening}, {where}",
             held="length and opening",
             units=units,
         )
@@ -345,11 +352,12 @@ class Branch(Plate):
             turn_b=header.turn_b,
             holes=(self._hole(hole_sheet, header_sheet, through),),
         )
+        header_pattern = replace(header_pattern, openings_as=self.opening, tie=tie)
         header_solid = header.solid(header_seam, header_sheet, (header.hole(hole_section, frame),))
         return Built(
             (
                 Part(branch, branch_solid, (frame,)),
-                Part(replace(header_pattern, openings_as=self.opening), header_solid, (Frame.square(),)),
+                Part(header_pattern, header_solid, (Frame.square(),)),
             )
         )
 

@@ -150,6 +150,18 @@ def test_openings_are_taken_off_the_area(samples):
     assert net["edges"]["opening"] == pytest.approx(2 * math.pi * 50.0)
 
 
+def test_an_opening_that_is_only_marked_is_not_cut(samples):
+    hole = Outline(
+        (("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * math.pi)),), math.pi * 2500
+    )
+    content = read(replace(samples.rectangle(1256.6, 450.0), openings=(hole,), openings_as="marked"))
+    net, cut = content["patterns"][0]["net"], content["patterns"][0]["cut"]
+    assert len(net["openings"]) == 1
+    assert cut["openings"] == []
+    assert cut["area"] == pytest.approx(1256.6 * 450.0, rel=1e-14)
+    assert net["area"] == pytest.approx(1256.6 * 450.0 - math.pi * 2500.0, rel=1e-14)
+
+
 def test_a_number_that_is_none_is_refused(samples):
     with pytest.raises(ValueError, match="JSON"):
         record("S", "straight", {"length": math.nan}, [samples.rectangle()], ())

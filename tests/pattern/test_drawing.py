@@ -61,6 +61,22 @@ def test_openings_are_cut(samples):
     assert [what for _, what in layers[CUT]][1] is hole
 
 
+def test_an_opening_that_is_only_marked_is_not_on_the_cut_layer(samples):
+    hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * np.pi)),), np.pi * 2500)
+    layers = notes_of(replace(samples.rectangle(), openings=(hole,), openings_as="marked"))
+    assert [kind for kind, _ in layers[CUT]] == ["contour"]
+    assert [what for _, what in layers[NET]] == [hole]
+
+
+def test_an_opening_on_ties_is_cut_in_open_lines(samples):
+    hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * np.pi)),), np.pi * 2500)
+    layers = notes_of(replace(samples.rectangle(), openings=(hole,), openings_as="ties", tie=5.0))
+    assert [kind for kind, _ in layers[CUT]] == ["contour", *["curve"] * 4]
+    assert NET not in layers
+    ends = [each for _, curve in layers[CUT][1:] for each in (curve.start, curve.end)]
+    assert len(np.unique(np.round(ends, 6), axis=0)) == 8
+
+
 @pytest.mark.parametrize("full", [False, True])
 @pytest.mark.parametrize("name", ["rectangle", "slanting", "fan"])
 def test_nothing_is_drawn_twice(samples, name, full):

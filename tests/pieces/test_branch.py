@@ -176,8 +176,14 @@ def test_the_largest_off_centre_that_is_named_works() -> None:
 
 @pytest.mark.parametrize("how", ["cut", "marked", "ties"])
 def test_the_opening_is_cut_marked_or_left_on_ties(how: str) -> None:
-    _, header = parts(tee(opening=how))
-    assert header.openings_as == how
+    _, header = parts(tee(opening=how, thickness=4))
+    assert (header.openings_as, header.tie) == (how, 8.0)
+    words = {
+        "cut": ", cut,",
+        "marked": "only marked (dashed): cut after rolling",
+        "ties": "left on 4 ties 8 wide,",
+    }
+    assert any(words[how] in fact for fact in header.facts), header.facts
 
 
 @settings(max_examples=40, deadline=None, derandomize=True)
