@@ -43,9 +43,12 @@ def _make_all(values: Mapping[str, object]) -> int:
     job = read_job(str(values["file"]))
     if job.name:
         click.echo(f"{job.name}: {len(job.pieces)} pieces")
+    taken: dict[str, str] = {}
     for placed in job.pieces:
         try:
-            outcome = make(placed.piece, folder=folder, formats=formats, units=sheet_unit(job.units))
+            outcome = make(
+                placed.piece, folder=folder, formats=formats, units=sheet_unit(job.units), taken=taken
+            )
         except InputError as error:
             problems += [each.at(placed.place(each.field)) for each in error.problems]
         else:

@@ -10,6 +10,7 @@ from dataclasses import dataclass, replace
 
 from develop.errors import InputError, Problem, Refusal
 from develop.job.lines import Path, lines_of
+from develop.job.writing import file_key
 from develop.pieces import KINDS, kind_of
 from develop.pieces.field_types import Choice, Text
 from develop.pieces.fields import Declared, Piece, fields_of, read_fields, read_piece
@@ -255,8 +256,6 @@ def _check_marks(raw: list[dict[str, object] | None], places: Places, problems: 
 
     As given, so that a piece with other mistakes is looked at too.
     """
-    from unicodedata import normalize
-
     first: dict[str, int] = {}
     faulty = {problem.place for problem in problems if problem.field == "mark"}
     for index, given in enumerate(raw):
@@ -266,7 +265,7 @@ def _check_marks(raw: list[dict[str, object] | None], places: Places, problems: 
         if given is None or not isinstance(mark, str) or ("mark" not in given and mark not in KINDS):
             continue
         mark = mark.strip()
-        key = normalize("NFC", mark).casefold()
+        key = file_key(mark)
         if key not in first:
             first[key] = index
             continue

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
-from develop.job.writing import write_all
+from develop.errors import Refusal
+from develop.job.writing import file_key, write_all
 from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import builds_of
 
@@ -39,11 +40,19 @@ class Outcome:
         return tuple(check for check in self.checks if not check.holds)
 
 
-def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS, units: str = "mm") -> Outcome:
+def make(
+    piece: Piece,
+    *,
+    folder: str,
+    formats: Sequence[str] = FORMATS,
+    units: str = "mm",
+    taken: dict[str, str] | None = None,
+) -> Outcome:
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
-    units: of the figures on the sheets, `mm` or `in`; the record is always in mm. Raises Refusal
-    for a piece that cannot be, WriteError for a place that cannot be written.
+    units: of the figures on the sheets, `mm` or `in`; the record is always in mm. taken: the files of
+    this job's other pieces, each with its mark; those of this piece are added. Raises Refusal for a
+    piece that cannot be, or whose files are another's, WriteError for a place that cannot be written.
     """
     builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)
@@ -64,8 +73,22 @@ def make(piece: Piece, *, folder: str, formats: Sequence[str] = FORMATS, units: 
             )
         else:
             files |= _files(each, piece, builds, checks)
+    _take(files, piece.mark, {} if taken is None else taken)
     write_all(folder, files)
     return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets)
+
+
+def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
+    """Parts add a word to their piece's mark, which may be the mark of another. Raises Refusal."""
+    for name in files:
+        other = taken.get(file_key(name))
+        if other is not None:
+            raise Refusal(
+                field="mark",
+                given=f"{name} would be written for {mark} and is a file of {other}",
+                allowed=f"a mark that no part of {min(other, mark, key=len)} has",
+            )
+    taken.update((file_key(name), mark) for name in files)
 
 
 def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:

@@ -9,7 +9,7 @@ from os.path import isdir, join, lexists
 
 from develop.errors import WriteError
 
-__all__ = ["write_all"]
+__all__ = ["file_key", "write_all"]
 
 _ELSEWHERE = "give another folder"
 _REMEDIES: dict[type[Exception], str] = {
@@ -18,6 +18,13 @@ _REMEDIES: dict[type[Exception], str] = {
     IsADirectoryError: "move that folder away, or give another folder or mark",
     PermissionError: "give a folder that you may write in",
 }
+
+
+def file_key(name: str) -> str:
+    """One key for the names that some file systems do not tell apart: by capitals, or letters and accents."""
+    from unicodedata import normalize
+
+    return normalize("NFC", name).casefold()
 
 
 def write_all(folder: str, files: Mapping[str, bytes]) -> None:

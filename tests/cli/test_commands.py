@@ -326,6 +326,29 @@ def test_a_job_makes_every_piece(run, tmp_path: Path) -> None:  # type: ignore[n
     assert {each.name for each in (tmp_path / "out").iterdir()} == {"S1.svg", "S1.json", "T1.svg", "T1.json"}
 
 
+@pytest.mark.parametrize(("place", "mark"), [("after", "N1-Header"), ("before", "N1-header")])
+def test_a_piece_is_never_written_over_the_part_of_another(run, tmp_path: Path, place, mark) -> None:  # type: ignore[no-untyped-def]
+    branch = """[[piece]]
+kind = "branch"
+mark = "N1"
+header = "round 400"
+header_length = 1000
+branch = "round 200"
+centre_to_end = 500
+"""
+    straight = f'[[piece]]\nkind = "straight"\nmark = "{mark}"\nsection = "round 300"\nlength = 500\n'
+    text, line = (branch + straight, 10) if place == "after" else (straight + branch, 8)
+    (tmp_path / "hall.toml").write_text(text)
+    done = run("job", "hall.toml", "-o", "out", "--formats", "svg")
+    assert done.code == 2
+    (said,) = done.said
+    assert said.startswith(f"hall.toml:{line}: mark: "), said
+    assert f"{mark}.svg" in said or "N1-header.svg" in said
+    assert said.endswith("allowed: a mark that no part of N1 has")
+    made = {each.name for each in (tmp_path / "out").iterdir()}
+    assert made == ({"N1-branch.svg", "N1-header.svg"} if place == "after" else {f"{mark}.svg"})
+
+
 def test_a_job_with_an_error_makes_nothing(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
     (tmp_path / "hall.toml").write_text(JOB + 'rotate = "x"\n[defaults]\nquantity = 0\n')
     done = run("job", "hall.toml", "-o", "out")
