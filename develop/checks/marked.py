@@ -88,7 +88,17 @@ def _distance(points: Array, curve: Curve) -> Array:
     gap = samples[window] - points[:, None]
     nearest = window[np.arange(len(points)), np.argmin((gap * gap).sum(axis=-1), axis=1)]
     piece = np.minimum(nearest // _STEPS, len(pieces) - 1)
-    t = nearest / _STEPS - piece
+    best = _to_foot(points, pieces, piece, nearest / _STEPS - piece)
+    # Beside a corner the nearest sample may lie on the wrong side of it.
+    far = np.flatnonzero(best > _TOGETHER)
+    for step, t in ((-1, 1.0), (1, 0.0)):
+        other = np.clip(piece[far] + step, 0, len(pieces) - 1)
+        best[far] = np.minimum(best[far], _to_foot(points[far], pieces, other, np.full(len(far), t)))
+    return best
+
+
+def _to_foot(points: Array, pieces: Array, piece: Indices, t: Array) -> Array:
+    """Distance (k,) [mm] of points from a chain of Béziers, by Newton steps from piece (k,) at t (k,)."""
     best = np.full(len(points), np.inf)
     for _ in range(_NEWTON_STEPS):
         at, speed = _bezier(pieces[piece], t)
@@ -98,7 +108,7 @@ def _distance(points: Array, curve: Curve) -> Array:
         over, under = (t > 1.0) & (piece < len(pieces) - 1), (t < 0.0) & (piece > 0)
         piece = piece + over - under
         t = np.where(over, 0.0, np.where(under, 1.0, np.clip(t, 0.0, 1.0)))
-    return np.asarray(best)
+    return best
 
 
 def _bezier(p: Array, t: Array) -> tuple[Array, Array]:

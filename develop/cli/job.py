@@ -42,7 +42,7 @@ def _make_all(values: Mapping[str, object]) -> int:
     problems: list[Problem] = []
     job = read_job(str(values["file"]))
     if job.name:
-        click.echo(f"{job.name}: {len(job.pieces)} pieces")
+        click.echo(f"{job.name}: {len(job.pieces)} piece{'s' if len(job.pieces) != 1 else ''}")
     taken: dict[str, str] = {}
     for placed in job.pieces:
         try:

@@ -110,7 +110,7 @@ def _texts(pattern: Pattern) -> list[str]:
     return [
         f"All figures in {figures}. Strike the datum lines x = 0, at the left, and"
         " y = 0, at the bottom, square to each other; lay off x and y of each point from them, then draw each"
-        " edge as a smooth curve through its points."
+        " edge through its points, a smooth curve but for straight sides and corners."
         + (" Running lengths go along the edge, all from line 0." if pattern.divisions else ""),
         *_seam_and_flow(pattern),
         *_lap_corners(pattern),

@@ -253,7 +253,7 @@ class Bend(Plate):
         lengths = f"end gores: throat {short(throat)}, heel {short(heel)}"
         if self.gores > 2:
             lengths += f"; full gores: throat {short(2.0 * throat)}, heel {short(2.0 * heel)}"
-        width = 2.0 * throat if self.gores > 2 else throat
+        width = throat if {1, self.gores} & set(numbers) else 2.0 * throat
         which = ", ".join(map(str, numbers))
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
         return alone.wording(
@@ -267,7 +267,7 @@ class Bend(Plate):
                 f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}, throat at "
                 f"{direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}"
             ),
-            more=(lengths, f"smallest throat width {short(width)}"),
+            more=(lengths, f"throat width {short(width)}"),
         )
 
 

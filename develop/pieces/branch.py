@@ -365,7 +365,9 @@ class Branch(Plate):
         if isinstance(self.header, SectionSpec):
             assert self.header_length is not None
             return f"{section_words(self.header, units)}, length {size_words(self.header_length, units)}"
-        return f"a {self.header.kind} of its own"
+        ends = [name for name in ("section", "end_a", "end_b") if hasattr(self.header, name)]
+        sizes = " to ".join(section_words(getattr(self.header, name), units) for name in ends)
+        return f"{self.header.kind} {sizes}"
 
     def _hole(self, branch: CylinderSheet, header: Sheet, trim: BandTrim | CylinderTrim) -> Hole:
         """The opening in the header's sheet, with the branch's four marks on it."""

@@ -64,7 +64,7 @@ class Marked(Named):
         default="mean",
         metadata=about(
             Choice(("inside", "outside", "mean")),
-            "where the given sizes are measured; a pipe's size is always its outside",
+            "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
             own=False,
         ),
     )
@@ -116,7 +116,12 @@ class Plate(Marked):
         further lines of the kind's own."""
         from develop.pieces.assemble import Wording
 
-        plate = ("edges square to the plate", f"{held} at the given sizes")
+        # A pipe's size is its outside, also where lengths and cuts are asked for elsewhere.
+        elsewhere = self.sizes != "outside" and any(spec.outside for spec in sections)
+        held_at = (
+            {"mean": "mid-thickness", "inside": "the inside"}[self.sizes] if elsewhere else "the given sizes"
+        )
+        plate = ("edges square to the plate", f"{held} at {held_at}")
         full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
         return Wording(
             mark=self.mark,

@@ -61,7 +61,7 @@ def parts_of(
         plate = _plate(inner, width, line, here, radius, span, blank, others if len(group) == 1 else None)
         name = mark if len(groups) == 1 else f"{mark}-{number}"
         count = quantity * len(group)
-        which = f", {len(group)} of the {len(spans)} parts of the ring" if ends is not None else ""
+        which = f", {len(group)} alike of the {len(spans)} parts of the ring" if ends is not None else ""
         title = f"{name}: {kind}" if name != kind else name
         solid = FlatRing(
             inner,

@@ -64,7 +64,7 @@ class MarkingBand(Marked):
         default="outside",
         metadata=about(
             Choice(("inside", "outside", "mean")),
-            "where the given sizes are measured; a pipe's size is always its outside",
+            "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
             own=False,
         ),
     )

@@ -125,6 +125,12 @@ def test_it_says_hard_way_or_easy_way(section: str, turns_to: str, words: str) -
         assert any(each in fact for fact in facts) is (each == words)
 
 
+def test_each_gore_says_its_own_throat_width() -> None:
+    slope = tan(radians(90 / 8))
+    for pattern, share in zip(bend(**HARD, stagger=30).patterns, (1, 2, 2, 2, 1), strict=True):
+        assert f"throat width {350 * share * slope:.1f}" in pattern.facts
+
+
 def test_the_facts_of_the_hard_way_bend() -> None:
     facts = "\n".join(bend(**HARD).patterns[1].facts)
     slope = tan(radians(90 / 8))
@@ -132,7 +138,7 @@ def test_the_facts_of_the_hard_way_bend() -> None:
         "mitre angle 11.25°",
         f"end gores: throat {350 * slope:.1f}, heel {1050 * slope:.1f}",
         f"full gores: throat {700 * slope:.1f}, heel {2100 * slope:.1f}",
-        f"smallest throat width {700 * slope:.1f}",
+        f"throat width {700 * slope:.1f}",
         "radius 700.0 to the axis",
         "gores 2, 3, 4 of 5",
     ):

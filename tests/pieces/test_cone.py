@@ -12,7 +12,7 @@ from math import cos, degrees, hypot, pi, radians, sin, sqrt, tan
 import mpmath
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from develop.errors import InputError
@@ -410,7 +410,9 @@ def test_checks_do_not_chase_rounding_at_the_apex() -> None:
     assert perf_counter() - start < 2.0
 
 
-@settings(max_examples=25, deadline=None)
+@settings(max_examples=25, deadline=None, derandomize=True)
+# Its corners once misled the check of the outline as drawn.
+@example("rectangle 400 x 300 r 0", 100.0, -72.0, 0.0, 0.375, 2.0, 259.0)
 @given(
     section=st.sampled_from(
         ["round 400", "ellipse 700 x 250", "flat-oval 300 x 500", "rectangle 400 x 300 r 0"]

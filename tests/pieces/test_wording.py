@@ -51,6 +51,18 @@ def test_plate_says_how_its_edges_are_cut(thickness: float, told: bool) -> None:
         assert (f"{held} at the given sizes" in said) is told
 
 
+@pytest.mark.parametrize(("sizes", "where"), [
+    ("mean", "mid-thickness"), ("inside", "the inside"), ("outside", "the given sizes"),
+])  # fmt: skip
+def test_plate_of_a_pipe_says_where_its_lengths_are_held(sizes: str, where: str) -> None:
+    given = {"length": 1000, "cut_b": "slope 30 long top", "thickness": 10, "sizes": sizes}
+    said = facts("straight", section="pipe DN 800", **given)
+    assert "sizes outside" in said
+    assert f"length and cuts at {where}" in said
+    other = facts("straight", section="round 813", **given)
+    assert "length and cuts at the given sizes" in other
+
+
 @pytest.mark.parametrize(("thickness", "sizes", "words"), [
     (0, "mean", "net, no thickness"), (0, "inside", "net, no thickness"), (2, "mean", "sizes mean (mid-thickness)"),
     (2, "outside", "sizes outside"),
