@@ -94,12 +94,16 @@ def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
 def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
     """Every check of a piece as built and of its opposite hand, if it has one."""
     from develop.checks import check_hand
+    from develop.solid import Frame
 
     found = list(checks_of(builds[0]))
     for other in builds[1:]:
         mark = other.patterns[0].mark
         found += [replace(each, name=f"{mark}: {each.name}") for each in checks_of(other)]
-        sides = ([(part.solid, part.frames) for part in built.parts] for built in (builds[0], other))
+        sides = (
+            [(part.solid, part.frames or (Frame.square(),)) for part in built.parts]
+            for built in (builds[0], other)
+        )
         found.append(check_hand(mark, *sides))
     return tuple(found)
 
@@ -156,4 +160,16 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         return {f"{mark}.png": flat_picture(builds[0].parts, title)}
     from develop.outputs.picture import picture
 
-    return {f"{mark}.png": picture(builds[0].placed, patterns[0].facts[:4])}
+    headers = [
+        part
+        for part in builds[0].parts
+        if part.frames and isinstance(part.solid, Solid) and part.solid.openings
+    ]
+    if not headers:
+        return {f"{mark}.png": picture(builds[0].placed, patterns[0].facts[:4])}
+    # What stands on a header has ends of its own: A and B are the header's, the others have their mark.
+    others = [part for part in builds[0].parts if all(part is not header for header in headers)]
+    placed = [each for part in (*headers, *others) for each in replace(builds[0], parts=(part,)).placed]
+    names = [part.pattern.mark for part in others for _ in part.frames]
+    title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
+    return {f"{mark}.png": picture(placed, (title, *patterns[0].facts[1:3]), names)}

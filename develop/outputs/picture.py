@@ -77,11 +77,12 @@ class _Camera:
         return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
 
 
-def picture(pieces: Sequence[Piece], facts: Sequence[str]) -> bytes:
+def picture(pieces: Sequence[Piece], facts: Sequence[str], branches: Sequence[str] = ()) -> bytes:
     """PNG of a piece in perspective, equal scale in all directions; the same piece gives the same bytes.
 
-    pieces: its parts where they stand, the first with END A, the last with END B. facts: what stands
-    above it, in one line or two.
+    pieces: its parts where they stand, the first with END A, the last with END B; then those that
+    stand on them, as many as `branches` has names, each named at its end B. facts: what stands above
+    it, in one line or two.
     """
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
@@ -108,7 +109,7 @@ def picture(pieces: Sequence[Piece], facts: Sequence[str]) -> bytes:
             seam = camera.project(piece.seam_line)
             axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
         corners = camera.project(vertices)
-        for text, start, end, colour in _words(camera, pieces):
+        for text, start, end, colour in _words(camera, pieces, branches):
             axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
             axes.plot(*start, color=colour, marker="o", markersize=3.2)
             ahead = (end - start) / np.hypot(*(end - start))
@@ -152,7 +153,9 @@ def _side(way: float, back: str, ahead: str) -> str:
     return "center" if abs(way) < 0.5 else (ahead if way > 0.0 else back)
 
 
-def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, Array, str]]:
+def _words(
+    camera: _Camera, pieces: Sequence[Piece], branches: Sequence[str]
+) -> list[tuple[str, Array, Array, str]]:
     """The words with their leaders: text, start and end of the leader in the picture (2,), colour."""
     words = []
     first, rims = pieces[0], [(piece.rim_a(_RIM), piece.rim_b(_RIM)) for piece in pieces]
@@ -161,7 +164,9 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
     height = (rim_a[:, 1].mean() + rim_b[:, 1].mean()) / 2.0
     middle = corners.mean(axis=0)
     away = np.zeros(2)
-    for text, rim in (("END A", rim_a), ("END B", rims[-1][1])):
+    last = len(rims) - len(branches)
+    tips = zip(branches, (rim for _, rim in rims[last:]), strict=True)
+    for text, rim in (*tips, ("END A", rim_a), ("END B", rims[last - 1][1])):
         places = camera.project(rim)
         away = places.mean(axis=0) - middle
         away = np.array([math.copysign(0.85, away[0]), math.copysign(0.35, away[1])])
@@ -170,7 +175,7 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
     ends: list[Array] = []
     seam = first.seam_line
     lines = (
-        ("TOP", first.top_line, 0.6, _TOP, True),
+        ("TOP", first.top_line, 0.9 if branches else 0.6, _TOP, True),  # clear of a branch
         ("SEAM", seam, 0.35, _SEAM, seam[:, 1].mean() > height + 0.25 * np.ptp(rim_a[:, 1])),
     )
     for text, line, share, colour, up in lines:
@@ -185,7 +190,7 @@ def _words(camera: _Camera, pieces: Sequence[Piece]) -> list[tuple[str, Array, A
         words.append((text, start, end, colour))
     # Out of the picture of the piece where no other word is, and never to the left, as that would read left.
     # Of several parts only the first stands square to the view that right is read in.
-    start = camera.project(_right_of(rim_b if len(rims) == 1 else rim_a))
+    start = camera.project(_right_of(rim_b if last == 1 else rim_a))
     ways = (22, 40, 0, 60, 75, -20) if away[0] > 0.0 else (-90, -75, -60, -45, -30, -15, 0, 15, 30)
     tries = [_way_out(corners, start, math.radians(way), by) for by in (0.06, 0.12, 0.18) for way in ways]
     apart = [min(float(np.hypot(*(end - word[2]))) for word in words) for end in tries]

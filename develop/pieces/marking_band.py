@@ -302,7 +302,8 @@ class MarkingBand(Marked):
         )
         solid = header.solid(opposite, flat, (header.hole(pipe_face, place),))
         square = Frame.square()
-        return Built((Part(pattern, band, (square,)), Part(on_header, solid, (square,))))
+        # The hole's band is another sheet of paper: it stands nowhere in the piece.
+        return Built((Part(pattern, band, (square,)), Part(on_header, solid, ())))
 
 
 def _turned(frame: Frame) -> Frame:

@@ -96,7 +96,7 @@ def test_words_stand_outside_the_piece_and_apart(samples, sizes, seam_at):
     for aside in (1.0, -1.0):
         camera = module._Camera(middle, reach, aside=aside)
         shape = MultiPoint(camera.project(vertices)).convex_hull
-        words = module._words(camera, [solid])
+        words = module._words(camera, [solid], ())
         assert [word[0] for word in words] == ["END A", "END B", "TOP", "SEAM", "RIGHT"]
         for _, _, end, _ in words:
             assert shape.distance(Point(end)) > 0.02
@@ -110,7 +110,7 @@ def test_right_is_the_right_side_of_end_b_and_its_word_is_not_to_the_left_of_it(
     solid = samples.Frustum(shift=shift)
     for aside in (1.0, -1.0):
         camera = module._Camera(np.zeros(3), 900.0, aside=aside)
-        text, start, end, _ = module._words(camera, [solid])[-1]
+        text, start, end, _ = module._words(camera, [solid], ())[-1]
         assert text == "RIGHT"
         # The circle of END B: radius 200 about the shift, at the height of its centre, 450 from END A.
         assert start == pytest.approx(camera.project(np.array([200.0 + shift[0], shift[1], 450.0])), abs=1e-9)
@@ -231,6 +231,17 @@ def test_ends_are_those_of_the_first_and_the_last_part(samples):
     first = samples.Frustum(100.0, 100.0, 300.0, shift=(0.0, 0.0))
     last = Moved(first, (0.0, 0.0, 300.0))
     camera = module._Camera(np.array([0.0, 0.0, 300.0]), 700.0, aside=1.0)
-    words = {word: start for word, start, _, _ in module._words(camera, [first, last])}
+    words = {word: start for word, start, _, _ in module._words(camera, [first, last], ())}
     for word, rim in (("END A", first.rim_a(240)), ("END B", last.rim_b(240))):
+        assert np.abs(camera.project(rim) - words[word]).sum(axis=1).min() < 1e-12
+
+
+def test_a_header_keeps_its_ends_and_a_branch_has_its_mark_at_its_free_end(samples):
+    header = samples.Frustum(100.0, 100.0, 300.0, shift=(0.0, 0.0))
+    branch = Moved(header, (300.0, 0.0, 0.0))
+    camera = module._Camera(np.array([150.0, 0.0, 150.0]), 700.0, aside=1.0)
+    words = {word: start for word, start, _, _ in module._words(camera, [header, branch], ["N1-branch"])}
+    assert set(words) == {"END A", "END B", "N1-branch", "TOP", "SEAM", "RIGHT"}
+    rims = {"END A": header.rim_a(240), "END B": header.rim_b(240), "N1-branch": branch.rim_b(240)}
+    for word, rim in rims.items():
         assert np.abs(camera.project(rim) - words[word]).sum(axis=1).min() < 1e-12
