@@ -12,6 +12,7 @@ import numpy as np
 from develop.outputs.blocks import CAUTIONS, Block, Grid, notes, title, view
 from develop.outputs.ink import Ink
 from develop.pattern.pattern import Pattern
+from develop.pattern.points import edge_figures
 from develop.pattern.table import divisions_table, figures_table, marks_table
 from develop.units import format_length
 
@@ -63,7 +64,7 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
         flow.table(marks)
     flow.block(notes(_texts(pattern), wide, _TEXT))
     flow.table(Grid(divisions_table(pattern.divisions, units=pattern.units), most=wide))
-    for figures in pattern.figures:
+    for figures in (*pattern.figures, *edge_figures(pattern)):
         flow.table(Grid(figures_table(figures, units=pattern.units), most=wide))
     count = len(flow.pages)
     words = f"{pattern.mark}   ·   to mark out by tape, not to scale   ·   page"

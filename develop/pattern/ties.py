@@ -6,6 +6,7 @@ from itertools import pairwise
 
 import numpy as np
 
+from develop.pattern.chain import length_of, share_at
 from develop.pattern.curve import Array, Curve
 from develop.pattern.pattern import Outline
 
@@ -13,9 +14,6 @@ __all__ = ["TIES", "between_ties", "tie_width"]
 
 # Four, half-way between the four marks of the opening: common practice, no source.
 TIES = 4
-_ROUNDS = 60  # halvings of a share of one Bézier: to the last bit
-_NODES, _WEIGHTS = (each / 2.0 for each in np.polynomial.legendre.leggauss(16))
-_NODES = _NODES + 0.5
 
 
 def tie_width(thickness: float) -> float:
@@ -30,7 +28,7 @@ def between_ties(outline: Outline, width: float) -> list[Curve]:
     wide, at most a sixteenth of the whole.
     """
     pieces = np.concatenate([curve.pieces for _, curve in outline.curves])
-    ends = np.concatenate([[0.0], np.cumsum(_length(pieces, np.ones(len(pieces))))])
+    ends = np.concatenate([[0.0], np.cumsum(length_of(pieces, np.ones(len(pieces))))])
     whole = float(ends[-1])
     half = min(width, whole / 16.0) / 2.0
     middles = (np.arange(TIES) + 0.5) / TIES * whole
@@ -53,33 +51,11 @@ def _stretch(pieces: Array, ends: Array, start: float, end: float) -> Curve:
     chain: list[Array] = []
     for piece, low, high in zip(pieces, ends[:-1], ends[1:], strict=True):
         if high > start and low < end:
-            t = _share(piece, start - low) if low < start else 0.0
-            u = _share(piece, end - low) if high > end else 1.0
+            t = share_at(piece, start - low) if low < start else 0.0
+            u = share_at(piece, end - low) if high > end else 1.0
             part = _between(piece, t, u)
             chain.append(part[1:] if chain else part)
     return Curve(np.vstack(chain), float(end - start))
-
-
-def _length(pieces: Array, share: Array) -> Array:
-    """Length [mm] of Béziers (n, 4, 2) from their start to the share (n,) of the parameter, by Gauss."""
-    t = (share[:, None] * _NODES)[..., None]
-    step = np.diff(pieces, axis=1)[:, None]
-    speed = 3.0 * (
-        (1 - t) ** 2 * step[..., 0, :] + 2 * (1 - t) * t * step[..., 1, :] + t**2 * step[..., 2, :]
-    )
-    return np.asarray(share * (np.hypot(speed[..., 0], speed[..., 1]) @ _WEIGHTS))
-
-
-def _share(piece: Array, length: float) -> float:
-    """The share of the parameter at a length [mm] along one Bézier."""
-    low, high = 0.0, 1.0
-    for _ in range(_ROUNDS):
-        middle = (low + high) / 2.0
-        if _length(piece[None], np.array([middle]))[0] < length:
-            low = middle
-        else:
-            high = middle
-    return (low + high) / 2.0
 
 
 def _between(piece: Array, low: float, high: float) -> Array:
