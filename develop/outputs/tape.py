@@ -57,7 +57,9 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
     flow.block(title(pattern, wide))
     marks = Grid(marks_table(pattern.marks, units=pattern.units), most=wide - _VIEW - 2.0)
     count = len(marks.table.rows)
-    if count <= _MANY:
+    if count == 0:
+        flow.block(view(_VIEW))
+    elif count <= _MANY:
         flow.block(view(_VIEW), marks.part(0, count), apart=wide - marks.wide)
     else:
         flow.block(view(_VIEW))

@@ -65,7 +65,8 @@ class Flange(Flat):
     made_in: int = field(
         default=1,
         metadata=about(
-            Count(most=64), "in how many parts a ring is cut, of equal length along the pitch line"
+            Count(most=64),
+            "in how many parts a ring is cut, of equal length along the pitch line, but clear of the holes",
         ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))

@@ -79,12 +79,18 @@ def parts_of(
             frame = first.like(other)
             assert frame is not None
             frames.append(frame)
+        over = sum(float(np.linalg.det(frame.axes[:2, :2])) < 0.0 for frame in frames)
+        turned = f"; {over * quantity} of them turned over" if over else ""
         pattern = pattern_of_plate(
             plate,
             mark=name,
             kind=kind,
             quantity=count,
-            facts=(f"{title}{which}", *facts, f"quantity {count}, drawn facing END B"),
+            facts=(
+                f"{title}{which}",
+                *facts,
+                f"quantity {count}, drawn facing END B{turned}",
+            ),
             figures=_figures(line, here, plate.shift),
         )
         parts.append(Part(pattern, solid, tuple(frames)))

@@ -279,3 +279,11 @@ def test_a_wrong_edge_or_area_fails_its_check() -> None:
         "outer edge as drawn, against its length",
         "area less openings",
     } <= names
+
+
+def test_parts_that_are_mirror_images_say_how_many_are_turned_over() -> None:
+    # Quarters of an oval are two of one hand and two of the other; those of a ring are all one hand.
+    (oval,) = ring(section="ellipse 800 x 500", width=60, made_in=4, quantity=3).patterns
+    assert oval.facts[-1] == "quantity 12, drawn facing END B; 6 of them turned over"
+    (circle,) = ring(section="round 800", width=60, made_in=4).patterns
+    assert circle.facts[-1] == "quantity 4, drawn facing END B"
