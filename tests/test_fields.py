@@ -12,9 +12,9 @@ from hypothesis import strategies as st
 
 from develop.errors import InputError
 from develop.pieces import KINDS, kind_of
+from develop.pieces.cut_types import CUT, Cut
 from develop.pieces.field_types import (
     ANGLE,
-    CUT,
     DIRECTION,
     LENGTH,
     MARK,
@@ -24,7 +24,6 @@ from develop.pieces.field_types import (
     THICKNESS,
     Choice,
     Count,
-    Cut,
     FieldType,
     Length,
     Number,

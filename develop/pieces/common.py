@@ -22,11 +22,17 @@ if TYPE_CHECKING:
     from develop.sections.text import SectionSpec
     from develop.surfaces.sheet import Sheet
 
-__all__ = ["Flat", "Marked", "Named", "Plate"]
+__all__ = ["SIZES", "Flat", "Marked", "Named", "Plate"]
 
 # From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
 # practice, no source.
 _PLATE = 3.0
+
+SIZES = about(
+    Choice(("inside", "outside", "mean")),
+    "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
+    own=False,
+)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -60,14 +66,7 @@ class Flat(Named):
 class Marked(Named):
     """What every rolled piece has. seam_at: direction [rad], or `shortest`."""
 
-    sizes: str = field(
-        default="mean",
-        metadata=about(
-            Choice(("inside", "outside", "mean")),
-            "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
-            own=False,
-        ),
-    )
+    sizes: str = field(default="mean", metadata=SIZES)
     seam_at: float | str = field(
         default="shortest", metadata=about(SEAM, "where the seam is, facing end B", own=False)
     )

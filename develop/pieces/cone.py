@@ -8,9 +8,9 @@ from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
 from develop.pieces.common import Plate
+from develop.pieces.cut_types import LEVEL_CUT, LevelCut
 from develop.pieces.field_types import LENGTH, MARK, OFFSET, SECTION
 from develop.pieces.fields import about
-from develop.pieces.level_cut import LEVEL_CUT, LevelCut
 from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text

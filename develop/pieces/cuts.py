@@ -13,7 +13,7 @@ from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
-    from develop.pieces.field_types import Cut
+    from develop.pieces.cut_types import Cut
     from develop.quadrature import Array
     from develop.sections.section import Section
 

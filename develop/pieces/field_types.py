@@ -17,8 +17,8 @@ from develop.units import number_text, parse_angle, parse_direction, parse_lengt
 from develop.wording import listed, near_miss, shown
 
 __all__ = [
-    "ANGLE", "BEND_SEAM", "CUT", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
-    "THICKNESS", "Angle", "BendSeam", "Choice", "Count", "Cut", "CutText", "Direction", "FieldType",
+    "ANGLE", "BEND_SEAM", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
+    "THICKNESS", "Angle", "BendSeam", "Choice", "Count", "Direction", "FieldType",
     "Length", "Number", "Offset", "Pitch", "SectionText", "Text",
 ]  # fmt: skip
 
@@ -355,90 +355,6 @@ class SectionText:
         return parse_section(f"measured {readings} {value.taped.fit}")
 
 
-@dataclass(frozen=True)
-class Cut:
-    """An end cut by a plane.
-
-    slope: angle between the plane and a square cut [rad], from 0, below a right angle.
-    long: direction in which that end is longest [rad], facing end B.
-    """
-
-    slope: float
-    long: float
-
-
-@dataclass(frozen=True, eq=False, repr=False)
-class CutText:
-    """A cut as `slope 30 long 90`, as a table of slope and long, or `square` (None)."""
-
-    metavar: str = "CUT"
-    unit: str = "degrees"
-
-    @property
-    def allowed(self) -> str:
-        return (
-            "square, or slope 30 long 90 (in a job file also { slope = 30, long = 90 }), slope from 0 to 89.9"
-        )
-
-    def read(self, given: object, *, unit: str) -> Cut | None:
-        if isinstance(given, dict):
-            parts: dict[str, object] = given
-        elif isinstance(given, str):
-            if given.strip().lower() == "square":
-                return None
-            pairs = [part.split() for part in given.replace("=", " ").split(",")]
-            words = [word for pair in pairs for word in pair]
-            names, values = [word.lower() for word in words[::2]], words[1::2]
-            # A comma stands between two pairs and nowhere else.
-            if (
-                not all(pair and len(pair) % 2 == 0 for pair in pairs)
-                or sorted(names) != ["long", "slope"]
-                or len(values) != 2
-            ):
-                raise _refused(f"{shown(given)} is not a cut", self.allowed)
-            parts = dict(zip(names, values, strict=True))
-        else:
-            raise _refused(f"{shown(given)} is not a cut", self.allowed)
-        problems = []
-        for name in parts:
-            if name not in _CUT_PARTS:
-                hint = near_miss(name, _CUT_PARTS)
-                problems.append(Problem(name, f"no such field{hint}", listed(_CUT_PARTS)))
-        read: dict[str, float] = {}
-        for name, part in _CUT_PARTS.items():
-            if name not in parts:
-                problems.append(Problem(name, "not given", part.allowed))
-                continue
-            try:
-                value = part.read(parts[name], unit=unit)
-                assert isinstance(value, float)
-                read[name] = value
-            except InputError as error:
-                problems += [Problem(name, each.given, each.allowed) for each in error.problems]
-        if problems:
-            raise InputError(problems)
-        return Cut(slope=read["slope"], long=read["long"])
-
-    def record(self, value: object) -> object:
-        if value is None:
-            return "square"
-        assert isinstance(value, Cut)
-        return {"slope": _degrees(value.slope), "long": _degrees(value.long)}
-
-    def text(self, value: object) -> str:
-        if value is None:
-            return "square"
-        assert isinstance(value, Cut)
-        return f"slope {number_text(_degrees(value.slope))} long {number_text(_degrees(value.long))}"
-
-    def mirrored(self, value: object) -> object:
-        """The cut with right and left exchanged."""
-        if value is None:
-            return None
-        assert isinstance(value, Cut)
-        return Cut(slope=value.slope, long=_mirrored_direction(value.long))
-
-
 @dataclass(frozen=True, eq=False, repr=False)
 class Offset:
     """A shift to the right and up [mm], facing end B: `0,50` or [0, 50]."""
@@ -523,7 +439,4 @@ BEND_SEAM = BendSeam()
 MARK = Text(name=True, longest=60)
 TEXT = Text()
 SECTION = SectionText()
-CUT = CutText()
 OFFSET = Offset()
-
-_CUT_PARTS: dict[str, FieldType] = {"slope": Angle(least=0.0, most=89.9), "long": DIRECTION}

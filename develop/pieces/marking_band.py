@@ -7,8 +7,9 @@ from math import degrees, floor, pi
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Marked
-from develop.pieces.field_types import CUT, MARK, SECTION, Choice, Cut, Length
+from develop.pieces.common import SIZES, Marked
+from develop.pieces.cut_types import CUT, Cut
+from develop.pieces.field_types import MARK, SECTION, Choice, Length
 from develop.pieces.fields import about
 from develop.pieces.onto import ONTO, Onto
 from develop.pieces.wording import cut_words, measured_words, section_words, size_words
@@ -60,14 +61,7 @@ class MarkingBand(Marked):
         default=50.0, metadata=about(Length(least=1.0, most=10_000.0), "least width of the band")
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
-    sizes: str = field(
-        default="outside",
-        metadata=about(
-            Choice(("inside", "outside", "mean")),
-            "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
-            own=False,
-        ),
-    )
+    sizes: str = field(default="outside", metadata=SIZES)
 
     def surface(self) -> Cylinder:
         """The pipe's face from the band's square edge to the cut, the paper half its thickness off it.

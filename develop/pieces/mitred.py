@@ -15,8 +15,8 @@ import numpy as np
 
 from develop.pieces.assemble import pattern_of
 from develop.pieces.built import Built, Joint, Part
+from develop.pieces.cut_types import Cut
 from develop.pieces.cuts import cylinder_solid, trim
-from develop.pieces.field_types import Cut
 from develop.solid import Frame
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.trim import Plane

@@ -6,7 +6,8 @@ from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.pieces.common import Plate
-from develop.pieces.field_types import CUT, LENGTH, MARK, SECTION, Cut
+from develop.pieces.cut_types import CUT, Cut
+from develop.pieces.field_types import LENGTH, MARK, SECTION
 from develop.pieces.fields import about
 from develop.pieces.wording import cut_words, section_words, size_words
 from develop.sections.text import SectionSpec

@@ -8,7 +8,8 @@ from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
 from develop.pieces.common import Plate
-from develop.pieces.field_types import ANGLE, CUT, LENGTH, MARK, OFFSET, SECTION, Choice, Count, Cut, Length
+from develop.pieces.cut_types import CUT, Cut
+from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice, Count, Length
 from develop.pieces.fields import about
 from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec

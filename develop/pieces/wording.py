@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING
 from develop.units import format_length, number_text
 
 if TYPE_CHECKING:
-    from develop.pieces.field_types import Cut
+    from develop.pieces.cut_types import Cut
     from develop.sections.text import SectionSpec
 
 __all__ = [

@@ -33,11 +33,11 @@ from develop.quadrature import (
 from develop.sections.section import Section
 from develop.solid.frame import Rim
 from develop.surfaces.sheet import Lines, Place
+from develop.surfaces.touching import Contact, Rulings, rulings_between
 from develop.surfaces.trim import Plane
 
 __all__ = ["Band", "BandSheet"]
 
-_NEWTON_STEPS = 40
 _ROUNDS = 24
 _SAME = 1e-9
 # Parameters that differ by less than this part of a turn differ by rounding.
@@ -50,36 +50,6 @@ _STANDS = 1e-12
 # Nearest that a rim may come to the other's plane, in parts of the larger size: closer, a ruling
 # has no length left to be marked out.
 _CLEAR = 1e-6
-
-
-@dataclass(frozen=True)
-class _Contact:
-    """One rim's side of a set of rulings; arrays (n,) or (n, 3)."""
-
-    point: Array
-    tangent: Array
-    across: Array  # W
-    cos_psi: Array
-    sin_psi: Array
-    normal_x: Array  # of the rim in its own plane
-    normal_y: Array
-
-
-@dataclass(frozen=True)
-class _Rulings:
-    """Rulings with everything that the flat map needs; derivatives by the walking parameter."""
-
-    a: _Contact
-    b: _Contact
-    ruling: Array  # R, (n, 3)
-    along: Array  # R·T of A
-    over: Array  # R·W of A
-    over_b: Array  # R·W of B
-    length: Array
-    dphi_a: Array
-    dphi_b: Array
-    ds_a: Array
-    ds_b: Array
 
 
 @dataclass(frozen=True)
@@ -126,32 +96,7 @@ class Band:
                 f"{_CLEAR * size - by:.4g} mm farther apart there",
             )
 
-    # ---- the planes that touch both rims ------------------------------------------------
-
-    def _lean(self, walking: Rim, other: Rim, e: Array, h: Array) -> Array:
-        """tan ψ (n,) on the walking rim of the planes that touch both, for its normals e (n, 3).
-
-        The other rim's support in the direction e + τ n, less the walking rim's, is convex in τ
-        and falls or rises throughout, as the other rim lies on one side: Newton needs no guard.
-        """
-        n = walking.frame.normal
-        apart = other.frame.origin - walking.frame.origin
-        x, y, _ = other.local(e)
-        nx, ny, _ = other.local(n)
-        base, rate = e @ apart - h, float(n @ apart)
-        tau = np.zeros(len(e))
-        last = np.inf
-        for _ in range(_NEWTON_STEPS):
-            mx, my = x + tau * nx, y + tau * ny
-            fx, fy = other.section.touch(mx, my)
-            slope = rate + fx * nx + fy * ny
-            step = (base + tau * rate + fx * mx + fy * my) / slope
-            tau = tau - step
-            worst = float(np.max(np.abs(step) / (1.0 + np.abs(tau)), initial=0.0))
-            if worst <= 1e-15 or (worst < 1e-9 and worst >= 0.5 * last):
-                break
-            last = worst
-        return tau
+    # ---- the rulings ----------------------------------------------------------------------
 
     def _rulings(
         self,
@@ -159,56 +104,8 @@ class Band:
         u: Array,
         reach: tuple[Array, Array] | None = None,
         fixed: Array | None = None,
-    ) -> _Rulings:
-        """The rulings through the points u (n,) of the walking rim's section.
-
-        reach: the stretch of the other rim in which its foot lies, where known; it decides on a
-        straight side. fixed: the other rim's parameter itself, on facets.
-        """
-        walking, other = (self.rim_a, self.rim_b) if walking_a else (self.rim_b, self.rim_a)
-        axes = walking.frame.axes
-        at = walking.section.walk(u)
-        e = at.ex[:, None] * axes[0] + at.ey[:, None] * axes[1]
-        h = at.x * at.ex + at.y * at.ey
-        tau = self._lean(walking, other, e, h)
-        cos_psi = 1.0 / np.sqrt(1.0 + tau * tau)
-        sin_psi = tau * cos_psi
-        normal = cos_psi[:, None] * e + sin_psi[:, None] * axes[2]
-
-        def contact(rim: Rim, point: Array, cos_p: Array, sin_p: Array, x: Array, y: Array) -> _Contact:
-            ex, ey, n = rim.frame.axes
-            tangent = x[:, None] * ey - y[:, None] * ex
-            across = cos_p[:, None] * n - (sin_p * x)[:, None] * ex - (sin_p * y)[:, None] * ey
-            return _Contact(point, tangent, across, cos_p, sin_p, x, y)
-
-        here = contact(walking, walking.place(at.x, at.y), cos_psi, sin_psi, at.ex, at.ey)
-        ox, oy, oz = other.local(normal)
-        size = np.sqrt(ox * ox + oy * oy)
-        ox, oy = ox / size, oy / size
-        if fixed is not None:
-            on = other.section.walk(fixed)
-            foot = on.x, on.y
-        elif reach is not None:
-            foot = other.section.foot(ox, oy, *reach)
-        else:
-            foot = other.section.touch(ox, oy)
-        there = contact(other, other.place(*foot), size, oz, ox, oy)
-
-        a, b = (here, there) if walking_a else (there, here)
-        ruling = b.point - a.point
-        over = np.einsum("ni,ni->n", ruling, a.across)
-        over_b = np.einsum("ni,ni->n", ruling, b.across)
-        along = np.einsum("ni,ni->n", ruling, a.tangent)
-        # Both rims see the same turn of the sheet: |R| cos ψ / (R·W) dφ.
-        ratio = (a.cos_psi * over_b) / (b.cos_psi * over)
-        if walking_a:
-            dphi_a, dphi_b = at.dphi, at.dphi * ratio
-            ds_a, ds_b = at.ds, _speed(other.section.radius(ox, oy), dphi_b)
-        else:
-            dphi_b, dphi_a = at.dphi, at.dphi / ratio
-            ds_b, ds_a = at.ds, _speed(other.section.radius(ox, oy), dphi_a)
-        length = np.sqrt(np.einsum("ni,ni->n", ruling, ruling))
-        return _Rulings(a, b, ruling, along, over, over_b, length, dphi_a, dphi_b, ds_a, ds_b)
+    ) -> Rulings:
+        return rulings_between(self.rim_a, self.rim_b, walking_a, u, reach, fixed)
 
     def rulings(self, u: Array) -> tuple[Array, Array]:
         """Points on end A and the rulings to end B, (n, 3) each, at end A's parameters u (n,)."""
@@ -226,7 +123,7 @@ class Band:
         low, high = self._shares(r)
         return np.asarray((high - low) * r.length)
 
-    def _shares(self, r: _Rulings) -> tuple[Array, Array]:
+    def _shares(self, r: Rulings) -> tuple[Array, Array]:
         """Where the sheet's two ends lie on rulings, in parts of R, (n,) each."""
         low, high = np.zeros(len(r.length)), np.ones(len(r.length))
         return (
@@ -246,7 +143,7 @@ class Band:
             return radii
         return np.stack([_part_way(radii, share) for share in self._shares(r)], axis=-1)
 
-    def _radii(self, r: _Rulings) -> Array:
+    def _radii(self, r: Rulings) -> Array:
         rows = []
         for rim, contact, over in ((self.rim_a, r.a, r.over), (self.rim_b, r.b, r.over_b)):
             plane = rim.section.radius(contact.normal_x, contact.normal_y)
@@ -265,7 +162,7 @@ class Band:
 
     # ---- the flat map -------------------------------------------------------------------
 
-    def _on_course(self, course: _Course, origin: Indices, u: Array) -> Iterator[tuple[Mask, bool, _Rulings]]:
+    def _on_course(self, course: _Course, origin: Indices, u: Array) -> Iterator[tuple[Mask, bool, Rulings]]:
         """The rulings at u (n,) of the stretches `origin` (n,), in up to three groups."""
         on_a, facet = course.on_a[origin], course.facet[origin]
         for walking_a, which in ((True, on_a & ~facet), (False, ~on_a), (True, facet)):
@@ -377,9 +274,7 @@ class Band:
         )
 
 
-def _paired(
-    mine: Section, contact: _Contact, u: Array, yours: Section, other: _Contact
-) -> tuple[Array, Array]:
+def _paired(mine: Section, contact: Contact, u: Array, yours: Section, other: Contact) -> tuple[Array, Array]:
     """The other rim's parameters (n,) to those of one rim (n,), in proportion along parallel sides."""
     low, high = yours.parameters(other.normal_x, other.normal_y)
     first, last = mine.parameters(contact.normal_x, contact.normal_y)
@@ -410,12 +305,6 @@ def _part_way(radii: Array, share: Array) -> Array:
     flat = np.asarray(~np.isfinite(radii).all(axis=1))
     first, last = np.where(flat[:, None], 0.0, radii).T
     return np.where(flat, np.inf, first + share * (last - first))
-
-
-def _speed(radius: Array, dphi: Array) -> Array:
-    """ds = ρ dφ, and none where the normal stands, though the radius be infinite there."""
-    turns = dphi > 0.0
-    return np.where(turns, np.where(turns, radius, 0.0) * dphi, 0.0)
 
 
 def _past(u: Array, start: float, period: float) -> Array:
@@ -506,7 +395,7 @@ class BandSheet:
             *(np.concatenate([getattr(part, f.name) for part in parts])[index] for f in fields(Lines))
         )
 
-    def _lines(self, on_a: bool, u: Array, table: Array, r: _Rulings) -> Lines:
+    def _lines(self, on_a: bool, u: Array, table: Array, r: Rulings) -> Lines:
         band, d = self.band, self.band.distance
         a, b = r.a, r.b
         theta = table[:, 0]

@@ -9,7 +9,7 @@ import pytest
 from numpy.typing import NDArray
 
 from develop.checks.fold import closing_miss, folded
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.fields import Piece
 from develop.pieces.straight import Straight
 from develop.pieces.transition import Transition

@@ -14,7 +14,7 @@ from develop.checks import Check, check
 from develop.pattern.curve import Curve, segment
 from develop.pattern.pattern import Outline, Pattern, Rulings
 from develop.pieces.built import Built
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.marking_band import MarkingBand
 from develop.pieces.straight import Straight
 from develop.pieces.transition import Transition

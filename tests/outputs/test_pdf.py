@@ -19,6 +19,7 @@ from shapely import LineString, Point, Polygon
 from develop.outputs.fonts import width
 from develop.outputs.pdf import pdf, printed
 from develop.pattern.table import divisions_table
+from tests.outputs.beziers import sampled
 
 MM = 72.0 / 25.4
 LARGEST = 14400.0  # [points] the largest page that PDF 1.6 allows without UserUnit (its Annex C)
@@ -81,19 +82,6 @@ def contour(paths):
     """The contour of the pattern: the closed path of the greatest reach that itself comes back to its start."""
     closed = [s for s, is_closed in paths if is_closed and np.allclose(s[0][0], s[-1][-1], atol=1e-4)]
     return max(closed, key=lambda segments: np.ptp(np.vstack(segments), axis=0).max())
-
-
-def sampled(segments, count=17):
-    points = []
-    for s in segments:
-        t = np.linspace(0.0, 1.0, count)[:, None]
-        if len(s) == 2:
-            points.append(s[0] + t * (s[1] - s[0]))
-        else:
-            points.append(
-                (1 - t) ** 3 * s[0] + 3 * (1 - t) ** 2 * t * s[1] + 3 * (1 - t) * t**2 * s[2] + t**3 * s[3]
-            )
-    return np.vstack(points)
 
 
 def size(page):

@@ -13,6 +13,7 @@ import pytest
 from develop.outputs.svg import svg
 from develop.pattern.curve import segment
 from develop.pattern.pattern import Outline
+from tests.outputs.beziers import sampled
 
 SVG = "{http://www.w3.org/2000/svg}"
 
@@ -45,19 +46,6 @@ def path_of(words):
         at = points[-1] if len(points) else at
     assert not closed or n == len(tokens)
     return segments, closed, start
-
-
-def sampled(segments, count=9):
-    points = []
-    for s in segments:
-        t = np.linspace(0.0, 1.0, count)[:, None]
-        if len(s) == 2:
-            points.append(s[0] + t * (s[1] - s[0]))
-        else:
-            points.append(
-                (1 - t) ** 3 * s[0] + 3 * (1 - t) ** 2 * t * s[1] + 3 * (1 - t) * t**2 * s[2] + t**3 * s[3]
-            )
-    return np.vstack(points)
 
 
 def area(points):

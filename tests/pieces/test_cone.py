@@ -18,9 +18,9 @@ from hypothesis import strategies as st
 from develop.errors import InputError
 from develop.job.pipeline import checks_of, checks_of_all
 from develop.pieces import kind_of
+from develop.pieces.cut_types import LEVEL_CUT, LevelCut
 from develop.pieces.fields import read_piece, record_of
 from develop.pieces.hand import builds_of
-from develop.pieces.level_cut import LEVEL_CUT, LevelCut
 from tests.pieces.making import make
 
 OBLIQUE = {"section": "ellipse 600 x 400", "height": 700, "apex_offset": [150, -80]}

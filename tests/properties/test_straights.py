@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from develop.checks import check
 from develop.errors import InputError, Refusal
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.marking_band import MarkingBand
 from develop.pieces.straight import Straight
 from develop.sections.text import SectionSpec, parse_section

@@ -12,7 +12,7 @@ import numpy as np
 import pytest
 
 from develop.checks import check
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.straight import Straight
 from develop.sections.ellipse import Ellipse
 from develop.sections.point import Point

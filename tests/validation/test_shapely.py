@@ -13,7 +13,7 @@ import pytest
 from shapely import LineString, Point, Polygon
 
 from develop.outputs.record import record
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.fields import Piece, record_of
 from develop.pieces.marking_band import MarkingBand
 from develop.pieces.straight import Straight

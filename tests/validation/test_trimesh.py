@@ -12,7 +12,7 @@ import numpy as np
 import pytest
 import trimesh
 
-from develop.pieces.field_types import Cut
+from develop.pieces.cut_types import Cut
 from develop.pieces.fields import Piece
 from develop.pieces.marking_band import MarkingBand
 from develop.pieces.straight import Straight
