@@ -6,26 +6,20 @@ from itertools import combinations
 
 import numpy as np
 
-from develop.checks.check import Check, check
+from develop.checks.check import Check
 from develop.checks.crossings import crossings, meet, within
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.pattern.pattern import Outline, Pattern
 from develop.quadrature import Array
 from develop.solid.flat import FlatPlate, FlatRing, Holes, Stretch
-from develop.solid.solid import Solid
 
-__all__ = ["check_flat", "check_part"]
+__all__ = ["check_flat"]
 
 _RELATIVE = 1e-11
 _SMALLEST = 1e-9
 _DRAWN_LENGTH = 0.01
 # A hole's centre is found from its drawn outline, which keeps within 0.0002 mm.
 _PLACE = 1e-3
-
-
-def check_part(pattern: Pattern, part: Solid | FlatRing | FlatPlate) -> tuple[Check, ...]:
-    """Every check of a part, rolled or flat."""
-    return check(pattern, part) if isinstance(part, Solid) else check_flat(pattern, part)
 
 
 def check_flat(pattern: Pattern, part: FlatRing | FlatPlate) -> tuple[Check, ...]:

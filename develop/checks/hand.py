@@ -9,8 +9,9 @@ import numpy as np
 
 from develop.checks.check import Check
 from develop.quadrature import Array
+from develop.solid import Made
 from develop.solid.end import End
-from develop.solid.flat import FlatPlate, FlatRing
+from develop.solid.flat import FlatRing
 from develop.solid.frame import Frame
 from develop.solid.solid import Solid
 
@@ -20,8 +21,7 @@ _FLIP = np.array([-1.0, 1.0, 1.0])
 _POINTS = 96
 _MISS = 1e-4
 
-_Side = Solid | FlatRing | FlatPlate
-_Placed = tuple[_Side, tuple[Frame, ...]]
+_Placed = tuple[Made, tuple[Frame, ...]]
 
 
 def check_hand(name: str, parts: Sequence[_Placed], others: Sequence[_Placed]) -> Check:
@@ -37,7 +37,7 @@ def check_hand(name: str, parts: Sequence[_Placed], others: Sequence[_Placed]) -
     return Check(f"{name}: largest distance from the mirror image", 0.0, worst, _MISS, "mm")
 
 
-def _miss(part: _Side, here: Frame, other: _Side, there: Frame) -> float:
+def _miss(part: Made, here: Frame, other: Made, there: Frame) -> float:
     """Largest distance [mm] of the mirrored ends of a part, at `here`, from the other's at `there`."""
 
     def local(points: Array) -> Array:
@@ -71,7 +71,7 @@ class _Rim:
     points: Array
 
 
-def _rims(part: _Side) -> tuple[_Rim, ...]:
+def _rims(part: Made) -> tuple[_Rim, ...]:
     if isinstance(part, Solid):
         return _Rim(part.end_a, part.rim_a(_POINTS)), _Rim(part.end_b, part.rim_b(_POINTS))
     found = []

@@ -9,8 +9,8 @@ import numpy as np
 from develop.checks.fold import folded
 from develop.pattern.pattern import Pattern
 from develop.quadrature import Array
+from develop.solid import Made, Patch
 from develop.solid.end import End
-from develop.solid.flat import FlatPlate, FlatRing
 from develop.solid.frame import Frame
 from develop.solid.solid import Solid
 
@@ -25,7 +25,7 @@ class Side:
     stands in the piece."""
 
     pattern: Pattern
-    solid: Solid | FlatRing | FlatPlate
+    solid: Made
     frame: Frame
     end: str
 
@@ -46,6 +46,7 @@ class Side:
         """Where the edge should lie, in the part's own frame."""
         if isinstance(self.solid, Solid):
             return self.solid.end_a if self.end == "a" else self.solid.end_b
+        assert not isinstance(self.solid, Patch), "a plate that only lies on a side joins nothing"
         return self.solid.end(self.end)
 
     def edge(self) -> Array:
@@ -54,6 +55,7 @@ class Side:
             a, b, normal = folded(self.pattern, self.solid)
             points = (a if self.end == "a" else b) - self.solid.distance * normal
         else:
+            assert not isinstance(self.solid, Patch)
             outlines = (self.pattern.net, *self.pattern.openings)
             curves = (curve for outline in outlines for name, curve in outline.curves if name == self.end)
             flat = np.vstack([curve.polyline(_CHORDS) for curve in curves]) - self.solid.shift

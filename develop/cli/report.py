@@ -14,6 +14,8 @@ def report(outcome: Outcome, folder: str) -> int:
     wrote = f"{outcome.mark}: wrote {', '.join(outcome.files)} in {folder}"
     if max(outcome.sheets, default=1) > 1:
         wrote += f"; {sum(outcome.sheets)} large sheets in the PDF, to be laid together"
+    for warning in outcome.warnings:
+        click.echo(f"{outcome.mark}: warning: {warning}", err=True)
     failed = outcome.failed
     if not failed:
         count = len(outcome.checks)

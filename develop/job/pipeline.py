@@ -26,13 +26,15 @@ _DRAWN = {"svg", "pdf"}
 class Outcome:
     """What was written for one piece, and what the checks found.
 
-    sheets: how many large sheets each pattern takes in the PDF, if that was written.
+    sheets: how many large sheets each pattern takes in the PDF, if that was written. warnings: of what is
+    no fault of the pattern, but of the piece as it was asked for.
     """
 
     mark: str
     files: tuple[str, ...]
     checks: tuple[Check, ...]
     sheets: tuple[int, ...] = ()
+    warnings: tuple[str, ...] = ()
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -75,7 +77,8 @@ def make(
             files |= _files(each, piece, builds, checks)
     _take(files, piece.mark, {} if taken is None else taken)
     write_all(folder, files)
-    return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets)
+    warnings = tuple(dict.fromkeys(each for built in builds for each in built.warnings))
+    return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets, warnings=warnings)
 
 
 def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
@@ -148,6 +151,7 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
             fields=record_of(piece),
             patterns=patterns,
             checks=checks,
+            warnings=[each for built in builds for each in built.warnings],
         )
         return {f"{mark}.json": data}
     from develop.solid import Solid
@@ -168,7 +172,11 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
     if not headers:
         return {f"{mark}.png": picture(builds[0].placed, patterns[0].facts[:4])}
     # What stands on a header has ends of its own: A and B are the header's, the others have their mark.
-    others = [part for part in builds[0].parts if all(part is not header for header in headers)]
+    others = [
+        part
+        for part in builds[0].parts
+        if isinstance(part.solid, Solid) and all(part is not header for header in headers)
+    ]
     placed = [each for part in (*headers, *others) for each in replace(builds[0], parts=(part,)).placed]
     names = [part.pattern.mark for part in others for _ in part.frames]
     title = f"{mark}: {piece.kind}" if mark != piece.kind else mark

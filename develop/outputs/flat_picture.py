@@ -11,7 +11,7 @@ import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.pattern import Outline, Pattern
-from develop.solid import FlatPlate, FlatRing, Frame, Solid
+from develop.solid import Frame, Made, Patch, Solid
 
 if TYPE_CHECKING:
     from matplotlib.path import Path
@@ -32,7 +32,7 @@ class Part(Protocol):
     @property
     def pattern(self) -> Pattern: ...
     @property
-    def solid(self) -> Solid | FlatRing | FlatPlate: ...
+    def solid(self) -> Made: ...
     @property
     def frames(self) -> tuple[Frame, ...]: ...
 
@@ -67,7 +67,7 @@ def flat_picture(parts: Sequence[Part], title: str) -> bytes:
     rings = [
         [_placed(outline, part.solid.shift, frame) for outline in (part.pattern.net, *part.pattern.openings)]
         for part in parts
-        if not isinstance(part.solid, Solid)
+        if not isinstance(part.solid, Solid | Patch)
         for frame in part.frames
     ]
     sides = [part.solid for part in parts if isinstance(part.solid, Solid)]
@@ -148,7 +148,7 @@ def _marks(parts: Sequence[Part], reach: float) -> list[tuple[Array, Array, str]
     """The marked directions: from the edge by `reach` [mm] into the plate, with their words."""
     found = []
     for part in parts:
-        if isinstance(part.solid, Solid):
+        if isinstance(part.solid, Solid | Patch):
             continue
         frame = part.frames[0]
         for mark in part.pattern.marks:

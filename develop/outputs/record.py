@@ -43,11 +43,13 @@ def record(
     fields: Mapping[str, object],
     patterns: Sequence[Pattern],
     checks: Sequence[Verdict],
+    warnings: Sequence[str] = (),
 ) -> bytes:
     """The record of one piece as JSON: mm and degrees.
 
     Coordinates are rounded to 1e-6 mm, directions to 1e-9 degrees; lengths, areas and checks keep
     all their digits. An infinite roll radius is null. fields: the fields as understood, ready for JSON.
+    warnings: left out when there are none.
     """
     content = {
         "mark": mark,
@@ -66,6 +68,7 @@ def record(
             }
             for check in checks
         ],
+        **({"warnings": list(dict.fromkeys(warnings))} if warnings else {}),
     }
     return json.dumps(content, ensure_ascii=False, allow_nan=False, separators=(",", ":")).encode() + b"\n"
 

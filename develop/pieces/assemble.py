@@ -2,22 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, fields, replace
 from math import pi
 
 import numpy as np
 
+from develop.pattern.allowance import Allowance, allowed
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.sections.section import Section
-from develop.surfaces.edges import edges
+from develop.surfaces.edges import TOLERANCE, edges
 from develop.surfaces.sheet import Lines, Place, Sheet
 
-__all__ = ["Hole", "Wording", "pattern_of", "seam_parameter"]
+__all__ = ["Hole", "Wording", "dense", "pattern_of", "seam_parameter"]
 
 _FOLD_MISS = 2.4e-3
+# So close [mm] to the edges that the tangents of their parallels are good.
+_FINE = 1e-6
 _MOST_CHANGE = 6.0
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 _DIRECTIONS: Array = 0.5 * pi * np.arange(4.0)
@@ -86,7 +89,7 @@ def pattern_of(
     divisions: int,
     distance: float,
     turn_b: float = 0.0,
-    cut: Sheet | None = None,
+    allowances: Mapping[str, Allowance] | None = None,
     holes: Sequence[Hole] = (),
     press: Press | None = None,
 ) -> Pattern:
@@ -94,8 +97,8 @@ def pattern_of(
 
     section_b: None where end B is a cut of the side, so that its marks lie on the lines of end A's.
     divisions: equal arcs of end A. distance: of the sheet outside the given surface [mm].
-    turn_b: how far end B's section is turned in the piece frame [rad]. cut: the sheet that leaves
-    the shear, where it is more than the net one; it lies so that both have the same left seam.
+    turn_b: how far end B's section is turned in the piece frame [rad]. allowances: what is cut beyond the
+    net line, by edge as the outside of the sheet shows them.
     holes: openings in the sheet, in the sheet's own coordinates. press: bent on a press brake, not
     rolled: the lines and the divisions are then the press lines.
     """
@@ -114,7 +117,7 @@ def pattern_of(
     # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
     bends = press_lines(sheet, section_a, press) if press else None
     drawn = wanted if bends is None else [*wanted, bends.place]
-    wanted.append(_merged([_dense(ends, sheet.at_ends), *drawn]))
+    wanted.append(_merged([dense(sheet), *drawn]))
     if bends is not None:
         wanted.append(bends.place)
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
@@ -123,13 +126,14 @@ def pattern_of(
     )
     first, last = int(counts[3]), int(counts[3]) + 1
 
-    net_curves = _outline(sheet)
-    cut_curves = net_curves if cut is None else _outline(cut)
-    view = _View.of(cut_curves, found.take([last]), mirror=wording.face == "inside")
-    net = Outline(view.contour(net_curves), sheet.area)
-    cut_outline = net if cut is None else Outline(view.contour(cut_curves), cut.area)
+    bare = Outline(_outline(sheet), sheet.area)
+    given = allowances or {}
+    whole = allowed(bare, _outline(sheet, tolerance=_FINE) if given else (), given)
+    view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
+    net = Outline(view.contour(bare.curves), bare.area)
+    cut = net if whole is bare else Outline(view.contour(whole.curves), whole.area)
     rows_at = view.lines(found.take([*range(divisions), last]))
-    dense = view.lines(found.take(range(counts[4], counts[5])))
+    close = view.lines(found.take(range(counts[4], counts[5])))
     lines = _roll_lines(rows_at)
     if bends is not None:
         # The lines to mark out are then the seams and the press lines.
@@ -149,7 +153,7 @@ def pattern_of(
         quantity=wording.quantity,
         face=wording.face,
         net=net,
-        cut=cut_outline,
+        cut=cut,
         openings=tuple(view.hole(hole) for hole in holes),
         lines=lines,
         divisions=rows,
@@ -157,7 +161,7 @@ def pattern_of(
         facts=wording.facts if bends is None else (*wording.facts[:-1], bends.facts(), *wording.facts[-1:]),
         datum=wording.datum,
         full_lines=wording.full_lines or bends is not None,
-        rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), dense.u_a, distance),
+        rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
         flow=wording.flow,
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
         units=wording.units,
@@ -165,7 +169,7 @@ def pattern_of(
     )
 
 
-def _dense(ends: Place, at: Lines) -> Place:
+def dense(sheet: Sheet) -> Place:
     """Rulings so close that flat strips between them miss the rolled sheet by `_FOLD_MISS` at most.
 
     n strips of a panel with arc s and turn t come s t² / (24 n²) too long for the bent sheet; where
@@ -173,6 +177,7 @@ def _dense(ends: Place, at: Lines) -> Place:
     Where they fan out by an angle f in the flat, the strips' bends are out by t f² / (24 n²).
     The miss is shared out so that the fewest strips do (n as the cube root of a panel's part).
     """
+    ends, at = sheet.ends, sheet.at_ends
     turn = np.diff(at.turn)
     arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
     bend = np.log(np.clip(at.radius_a, 1e-9, 1e12))
@@ -259,9 +264,9 @@ def _witness(
     return [WitnessMark(points[i], inward[i], texts[i], edge, float(arcs[i])) for i in range(len(texts))]
 
 
-def _outline(sheet: Sheet) -> tuple[tuple[str, Curve], ...]:
-    """The sheet's contour, anticlockwise, as named curves."""
-    controls_a, controls_b = edges(sheet)
+def _outline(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[tuple[str, Curve], ...]:
+    """The sheet's contour, anticlockwise, as named curves within a tolerance [mm]."""
+    controls_a, controls_b = edges(sheet, tolerance=tolerance)
     a, b = Curve(controls_a, sheet.edge_a), Curve(controls_b, sheet.edge_b)
     # At an apex both seams end in one point.
     right = b.start if sheet.edge_b == 0.0 else b.end

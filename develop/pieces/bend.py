@@ -7,7 +7,7 @@ from math import atan, ceil, degrees, pi, tan
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Plate
+from develop.pieces.common import Jointed
 from develop.pieces.field_types import (
     BEND_SEAM,
     DIRECTION,
@@ -41,7 +41,7 @@ _LONGEST_HEEL = 100_000.0
 
 
 @dataclass(frozen=True, kw_only=True)
-class Bend(Plate):
+class Bend(Jointed):
     """A segmental bend; lengths in mm, angles in radians.
 
     With n gores the two at the ends are half ones, so there are n − 1 mitres, each of
@@ -224,17 +224,19 @@ class Bend(Plate):
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
+        from develop.pieces.clearance import seam_warnings
         from develop.pieces.mitred import built_of
 
         gores = self.surface()
         section = gores[0].surface.section
-        return built_of(
+        built = built_of(
             gores,
             self._seams(section),
             wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             name="gore",
         )
+        return seam_warnings(built, clear=self.clear)
 
     def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the gores of these numbers says."""

@@ -7,8 +7,18 @@ from math import ceil, degrees, floor, pi
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Plate
-from develop.pieces.field_types import ANGLE, DIRECTION, LENGTH, MARK, SECTION, Angle, Choice, Length
+from develop.pieces.common import Jointed
+from develop.pieces.field_types import (
+    ANGLE,
+    DIRECTION,
+    LENGTH,
+    MARK,
+    SECTION,
+    Angle,
+    Choice,
+    Direction,
+    Length,
+)
 from develop.pieces.fields import Piece, about
 from develop.pieces.header import HEADER
 from develop.pieces.wording import direction_words, section_words, size_words
@@ -17,7 +27,7 @@ from develop.units import number_text
 
 if TYPE_CHECKING:
     from develop.pieces.assemble import Hole
-    from develop.pieces.built import Built
+    from develop.pieces.built import Built, Part
     from develop.pieces.header import StraightHeader, TaperHeader
     from develop.sections.section import Section
     from develop.solid import Frame
@@ -34,7 +44,7 @@ _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
-class Branch(Plate):
+class Branch(Jointed):
     """A branch into a straight header; lengths in mm, angles in radians.
 
     The header runs along its own piece frame from its end A to its end B. The branch's end A is the
@@ -96,14 +106,47 @@ class Branch(Plate):
     joint: str = field(
         default="set-on",
         metadata=about(
-            Choice(("set-on", "set-in")), "the branch stands on the header, or reaches through its wall"
+            Choice(("set-on", "set-in", "tap")),
+            "the branch stands on the header, reaches through its wall, or lies on it with a lap flange",
         ),
+    )
+    lap: float = field(
+        default=20.0,
+        metadata=about(Length(least=1.0, most=1000.0), "width of the lap flange of a tap"),
     )
     opening: str = field(
         default="cut",
         metadata=about(
             Choice(("cut", "marked", "ties")),
             "the opening cut, only marked, or left on ties: a hole cut first distorts in rolling",
+        ),
+    )
+    header_seam: float | str = field(
+        default="opposite",
+        metadata=about(Direction(words=("opposite",)), "where the header's own seam is: opposite the branch"),
+    )
+    pad: float = field(
+        default=0.0,
+        metadata=about(
+            Length(least=0.0, most=10_000.0),
+            "width of a compensation plate on the header all round the branch; 0 for none",
+        ),
+    )
+    pad_thickness: float | None = field(
+        default=None,
+        metadata=about(Length(least=0.1, most=1000.0), "thickness of that plate; the header's when left out"),
+    )
+    pad_in: str = field(
+        default="one",
+        metadata=about(
+            Choice(("one", "halves")),
+            "the plate in one piece, or in halves that meet at the header's right and left",
+        ),
+    )
+    tell_tale: float = field(
+        default=6.0,
+        metadata=about(
+            Length(least=0.0, most=100.0), "diameter of the tell-tale hole in each part of it; 0 for none"
         ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
@@ -116,7 +159,7 @@ class Branch(Plate):
         from develop.pieces.wall import PLACES, given_section, neutral_distance
 
         # Set on, the branch stands on the outside; set in, it ends flush with the inside.
-        place = PLACES["outside" if self.joint == "set-on" else "inside"] - PLACES[self.sizes]
+        place = PLACES["inside" if self.joint == "set-in" else "outside"] - PLACES[self.sizes]
         outward = self.thickness * place
         if not isinstance(self.header, SectionSpec):
             if self.header_length is not None:
@@ -258,65 +301,138 @@ class Branch(Plate):
             else f"a header of more than {number_text(ceil(high - low + 1.0))} mm",
         )
 
-    # ---- the two patterns -------------------------------------------------------------------
+    # ---- the patterns -----------------------------------------------------------------------
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
+        from develop.pieces.built import Built
+        from develop.pieces.clearance import seam_warnings
+
+        surface, header, frame = self._parts()
+        seam = self._branch_seam(surface)
+        header_seam = self._header_seam(surface.section, header, frame)
+        parts = (
+            self._branch_part(surface, header, frame, seam, units),
+            self._header_part(surface.section, header, frame, (seam, header_seam), units),
+            *(self._pads(surface.section, header, frame, (seam, header_seam), units) if self.pad else ()),
+        )
+        built = Built(parts)
+        return seam_warnings(built, clear=self.clear)
+
+    def _branch_seam(self, surface: Cylinder) -> float:
+        from develop.pieces.assemble import seam_parameter
+
+        return seam_parameter(surface.section, surface.lengths, self.seam_at)
+
+    def _header_seam(self, branch: Section, header: StraightHeader | TaperHeader, frame: Frame) -> float:
+        """Parameter of the header's section at its seam. Raises Refusal where it runs through the opening."""
+        import numpy as np
+
+        from develop.pieces.clearance import check_uncut
+
+        direction = self.leaves_at + pi if isinstance(self.header_seam, str) else self.header_seam
+        seam = float(header.section.at_direction(np.array([direction]))[0])
+        u = branch.at_direction(np.radians(np.arange(360.0)))
+        on, _ = header.trim(frame).place(np.hstack([branch.point(u), np.zeros((len(u), 1))]))
+        check_uncut(header.section, seam, on, leaves_at=self.leaves_at, field="header_seam")
+        return seam
+
+    @property
+    def _specs(self) -> tuple[SectionSpec, ...]:
+        return tuple(each for each in (self.branch, self.header) if isinstance(each, SectionSpec))
+
+    def _leaning(self) -> str:
+        return f"{number_text(round(degrees(self.angle), 6))}° to the header's axis"
+
+    def _where(self, units: str) -> str:
+        """How the branch stands on the header, in words."""
+        off = f", {size_words(self.off_centre, units)} off centre" if self.off_centre else ""
+        return f"{self._leaning()}, leaves at {direction_words(self.leaves_at)}{off}, {self.joint}"
+
+    def _branch_part(
+        self,
+        surface: Cylinder,
+        header: StraightHeader | TaperHeader,
+        frame: Frame,
+        seam: float,
+        units: str,
+    ) -> Part:
+        """The branch; seam: parameter of its section."""
         from dataclasses import replace
 
         import numpy as np
 
-        from develop.pattern.ties import TIES, tie_width
-        from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import Built, Part
-        from develop.pieces.wall import PLACES
-        from develop.solid import End, Frame, Solid
-        from develop.surfaces.cylinder import Cylinder
-        from develop.surfaces.trim import Plane
+        from develop.pieces.assemble import pattern_of
+        from develop.pieces.built import Part
+        from develop.pieces.tap import lap_flange
+        from develop.solid import End, Solid
 
-        surface, header, frame = self._parts()
-        branch_section = surface.section
-        seam = seam_parameter(branch_section, surface.lengths, self.seam_at)
+        section = surface.section
         sheet = surface.sheet(seam)
-        leaning = f"{number_text(round(degrees(self.angle), 6))}° to the header's axis"
-        off = f", {size_words(self.off_centre, units)} off centre" if self.off_centre else ""
-        where = f"{leaning}, leaves at {direction_words(self.leaves_at)}{off}, {self.joint}"
-        sections = tuple(each for each in (self.branch, self.header) if isinstance(each, SectionSpec))
+        flange, words = None, "END A: the joint"
+        if self.joint == "tap":
+            flange = lap_flange(surface, seam, lap=self.lap, thickness=self.thickness)
+            words = (
+                f"END A: the joint, a lap flange {size_words(self.lap, units)} wide beyond the net line, cut "
+                f"in to make {len(flange.tabs) + 1} tabs, turned out"
+            )
         wording = self.wording(
             sheet,
-            sections,
+            self._specs,
             sizes=f"branch {section_words(self.branch, units)}, "
             f"centre to end {size_words(self.centre_to_end, units)}",
-            place=f"into header {self._header_words(units)}, {where}",
+            place=f"into header {self._header_words(units)}, {self._where(units)}",
             held="lengths and joint",
             units=units,
-            more=("END A: the joint; END B: the free end",),
+            more=(words, "END B: the free end") if flange else (f"{words}; END B: the free end",),
         )
-        branch = pattern_of(
+        pattern = pattern_of(
             sheet,
-            branch_section,
-            branch_section,
+            section,
+            section,
             wording=replace(
                 wording, mark=f"{self.mark}-branch", facts=(f"{self.mark}-branch", *wording.facts[1:])
             ),
             divisions=self.divisions,
             distance=surface.distance,
+            allowances={"a": flange} if flange else None,
         )
-        branch_solid = Solid(
-            header.joint(branch_section, frame),
-            End.cut(branch_section, height=self.centre_to_end, rise=np.zeros(2)),
+        solid = Solid(
+            header.joint(section, frame),
+            End.cut(section, height=self.centre_to_end, rise=np.zeros(2)),
             side="parallel",
             seam=seam,
             seam_b=seam,
             distance=surface.distance,
         )
+        return Part(pattern, solid, (frame,))
+
+    def _header_part(
+        self,
+        branch: Section,
+        header: StraightHeader | TaperHeader,
+        frame: Frame,
+        seams: tuple[float, float],
+        units: str,
+    ) -> Part:
+        """The header with its opening. branch: its section as given; seams: of the branch and the header."""
+        from dataclasses import replace
+
+        import numpy as np
+
+        from develop.pattern.ties import TIES, tie_width
+        from develop.pieces.assemble import pattern_of
+        from develop.pieces.built import Part
+        from develop.pieces.wall import PLACES
+        from develop.solid import Frame
+        from develop.surfaces.cylinder import Cylinder
+        from develop.surfaces.trim import Plane
 
         # The opening is the branch's bore where it stands on the header, its outside where it reaches in.
-        bore = PLACES["inside" if self.joint == "set-on" else "outside"] - PLACES[self.sizes]
-        hole_section = branch_section.offset(self.thickness * bore)
+        bore = PLACES["outside" if self.joint == "set-in" else "inside"] - PLACES[self.sizes]
+        section = branch.offset(self.thickness * bore)
         through = header.through(frame)
-        header_seam = float(header.section.at_direction(np.array([self.leaves_at + pi]))[0])
-        header_sheet = header.sheet(header_seam)
+        sheet = header.sheet(seams[1])
         tie = tie_width(self.thickness)
         opening = {
             "cut": "cut",
@@ -324,22 +440,17 @@ class Branch(Plate):
             "ties": f"left on {TIES} ties {size_words(tie, units)} wide",
         }[self.opening]
         over = self.wording(
-            header_sheet,
-            sections,
+            sheet,
+            self._specs,
             sizes=f"header {self._header_words(units)}",
-            place=f"opening for branch {section_words(self.branch, units)}, {opening}, {where}",
+            place=f"opening for branch {section_words(self.branch, units)}, {opening}, {self._where(units)}",
             held="length and opening",
             units=units,
         )
-        hole_sheet = Cylinder(
-            hole_section,
-            through,
-            Plane(self.centre_to_end, np.zeros(2)),
-            0.0,
-            through.breaks(hole_section),
-        ).sheet(seam)
-        header_pattern = pattern_of(
-            header_sheet,
+        end = Plane(self.centre_to_end, np.zeros(2))
+        cutter = Cylinder(section, through, end, 0.0, through.breaks(section)).sheet(seams[0])
+        pattern = pattern_of(
+            sheet,
             header.section,
             header.section_b,
             wording=replace(
@@ -350,15 +461,48 @@ class Branch(Plate):
             divisions=self.divisions,
             distance=header.distance,
             turn_b=header.turn_b,
-            holes=(self._hole(hole_sheet, header_sheet, through),),
+            holes=(self._hole(cutter, sheet, through),),
         )
-        header_pattern = replace(header_pattern, openings_as=self.opening, tie=tie)
-        header_solid = header.solid(header_seam, header_sheet, (header.hole(hole_section, frame),))
-        return Built(
-            (
-                Part(branch, branch_solid, (frame,)),
-                Part(header_pattern, header_solid, (Frame.square(),)),
-            )
+        solid = header.solid(seams[1], sheet, (header.hole(section, frame),))
+        pattern = replace(pattern, openings_as=self.opening, tie=tie)
+        return Part(pattern, solid, (Frame.square(),))
+
+    def _pads(
+        self,
+        branch: Section,
+        header: StraightHeader | TaperHeader,
+        frame: Frame,
+        seams: tuple[float, float],
+        units: str,
+    ) -> tuple[Part, ...]:
+        """The compensation plate, round the outside of the branch on the outside of the header."""
+        from develop.pieces.pad import Pad, pad_parts
+        from develop.pieces.wall import PLACES
+        from develop.pieces.wording import plate_words
+
+        thickness = self.thickness if self.pad_thickness is None else self.pad_thickness
+        outward = self.thickness * (PLACES["outside"] - PLACES[self.sizes])
+        lift = self.neutral_line * thickness
+        hole = f"tell-tale hole {size_words(self.tell_tale, units)} in each part" if self.tell_tale else ""
+        return pad_parts(
+            Pad(self.pad, self.pad_in == "halves", self.tell_tale),
+            branch=branch.offset(outward),
+            header=header.covered(outward=outward, distance=lift),
+            frame=frame,
+            lift=lift,
+            seams=seams,
+            rotate=self.rotate,
+            mark=f"{self.mark}-pad",
+            quantity=self.quantity,
+            units=units,
+            facts=(
+                f"{size_words(self.pad, units)} wide all round branch {section_words(self.branch, units)}",
+                f"rolled to lie on the header, {self._leaning()}",
+                *(() if self.rotate else ("TOP towards the header's END A",)),
+                *((hole,) if hole else ()),
+                plate_words(self.material, thickness),
+                "its size as given: what is needed is for the pressure code to say",
+            ),
         )
 
     def _header_words(self, units: str) -> str:

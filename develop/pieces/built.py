@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
-    from develop.solid import FlatPlate, FlatRing, Frame, Placed, Solid
+    from develop.solid import Frame, Made, Placed
 
 __all__ = ["Built", "Joint", "Part", "one"]
 
@@ -23,7 +23,7 @@ class Part:
     """
 
     pattern: Pattern
-    solid: Solid | FlatRing | FlatPlate
+    solid: Made
     frames: tuple[Frame, ...]
 
 
@@ -48,10 +48,11 @@ class Joint:
 
 @dataclass(frozen=True)
 class Built:
-    """The parts of one piece, and the joints between them."""
+    """The parts of one piece, the joints between them, and what whoever makes it is to be warned of."""
 
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
+    warnings: tuple[str, ...] = ()
 
     @property
     def patterns(self) -> tuple[Pattern, ...]:
@@ -59,7 +60,7 @@ class Built:
         return tuple(part.pattern for part in self.parts)
 
     @property
-    def solid(self) -> Solid | FlatRing | FlatPlate:
+    def solid(self) -> Made:
         """The finished side of the first part."""
         return self.parts[0].solid
 
@@ -81,7 +82,7 @@ class Built:
         return replace(self, parts=tuple(replace(part, pattern=pattern) for part, pattern in parts))
 
 
-def one(pattern: Pattern, solid: Solid | FlatRing | FlatPlate) -> Built:
+def one(pattern: Pattern, solid: Made) -> Built:
     """A piece of one part that stands in the piece's own frame."""
     from develop.solid import Frame
 

@@ -12,6 +12,7 @@ from develop.pieces.field_types import (
     THICKNESS,
     Choice,
     Count,
+    Length,
     Number,
 )
 from develop.pieces.fields import Piece, about
@@ -22,7 +23,7 @@ if TYPE_CHECKING:
     from develop.sections.text import SectionSpec
     from develop.surfaces.sheet import Sheet
 
-__all__ = ["SIZES", "Flat", "Marked", "Named", "Plate"]
+__all__ = ["SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
 
 # From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
 # practice, no source.
@@ -143,3 +144,25 @@ class Plate(Marked):
             full_lines=full,
             units=units,
         )
+
+
+@dataclass(frozen=True, kw_only=True)
+class Jointed(Plate):
+    """What every piece has whose rolled parts meet."""
+
+    seam_clear: float | None = field(
+        default=None,
+        metadata=about(
+            Length(least=0.0, most=10_000.0),
+            "how far seams keep from openings and from each other at a joint, or a warning names both; when "
+            "left out, 5 times the thickness of plate and 0 in thin sheet",
+            own=False,
+        ),
+    )
+
+    @property
+    def clear(self) -> float:
+        """How far seams keep clear [mm]; 5 times the thickness is common practice, no source."""
+        if self.seam_clear is not None:
+            return self.seam_clear
+        return 5.0 * self.thickness if self.thickness >= _PLATE else 0.0

@@ -114,11 +114,11 @@ class StraightHeader:
 
         return CylinderTrim(self.section, frame)
 
-    def joint(self, branch: Section, frame: Frame) -> MeetingEnd:
-        """The branch's end on the face, in space."""
+    def joint(self, branch: Section, frame: Frame, *, sheet: float = 0.0) -> MeetingEnd:
+        """The branch's end on the face, in space. sheet: how far outside of it a sheet is developed [mm]."""
         from develop.solid import MeetingEnd
 
-        return MeetingEnd.of(branch, self.face, frame)
+        return MeetingEnd.of(branch, self.face, frame, sheet=sheet)
 
     def hole(self, branch: Section, frame: Frame) -> MeetingEnd:
         """The hole in the header, in space."""
@@ -152,6 +152,12 @@ class StraightHeader:
     def sheet(self, seam: float) -> Sheet:
         """The header laid flat."""
         return self.surface().sheet(seam)
+
+    def covered(self, *, outward: float, distance: float) -> StraightHeader:
+        """The side of a plate that lies on the face `outward` [mm] of the given surface; its own sheet is
+        developed `distance` [mm] outside of that."""
+        face = self.section.offset(outward)
+        return StraightHeader(face, face, self.length, distance)
 
     def solid(self, seam: float, sheet: Sheet, openings: tuple[MeetingEnd, ...]) -> Solid:
         """The finished header."""
@@ -217,12 +223,14 @@ class TaperHeader:
 
         return BandTrim(self.band, frame)
 
-    def joint(self, branch: Section, frame: Frame) -> MeetingEnd:
-        """The branch's end on the face, in space."""
+    def joint(self, branch: Section, frame: Frame, *, sheet: float = 0.0) -> MeetingEnd:
+        """The branch's end on the face, in space. sheet: how far outside of it a sheet is developed [mm]."""
         from develop.solid import TaperMeetingEnd
 
-        band = self.band
-        return TaperMeetingEnd.between(branch, band.rim_a, band.rim_b, frame, outward=self.outward)
+        band, out = self.band, self.outward
+        return TaperMeetingEnd.between(
+            branch, band.rim_a, band.rim_b, frame, outward=out, sheet=out + sheet if sheet else 0.0
+        )
 
     def hole(self, branch: Section, frame: Frame) -> MeetingEnd:
         """The hole in the header, in space."""
@@ -234,6 +242,13 @@ class TaperHeader:
     def overhang(self, branch: Section, frame: Frame) -> float:
         """How far [mm] the branch reaches beside the face; not above zero where it fits."""
         return self.trim(frame).overhang(branch)
+
+    def covered(self, *, outward: float, distance: float) -> TaperHeader:
+        """The side of a plate that lies on the face `outward` [mm] of the given surface; its own sheet is
+        developed `distance` [mm] outside of that."""
+        from dataclasses import replace
+
+        return TaperHeader(replace(self.band, distance=outward + distance), outward, self.turn_b)
 
     def sheet(self, seam: float) -> Sheet:
         """The header laid flat."""

@@ -186,6 +186,7 @@ class MarkingBand(Marked):
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
+        from develop.pattern.allowance import Allowance
         from develop.pieces.assemble import Wording, pattern_of, seam_parameter
         from develop.pieces.built import one
         from develop.pieces.cuts import cylinder_solid
@@ -212,7 +213,7 @@ class MarkingBand(Marked):
             ),
             divisions=self.divisions,
             distance=surface.distance,
-            cut=surface.sheet(seam, beyond=self.lap) if self.lap else None,
+            allowances={"seam_right": Allowance(self.lap)},
         )
         if self.onto is None:
             return one(pattern, cylinder_solid(surface, seam))
@@ -222,6 +223,7 @@ class MarkingBand(Marked):
         """The saddle's band, and the band that marks the hole on the header."""
         import numpy as np
 
+        from develop.pattern.allowance import Allowance
         from develop.pieces.assemble import Hole, Wording, pattern_of
         from develop.pieces.built import Built, Part
         from develop.solid import End, Frame, MeetingEnd, Solid
@@ -264,7 +266,6 @@ class MarkingBand(Marked):
             opening.controls, opening.length, opening.area, trace.points, trace.tangents, trace.arcs, _WORDS
         )
         flat = header.sheet(opposite)
-        lapped = header.surface().sheet(opposite, beyond=self.lap) if self.lap else None
         on_header = pattern_of(
             flat,
             header.section,
@@ -291,7 +292,7 @@ class MarkingBand(Marked):
             ),
             divisions=self.divisions,
             distance=header.distance,
-            cut=lapped,
+            allowances={"seam_right": Allowance(self.lap)},
             holes=(hole,),
         )
         solid = header.solid(opposite, flat, (header.hole(pipe_face, place),))

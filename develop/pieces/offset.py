@@ -7,7 +7,7 @@ from math import atan, atan2, ceil, cos, degrees, floor, hypot, pi, radians, sin
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Plate
+from develop.pieces.common import Jointed
 from develop.pieces.field_types import LENGTH, MARK, OFFSET, SECTION, Angle
 from develop.pieces.fields import about
 from develop.pieces.wording import measured_words, section_words, shift_words, size_words
@@ -28,7 +28,7 @@ _LEAST_SIDE = 0.1
 
 
 @dataclass(frozen=True, kw_only=True)
-class Offset(Plate):
+class Offset(Jointed):
     """Three mitred legs that carry the axis sideways; lengths in mm, angles in radians."""
 
     kind: ClassVar[str] = "offset"
@@ -138,16 +138,18 @@ class Offset(Plate):
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
+        from develop.pieces.clearance import seam_warnings
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
-        return built_of(
+        built = built_of(
             legs,
             self._seams(legs[0].surface.section),
             wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
             divisions=self.divisions,
             name="leg",
         )
+        return seam_warnings(built, clear=self.clear)
 
     def _wording(self, sheet: Sheet, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""

@@ -6,6 +6,7 @@ from develop.solid.end import End
 from develop.solid.flat import FlatPlate, FlatRing, Holes, Stretch
 from develop.solid.frame import Frame, Rim, cut_slopes
 from develop.solid.meeting import MeetingEnd
+from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
@@ -16,7 +17,9 @@ __all__ = [
     "FlatRing",
     "Frame",
     "Holes",
+    "Made",
     "MeetingEnd",
+    "Patch",
     "Placed",
     "Rim",
     "Solid",
@@ -24,3 +27,6 @@ __all__ = [
     "TaperMeetingEnd",
     "cut_slopes",
 ]
+
+Made = Solid | FlatRing | FlatPlate | Patch
+"""The finished shape of any one part."""

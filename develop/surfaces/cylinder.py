@@ -56,18 +56,15 @@ class Cylinder:
         at = self.section.walk(u)
         return _heights(self.trim_b, at) - _heights(self.trim_a, at)
 
-    def sheet(self, seam: float, *, beyond: float = 0.0) -> CylinderSheet:
-        """The cylinder slit along the ruling at parameter `seam`, laid flat.
-
-        beyond: how much of the next turn is laid on at the right [mm of arc], for a lap.
-        """
-        return CylinderSheet(self, seam, beyond)
+    def sheet(self, seam: float) -> CylinderSheet:
+        """The cylinder slit along the ruling at parameter `seam`, laid flat."""
+        return CylinderSheet(self, seam)
 
 
 class CylinderSheet:
     """A cylinder laid flat; see `Sheet`. Edge A's square line lies level."""
 
-    def __init__(self, cylinder: Cylinder, seam: float, beyond: float = 0.0) -> None:
+    def __init__(self, cylinder: Cylinder, seam: float) -> None:
         self.cylinder = cylinder
         section = cylinder.section
         self._seam = seam
@@ -76,12 +73,6 @@ class CylinderSheet:
         past = np.sort(np.where(past > section.period * (1.0 - _SAME), 0.0, past))
         past = past[np.diff(past, prepend=0.0) > section.period * _SAME]
         ends = np.concatenate([[0.0], past, [section.period]])
-        if beyond > 0.0:
-            moved = section.offset(cylinder.distance)
-            start = moved.arc(np.array([seam]))
-            last = float(moved.at_arc(start + moved.girth + beyond)[0]) - seam
-            further = ends[1:-1] + section.period
-            ends = np.concatenate([ends, further[further < last - _SAME], [last]])
         whole = section.girth + 2.0 * np.pi * cylinder.distance
 
         def loose(panels: Panels, rates: Array) -> Mask:

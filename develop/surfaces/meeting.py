@@ -22,7 +22,7 @@ from develop.sections.section import Section
 from develop.solid.frame import Frame
 from develop.surfaces.band import Band
 from develop.surfaces.cylinder import CylinderSheet
-from develop.surfaces.edges import Trace, chains
+from develop.surfaces.edges import TOLERANCE, Trace, chains
 from develop.surfaces.sheet import Sheet
 
 _ROOT_STEPS = 40
@@ -273,10 +273,14 @@ class Opening:
     @cached_property
     def controls(self) -> Array:
         """Control points (3 n + 1, 2) [mm] of the curve as a chain of Béziers, closed."""
+        return self.chain(TOLERANCE)
+
+    def chain(self, tolerance: float) -> Array:
+        """The same as `controls` within a tolerance [mm] of its own."""
 
         def traces(panel: Indices, x: Array) -> tuple[Trace, ...]:
             return (self.trace(panel, x),)
 
-        (chain,) = chains(traces, len(self._branch.panels.start))
+        (chain,) = chains(traces, len(self._branch.panels.start), tolerance=tolerance)
         chain[-1] = chain[0]
         return chain

@@ -98,21 +98,6 @@ def test_steepest_against_a_cut_at_the_other_end() -> None:
     assert tan(radians(of(pi / 2))) == pytest.approx(sqrt(8.0), rel=1e-12)
 
 
-@pytest.mark.parametrize("beyond", [5.0, 60.0, 200.0])
-@pytest.mark.parametrize("distance", [0.0, 0.05])
-def test_laid_on_beyond_one_turn(beyond: float, distance: float) -> None:
-    """A lap repeats the start of the sheet, one girth further on."""
-    surface = pipe(slope=50.0, long=20.0, distance=distance)
-    plain, lapped = surface.sheet(2.0), surface.sheet(2.0, beyond=beyond)
-    girth = 2.0 * pi * (100.0 + distance)
-    assert lapped.edge_a == pytest.approx(girth + beyond, rel=1e-13)
-    u = 2.0 + np.linspace(0.0, beyond / (100.0 + distance), 7)
-    first = plain.lines(plain.from_a(u))
-    last = lapped.lines(lapped.ends)
-    assert last.a[-1] == pytest.approx([girth + beyond, 0.0], abs=1e-10)
-    assert last.b[-1, 1] == pytest.approx(first.b[-1, 1], abs=1e-10)
-
-
 @pytest.mark.parametrize("slope", [0.0, 20.0, 60.0, 80.0])
 def test_drawn_edge_is_the_sinusoid(slope: float) -> None:
     surface = pipe(slope=slope, long=30.0)
