@@ -19,7 +19,8 @@ __all__ = ["check_patch"]
 
 _CLOSING = 0.01
 _WIDTH = 1e-3
-_RELATIVE = 1e-6
+# A strip of the chains' tolerance along the edges [mm].
+_STRIP = 1e-3
 _CHORDS = 1e-4
 # Of the outer edge, spread evenly, so that measuring stays cheap.
 _MOST = 400
@@ -57,7 +58,7 @@ def check_patch(pattern: Pattern, part: Patch) -> tuple[Check, ...]:
         Check(
             "outer edge against the inner", length + part.width * turn, drawn_length(outer), _CLOSING, "mm"
         ),
-        Check("area against length and width", expected, ring, max(1e-3, _RELATIVE * expected), "mm²"),
+        Check("area against length and width", expected, ring, _STRIP * length, "mm²"),
     ]
     if part.whole:
         area = part.joint.opened

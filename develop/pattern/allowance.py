@@ -7,7 +7,16 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from develop.pattern.chain import area_of, between, crossing, joined, place_at, point_at, rates_of
+from develop.pattern.chain import (
+    area_of,
+    between,
+    crossing,
+    curvature_at,
+    joined,
+    place_at,
+    point_at,
+    rates_of,
+)
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
 from develop.pattern.pattern import Outline
@@ -34,10 +43,10 @@ class Allowance:
     stop: float = 0.0
 
 
-Contour = Sequence[tuple[str, Curve]]
+_Contour = Sequence[tuple[str, Curve]]
 
 
-def allowed(net: Outline, fine: Contour, allowances: Mapping[str, Allowance]) -> Outline:
+def allowed(net: Outline, fine: _Contour, allowances: Mapping[str, Allowance]) -> Outline:
     """The cut line of a contour that runs `a`, `seam_right`, `b`, `seam_left`; `b` may be missing at an apex.
 
     fine: the same contour, drawn closely enough for its parallels to be good. allowances: by edge; an edge
@@ -186,9 +195,14 @@ def _folded(net: Curve, allowance: Allowance) -> Curve:
     """The outer edge of a folded strip, cut in at its tabs."""
     if not allowance.tabs:
         return parallel(net, allowance.width)
-    half = 0.5 * allowance.opening
     cuts = [share * net.length for share in allowance.tabs]
-    starts, ends = [0.0, *(cut + half for cut in cuts)], [*(cut - half for cut in cuts), net.length]
+    # As wide at the outer edge as asked for: that is longer than the net by 1 + width · curvature.
+    halves = [
+        0.5 * allowance.opening / (1.0 + allowance.width * curvature_at(net, place_at(net, cut)))
+        for cut in cuts
+    ]
+    starts = [0.0, *(cut + half for cut, half in zip(cuts, halves, strict=True))]
+    ends = [*(cut - half for cut, half in zip(cuts, halves, strict=True)), net.length]
     parts: list[Curve] = []
     for k, (start, end) in enumerate(zip(starts, ends, strict=True)):
         tab = parallel(between(net, place_at(net, start), place_at(net, end)), allowance.width)

@@ -12,6 +12,7 @@ __all__ = [
     "between",
     "crossing",
     "crossings_of",
+    "curvature_at",
     "curve_of",
     "joined",
     "length_of",
@@ -135,6 +136,13 @@ def point_at(curve: Curve, place: tuple[int, float]) -> tuple[Array, Array]:
     i, t = place
     at, speed, _ = rates_of(curve.pieces[[i]], np.array([[t]]))
     return at[0, 0], speed[0, 0] / np.hypot(*speed[0, 0])
+
+
+def curvature_at(curve: Curve, place: tuple[int, float]) -> float:
+    """The curvature [1/mm] at a place of a curve, positive where it turns left."""
+    _, speed, bend = rates_of(curve.pieces[[place[0]]], np.array([[place[1]]]))
+    (vx, vy), (ax, ay) = speed[0, 0], bend[0, 0]
+    return float((vx * ay - vy * ax) / np.hypot(vx, vy) ** 3)
 
 
 def stretch(curve: Curve, start: float, end: float) -> Curve:

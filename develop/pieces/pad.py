@@ -37,7 +37,7 @@ _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 _PLACES = 48
 _ROLL_LINES = 12
 _SCRAP = 1.0  # [mm] a roll line shorter than this is left out
-_CLEAR = 1e-6  # [mm]
+_CLEAR = 1e-3  # [mm]
 _CLEAR_EDGE = 1.0  # [mm] that a plate keeps from what it may not reach
 _KINK = 1e-6  # [rad]
 # The tell-tale hole stands this far along a part, clear of the four marks.
@@ -166,6 +166,7 @@ def _check_room(pad: Pad, inner: Curve, sheet: Sheet) -> None:
     contour += [np.array([at.a[i], at.b[i]]) for i in (0, -1)]
     points = inner.polyline(_COARSE)
     most = min(room(inner), *(_distance(points, line) for line in contour))
+    most += _CLEAR
     if pad.width + _CLEAR_EDGE <= most:
         return
     allowed = int(most - _CLEAR_EDGE)
