@@ -16,7 +16,7 @@ from develop.pattern.pattern import Pattern
 from develop.quadrature import Array, Indices
 from develop.solid.solid import Solid
 
-__all__ = ["closing_miss", "folded", "placed"]
+__all__ = ["closing_miss", "folded", "folded_on", "placed"]
 
 _Complex = NDArray[np.complex128]
 _FLIP = np.array([-1.0, 1.0])
@@ -102,6 +102,11 @@ def placed(pattern: Pattern, solid: Solid, points: Array) -> tuple[Array, Array]
     along = sheet.axes[strip, :1] * sheet.x[strip] + sheet.axes[strip, 1:] * sheet.y[strip]
     up = sheet.up[strip]
     return points, np.cos(lean) * up + np.sin(lean) * np.cross(along, up)
+
+
+def folded_on(pattern: Pattern, solid: Solid, points: Array) -> Array:
+    """Where points (k, 2) [mm] of the flat lie on the outside of the folded sheet, (k, 3) [mm]."""
+    return placed(pattern, solid, points)[0]
 
 
 def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Array] | None = None) -> float:

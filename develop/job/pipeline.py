@@ -154,7 +154,7 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
             warnings=[each for built in builds for each in built.warnings],
         )
         return {f"{mark}.json": data}
-    from develop.solid import Solid
+    from develop.solid import Patch, Solid
 
     title = f"{mark}: {patterns[0].facts[1]}"
     solid = builds[0].solid
@@ -162,6 +162,7 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         from develop.outputs.flat_picture import flat_picture
 
         return {f"{mark}.png": flat_picture(builds[0].parts, title)}
+    from develop.checks import folded_on
     from develop.outputs.picture import picture
 
     headers = [
@@ -180,4 +181,12 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
     placed = [each for part in (*headers, *others) for each in replace(builds[0], parts=(part,)).placed]
     names = [part.pattern.mark for part in others for _ in part.frames]
     title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
-    return {f"{mark}.png": picture(placed, (title, *patterns[0].facts[1:3]), names)}
+    # Plates that lie on a header are shown by their edges on its wall.
+    plates = [
+        folded_on(part.pattern, part.solid.under, curve.polyline(0.2))
+        for part in builds[0].parts
+        if isinstance(part.solid, Patch)
+        for name, curve in part.pattern.net.curves
+        if name != "inner"
+    ]
+    return {f"{mark}.png": picture(placed, (title, *patterns[0].facts[1:3]), names, plates)}

@@ -77,12 +77,17 @@ class _Camera:
         return np.asarray(seen[..., :2] * (_FAR / (_FAR - seen[..., 2:])))
 
 
-def picture(pieces: Sequence[Piece], facts: Sequence[str], branches: Sequence[str] = ()) -> bytes:
+def picture(
+    pieces: Sequence[Piece],
+    facts: Sequence[str],
+    branches: Sequence[str] = (),
+    on_first: Sequence[Array] = (),
+) -> bytes:
     """PNG of a piece in perspective, equal scale in all directions; the same piece gives the same bytes.
 
     pieces: its parts where they stand, the first with END A, the last with END B; then those that
     stand on them, as many as `branches` has names, each named at its end B. facts: what stands above
-    it, in one line or two.
+    it, in one line or two. on_first: lines (n, 3) [mm] on the wall of the first, such as a plate's edge.
     """
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
@@ -101,7 +106,7 @@ def picture(pieces: Sequence[Piece], facts: Sequence[str], branches: Sequence[st
         axes = figure.add_axes((0.02, 0.02, 0.96, 0.86))
         axes.set_axis_off()
         axes.set_aspect("equal")
-        polygons, fill, stroke, widths = _scene(camera, pieces, _CELL * size)
+        polygons, fill, stroke, widths = _scene(camera, pieces, _CELL * size, on_first)
         axes.add_collection(
             PolyCollection(polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round")
         )
@@ -223,7 +228,9 @@ def _lines(piece: Piece) -> list[tuple[Array, str, float]]:
     return [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7), (seam, _SEAM, 2.2)]
 
 
-def _scene(camera: _Camera, pieces: Sequence[Piece], cell: float) -> tuple[list[Array], Array, Array, Array]:
+def _scene(
+    camera: _Camera, pieces: Sequence[Piece], cell: float, on_first: Sequence[Array]
+) -> tuple[list[Array], Array, Array, Array]:
     """Polygons (2-D) from the back to the front, fill and stroke colours (n, 4), stroke widths (n,).
 
     cell: how long a cell of a wall may be [mm].
@@ -232,7 +239,7 @@ def _scene(camera: _Camera, pieces: Sequence[Piece], cell: float) -> tuple[list[
 
     polygons: list[Array] = []
     far, fill, stroke, widths = [], [], [], []
-    for piece in pieces:
+    for number, piece in enumerate(pieces):
         vertices, faces = piece.faces()
         corners = vertices[faces]
         corners, normal = _cells(corners, _outward(corners), cell)
@@ -245,7 +252,8 @@ def _scene(camera: _Camera, pieces: Sequence[Piece], cell: float) -> tuple[list[
         fill.append(colours)
         stroke.append(colours)  # closes the hair gaps between the polygons
         widths.append(np.full(len(corners), 0.4))
-        for points, colour, width in _lines(piece):
+        others = [] if number else [(line, _EDGE, 1.4) for line in on_first]
+        for points, colour, width in (*_lines(piece), *others):
             middles = (points[:-1] + points[1:]) / 2.0
             apart = (middle**2).sum(axis=1) - 2.0 * middles @ middle.T
             about = np.argpartition(apart, min(_ABOUT, len(middle) - 1), axis=1)[:, :_ABOUT]
