@@ -168,8 +168,8 @@ def test_a_bad_default_is_told_once_where_it_stands(tmp_path: Path) -> None:
 
 
 def test_a_default_that_no_piece_uses_is_still_read(tmp_path: Path) -> None:
-    (said,) = problems_of(tmp_path, f'[defaults]\nlap = "wide"\n{PIECE}')
-    assert said.startswith('hall.toml:2: lap: "wide" is not a length')
+    (said,) = problems_of(tmp_path, f'[defaults]\npaper = "wide"\n{PIECE}')
+    assert said.startswith('hall.toml:2: paper: "wide" is not a length')
 
 
 def test_a_shape_that_cannot_be_is_refused_at_its_line_before_anything_is_made(tmp_path: Path) -> None:

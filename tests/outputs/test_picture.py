@@ -215,7 +215,7 @@ def test_a_part_hides_what_lies_behind_it_in_whatever_order_they_come(samples, f
     def last_seen(other):
         """What is painted last on the middle of the small part's seam: a wall or a line."""
         pair = [other, small] if front_first else [small, other]
-        polygons, *_ = module._scene(camera, pair, 25.0)
+        polygons, *_ = module._scene(camera, pair, 25.0, ())
         for polygon in reversed(polygons):
             if len(polygon) == 2 and LineString(polygon).distance(seam) < 1e-9:
                 return "line"
