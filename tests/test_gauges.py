@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from contextlib import suppress
 from fractions import Fraction
+from itertools import pairwise
 
 import pytest
 from hypothesis import given
@@ -86,7 +88,7 @@ def test_brown_and_sharpe_is_a_geometric_series() -> None:
 def test_the_imperial_gauge_falls_by_steps_that_never_grow() -> None:
     # Order in Council of 1883, from memory: the steps were laid down in whole mils, later in fifths of them.
     inches = [Fraction(str(inch)) for inch in thicknesses("swg").values()]
-    steps = [a - b for a, b in zip(inches, inches[1:], strict=False)]
+    steps = [a - b for a, b in pairwise(inches)]
     assert len(inches) == 57  # 7/0 to 50
     assert all(step > 0 for step in steps)
     assert all(step % Fraction(1, 5000) == 0 for step in steps)
@@ -216,7 +218,5 @@ def test_a_gauge_is_a_plain_number_in_all_reckoning() -> None:
 @given(st.text(max_size=40))
 def test_any_text_is_read_or_refused(text: str) -> None:
     for given_text in (text, f"20 ga {text}", f"{text} swg"):
-        try:
-            THICKNESS.read(given_text, unit="mm")
-        except InputError as error:
-            assert str(error)
+        with suppress(InputError):
+            assert 0 <= THICKNESS.read(given_text, unit="mm") <= 1000

@@ -113,6 +113,35 @@ def test_coated_and_stainless_sheet_is_not_scribed() -> None:
     assert materials()["steel"].scribing == "yes"
 
 
+@pytest.mark.parametrize(
+    ("thickness", "radius"),
+    # EN 10025-2, S235, bend line along the rolling direction; from memory.
+    [
+        (0.8, None),
+        (1.0, None),
+        (1.5, 1.6),
+        (3, 3),
+        (3.1, 6),
+        (6, 10),
+        (8, 16),
+        (12, 25),
+        (20, 45),
+        (20.1, None),
+    ],
+)
+def test_least_bend_radii(thickness: float, radius: float | None) -> None:
+    assert materials()["steel"].least_bend_radius(thickness=thickness) == radius
+
+
+def test_bend_radii_only_with_a_source_and_never_smaller_for_thicker_sheet() -> None:
+    for each in materials().values():
+        assert bool(each.bend_radii) == bool(each.bend_source)
+        assert list(each.bend_radii) == sorted(each.bend_radii)
+        radii = [radius for _, radius in each.bend_radii]
+        assert radii == sorted(radii)
+    assert materials()["galvanised"].least_bend_radius(thickness=3) is None
+
+
 def test_the_table_cannot_be_changed() -> None:
     with pytest.raises(TypeError):
         materials()["steel"] = materials()["lead"]  # type: ignore[index]

@@ -11,13 +11,18 @@ from types import MappingProxyType
 __all__ = ["Material", "find_materials", "material_of", "material_words", "materials"]
 
 
+# [mm] Published bend radii begin above this.
+_BENDS_FROM = 1.0
+
+
 @dataclass(frozen=True)
 class Material:
     """One material.
 
     family: its own name, then those it is a grade or a coating of. density [kg/m³].
     scribing: `yes`, `cut lines` or `no`. marking: what the sheets say of it, empty where nothing is special.
-    source: of the density.
+    source: of the density. bend_radii: (thickness up to which, least inside radius) [mm], where a source
+    gives them, from more than 1 mm thickness up; bend_source: that source.
     """
 
     name: str
@@ -27,6 +32,20 @@ class Material:
     source: str
     scribing: str
     marking: str
+    bend_radii: tuple[tuple[float, float], ...] = ()
+    bend_source: str = ""
+
+    def least_bend_radius(self, *, thickness: float) -> float | None:
+        """Published least inside radius [mm] of a bend in sheet of a thickness [mm]; None where not known.
+
+        Guidance only: the maker's own figure for the sheet at hand goes before it.
+
+        >>> materials()["steel"].least_bend_radius(thickness=6.0)
+        10.0
+        """
+        if thickness <= _BENDS_FROM:
+            return None
+        return next((radius for most, radius in self.bend_radii if thickness <= most), None)
 
 
 @cache
@@ -55,6 +74,8 @@ def materials() -> Mapping[str, Material]:
             source=table["source"],
             scribing=table["scribing"],
             marking=table["marking"],
+            bend_radii=tuple((float(most), float(radius)) for most, radius in table.get("bend_radii", ())),
+            bend_source=table.get("bend_source", ""),
         )
     return MappingProxyType(found)
 
