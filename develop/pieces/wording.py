@@ -9,6 +9,7 @@ from math import degrees
 from typing import TYPE_CHECKING
 
 from develop.tables.gauges import Gauge
+from develop.tables.materials import material_of
 from develop.units import format_length, number_text
 
 if TYPE_CHECKING:
@@ -126,11 +127,17 @@ def wall_words(material: str, thickness: float, units: str) -> tuple[str, ...]:
     wall = f"{size_words(thickness, units)}{' mm' if units == 'mm' else ''} thick" if thickness else ""
     if isinstance(thickness, Gauge) and units == "in":
         wall = f"{thickness / _INCH:.4f} in thick"  # as gauges are published
-    return _lines(", ".join(part for part in (material, _gauge(thickness), wall) if part))
+    return _lines(", ".join(part for part in (material, _gauge(material, thickness), wall) if part))
 
 
-def _gauge(thickness: float) -> str:
-    return thickness.name if isinstance(thickness, Gauge) else ""
+def _gauge(material: str, thickness: float) -> str:
+    """The gauge that a thickness was given by; without its material, where that is stated anyway."""
+    if not isinstance(thickness, Gauge):
+        return ""
+    stated = material_of(material)
+    if stated and thickness.material in stated.family:
+        return " ".join(thickness.name.split()[:2])
+    return thickness.name
 
 
 def mass_words(area: float, mass: float | None, density: float | None, units: str, *, each: bool) -> str:
@@ -167,5 +174,5 @@ def _lines(text: str) -> tuple[str, ...]:
 
 def plate_words(material: str, thickness: float) -> str:
     """Material and thickness of a flat plate, whose pattern they do not change."""
-    plate = f"{number_text(round(thickness, 6))} mm thick" if thickness else "thickness not stated"
-    return ", ".join(part for part in (material, _gauge(thickness), plate) if part)
+    plate = f"{number_text(round(thickness, 3))} mm thick" if thickness else "thickness not stated"
+    return ", ".join(part for part in (material, _gauge(material, thickness), plate) if part)

@@ -86,6 +86,24 @@ def test_the_gauge_names_the_material_where_none_is_given() -> None:
     assert known_material("", 0.8) is None
 
 
+@pytest.mark.parametrize(
+    ("material", "gauge", "words"),
+    [
+        ("", "20 ga galvanised", "20 ga galvanised, 1.006 mm thick"),
+        ("galvanised sheet", "20 ga galvanised", "galvanised sheet, 20 ga, 1.006 mm thick"),
+        ("stainless 316L", "18 ga stainless", "stainless 316L, 18 ga, 1.27 mm thick"),
+        ("galvanised", "20 swg", "galvanised, 20 swg, 0.914 mm thick"),
+        ("our stock", "20 ga steel", "our stock, 20 ga steel, 0.912 mm thick"),
+        ("copper", "20 ga steel", "copper, 20 ga steel, 0.912 mm thick"),
+    ],
+)
+@pytest.mark.parametrize("kind", ["straight", "flange"])
+def test_the_gauge_stands_beside_the_material(kind: str, material: str, gauge: str, words: str) -> None:
+    given = ROUND if kind == "straight" else {"section": "round 400", "width": 30}
+    (pattern,) = patterns(kind, **given, material=material, thickness=gauge)
+    assert words in pattern.facts
+
+
 @pytest.mark.parametrize("kind", KINDS)
 def test_the_record_has_area_and_mass_of_every_pattern(kind: str, tmp_path: Path) -> None:
     names = {each.name for each in fields_of(kind_of(kind))}
