@@ -118,3 +118,40 @@ def test_the_page_of_checks_names_every_check() -> None:
     for each in check(built.patterns[0], built.solid):
         words = each.name.split(",")[0].replace("edge at END A", "edge").replace("edge at END B", "edge")
         assert words.split(" against")[0].lower() in page, each.name
+
+
+def test_the_page_of_tables_says_what_the_tables_say() -> None:
+    from develop.tables.bend_allowance import bend_rules, neutral_line
+    from develop.tables.gauges import SERIES, thicknesses
+    from develop.tables.materials import materials
+    from develop.tables.rules import shipped
+
+    text = (DOCS / "materials.md").read_text(encoding="utf-8")
+    for series, written in SERIES.items():
+        figures = " | ".join(
+            f"{thicknesses(series)[number] * 25.4 + 1e-9:.3f}" for number in ("16", "20", "24")
+        )
+        assert re.search(rf"^\| `{written}` \| [^|]+ \| {re.escape(figures)} \|", text, re.MULTILINE), series
+    for material in materials().values():
+        assert f"{material.density:.0f}" in text
+    for name in (*shipped().seams, *shipped().edges):
+        assert re.search(rf"`{name}[ `]", text), name
+    for name, rule in bend_rules().items():
+        assert f"| `{name}` |" in text
+        if not rule.steps:
+            line = f"{rule.per_radius:g} R + {rule.per_thickness:g} T | {neutral_line(name, radius=1, thickness=1):.3f}"
+            assert line in text
+
+
+def test_the_shop_rules_of_the_page_of_tables_are_read(tmp_path: Path) -> None:
+    from develop.job.rules_file import read_rules
+    from develop.tables.seams import edge_of, seam_of
+
+    text = (DOCS / "materials.md").read_text(encoding="utf-8")
+    (block,) = re.findall(r"```toml\n(.*?)```", text, re.DOTALL)
+    file = tmp_path / "shop.toml"
+    file.write_text(block, encoding="utf-8")
+    rules = read_rules(str(file))
+    # 1.5 × 6 + 2 × 0.8, and 1.2 × 10 + 0.5.
+    assert seam_of("grooved 6", thickness=0.8, rules=rules).left == pytest.approx(10.6, rel=1e-14)
+    assert edge_of("bead 10", rules=rules).allowance == 12.5

@@ -17,9 +17,10 @@ from develop.pieces.fields import Declared, Piece, fields_of, read_fields, read_
 from develop.units import UNITS
 from develop.wording import listed, near_miss, shown
 
-__all__ = ["Job", "Placed", "Places", "read_job"]
+__all__ = ["Job", "Placed", "Places", "parsed", "read_job", "text_of"]
 
 _LARGEST = 16_000_000
+_WHAT = "a job file"
 
 _JOB = (
     Declared(name="name", type=Text(), help="name of the job", required=False, default=""),
@@ -74,8 +75,8 @@ def read_job(file: str) -> Job:
 
     Raises InputError with every problem, each at its line.
     """
-    text = _text_of(file)
-    data, places = _parsed(file, text)
+    text = text_of(file)
+    data, places = parsed(file, text)
     problems: list[Problem] = []
     for name in data:
         if name not in _TABLES:
@@ -98,19 +99,20 @@ def read_job(file: str) -> Job:
     return Job(name=name, units=unit, pieces=tuple(read))
 
 
-def _text_of(file: str) -> str:
+def text_of(file: str, what: str = _WHAT) -> str:
+    """The text of a TOML file. Raises InputError for a file that is no text or cannot be read."""
     from os import strerror
 
     try:
         with open(file, "rb") as opened:
             data = opened.read(_LARGEST + 1)
     except IsADirectoryError:
-        raise InputError(Problem("", "is a folder", "a job file", file)) from None
+        raise InputError(Problem("", "is a folder", what, file)) from None
     except OSError as error:
         reason = strerror(error.errno) if error.errno else str(error)
-        raise InputError(Problem("", f"cannot be read: {reason}", "a job file", file)) from None
+        raise InputError(Problem("", f"cannot be read: {reason}", what, file)) from None
     if len(data) > _LARGEST:
-        raise InputError(Problem("", "is too large for a job file", "at most 16 MB", file))
+        raise InputError(Problem("", f"is too large for {what}", "at most 16 MB", file))
     try:
         # Some editors put a byte order mark in front.
         return data.decode("utf-8-sig").replace("\r\n", "\n")
@@ -123,7 +125,8 @@ def _text_of(file: str) -> str:
         ) from None
 
 
-def _parsed(file: str, text: str) -> tuple[dict[str, object], Places]:
+def parsed(file: str, text: str, what: str = _WHAT) -> tuple[dict[str, object], Places]:
+    """The tables of a TOML text, and where each key stands. Raises InputError with the line."""
     import re
     import tomllib
 
@@ -136,9 +139,9 @@ def _parsed(file: str, text: str) -> tuple[dict[str, object], Places]:
         reason = message[: found.start()] if found else message.removesuffix(" (at end of document)")
         problem = Problem("", f"not a TOML file: {reason}", "key = value, text in quotes", f"{file}:{line}")
     except RecursionError:
-        problem = Problem("", "brackets within brackets too deep to read", "a job file", file)
+        problem = Problem("", "brackets within brackets too deep to read", what, file)
     except ValueError as error:  # a whole number of thousands of digits
-        problem = Problem("", f"not a TOML file: {error}", "a job file", file)
+        problem = Problem("", f"not a TOML file: {error}", what, file)
     raise InputError(problem)
 
 

@@ -10,6 +10,7 @@ from typing import Protocol
 import numpy as np
 
 from develop.pattern.curve import Array
+from develop.pattern.mass import cut_area
 from develop.pattern.pattern import Figures, Outline, Pattern
 
 __all__ = ["Verdict", "record"]
@@ -45,7 +46,7 @@ def record(
     checks: Sequence[Verdict],
     warnings: Sequence[str] = (),
 ) -> bytes:
-    """The record of one piece as JSON: mm and degrees.
+    """The record of one piece as JSON: mm, degrees and kg.
 
     Coordinates are rounded to 1e-6 mm, directions to 1e-9 degrees; lengths, areas and checks keep
     all their digits. An infinite roll radius is null. fields: the fields as understood, ready for JSON.
@@ -90,7 +91,8 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
         "cut": {
             "outline": _points(pattern.cut),
             "openings": [] if marked else openings,
-            "area": float(pattern.cut.area - (0.0 if marked else holes)),
+            "area": cut_area(pattern),
+            **({} if pattern.mass is None else {"mass": float(pattern.mass)}),
         },
         "lines": [
             {

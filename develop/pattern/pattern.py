@@ -134,7 +134,7 @@ class Pattern:
     flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
     places: lines (n, 2, 2) [mm] across a flat part, best first, that its words stand on square;
         a rolled part has its divisions for that.
-    figures: further tables.
+    figures: further tables. mass: of what is cut [kg], where material and thickness are known.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
     seam_words: what is written along the left and the right seam.
@@ -165,3 +165,4 @@ class Pattern:
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()
+    mass: float | None = None

@@ -60,7 +60,10 @@ class Named(Piece):
 class Flat(Named):
     """What every flat plate has."""
 
-    material: str = field(default="", metadata=about(TEXT, "stated on the pattern", own=False))
+    material: str = field(
+        default="",
+        metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
+    )
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -80,7 +83,10 @@ class Marked(Named):
 class Plate(Marked):
     """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside."""
 
-    material: str = field(default="", metadata=about(TEXT, "stated on the pattern", own=False))
+    material: str = field(
+        default="",
+        metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
+    )
     neutral_line: float = field(
         default=0.5,
         metadata=about(Number(0.0, 1.0), "where the neutral line lies, 0 inside to 1 outside", own=False),

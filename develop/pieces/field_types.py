@@ -19,7 +19,7 @@ from develop.wording import listed, near_miss, shown
 __all__ = [
     "ANGLE", "BEND_SEAM", "DIRECTION", "LENGTH", "MARK", "OFFSET", "SEAM", "SECTION", "TEXT",
     "THICKNESS", "Angle", "BendSeam", "Choice", "Count", "Direction", "FieldType",
-    "Length", "Number", "Offset", "Pitch", "SectionText", "Text",
+    "Length", "Number", "Offset", "Pitch", "SectionText", "Text", "Thickness",
 ]  # fmt: skip
 
 
@@ -99,6 +99,36 @@ def _number(value: object) -> float:
 
 def _plain(mm: float) -> str:
     return f"{number_text(mm / 1000)} m" if abs(mm) >= 10_000 else f"{number_text(mm)} mm"
+
+
+@dataclass(frozen=True, eq=False, repr=False)
+class Thickness(Length):
+    """A thickness of sheet [mm], also by a gauge with its series; the record has the mm."""
+
+    least: float = 0.0
+    most: float = 1000.0
+
+    @property
+    def allowed(self) -> str:
+        bounds = f"{_plain(self.least)} to {_plain(self.most)}"
+        return (
+            f"a length from {bounds}, such as 0.8, 3/32 in, or a gauge and its series: 20 ga galvanised, "
+            "20 ga steel, 20 ga stainless, 20 ga aluminium, 20 swg"
+        )
+
+    def read(self, given: object, *, unit: str) -> float:
+        if isinstance(given, str):
+            from develop.tables.gauges import gauge_of, is_gauge
+
+            if is_gauge(given):
+                return gauge_of(given)
+        return super().read(given, unit=unit)
+
+    def record(self, value: object) -> object:
+        return _number(value)
+
+    def text(self, value: object) -> str:
+        return getattr(value, "name", "") or super().text(value)
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -431,7 +461,7 @@ class Pitch:
 
 
 LENGTH = Length()
-THICKNESS = Length(least=0.0, most=1000.0)
+THICKNESS = Thickness()
 ANGLE = Angle()
 DIRECTION = Direction()
 SEAM = Direction(words=("shortest",))

@@ -45,7 +45,7 @@ def builds_of(piece: Piece, *, units: str = "mm") -> tuple[Built, ...]:
 
     Raises Refusal.
     """
-    built = piece.build(units=units)
+    built = _built(piece, units)
     count: int = getattr(piece, "opposite_hand", 0)
     if not count:
         return (built,)
@@ -56,11 +56,22 @@ def builds_of(piece: Piece, *, units: str = "mm") -> tuple[Built, ...]:
     return (
         _said(built, f"as drawn; {count} of opposite hand on a pattern of its own", after=2),
         _said(
-            other.build(units=units),
+            _built(other, units),
             f"OPPOSITE HAND of {piece.mark}: its mirror image, right for left",
             after=1,
         ),
     )
+
+
+def _built(piece: Piece, units: str) -> Built:
+    """The piece as built, with what its material adds, if it has one."""
+    built = piece.build(units=units)
+    if not hasattr(piece, "material"):
+        return built
+    from develop.pieces.sheet_metal import with_material
+
+    thickness: float = getattr(piece, "thickness", 0.0)
+    return with_material(built, material=piece.material, thickness=thickness, units=units)
 
 
 def _seam(piece: Piece, built: Built) -> float | None:

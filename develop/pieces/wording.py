@@ -8,6 +8,8 @@ from __future__ import annotations
 from math import degrees
 from typing import TYPE_CHECKING
 
+from develop.tables.gauges import Gauge
+from develop.tables.materials import material_of
 from develop.units import format_length, number_text
 
 if TYPE_CHECKING:
@@ -18,6 +20,7 @@ __all__ = [
     "cut_words",
     "direction_words",
     "edges_words",
+    "mass_words",
     "measured_words",
     "plate_words",
     "section_words",
@@ -29,6 +32,9 @@ __all__ = [
 
 _WORDS = {0.0: "right", 90.0: "top", 180.0: "left", 270.0: "bottom"}
 _INCH = 25.4
+_FOOT = 304.8
+# [kg] International yard and pound agreement, 1959.
+_POUND = 0.45359237
 # Nearer than this to a sixty-fourth of an inch [mm] a size is that fraction.
 _SAME = 1e-3
 # A line of facts is not to be much longer than the others, or all are written small.
@@ -119,7 +125,39 @@ def edges_words(edges: tuple[float, float], units: str) -> str:
 def wall_words(material: str, thickness: float, units: str) -> tuple[str, ...]:
     """Material and thickness [mm], in as many lines as that takes."""
     wall = f"{size_words(thickness, units)}{' mm' if units == 'mm' else ''} thick" if thickness else ""
-    return _lines(", ".join(part for part in (material, wall) if part))
+    if isinstance(thickness, Gauge) and units == "in":
+        wall = f"{thickness / _INCH:.4f} in thick"  # as gauges are published
+    return _lines(", ".join(part for part in (material, _gauge(material, thickness), wall) if part))
+
+
+def _gauge(material: str, thickness: float) -> str:
+    """The gauge that a thickness was given by; without its material, where that is stated anyway."""
+    if not isinstance(thickness, Gauge):
+        return ""
+    stated = material_of(material)
+    if stated and thickness.material in stated.family:
+        return " ".join(thickness.name.split()[:2])
+    return thickness.name
+
+
+def mass_words(area: float, mass: float | None, density: float | None, units: str, *, each: bool) -> str:
+    """Area [mm²] of one pattern, and its mass [kg] where the density [kg/m³] is known.
+
+    >>> mass_words(565486.7, 3.5511, 7850.0, "mm", each=False)
+    'area 0.5655 m², 3.551 kg at 7850 kg/m³'
+    >>> mass_words(929030.4, 4.5359237, 7850.0, "in", each=True)
+    'area 10 ft² each, 10 lb at 490.1 lb/ft³'
+    """
+    metric = units == "mm"
+    square, unit = (1e6, "m²") if metric else (_FOOT**2, "ft²")
+    of_each = " each" if each else ""
+    words = f"area {number_text(float(f'{area / square:.4g}'))} {unit}{of_each}"
+    if mass is None or density is None:
+        return words
+    if metric:
+        return f"{words}, {number_text(float(f'{mass:.4g}'))} kg at {number_text(density)} kg/m³"
+    dense = density / _POUND * (_FOOT * 1e-3) ** 3
+    return f"{words}, {number_text(float(f'{mass / _POUND:.4g}'))} lb at {dense:.1f} lb/ft³"
 
 
 def _lines(text: str) -> tuple[str, ...]:
@@ -136,5 +174,5 @@ def _lines(text: str) -> tuple[str, ...]:
 
 def plate_words(material: str, thickness: float) -> str:
     """Material and thickness of a flat plate, whose pattern they do not change."""
-    plate = f"{number_text(thickness)} mm thick" if thickness else "thickness not stated"
-    return ", ".join(part for part in (material, plate) if part)
+    plate = f"{number_text(round(thickness, 3))} mm thick" if thickness else "thickness not stated"
+    return ", ".join(part for part in (material, _gauge(material, thickness), plate) if part)

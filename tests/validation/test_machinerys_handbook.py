@@ -1,6 +1,6 @@
 """E. Oberg, F. D. Jones, H. L. Horton and H. H. Ryffel, Machinery's Handbook, 31st edition, Industrial
 Press 2020: p. 81 (girth of an ellipse, approximate), p. 89 (cylinder cut obliquely: curved area
-1.5708 d (h1 + h2)), p. 90 (cone: diameter 6, height 4).
+1.5708 d (h1 + h2)), p. 90 (cone: diameter 6, height 4), p. 1421 (bends: fig. 13).
 """
 
 from __future__ import annotations
@@ -19,6 +19,7 @@ from develop.sections.point import Point
 from develop.sections.text import parse_section
 from develop.solid import Frame, Rim
 from develop.surfaces.band import Band
+from develop.tables.bend_allowance import bend_allowance, neutral_line
 
 
 def test_oblique_cut_cylinder_p_89() -> None:
@@ -74,3 +75,19 @@ def test_rule_of_thumb_p_81_is_half_a_percent_long() -> None:
     assert rule == pytest.approx(555.37, abs=0.02)  # printed with π = 3.1416 and rounded roots
     assert rule / girth - 1.0 == pytest.approx(0.0050, abs=5e-5)
     assert 552.83 / girth - 1.0 == pytest.approx(0.00044, abs=5e-6)
+
+
+def test_bends_of_soft_steel_p_1421() -> None:
+    """Thickness 1/8; a bend of 180° with radius 3/8, one of 60° with radius 5/8, and 3.5 of flats: 5.545."""
+
+    def bend(radius: float, angle: float) -> float:
+        return bend_allowance("half-hard", radius=radius, thickness=0.125, angle=radians(angle))
+
+    # Printed 1.338 and .707, which round 1.3375 up and .7075 down.
+    assert bend(0.375, 180.0) == pytest.approx(1.3375, rel=1e-14)
+    assert bend(0.625, 60.0) == pytest.approx(0.7075, rel=1e-13)
+    assert 3.5 + bend(0.375, 180.0) + bend(0.625, 60.0) == pytest.approx(5.545, rel=1e-14)
+    # With π/2 for 1.57 the whole is 5.5459.
+    place = neutral_line("half-hard", radius=0.375, thickness=0.125)
+    arcs = pi * (0.375 + place * 0.125) + pi / 3 * (0.625 + place * 0.125)
+    assert 3.5 + arcs == pytest.approx(5.5459, rel=0, abs=5e-5)
