@@ -247,7 +247,7 @@ def _piece(
     if piece is None:
         return None
     try:
-        piece.surface()
+        piece.check()
     except Refusal as refusal:
         problems += [replace(each, place=place(each.field)) for each in refusal.problems]
         return None

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING
 
 from develop.outputs.fonts import CAPITAL, FACE, width
 from develop.pattern.curve import Array, Curve
-from develop.pattern.drawing import CUT, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS
+from develop.pattern.drawing import CUT, FOLD_LINES, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS
 from develop.pattern.pattern import Label, Outline
 
 if TYPE_CHECKING:
@@ -22,7 +22,15 @@ __all__ = ["POINT", "Ink", "PatternPen"]
 POINT = 72.0 / 25.4
 """Points of a PDF in a mm."""
 
-_WIDTHS = {CUT: 0.5, NET: 0.25, ROLL_LINES: 0.18, PRESS_LINES: 0.25, WITNESS_MARKS: 0.25, TEXT: 0.25}  # [mm]
+_WIDTHS = {
+    CUT: 0.5,
+    NET: 0.25,
+    ROLL_LINES: 0.18,
+    PRESS_LINES: 0.25,
+    FOLD_LINES: 0.25,
+    WITNESS_MARKS: 0.25,
+    TEXT: 0.25,
+}  # [mm]
 _DASHES = {NET: (4.0, 1.5)}  # [mm]
 
 

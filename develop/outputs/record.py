@@ -11,7 +11,7 @@ import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.mass import cut_area
-from develop.pattern.pattern import Figures, Outline, Pattern
+from develop.pattern.pattern import Addition, Figures, Outline, Pattern
 
 __all__ = ["Verdict", "record"]
 
@@ -94,6 +94,7 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
             "area": cut_area(pattern),
             **({} if pattern.mass is None else {"mass": float(pattern.mass)}),
         },
+        **({"allowances": [_added(each) for each in pattern.added]} if pattern.added else {}),
         "lines": [
             {
                 "from": _rounded(line.start),
@@ -118,6 +119,12 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
         ],
         **({"figures": [_figures(each) for each in pattern.figures]} if pattern.figures else {}),
     }
+
+
+def _added(added: Addition) -> dict[str, object]:
+    """One allowance: the edge, the rule by name, the width, and the source of the rule where it has one."""
+    found: dict[str, object] = {"edge": added.edge, "rule": added.rule, "width": float(added.width)}
+    return {**found, "source": added.source} if added.source else found
 
 
 def _figures(figures: Figures) -> dict[str, object]:

@@ -8,7 +8,7 @@ from xml.etree import ElementTree as ET
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
-from develop.pattern.drawing import CUT, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS, draw
+from develop.pattern.drawing import CUT, FOLD_LINES, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS, draw
 from develop.pattern.lettering import CAPITAL
 from develop.pattern.pattern import Label, Outline, Pattern
 
@@ -23,6 +23,7 @@ _COLOURS = {
     NET: "#ff00ff",
     ROLL_LINES: "#0000ff",
     PRESS_LINES: "#00a0a0",
+    FOLD_LINES: "#00a0a0",
     WITNESS_MARKS: "#008000",
     TEXT: "#000000",
 }

@@ -16,16 +16,28 @@ from develop.pattern.pattern import Label, Outline, Pattern
 from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
 from develop.pattern.ties import between_ties
 
-__all__ = ["CUT", "LAYERS", "NET", "PRESS_LINES", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
+__all__ = [
+    "CUT",
+    "FOLD_LINES",
+    "LAYERS",
+    "NET",
+    "PRESS_LINES",
+    "ROLL_LINES",
+    "TEXT",
+    "WITNESS_MARKS",
+    "Pen",
+    "draw",
+]
 
 CUT = "cut"
 NET = "net"
 ROLL_LINES = "roll-lines"
 PRESS_LINES = "press-lines"
+FOLD_LINES = "fold-lines"
 WITNESS_MARKS = "witness-marks"
 TEXT = "text"
 _ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
-LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, WITNESS_MARKS, TEXT)
+LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, FOLD_LINES, WITNESS_MARKS, TEXT)
 
 
 class Pen(Protocol):
@@ -80,6 +92,10 @@ def draw(pattern: Pattern, pen: Pen) -> None:
         pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
         for start, end in strokes:
             pen.line(start, end)
+    if pattern.folds:
+        pen.layer(FOLD_LINES)
+        for curve in pattern.folds:
+            pen.curve(curve, dashed=True)
     marks = witness_strokes(pattern.marks, lengths)
     if len(marks) or pattern.dashed:
         pen.layer(WITNESS_MARKS)

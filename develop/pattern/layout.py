@@ -60,6 +60,7 @@ def lettered(pattern: Pattern) -> Pattern:
         arrow=pattern.arrow,
         seam_words=pattern.seam_words if rows else ("", ""),
         cut=pattern.cut,
+        lap_words=pattern.lap_words,
     )
     return replace(pattern, labels=labels, arrows=arrows)
 
@@ -82,6 +83,7 @@ def lay_out(
     places: Array | None = None,
     arrow: str = _FLOW,
     cut: Outline | None = None,
+    lap_words: tuple[str, str] = ("LAP", "LAP"),
 ) -> tuple[tuple[Label, ...], tuple[tuple[Array, str], ...]]:
     """Labels and arrows of a sheet, none over another, over a mark or over the outline.
 
@@ -93,7 +95,7 @@ def lay_out(
     openings: no word stands in them. places: lines (n, 2, 2) [mm] that words may stand on, where
     there are no divisions. arrow: the word at the arrow of the flow.
     seam_words: along the left and the right seam. cut: what leaves the shear; where it goes on
-    beyond a seam, that is called LAP.
+    beyond a seam, lap_words say what that is.
 
     What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
@@ -119,7 +121,7 @@ def lay_out(
     arrows = _flow(sheet, strip, block, flow, height, arrow)
     sheet.write(_press_words(lines, max(SMALLEST, 0.5 * height)))
     numbers.write_others(sheet)
-    return tuple(sheet.labels) + _lap_words(net, cut, words), arrows
+    return tuple(sheet.labels) + _lap_words(net, cut, words, lap_words), arrows
 
 
 @dataclass(frozen=True)
@@ -337,10 +339,10 @@ def _press_words(lines: Sequence[RollLine], height: float) -> list[Word]:
     return [word(line) for line in lines if line.press]
 
 
-def _lap_words(net: Outline, cut: Outline | None, height: float) -> tuple[Label, ...]:
-    """LAP, along the middle of what is cut beyond each seam."""
+def _lap_words(net: Outline, cut: Outline | None, height: float, said: tuple[str, str]) -> tuple[Label, ...]:
+    """What the allowance is, along the middle of what is cut beyond each seam."""
     labels: list[Label] = []
-    for side in ("seam_left", "seam_right"):
+    for side, text in zip(("seam_left", "seam_right"), said, strict=True):
         inner, outer = net.curve(side), cut.curve(side) if cut else None
         if inner is None or outer is None:
             continue
@@ -355,6 +357,6 @@ def _lap_words(net: Outline, cut: Outline | None, height: float) -> tuple[Label,
         angle = upright(math.atan2(end[1] - start[1], end[0] - start[0]))
         on = start + np.array([[0.5], [0.4], [0.6], [0.3], [0.7]]) * (end - start)
         strip = Sheet(lap, (), (), (), False)
-        strip.write([Word("LAP", size, lambda _, on=on, angle=angle: (on, np.full(len(on), angle)))])  # type: ignore[misc]
+        strip.write([Word(text, size, lambda _, on=on, angle=angle: (on, np.full(len(on), angle)))])  # type: ignore[misc]
         labels += strip.labels
     return tuple(labels)

@@ -7,12 +7,23 @@ negative: the two lines x = 0 and y = 0 are the datum lines that a tape is laid 
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from typing import Protocol
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
 
-__all__ = ["Division", "Figures", "Label", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
+__all__ = [
+    "Addition",
+    "Division",
+    "Figures",
+    "Label",
+    "Outline",
+    "Pattern",
+    "RollLine",
+    "Rulings",
+    "WitnessMark",
+]
 
 
 @dataclass(frozen=True)
@@ -121,6 +132,19 @@ class Rulings:
     distance: float = 0.0
 
 
+class Addition(Protocol):
+    """One line of the account of the cut line: which edge, by what rule, how much [mm], and its source."""
+
+    @property
+    def edge(self) -> str: ...
+    @property
+    def rule(self) -> str: ...
+    @property
+    def width(self) -> float: ...
+    @property
+    def source(self) -> str: ...
+
+
 @dataclass(frozen=True)
 class Pattern:
     """One flat part. `net` is the geometry, `cut` what leaves the shear; equal without allowances.
@@ -137,7 +161,9 @@ class Pattern:
     figures: further tables. mass: of what is cut [kg], where material and thickness are known.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
     datum: what the ordinates of the divisions are measured from, in words.
-    seam_words: what is written along the left and the right seam.
+    seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
+    folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
+    warnings: of what is not reasonable.
     """
 
     mark: str
@@ -162,6 +188,10 @@ class Pattern:
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())
+    folds: tuple[Curve, ...] = ()
+    lap_words: tuple[str, str] = ("LAP", "LAP")
+    added: tuple[Addition, ...] = ()
+    warnings: tuple[str, ...] = ()
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()

@@ -2,15 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, fields, replace
 from math import pi
 
 import numpy as np
 
-from develop.pattern.allowance import Allowance, allowed
+from develop.pattern.allowance import allowed
 from develop.pattern.curve import Array, Curve, segment
+from develop.pattern.parallel import parallel
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
@@ -89,7 +91,7 @@ def pattern_of(
     divisions: int,
     distance: float,
     turn_b: float = 0.0,
-    allowances: Mapping[str, Allowance] | None = None,
+    cutting: Cutting | None = None,
     holes: Sequence[Hole] = (),
     press: Press | None = None,
 ) -> Pattern:
@@ -97,8 +99,8 @@ def pattern_of(
 
     section_b: None where end B is a cut of the side, so that its marks lie on the lines of end A's.
     divisions: equal arcs of end A. distance: of the sheet outside the given surface [mm].
-    turn_b: how far end B's section is turned in the piece frame [rad]. allowances: what is cut beyond the
-    net line, by edge as the outside of the sheet shows them.
+    turn_b: how far end B's section is turned in the piece frame [rad]. cutting: what is cut beyond the
+    net line.
     holes: openings in the sheet, in the sheet's own coordinates. press: bent on a press brake, not
     rolled: the lines and the divisions are then the press lines.
     """
@@ -127,8 +129,9 @@ def pattern_of(
     first, last = int(counts[3]), int(counts[3]) + 1
 
     bare = Outline(_outline(sheet), sheet.area)
-    given = allowances or {}
-    whole = allowed(bare, _outline(sheet, tolerance=_FINE) if given else (), given)
+    added = cutting or Cutting()
+    close_by = _outline(sheet, tolerance=_FINE) if added.allowances or added.folds or added.inner else ()
+    whole = allowed(bare, close_by, added.allowances)
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)
     cut = net if whole is bare else Outline(view.contour(whole.curves), whole.area)
@@ -147,6 +150,8 @@ def pattern_of(
         for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
+    more = (*((bends.facts(),) if bends else ()), *added.facts)
+    more += tuple(f"CAUTION: {each}" for each in added.warnings)
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -158,7 +163,7 @@ def pattern_of(
         lines=lines,
         divisions=rows,
         marks=tuple(marks),
-        facts=wording.facts if bends is None else (*wording.facts[:-1], bends.facts(), *wording.facts[-1:]),
+        facts=(*wording.facts[:-1], *more, *wording.facts[-1:]),
         datum=wording.datum,
         full_lines=wording.full_lines or bends is not None,
         rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
@@ -166,7 +171,17 @@ def pattern_of(
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
         units=wording.units,
         seam_words=wording.seam_words,
+        folds=view.curves([_beside(dict(close_by), name, out) for name, out in added.folds]),
+        dashed=view.curves([_beside(dict(close_by), name, -far) for name, far, _ in added.inner]),
+        lap_words=added.words[::-1] if view.mirror else added.words,
+        added=added.added,
+        warnings=added.warnings,
     )
+
+
+def _beside(contour: dict[str, Curve], name: str, out: float) -> Curve:
+    """The parallel of an edge, so far outside of its net line [mm]."""
+    return parallel(contour[name], out)
 
 
 def dense(sheet: Sheet) -> Place:
@@ -310,6 +325,11 @@ class _View:
         other = {"seam_left": "seam_right", "seam_right": "seam_left"}
         back = {other.get(name, name): curve.reversed() for name, curve in moved}
         return tuple((name, back[name]) for name in _ORDER if name in back)
+
+    def curves(self, curves: Sequence[Curve]) -> tuple[Curve, ...]:
+        """Curves on the sheet."""
+        turn = np.diag(_FLIP) if self.mirror else np.eye(2)
+        return tuple(curve.moved(turn=turn, shift=self.shift) for curve in curves)
 
     def hole(self, hole: Hole) -> Outline:
         """A hole as a closed contour, anticlockwise."""

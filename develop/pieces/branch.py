@@ -376,6 +376,8 @@ class Branch(Jointed):
                 f"END A: the joint, a lap flange {size_words(self.lap, units)} wide beyond the net line, cut "
                 f"in to make {len(flange.tabs) + 1} tabs, turned out"
             )
+        # The header cannot give way: the whole gap of the joint is the branch's.
+        cutting = self.cutting(sheet, joints="a", alone="a", units=units)
         wording = self.wording(
             sheet,
             self._specs,
@@ -395,7 +397,7 @@ class Branch(Jointed):
             ),
             divisions=self.divisions,
             distance=surface.distance,
-            allowances={"a": flange} if flange else None,
+            cutting=replace(cutting, allowances={**cutting.allowances, "a": flange}) if flange else cutting,
         )
         solid = Solid(
             header.joint(section, frame),
@@ -461,6 +463,7 @@ class Branch(Jointed):
             divisions=self.divisions,
             distance=header.distance,
             turn_b=header.turn_b,
+            cutting=self.cutting(sheet, units=units),
             holes=(self._hole(cutter, sheet, through),),
         )
         solid = header.solid(seams[1], sheet, (header.hole(section, frame),))

@@ -52,7 +52,13 @@ class Built:
 
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
-    warnings: tuple[str, ...] = ()
+    warned: tuple[str, ...] = ()
+
+    @property
+    def warnings(self) -> tuple[str, ...]:
+        """All that is said of the piece and of its patterns, each once."""
+        own = (f"{pattern.mark}: {text}" for pattern in self.patterns for text in pattern.warnings)
+        return tuple(dict.fromkeys((*self.warned, *own)))
 
     @property
     def patterns(self) -> tuple[Pattern, ...]:

@@ -73,7 +73,7 @@ def seam_warnings(built: Built, *, clear: float) -> Built:
     for number, pattern in enumerate(built.patterns):
         own = tuple(dict.fromkeys(f"CAUTION: {text}" for text, where in found if number in where))
         patterns.append(replace(pattern, facts=(*pattern.facts[:-1], *own, *pattern.facts[-1:])))
-    return replace(built.with_patterns(patterns), warnings=tuple(dict.fromkeys(text for text, _ in found)))
+    return replace(built.with_patterns(patterns), warned=tuple(dict.fromkeys(text for text, _ in found)))
 
 
 def _near(what: str, gap: float, clear: float) -> str:

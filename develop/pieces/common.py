@@ -16,18 +16,23 @@ from develop.pieces.field_types import (
     Number,
 )
 from develop.pieces.fields import Piece, about
+from develop.pieces.rule_types import EDGE, SEAM_RULE
 from develop.pieces.wording import edges_words, sizes_words, wall_words
 
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
+    from develop.pieces.cutting import Cutting
     from develop.sections.text import SectionSpec
     from develop.surfaces.sheet import Sheet
+    from develop.tables.rules import Rules
 
 __all__ = ["SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
 
 # From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
 # practice, no source.
 _PLATE = 3.0
+
+_SMALL = Length(least=0.0, most=1000.0)
 
 SIZES = about(
     Choice(("inside", "outside", "mean")),
@@ -81,7 +86,10 @@ class Marked(Named):
 
 @dataclass(frozen=True, kw_only=True)
 class Plate(Marked):
-    """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside."""
+    """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside.
+
+    rules: the shop's own for seams and edges, which no field gives but whoever reads the piece.
+    """
 
     material: str = field(
         default="",
@@ -103,9 +111,67 @@ class Plate(Marked):
             own=False,
         ),
     )
+    seam: str = field(
+        default="butt",
+        metadata=about(SEAM_RULE, "how the seam is made: what it adds on each side", own=False),
+    )
+    edge_a: str = field(default="raw", metadata=about(EDGE, "what is done to the edge at end A", own=False))
+    edge_b: str = field(default="raw", metadata=about(EDGE, "what is done to the edge at end B", own=False))
+    gap: float = field(
+        default=0.0,
+        metadata=about(_SMALL, "gap left for the weld, at the seam and at joints inside", own=False),
+    )
+    gap_on: str = field(
+        default="shared",
+        metadata=about(
+            Choice(("shared", "one side")),
+            "half of the gap taken off each edge, or all of it off one: the right side, END B",
+            own=False,
+        ),
+    )
+    trim_a: float = field(
+        default=0.0,
+        metadata=about(_SMALL, "left on at end A, to be cut off after rolling", own=False),
+    )
+    trim_b: float = field(
+        default=0.0,
+        metadata=about(_SMALL, "left on at end B, to be cut off after rolling", own=False),
+    )
+    trim_line: float = field(
+        default=50.0,
+        metadata=about(
+            Length(least=1.0, most=1000.0),
+            "how far inside the net line the witness line of a trim lies",
+            own=False,
+        ),
+    )
+    pre_bend: float = field(
+        default=0.0,
+        metadata=about(
+            _SMALL, "how wide the seam edges are bent before rolling, marked as guidance", own=False
+        ),
+    )
+    weld_shrinkage: float = field(
+        default=0.0,
+        metadata=about(_SMALL, "added to the girth for what the welds of its seams draw in", own=False),
+    )
+    rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)
     )
+
+    def check(self) -> None:
+        """Raises Refusal for a piece that cannot be, or a rule that is none."""
+        from develop.pieces.cutting import rules_of
+
+        super().check()
+        rules_of(self)
+
+    def cutting(self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str) -> Cutting:
+        """What is cut beyond the net line of a sheet; see `cutting_of`."""
+        from develop.pieces.cutting import cutting_of
+
+        return cutting_of(self, sheet, joints=joints, alone=alone, units=units)
 
     def wording(
         self,

@@ -177,6 +177,7 @@ class Cone(Plate):
             ),
             divisions=self.divisions,
             distance=surface.distance,
+            cutting=self.cutting(sheet, units=units),
         )
         plane = self._plane(self.cut_b) if self.cut_b else None
         solid = Solid(

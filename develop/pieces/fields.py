@@ -38,6 +38,10 @@ class Piece(ABC):
     def surface(self) -> object:
         """The surface that carries the piece, cheaply: raises Refusal for one that cannot be."""
 
+    def check(self) -> None:
+        """Raises Refusal, cheaply, for a piece that cannot be."""
+        self.surface()
+
     @abstractmethod
     def build(self, *, units: str = "mm") -> Built:
         """The flat patterns and the finished piece. units: of the figures on the sheets, `mm` or `in`.
@@ -91,6 +95,8 @@ def fields_of(kind: type[Piece]) -> tuple[Declared, ...]:
     """The fields of a kind: its own first, as declared, then those it shares."""
     found = []
     for each in dataclasses.fields(kind):  # type: ignore[arg-type]  # every kind is a dataclass
+        if "type" not in each.metadata:
+            continue
         required = each.default is dataclasses.MISSING
         found.append(
             Declared(

@@ -190,6 +190,7 @@ class MarkingBand(Marked):
         from develop.pieces.assemble import Wording, pattern_of, seam_parameter
         from develop.pieces.built import one
         from develop.pieces.cuts import cylinder_solid
+        from develop.pieces.cutting import Cutting
 
         surface = self.surface()
         face = surface.section
@@ -213,7 +214,7 @@ class MarkingBand(Marked):
             ),
             divisions=self.divisions,
             distance=surface.distance,
-            allowances={"seam_right": Allowance(self.lap)},
+            cutting=Cutting({"seam_right": Allowance(self.lap)}),
         )
         if self.onto is None:
             return one(pattern, cylinder_solid(surface, seam))
@@ -226,6 +227,7 @@ class MarkingBand(Marked):
         from develop.pattern.allowance import Allowance
         from develop.pieces.assemble import Hole, Wording, pattern_of
         from develop.pieces.built import Built, Part
+        from develop.pieces.cutting import Cutting
         from develop.solid import End, Frame, MeetingEnd, Solid
         from develop.surfaces.cylinder import Cylinder
         from develop.surfaces.meeting import Opening
@@ -292,7 +294,7 @@ class MarkingBand(Marked):
             ),
             divisions=self.divisions,
             distance=header.distance,
-            allowances={"seam_right": Allowance(self.lap)},
+            cutting=Cutting({"seam_right": Allowance(self.lap)}),
             holes=(hole,),
         )
         solid = header.solid(opposite, flat, (header.hole(pipe_face, place),))

@@ -23,6 +23,7 @@ from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
+    from develop.pieces.cutting import Cutting
     from develop.sections.section import Section
     from develop.surfaces.sheet import Sheet
 
@@ -101,11 +102,13 @@ def built_of(
     wording: Callable[[Sheet, tuple[int, ...]], Wording],
     divisions: int,
     name: str,
+    cutting: Callable[[Sheet, str], Cutting],
 ) -> Built:
     """The piece of these legs; those alike, seam and all, are one pattern that is used several times.
 
     seams: the direction of each leg's seam [rad]. wording: of the pattern of a sheet that serves the legs
-    of these numbers, counted from 1. name: what a leg is called, such as `gore`.
+    of these numbers, counted from 1. name: what a leg is called, such as `gore`. cutting: what is cut beyond
+    the net line of a leg, whose ends of these letters meet its neighbours.
     """
     groups: dict[tuple[float, ...], list[int]] = {}
     for i, (leg, seam) in enumerate(zip(legs, seams, strict=True)):
@@ -125,6 +128,7 @@ def built_of(
             wording=wording(sheet, tuple(i + 1 for i in members)),
             divisions=divisions,
             distance=surface.distance,
+            cutting=cutting(sheet, ("a" if members[0] else "") + ("b" if members[0] < len(legs) - 1 else "")),
         )
         frames = tuple(legs[i].frame for i in members)
         parts.append(Part(pattern, cylinder_solid(surface, seam), frames))

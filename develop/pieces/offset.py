@@ -147,6 +147,7 @@ class Offset(Jointed):
             self._seams(legs[0].surface.section),
             wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
             divisions=self.divisions,
+            cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
             name="leg",
         )
         return seam_warnings(built, clear=self.clear)

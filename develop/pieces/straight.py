@@ -72,5 +72,6 @@ class Straight(Plate):
             ),
             divisions=self.divisions,
             distance=surface.distance,
+            cutting=self.cutting(flat, units=units),
         )
         return one(pattern, cylinder_solid(surface, seam))

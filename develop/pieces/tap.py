@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from math import ceil, sqrt
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -11,6 +10,7 @@ from develop.errors import Refusal
 from develop.pattern.allowance import Allowance
 from develop.pattern.curve import Curve
 from develop.pattern.parallel import room
+from develop.pieces.cutting import tabs_for
 from develop.surfaces.edges import edges
 
 if TYPE_CHECKING:
@@ -18,19 +18,13 @@ if TYPE_CHECKING:
 
 __all__ = ["lap_flange"]
 
-# A tab is bent along a straight line, which leaves the joint by this much at most [mm].
-# Common practice, no source: what a hammer takes up.
-_SAGITTA = 1.0
-_LEAST, _MOST = 0.5, 3.0  # width of a tab over the lap
 _FINE = 1e-6  # [mm]
 
 
 def lap_flange(surface: Cylinder, seam: float, *, lap: float, thickness: float) -> Allowance:
     """The flange at end A, `lap` wide, in tabs of equal length along the joint; all [mm].
 
-    A tab as long as the chord of a circle of the section's tightest radius r with a sagitta of 1 mm is
-    √(8 r) long, kept between half and three times the lap. Raises Refusal where the flange would fold
-    over itself.
+    Raises Refusal where the flange would fold over itself.
     """
     sheet = surface.sheet(seam)
     curve = Curve(edges(sheet, tolerance=_FINE)[0], sheet.edge_a)
@@ -43,7 +37,6 @@ def lap_flange(surface: Cylinder, seam: float, *, lap: float, thickness: float) 
             allowed=f"{allowed:g} mm or less" if allowed >= 1.0 else "another joint: set-on or set-in",
         )
     radius = surface.section.least_radius + surface.distance
-    tab = min(max(sqrt(8.0 * max(radius, 0.0) * _SAGITTA), _LEAST * lap), _MOST * lap)
-    count = max(ceil(sheet.edge_a / tab), 3)
+    count = tabs_for(radius, sheet.edge_a, lap)
     shares = tuple(float(share) for share in np.arange(1, count) / count)
     return Allowance(lap, folded=True, tabs=shares, stop=min(thickness, 0.25 * lap))

@@ -217,6 +217,7 @@ class Transition(Plate):
             divisions=self.divisions,
             distance=surface.distance,
             turn_b=self.rotate,
+            cutting=self.cutting(sheet, units=units),
             press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
         )
         solid = Solid(
