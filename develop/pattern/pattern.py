@@ -12,7 +12,7 @@ import numpy as np
 
 from develop.pattern.curve import Array, Curve
 
-__all__ = ["Division", "Figures", "Label", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
+__all__ = ["Division", "Figures", "Label", "NumberedHole", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
 
 
 @dataclass(frozen=True)
@@ -95,6 +95,19 @@ class Figures:
 
 
 @dataclass(frozen=True)
+class NumberedHole:
+    """A round hole with its number in the table.
+
+    centre: (2,) [mm]. outward: unit vector square to the line that the holes stand on (2,). radius [mm].
+    """
+
+    number: int
+    centre: Array
+    outward: Array
+    radius: float
+
+
+@dataclass(frozen=True)
 class Label:
     """A line of text. at: middle of its baseline (2,) [mm]; angle anticlockwise [rad];
     height of its capitals [mm]."""
@@ -136,6 +149,8 @@ class Pattern:
         a rolled part has its divisions for that.
     figures: further tables.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
+    thin: lines to set out by, such as that of the bolt holes; they are not cut.
+    holes: those of the openings that have a number.
     datum: what the ordinates of the divisions are measured from, in words.
     seam_words: what is written along the left and the right seam.
     """
@@ -165,3 +180,5 @@ class Pattern:
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()
+    thin: tuple[Curve, ...] = ()
+    holes: tuple[NumberedHole, ...] = ()

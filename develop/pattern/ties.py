@@ -6,8 +6,8 @@ from itertools import pairwise
 
 import numpy as np
 
-from develop.pattern.chain import length_of, share_at
-from develop.pattern.curve import Array, Curve
+from develop.pattern.chain import length_of, stretch
+from develop.pattern.curve import Curve
 from develop.pattern.pattern import Outline
 
 __all__ = ["TIES", "between_ties", "tie_width"]
@@ -34,39 +34,5 @@ def between_ties(outline: Outline, width: float) -> list[Curve]:
     middles = (np.arange(TIES) + 0.5) / TIES * whole
     cuts = []
     for start, end in pairwise([*(middles + half), middles[0] + half + whole]):
-        cuts.append(_stretch(pieces, ends, start, end - 2.0 * half))
+        cuts.append(stretch(pieces, ends, start, end - 2.0 * half))
     return cuts
-
-
-def _stretch(pieces: Array, ends: Array, start: float, end: float) -> Curve:
-    """The part of the closed chain from one way round to another [mm]; it may run past the chain's start."""
-    whole = ends[-1]
-    if start >= whole:
-        return _stretch(pieces, ends, start - whole, end - whole)
-    if end > whole:
-        first = _stretch(pieces, ends, start, whole).controls
-        return Curve(
-            np.vstack([first, _stretch(pieces, ends, 0.0, end - whole).controls[1:]]), float(end - start)
-        )
-    chain: list[Array] = []
-    for piece, low, high in zip(pieces, ends[:-1], ends[1:], strict=True):
-        if high > start and low < end:
-            t = share_at(piece, start - low) if low < start else 0.0
-            u = share_at(piece, end - low) if high > end else 1.0
-            part = _between(piece, t, u)
-            chain.append(part[1:] if chain else part)
-    return Curve(np.vstack(chain), float(end - start))
-
-
-def _between(piece: Array, low: float, high: float) -> Array:
-    """The controls (4, 2) of the part of one Bézier between two shares of its parameter (de Casteljau)."""
-
-    def blossom(r: float, s: float, t: float) -> Array:
-        points = piece
-        for share in (r, s, t):
-            points = (1 - share) * points[:-1] + share * points[1:]
-        return np.asarray(points[0])
-
-    return np.array(
-        [blossom(low, low, low), blossom(low, low, high), blossom(low, high, high), blossom(high, high, high)]
-    )

@@ -11,7 +11,7 @@ from develop.pieces.common import Plate
 from develop.pieces.field_types import ANGLE, DIRECTION, LENGTH, MARK, SECTION, Angle, Choice, Length
 from develop.pieces.fields import Piece, about
 from develop.pieces.header import HEADER
-from develop.pieces.wording import direction_words, section_words, size_words
+from develop.pieces.wording import SIDES, direction_words, off_centre_words, section_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -30,6 +30,8 @@ __all__ = ["Branch"]
 # How far an overhang may be rounding [mm].
 _TANGENT = 1e-9
 _HALVINGS = 70
+# Less than this over its length a line of centres does not slope.
+_SLOPING = 1e-9
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
@@ -278,8 +280,11 @@ class Branch(Plate):
         branch_section = surface.section
         seam = seam_parameter(branch_section, surface.lengths, self.seam_at)
         sheet = surface.sheet(seam)
-        leaning = f"{number_text(round(degrees(self.angle), 6))}° to the header's axis"
-        off = f", {size_words(self.off_centre, units)} off centre" if self.off_centre else ""
+        sloping = float(np.abs(header.centre(header.length)[:2]).max()) > _SLOPING * header.length
+        line = "sloping line of centres" if sloping else "axis"
+        leaning = f"{number_text(round(degrees(self.angle), 6))}° to the header's {line}"
+        off = f", {off_centre_words(self.off_centre, units)}" if self.off_centre else ""
+        sides = (SIDES,) if self.off_centre else ()
         where = f"{leaning}, leaves at {direction_words(self.leaves_at)}{off}, {self.joint}"
         sections = tuple(each for each in (self.branch, self.header) if isinstance(each, SectionSpec))
         wording = self.wording(
@@ -290,7 +295,7 @@ class Branch(Plate):
             place=f"into header {self._header_words(units)}, {where}",
             held="lengths and joint",
             units=units,
-            more=("END A: the joint; END B: the free end",),
+            more=("END A: the joint; END B: the free end", *sides),
         )
         branch = pattern_of(
             sheet,
@@ -330,6 +335,7 @@ class Branch(Plate):
             place=f"opening for branch {section_words(self.branch, units)}, {opening}, {where}",
             held="length and opening",
             units=units,
+            more=sides,
         )
         hole_sheet = Cylinder(
             hole_section,

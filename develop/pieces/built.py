@@ -48,10 +48,14 @@ class Joint:
 
 @dataclass(frozen=True)
 class Built:
-    """The parts of one piece, and the joints between them."""
+    """The parts of one piece, and the joints between them.
+
+    both_hands: the piece is its own mirror image, and serves as its opposite hand too.
+    """
 
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
+    both_hands: bool = False
 
     @property
     def patterns(self) -> tuple[Pattern, ...]:
