@@ -134,6 +134,11 @@ def checks_of(built: Built) -> tuple[Check, ...]:
     return tuple(found)
 
 
+def _plate_title(mark: str, facts: Sequence[str]) -> str:
+    """The mark with the size, and how a plate slopes where it does."""
+    return "\n".join((f"{mark}: {facts[0]}", *(each for each in facts if each.startswith("slope "))))
+
+
 def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
@@ -159,7 +164,7 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
     if not isinstance(solid, Solid):
         from develop.outputs.flat_picture import flat_picture
 
-        return {f"{mark}.png": flat_picture(builds[0].parts, f"{mark}: {patterns[0].facts[1]}")}
+        return {f"{mark}.png": flat_picture(builds[0].parts, _plate_title(mark, patterns[0].facts[1:]))}
     title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
     from develop.outputs.picture import picture
 

@@ -116,8 +116,7 @@ def _texts(pattern: Pattern) -> list[str]:
     return [
         f"All figures in {figures}. Strike the datum lines x = 0, at the left, and"
         " y = 0, at the bottom, square to each other; lay off x and y of each point from them, then draw each"
-        " edge through its points, a smooth curve but for straight sides and corners."
-        + _running(pattern),
+        " edge through its points, a smooth curve but for straight sides and corners." + _running(pattern),
         *_seam_and_flow(pattern),
         *_lap_corners(pattern),
         f"Measured from: {pattern.datum}.",
@@ -133,7 +132,7 @@ def _running(pattern: Pattern) -> str:
         round_openings = ", round an opening from its point 1" if pattern.openings else ""
         return f" Running lengths go along END A and END B from line 0{round_openings}."
     if pattern.net.curve("end_1") is not None:
-        return " Running lengths of the marks go along the edge from END 1, those of the outline from point 1."
+        return " Running lengths of marks go along the edge from END 1, those of the outline from point 1."
     return " Running lengths go along each edge from its point 1."
 
 

@@ -14,7 +14,13 @@ from develop.pattern.chain import length_of, stretch
 from develop.pattern.curve import Array, Curve
 from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of, text_height
 from develop.pattern.pattern import Label, Outline, Pattern
-from develop.pattern.strokes import arrow_strokes, hole_strokes, roll_strokes, witness_lengths, witness_strokes
+from develop.pattern.strokes import (
+    arrow_strokes,
+    hole_strokes,
+    roll_strokes,
+    witness_lengths,
+    witness_strokes,
+)
 from develop.pattern.ties import between_ties
 
 __all__ = ["CUT", "LAYERS", "NET", "PRESS_LINES", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]

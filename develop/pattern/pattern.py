@@ -12,7 +12,17 @@ import numpy as np
 
 from develop.pattern.curve import Array, Curve
 
-__all__ = ["Division", "Figures", "Label", "NumberedHole", "Outline", "Pattern", "RollLine", "Rulings", "WitnessMark"]
+__all__ = [
+    "Division",
+    "Figures",
+    "Label",
+    "NumberedHole",
+    "Outline",
+    "Pattern",
+    "RollLine",
+    "Rulings",
+    "WitnessMark",
+]
 
 
 @dataclass(frozen=True)

@@ -154,7 +154,11 @@ def pattern_of(
         lines=lines,
         divisions=rows,
         marks=tuple(marks),
-        facts=wording.facts if bends is None else (*wording.facts[:-1], *bends.facts(mirror=view.mirror), *wording.facts[-1:]),
+        facts=(
+            *wording.facts[:-1],
+            *(() if bends is None else bends.facts(mirror=view.mirror)),
+            *wording.facts[-1:],
+        ),
         datum=wording.datum,
         full_lines=wording.full_lines or bends is not None,
         rulings=Rulings(dense.a, dense.b, np.diff(dense.turn, prepend=dense.turn[0]), dense.u_a, distance),

@@ -17,6 +17,8 @@ from develop.surfaces.plane import PlaneCurve, plane_curve
 
 __all__ = ["parts_of"]
 
+# Number of a part in the ring, its span, and where the first of those alike lies when it covers this one.
+_Place = tuple[int, tuple[float, float] | None, Frame]
 _PLACES = 48
 _ALIKE = 1e-6  # [mm]
 _ALONG = 1e-12  # of the way round: two places are one
@@ -81,10 +83,9 @@ def parts_of(
             frame = first.like(other)
             assert frame is not None
             frames.append(frame)
+        every = [(i + 1, spans[i], frame) for i, frame in zip(group, frames, strict=True)]
         if span is not None:
-            every = [(spans[i], frame) for i, frame in zip(group, frames, strict=True)]
             plate = replace(plate, marks=_part_marks(inner, every, others))
-        several = any("/" in mark.text for mark in plate.marks)
         over = sum(float(np.linalg.det(frame.axes[:2, :2])) < 0.0 for frame in frames)
         turned = f"; {over * quantity} of them turned over" if over else ""
         pattern = pattern_of_plate(
@@ -95,10 +96,13 @@ def parts_of(
             facts=(
                 f"{title}{which}",
                 *facts,
-                *(("a mark of several words has one for each place of the part",) if several else ()),
+                *(("marks of all places of this part: see their table",) if len(group) > 1 else ()),
                 f"quantity {count}, drawn facing END B{turned}",
             ),
-            figures=_figures(line, here, plate.shift, None if span is None else span[0]),
+            figures=(
+                *_figures(line, here, plate.shift, None if span is None else span[0]),
+                *_places_of(inner, every),
+            ),
         )
         parts.append(Part(pattern, solid, tuple(frames)))
     return tuple(parts)
@@ -170,7 +174,9 @@ def _plate(
         # In the quarters between the centre lines.
         low_high = np.array([[[x, y], [x, y + 0.4]] for y in (0.05, -0.45) for x in (-0.22, 0.22)])
         flat = low_high * [inner.width, inner.height]
-        return Plate(closed("outer", rim), openings, (), cross, np.concatenate([flat, places]), thin, numbered)
+        return Plate(
+            closed("outer", rim), openings, (), cross, np.concatenate([flat, places]), thin, numbered
+        )
     marks = tuple(m for _, m in direction_marks(inner, "inner", outward=True, others=_new(others)))
     openings = (closed("inner", plane_curve(inner)), *openings)
     return Plate(closed("outer", rim), openings, marks, (), places, thin, numbered)
@@ -191,18 +197,18 @@ def _set_out(
 
 def _part_marks(
     inner: Section,
-    places: Sequence[tuple[tuple[float, float] | None, Frame]],
+    places: Sequence[_Place],
     others: Sequence[tuple[float, str]],
 ) -> tuple[WitnessMark, ...]:
     """The marks of a part, their running lengths from its end 1.
 
-    places: the span of every part that is alike, with where the first one lies when it covers that one.
-    What is marked at one place of several of them is one mark with all their words.
+    What is marked at one point of several of the places is one mark with all their different words; where
+    it holds for some of the places alone their numbers stand after it.
     """
     marked = direction_marks(inner, "inner", outward=True, others=_new(others))
     near = _ALONG * inner.period
-    found: list[WitnessMark] = []
-    for span, frame in places:
+    found: list[tuple[WitnessMark, list[tuple[str, int]]]] = []
+    for number, span, frame in places:
         assert span is not None
         arcs = inner.arc(np.array(span))
         length = float(arcs[1] - arcs[0])
@@ -215,12 +221,35 @@ def _part_marks(
             arc = float(inner.arc(np.array([span[0] + max(past, 0.0)]))[0] - arcs[0])
             at = turn @ (mark.at - shift)
             arc = length - arc if over else arc
-            same = next((n for n, each in enumerate(found) if np.abs(each.at - at).max() < _ALIKE), None)
-            if same is None:
-                found.append(WitnessMark(at, turn @ mark.inward, mark.text, mark.edge, arc))
-            else:
-                found[same] = replace(found[same], text=f"{found[same].text}/{mark.text}")
-    return tuple(found)
+            words = next((words for each, words in found if np.abs(each.at - at).max() < _ALIKE), None)
+            if words is None:
+                words = []
+                found.append((WitnessMark(at, turn @ mark.inward, "", mark.edge, arc), words))
+            words.append((mark.text, number))
+    return tuple(replace(mark, text=_joined(words, len(places))) for mark, words in found)
+
+
+def _joined(words: Sequence[tuple[str, int]], places: int) -> str:
+    """The words at a mark, each with the numbers of its places unless all places have one there."""
+    if len(words) == places:
+        return "/".join(dict.fromkeys(word for word, _ in words))
+    return "/".join(f"{word} {number}" for word, number in words)
+
+
+def _places_of(inner: Section, places: Sequence[_Place]) -> tuple[Figures, ...]:
+    """Where the parts that are alike stand in the ring, in degrees anticlockwise facing END B."""
+    if len(places) < 2:
+        return ()
+    rows = []
+    for number, span, frame in places:
+        assert span is not None
+        over = float(np.linalg.det(frame.axes[:2, :2])) < 0.0
+        ends = np.degrees(inner.direction(np.array(span[::-1] if over else span)))
+        rows.append(
+            (str(number), *(f"{round(d, 1) % 360.0:.1f}" for d in ends.tolist()), "yes" if over else "no")
+        )
+    heads = (("place", "no."), ("END 1", "degrees"), ("END 2", "degrees"), ("turned", "over"))
+    return (Figures("Places of the part", heads, tuple(rows)),)
 
 
 def _new(others: Sequence[tuple[float, str]]) -> list[tuple[float, str]]:
@@ -261,8 +290,8 @@ def _figures(line: Parallel, holes: Array, shift: Array, start: float | None) ->
         return ()
     arcs = line.arc(holes) - line.arc(holes[:1] if start is None else np.array([start]))
     rows = [
-        (str(n + 1), float(arcs[n]), float(x), float(y))
-        for n, (x, y) in enumerate(line.point(holes) + shift)
+        (str(n + 1), float(arcs[n]), float(x), float(y)) for n, (x, y) in enumerate(line.point(holes) + shift)
     ]
-    heads = (("hole", "no."), ("along pitch line", f"from {'hole 1' if start is None else 'END 1'}"), ("centre", "x"), ("centre", "y"))
+    origin = "hole 1" if start is None else "END 1"
+    heads = (("hole", "no."), ("along pitch line", f"from {origin}"), ("centre", "x"), ("centre", "y"))
     return (Figures("Centres of the holes", heads, tuple(rows)),)

@@ -17,9 +17,9 @@ if TYPE_CHECKING:
 
 __all__ = ["OPPOSITE", "builds_of", "mirrored", "opposite"]
 
-# Sheets that differ by less are one: places [mm], turns at roll lines [rad]. Chords of curves keep within
-# [mm]; points compared on each.
-_SAME, _SAME_TURN = 1e-3, 1e-6
+# Sheets that differ by less [mm] are one; turns at roll lines are compared at the end of a lever [mm].
+_SAME, _LEVER = 1e-3, 1e3
+# Chords of curves keep within [mm]; points compared on each.
 _CHORDS, _POINTS = 1e-4, 65
 
 OPPOSITE = "-opposite-hand"
@@ -100,10 +100,12 @@ def _same(one: Pattern, other: Pattern) -> bool:
         if len(set(nearest.tolist())) < len(holes):
             return False
         mine, yours = [*mine, *holes], [*yours, *(other_holes[k] for k in nearest)]
-    turns = ([line.turn for line in pattern.lines] for pattern in (one, other))
+    mine.append(_LEVER * np.array([[line.turn] for line in one.lines]))
+    yours.append(_LEVER * np.array([[line.turn] for line in other.lines]))
     return all(
-        a.shape == b.shape and float(np.abs(a - b).max()) < _SAME for a, b in zip(mine, yours, strict=True)
-    ) and bool(np.allclose(*turns, rtol=0.0, atol=_SAME_TURN))
+        a.shape == b.shape and float(np.abs(a - b).max(initial=0.0)) < _SAME
+        for a, b in zip(mine, yours, strict=True)
+    )
 
 
 def _along(curve: Curve) -> Array:
@@ -125,7 +127,7 @@ def _middles(outlines: Sequence[Array]) -> Array:
 def _both(piece: Piece, count: int, units: str) -> Built:
     """The piece with so many more as there are of the opposite hand, which its patterns say."""
     drawn: int = getattr(piece, "quantity", 1)
-    built = replace(piece, quantity=drawn + count).build(units=units)  # type: ignore[type-var, call-arg]
+    built = replace(piece, quantity=drawn + count).build(units=units)  # type: ignore[type-var]
     words = f"both hands are alike: pieces as drawn {drawn}, of opposite hand {count}"
     return replace(_said(built, words, after=2), both_hands=True)
 

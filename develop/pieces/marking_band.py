@@ -132,8 +132,7 @@ class MarkingBand(Marked):
         other = {"outside": ", or joint = set-in", "inside": ", or joint = set-on"}.get(given, "")
         raise Refusal(
             field="thickness",
-            given=f"not given, but the hole of a pipe that is {self.joint} is its {hole}, and the pipe's size is "
-            f"{where}",
+            given=f"not given, but the hole of a pipe {self.joint} is its {hole}, and its size is {where}",
             allowed=f"the pipe's wall thickness{other}",
         )
 
@@ -223,10 +222,13 @@ class MarkingBand(Marked):
         if self.onto is None:
             return ()
         joint = {
-            "set-on": "set-on: END B stands on the header's outside",
-            "set-in": "set-in: END B is at the header's outside; leave on beyond it what reaches through the wall",
+            "set-on": ("set-on: END B stands on the header's outside",),
+            "set-in": (
+                "set-in: END B is at the header's outside",
+                "leave on beyond END B what goes through the wall",
+            ),
         }[self.joint]
-        return (joint, SIDES) if self.onto.off_centre else (joint,)
+        return (*joint, SIDES) if self.onto.off_centre else joint
 
     def _seam_words(self) -> tuple[str, str]:
         """What the left and the right side say of how the band closes."""

@@ -9,12 +9,11 @@ __all__ = ["odd_reading"]
 
 # Less than this part of a diameter is rounding.
 _SAME = 1e-9
+_DIGITS = 6  # of a change [mm] that is as good as another
 _HALF_TURN = 180.0
 
 
-def odd_reading(
-    directions: Sequence[float], diameters: Sequence[float]
-) -> tuple[int, float, float] | None:
+def odd_reading(directions: Sequence[float], diameters: Sequence[float]) -> tuple[int, float, float] | None:
     """The reading that makes a hollow: its number, and the least and greatest diameter [mm] that the
     others leave it, inf where they set no bound; None where no single reading is at fault.
 
@@ -22,21 +21,21 @@ def odd_reading(
     curve between two parallel jaws, a support function: of three directions the middle one has at most
     w(b) = [w(a) sin(c - b) + w(c) sin(b - a)] / sin(c - a), as the tangents at a and c meet there
     (Minkowski: supports are sublinear). The same for the outer ones says how small a reading may be.
-    Of the readings that, left out, leave a possible curve it is the one that lies farthest outside of
-    what they allow, in parts of itself: of two that would have to grow alike the smaller one.
+    Of the readings that, left out, leave a possible curve it is the one that least has to change; of two
+    that have to change alike, the smaller.
     """
     readings = list(zip(directions, diameters, strict=True))
-    worst: tuple[float, int, float, float] | None = None
+    found: list[tuple[float, float, int, float, float]] = []
     for i, (at, size) in enumerate(readings):
         # The others, from the one after it to the one before it a half turn on.
         others = readings[i + 1 :] + [(d + _HALF_TURN, w) for d, w in readings[:i]]
         if len(others) < 2 or _violated(others):
             continue
         low, high = _range(at + _HALF_TURN, others)
-        off = max(low - size, size - high) / size
-        if low <= high and off > _SAME and (worst is None or off > worst[0]):
-            worst = (off, i, low, high)
-    return worst[1:] if worst else None
+        off = max(low - size, size - high)
+        if low <= high and off > _SAME * size:
+            found.append((round(off, _DIGITS), size, i, low, high))
+    return min(found)[2:] if found else None
 
 
 def _violated(readings: list[tuple[float, float]]) -> bool:
