@@ -152,7 +152,7 @@ def flat_picture(parts: Sequence[Part], title: str) -> bytes:
             axes.text(
                 float(word.end[0]), float(word.end[1]), word.text,
                 fontsize=_TYPE, weight="bold", color=_EDGE, ha="center", va="center",
-                zorder=4.0, bbox={"facecolor": "white", "edgecolor": "none", "pad": 1.0} if plates else None,
+                zorder=4.0, bbox={"facecolor": "white", "edgecolor": "none", "pad": 1.0},
             )  # fmt: skip
         pad = (0.03 if plates else 0.12) * float((high_end - low_end).max())
         axes.set_xlim(low_end[0] - pad, high_end[0] + pad)
