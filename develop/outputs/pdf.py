@@ -20,7 +20,7 @@ from develop.outputs.panel import Panel, panels
 from develop.outputs.tape import MARGIN, paper, tape_pages
 from develop.pattern.curve import Array
 from develop.pattern.drawing import draw
-from develop.pattern.lettering import boxes_of
+from develop.pattern.lettering import Boxes, arrow_box, boxes_of
 from develop.pattern.pattern import Pattern
 
 if TYPE_CHECKING:
@@ -145,16 +145,18 @@ def _arranged(pattern: Pattern) -> _Sheet:
 
 
 def _reaches(pattern: Pattern, sheet: _Sheet) -> Array:
-    """How far each label and each block beside the pattern reaches on the sheet: least and greatest x and y,
-    (n, 2, 2) [mm]."""
+    """How far each label, arrow and block beside the pattern reaches on the sheet: least and greatest x
+    and y, (n, 2, 2) [mm]."""
     found = [
         [[sheet.corner[0] + left, sheet.corner[1] - down - block.high],
          [sheet.corner[0] + left + block.wide, sheet.corner[1] - down]]
         for block, left, down in sheet.panel.blocks
     ]  # fmt: skip
-    if not pattern.labels:
+    every = [boxes_of(pattern.labels)] if pattern.labels else []
+    every += [arrow_box(arrow, text) for arrow, text in pattern.arrows]
+    if not every:
         return np.array(found)
-    boxes = boxes_of(pattern.labels)
+    boxes = Boxes(*(np.vstack(parts) for parts in zip(*every, strict=True)))
     cos, sin = np.abs(boxes.along).T[..., None]
     reach = boxes.half * cos + boxes.half[:, ::-1] * sin
     middle = boxes.centre + sheet.pattern

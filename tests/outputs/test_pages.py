@@ -58,7 +58,8 @@ def test_every_label_of_a_large_sheet_is_whole_on_one_page(girth: int) -> None:
     pattern = lettered(make("straight", section=f"round girth {girth}", length=1500).patterns[0])
     sheet = _arranged(pattern)
     reaches = _reaches(pattern, sheet)
-    assert len(reaches) == len(sheet.panel.blocks) + len(pattern.labels)
+    assert pattern.arrows
+    assert len(reaches) > len(sheet.panel.blocks) + len(pattern.labels)
     pages = parted(sheet.wide, LARGEST, OVERLAP, reaches[:, :, 0].tolist())
     assert len(pages) > 1
     assert not cut(pages, reaches[:, :, 0].tolist())
