@@ -61,7 +61,7 @@ def test_a_kind_has_its_own_fields_first_and_then_the_common_ones(name: str) -> 
 
 def test_a_marking_band_has_no_plate_fields() -> None:
     assert {each.name for each in fields_of(kind_of("marking-band"))} == {
-        "section", "cut", "onto", "paper", "face", "lap", "narrowest", "mark", "quantity", "opposite_hand", "thickness",
+        "section", "cut", "onto", "joint", "paper", "face", "lap", "narrowest", "mark", "quantity", "opposite_hand", "thickness",
         "sizes", "seam_at", "divisions",
     }  # fmt: skip
 

@@ -100,6 +100,9 @@ def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
     from develop.solid import Frame
 
     found = list(checks_of(builds[0]))
+    if builds[0].both_hands:
+        own = [(part.solid, part.frames or (Frame.square(),)) for part in builds[0].parts]
+        found.append(check_hand("both hands", own, own))
     for other in builds[1:]:
         mark = other.patterns[0].mark
         found += [replace(each, name=f"{mark}: {each.name}") for each in checks_of(other)]
@@ -134,6 +137,11 @@ def checks_of(built: Built) -> tuple[Check, ...]:
     return tuple(found)
 
 
+def _plate_title(mark: str, facts: Sequence[str]) -> str:
+    """The mark with the size, and how a plate slopes where it does."""
+    return "\n".join((f"{mark}: {facts[0]}", *(each for each in facts if each.startswith("slope "))))
+
+
 def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
@@ -156,12 +164,12 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         return {f"{mark}.json": data}
     from develop.solid import Patch, Solid
 
-    title = f"{mark}: {patterns[0].facts[1]}"
     solid = builds[0].solid
     if not isinstance(solid, Solid):
         from develop.outputs.flat_picture import flat_picture
 
-        return {f"{mark}.png": flat_picture(builds[0].parts, title)}
+        return {f"{mark}.png": flat_picture(builds[0].parts, _plate_title(mark, patterns[0].facts[1:]))}
+    title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
     from develop.checks import folded_on
     from develop.outputs.picture import picture
 
@@ -171,7 +179,12 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         if part.frames and isinstance(part.solid, Solid) and part.solid.openings
     ]
     if not headers:
-        return {f"{mark}.png": picture(builds[0].placed, patterns[0].facts[:4])}
+        own = builds[0].patterns
+        facts = patterns[0].facts[1:4]
+        if own[0].mark != mark:
+            # Of several parts only what all say is true of the piece.
+            facts = tuple(each for each in own[0].facts[1:] if all(each in one.facts for one in own))[:2]
+        return {f"{mark}.png": picture(builds[0].placed, (title, *facts))}
     # What stands on a header has ends of its own: A and B are the header's, the others have their mark.
     others = [
         part
@@ -180,7 +193,6 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
     ]
     placed = [each for part in (*headers, *others) for each in replace(builds[0], parts=(part,)).placed]
     names = [part.pattern.mark for part in others for _ in part.frames]
-    title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
     # Plates that lie on a header are shown by their edges on its wall.
     plates = [
         folded_on(part.pattern, part.solid.under, curve.polyline(0.2))

@@ -68,7 +68,8 @@ def _texts(pattern: Pattern) -> list[str]:
         "PRINT AT ACTUAL SIZE (100 %), not fitted to the paper; then measure the check square both ways."
         " Paper stretches: where it matters, mark out from the table.",
         f"All figures in {'inches' if pattern.units == 'in' else 'mm'}; x from the datum line x = 0 at the"
-        " left, y from the datum line y = 0 at the bottom; running lengths along the edge from line 0.",
+        " left, y from the datum line y = 0 at the bottom"
+        + ("; running lengths along END A and END B from line 0." if pattern.divisions else "."),
         f"Measured from: {pattern.datum}." if pattern.datum else "",
         "Cut on the middle of the thick line.",
         *CAUTIONS,

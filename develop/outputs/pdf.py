@@ -15,10 +15,12 @@ import numpy as np
 
 from develop.outputs.fonts import FACE, register
 from develop.outputs.ink import POINT, Ink, PatternPen
+from develop.outputs.pages import count, parted
 from develop.outputs.panel import Panel, panels
 from develop.outputs.tape import MARGIN, paper, tape_pages
 from develop.pattern.curve import Array
 from develop.pattern.drawing import draw
+from develop.pattern.lettering import Boxes, arrow_box, boxes_of
 from develop.pattern.pattern import Pattern
 
 if TYPE_CHECKING:
@@ -130,7 +132,7 @@ def _arranged(pattern: Pattern) -> _Sheet:
 
     def cost(choice: tuple[tuple[float, float], Panel, bool]) -> tuple[int, float]:
         (w, h), _, _ = choice
-        return _count(w, inner) * _count(h, inner), w * h * (max(w, h) / min(w, h)) ** 0.25
+        return count(w, inner, _OVERLAP) * count(h, inner, _OVERLAP), w * h * (max(w, h) / min(w, h)) ** 0.25
 
     (w, h), panel, is_beside = min(choices, key=cost)
     top = h - _AROUND - float(high[1])
@@ -142,21 +144,35 @@ def _arranged(pattern: Pattern) -> _Sheet:
     return _Sheet(w, h, (_AROUND - float(low[0]), top), (low, high), panel, corner)
 
 
-def _count(size: float, inner: float) -> int:
-    """How many pages of `inner` a sheet of this size takes in one direction."""
-    return 1 if size <= inner else math.ceil((size - _OVERLAP) / (inner - _OVERLAP))
+def _reaches(pattern: Pattern, sheet: _Sheet) -> Array:
+    """How far each label, arrow and block beside the pattern reaches on the sheet: least and greatest x
+    and y, (n, 2, 2) [mm]."""
+    found = [
+        [[sheet.corner[0] + left, sheet.corner[1] - down - block.high],
+         [sheet.corner[0] + left + block.wide, sheet.corner[1] - down]]
+        for block, left, down in sheet.panel.blocks
+    ]  # fmt: skip
+    every = [boxes_of(pattern.labels)] if pattern.labels else []
+    every += [arrow_box(arrow, text) for arrow, text in pattern.arrows]
+    if not every:
+        return np.array(found)
+    boxes = Boxes(*(np.vstack(parts) for parts in zip(*every, strict=True)))
+    cos, sin = np.abs(boxes.along).T[..., None]
+    reach = boxes.half * cos + boxes.half[:, ::-1] * sin
+    middle = boxes.centre + sheet.pattern
+    return np.concatenate([found, np.stack([middle - reach, middle + reach], axis=1)])
 
 
 def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> int:
     """All pages of one sheet, from the top left, along the rows; returns how many they are."""
     inner = _LARGEST - 2.0 * _MARGIN - _STRIP
-    columns, rows = _count(sheet.wide, inner), _count(sheet.high, inner)
-    wide = math.ceil((sheet.wide + (columns - 1) * _OVERLAP) / columns)
-    high = math.ceil((sheet.high + (rows - 1) * _OVERLAP) / rows)
-    for row in range(rows):
-        for column in range(columns):
-            left = column * (wide - _OVERLAP)
-            bottom = sheet.high - row * (high - _OVERLAP) - high
+    reaches = _reaches(pattern, sheet)
+    across = parted(sheet.wide, inner, _OVERLAP, reaches[:, :, 0].tolist())
+    down = parted(sheet.high, inner, _OVERLAP, (sheet.high - reaches[:, ::-1, 1]).tolist())
+    columns, rows = len(across), len(down)
+    for row, (top, high) in enumerate(down):
+        bottom = sheet.high - top - high
+        for column, (left, wide) in enumerate(across):
             canvas.setPageSize(((wide + 2.0 * _MARGIN) * POINT, (high + _STRIP + 2.0 * _MARGIN) * POINT))
             ink = Ink(canvas, (left, bottom, wide, high + _STRIP), _MARGIN)
             ink.text(left, bottom + high + 4.0, _heading(pattern, row, column, rows, columns), 4.0)

@@ -28,7 +28,7 @@ _TEXT = 3.0  # read at a table, not from an arm's length
 _VIEW = 92.0  # [mm] width of the view of directions
 _MANY = 12  # rows of witness marks that do not stand beside the view any more
 _SAME = 1e-6  # [mm]
-_FEW = 3  # rows of a table that are not worth a beginning at the foot of a page
+_FEW = 3  # rows of a table that are worth a place of their own at the foot or the head of a page
 
 
 @dataclass(frozen=True)
@@ -95,8 +95,11 @@ class _Flow:
         """The rows of a table, on as many pages as they take."""
         first, count = 0, len(grid.table.rows)
         while first < count:
-            some = min(grid.fits(self._high - self._down), count - first)
-            if self._down and some < min(_FEW, count - first):
+            left = count - first
+            some = min(grid.fits(self._high - self._down), left)
+            if some < left < some + _FEW:
+                some = left - _FEW
+            if self._down and some < min(_FEW, left):
                 self._turn()
                 continue
             self.block(grid.part(first, max(1, some)))
@@ -113,8 +116,7 @@ def _texts(pattern: Pattern) -> list[str]:
     return [
         f"All figures in {figures}. Strike the datum lines x = 0, at the left, and"
         " y = 0, at the bottom, square to each other; lay off x and y of each point from them, then draw each"
-        " edge through its points, a smooth curve but for straight sides and corners."
-        + (" Running lengths go along the edge, all from line 0." if pattern.divisions else ""),
+        " edge through its points, a smooth curve but for straight sides and corners." + _running(pattern),
         *_seam_and_flow(pattern),
         *_lap_corners(pattern),
         f"Measured from: {pattern.datum}.",
@@ -122,6 +124,16 @@ def _texts(pattern: Pattern) -> list[str]:
         "The check square stands on the large sheet and is for that sheet; these figures hold at any scale.",
         *CAUTIONS,
     ]
+
+
+def _running(pattern: Pattern) -> str:
+    """Where the running lengths start."""
+    if pattern.divisions:
+        round_openings = ", round an opening from its point 1" if pattern.openings else ""
+        return f" Running lengths go along END A and END B from line 0{round_openings}."
+    if pattern.net.curve("end_1") is not None:
+        return " Running lengths of marks go along the edge from END 1, those of the outline from point 1."
+    return " Running lengths go along each edge from its point 1."
 
 
 def _seam_and_flow(pattern: Pattern) -> list[str]:

@@ -10,10 +10,17 @@ from typing import Protocol
 
 import numpy as np
 
+from develop.pattern.chain import length_of, stretch
 from develop.pattern.curve import Array, Curve
 from develop.pattern.lettering import Boxes, arrow_box, arrow_label, boxes_of, text_height
 from develop.pattern.pattern import Label, Outline, Pattern
-from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
+from develop.pattern.strokes import (
+    arrow_strokes,
+    hole_strokes,
+    roll_strokes,
+    witness_lengths,
+    witness_strokes,
+)
 from develop.pattern.ties import between_ties
 
 __all__ = [
@@ -36,6 +43,9 @@ PRESS_LINES = "press-lines"
 FOLD_LINES = "fold-lines"
 WITNESS_MARKS = "witness-marks"
 TEXT = "text"
+# A little air round text, in proportion to it: a quarter of its box's lesser side.
+_AIR = 0.25
+_MOST_STEPS = 20_000  # along a line that text interrupts
 _ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
 LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, FOLD_LINES, WITNESS_MARKS, TEXT)
 
@@ -62,7 +72,7 @@ class Pen(Protocol):
 def draw(pattern: Pattern, pen: Pen) -> None:
     """Draw the pattern with the pen, layer by layer; a layer without content is not named.
 
-    Roll lines stop short of any text that stands on them.
+    Roll lines and thin lines stop short of any text that stands on them.
     """
     pen.layer(CUT)
     pen.contour(pattern.cut)
@@ -96,13 +106,16 @@ def draw(pattern: Pattern, pen: Pen) -> None:
         pen.layer(FOLD_LINES)
         for curve in pattern.folds:
             pen.curve(curve, dashed=True)
-    marks = witness_strokes(pattern.marks, lengths)
-    if len(marks) or pattern.dashed:
+    marks = np.concatenate([witness_strokes(pattern.marks, lengths), hole_strokes(pattern.holes)])
+    if len(marks) or pattern.dashed or pattern.thin:
         pen.layer(WITNESS_MARKS)
         for start, end in marks:
             pen.line(start, end)
         for curve in pattern.dashed:
             pen.curve(curve, dashed=True)
+        for curve in pattern.thin:
+            for part in _outside(curve, _text_boxes(pattern)):
+                pen.curve(part, dashed=False)
     if pattern.labels or pattern.arrows:
         pen.layer(TEXT)
         for label in pattern.labels:
@@ -140,6 +153,32 @@ def _text_boxes(pattern: Pattern) -> Boxes:
     return Boxes(*(np.vstack(parts) for parts in zip(*boxes, strict=True)))
 
 
+def _outside(curve: Curve, boxes: Boxes) -> list[Curve]:
+    """The parts of a curve that lie in no box."""
+    if not len(boxes.centre):
+        return [curve]
+    points = curve.polyline(_ON_LINE)
+    sums = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(points, axis=0).T))])
+    steps = int(np.ceil(8.0 * sums[-1] / boxes.half.min())) + 1
+    at = np.linspace(0.0, sums[-1], min(steps, _MOST_STEPS))
+    gap = np.stack([np.interp(at, sums, points[:, k]) for k in (0, 1)], axis=1)[:, None] - boxes.centre
+    across = np.stack([-boxes.along[:, 1], boxes.along[:, 0]], axis=1)
+    half = boxes.half + _AIR * boxes.half.min(axis=1)[:, None]
+    hidden = np.abs((gap * boxes.along).sum(axis=-1)) < half[:, 0]
+    hidden &= np.abs((gap * across).sum(axis=-1)) < half[:, 1]
+    seen = np.concatenate([[0], ~hidden.any(axis=1), [0]]).astype(int)
+    if seen[1:-1].all():
+        return [curve]
+    ends = np.concatenate([[0.0], np.cumsum(length_of(curve.pieces, np.ones(len(curve.pieces))))])
+    scale = ends[-1] / sums[-1]
+    first, last = np.flatnonzero(np.diff(seen) > 0), np.flatnonzero(np.diff(seen) < 0) - 1
+    return [
+        stretch(curve, float(at[i] * scale), float(min(at[j] * scale, ends[-1])))
+        for i, j in zip(first, last, strict=True)
+        if j > i
+    ]
+
+
 def _around(strokes: Array, boxes: Boxes, *, least: float) -> Array:
     """The strokes (n, 2, 2) without what lies in a box or close to it, (k, 2, 2).
 
@@ -147,8 +186,7 @@ def _around(strokes: Array, boxes: Boxes, *, least: float) -> Array:
     """
     if not len(strokes) or not len(boxes.centre):
         return strokes
-    # A little air, in proportion to the text: a quarter of the box's lesser side.
-    half = boxes.half + 0.25 * boxes.half.min(axis=1)[:, None]
+    half = boxes.half + _AIR * boxes.half.min(axis=1)[:, None]
     across = np.stack([-boxes.along[:, 1], boxes.along[:, 0]], axis=1)
     frame = np.stack([boxes.along, across], axis=1)  # (k, 2, 2)
     ends = np.einsum("kij,nekj->nkei", frame, strokes[:, :, None] - boxes.centre)

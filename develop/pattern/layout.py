@@ -17,12 +17,13 @@ import numpy as np
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.lettering import ASCENT, DESCENT, Boxes, arrow_box, text_height, text_width, upright
 from develop.pattern.numbering import Numbers
-from develop.pattern.pattern import Division, Label, Outline, Pattern, RollLine, WitnessMark
+from develop.pattern.pattern import Division, Label, NumberedHole, Outline, Pattern, RollLine, WitnessMark
 from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, left_of, rows_of
 
 __all__ = ["lay_out", "lettered"]
 
 _FLOW = "FLOW"
+_ENDS = ("END 1", "END 2")  # of a part of a ring
 _TINIEST = 0.02  # [mm]
 _LINE = 1.75  # from baseline to baseline over the height of capitals
 _MOST_OF_SEAM = 0.6  # share of a seam that a word along it takes, if it is legible so
@@ -43,6 +44,9 @@ def lettered(pattern: Pattern) -> Pattern:
         middle = between[np.lexsort((from_middle, -wide))[0]]
     seams = across[[0, 0, -1]].copy()
     seams[1] = middle
+    parted = [curve for curve in map(pattern.net.curve, ("end_1", "end_2")) if curve is not None]
+    if parted:
+        seams[0], seams[2] = ((curve.start, curve.end) for curve in parted)
     labels, arrows = lay_out(
         pattern.net,
         pattern.facts,
@@ -58,9 +62,10 @@ def lettered(pattern: Pattern) -> Pattern:
         places=None if rows else pattern.places,
         avoid=pattern.dashed,
         arrow=pattern.arrow,
-        seam_words=pattern.seam_words if rows else ("", ""),
+        seam_words=pattern.seam_words if rows else _ENDS if parted else ("", ""),
         cut=pattern.cut,
         lap_words=pattern.lap_words,
+        holes=pattern.holes,
     )
     return replace(pattern, labels=labels, arrows=arrows)
 
@@ -84,6 +89,7 @@ def lay_out(
     arrow: str = _FLOW,
     cut: Outline | None = None,
     lap_words: tuple[str, str] = ("LAP", "LAP"),
+    holes: Sequence[NumberedHole] = (),
 ) -> tuple[tuple[Label, ...], tuple[tuple[Array, str], ...]]:
     """Labels and arrows of a sheet, none over another, over a mark or over the outline.
 
@@ -95,7 +101,7 @@ def lay_out(
     openings: no word stands in them. places: lines (n, 2, 2) [mm] that words may stand on, where
     there are no divisions. arrow: the word at the arrow of the flow.
     seam_words: along the left and the right seam. cut: what leaves the shear; where it goes on
-    beyond a seam, lap_words say what that is.
+    beyond a seam, lap_words say what that is. holes: numbered beside each.
 
     What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
@@ -109,6 +115,7 @@ def lay_out(
     numbers = Numbers(divisions, marks, tick=height, height=max(SMALLEST, 0.5 * height), fans=fans)
     numbers.write_first(sheet)
     sheet.write(_end_words(net, height))
+    sheet.write(_hole_numbers(holes, max(SMALLEST, 0.5 * height)))
     if places is not None and not divisions:
         strip = _Strip(places[:, 0], places[:, 1])
     else:
@@ -213,6 +220,25 @@ def _end_words(net: Outline, height: float) -> list[Word]:
     # Edge b runs from right to left; so both words come to stand on the same side of the middle.
     ends = (("END A", net.curve("a"), _SHARES), ("END B", net.curve("b"), 1.0 - _SHARES))
     return [word(text, curve, shares) for text, curve, shares in ends if curve is not None]
+
+
+def _hole_numbers(holes: Sequence[NumberedHole], size: float) -> list[Word]:
+    """The number of each hole, beside it."""
+
+    def word(hole: NumberedHole) -> Word:
+        out, along = hole.outward, np.array([hole.outward[1], -hole.outward[0]])
+        text = str(hole.number)
+
+        def places(size: float) -> tuple[Array, Array]:
+            tall, wide = size * (ASCENT + DESCENT) / 2.0, text_width(text, size) / 2.0
+            off, beside = hole.radius + 0.5 * size + tall, hole.radius + 0.5 * size + wide
+            on = [s * off * out for s in (1.0, -1.0)]
+            on += [s * beside * along + t * tall * out for s in (1.0, -1.0) for t in (1.5, -1.5, 0.0)]
+            return hole.centre + np.array(on), np.full(len(on), upright(math.atan2(along[1], along[0])))
+
+        return Word(text, size, places)
+
+    return [word(hole) for hole in holes]
 
 
 def _facts(

@@ -18,6 +18,7 @@ __all__ = [
     "Division",
     "Figures",
     "Label",
+    "NumberedHole",
     "Outline",
     "Pattern",
     "RollLine",
@@ -106,6 +107,19 @@ class Figures:
 
 
 @dataclass(frozen=True)
+class NumberedHole:
+    """A round hole with its number in the table.
+
+    centre: (2,) [mm]. outward: unit vector square to the line that the holes stand on (2,). radius [mm].
+    """
+
+    number: int
+    centre: Array
+    outward: Array
+    radius: float
+
+
+@dataclass(frozen=True)
 class Label:
     """A line of text. at: middle of its baseline (2,) [mm]; angle anticlockwise [rad];
     height of its capitals [mm]."""
@@ -160,6 +174,8 @@ class Pattern:
         a rolled part has its divisions for that.
     figures: further tables. mass: of what is cut [kg], where material and thickness are known.
     labels, arrows: words and arrows (2, 2) with their place, once the pattern is lettered.
+    thin: lines to set out by, such as that of the bolt holes; they are not cut.
+    holes: those of the openings that have a number.
     datum: what the ordinates of the divisions are measured from, in words.
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
@@ -196,3 +212,5 @@ class Pattern:
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()
     mass: float | None = None
+    thin: tuple[Curve, ...] = ()
+    holes: tuple[NumberedHole, ...] = ()

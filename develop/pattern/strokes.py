@@ -11,11 +11,12 @@ import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.lettering import text_height
-from develop.pattern.pattern import Outline, RollLine, WitnessMark
+from develop.pattern.pattern import NumberedHole, Outline, RollLine, WitnessMark
 
-__all__ = ["arrow_strokes", "ring", "roll_strokes", "witness_lengths", "witness_strokes"]
+__all__ = ["arrow_strokes", "hole_strokes", "ring", "roll_strokes", "witness_lengths", "witness_strokes"]
 
 _SAME = 1e-6  # two points closer than this [mm] are one point of the sheet
+_OF_RADIUS = 0.6  # that the strokes of a hole's centre reach
 _NONE: Array = np.empty((0, 2, 2))
 
 
@@ -105,6 +106,15 @@ def _marked(points: Array, along: Array, marks: Sequence[WitnessMark], length: A
     # Within a degree of each other the two strokes would be one thick one.
     same &= along @ inward.T > 0.9998
     return np.asarray(np.where(same, length, 0.0).max(axis=1))
+
+
+def hole_strokes(holes: Sequence[NumberedHole]) -> Array:
+    """A stroke through the centre of each hole, square to the line that they stand on: with it a cross."""
+    if not holes:
+        return _NONE
+    half = np.array([_OF_RADIUS * hole.radius * hole.outward for hole in holes])
+    centre = np.array([hole.centre for hole in holes])
+    return np.stack([centre - half, centre + half], axis=1)
 
 
 def arrow_strokes(arrow: Array) -> Array:

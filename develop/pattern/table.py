@@ -84,4 +84,5 @@ def figures_table(figures: Figures, *, units: str = "mm") -> Table:
         )
         for row in figures.rows
     )
-    return Table(f"{figures.title} ({_UNITS[units]})", figures.heads, rows)
+    lengths = any(not isinstance(cell, str) for row in figures.rows for cell in row)
+    return Table(f"{figures.title} ({_UNITS[units]})" if lengths else figures.title, figures.heads, rows)

@@ -150,7 +150,7 @@ def pattern_of(
         for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
-    more = (*((bends.facts(),) if bends else ()), *added.facts)
+    more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)
     more += tuple(f"CAUTION: {each}" for each in added.warnings)
     return Pattern(
         mark=wording.mark,

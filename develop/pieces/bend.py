@@ -266,11 +266,12 @@ class Bend(Jointed):
             f"radius {short(radius)} to the axis",
             held="lengths and cuts",
             units=units,
-            place=(
-                f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}, throat at "
-                f"{direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}"
+            place=f"throat at {direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}",
+            more=(
+                f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}",
+                lengths,
+                f"throat width {short(width)}",
             ),
-            more=(lengths, f"throat width {short(width)}"),
         )
 
 

@@ -21,7 +21,7 @@ from develop.pieces.field_types import (
 )
 from develop.pieces.fields import Piece, about
 from develop.pieces.header import HEADER
-from develop.pieces.wording import direction_words, section_words, size_words
+from develop.pieces.wording import SIDES, direction_words, off_centre_words, section_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -40,6 +40,8 @@ __all__ = ["Branch"]
 # How far an overhang may be rounding [mm].
 _TANGENT = 1e-9
 _HALVINGS = 70
+# Less than this over its length a line of centres does not slope.
+_SLOPING = 1e-9
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
@@ -342,11 +344,24 @@ class Branch(Jointed):
         return tuple(each for each in (self.branch, self.header) if isinstance(each, SectionSpec))
 
     def _leaning(self) -> str:
-        return f"{number_text(round(degrees(self.angle), 6))}° to the header's axis"
+        line = "axis" if isinstance(self.header, SectionSpec) else self._centre_line()
+        return f"{number_text(round(degrees(self.angle), 6))}° to the header's {line}"
+
+    def _centre_line(self) -> str:
+        """What the angle is measured to, on a tapered header."""
+        import numpy as np
+
+        header = self._header()
+        sloping = float(np.abs(header.centre(header.length)[:2]).max()) > _SLOPING * header.length
+        return "sloping line of centres" if sloping else "axis"
+
+    @property
+    def _sides(self) -> tuple[str, ...]:
+        return (SIDES,) if self.off_centre else ()
 
     def _where(self, units: str) -> str:
         """How the branch stands on the header, in words."""
-        off = f", {size_words(self.off_centre, units)} off centre" if self.off_centre else ""
+        off = f", {off_centre_words(self.off_centre, units)}" if self.off_centre else ""
         return f"{self._leaning()}, leaves at {direction_words(self.leaves_at)}{off}, {self.joint}"
 
     def _branch_part(
@@ -386,7 +401,10 @@ class Branch(Jointed):
             place=f"into header {self._header_words(units)}, {self._where(units)}",
             held="lengths and joint",
             units=units,
-            more=(words, "END B: the free end") if flange else (f"{words}; END B: the free end",),
+            more=(
+                *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
+                *self._sides,
+            ),
         )
         pattern = pattern_of(
             sheet,
@@ -448,6 +466,7 @@ class Branch(Jointed):
             place=f"opening for branch {section_words(self.branch, units)}, {opening}, {self._where(units)}",
             held="length and opening",
             units=units,
+            more=self._sides,
         )
         end = Plane(self.centre_to_end, np.zeros(2))
         cutter = Cylinder(section, through, end, 0.0, through.breaks(section)).sheet(seams[0])

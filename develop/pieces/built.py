@@ -48,11 +48,15 @@ class Joint:
 
 @dataclass(frozen=True)
 class Built:
-    """The parts of one piece, the joints between them, and what whoever makes it is to be warned of."""
+    """The parts of one piece, the joints between them, and what whoever makes it is to be warned of.
+
+    both_hands: the piece is its own mirror image, and serves as its opposite hand too.
+    """
 
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
     warned: tuple[str, ...] = ()
+    both_hands: bool = False
 
     @property
     def warnings(self) -> tuple[str, ...]:

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import pi
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve, segment
-from develop.pattern.pattern import Figures, Outline, Pattern, Rulings, WitnessMark
+from develop.pattern.pattern import Figures, NumberedHole, Outline, Pattern, Rulings, WitnessMark
 from develop.sections.ellipse import Ellipse
 from develop.sections.section import Section
 from develop.surfaces.plane import PlaneCurve, plane_curve
@@ -38,7 +38,7 @@ DIRECTIONS: tuple[tuple[float, str], ...] = (
 class Plate:
     """A flat plate in its own coordinates, before it is put between the datum lines.
 
-    marks, dashed, places and figures: as the pattern has them. figures that name coordinates are
+    marks, dashed, places, thin and holes: as the pattern has them. Figures that name coordinates are
     made once the shift is known.
     """
 
@@ -47,6 +47,8 @@ class Plate:
     marks: tuple[WitnessMark, ...]
     dashed: tuple[Curve, ...]
     places: Array
+    thin: tuple[Curve, ...] = ()
+    holes: tuple[NumberedHole, ...] = ()
 
     @property
     def shift(self) -> Array:
@@ -141,6 +143,8 @@ def pattern_of_plate(
         arrow=arrow,
         places=plate.places + shift,
         figures=figures,
+        thin=tuple(curve.moved(turn=np.eye(2), shift=shift) for curve in plate.thin),
+        holes=tuple(replace(hole, centre=hole.centre + shift) for hole in plate.holes),
     )
 
 

@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve, segment
-from develop.pattern.pattern import Figures, Outline
+from develop.pattern.pattern import Figures, NumberedHole, Outline, WitnessMark
 from develop.pieces.built import Part
 from develop.pieces.flat import Plate, closed, direction_marks, drawn, holes_at, pattern_of_plate
 from develop.sections.section import Parallel, Section
@@ -16,8 +17,11 @@ from develop.surfaces.plane import PlaneCurve, plane_curve
 
 __all__ = ["parts_of"]
 
+# Number of a part in the ring, its span, and where the first of those alike lies when it covers this one.
+_Place = tuple[int, tuple[float, float] | None, Frame]
 _PLACES = 48
 _ALIKE = 1e-6  # [mm]
+_ALONG = 1e-12  # of the way round: two places are one
 _SAMPLES = 33
 
 
@@ -58,7 +62,7 @@ def parts_of(
     for number, group in enumerate(groups, start=1):
         span, first = spans[group[0]], shapes[group[0]]
         here = holes if span is None else _here(inner, holes, span)
-        plate = _plate(inner, width, line, here, radius, span, blank, others if len(group) == 1 else None)
+        plate = _plate(inner, width, line, here, radius, span, blank, others)
         name = mark if len(groups) == 1 else f"{mark}-{number}"
         count = quantity * len(group)
         which = f", {len(group)} alike of the {len(spans)} parts of the ring" if ends is not None else ""
@@ -79,6 +83,9 @@ def parts_of(
             frame = first.like(other)
             assert frame is not None
             frames.append(frame)
+        every = [(i + 1, spans[i], frame) for i, frame in zip(group, frames, strict=True)]
+        if span is not None:
+            plate = replace(plate, marks=_part_marks(inner, every, others))
         over = sum(float(np.linalg.det(frame.axes[:2, :2])) < 0.0 for frame in frames)
         turned = f"; {over * quantity} of them turned over" if over else ""
         pattern = pattern_of_plate(
@@ -89,9 +96,13 @@ def parts_of(
             facts=(
                 f"{title}{which}",
                 *facts,
+                *(("marks of all places of this part: see their table",) if len(group) > 1 else ()),
                 f"quantity {count}, drawn facing END B{turned}",
             ),
-            figures=_figures(line, here, plate.shift),
+            figures=(
+                *_figures(line, here, plate.shift, None if span is None else span[0]),
+                *_places_of(inner, every),
+            ),
         )
         parts.append(Part(pattern, solid, tuple(frames)))
     return tuple(parts)
@@ -143,18 +154,17 @@ def _plate(
     radius: float,
     span: tuple[float, float] | None,
     blank: bool,
-    others: Sequence[tuple[float, str]] | None,
+    others: Sequence[tuple[float, str]],
 ) -> Plate:
-    """A part in the plane of the curve. others: further marks, None for a part without any marks."""
+    """A ring in the plane of the curve, or a part of one, which has no marks yet."""
     outside = Parallel(inner, width)
     openings = holes_at(line.point(holes), radius) if len(holes) else ()
-    marked = [] if others is None else direction_marks(inner, "inner", outward=True, others=_new(others))
+    thin, numbered = _set_out(line, holes, radius, span)
     low, high = (float(inner.breaks[0]), float(inner.breaks[-1])) if span is None else span
-    marks = tuple(m for u, m in marked if span is None or (u - low) % inner.period <= high - low)
     places = _places(inner, outside, line, low, high)
     if span is not None:
         curves = [plane_curve(each, start=low, stop=high) for each in (inner, outside)]
-        return Plate(_segment(*curves), openings, marks, (), places)
+        return Plate(_segment(*curves), openings, (), (), places, thin, numbered)
     rim = plane_curve(outside)
     if blank:
         cross = tuple(
@@ -164,8 +174,82 @@ def _plate(
         # In the quarters between the centre lines.
         low_high = np.array([[[x, y], [x, y + 0.4]] for y in (0.05, -0.45) for x in (-0.22, 0.22)])
         flat = low_high * [inner.width, inner.height]
-        return Plate(closed("outer", rim), openings, (), cross, np.concatenate([flat, places]))
-    return Plate(closed("outer", rim), (closed("inner", plane_curve(inner)), *openings), marks, (), places)
+        return Plate(
+            closed("outer", rim), openings, (), cross, np.concatenate([flat, places]), thin, numbered
+        )
+    marks = tuple(m for _, m in direction_marks(inner, "inner", outward=True, others=_new(others)))
+    openings = (closed("inner", plane_curve(inner)), *openings)
+    return Plate(closed("outer", rim), openings, marks, (), places, thin, numbered)
+
+
+def _set_out(
+    line: Parallel, holes: Array, radius: float, span: tuple[float, float] | None
+) -> tuple[tuple[Curve, ...], tuple[NumberedHole, ...]]:
+    """The pitch line and the holes on it, numbered as in their table."""
+    if not len(holes):
+        return (), ()
+    start, stop = (None, None) if span is None else span
+    at, centres = line.walk(holes), line.point(holes)
+    return (drawn(plane_curve(line, start=start, stop=stop)),), tuple(
+        NumberedHole(n + 1, centres[n], np.array([at.ex[n], at.ey[n]]), radius) for n in range(len(holes))
+    )
+
+
+def _part_marks(
+    inner: Section,
+    places: Sequence[_Place],
+    others: Sequence[tuple[float, str]],
+) -> tuple[WitnessMark, ...]:
+    """The marks of a part, their running lengths from its end 1.
+
+    What is marked at one point of several of the places is one mark with all their different words; where
+    it holds for some of the places alone their numbers stand after it.
+    """
+    marked = direction_marks(inner, "inner", outward=True, others=_new(others))
+    near = _ALONG * inner.period
+    found: list[tuple[WitnessMark, list[tuple[str, int]]]] = []
+    for number, span, frame in places:
+        assert span is not None
+        arcs = inner.arc(np.array(span))
+        length = float(arcs[1] - arcs[0])
+        turn, shift = frame.axes[:2, :2], frame.origin[:2]
+        over = float(np.linalg.det(turn)) < 0.0
+        for u, mark in marked:
+            past = (u - span[0] + near) % inner.period - near
+            if past > span[1] - span[0] + near:
+                continue
+            arc = float(inner.arc(np.array([span[0] + max(past, 0.0)]))[0] - arcs[0])
+            at = turn @ (mark.at - shift)
+            arc = length - arc if over else arc
+            words = next((words for each, words in found if np.abs(each.at - at).max() < _ALIKE), None)
+            if words is None:
+                words = []
+                found.append((WitnessMark(at, turn @ mark.inward, "", mark.edge, arc), words))
+            words.append((mark.text, number))
+    return tuple(replace(mark, text=_joined(words, len(places))) for mark, words in found)
+
+
+def _joined(words: Sequence[tuple[str, int]], places: int) -> str:
+    """The words at a mark, each with the numbers of its places unless all places have one there."""
+    if len(words) == places:
+        return "/".join(dict.fromkeys(word for word, _ in words))
+    return "/".join(f"{word} {number}" for word, number in words)
+
+
+def _places_of(inner: Section, places: Sequence[_Place]) -> tuple[Figures, ...]:
+    """Where the parts that are alike stand in the ring, in degrees anticlockwise facing END B."""
+    if len(places) < 2:
+        return ()
+    rows = []
+    for number, span, frame in places:
+        assert span is not None
+        over = float(np.linalg.det(frame.axes[:2, :2])) < 0.0
+        ends = np.degrees(inner.direction(np.array(span[::-1] if over else span)))
+        rows.append(
+            (str(number), *(f"{round(d, 1) % 360.0:.1f}" for d in ends.tolist()), "yes" if over else "no")
+        )
+    heads = (("place", "no."), ("END 1", "degrees"), ("END 2", "degrees"), ("turned", "over"))
+    return (Figures("Places of the part", heads, tuple(rows)),)
 
 
 def _new(others: Sequence[tuple[float, str]]) -> list[tuple[float, str]]:
@@ -200,14 +284,14 @@ def _places(inner: Section, outside: Parallel, line: Parallel, low: float, high:
     return np.stack([inner.point(u), outside.point(u)], axis=1)[order]
 
 
-def _figures(line: Parallel, holes: Array, shift: Array) -> tuple[Figures, ...]:
-    """The holes' centres, to be marked out by tape."""
+def _figures(line: Parallel, holes: Array, shift: Array, start: float | None) -> tuple[Figures, ...]:
+    """The holes' centres, to be marked out by tape. start: parameter of the part's end 1, None for a ring."""
     if not len(holes):
         return ()
-    arcs = line.arc(holes)
+    arcs = line.arc(holes) - line.arc(holes[:1] if start is None else np.array([start]))
     rows = [
-        (str(n + 1), float(arcs[n] - arcs[0]), float(x), float(y))
-        for n, (x, y) in enumerate(line.point(holes) + shift)
+        (str(n + 1), float(arcs[n]), float(x), float(y)) for n, (x, y) in enumerate(line.point(holes) + shift)
     ]
-    heads = (("hole", "no."), ("running", "along pitch line"), ("centre", "x"), ("centre", "y"))
+    origin = "hole 1" if start is None else "END 1"
+    heads = (("hole", "no."), ("along pitch line", f"from {origin}"), ("centre", "x"), ("centre", "y"))
     return (Figures("Centres of the holes", heads, tuple(rows)),)

@@ -12,7 +12,14 @@ from develop.pieces.cut_types import CUT, Cut
 from develop.pieces.field_types import MARK, SECTION, Choice, Length
 from develop.pieces.fields import about
 from develop.pieces.onto import ONTO, Onto
-from develop.pieces.wording import cut_words, measured_words, section_words, size_words
+from develop.pieces.wording import (
+    SIDES,
+    cut_words,
+    measured_words,
+    off_centre_words,
+    section_words,
+    size_words,
+)
 from develop.sections.text import SectionSpec
 from develop.units import number_text
 
@@ -29,6 +36,8 @@ __all__ = ["MarkingBand"]
 
 # How far beside the header may be rounding [mm].
 _TANGENT = 1e-9
+# Two sizes that differ by less, in parts of themselves, are one.
+_ROUND = 1e-12
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
@@ -45,8 +54,17 @@ class MarkingBand(Marked):
         default=None,
         metadata=about(
             ONTO,
-            "a header that the pipe meets: its end is marked, and the hole on the header",
+            "a header that the pipe meets: its end is marked, and the hole on the header; off_centre to the "
+            "right as the header's end B is faced with the pipe upward",
             not_with="cut",
+        ),
+    )
+    joint: str = field(
+        default="set-on",
+        metadata=about(
+            Choice(("set-on", "set-in")),
+            "onto a header: the pipe stands on it and the hole is the pipe's bore, or the pipe reaches "
+            "through its wall and the hole is the pipe's outside",
         ),
     )
     paper: float = field(default=0.1, metadata=about(Length(least=0.0, most=10.0), "thickness of the paper"))
@@ -82,6 +100,8 @@ class MarkingBand(Marked):
                 given=f"not given, but the band is laid inside a pipe whose size is {where}",
                 allowed="the pipe's wall thickness" + ("" if self.section.outside else ", or sizes = inside"),
             )
+        if self.onto is not None:
+            self._check_hole()
         face = self._face()
         if self.lap > 0.5 * face.girth:
             raise Refusal(
@@ -97,14 +117,36 @@ class MarkingBand(Marked):
         # END A is the band's own square edge, so far below the cut that the band is nowhere too narrow.
         return Cylinder(face, Plane(-down - self.narrowest, np.zeros(2)), cut, paper)
 
-    def _face(self, *, mirrored: bool = False) -> Section:
-        """The pipe's section at the face that the band lies on, or its mirror image. Raises Refusal."""
+    @property
+    def _hole_face(self) -> str:
+        """The face of the pipe that the hole in the header has."""
+        return "inside" if self.joint == "set-on" else "outside"
+
+    def _check_hole(self) -> None:
+        """Raises Refusal where the wall that lies between the given size and the hole's is not known."""
+        given = "outside" if self.section.outside else self.sizes
+        if self.thickness > 0.0 or given == self._hole_face:
+            return
+        where = "at mid-thickness" if given == "mean" else f"its {given}"
+        hole = "bore" if self.joint == "set-on" else "outside"
+        other = {"outside": ", or joint = set-in", "inside": ", or joint = set-on"}.get(given, "")
+        raise Refusal(
+            field="thickness",
+            given=f"not given, but the hole of a pipe {self.joint} is its {hole}, and its size is {where}",
+            allowed=f"the pipe's wall thickness{other}",
+        )
+
+    def _face(self, face: str | None = None, *, mirrored: bool = False) -> Section:
+        """The pipe's section at a face, at first the one that the band lies on, or its mirror image.
+
+        Raises Refusal.
+        """
         from develop.pieces.wall import PLACES, given_section
 
         spec = SECTION.mirrored(self.section) if mirrored else self.section
         assert isinstance(spec, SectionSpec)
         given = given_section(spec, field="section", thickness=self.thickness, sizes=self.sizes)
-        return given.offset(self.thickness * (PLACES[self.face] - PLACES[self.sizes]))
+        return given.offset(self.thickness * (PLACES[face or self.face] - PLACES[self.sizes]))
 
     def _header(self, onto: Onto, length: float) -> StraightHeader:
         """The outside of the header as an existing pipe has it, with paper on it [mm]."""
@@ -150,15 +192,14 @@ class MarkingBand(Marked):
     def _facts(self, face: Section, girth: float, units: str) -> tuple[str, ...]:
         """What the sheet says; face: the pipe's face that the band lies on; girth of the band [mm]."""
         outside = self.face == "outside"
-        size = size_words(face.width, units)
-        if self.section.width != self.section.height:
-            size = f"{size} x {size_words(face.height, units)}"
+        size = _size(face, units)
         wall = f", wall {size_words(self.thickness, units)}" if self.thickness else ""
         cut = self._onto_words(units) if self.onto else cut_words(self.cut)
         return (
             f"{self.mark}: {self.kind}" if self.mark != self.kind else self.mark,
             f"{section_words(self.section, units)}, {size} {self.face}{wall}",
             "square cut" if cut == "square" else cut,
+            *self._joint_words(),
             "mark along END B",
             "the pipe stays on the END A side",
             "wrap round, this side out" if outside else "lay inside, this side in towards you",
@@ -172,9 +213,22 @@ class MarkingBand(Marked):
 
     def _onto_words(self, units: str) -> str:
         assert self.onto is not None
-        off = f", {size_words(self.onto.off_centre, units)} off centre" if self.onto.off_centre else ""
+        off = f", {off_centre_words(self.onto.off_centre, units)}" if self.onto.off_centre else ""
         angle = number_text(round(degrees(self.onto.angle), 6))
         return f"meets a header {section_words(self.onto.header, units)} at {angle}°{off}"
+
+    def _joint_words(self) -> tuple[str, ...]:
+        """How the pipe goes onto its header, and where that has its right and left."""
+        if self.onto is None:
+            return ()
+        joint = {
+            "set-on": ("set-on: END B stands on the header's outside",),
+            "set-in": (
+                "set-in: END B is at the header's outside",
+                "leave on beyond END B what goes through the wall",
+            ),
+        }[self.joint]
+        return (*joint, SIDES) if self.onto.off_centre else joint
 
     def _seam_words(self) -> tuple[str, str]:
         """What the left and the right side say of how the band closes."""
@@ -246,7 +300,7 @@ class MarkingBand(Marked):
         )
 
         # The band's z runs towards the header, the hole's away from it: right and left change places.
-        pipe_face = self._face(mirrored=True)
+        pipe_face = self._face(self._hole_face, mirrored=True)
 
         def cut_by(header: StraightHeader, place: Frame) -> tuple[Cylinder, Opening]:
             through = header.through(place)
@@ -280,8 +334,11 @@ class MarkingBand(Marked):
                 facts=(
                     f"{self.mark}-hole: for the header",
                     f"{section_words(onto.header, units)}, its outside",
-                    f"hole of {section_words(self.section, units)}, {self.face} of the pipe",
+                    f"{self.joint}: the hole is the {'bore' if self.joint == 'set-on' else 'outside'} "
+                    f"of the pipe, {_size(pipe_face, units)}",
+                    f"for {section_words(self.section, units)}",
                     self._onto_words(units),
+                    *((SIDES,) if onto.off_centre else ()),
                     "wrap round, this side out; mark the hole",
                     f"girth of the band {measured_words(flat.edge_a, units)}",
                     f"quantity {self.quantity}",
@@ -301,6 +358,14 @@ class MarkingBand(Marked):
         square = Frame.square()
         # The hole's band is another sheet of paper: it stands nowhere in the piece.
         return Built((Part(pattern, band, (square,)), Part(on_header, solid, ())))
+
+
+def _size(section: Section, units: str) -> str:
+    """Width and height [mm] in words, once where they are alike."""
+    words = size_words(section.width, units)
+    if abs(section.width - section.height) <= _ROUND * section.width:
+        return words
+    return f"{words} x {size_words(section.height, units)}"
 
 
 def _turned(frame: Frame) -> Frame:

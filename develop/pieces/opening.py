@@ -152,6 +152,8 @@ class Opening(Flat):
         return (
             f"for {self.section.text}{clear}",
             f"slope {number_text(round(degrees(slope), 3))}°, pitch {number_text(round(rise, 3))} in 12, "
-            f"high side {direction_words(self.high_side).upper()}",
+            f"high side {direction_words(self.high_side).upper()}"
+            if slope
+            else f"no slope, {direction_words(self.high_side).upper()} at the upper edge",
             f"{number_text(self.margin)} of plate round the hole",
         )

@@ -48,12 +48,15 @@ class PressLines:
     angle: Array
     short: Array
 
-    def facts(self) -> str:
-        """What the pattern says of them."""
+    def facts(self, *, mirror: bool) -> tuple[str, str]:
+        """What the pattern says of them. mirror: the inside of the sheet is up."""
         low, high = (degrees(each(self.angle)) for each in (np.min, np.max))
         count = f"{len(self.angle)} press line{'s' * (len(self.angle) != 1)}"
         same = f"{low:.1f}°" == f"{high:.1f}°"
-        return f"{count}, bent {low:.1f}° each" if same else f"{count}, bent {low:.1f}° to {high:.1f}° each"
+        bent = f"{low:.1f}° each" if same else f"{low:.1f}° to {high:.1f}° each"
+        # The sides of every piece are convex: all bends go the same way.
+        way = "towards you: this face is the inside" if mirror else "away from you: this face is the outside"
+        return f"{count}, bent {bent}", f"bend {way}"
 
     def figures(self, *, mirror: bool) -> Figures:
         """Angles, and where the lines stop short of the edges; numbered as the lines to mark out."""

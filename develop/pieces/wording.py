@@ -17,11 +17,13 @@ if TYPE_CHECKING:
     from develop.sections.text import SectionSpec
 
 __all__ = [
+    "SIDES",
     "cut_words",
     "direction_words",
     "edges_words",
     "mass_words",
     "measured_words",
+    "off_centre_words",
     "plate_words",
     "section_words",
     "shift_words",
@@ -29,6 +31,9 @@ __all__ = [
     "sizes_words",
     "wall_words",
 ]
+
+SIDES = "right and left as the header's END B is faced, leaving direction up"
+"""How a person at the header tells the side that `off_centre_words` names."""
 
 _WORDS = {0.0: "right", 90.0: "top", 180.0: "left", 270.0: "bottom"}
 _INCH = 25.4
@@ -74,6 +79,15 @@ def measured_words(mm: float, units: str) -> str:
     ('1455.8', '57-5/16 in')
     """
     return format_length(mm, unit=units, suffix=units != "mm")
+
+
+def off_centre_words(mm: float, units: str) -> str:
+    """How far and to which side of a header's centre a branch stands [mm], positive to the right.
+
+    >>> off_centre_words(20.0, "mm"), off_centre_words(-25.4, "in")
+    ('20 off centre to the right', '1 in off centre to the left')
+    """
+    return f"{size_words(abs(mm), units)} off centre to the {'right' if mm > 0.0 else 'left'}"
 
 
 def section_words(spec: SectionSpec, units: str) -> str:

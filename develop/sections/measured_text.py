@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from math import ceil, floor, inf
 
 from develop.sections.spec import FLATTEST, SectionSpec, Taped, refused
 from develop.sections.words import size_of
@@ -92,12 +93,24 @@ def _check_spread(text: str, directions: tuple[float, ...]) -> None:
 
 def _fitted(text: str, directions: tuple[float, ...], diameters: tuple[float, ...], fit: str) -> SectionSpec:
     from develop.sections.measured import NotConvex, curve_of, fitted
+    from develop.sections.odd_reading import odd_reading
 
     try:
         curve, residuals = fitted(directions, diameters, fit)
     except NotConvex as error:
+        found = odd_reading(directions, diameters)
+        if found is None:
+            raise refused(
+                f"{shown(text)}: {error}", "the diameters of a section without hollows; measure again"
+            ) from None
+        at, low, high = found
+        size = diameters[at]
+        off = f"{low - size:.4g} mm less" if size < low else f"{size - high:.4g} mm more"
         raise refused(
-            f"{shown(text)}: {error}", "the diameters of a section without hollows; measure again there"
+            f"{shown(text)} makes a hollow: the reading {number_text(directions[at])}:{number_text(size)} is "
+            f"{off} than its neighbours allow",
+            f"the diameters of a section without hollows, there {_between(low, high)}; measure again at "
+            f"{number_text(directions[at])} degrees",
         ) from None
     taped = Taped(directions, diameters, residuals, fit, curve)
     section = curve_of(taped)
@@ -106,3 +119,11 @@ def _fitted(text: str, directions: tuple[float, ...], diameters: tuple[float, ..
         raise refused(f"{shown(text)} is flatter than 1 to {FLATTEST:g}", "rounder sections")
     pairs = (f"{number_text(d)}:{number_text(s)}" for d, s in zip(directions, diameters, strict=True))
     return SectionSpec("measured", width, height, f"measured {' '.join(pairs)} {fit}", taped=taped)
+
+
+def _between(low: float, high: float) -> str:
+    """A range of sizes [mm], rounded inwards."""
+    least, most = number_text(ceil(low * 10.0) / 10.0), number_text(floor(high * 10.0) / 10.0)
+    if low <= 0.0:
+        return f"{most} mm or less"
+    return f"{least} mm or more" if high == inf else f"from {least} to {most} mm"

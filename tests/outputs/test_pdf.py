@@ -434,3 +434,17 @@ def longest(dark):
         steps = np.flatnonzero(np.diff(np.concatenate([[0], row.astype(np.int8), [0]])))
         best = max(best, int((steps[1::2] - steps[::2]).max()))
     return best
+
+
+def test_flat_parts_are_not_told_of_a_line_0():
+    from tests.pieces.making import make
+
+    given = {"section": "ellipse 600 x 300", "width": 40, "holes": 8, "hole_diameter": 11}
+    flat = [make("flange", **given), make("flange", **given, made_in=4), make("opening", section="round 300")]
+    for built in flat:
+        words = " ".join(page.extract_text() for page in read(*built.patterns).pages)
+        assert "line 0" not in " ".join(words.split())
+    rolled = " ".join(
+        read(*make("straight", section="round 300", length=400).patterns).pages[0].extract_text().split()
+    )
+    assert "running lengths along END A and END B from line 0" in rolled

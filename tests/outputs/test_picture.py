@@ -245,3 +245,80 @@ def test_a_header_keeps_its_ends_and_a_branch_has_its_mark_at_its_free_end(sampl
     rims = {"END A": header.rim_a(240), "END B": header.rim_b(240), "N1-branch": branch.rim_b(240)}
     for word, rim in rims.items():
         assert np.abs(camera.project(rim) - words[word]).sum(axis=1).min() < 1e-12
+
+
+@pytest.mark.parametrize(
+    "given",
+    [
+        {"pitch": "5 in 12", "clearance": 50, "collar": 150},
+        {"slope": 35, "high_side": "2:00", "section": "ellipse 500 x 300"},
+        {"slope": 45, "high_side": "bottom", "collar": 400},
+        {"slope": 30, "high_side": "left", "section": "rectangle 200 x 900 r 20"},
+        {"collar": 200},
+    ],
+)
+def test_the_words_of_an_opening_are_all_there_clear_of_the_piece_and_of_each_other(given, monkeypatch):
+    from shapely.geometry import MultiPoint, box
+
+    from develop.outputs import flat_picture as module
+    from tests.pieces.making import make
+
+    found = []
+
+    def noted(words, shown, **sizes):
+        found.append((shown, *placed(words, shown, **sizes)))
+        return found[0][1:]
+
+    placed = module.placed
+    monkeypatch.setattr(module, "placed", noted)
+    built = make("opening", **{"section": "round 327", **given})
+    module.flat_picture(built.parts, "an opening")
+    ((shown, words, bounds),) = found
+    expected = {"RIGHT", "TOP", "LEFT", "BOTTOM"}
+    slope = given.get("slope", np.degrees(np.arctan(5 / 12)) if "pitch" in given else 0)
+    if slope:
+        expected |= {"HIGH SIDE", f"{slope:.1f}° to level"}
+    assert {word.text for word in words} == expected
+    hull = MultiPoint(shown).convex_hull
+    boxes = [box(*(word.end - word.size / 2), *(word.end + word.size / 2)) for word in words]
+    for n, one in enumerate(boxes):
+        assert not one.intersects(hull)
+        assert not any(one.overlaps(other) for other in boxes[:n])
+        assert (np.array(one.bounds).reshape(2, 2)[0] >= bounds[0] - 1e-9).all()
+        assert (np.array(one.bounds).reshape(2, 2)[1] <= bounds[1] + 1e-9).all()
+
+
+def test_the_picture_of_an_opening_is_titled_with_its_slope(monkeypatch):
+    from develop.outputs import flat_picture as module
+
+    assert title_of(module, "flat_picture", monkeypatch, "opening", section="round 327", pitch="5 in 12") == (
+        "P1: for round 327\nslope 22.62°, pitch 5 in 12, high side TOP"
+    )
+    assert (
+        title_of(module, "flat_picture", monkeypatch, "opening", section="round 327") == "P1: for round 327"
+    )
+
+
+def test_the_picture_of_several_parts_is_titled_with_what_is_true_of_them_all(monkeypatch):
+    from develop.outputs import picture as module
+
+    given = {"section": "ellipse 700 x 350", "angle": 90, "throat_radius": 350}
+    for gores in (2, 5):
+        facts = title_of(module, "picture", monkeypatch, "bend", **given, gores=gores)
+        assert facts[0] == "P1: bend"
+        assert "bend of 90°" in facts[1]
+        assert not any("gore" in fact for fact in facts)
+
+
+def title_of(module, name, monkeypatch, kind, **given):
+    from develop.job.pipeline import _files
+    from develop.pieces import kind_of
+    from develop.pieces.fields import read_piece
+    from develop.pieces.hand import builds_of
+
+    found = []
+    monkeypatch.setattr(module, name, lambda _, facts, *rest: found.append(facts) or b"")
+    piece, problems = read_piece(kind_of(kind), {**given, "mark": "P1"})
+    assert not problems
+    _files("png", piece, builds_of(piece), ())
+    return found[0]

@@ -280,3 +280,35 @@ def test_a_tapered_header_refuses_what_cannot_be(header, given, field) -> None:
     with pytest.raises(InputError) as caught:
         tapered(header, **given)
     assert caught.value.problems[0].field == field
+
+
+@pytest.mark.parametrize(("off_centre", "side"), [(30, "right"), (-30, "left")])
+@pytest.mark.parametrize("leaves_at", ["top", "bottom", "2:00"])
+def test_off_centre_is_said_to_be_on_the_side_where_the_opening_is(off_centre, side, leaves_at) -> None:
+    branch, header = parts(tee(off_centre=off_centre, leaves_at=leaves_at))
+    for pattern in (branch, header):
+        assert any(f", 30 off centre to the {side}" in fact for fact in pattern.facts)
+        assert any("as the header's END B is faced, leaving direction up" in fact for fact in pattern.facts)
+    # Outside up and END A below, direction grows to the right of the sheet, anticlockwise for one who
+    # faces END B: what lies to the right of the leaving direction is on the left of the middle.
+    x = header.openings[0].curves[0][1].polyline(1e-3)[:, 0]
+    middle = 0.5 * header.net.curve("a").length
+    assert bool(0.5 * (x.min() + x.max()) < middle) == (side == "right")
+
+
+def test_nothing_is_said_of_sides_when_the_branch_is_on_the_centre() -> None:
+    assert not any("off centre" in fact or "faced" in fact for p in parts(tee()) for fact in p.facts)
+
+
+@pytest.mark.parametrize(("apex", "line"), [("0,0", "axis"), ("150,0", "sloping line of centres")])
+def test_the_sheet_says_which_line_the_angle_is_measured_to(apex, line) -> None:
+    header = {
+        "kind": "cone",
+        "section": "round 600",
+        "height": 1500,
+        "apex_offset": apex,
+        "cut_b": "height 900",
+    }
+    built = make("branch", header=header, branch="round 250", angle=70, centre_to_end=600)
+    for pattern in parts(built):
+        assert any(f"70° to the header's {line}" in fact for fact in pattern.facts)

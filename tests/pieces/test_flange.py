@@ -6,7 +6,7 @@ from math import atan2, hypot, pi
 
 import numpy as np
 import pytest
-from shapely.geometry import Point, Polygon
+from shapely.geometry import LineString, Point, Polygon
 
 from develop.errors import InputError
 from develop.job.pipeline import checks_of
@@ -287,3 +287,129 @@ def test_parts_that_are_mirror_images_say_how_many_are_turned_over() -> None:
     assert oval.facts[-1] == "quantity 12, drawn facing END B; 6 of them turned over"
     (circle,) = ring(section="round 800", width=60, made_in=4).patterns
     assert circle.facts[-1] == "quantity 4, drawn facing END B"
+
+
+def sheet_of(pattern):
+    """What the drawing walk draws, by layer: contours, lines, curves and words."""
+    from develop.pattern.drawing import draw
+    from develop.pattern.layout import lettered
+
+    class Notes:
+        def __init__(self) -> None:
+            self.drawn: dict[str, list[tuple[str, object]]] = {}
+
+        def layer(self, name) -> None:
+            self.now = self.drawn.setdefault(name, [])
+
+        def contour(self, outline) -> None:
+            self.now.append(("contour", outline))
+
+        def line(self, start, end) -> None:
+            self.now.append(("line", np.array([start, end])))
+
+        def curve(self, curve, *, dashed) -> None:
+            self.now.append(("dashed" if dashed else "curve", curve))
+
+        def text(self, label) -> None:
+            self.now.append(("text", label))
+
+    pen = Notes()
+    draw(lettered(pattern), pen)
+    return pen.drawn
+
+
+@pytest.mark.parametrize("given", [{}, {"made_in": 4}, {"made_in": 3}, {"form": "blank"}])
+def test_holes_have_centre_crosses_on_a_thin_pitch_line_and_numbers_of_their_table(given) -> None:
+    for part in ring(holes=12, hole_diameter=11, **given).parts:
+        pattern, layers = part.pattern, sheet_of(part.pattern)
+        assert {kind for kind, _ in layers["cut"]} == {"contour"}
+        (table,) = (each for each in pattern.figures if each.title.startswith("Centres"))
+        at = np.array([row[2:] for row in table.rows])
+        assert [row[0] for row in table.rows] == [str(n) for n in range(1, len(at) + 1)]
+        assert np.abs(at[:, None] - centres(pattern)).max(axis=-1).min(axis=1).max() < 1e-3
+        strokes = [line for kind, line in layers["witness-marks"] if kind == "line"]
+        middles = np.array([line.mean(axis=0) for line in strokes])
+        pitch = [curve for kind, curve in layers["witness-marks"] if kind == "curve"]
+        points = np.vstack([curve.polyline(1e-3) for curve in pitch])
+        # Elementary: the pitch line is everywhere half the width from the inner edge's own curve.
+        inner = Polygon(_inner_points())
+        off = [inner.exterior.distance(Point(*point)) for point in points - part.solid.shift]
+        assert off == pytest.approx([20.0] * len(off), abs=2e-3)
+        for centre in at:
+            (cross,) = (
+                line
+                for line, middle in zip(strokes, middles, strict=True)
+                if np.abs(middle - centre).max() < 1e-6
+            )
+            assert 1.0 < np.hypot(*(cross[1] - cross[0])) < 11.0
+        words = {label.text: label.at for kind, label in layers["text"] if kind == "text"}
+        for row in table.rows:
+            near = np.hypot(*(at - words[row[0]]).T)
+            assert np.argmin(near) == int(row[0]) - 1
+            assert near.min() < 20.0
+
+
+def _inner_points():
+    t = np.linspace(0, 2 * pi, 4000)
+    return np.stack([300 * np.cos(t), 150 * np.sin(t)], axis=1)
+
+
+def test_the_pitch_line_stops_short_of_the_words_on_it() -> None:
+    (part,) = ring(holes=12, hole_diameter=11, made_in=4).parts
+    layers = sheet_of(part.pattern)
+    lines = [curve.polyline(0.01) for kind, curve in layers["witness-marks"] if kind == "curve"]
+    (title,) = (label for kind, label in layers["text"] if kind == "text" and label.text.startswith("flange"))
+    assert min(np.hypot(*(line - title.at).T).min() for line in lines) > 5.0
+
+
+@pytest.mark.parametrize("made_in", [2, 3, 4])
+def test_a_part_counts_its_holes_from_its_end_and_says_which_that_is(made_in: int) -> None:
+    pattern = ring(section="round 400", holes=12, hole_diameter=11, made_in=made_in).patterns[0]
+    spacing = 2 * pi * 220 / 12
+    (table,) = (each for each in pattern.figures if each.title.startswith("Centres"))
+    assert [row[1] for row in table.rows] == pytest.approx(
+        [(n + 0.5) * spacing for n in range(12 // made_in)]
+    )
+    assert "from END 1" in table.heads[1]
+    words = {label.text: label.at for kind, label in sheet_of(pattern)["text"] if kind == "text"}
+    for name, word in (("end_1", "END 1"), ("end_2", "END 2")):
+        (end,) = curves(pattern, name)
+        assert np.hypot(*(words[word] - 0.5 * (end.start + end.end))) < 12.0
+
+
+def test_a_whole_ring_counts_from_its_first_hole() -> None:
+    (table,) = ring(holes=12, hole_diameter=11).patterns[0].figures
+    assert table.rows[0][1] == 0.0
+    assert "from hole 1" in table.heads[1]
+
+
+@pytest.mark.parametrize("section", ["round 400", "ellipse 600 x 300", "flat-oval 600 x 300"])
+@pytest.mark.parametrize("made_in", [2, 3, 4, 5])
+def test_the_parts_of_a_ring_carry_its_marks_where_they_stand(section: str, made_in: int) -> None:
+    built = ring(section=section, made_in=made_in)
+    seen = set()
+    number = {}
+    for part in built.parts:
+        pattern = part.pattern
+        for place in (each for each in pattern.figures if each.title.startswith("Places")):
+            number[id(part)] = [int(row[0]) for row in place.rows]
+        numbers = number.get(id(part), [0])
+        assert len(numbers) == len(part.frames)
+        (inner,) = curves(pattern, "inner")
+        for n, frame in zip(numbers, part.frames, strict=True):
+            for mark in pattern.marks:
+                # Running lengths go from END 1, where the inner edge ends in the outline's own round.
+                back = LineString(inner.reversed().polyline(1e-4))
+                assert mark.arc == pytest.approx(back.project(Point(*mark.at)), abs=0.01)
+                assert back.distance(Point(*mark.at)) < 1e-3
+                texts = [each.split() for each in mark.text.split("/")]
+                here = [t[0] for t in texts if len(t) == 1 or int(t[1]) == n]
+                if not here:
+                    continue
+                x, y = ((mark.at - part.solid.shift) @ frame.axes[:2] + frame.origin)[:2]
+                angle = np.degrees(atan2(y, x)) % 360
+                word = {0: "RIGHT", 90: "TOP", 180: "LEFT", 270: "BOTTOM"}[round(angle) % 360]
+                assert angle == pytest.approx(round(angle), abs=1e-6)
+                assert word in here
+                seen.add(word)
+    assert seen == {"RIGHT", "TOP", "LEFT", "BOTTOM"}

@@ -191,7 +191,7 @@ def test_a_lap_of_more_than_half_the_girth_is_refused() -> None:
 
 
 def onto(**given: object):
-    return make("marking-band", **{"section": "pipe DN 150", "onto": "round 400", **given})
+    return make("marking-band", **{"section": "pipe DN 150", "onto": "round 400", "joint": "set-in", **given})
 
 
 def test_a_saddle_follows_the_two_circles() -> None:
@@ -292,3 +292,45 @@ def test_an_out_of_round_pipe_fits_its_hole() -> None:
         if not each.holds
     ]  # fmt: skip
     assert not failed, failed
+
+
+@pytest.mark.parametrize(
+    ("joint", "size", "word"),
+    [
+        # ASME B36.10: NPS 6 is 168.3 outside with a wall of 7.11; bore = outside less two walls.
+        ("set-on", 168.3 - 2 * 7.11, "bore"),
+        ("set-in", 168.3, "outside"),
+    ],
+)
+@pytest.mark.parametrize("face", ["outside", "inside"])
+def test_a_set_on_pipe_has_its_bore_for_a_hole_and_a_set_in_one_its_outside(joint, size, word, face) -> None:
+    built = onto(joint=joint, thickness=7.11, face=face, paper=0)
+    band, hole = built.patterns
+    assert np.ptp(hole.openings[0].curves[0][1].polyline(1e-5)[:, 1]) == pytest.approx(size, abs=1e-6)
+    assert f"{joint}: the hole is the {word} of the pipe, {size:g}" in hole.facts
+    assert any(fact.startswith(joint) for fact in band.facts)
+    assert all(each.holds for each in checks_of(built))
+
+
+@pytest.mark.parametrize(
+    ("given", "other"),
+    [
+        ({"joint": "set-on"}, "set-in"),
+        ({"joint": "set-on", "section": "round 168.3", "sizes": "outside"}, "set-in"),
+        ({"joint": "set-in", "section": "round 168.3", "sizes": "inside"}, "set-on"),
+        ({"joint": "set-on", "section": "round 168.3", "sizes": "mean"}, ""),
+    ],
+)
+def test_a_hole_on_the_far_face_of_an_unknown_wall_is_refused(given, other) -> None:
+    with pytest.raises(InputError) as caught:
+        onto(**given)
+    (problem,) = caught.value.problems
+    assert problem.field == "thickness"
+    assert (f"joint = {other}" in problem.allowed) is bool(other)
+
+
+@pytest.mark.parametrize(("given", "side"), [("20", "right"), ("-20", "left")])
+def test_off_centre_names_its_side_on_band_and_hole(given, side) -> None:
+    for pattern in onto(onto=f"round 400 off_centre {given}").patterns:
+        assert any(f"20 off centre to the {side}" in fact for fact in pattern.facts)
+        assert any("END B is faced" in fact for fact in pattern.facts)

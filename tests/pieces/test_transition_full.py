@@ -38,13 +38,16 @@ def test_ellipse_to_round_flush_at_the_bottom_one_of_each_hand() -> None:
     assert not problems
     builds = builds_of(piece)
     assert all(check.holds for check in checks_of_all(builds))
-    drawn, other = (built.patterns[0] for built in builds)
+    # It is its own mirror image: two of the one pattern.
+    (built,) = builds
+    assert built.patterns[0].quantity == 2
     # Elementary: flush at the bottom, the round stands 200 - 150 higher.
-    assert builds[0].solid.end_b.origin == pytest.approx([0, 50, 450])
-    # The piece is its own mirror image, so both have the same outline.
-    for row, same in zip(drawn.divisions, other.divisions, strict=True):
-        assert row.a == pytest.approx(same.a, abs=1e-6)
-        assert row.b == pytest.approx(same.b, abs=1e-6)
+    assert built.solid.end_b.origin == pytest.approx([0, 50, 450])
+    rows = built.patterns[0].divisions
+    wide = rows[-1].a[0]
+    for row, across in zip(rows, rows[::-1], strict=True):
+        assert row.length == pytest.approx(across.length, abs=1e-9)
+        assert row.a[0] == pytest.approx(wide - across.a[0], abs=1e-6)
 
 
 def test_a_long_taper_is_given_from_chords() -> None:
@@ -237,6 +240,14 @@ def test_the_lines_to_mark_out_are_the_press_lines_between_the_seams() -> None:
         [degrees(line.turn) for line in pattern.lines], abs=0.051
     )
     assert any(fact.startswith("12 press lines, bent") for fact in pattern.facts)
+
+
+@pytest.mark.parametrize(("face", "way"), [("outside", "away from you"), ("inside", "towards you")])
+def test_the_sheet_says_once_which_way_to_bend(face: str, way: str) -> None:
+    # A convex piece closes on its inside: with the outside up the sheet is bent down, away from who looks at it.
+    facts = square_to_round(kicks=3, face=face).patterns[0].facts
+    assert [fact for fact in facts if fact.startswith("bend ")] == [f"bend {way}: this face is the {face}"]
+    assert not any(fact.startswith("bend ") for fact in square_to_round().patterns[0].facts)
 
 
 def test_a_fold_from_corner_to_corner_is_bent_at_once_by_the_angle_of_its_planes() -> None:

@@ -232,7 +232,7 @@ def test_directions_are_of_half_a_turn_and_sorted() -> None:
         ("measured 0:322 45:326 90:327 135:", "empty", "0.1 mm to 100 m"),
         ("measured 0:322 45:326 90:327 135:323 elipse", 'did you mean "ellipse"?', "ellipse or smooth"),
         ("measured 0:322 45:326 90:327 400:323", "more than a full turn", "degrees"),
-        ("measured 0:322 45:326 90:32 135:323", "no ellipse has these diameters", "measure again"),
+        ("measured 0:322 45:326 90:32 135:323", "the reading 90:32 is", "measure again at 90"),
         ("measured 0:400 22.5:350 45:300 67.5:350 90:400 112.5:350 135:300 157.5:350", "hollow near", "measure again"),
     ],
 )  # fmt: skip
