@@ -33,7 +33,8 @@ from develop.pieces.reference import command_line, job_text, kind_text, kinds_pa
 
 COMMON = {
     "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
-    "face", "marks", "flow",
+    "face", "marks", "flow", "seam", "edge_a", "edge_b", "gap", "gap_on", "trim_a", "trim_b", "trim_line",
+    "pre_bend", "weld_shrinkage",
 }  # fmt: skip
 OWN = {
     "straight": {"section", "length", "cut_a", "cut_b"},

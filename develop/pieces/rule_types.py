@@ -24,6 +24,7 @@ class RuleText:
 
     @property
     def allowed(self) -> str:
+        """What may be given, in words."""
         return f"a rule and its size, such as {self.examples}"
 
     def read(self, given: object, *, unit: str) -> str:

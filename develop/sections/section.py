@@ -20,6 +20,7 @@ import numpy as np
 from develop.errors import Refusal
 from develop.quadrature import Array, Indices, between, halves, nodes_of, running
 
+_NO_RATE = 1e-300
 __all__ = ["Array", "Parallel", "Section", "Walk"]
 
 _STEPS = 12
@@ -300,7 +301,9 @@ class Section(ABC):
     @cached_property
     def _slopes(self) -> Array:
         ds = self.walk(self._known[0]).ds
-        return np.asarray(np.where(ds > 0.0, 1.0 / np.where(ds > 0.0, ds, 1.0), 0.0))
+        # A rate so small that its inverse is no number belongs to an arc that is none.
+        there = ds > _NO_RATE
+        return np.asarray(np.where(there, 1.0 / np.where(there, ds, 1.0), 0.0))
 
 
 class Parallel(Section):

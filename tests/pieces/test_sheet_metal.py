@@ -150,7 +150,9 @@ def test_openings_that_are_only_marked_stay_in_the_mass() -> None:
 
 
 def test_the_opposite_hand_weighs_the_same_and_says_so() -> None:
-    one, other = patterns("straight", **ROUND, thickness=1, material="copper", opposite_hand=2)
+    one, other = patterns(
+        "straight", **ROUND, cut_b="slope 20 long 30", thickness=1, material="copper", opposite_hand=2
+    )
     assert one.mass == pytest.approx(other.mass, rel=1e-13)
     assert any("m² each" in fact for fact in other.facts)
     assert not any("each" in fact for fact in one.facts)
