@@ -144,7 +144,7 @@ def test_the_page_of_tables_says_what_the_tables_say() -> None:
 
 
 def test_the_shop_rules_of_the_page_of_tables_are_read(tmp_path: Path) -> None:
-    from develop.job.rules_file import read_rules
+    from develop.job.file import read_rules
     from develop.tables.seams import edge_of, seam_of
 
     text = (DOCS / "materials.md").read_text(encoding="utf-8")

@@ -14,7 +14,17 @@ from develop.pieces.fields import Declared, read_fields
 from develop.units import UNITS
 from develop.wording import listed, near_miss, nearest, shown
 
-__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "Words", "units_option"]
+__all__ = [
+    "FORMATS_OPTION",
+    "JSON",
+    "OUT",
+    "RULES_OPTION",
+    "FieldsCommand",
+    "Flag",
+    "PathOf",
+    "Words",
+    "units_option",
+]
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -89,6 +99,13 @@ OUT = Declared(
     type=PathOf("a folder; it is made if it is not there", "DIR"),
     help="folder for the files; made if it is not there",
     required=True,
+)
+RULES_OPTION = Declared(
+    name="rules",
+    type=PathOf("a TOML file of rules", "FILE"),
+    help="the shop's own rules for seams and edges",
+    required=False,
+    default="",
 )
 FORMATS_OPTION = Declared(
     name="formats", type=Words(FORMATS), help="files to write", required=False, default=FORMATS

@@ -7,7 +7,7 @@ from dataclasses import replace
 
 import click
 
-from develop.cli.options import FORMATS_OPTION, OUT, FieldsCommand, units_option
+from develop.cli.options import FORMATS_OPTION, OUT, RULES_OPTION, FieldsCommand, units_option
 from develop.cli.report import report
 from develop.errors import InputError
 from develop.job.pipeline import make
@@ -27,6 +27,10 @@ def piece_command(name: str) -> click.Command:
 
     def action(values: Mapping[str, object]) -> int:
         piece = kind(**{each.name: values[each.name] for each in fields})
+        if values.get("rules"):
+            from develop.job.file import read_rules, with_rules
+
+            piece = with_rules(piece, read_rules(str(values["rules"])))
         formats = values["formats"]
         assert isinstance(formats, tuple)
         try:
@@ -45,6 +49,7 @@ def piece_command(name: str) -> click.Command:
         options=[
             *fields,
             OUT,
+            *((RULES_OPTION,) if hasattr(kind, "rules") else ()),
             FORMATS_OPTION,
             units_option("unit of bare numbers; in and ft give sheets in inches"),
         ],

@@ -9,11 +9,13 @@ from math import pi
 import numpy as np
 
 from develop.pattern.allowance import allowed
+from develop.pattern.chain import crossings_of, point_at
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
+from develop.pieces.wording import lines_of
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
 from develop.surfaces.sheet import Lines, Place, Sheet
@@ -151,7 +153,7 @@ def pattern_of(
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
     more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)
-    more += tuple(f"CAUTION: {each}" for each in added.warnings)
+    more += tuple(line for each in added.warnings for line in lines_of(f"CAUTION: {each}"))
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -171,17 +173,33 @@ def pattern_of(
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
         units=wording.units,
         seam_words=wording.seam_words,
-        folds=view.curves([_beside(dict(close_by), name, out) for name, out in added.folds]),
-        dashed=view.curves([_beside(dict(close_by), name, -far) for name, far, _ in added.inner]),
+        folds=view.curves([_beside(dict(close_by), name, out, whole) for name, out in added.folds]),
+        dashed=view.curves([_beside(dict(close_by), name, -far, whole) for name, far, _ in added.inner]),
         lap_words=added.words[::-1] if view.mirror else added.words,
         added=added.added,
         warnings=added.warnings,
     )
 
 
-def _beside(contour: dict[str, Curve], name: str, out: float) -> Curve:
-    """The parallel of an edge, so far outside of its net line [mm]."""
-    return parallel(contour[name], out)
+def _beside(contour: dict[str, Curve], name: str, out: float, cut: Outline) -> Curve:
+    """The parallel of an edge, so far outside of its net line [mm]; of a seam, as far as the cut line."""
+    line = parallel(contour[name], out)
+    if not line.straight:
+        return line
+    along = (line.end - line.start) / line.length
+    met = [
+        point_at(curve, place)[0]
+        for each, curve in cut.curves
+        if not each.startswith("seam")
+        for place in crossings_of(curve, line.start, along)
+    ]
+    ends = []
+    for end in (line.start, line.end):
+        away = [float(np.hypot(*(point - end))) for point in met]
+        nearest = met[int(np.argmin(away))] if met else end
+        # At an apex there is no edge to end at.
+        ends.append(nearest if np.hypot(*(nearest - end)) < 4.0 * abs(out) + 1.0 else end)
+    return segment(ends[0], ends[1])
 
 
 def dense(sheet: Sheet) -> Place:
