@@ -14,6 +14,8 @@ def report(outcome: Outcome, folder: str) -> int:
     wrote = f"{outcome.mark}: wrote {', '.join(outcome.files)} in {folder}"
     if max(outcome.sheets, default=1) > 1:
         wrote += f"; {sum(outcome.sheets)} large sheets in the PDF, to be laid together"
+    if outcome.arcs:
+        wrote += f"; {outcome.arcs} arcs in the DXF, within {outcome.deviation:.4f} mm of the curve"
     failed = outcome.failed
     if not failed:
         count = len(outcome.checks)

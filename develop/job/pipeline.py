@@ -7,6 +7,7 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from develop.errors import Refusal
+from develop.job.output_fields import ALL_FORMATS, FORMATS, Outputs
 from develop.job.writing import file_key, write_all
 from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import builds_of
@@ -15,24 +16,25 @@ if TYPE_CHECKING:
     from develop.checks import Check
     from develop.pieces.built import Built
 
-__all__ = ["FORMATS", "Outcome", "checks_of", "checks_of_all", "make"]
+__all__ = ["Outcome", "checks_of", "checks_of_all", "make"]
 
-# In the order in which they are written and named.
-FORMATS = ("svg", "pdf", "json", "png")
-_DRAWN = {"svg", "pdf"}
+_DRAWN = {"svg", "pdf", "dxf"}
 
 
 @dataclass(frozen=True)
 class Outcome:
     """What was written for one piece, and what the checks found.
 
-    sheets: how many large sheets each pattern takes in the PDF, if that was written.
+    sheets: how many large sheets each pattern takes in the PDF, if that was written. arcs: how many the
+    DXF files have in all; deviation: of them from the pattern's curves, at most [mm].
     """
 
     mark: str
     files: tuple[str, ...]
     checks: tuple[Check, ...]
     sheets: tuple[int, ...] = ()
+    arcs: int = 0
+    deviation: float = 0.0
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -45,37 +47,59 @@ def make(
     *,
     folder: str,
     formats: Sequence[str] = FORMATS,
+    outputs: Outputs = Outputs(),  # noqa: B008  # frozen
     units: str = "mm",
     taken: dict[str, str] | None = None,
 ) -> Outcome:
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
-    units: of the figures on the sheets, `mm` or `in`; the record is always in mm. taken: the files of
+    outputs: how cutting files are drawn. units: of the figures on the sheets, `mm` or `in`; the record
+    and the cutting files are always in mm. taken: the files of
     this job's other pieces, each with its mark; those of this piece are added. Raises Refusal for a
     piece that cannot be, or whose files are another's, WriteError for a place that cannot be written.
     """
     builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)
     files: dict[str, bytes] = {}
-    sheets: tuple[int, ...] = ()
+    told = Outcome(mark=piece.mark, files=(), checks=checks)
     if _DRAWN.intersection(formats):
         from develop.pattern.layout import lettered
 
         builds = tuple(
             built.with_patterns([lettered(pattern) for pattern in built.patterns]) for built in builds
         )
-    for each in (each for each in FORMATS if each in formats):
+    patterns = [pattern for built in builds for pattern in built.patterns]
+    for each in (each for each in ALL_FORMATS if each in formats):
         if each == "pdf":
             from develop.outputs.pdf import printed
 
-            files[f"{piece.mark}.pdf"], sheets = printed(
-                [pattern for built in builds for pattern in built.patterns]
+            files[f"{piece.mark}.pdf"], sheets = printed(patterns)
+            told = replace(told, sheets=sheets)
+        elif each == "dxf":
+            from develop.outputs.dxf import dxf
+
+            drawn = [
+                dxf(
+                    pattern,
+                    version=outputs.dxf_version,
+                    curves=outputs.dxf_curves,
+                    tolerance=outputs.tolerance,
+                    text=outputs.text == "all",
+                )
+                for pattern in patterns
+            ]
+            names = [f"{pattern.mark}.dxf" for pattern in patterns]
+            files |= {name: found.data for name, found in zip(names, drawn, strict=True)}
+            told = replace(
+                told,
+                arcs=sum(found.arcs for found in drawn),
+                deviation=max(found.deviation for found in drawn),
             )
         else:
-            files |= _files(each, piece, builds, checks)
+            files |= _files(each, piece, builds, checks, outputs)
     _take(files, piece.mark, {} if taken is None else taken)
     write_all(folder, files)
-    return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets)
+    return replace(told, files=tuple(files))
 
 
 def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
@@ -131,14 +155,16 @@ def checks_of(built: Built) -> tuple[Check, ...]:
     return tuple(found)
 
 
-def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]) -> dict[str, bytes]:
+def _files(
+    ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...], outputs: Outputs
+) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
     patterns = [pattern for built in builds for pattern in built.patterns]
     if ending == "svg":
         from develop.outputs.svg import svg
 
-        return {f"{pattern.mark}.svg": svg(pattern) for pattern in patterns}
+        return {f"{pattern.mark}.svg": svg(pattern, text=outputs.text == "all") for pattern in patterns}
     if ending == "json":
         from develop.outputs.record import record
 

@@ -16,16 +16,33 @@ from develop.pattern.pattern import Label, Outline, Pattern
 from develop.pattern.strokes import arrow_strokes, roll_strokes, witness_lengths, witness_strokes
 from develop.pattern.ties import between_ties
 
-__all__ = ["CUT", "LAYERS", "NET", "PRESS_LINES", "ROLL_LINES", "TEXT", "WITNESS_MARKS", "Pen", "draw"]
+__all__ = [
+    "CUT",
+    "DASHED",
+    "LAYERS",
+    "NET",
+    "OPENINGS",
+    "PEN_LINES",
+    "PRESS_LINES",
+    "ROLL_LINES",
+    "TEXT",
+    "WITNESS_MARKS",
+    "Pen",
+    "draw",
+]
 
 CUT = "cut"
+OPENINGS = "cut-openings"
 NET = "net"
 ROLL_LINES = "roll-lines"
 PRESS_LINES = "press-lines"
+PEN_LINES = "pen-lines"
 WITNESS_MARKS = "witness-marks"
+DASHED = "dashed-lines"
 TEXT = "text"
 _ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
-LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, WITNESS_MARKS, TEXT)
+LAYERS = (OPENINGS, CUT, NET, ROLL_LINES, PRESS_LINES, PEN_LINES, WITNESS_MARKS, DASHED, TEXT)
+"""One for each operation, in the order in which they are drawn: what is inside is cut before the outline."""
 
 
 class Pen(Protocol):
@@ -43,6 +60,9 @@ class Pen(Protocol):
     def curve(self, curve: Curve, *, dashed: bool) -> None:
         """An open curve, dashed where asked."""
 
+    def pop(self, at: Array) -> None:
+        """A centre pop at a point (2,)."""
+
     def text(self, label: Label) -> None:
         """A line of text."""
 
@@ -52,16 +72,17 @@ def draw(pattern: Pattern, pen: Pen) -> None:
 
     Roll lines stop short of any text that stands on them.
     """
-    pen.layer(CUT)
-    pen.contour(pattern.cut)
     marked = pattern.openings if pattern.openings_as == "marked" else ()
-    if not marked:
+    if pattern.openings and not marked:
+        pen.layer(OPENINGS)
         for opening in pattern.openings:
             if pattern.openings_as == "ties":
                 for curve in between_ties(opening, pattern.tie):
                     pen.curve(curve, dashed=False)
             else:
                 pen.contour(opening)
+    pen.layer(CUT)
+    pen.contour(pattern.cut)
     net = _off_the_cut(pattern.net, pattern.cut)
     if net or marked:
         pen.layer(NET)
@@ -73,18 +94,15 @@ def draw(pattern: Pattern, pen: Pen) -> None:
             for curve in net:
                 pen.curve(curve, dashed=False)
     lengths = witness_lengths(pattern.net, pattern.marks)
-    strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
-    if pattern.full_lines:
-        strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
-    if len(strokes):
-        pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
-        for start, end in strokes:
-            pen.line(start, end)
+    if pattern.lines_as != "none":
+        _draw_lines(pattern, pen, lengths)
     marks = witness_strokes(pattern.marks, lengths)
-    if len(marks) or pattern.dashed:
+    if len(marks):
         pen.layer(WITNESS_MARKS)
         for start, end in marks:
             pen.line(start, end)
+    if pattern.dashed:
+        pen.layer(DASHED)
         for curve in pattern.dashed:
             pen.curve(curve, dashed=True)
     if pattern.labels or pattern.arrows:
@@ -95,6 +113,27 @@ def draw(pattern: Pattern, pen: Pen) -> None:
             for start, end in arrow_strokes(arrow):
                 pen.line(start, end)
             pen.text(arrow_label(arrow, text))
+
+
+def _draw_lines(pattern: Pattern, pen: Pen, lengths: Array) -> None:
+    """The roll or press lines, marked as the pattern asks; lengths: of the witness marks (n,) [mm].
+
+    A pop stands where a tick would end: at the edge itself the cut would take it away.
+    """
+    strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
+    if pattern.full_lines:
+        strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
+    if not len(strokes):
+        return
+    if pattern.lines_as == "pen":
+        pen.layer(PEN_LINES)
+    else:
+        pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
+    for start, end in strokes:
+        if pattern.lines_as == "pops":
+            pen.pop(end)
+        else:
+            pen.line(start, end)
 
 
 def _off_the_cut(net: Outline, cut: Outline) -> list[Curve]:

@@ -129,6 +129,8 @@ class Pattern:
     facts: lines of text that every sheet states. The first four tell which piece it is: mark and
         kind, sizes, length or cuts, where the sizes are measured.
     units: of the figures on the sheets, `mm` or `in`; all values here are in mm.
+    lines_as: how the roll and press lines are marked: `ticks` at both edges, `full`, `pops` (centre pops
+        near both edges), `pen` (full, on a layer of their own) or `none`.
     openings_as: whether the openings are `cut`, only `marked` on the net line, or cut but left on `ties`.
     tie: width of a tie [mm].
     flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
@@ -152,7 +154,7 @@ class Pattern:
     marks: tuple[WitnessMark, ...]
     facts: tuple[str, ...]
     datum: str
-    full_lines: bool
+    lines_as: str
     rulings: Rulings
     openings_as: str = "cut"
     tie: float = 0.0
@@ -165,3 +167,8 @@ class Pattern:
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()
+
+    @property
+    def full_lines(self) -> bool:
+        """Whether roll and press lines run from edge to edge."""
+        return self.lines_as in ("full", "pen")
