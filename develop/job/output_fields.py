@@ -10,12 +10,10 @@ from develop.pieces.field_types import Choice, Length
 from develop.pieces.fields import Declared
 from develop.wording import listed, near_miss, shown
 
-__all__ = ["ALL_FORMATS", "FORMATS", "FORMATS_FIELD", "OUTPUT_FIELDS", "Outputs", "Words", "outputs_of"]
+__all__ = ["FORMATS", "FORMATS_FIELD", "OUTPUT_FIELDS", "Outputs", "Words", "outputs_of"]
 
-ALL_FORMATS = ("svg", "pdf", "dxf", "json", "png", "stl", "glb")
-"""Every format, in the order in which the files are written and named."""
-FORMATS = ("svg", "pdf", "dxf", "json", "png")
-"""Those that are written when none are named."""
+FORMATS = ("svg", "pdf", "dxf", "json", "png", "stl", "glb")
+"""Every format, in the order in which the files are written and named; all are written if none are named."""
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -63,7 +61,7 @@ class Outputs:
 
 _PLAIN = Outputs()
 FORMATS_FIELD = Declared(
-    name="formats", type=Words(ALL_FORMATS), help="files to write", required=False, default=FORMATS
+    name="formats", type=Words(FORMATS), help="files to write", required=False, default=FORMATS
 )
 """Which files are written."""
 OUTPUT_FIELDS = (

@@ -7,10 +7,10 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from develop.errors import Refusal
-from develop.job.output_fields import ALL_FORMATS, FORMATS, Outputs
+from develop.job.output_fields import FORMATS, Outputs
 from develop.job.writing import file_key, write_all
 from develop.pieces.fields import Piece, record_of
-from develop.pieces.hand import builds_of
+from develop.pieces.hand import OPPOSITE, builds_of
 
 if TYPE_CHECKING:
     from develop.checks import Check
@@ -69,7 +69,7 @@ def make(
             built.with_patterns([lettered(pattern) for pattern in built.patterns]) for built in builds
         )
     patterns = [pattern for built in builds for pattern in built.patterns]
-    for each in (each for each in ALL_FORMATS if each in formats):
+    for each in (each for each in FORMATS if each in formats):
         if each == "pdf":
             from develop.outputs.pdf import printed
 
@@ -176,6 +176,8 @@ def _files(
             checks=checks,
         )
         return {f"{mark}.json": data}
+    if ending in ("stl", "glb"):
+        return _solids(ending, piece, builds)
     from develop.solid import Solid
 
     title = f"{mark}: {patterns[0].facts[1]}"
@@ -199,3 +201,18 @@ def _files(
     names = [part.pattern.mark for part in others for _ in part.frames]
     title = f"{mark}: {piece.kind}" if mark != piece.kind else mark
     return {f"{mark}.png": picture(placed, (title, *patterns[0].facts[1:3]), names)}
+
+
+def _solids(ending: str, piece: Piece, builds: Sequence[Built]) -> dict[str, bytes]:
+    """The finished piece as a solid, and its opposite hand as another."""
+    from develop.outputs.solid_files import glb, meshes_of, stl
+
+    # A band of paper is no thicker than the paper is, and lies with its middle where it is developed.
+    thickness = float(getattr(piece, "paper", getattr(piece, "thickness", 0.0)))
+    neutral_line = 0.5 if hasattr(piece, "paper") else float(getattr(piece, "neutral_line", 0.5))
+    files = {}
+    for built, ends in zip(builds, ("", OPPOSITE), strict=False):
+        meshes = meshes_of(built, thickness=thickness, neutral_line=neutral_line)
+        mark = f"{piece.mark}{ends}"
+        files[f"{mark}.{ending}"] = stl(meshes) if ending == "stl" else glb(meshes, mark)
+    return files

@@ -9,6 +9,7 @@ from develop.solid.meeting import MeetingEnd
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.wall import Mesh, plate, wall
 
 __all__ = [
     "End",
@@ -17,10 +18,13 @@ __all__ = [
     "Frame",
     "Holes",
     "MeetingEnd",
+    "Mesh",
     "Placed",
     "Rim",
     "Solid",
     "Stretch",
     "TaperMeetingEnd",
     "cut_slopes",
+    "plate",
+    "wall",
 ]
