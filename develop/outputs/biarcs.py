@@ -21,10 +21,11 @@ __all__ = ["Arcs", "arcs_of"]
 
 _CORNER = 1e-4  # [rad] a greater turn between two Béziers is a corner
 _STRAIGHT = 1e-7  # [mm] control points nearer than this to their chord make a line
-_FLAT = 1e-4  # [mm] an arc that rises less over its chord is written as a line
+_FLAT = 0.02  # of the limit: an arc that rises less over its chord is written as a line
+_FLATTEST = 1e-4  # [mm] but never one that rises more than this
 _MOST_HALF = 1.2  # [rad] half the sweep of one arc of a biarc, at most
-_LOOKS = np.linspace(0.0, 1.0, 25)[1:-1]  # where a biarc on trial is looked at
-_TRIAL = 0.98  # of the limit, while so few places are looked at
+_LOOKS = np.linspace(0.0, 1.0, 25)[1:]  # where a biarc on trial is looked at
+_TRIAL = 0.97  # of the limit, while so few places are looked at
 _ARC_TURN = 2e-4  # [rad] by how much one arc may leave the tangents at its ends
 _FULL = 5.5  # [rad] an arc of more is cut in two
 
@@ -142,7 +143,7 @@ def _angle(a: Array, b: Array) -> Array:
 
 def _sampled(pieces: Array, first: Array, start: int) -> _Run:
     """A smooth stretch of Béziers at equal steps of their parameters."""
-    steps = min(64, max(16, 512 // len(pieces)))
+    steps = min(1024, max(64, 2048 // len(pieces)))
     t = (np.arange(steps) / steps)[:, None]
     p = pieces[:, None]
     points = (
@@ -268,12 +269,13 @@ def _biarcs(run: _Run, limit: float) -> _Fit:
     """The stretch as the fewest biarcs that going along it and taking the longest each time gives."""
     points, tangents = run
     last = len(points) - 1
+    flat = min(_FLAT * limit, _FLATTEST)
 
     def fits(i: int, j: int) -> _Biarc | None:
         biarc = _biarc(points[i], tangents[i], points[j], tangents[j])
         if biarc is None:
             return None
-        looked = points[np.unique(np.append((i + _LOOKS * (j - i)).astype(int), j))]
+        looked = points[(i + _LOOKS * (j - i)).astype(int)]
         return biarc if _deviation(looked, points[i], tangents[i], biarc) <= _TRIAL * limit else None
 
     found, bulges, worst = list[Array](), list[float](), 0.0
@@ -299,6 +301,13 @@ def _biarcs(run: _Run, limit: float) -> _Fit:
             at += 1
             continue
         own = _deviation(points[at + 1 : good + 1], points[at], tangents[at], best)
+        while own > limit - flat and good > at + 1:  # worse between the places looked at
+            good = at + max(15 * (good - at) // 16, 1)
+            shorter = _biarc(points[at], tangents[at], points[good], tangents[good])
+            if shorter is None:
+                continue
+            best = shorter
+            own = _deviation(points[at + 1 : good + 1], points[at], tangents[at], best)
         flattened = 0.0
         for start, end, half in (
             (points[at], best.joint, best.halves[0]),
@@ -306,8 +315,8 @@ def _biarcs(run: _Run, limit: float) -> _Fit:
         ):
             rise = 0.5 * float(np.hypot(*(end - start))) * math.tan(half / 2.0)
             found.append(end)
-            bulges.append(math.tan(half / 2.0) if abs(rise) > _FLAT else 0.0)
-            flattened = max(flattened, abs(rise) if abs(rise) <= _FLAT else 0.0)
+            bulges.append(math.tan(half / 2.0) if abs(rise) > flat else 0.0)
+            flattened = max(flattened, abs(rise) if abs(rise) <= flat else 0.0)
         worst = max(worst, own + flattened)
         step = good - at
         at = good

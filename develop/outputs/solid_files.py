@@ -21,8 +21,9 @@ from develop.solid import Mesh, Solid, plate, wall
 __all__ = ["glb", "meshes_of", "stl"]
 
 _CHORDS = 0.01  # [mm] of the edges of flat parts
-_APART = 0.0005  # [mm] by which each face of every second body lies further in
-_HEADER = b"solid of a finished piece, mm".ljust(80, b" ")
+_APART = 0.0005  # [mm] by which the faces of neighbours differ
+# Not beginning with "solid", which is how the text form begins.
+_HEADER = b"finished piece, in mm".ljust(80, b" ")
 _FLOAT, _UINT = 5126, 5125  # component types of glTF 2.0
 _VERTICES, _INDICES = 34962, 34963  # targets of its buffer views
 _GREY = [0.56, 0.64, 0.72, 1.0]
@@ -34,14 +35,13 @@ def meshes_of(built: Built, *, thickness: float, neutral_line: float) -> tuple[M
     thickness: of the wall [mm]; without any, a part is its bare surface, which is not closed.
     neutral_line: where in the wall the developed sheet lies, 0 inside to 1 outside.
     """
-    count = sum(len(part.frames) for part in built.parts)
     found: list[Mesh] = []
     for part in built.parts:
         made: dict[float, Mesh] = {}
         for frame in part.frames:
             number = len(found)
-            # Round a ring of an odd number of parts the last is beside the first, too.
-            step = 2 if number and number == count - 1 and count % 2 else number % 2
+            # Rolled parts stand in a row; those of a ring may lie beside any other.
+            step = number % 2 if isinstance(part.solid, Solid) else number
             inset = min(step * _APART, thickness / 8.0)
             if inset not in made:
                 made[inset] = _body(part, thickness, neutral_line, inset)

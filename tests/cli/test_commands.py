@@ -63,13 +63,14 @@ def test_the_example_in_the_help_runs(run, tmp_path: Path, name: str) -> None:  
     done = run(*shlex.split(line)[1:])
     assert done.code == 0
     assert done.err == ""
-    # One drawing for each pattern, the rest once.
-    svgs = rf"{name}.svg|{name}-\w+.svg(?:, {name}-\w+.svg)+"
+    # One drawing of each format for each pattern, the rest once.
+    svgs, dxfs = (rf"(?:{name}.{end}|{name}-\w+.{end}(?:, {name}-\w+.{end})+)" for end in ("svg", "dxf"))
     assert re.fullmatch(
-        rf"{name}: wrote (?:{svgs}), {name}.pdf, {name}.json, {name}.png in out; all \d+ checks hold\n",
+        rf"{name}: wrote {svgs}, {name}.pdf, {dxfs}, {name}.json, {name}.png, {name}.stl, {name}.glb in out; "
+        r"\d+ arcs in the DXF, within 0\.00\d\d mm of the curve; all \d+ checks hold\n",
         done.out,
     )
-    assert len(list((tmp_path / "out").iterdir())) == 3 + done.out.count(".svg")
+    assert len(list((tmp_path / "out").iterdir())) == 5 + 2 * done.out.count(".svg")
     piece, _ = read_piece(kind_of(name), kind_of(name).example)
     assert piece is not None
     assert json.loads((tmp_path / "out" / f"{name}.json").read_bytes())["fields"] == record_of(piece)
@@ -166,7 +167,7 @@ def test_more_than_one_large_sheet_is_told(run) -> None:  # type: ignore[no-unty
 def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
     done = run(
         "transition", "--end-a", "ellipse 600", "--lenght", "450", "--offset", "0,x", "--flush", "top", "--rotate", "1",
-        "--rotate", "2", "--mark", "a/b", "--formats", "svg,dxf", "--units", "furlong", "--quantity", "--neutral-line=2",
+        "--rotate", "2", "--mark", "a/b", "--formats", "svg,xdf", "--units", "furlong", "--quantity", "--neutral-line=2",
         "stray", "-x", "--colour=red", "-o", "out",
     )  # fmt: skip
     assert done.code == 2
@@ -184,7 +185,7 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
         '--flush: "top" is given together with offset; allowed: one of the two',
         '--mark: "a/b" has the character "/"; allowed: letters',
         '--neutral-line: "2" is out of range; allowed: a number from 0 to 1',
-        '--formats: "dxf" is not one of them; did you mean "pdf"?; allowed: svg, pdf, json or png',
+        '--formats: "xdf" is not one of them; did you mean "dxf"?; allowed: svg, pdf, dxf, json, png, stl or glb',
         '--units: "furlong" is not one of them; allowed: mm, cm, m, in or ft',
     ]
     assert len(done.said) == len(starts)
