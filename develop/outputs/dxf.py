@@ -98,6 +98,8 @@ def dxf(
     bounds = np.vstack([curve.bounds() for _, curve in pattern.cut.curves])
     low, high = bounds.min(axis=0).tolist(), bounds.max(axis=0).tolist()
     document.modelspace().reset_extents((*low, 0.0), (*high, 0.0))
+    # Beside the model space itself: a corner at (0, 0) counts as none there.
+    document.header["$EXTMIN"], document.header["$EXTMAX"] = (*low, 0.0), (*high, 0.0)
     middle = ((low[0] + high[0]) / 2.0, (low[1] + high[1]) / 2.0)
     document.set_modelspace_vport(1.1 * max(high[1] - low[1], 0.6 * (high[0] - low[0])), middle)
     return Dxf(_written(document, pattern), pen.arcs, pen.deviation)
@@ -118,13 +120,17 @@ def _saying(pattern: Pattern, words: str) -> Pattern:
 
 def _written(document: Drawing, pattern: Pattern) -> bytes:
     """The file without date, user, version or chance numbers; the facts as comments at its head."""
+    # The library adds its classes in the order of a set, which changes from run to run.
+    classes = document.classes
+    classes.add_required_classes(document.dxfversion)
+    classes.classes = dict(sorted(classes.classes.items()))
     stream = io.StringIO()
     document.write(stream)
     text = stream.getvalue()
     text = re.sub(rf"  9\n\$(?:{'|'.join(_PERSONAL)})\n *\d+\n[^\n]*\n", "", text)
     for name in ("CREATED_BY_EZDXF", "WRITTEN_BY_EZDXF"):
         text = text.replace(f"\n{document.ezdxf_metadata()[name]}\n", "\nin mm\n")
-    comments = (" ".join(line.split()) for line in (*pattern.facts, "units: mm, 1:1"))
+    comments = (re.sub(r"\s*[\r\n]\s*", " ", line) for line in (*pattern.facts, "units: mm, 1:1"))
     head = "".join(f"999\n{line}\n" for line in comments)
     return document.encode(head + text)
 

@@ -122,6 +122,7 @@ def _draw_lines(pattern: Pattern, pen: Pen, lengths: Array) -> None:
     """
     strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
     if pattern.full_lines:
+        strokes = _off_the_marks(strokes, witness_strokes(pattern.marks, lengths))
         strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
     if not len(strokes):
         return
@@ -134,6 +135,23 @@ def _draw_lines(pattern: Pattern, pen: Pen, lengths: Array) -> None:
             pen.pop(end)
         else:
             pen.line(start, end)
+
+
+def _off_the_marks(strokes: Array, marks: Array) -> Array:
+    """The strokes (n, 2, 2) without what witness marks (k, 2, 2) draw already, as at openings."""
+    found = []
+    for start, end in strokes:
+        along = end - start
+        long = float(np.hypot(*along))
+        gap = marks - start
+        off = np.abs(gap[..., 0] * along[1] - gap[..., 1] * along[0]).max(axis=1) / long
+        shares = np.sort(gap[off < _ON_LINE] @ along / long**2, axis=1)
+        at = 0.0
+        for low, high in [*sorted(np.clip(shares, 0.0, 1.0).tolist()), (1.0, 1.0)]:
+            if (low - at) * long > _ON_LINE:
+                found.append(np.array([start + at * along, start + low * along]))
+            at = max(at, high)
+    return np.array(found) if found else np.empty((0, 2, 2))
 
 
 def _off_the_cut(net: Outline, cut: Outline) -> list[Curve]:

@@ -32,3 +32,37 @@ def drawn(vertices, *, closed, rise=1e-5):
     if not closed:
         points.append(tuple(vertices[-1][:2]))
     return np.array(points)
+
+
+def length(vertices, *, closed):
+    """Length of lines and arcs [mm]."""
+    ends = [*vertices[1:], vertices[0]] if closed else vertices[1:]
+    found = 0.0
+    for (x, y, bulge), (u, v, _) in zip(vertices, ends, strict=False):
+        half = 2.0 * math.atan(bulge)
+        found += math.hypot(u - x, v - y) * (half / math.sin(half) if bulge else 1.0)
+    return found
+
+
+def distances(points, vertices, *, closed):
+    """Distance (n,) of points (n, 2) from lines and arcs."""
+    best = np.full(len(points), np.inf)
+    ends = [*vertices[1:], vertices[0]] if closed else vertices[1:]
+    for (x, y, bulge), (u, v, _) in zip(vertices, ends, strict=False):
+        start, chord = np.array([x, y]), np.array([u - x, v - y])
+        gap, long = points - start, float(np.hypot(*chord))
+        if not bulge:
+            share = np.clip(gap @ chord / max(long * long, 1e-300), 0.0, 1.0)
+            best = np.minimum(best, np.hypot(*(gap - share[:, None] * chord).T))
+            continue
+        half = 2.0 * math.atan(bulge)
+        radius = long / (2.0 * math.sin(half))  # signed
+        left = np.array([-chord[1], chord[0]]) / long
+        centre = start + chord / 2.0 + radius * math.cos(half) * left
+        out = -left * math.copysign(1.0, bulge)  # to the middle of the arc
+        from_centre = points - centre
+        far = np.hypot(*from_centre.T)
+        inside = from_centre @ out >= far * math.cos(half)
+        ends_off = np.minimum(np.hypot(*gap.T), np.hypot(*(points - (u, v)).T))
+        best = np.minimum(best, np.where(inside, np.abs(far - abs(radius)), ends_off))
+    return best
