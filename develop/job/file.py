@@ -6,10 +6,11 @@ Everything that is wrong is found in one reading, and each problem says the file
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 from develop.errors import InputError, Problem, Refusal
 from develop.job.lines import Path, lines_of
+from develop.job.output_fields import FORMATS, FORMATS_FIELD, OUTPUT_FIELDS, Outputs, outputs_of
 from develop.job.writing import file_key
 from develop.pieces import KINDS, kind_of
 from develop.pieces.field_types import Choice, Text
@@ -24,11 +25,12 @@ _LARGEST = 16_000_000
 _WHAT = "a job file"
 _RULES = "a file of rules"
 
+_UNITS = Choice(tuple(UNITS))
 _JOB = (
     Declared(name="name", type=Text(), help="name of the job", required=False, default=""),
     Declared(
         name="units",
-        type=Choice(tuple(UNITS)),
+        type=_UNITS,
         help="unit of lengths given as bare numbers",
         required=False,
         default="mm",
@@ -40,6 +42,8 @@ _JOB = (
         required=False,
         default="",
     ),
+    FORMATS_FIELD,
+    *OUTPUT_FIELDS,
 )
 _TABLES = ("job", "defaults", "piece")
 # A mark is one piece's own.
@@ -72,11 +76,14 @@ class Placed:
 
 @dataclass(frozen=True)
 class Job:
-    """A job as read: its name, the unit of its bare lengths, and its pieces in the file's order."""
+    """A job as read: its name, the unit of its bare lengths, its pieces in the file's order, and which
+    files are written of them, and how."""
 
     name: str
     units: str
     pieces: tuple[Placed, ...]
+    formats: tuple[str, ...] = FORMATS
+    outputs: Outputs = field(default_factory=Outputs)
 
 
 def read_job(file: str) -> Job:
@@ -92,7 +99,9 @@ def read_job(file: str) -> Job:
             hint = near_miss(name, _TABLES)
             given = f"no such table{hint}"
             problems.append(Problem(name, given, "[job], [defaults] and [[piece]]", places.of(name)))
-    name, unit, rules = _job(data, places, problems)
+    own = _job(data, places, problems)
+    unit = str(own["units"])
+    rules = _shop_rules(str(own["rules"]), places, problems)
     defaults = _table(data, "defaults", places, problems)
     raw = _pieces(data, places, problems)
     _check_defaults(defaults, unit, places, problems)
@@ -105,7 +114,11 @@ def read_job(file: str) -> Job:
     _check_marks(raw, places, problems)
     if problems:
         raise InputError(_once(problems))
-    return Job(name=name, units=unit, pieces=tuple(read))
+    formats = own["formats"]
+    assert isinstance(formats, tuple)
+    return Job(
+        name=str(own["name"]), units=unit, pieces=tuple(read), formats=formats, outputs=outputs_of(own)
+    )
 
 
 def _text_of(file: str, what: str = _WHAT) -> str:
@@ -181,26 +194,39 @@ def _table(
     return {}
 
 
-def _job(
-    data: Mapping[str, object], places: Places, problems: list[Problem]
-) -> tuple[str, str, Rules | None]:
-    """Name, unit and the shop's own rules."""
-    values, found = read_fields(_JOB, _table(data, "job", places, problems), unit="mm", where="[job]")
-    problems += [problem.at(places.of("job", problem.field)) for problem in found]
-    rules = None
-    if file := values.get("rules"):
-        from os.path import dirname, join
+def _shop_rules(file: str, places: Places, problems: list[Problem]) -> Rules | None:
+    """The shop's own rules, from the folder of the job file."""
+    from os.path import dirname, join
 
-        try:
-            rules = read_rules(join(dirname(places.file), str(file)))
-        except InputError as error:
-            # What is no line of the rules is a fault of the job's.
-            lost = places.of("job", "rules")
-            problems += [
-                each if ":" in each.place.rpartition("/")[2] else replace(each, field="rules", place=lost)
-                for each in error.problems
-            ]
-    return str(values.get("name", "")), str(values.get("units", "mm")), rules
+    if not file:
+        return None
+    try:
+        return read_rules(join(dirname(places.file), file))
+    except InputError as error:
+        # What is no line of the rules is a fault of the job's.
+        lost = places.of("job", "rules")
+        problems += [
+            each if ":" in each.place.rpartition("/")[2] else replace(each, field="rules", place=lost)
+            for each in error.problems
+        ]
+        return None
+
+
+def _job(data: Mapping[str, object], places: Places, problems: list[Problem]) -> dict[str, object]:
+    """The values of [job] by name; what is wrong is as if it were not given."""
+    given = _table(data, "job", places, problems)
+    try:
+        unit = str(_UNITS.read(given.get("units", "mm"), unit=""))
+    except InputError:
+        unit = "mm"  # the units are one of the problems then
+    values, found = read_fields(_JOB, given, unit=unit, where="[job]")
+    values = {each.name: each.default for each in _JOB} | values
+    try:
+        outputs_of(values)
+    except InputError as error:
+        found += error.problems
+    problems += [problem.at(places.of("job", problem.field)) for problem in found]
+    return values
 
 
 def _pieces(

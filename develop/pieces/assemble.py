@@ -37,7 +37,11 @@ _TIE = 1e-9
 
 @dataclass(frozen=True)
 class Wording:
-    """What the pattern says and how it lies. units: of the figures on the sheets, `mm` or `in`."""
+    """What the pattern says and how it lies.
+
+    lines_as: how roll and press lines are marked, as the pattern has it; or `auto`: press lines full, roll
+    lines as ticks. units: of the figures on the sheets, `mm` or `in`.
+    """
 
     mark: str
     kind: str
@@ -46,7 +50,7 @@ class Wording:
     facts: tuple[str, ...]
     datum: str
     flow: str
-    full_lines: bool
+    lines_as: str
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
 
@@ -167,7 +171,7 @@ def pattern_of(
         marks=tuple(marks),
         facts=(*wording.facts[:-1], *more, *wording.facts[-1:]),
         datum=wording.datum,
-        full_lines=wording.full_lines or bends is not None,
+        lines_as=_lines_as(wording.lines_as, bent=bends is not None),
         rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
         flow=wording.flow,
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
@@ -310,6 +314,12 @@ def _outline(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[tuple[str, 
         ("seam_left", segment(b.start, a.start)),
     ]
     return tuple((name, curve) for name, curve in curves if not _no_more_than_a_point(curve))
+
+
+def _lines_as(wanted: str, *, bent: bool) -> str:
+    if wanted != "auto":
+        return wanted
+    return "full" if bent else "ticks"
 
 
 def _no_more_than_a_point(curve: Curve) -> bool:

@@ -130,7 +130,7 @@ def collar_part(
     quantity: int,
     facts: tuple[str, ...],
     material: str,
-    full_lines: bool,
+    lines_as: str,
 ) -> Part:
     """The collar: cut at the bottom by the plate's plane, square on top."""
     seam = seam_parameter(wall.section, wall.lengths, seam_at)
@@ -146,7 +146,7 @@ def collar_part(
             facts=(f"{mark}: {kind}", *facts, material, f"quantity {quantity}, outside up"),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
             flow="",
-            full_lines=full_lines,
+            lines_as=lines_as,
         ),
         divisions=divisions,
         distance=wall.distance,

@@ -10,6 +10,7 @@ from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.wall import Mesh, plate, wall
 
 __all__ = [
     "End",
@@ -19,6 +20,7 @@ __all__ = [
     "Holes",
     "Made",
     "MeetingEnd",
+    "Mesh",
     "Patch",
     "Placed",
     "Rim",
@@ -26,6 +28,8 @@ __all__ = [
     "Stretch",
     "TaperMeetingEnd",
     "cut_slopes",
+    "plate",
+    "wall",
 ]
 
 Made = Solid | FlatRing | FlatPlate | Patch

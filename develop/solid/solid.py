@@ -205,6 +205,11 @@ class Solid:
             ends[-1] = period
         return np.asarray(start + ends)
 
+    @property
+    def breaks(self) -> Array:
+        """Parameters (n,) of end A's section between which the side is smooth."""
+        return self._panel_ends(self.end_a, self.end_b)[:-1]
+
     # ---- for pictures and meshes -----------------------------------------------------------
 
     def around(self, count: int) -> Array:
