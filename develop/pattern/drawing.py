@@ -113,17 +113,17 @@ def draw(pattern: Pattern, pen: Pen) -> None:
         for curve in pattern.folds:
             pen.curve(curve, dashed=True)
     marks = np.concatenate([witness_strokes(pattern.marks, lengths), hole_strokes(pattern.holes)])
-    if len(marks):
+    if len(marks) or pattern.thin:
         pen.layer(WITNESS_MARKS)
         for start, end in marks:
             pen.line(start, end)
-    if pattern.dashed or pattern.thin:
-        pen.layer(DASHED)
-        for curve in pattern.dashed:
-            pen.curve(curve, dashed=True)
         for curve in pattern.thin:
             for part in _outside(curve, _text_boxes(pattern)):
                 pen.curve(part, dashed=False)
+    if pattern.dashed:
+        pen.layer(DASHED)
+        for curve in pattern.dashed:
+            pen.curve(curve, dashed=True)
     if pattern.labels or pattern.arrows:
         pen.layer(TEXT)
         for label in pattern.labels:
