@@ -21,8 +21,9 @@ if TYPE_CHECKING:
     from develop.pieces.header import StraightHeader, TaperHeader
     from develop.sections.section import Section
     from develop.solid import Frame
+    from develop.surfaces.band_trim import BandTrim
     from develop.surfaces.cylinder import Cylinder, CylinderSheet
-    from develop.surfaces.meeting import BandTrim, CylinderTrim
+    from develop.surfaces.meeting import CylinderTrim
     from develop.surfaces.sheet import Sheet
 
 __all__ = ["Branch"]

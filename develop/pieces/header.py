@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
 from develop.errors import InputError, Problem, Refusal
@@ -16,8 +16,9 @@ if TYPE_CHECKING:
     from develop.sections.section import Section
     from develop.solid import Frame, MeetingEnd, Solid
     from develop.surfaces.band import Band
+    from develop.surfaces.band_trim import BandTrim
     from develop.surfaces.cylinder import Cylinder
-    from develop.surfaces.meeting import BandTrim, CylinderTrim
+    from develop.surfaces.meeting import CylinderTrim
     from develop.surfaces.sheet import Sheet
 
 __all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader", "standing", "tapered"]
@@ -172,6 +173,10 @@ class TaperHeader:
     band: Band
     outward: float
     turn_b: float = 0.0
+    # A branch asks again and again where it stands.
+    _trims: dict[tuple[bytes, bytes, float], BandTrim] = field(
+        default_factory=dict, repr=False, compare=False
+    )
 
     @property
     def section(self) -> Section:
@@ -207,15 +212,19 @@ class TaperHeader:
 
     def trim(self, frame: Frame) -> BandTrim:
         """Where a branch ends on the face."""
-        from develop.surfaces.meeting import BandTrim
-
-        return BandTrim(self.band, frame, self.outward)
+        return self._trim(frame, self.outward)
 
     def through(self, frame: Frame) -> BandTrim:
         """Where the hole goes through the developed header."""
-        from develop.surfaces.meeting import BandTrim
+        return self._trim(frame, 0.0)
 
-        return BandTrim(self.band, frame)
+    def _trim(self, frame: Frame, outward: float) -> BandTrim:
+        from develop.surfaces.band_trim import BandTrim
+
+        key = frame.origin.tobytes(), frame.axes.tobytes(), outward
+        if key not in self._trims:
+            self._trims[key] = BandTrim(self.band, frame, outward)
+        return self._trims[key]
 
     def joint(self, branch: Section, frame: Frame) -> MeetingEnd:
         """The branch's end on the face, in space."""
