@@ -31,6 +31,7 @@ __all__ = ["Branch"]
 # How far an overhang may be rounding [mm].
 _TANGENT = 1e-9
 _HALVINGS = 70
+_TRIES = 24
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
@@ -235,28 +236,48 @@ class Branch(Plate):
 
     def _reach(self, branch: Section, header: StraightHeader | TaperHeader, frame: Frame) -> None:
         """Raises Refusal where the joint runs past an end of the header."""
-        import numpy as np
+        from dataclasses import replace
 
-        u = branch.at_direction(np.radians(np.arange(360.0)))
-        start = np.hstack([branch.point(u), np.zeros((len(u), 1))])
-        lift = header.trim(frame).meet(start, np.broadcast_to(np.array([0.0, 0.0, 1.0]), start.shape))
-        z = (start @ frame.axes + frame.origin)[:, 2] + lift * frame.axes[2, 2]
-        low, high, end = float(z.min()), float(z.max()), header.length
-        cut = getattr(getattr(header, "band", None), "cut_b", None)
-        if cut is not None:
-            end = float(cut.height) - float(np.abs(cut.rise).sum()) * header.section.width
-        if low > 0.0 and high < end:
+        from develop.pieces.header import StraightHeader
+
+        if header.fits(branch, frame):
             return
         middle = float(frame.origin[2])
-        least = ceil((middle - low) * 10.0 + 1.0) / 10.0
-        most = floor((end - (high - middle)) * 10.0 - 1.0) / 10.0
-        straight = isinstance(self.header, SectionSpec)
+        field, other = "from_a", "a longer header, or a smaller branch"
+        if isinstance(header, StraightHeader):
+            low, high = header.span(branch, frame)
+            shortest, longest = middle - low, header.length - (high - middle)
+            if shortest > longest:
+                field, other = (
+                    "header_length",
+                    f"a header of more than {number_text(ceil(high - low + 1.0))} mm",
+                )
+            end = "A" if low <= 0.0 else "B"
+        else:
+
+            def fits(from_a: float) -> bool:
+                try:
+                    return header.fits(branch, replace(self, from_a=from_a)._frame(header))
+                except Refusal:
+                    return False
+
+            tries = [header.length * (i + 0.5) / _TRIES for i in range(_TRIES)]
+            good = [each for each in tries if fits(each)]
+            shortest, longest = 1.0, 0.0
+            if good:
+                ends = []
+                for inside, outside in ((good[0], 0.0), (good[-1], header.length)):
+                    for _ in range(_HALVINGS // 2):
+                        between = 0.5 * (inside + outside)
+                        inside, outside = (between, outside) if fits(between) else (inside, between)
+                    ends.append(inside)
+                shortest, longest = ends
+            end = "A" if middle < 0.5 * (good[0] + good[-1] if good else header.length) else "B"
+        least, most = ceil(shortest * 10.0 + 1.0) / 10.0, floor(longest * 10.0 - 1.0) / 10.0
         raise Refusal(
-            field="header_length" if least > most and straight else "from_a",
-            given=f"the joint reaches past the header's end {'A' if low <= 0.0 else 'B'}",
-            allowed=f"from_a from {number_text(least)} to {number_text(most)} mm"
-            if least <= most
-            else f"a header of more than {number_text(ceil(high - low + 1.0))} mm",
+            field=field,
+            given=f"the joint reaches past the header's end {end}",
+            allowed=f"from_a from {number_text(least)} to {number_text(most)} mm" if least <= most else other,
         )
 
     # ---- the two patterns -------------------------------------------------------------------

@@ -92,7 +92,7 @@ class BandTrim:
     def past(self, start: Array) -> Mask:
         """Which lines (n,) through start (n, 3) do not meet the side between its two ends."""
         found = self._met(start)
-        return np.asarray(~found.met | (found.share <= 0.0) | (found.share >= found.most))
+        return np.asarray((found.share <= 0.0) | (found.share >= found.most))
 
     def breaks(self, section: Section) -> tuple[float, ...]:
         """Parameters of the trimmed cylinder's section at which the joint may have corners or kinks.
