@@ -78,7 +78,27 @@ class Solid:
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
         normal = self._touching(self.end_a, self.end_b, u)
         a = self.end_a.point(u)
-        return Strip(a, self._cut(a, self.end_b.touch(normal)), normal)
+        return Strip(a, self._cut(a, self._feet(normal, u)), normal)
+
+    def _feet(self, normal: Array, u: Array) -> Array:
+        """Points (n, 3) of end B on the lines from end A's parameters u (n,), given the planes' normals.
+
+        Where a plane touches both ends along straight sides the lines run over a flat facet, on which both
+        ends are walked in proportion.
+        """
+        feet = self.end_b.touch(normal)
+        (first, last), (low, high) = (
+            end.section.parameters(*(normal @ end.spans).T) for end in (self.end_a, self.end_b)
+        )
+        facet = np.flatnonzero((last > first) & (high > low))
+        if len(facet):
+            length = (last - first)[facet]
+            past = (u[facet] - first[facet]) % self.end_a.section.period
+            # Before the side's first point by rounding alone.
+            past = np.where(past > self.end_a.section.period - _SAME, 0.0, past)
+            share = np.minimum(past / length, 1.0)
+            feet[facet] = self.end_b.point(low[facet] + share * (high - low)[facet])
+        return feet
 
     def _cut(self, a: Array, b: Array) -> Array:
         """The far ends (n, 3) of lines from a to b, at the cut where there is one."""
