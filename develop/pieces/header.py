@@ -251,9 +251,7 @@ class TaperHeader:
         from develop.solid import TaperMeetingEnd
 
         band, out = self.band, self.outward
-        return TaperMeetingEnd.between(
-            branch, band.rim_a, band.rim_b, frame, outward=out, sheet=out + sheet if sheet else 0.0
-        )
+        return TaperMeetingEnd.between(branch, band.rim_a, band.rim_b, frame, outward=out, sheet=sheet)
 
     def hole(self, branch: Section, frame: Frame) -> MeetingEnd:
         """The hole in the header, in space."""

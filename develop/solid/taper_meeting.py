@@ -54,9 +54,9 @@ class TaperMeetingEnd(MeetingEnd):
 
     The side is bounded by the planes that touch both rims, one for each direction φ square to end A.
     A line out of the header leaves it at the first of these planes: that is how the joint is found.
-    rim_a, rim_b: the header's ends, in its frame; header is rim A's section. sheet: how far outside of
-    the rims the header's sheet is developed [mm]; outward: how far outside of them the face lies that
-    is met.
+    rim_a, rim_b: the header's ends, in its frame; header is rim A's section. outward: how far outside of
+    the rims the face lies that is met [mm]; sheet: how far outside of that face the header's sheet, or the
+    plate that lies on it, is developed [mm].
     """
 
     rim_b: Rim | None = None
