@@ -168,8 +168,7 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
     rows = pattern.divisions
     section = solid.end_a.section
-    strip = solid.strip(section.at_direction(np.array([row.direction for row in rows])))
-    true = np.linalg.norm(strip.b - strip.a, axis=1)
+    least, most = solid.lengths(section.at_direction(np.array([row.direction for row in rows])))
     points = np.array([(row.a, row.b) for row in rows])
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
     length = np.array([row.length for row in rows])
@@ -177,7 +176,7 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     if not any(line.press for line in pattern.lines):
         # Of a corner's press lines several start in one direction, and stop short of the edges.
         drawn = np.array([(line.start, line.end) for line in pattern.lines])
-        misses += [length - true, points - drawn]
+        misses += [np.maximum(np.maximum(least - length, length - most), 0.0), points - drawn]
     return float(max(np.max(np.abs(each)) for each in misses))
 
 

@@ -136,7 +136,9 @@ def pattern_of(
 
     bare = Outline(_outline(sheet), sheet.area)
     added = cutting or Cutting()
-    close_by = _outline(sheet, tolerance=_FINE) if added.allowances or added.folds or added.inner else ()
+    # Only the parallels of the ends need them drawn more closely.
+    edges_of: set[str] = {*added.allowances, *(e[0] for e in added.folds), *(e[0] for e in added.inner)}
+    close_by = _outline(sheet, tolerance=_FINE) if edges_of & {"a", "b"} else bare.curves
     whole = allowed(bare, close_by, added.allowances)
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)

@@ -49,7 +49,7 @@ _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 @dataclass(frozen=True, kw_only=True)
 class Branch(Jointed):
-    """A branch into a straight header; lengths in mm, angles in radians.
+    """A branch into a straight or a tapered header; lengths in mm, angles in radians.
 
     The header runs along its own piece frame from its end A to its end B. The branch's end A is the
     joint, its end B the free end; facing that free end, right is the header's right as its own

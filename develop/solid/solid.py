@@ -80,6 +80,31 @@ class Solid:
         a = self.end_a.point(u)
         return Strip(a, self._cut(a, self._feet(normal, u)), normal)
 
+    def lengths(self, u: Array) -> tuple[Array, Array]:
+        """Least and largest lengths (n,) [mm] of the side's straight lines from end A's parameters u (n,).
+
+        They differ only where a plane touches end B along a straight side and end A in one point: all the
+        lines of that flat triangle start there.
+        """
+        strip = self.strip(u)
+        length = np.linalg.norm(strip.b - strip.a, axis=1)
+        least, most = length.copy(), length.copy()
+        if self.side == "parallel":
+            return least, most
+        (first, last), (low, high) = (
+            end.section.parameters(*(strip.normal @ end.spans).T) for end in (self.end_a, self.end_b)
+        )
+        fan = np.flatnonzero((last <= first) & (high > low))
+        if len(fan):
+            a = strip.a[fan]
+            start, end = (self._cut(a, self.end_b.point(each[fan])) for each in (low, high))
+            along = end - start
+            share = -np.einsum("ni,ni->n", start - a, along) / np.einsum("ni,ni->n", along, along)
+            near = start + np.clip(share, 0.0, 1.0)[:, None] * along
+            ends = [np.linalg.norm(each - a, axis=1) for each in (start, end, near)]
+            least[fan], most[fan] = ends[2], np.maximum(*ends[:2])
+        return least, most
+
     def _feet(self, normal: Array, u: Array) -> Array:
         """Points (n, 3) of end B on the lines from end A's parameters u (n,), given the planes' normals.
 

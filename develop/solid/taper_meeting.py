@@ -192,7 +192,10 @@ class TaperMeetingEnd(MeetingEnd):
         for normal in self._normals(0.5 * (low + high)) @ self.frame.axes[:2].T:
             found += [*section.parameters(normal[:1], normal[1:])]
         facets = self._facets
-        for start, end in zip(facets.a.reshape(-1, 3), facets.b.reshape(-1, 3), strict=True):
+        lift = self.outward * facets.normal[:, None]
+        for start, end in zip(
+            (facets.a + lift).reshape(-1, 3), (facets.b + lift).reshape(-1, 3), strict=True
+        ):
             # The plane through that edge along the branch's lines cuts the branch's section.
             across = np.cross(end - start, d)
             flat = self.frame.axes[:2] @ across
@@ -285,9 +288,9 @@ def _over(last: Array, first: Array, along: Array, distance: float) -> tuple[Arr
 
 
 def _straight(rim: Rim) -> Array:
-    """Normals (k, 3), in the rim's own plane, of its straight sides."""
+    """Normals (k, 3), in the rim's own plane, of its straight sides and of where it is nearly straight."""
     section = rim.section
-    at = section.walk(0.5 * (section.breaks[1:] + section.breaks[:-1]))
+    at = section.walk(np.append(0.5 * (section.breaks[1:] + section.breaks[:-1]), section.loose_spots))
     flat: Indices = np.flatnonzero((at.dphi == 0.0) & (at.ds > 0.0))
     x, y, _ = rim.frame.axes
     return np.asarray(at.ex[flat, None] * x + at.ey[flat, None] * y)

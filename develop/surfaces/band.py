@@ -145,8 +145,10 @@ class Band:
                 pace = (course.high[i] - course.low[i]) / (course.end[i] - course.start[i])
                 along = course.low[i] + pace * (u[which] - course.start[i])
                 ds_b = self.rim_b.section.walk(along).ds * pace
+            # Where a curve is flat its foot may run off at no end of speed.
+            ds_a, ds_b = (np.where(np.isfinite(ds), ds, 0.0) for ds in (r.ds_a, ds_b))
             tangent, across = r.a.tangent, r.a.across
-            point_rate = r.ds_a[:, None] * tangent
+            point_rate = ds_a[:, None] * tangent
             part = Swept(
                 point=r.a.point,
                 ruling=r.ruling,

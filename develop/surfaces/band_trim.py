@@ -211,7 +211,7 @@ class BandTrim:
 
     @cached_property
     def _kinks(self) -> Indices:
-        """Places of the near side at which facets, or what goes round corners, begin or end."""
+        """Places of the near side at which facets, what goes round corners, or flat spots begin or end."""
         course, near = self._course, self._near
         middle = 0.5 * (course.start + course.end), 0.5 * (course.low + course.high)
         mine, yours = np.where(course.on_a, *middle), np.where(course.on_a, *middle[::-1])
@@ -219,7 +219,7 @@ class BandTrim:
         for rim, u in ((self.band.rim_a, mine), (self.band.rim_b, yours)):
             at = rim.section.walk(u)
             if rim.section.girth > 0.0:
-                plain &= (at.ds > 0.0) & (at.dphi > 0.0)
+                plain &= (at.ds > 0.0) & (at.dphi > 0.0) & (len(rim.section.loose_spots) == 0)
         plain &= ~course.facet
         joins = np.flatnonzero(np.diff(near.origin) != 0)
         return joins[~(plain[near.origin[joins]] & plain[near.origin[joins + 1]])]
