@@ -48,7 +48,12 @@ def test_the_accuracy_page_tells_the_truth_about_its_methods() -> None:
         assert miss.short_a > 0
 
 
-@pytest.mark.parametrize("name", ["accuracy", "directions", "demo"])
+def test_the_allowances_page_shows_what_its_script_finds() -> None:
+    text = (DOCS / "allowances.md").read_text(encoding="utf-8")
+    assert figure("allowances").page(text) == text
+
+
+@pytest.mark.parametrize("name", ["accuracy", "allowances", "directions", "demo"])
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"
     figure(name).plot(file)
