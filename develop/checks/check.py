@@ -87,8 +87,7 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     left, right = (net.curve(f"seam_{side}") for side in ("left", "right"))
     assert left is not None
     assert right is not None
-    seam = solid.seam_line
-    true_length = float(np.linalg.norm(seam[1] - seam[0]))
+    true_length = solid.seam_length
     limit = max(1e-6, _RELATIVE * true_length)
     checks += [
         Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),

@@ -52,8 +52,8 @@ class Side:
     def edge(self) -> Array:
         """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame."""
         if isinstance(self.solid, Solid):
-            a, b, normal = folded(self.pattern, self.solid)
-            points = (a if self.end == "a" else b) - self.solid.distance * normal
+            a, b = self.solid.on_ends(*folded(self.pattern, self.solid))
+            points = a if self.end == "a" else b
         else:
             assert not isinstance(self.solid, Patch)
             outlines = (self.pattern.net, *self.pattern.openings)

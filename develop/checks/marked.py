@@ -156,7 +156,7 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
     rows = pattern.divisions
     section = solid.end_a.section
-    strip = solid.strip(section.at_direction(np.array([row.direction for row in rows])))
+    strip = solid.sheet_strip(section.at_direction(np.array([row.direction for row in rows])))
     true = np.linalg.norm(strip.b - strip.a, axis=1)
     points = np.array([(row.a, row.b) for row in rows])
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
@@ -178,15 +178,16 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
     lines = pattern.rulings
     mirrored = pattern.face == "inside"
     worst = 0.0
-    for edge, flat, space, end in (("a", lines.a, a, solid.end_a), ("b", lines.b, b, solid.end_b)):
+    given_a, given_b = solid.on_ends(a, b, normal)
+    for edge, flat, space, end in (("a", lines.a, given_a, solid.end_a), ("b", lines.b, given_b, solid.end_b)):
         marks = [mark for mark in pattern.marks if mark.edge == edge]
         if not marks:
             continue
         places = _beside(np.array([mark.at for mark in marks]), flat[::-1] if mirrored else flat)
         if edge == "b" and solid.cut_b is not None:
             # A cut across the side has no centre of its own: its marks are on end A's lines.
-            space, end = a, solid.end_a
-        at = _seen(end, places.between(space - solid.distance * normal))
+            space, end = given_a, solid.end_a
+        at = _seen(end, places.between(space))
         to = np.array([_DIRECTIONS[mark.text] for mark in marks])
         aside = np.abs(to[:, 0] * at[:, 1] - to[:, 1] * at[:, 0])
         beyond = np.where((to * at).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))
