@@ -42,6 +42,11 @@ class Side:
         return self.solid.distance if isinstance(self.solid, Solid) else 0.0
 
     @property
+    def tapers(self) -> bool:
+        """Whether the part's thickness does not lie in the plane of its end."""
+        return isinstance(self.solid, Solid) and self.solid.side == "hull"
+
+    @property
     def curve(self) -> End:
         """Where the edge should lie, in the part's own frame."""
         if isinstance(self.solid, Solid):

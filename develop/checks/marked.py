@@ -179,7 +179,10 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
     mirrored = pattern.face == "inside"
     worst = 0.0
     given_a, given_b = solid.on_ends(a, b, normal)
-    for edge, flat, space, end in (("a", lines.a, given_a, solid.end_a), ("b", lines.b, given_b, solid.end_b)):
+    for edge, flat, space, end in (
+        ("a", lines.a, given_a, solid.end_a),
+        ("b", lines.b, given_b, solid.end_b),
+    ):
         marks = [mark for mark in pattern.marks if mark.edge == edge]
         if not marks:
             continue

@@ -11,7 +11,7 @@ import numpy as np
 from develop.pattern.allowance import allowed
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
-from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, Wall, WitnessMark
 from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.sections.section import Section
@@ -47,6 +47,7 @@ class Wording:
     full_lines: bool
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
+    wall: Wall | None = None
 
 
 @dataclass(frozen=True)
@@ -175,6 +176,7 @@ def pattern_of(
         dashed=view.curves([_beside(dict(close_by), name, -far) for name, far, _ in added.inner]),
         lap_words=added.words[::-1] if view.mirror else added.words,
         added=added.added,
+        wall=wording.wall,
         warnings=added.warnings,
     )
 

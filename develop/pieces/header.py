@@ -90,6 +90,11 @@ class StraightHeader:
     distance: float
 
     @property
+    def around(self) -> Section:
+        """What its wall is round."""
+        return self.section
+
+    @property
     def section_b(self) -> Section | None:
         """Section of end B, for its marks."""
         return self.section
@@ -178,6 +183,11 @@ class TaperHeader:
     band: Band
     outward: float
     turn_b: float = 0.0
+
+    @property
+    def around(self) -> Band:
+        """What its wall is round."""
+        return self.band
 
     @property
     def section(self) -> Section:
@@ -275,10 +285,19 @@ class TaperHeader:
         )
 
 
-def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> TaperHeader:
+def tapered(
+    piece: Piece,
+    *,
+    thickness: float,
+    sizes: str,
+    outward: float,
+    lining: float = 0.0,
+    neutral_line: float | str = 0.5,
+) -> TaperHeader:
     """The header that a transition or a cone makes, in the branch's wall.
 
-    thickness [mm]; outward: of the face that a branch meets, from the given surface [mm]. Raises Refusal.
+    thickness, lining [mm]; neutral_line: 0 inside to 1 outside, or a rule; outward: of the face that a
+    branch meets, from the given surface [mm]. Raises Refusal.
     """
     from dataclasses import replace
 
@@ -286,7 +305,13 @@ def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> Ta
     from develop.pieces.transition import Transition
 
     assert isinstance(piece, Transition | Cone)
-    piece = replace(piece, thickness=thickness, sizes=sizes)
+    if piece.edge_cut != "square" or piece.fits or piece.collar_a or piece.collar_b:
+        raise Refusal(
+            field="header",
+            given="a tapered header with level edges, fits or collars",
+            allowed="edge_cut = square, flush ends and no collars; they can be made on a piece beside it",
+        )
+    piece = replace(piece, thickness=thickness, sizes=sizes, lining=lining, neutral_line=neutral_line)
     band = piece.surface()
     upright = abs(float(band.rim_b.frame.normal[2]) - 1.0) < 1e-12
     straight = any(

@@ -13,6 +13,7 @@ import numpy as np
 
 from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Mask, Panels, resolved, tail
 from develop.solid.end import End
+from develop.solid.straights import contact, straights
 
 if TYPE_CHECKING:
     from develop.solid.solid import Solid
@@ -125,19 +126,11 @@ def _summed(solid: Solid, ends: tuple[End, End], rates: object) -> Array:
     return np.asarray(((WEIGHTS @ found) * panels.half[:, None]).sum(axis=0))
 
 
-def _straights(end: End) -> Array:
-    """First and last parameters (k, 2) of the straight sides of an end."""
-    breaks = end.section.breaks
-    at = end.section.walk(0.5 * (breaks[1:] + breaks[:-1]))
-    flat = (at.dphi == 0.0) & (at.ds > 0.0)
-    return np.stack([breaks[:-1][flat], breaks[1:][flat]], axis=1)
-
-
 def _faces(solid: Solid) -> list[Array]:
     """Normals (3,) of the flat faces of the side, each once."""
     found: list[Array] = []
     for mine, yours in ((solid.end_a, solid.end_b), (solid.end_b, solid.end_a)):
-        for normal in solid.touching(mine, yours, _straights(mine).mean(axis=1)):
+        for normal in solid.touching(mine, yours, straights(mine).mean(axis=1)):
             if all(np.abs(normal - other).max() > _ONE_FACE for other in found):
                 found.append(normal)
     return found
@@ -145,7 +138,7 @@ def _faces(solid: Solid) -> list[Array]:
 
 def _face(solid: Solid, normal: Array) -> float:
     """Area [mm²] of the sheet over a flat face."""
-    a, b = (_contact(end, normal) for end in (solid.end_a, solid.end_b))
+    a, b = (contact(end, normal) for end in (solid.end_a, solid.end_b))
     lift = solid.distance * normal
     plane_a, plane_b = solid.planes
     cut = EndPlane.of_cut(*solid.cut_b) if solid.cut_b else None
@@ -158,16 +151,3 @@ def _face(solid: Solid, normal: Array) -> float:
         corners_b = plane_b.along(b + lift, b - a)
     across = np.cross(corners_b[1] - corners_a[0], corners_b[0] - corners_a[1])
     return 0.5 * float(np.linalg.norm(across))
-
-
-def _contact(end: End, normal: Array) -> Array:
-    """The first and the last point (2, 3) [mm] at which a plane of this normal touches an end."""
-    flat = normal @ end.spans
-    for side in _straights(end):
-        at = end.section.walk(np.array([side.mean()]))
-        apart = abs(float(at.ex[0] * flat[1] - at.ey[0] * flat[0]))
-        if apart < _ONE_FACE * float(np.hypot(*flat)) and float(at.ex[0] * flat[0] + at.ey[0] * flat[1]) > 0.0:
-            # A straight side may be walked in several stretches.
-            first, last = end.section.parameters(at.ex, at.ey)
-            return end.point(np.concatenate([first, last]))
-    return np.repeat(end.touch(normal[None]), 2, axis=0)

@@ -16,6 +16,7 @@ from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, Mask, Panels
 from develop.solid.end import End
 from develop.solid.level import EndPlane, level_area, level_girth
 from develop.solid.meeting import MeetingEnd
+from develop.solid.straights import paired
 
 __all__ = ["Measures", "Solid", "Strip"]
 
@@ -89,7 +90,8 @@ class Solid:
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
         normal = self.touching(self.end_a, self.end_b, u)
         a = self.end_a.point(u)
-        return Strip(a, self._cut(a, self.end_b.touch(normal)), normal)
+        b = paired(self.end_a, self.end_b, u, normal, self.end_b.touch(normal))
+        return Strip(a, self._cut(a, b), normal)
 
     def _cut(self, a: Array, b: Array) -> Array:
         """The far ends (n, 3) of lines from a to b, at the cut where there is one."""
@@ -119,7 +121,7 @@ class Solid:
         )  # type: ignore[return-value]
 
     def plane_miss(self, a: Array, b: Array) -> float:
-        """Largest distance [mm] of the sheet's edges, points a and b (n, 3), from the planes that they lie in."""
+        """Largest distance [mm] of the sheet's edges, a and b (n, 3), from the planes that they lie in."""
         misses = [
             float(np.max(np.abs(plane.over(end))))
             for end, plane in zip((a, b), self.planes, strict=True)
@@ -181,7 +183,9 @@ class Solid:
         """
         if any(self.planes):
             edges = [
-                level_girth(self, end_b=end_b) if plane else self._swept(self._strip_b, (self.end_b, self.end_a), "b")[0]
+                level_girth(self, end_b=bool(end_b))
+                if plane
+                else self._swept(self._strip_b, (self.end_b, self.end_a), "b")[0]
                 for end_b, plane in enumerate(self.planes)
             ]
             return Measures(edges[0], edges[1], level_area(self))
