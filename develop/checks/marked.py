@@ -156,12 +156,18 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
     rows = pattern.divisions
     section = solid.end_a.section
-    strip = solid.sheet_strip(section.at_direction(np.array([row.direction for row in rows])))
-    true = np.linalg.norm(strip.b - strip.a, axis=1)
     points = np.array([(row.a, row.b) for row in rows])
+    dense = np.stack([pattern.rulings.a, pattern.rulings.b], axis=1)
+    # At a sharp corner many lines start in one direction: which of them a row is, its points tell.
+    apart = np.abs(points[:, None] - dense[None]).max(axis=(2, 3))
+    u = pattern.rulings.u[apart.argmin(axis=1)]
+    strip = solid.sheet_strip(u)
+    true = np.linalg.norm(strip.b - strip.a, axis=1)
+    stated = section.at_direction(np.array([row.direction for row in rows]))
+    aside = np.linalg.norm(solid.end_a.point(u) - solid.end_a.point(stated), axis=1)
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
     length = np.array([row.length for row in rows])
-    misses = [flat - length]
+    misses = [flat - length, aside]
     if not any(line.press for line in pattern.lines):
         # Of a corner's press lines several start in one direction, and stop short of the edges.
         drawn = np.array([(line.start, line.end) for line in pattern.lines])

@@ -118,7 +118,7 @@ def check_level(band: Band) -> None:
     if any(back):
         raise Refusal(
             field="edge_cut",
-            given=f"level leaves a point of END {'A' if back[0] else 'B'} where the lines of a flat face "
-            "meet, and the plate would have to reach beyond it",
+            given=f"level makes the edge at END {'A' if back[0] else 'B'} run back over itself, where the "
+            "lines of a flat part of the side fan out from a point",
             allowed="square; or sizes measured on another face",
         )

@@ -6,7 +6,7 @@ units: `mm` or `in`. In mm a size stands bare, in inches with its unit, as a fra
 from __future__ import annotations
 
 from math import degrees
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from develop.tables.gauges import Gauge
 from develop.tables.materials import material_of
@@ -140,7 +140,7 @@ def lining_words(lining: float, around: Section | Band | None, units: str) -> tu
     size = ""
     if around is not None:
         rim = getattr(around, "rim_a", None)
-        section: Section = around if rim is None else rim.section
+        section: Any = around if rim is None else rim.section
         wide, tall = (size_words(round(each, 4), units) for each in (section.width, section.height))
         size = f", {'END A of the ' if rim else ''}duct {wide} x {tall} inside"
     return (f"clear inside the lining of {size_words(lining, units)}{size}",)

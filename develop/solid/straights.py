@@ -40,10 +40,10 @@ def contact(end: End, normal: Array) -> Array:
 
 
 def paired(mine: End, yours: End, u: Array, normal: Array, touched: Array) -> Array:
-    """Points (n, 3) of another end that go with the points u (n,) of an end, whose planes have normals (n, 3).
+    """Points (n, 3) of another end that go with the points u (n,) of an end.
 
-    touched: where those planes touch it. Along two straight sides that are parallel a plane touches the
-    whole of both, and their points go in proportion.
+    normal: of the planes that touch both (n, 3). touched: where those touch the other end (n, 3). Along two
+    straight sides that are parallel a plane touches the whole of both, and their points go in proportion.
     """
     at = mine.section.walk(u)
     rows = np.flatnonzero((at.dphi == 0.0) & (at.ds > 0.0))
