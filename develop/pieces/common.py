@@ -232,7 +232,7 @@ class Plate(Marked):
         units: str,
         around: Section | Band | None = None,
         more: tuple[str, ...] = (),
-        level: str = "",
+        level: tuple[str, ...] = (),
         fits: tuple[Fit, ...] = (),
     ) -> Wording:
         """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes, and
@@ -251,7 +251,7 @@ class Plate(Marked):
         )
         if self.lining:
             held_at = "the lining's inside"
-        plate = (level or "edges square to the plate", f"{held} at {held_at}")
+        plate = (*(level or ("edges square to the plate",)), f"{held} at {held_at}")
         neutral = Neutral(self.neutral_line) if not isinstance(self.neutral_line, str) else None
         if neutral is None and around is not None:
             neutral = self.neutral(around)

@@ -144,17 +144,17 @@ class Tapered(Fitted):
         """The ends, `a` and `b`, that have a collar."""
         return "".join(end for end in "ab" if getattr(self, f"collar_{end}") is not None)
 
-    def level_words(self, band: Band) -> str:
+    def level_words(self, band: Band) -> tuple[str, ...]:
         """How level edges are cut: by how much off square, which changes round the section."""
         if not self.level or not self.thickness:
-            return ""
+            return ()
         said = []
         for end, low, high in _slants(band):
             degrees = number_text(round(low, 1))
             if round(high, 1) != round(low, 1):
                 degrees += f" to {number_text(round(high, 1))}"
             said.append(f"END {end} {degrees}°")
-        return f"edges level with the ends, off square by: {', '.join(said)}"
+        return "edges level with the planes of the ends", f"off square by: {', '.join(said)}"
 
     def cautioned(self, cutting: Cutting, band: Band) -> Cutting:
         """What is cut, with a warning for each fitted end that tapers too much to slip."""
@@ -191,7 +191,8 @@ class Tapered(Fitted):
             mine, theirs = ("b", "a") if end == "a" else ("a", "b")
             joint: Joint = Joint(len(parts) - 1, mine, 0, theirs, name=f"collar {end} to side")
             joints.append(joint)
-        return Built(tuple(parts), tuple(joints), built.warned, built.both_hands)
+        order = range(len(parts)) if "a" not in self.collared else (1, 0, *range(2, len(parts)))
+        return Built(tuple(parts), tuple(joints), built.warned, built.both_hands, tuple(order))
 
     def _collar(self, end: str, rim: Rim, seam: float, spec: SectionSpec | None, units: str) -> Part:
         """The collar of an end: a cylinder on its rim, square to its plane, seamed opposite the side."""

@@ -93,15 +93,17 @@ def level_girth(solid: Solid, *, end_b: bool) -> float:
 def level_area(solid: Solid) -> float:
     """Area [mm²] of the sheet between its edges, of which one is level at least.
 
-    Where the touching plane turns, ½ |R × a'| + ½ |R × b'| round end A; flat faces, over which it
-    stands, are polygons.
+    Where the touching plane turns, ½ |R × a'| + ½ |R × b'| round one end; flat faces, over which it
+    stands, are polygons. Near a loose spot of a section only its own end is walked smoothly.
     """
-    ends = solid.end_a, solid.end_b
+    from_b = bool(len(solid.end_b.section.loose_spots)) and not len(solid.end_a.section.loose_spots)
+    walk = solid.sheet_strip_b if from_b else solid.sheet_strip
+    mine, yours = (solid.end_b, solid.end_a) if from_b else (solid.end_a, solid.end_b)
 
     def rates(panels: Panels) -> Array:
         u, half = panels.nodes, panels.half
-        strip = solid.sheet_strip(u.ravel())
-        turns = solid.end_a.section.walk(u.ravel()).dphi.reshape(u.shape) != 0.0
+        strip = walk(u.ravel())
+        turns = mine.section.walk(u.ravel()).dphi.reshape(u.shape) != 0.0
         ruling = (strip.b - strip.a).reshape(*u.shape, 3)
         total = np.zeros(u.shape)
         for edge in (strip.a, strip.b):
@@ -110,7 +112,9 @@ def level_area(solid: Solid) -> float:
             total += 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)
         return np.asarray(np.where(turns, total, 0.0)[..., None])
 
-    return float(_summed(solid, ends, rates)[0]) + sum(_face(solid, normal) for normal in _faces(solid))
+    return float(_summed(solid, (mine, yours), rates)[0]) + sum(
+        _face(solid, normal) for normal in _faces(solid)
+    )
 
 
 def _summed(solid: Solid, ends: tuple[End, End], rates: object) -> Array:

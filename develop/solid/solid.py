@@ -103,7 +103,13 @@ class Solid:
 
     def sheet_strip(self, u: Array) -> Strip:
         """What of those lines the sheet reaches over: from level edges, the parts below them."""
-        strip = self.strip(u)
+        return self._reached(self.strip(u))
+
+    def sheet_strip_b(self, u: Array) -> Strip:
+        """The same through end B at its section's parameter u (n,)."""
+        return self._reached(self._strip_b(u))
+
+    def _reached(self, strip: Strip) -> Strip:
         lift = self.distance * strip.normal
         ends = [
             end if plane is None else plane.along(end + lift, strip.b - strip.a) - lift

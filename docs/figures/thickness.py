@@ -38,6 +38,11 @@ def edge(piece: Built, end: str = "a") -> float:
     return curve.length
 
 
+def ellipse(width: float, height: float) -> float:
+    """Girth of an ellipse [mm]."""
+    return Ellipse(width=width, height=height).girth
+
+
 def rows() -> list[tuple[str, str, float]]:
     """Where, the shortcut, and what it makes the girth too long [mm], less than 0 for too short."""
     plate = edge(built("straight", **ELLIPSE, thickness=10))
@@ -45,16 +50,17 @@ def rows() -> list[tuple[str, str, float]]:
     square, level = (edge(built("cone", **CONE, edge_cut=cut)) for cut in ("square", "level"))
     box = edge(built("straight", **BOX, neutral_line="half-hard"))
     slip = edge(built("straight", **ELLIPSE, thickness=0.8, fit_b="into"), "b")
+    plain = edge(built("straight", **ELLIPSE, thickness=0.8))
     mouth = built("cone", **CONE)
     return [
-        ("ellipse 600 x 300 inside, 10 mm plate", "the inside's girth", Ellipse(width=600.0, height=300.0).girth - plate),
-        ("the same", "an ellipse with both axes 10 longer", Ellipse(width=610.0, height=310.0).girth - plate),
+        ("ellipse 600 x 300 inside, 10 mm plate", "the inside's girth", ellipse(600.0, 300.0) - plate),
+        ("the same", "an ellipse with both axes 10 longer", ellipse(610.0, 310.0) - plate),
         (
             "the same clear inside a 25 mm lining, 0.8 mm sheet",
             "an ellipse with both axes 50.8 longer",
-            Ellipse(width=650.8, height=350.8).girth - lined,
+            ellipse(650.8, 350.8) - lined,
         ),
-        ("cone 2400 to 900 inside, 700 high, 16 mm, square edges, END A", "the inside's girth", 2400.0 * pi - square),
+        ("cone 2400 to 900 inside, 700 high, 16 mm, END A", "the inside's girth", 2400.0 * pi - square),
         ("the same", "thickness laid in the plane of the end", 2416.0 * pi - square),
         ("the same with level edges", "the inside's girth", 2400.0 * pi - level),
         ("the same with level edges", "thickness laid in the plane of the end", 2416.0 * pi - level),
@@ -63,7 +69,7 @@ def rows() -> list[tuple[str, str, float]]:
             "mid-thickness",
             edge(built("straight", **BOX)) - box,
         ),
-        ("slip joint of the ellipse in 0.8 mm, END B", "both ends alike", edge(built("straight", **ELLIPSE, thickness=0.8)) - slip),
+        ("slip joint of the ellipse in 0.8 mm, END B", "both ends alike", plain - slip),
         (
             "END B of the cone made to slip, 50 mm in from its mouth",
             "no parallel collar: its girth there",

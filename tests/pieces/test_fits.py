@@ -187,6 +187,13 @@ def test_a_collar_is_a_part_with_its_own_seam_opposite_that_of_the_taper() -> No
     assert "collar b to side: largest distance of the folded edges" in names
 
 
+def test_in_the_picture_the_parts_stand_from_end_a_to_end_b() -> None:
+    built = make("transition", **TAPER, collar_a=60, collar_b=80)
+    low = [float(each.frame.origin[2] + each.solid.end_a.origin[2]) for each in built.placed]
+    assert low == pytest.approx([-60.0, 0.0, 450.0])
+    assert built.solid is built.parts[0].solid
+
+
 def test_edges_are_worked_on_the_free_ends_and_gaps_taken_at_the_joints() -> None:
     built = make(
         "transition", **{**TAPER, "thickness": 6}, collar_a=60, trim_a=25, edge_b="flange 20 out", gap=3

@@ -192,6 +192,22 @@ def test_the_record_has_the_rule_its_place_and_its_source(tmp_path) -> None:
     assert "wall" not in plain["patterns"][0]
 
 
+@pytest.mark.parametrize(
+    ("end_a", "end_b", "thickness"),
+    [
+        ("rectangle 600 x 300 r 30", "rectangle 300 x 200", 0),
+        ("flat-oval 600 x 300", "flat-oval 500 x 200", 2),
+        ("rectangle 600 x 300", "rectangle 300 x 200", 6),
+        ("rectangle 600 x 300", "round 400", 6),
+    ],
+)
+@pytest.mark.parametrize("face", ["outside", "inside"])
+def test_lines_of_flat_faces_and_of_thick_corners_are_told_apart(end_a, end_b, thickness, face) -> None:
+    # Their lines have one normal, or start in one direction: the checks must compare the same ones.
+    given = {"end_a": end_a, "end_b": end_b, "length": 450, "sizes": "inside", "face": face}
+    holds(make("transition", **given, thickness=thickness))
+
+
 # ---- edges square and level -------------------------------------------------------------------
 
 
@@ -315,7 +331,8 @@ def test_level_is_refused_where_the_plate_would_run_back_over_itself(ends) -> No
 def test_the_sheet_says_how_far_off_square_level_edges_are() -> None:
     facts = make("cone", **CONE, edge_cut="level").patterns[0].facts
     lean = degrees(atan2(750.0, 700.0))
-    assert f"edges level with the ends, off square by: END A {lean:.0f}°, END B {lean:.0f}°" in facts
+    assert "edges level with the planes of the ends" in facts
+    assert f"off square by: END A {lean:.0f}°, END B {lean:.0f}°" in facts
     assert "edges square to the plate" not in facts
     assert "edges square to the plate" in make("cone", **CONE).patterns[0].facts
 
