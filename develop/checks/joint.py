@@ -42,6 +42,11 @@ class Side:
         return self.solid.distance if isinstance(self.solid, Solid) else 0.0
 
     @property
+    def tapers(self) -> bool:
+        """Whether the part's thickness does not lie in the plane of its end."""
+        return isinstance(self.solid, Solid) and self.solid.side == "hull"
+
+    @property
     def curve(self) -> End:
         """Where the edge should lie, in the part's own frame."""
         if isinstance(self.solid, Solid):
@@ -52,8 +57,8 @@ class Side:
     def edge(self) -> Array:
         """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame."""
         if isinstance(self.solid, Solid):
-            a, b, normal = folded(self.pattern, self.solid)
-            points = (a if self.end == "a" else b) - self.solid.distance * normal
+            a, b = self.solid.on_ends(*folded(self.pattern, self.solid))
+            points = a if self.end == "a" else b
         else:
             assert not isinstance(self.solid, Patch)
             outlines = (self.pattern.net, *self.pattern.openings)

@@ -11,7 +11,7 @@ import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.mass import cut_area
-from develop.pattern.pattern import Addition, Figures, Outline, Pattern
+from develop.pattern.pattern import Addition, Figures, Outline, Pattern, Wall
 
 __all__ = ["Verdict", "record"]
 
@@ -95,6 +95,7 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
             **({} if pattern.mass is None else {"mass": float(pattern.mass)}),
         },
         **({"allowances": [_added(each) for each in pattern.added]} if pattern.added else {}),
+        **({} if pattern.wall is None else {"wall": _wall(pattern.wall)}),
         "lines": [
             {
                 "from": _rounded(line.start),
@@ -125,6 +126,22 @@ def _added(added: Addition) -> dict[str, object]:
     """One allowance: the edge, the rule by name, the width, and the source of the rule where it has one."""
     found: dict[str, object] = {"edge": added.edge, "rule": added.rule, "width": float(added.width)}
     return {**found, "source": added.source} if added.source else found
+
+
+def _wall(wall: Wall) -> dict[str, object]:
+    """How the thickness was taken: the neutral line with its rule, lining, edges and fits."""
+    found: dict[str, object] = {"neutral_line": float(wall.neutral_line)}
+    if wall.rule:
+        found |= {"rule": wall.rule, "source": wall.source, "places": [float(each) for each in wall.places]}
+    return {
+        **found,
+        "lining": float(wall.lining),
+        "edge_cut": wall.edge_cut,
+        "fits": [
+            {"end": end, "fit": fit, "clearance": float(clearance), "moved": float(moved)}
+            for end, fit, clearance, moved in wall.fits
+        ],
+    }
 
 
 def _figures(figures: Figures) -> dict[str, object]:

@@ -23,6 +23,7 @@ __all__ = [
     "Pattern",
     "RollLine",
     "Rulings",
+    "Wall",
     "WitnessMark",
 ]
 
@@ -160,6 +161,24 @@ class Addition(Protocol):
 
 
 @dataclass(frozen=True)
+class Wall:
+    """How the thickness was taken, where it was not plainly by a number and with flush ends cut square.
+
+    neutral_line: the place developed, 0 inside to 1 outside; rule, source: of the published rule that gave
+    it, empty for a number; places: the least and the most that it gives round the side. lining [mm].
+    edge_cut: `square` or `level`. fits: (end, fit, clearance [mm], how far the end is moved out [mm]).
+    """
+
+    neutral_line: float
+    rule: str = ""
+    source: str = ""
+    places: tuple[float, float] = (0.0, 0.0)
+    lining: float = 0.0
+    edge_cut: str = "square"
+    fits: tuple[tuple[str, str, float, float], ...] = ()
+
+
+@dataclass(frozen=True)
 class Pattern:
     """One flat part. `net` is the geometry, `cut` what leaves the shear; equal without allowances.
 
@@ -181,7 +200,7 @@ class Pattern:
     datum: what the ordinates of the divisions are measured from, in words.
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
-    warnings: of what is not reasonable.
+    warnings: of what is not reasonable. wall: how the thickness was taken, where it was not plainly.
     """
 
     mark: str
@@ -210,6 +229,7 @@ class Pattern:
     lap_words: tuple[str, str] = ("LAP", "LAP")
     added: tuple[Addition, ...] = ()
     warnings: tuple[str, ...] = ()
+    wall: Wall | None = None
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()

@@ -12,7 +12,7 @@ from develop.pattern.allowance import allowed
 from develop.pattern.chain import crossings_of, point_at
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
-from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, Wall, WitnessMark
 from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.pieces.wording import lines_of
@@ -53,6 +53,7 @@ class Wording:
     lines_as: str
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
+    wall: Wall | None = None
 
 
 @dataclass(frozen=True)
@@ -183,6 +184,7 @@ def pattern_of(
         dashed=view.curves([_beside(dict(close_by), name, -far, whole) for name, far, _ in added.inner]),
         lap_words=added.words[::-1] if view.mirror else added.words,
         added=added.added,
+        wall=wording.wall,
         warnings=added.warnings,
     )
 

@@ -160,7 +160,7 @@ class Branch(Jointed):
     def _header(self) -> StraightHeader | TaperHeader:
         """The header in its wall. Raises Refusal."""
         from develop.pieces.header import StraightHeader, tapered
-        from develop.pieces.wall import PLACES, given_section, neutral_distance
+        from develop.pieces.wall import PLACES
 
         # Set on, the branch stands on the outside; set in, it ends flush with the inside.
         place = PLACES["inside" if self.joint == "set-in" else "outside"] - PLACES[self.sizes]
@@ -172,14 +172,18 @@ class Branch(Jointed):
                     given="given together with a tapered header",
                     allowed="the length or height of the header's own table",
                 )
-            return tapered(self.header, thickness=self.thickness, sizes=self.sizes, outward=outward)
+            return tapered(
+                self.header,
+                thickness=self.thickness,
+                sizes=self.sizes,
+                lining=self.lining,
+                neutral_line=self.neutral_line,
+                outward=outward,
+            )
         if self.header_length is None:
             raise Refusal(field="header_length", given="not given", allowed="the length of the header")
-        section = given_section(self.header, field="header", thickness=self.thickness, sizes=self.sizes)
-        distance = neutral_distance(
-            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-        )
-        return StraightHeader(section, section.offset(outward), self.header_length, distance)
+        section = self.in_wall(self.header, field="header")
+        return StraightHeader(section, section.offset(outward), self.header_length, self.distance(section))
 
     def _frame(self, header: StraightHeader | TaperHeader) -> Frame:
         """The branch's frame in the header's: z along its axis to the free end."""
@@ -202,20 +206,16 @@ class Branch(Jointed):
         """The branch's side, the header and the branch's place in it. Raises Refusal."""
         import numpy as np
 
-        from develop.pieces.wall import given_section, neutral_distance
         from develop.surfaces.cylinder import Cylinder
         from develop.surfaces.trim import Plane
 
-        branch = given_section(self.branch, field="branch", thickness=self.thickness, sizes=self.sizes)
+        branch = self.in_wall(self.branch, field="branch")
         header = self._header()
         frame = self._frame(header)
         self._overhang(branch, header, frame)
         trim: BandTrim | CylinderTrim = header.trim(frame)
-        distance = neutral_distance(
-            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-        )
         surface = Cylinder(
-            branch, trim, Plane(self.centre_to_end, np.zeros(2)), distance, trim.breaks(branch)
+            branch, trim, Plane(self.centre_to_end, np.zeros(2)), self.distance(branch), trim.breaks(branch)
         )
         shortest = float(surface.lengths(branch.at_direction(np.radians(np.arange(360.0)))).min())
         if shortest <= 0.0:
@@ -429,6 +429,7 @@ class Branch(Jointed):
             place=f"into header {self._header_words(units)}, {self._where(units)}",
             held="lengths and joint",
             units=units,
+            around=section,
             more=(
                 *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
                 *self._sides,
@@ -494,6 +495,7 @@ class Branch(Jointed):
             place=f"opening for branch {section_words(self.branch, units)}, {opening}, {self._where(units)}",
             held="length and opening",
             units=units,
+            around=header.around,
             more=self._sides,
         )
         end = Plane(self.centre_to_end, np.zeros(2))
@@ -526,13 +528,23 @@ class Branch(Jointed):
         units: str,
     ) -> tuple[Part, ...]:
         """The compensation plate, round the outside of the branch on the outside of the header."""
+        from develop.pieces.neutral import neutral_of
         from develop.pieces.pad import Pad, pad_parts
         from develop.pieces.wall import PLACES
         from develop.pieces.wording import plate_words
 
         thickness = self.thickness if self.pad_thickness is None else self.pad_thickness
         outward = self.thickness * (PLACES["outside"] - PLACES[self.sizes])
-        lift = self.neutral_line * thickness
+        face = header.covered(outward=outward, distance=0.0)
+        lift = (
+            thickness
+            * neutral_of(
+                self.neutral_line,
+                thickness=thickness,
+                inner=0.0,
+                sheet=lambda: face.sheet(float(face.section.breaks[0])),
+            ).place
+        )
         hole = f"tell-tale hole {size_words(self.tell_tale, units)} in each part" if self.tell_tale else ""
         return pad_parts(
             Pad(self.pad, self.pad_in == "halves", self.tell_tale),

@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from develop.sections.text import SectionSpec
     from develop.surfaces.band import Band
 
-__all__ = ["PLACES", "check_bend", "given_section", "neutral_distance", "reach"]
+__all__ = ["PLACES", "check_bend", "check_level", "given_section", "reach"]
 
 # Places on each panel of a section at which the bend of a side is looked at.
 _BETWEEN = 24
@@ -20,14 +20,27 @@ PLACES = {"inside": 0.0, "mean": 0.5, "outside": 1.0}
 """Where sizes can be measured, as a share of the thickness from the inside."""
 
 
-def given_section(spec: SectionSpec, *, field: str, thickness: float, sizes: str) -> Section:
+def given_section(
+    spec: SectionSpec, *, field: str, thickness: float, sizes: str, lining: float = 0.0
+) -> Section:
     """The section on the surface that `sizes` names; a pipe's size is its outside, so it is moved in.
 
-    thickness [mm]. Raises Refusal naming `field` where the wall has no room.
+    thickness [mm]. lining: what lies inside the wall [mm]; sizes inside are then those that it leaves clear,
+    and the section is moved out by as much. Raises Refusal naming `field` where the wall has no room, and
+    for a lining where sizes are not inside.
     """
     from develop.sections import section_of
+    from develop.units import number_text
 
+    if lining and sizes != "inside":
+        raise Refusal(
+            field="lining",
+            given=f"{number_text(lining)} mm with sizes = {sizes}: a lining is inside of what is measured",
+            allowed="sizes = inside, then clear inside the lining; or no lining",
+        )
     section = section_of(spec)
+    if lining and not spec.outside:
+        section = section.offset(lining)
     places = {place: thickness * (share - PLACES[sizes]) for place, share in PLACES.items()}
     if spec.outside:
         section = _moved(section, -places["outside"], field, thickness)
@@ -52,11 +65,6 @@ def _moved(section: Section, distance: float, field: str, thickness: float) -> S
                 allowed=", or ".join(ways),
             )
         ) from None
-
-
-def neutral_distance(*, thickness: float, sizes: str, neutral_line: float) -> float:
-    """How far outside the given surface the neutral line lies [mm]."""
-    return thickness * (neutral_line - PLACES[sizes])
 
 
 def reach(section: Section, direction: float) -> float:
@@ -100,3 +108,17 @@ def check_bend(band: Band, *, thickness: float, sizes: str, instead: str, ends: 
         f"radius of {tightest:.3g} mm, near END {end}",
         allowed=f"{number_text(most)} mm or less, or {instead}" if most > 0.0 else instead,
     )
+
+
+def check_level(band: Band) -> None:
+    """Raises Refusal where level edges would run back over themselves."""
+    if not any(band.levels):
+        return
+    back = band.sheet(float(band.rim_a.section.breaks[0])).back
+    if any(back):
+        raise Refusal(
+            field="edge_cut",
+            given=f"level makes the edge at END {'A' if back[0] else 'B'} run back over itself, where the "
+            "lines of a flat part of the side fan out from a point",
+            allowed="square; or sizes measured on another face",
+        )
