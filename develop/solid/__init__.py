@@ -10,11 +10,14 @@ from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.template import FlatTemplate, FloorOutlines
 
 __all__ = [
     "End",
     "FlatPlate",
     "FlatRing",
+    "FlatTemplate",
+    "FloorOutlines",
     "Frame",
     "Holes",
     "Made",
@@ -28,5 +31,5 @@ __all__ = [
     "cut_slopes",
 ]
 
-Made = Solid | FlatRing | FlatPlate | Patch
+Made = Solid | FlatRing | FlatPlate | FlatTemplate | FloorOutlines | Patch
 """The finished shape of any one part."""

@@ -102,7 +102,7 @@ class Solid:
         far = self.end_b.distance(b) if self.cut_b is None else np.linalg.norm(b - self.strip(u).b, axis=1)
         return float(max(np.max(self.end_a.distance(a)), np.max(far)))
 
-    def _strip_b(self, u: Array) -> Strip:
+    def strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
         if self.side == "parallel":
             return self.strip(u)
@@ -148,7 +148,7 @@ class Solid:
             self._swept(walk, ends, edge)
             for walk, ends, edge in (
                 (self.strip, (self.end_a, self.end_b), "a"),
-                (self._strip_b, (self.end_b, self.end_a), "b"),
+                (self.strip_b, (self.end_b, self.end_a), "b"),
             )
         )
         return Measures(edge_a, edge_b, area_a + area_b)

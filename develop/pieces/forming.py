@@ -1,0 +1,145 @@
+"""How tightly a pattern is rolled, where, and what that asks of the sheet: information and cautions."""
+
+from __future__ import annotations
+
+from math import isfinite
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from develop.pattern.pattern import Forming
+from develop.pieces.wording import direction_words, measured_words
+from develop.quadrature import Array
+
+if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.solid import Solid
+    from develop.tables.materials import Material
+
+__all__ = ["forming_facts", "forming_of", "forming_strain", "forming_warnings"]
+
+_SAME = 1e-6  # radii that differ by less, in parts, are equally tight
+_FLAT = 1e9  # [mm] what is rolled to no less is flat
+_NAMED = 4  # places that are named one by one
+# From this thickness [mm] up a sheet is plate, which codes for vessels and pipework may be about. Common
+# practice, no source.
+_PLATE = 3.0
+# [%] Above this the pressure-vessel codes commonly ask for heat treatment of carbon steel. From memory.
+_STRAIN = 5.0
+
+
+def forming_strain(*, thickness: float, radius: float) -> float:
+    """Strain of the outer fibre [%] of a flat plate of a thickness bent to a mean radius [mm]: 50 t / R.
+
+    Elementary bending: a fibre t / 2 outside the middle, whose length stays, is longer by t / 2 in R.
+
+    >>> forming_strain(thickness=10.0, radius=250.0)
+    2.0
+    """
+    return 50.0 * thickness / radius if radius > 0.0 else float("inf")
+
+
+def forming_of(
+    pattern: Pattern,
+    solid: Solid,
+    *,
+    thickness: float,
+    neutral_line: float,
+    known: Material | None,
+) -> Forming | None:
+    """Where a rolled pattern is tightest; None where it is flat all over.
+
+    thickness [mm]. neutral_line: of the developed sheet, 0 inside to 1 outside. known: the material.
+    An end that is a point is left out: there every radius runs out.
+    """
+    radius = pattern.rulings.radius
+    ends = "ab" if pattern.net.curve("b") is not None else "a"
+    radius = radius[:, : len(ends)]
+    if not len(radius) or not np.min(radius) < _FLAT:
+        return None
+    least = float(np.min(radius))
+    tight = radius <= least + _SAME * max(abs(least), 1.0)
+    at = "".join(end for end, found in zip(ends, tight.any(axis=0), strict=True) if found)
+    lines = tight.any(axis=1)
+    middle = least + thickness * (0.5 - neutral_line)
+    inside = max(0.0, least - thickness * neutral_line)
+    pressed = any(line.press for line in pattern.lines)
+    published = None
+    if known is not None and thickness:
+        published = known.least_bend_radius(thickness=thickness)
+    return Forming(
+        radius=max(0.0, middle),
+        inside=inside,
+        ends=at,
+        directions=() if lines.all() else _directions(pattern, solid, _middles(lines), at),
+        strain=None
+        if pressed or not thickness
+        else forming_strain(thickness=thickness, radius=max(middle, 0.5 * thickness)),
+        least=published,
+        source=known.bend_source if known is not None and published is not None else "",
+    )
+
+
+def _middles(lines: Array) -> Array:
+    """Numbers of the lines in the middle of each run of tight ones; the seam's two sides are one line."""
+    count = len(lines) - 1
+    around = lines[:-1] | (np.arange(count) == 0) & lines[-1]
+    first = int(np.flatnonzero(~around)[0]) if not around.all() else 0
+    rolled = np.roll(around, -first)
+    steps = np.diff(np.concatenate([[0], rolled.astype(int), [0]]))
+    starts, stops = np.flatnonzero(steps > 0), np.flatnonzero(steps < 0) - 1
+    return np.asarray((starts + stops) // 2 + first) % count
+
+
+def _directions(pattern: Pattern, solid: Solid, which: Array, ends: str) -> tuple[float, ...]:
+    """Directions [rad] in which the tight places of these lines are seen from their end's centre."""
+    u = pattern.rulings.u[which]
+    if "a" in ends:
+        found = solid.end_a.section.direction(u)
+    else:
+        strip = solid.strip(u)
+        centre = strip.b.mean(axis=0) if solid.cut_b is not None else solid.end_b.origin
+        gap = strip.b - centre
+        found = np.arctan2(gap[:, 1], gap[:, 0]) % (2.0 * np.pi)
+    # Rounded where a direction is read, so that 360 is 0.
+    whole = np.radians(np.round(np.degrees(found), 3) % 360.0)
+    return tuple(float(each) for each in np.unique(whole))
+
+
+def _place(forming: Forming) -> str:
+    """Where it is, in words."""
+    end = "both ends" if forming.ends == "ab" else f"END {forming.ends.upper()}"
+    if not forming.directions:
+        return f"all round, {end}"
+    words = [direction_words(each) for each in forming.directions]
+    if len(words) > _NAMED:
+        words = [*words[: _NAMED - 1], f"{len(words) - _NAMED + 1} more"]
+    listed = " and ".join(filter(None, (", ".join(words[:-1]), words[-1])))
+    return f"at {listed}, {end}"
+
+
+def forming_facts(forming: Forming, *, units: str) -> tuple[str, ...]:
+    """What the sheets say of it; units as for `build`."""
+    radius = measured_words(forming.radius, units)
+    facts = [f"tightest radius {radius} {_place(forming)}"]
+    if forming.strain is not None and isfinite(forming.strain):
+        facts.append(f"forming strain 50 t/R {forming.strain:.2g} %, without springback")
+    return tuple(facts)
+
+
+def forming_warnings(forming: Forming, *, thickness: float, units: str) -> tuple[str, ...]:
+    """Cautions for plate strained beyond what codes commonly allow as rolled, and for bends tighter than
+    published. thickness [mm]; units as for `build`."""
+    found = []
+    if forming.strain is not None and forming.strain > _STRAIN and thickness >= _PLATE:
+        found.append(
+            f"forming strain {forming.strain:.2g} % {_place(forming)}: above {_STRAIN:g} % codes for pressure "
+            "vessels commonly ask for heat treatment (from memory; the code in force decides)"
+        )
+    if forming.least is not None and forming.inside < forming.least:
+        inside, least = (measured_words(each, units) for each in (forming.inside, forming.least))
+        found.append(
+            f"inside radius {inside} {_place(forming)} is below {least}, the published least for a bend in "
+            "this sheet (guidance; ask the maker of the sheet)"
+        )
+    return tuple(found)
