@@ -83,7 +83,7 @@ def _formed(part: Part, piece: Plate, wall: Wall, known: Material | None, units:
 
 @dataclass(frozen=True)
 class _PlacedEnd:
-    """An end of a side: which part's, `a` or `b`, its section, how large that is there, and its turn [rad]."""
+    """An end of a side: whose, `a` or `b`, its section, how large that is there, and its turn [rad]."""
 
     part: Part
     name: str
@@ -229,10 +229,11 @@ def _outlines(built: Built, rolled: list[Part], piece: Plate, wall: Wall, units:
             if any((number, name, place) not in joined for place in range(len(part.frames)))
         ]
         ends = [end for name in free if (end := _floor_end(solid, name)) is not None]
-        for group in _drawn_together(ends, solid):
+        groups = _drawn_together(ends, solid)
+        for group in groups:
             names = " and ".join(end.name for end in group)
             own = part.pattern.mark
-            which = "" if len(group) == len(ends) else f"-{group[0].name.lower()}"
+            which = "" if len(groups) == 1 else f"-{group[0].name.lower()}"
             mark = f"{own}-floor{which}"
             found.append(
                 floor_part(
@@ -265,7 +266,7 @@ def _drawn_together(ends: list[FloorEnd], solid: Solid) -> list[list[FloorEnd]]:
     if solid.side == "hull":
         return [ends]
     if len(ends) == 2 and np.abs(ends[0].into - ends[1].into).max() <= _ALIKE:
-        return [[replace(ends[0], name="A, B")]]
+        return [[replace(ends[0], name="A/B")]]
     return [[end] for end in ends]
 
 

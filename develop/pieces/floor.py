@@ -125,7 +125,8 @@ def _marks(end: FloorEnd, section: Section, *, outward: bool) -> list[WitnessMar
         past = start + (u[i] - start) % section.period
         arc = plane_curve(section, into=end.into, start=start, stop=past).length if past > start else 0.0
         inward = out[i] if outward else -out[i]
-        found.append(WitnessMark(points[i], inward, f"{end.name} {word}", end.name.lower(), arc))
+        edge = end.name.lower() if len(end.name) == 1 else f"END {end.name}"
+        found.append(WitnessMark(points[i], inward, f"{end.name} {word}", edge, arc))
     return found
 
 

@@ -9,7 +9,7 @@ import numpy as np
 
 from develop.pattern.pattern import Forming
 from develop.pieces.wording import direction_words, measured_words
-from develop.quadrature import Array
+from develop.quadrature import Indices, Mask
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
@@ -58,9 +58,9 @@ def forming_of(
     if not len(radius) or not np.min(radius) < _FLAT:
         return None
     least = float(np.min(radius))
-    tight = radius <= least + _SAME * max(abs(least), 1.0)
-    at = "".join(end for end, found in zip(ends, tight.any(axis=0), strict=True) if found)
-    lines = tight.any(axis=1)
+    tight = np.asarray(radius <= least + _SAME * max(abs(least), 1.0))
+    at = "".join(end for end, found in zip(ends, tight.any(axis=0).tolist(), strict=True) if found)
+    lines: Mask = np.asarray(tight.any(axis=1))
     middle = least + thickness * (0.5 - neutral_line)
     inside = max(0.0, least - thickness * neutral_line)
     pressed = any(line.press for line in pattern.lines)
@@ -80,7 +80,7 @@ def forming_of(
     )
 
 
-def _middles(lines: Array) -> Array:
+def _middles(lines: Mask) -> Indices:
     """Numbers of the lines in the middle of each run of tight ones; the seam's two sides are one line."""
     count = len(lines) - 1
     around = lines[:-1] | (np.arange(count) == 0) & lines[-1]
@@ -91,7 +91,7 @@ def _middles(lines: Array) -> Array:
     return np.asarray((starts + stops) // 2 + first) % count
 
 
-def _directions(pattern: Pattern, solid: Solid, which: Array, ends: str) -> tuple[float, ...]:
+def _directions(pattern: Pattern, solid: Solid, which: Indices, ends: str) -> tuple[float, ...]:
     """Directions [rad] in which the tight places of these lines are seen from their end's centre."""
     u = pattern.rulings.u[which]
     if "a" in ends:
@@ -133,8 +133,8 @@ def forming_warnings(forming: Forming, *, thickness: float, units: str) -> tuple
     found = []
     if forming.strain is not None and forming.strain > _STRAIN and thickness >= _PLATE:
         found.append(
-            f"forming strain {forming.strain:.2g} % {_place(forming)}: above {_STRAIN:g} % codes for pressure "
-            "vessels commonly ask for heat treatment (from memory; the code in force decides)"
+            f"forming strain {forming.strain:.2g} % {_place(forming)}: above {_STRAIN:g} % codes for "
+            "pressure vessels commonly ask for heat treatment (from memory; the code in force decides)"
         )
     if forming.least is not None and forming.inside < forming.least:
         inside, least = (measured_words(each, units) for each in (forming.inside, forming.least))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from math import pi
 from typing import TYPE_CHECKING
@@ -102,11 +103,10 @@ def closed_figures(
         rows.append(
             (f"{end}: outside girth, by tape", girth_outside(pattern, solid, wall, end=name, tape=tape))
         )
-        for face, distance in wall.faces:
-            size = _size(solid, name, distance)
-            if size is not None:
-                where = f" {face}" if face else ""
-                rows += [(f"{end}: width{where}", size[0]), (f"{end}: height{where}", size[1])]
+        sizes = _sizes(solid, name, [distance for _, distance in wall.faces])
+        for (face, _), (width, height) in zip(wall.faces, sizes, strict=False):
+            where = f" {face}" if face else ""
+            rows += [(f"{end}: width{where}", width), (f"{end}: height{where}", height)]
     square = ", square to the axis" if solid.side == "parallel" else ""
     return _table(f"To check by tape after closing{square}; tape {tape:g} mm thick", rows, tolerance)
 
@@ -137,32 +137,29 @@ def _grown(rulings: Rulings, end: str, by: float) -> float:
     return float(np.sum(np.hypot(*moved.T) - np.hypot(*step.T)))
 
 
-def _size(solid: Solid, name: str, distance: float) -> tuple[float, float] | None:
-    """Width and height [mm] of a face at an end, along its section's own axes; None where no section is.
+def _sizes(solid: Solid, name: str, distances: Sequence[float]) -> list[tuple[float, float]]:
+    """Width and height [mm] at an end, along its section's own axes, of faces so far outside the given
+    surface; none where the end is no section.
 
     On a tapered side the corner of the edge, which is square to the plate, is measured.
     """
-    if solid.side == "parallel":
-        section = solid.end_a.section
-        return section.width + 2.0 * distance, section.height + 2.0 * distance
-    end = solid.end_a if name == "a" else solid.end_b
-    scale = 1.0
+    end, scale = solid.end_a if solid.side == "parallel" or name == "a" else solid.end_b, 1.0
     if name == "b" and solid.cut_b is not None:
         height, rise = solid.cut_b
         if np.abs(rise).max() > 0.0:
-            return None
+            return []
         end, scale = solid.end_a, cone_scale(solid, height)
     section = end.section
-    width, height = scale * section.width, scale * section.height
-    if distance:
+    given = scale * np.array([section.width, section.height])
+    more = np.array([2.0, 2.0])
+    if solid.side == "hull" and any(distances):
         walk = solid.strip if end is solid.end_a else solid.strip_b
         # Towards both sides, the middle of a straight side.
         places = [section.parameters(*(np.array([each]) for each in axis)) for axis in _AXES]
         u = np.array([0.5 * float(first[0] + last[0]) for first, last in places])
-        lean = walk(u).normal @ end.spans
-        right, left, up, down = (float(row @ np.array(axis)) for row, axis in zip(lean, _AXES, strict=True))
-        width, height = width + distance * (right + left), height + distance * (up + down)
-    return width, height
+        lean = np.sum((walk(u).normal @ end.spans) * np.array(_AXES), axis=1)
+        more = lean[::2] + lean[1::2]
+    return [(float(wide), float(high)) for wide, high in (given + d * more for d in distances)]
 
 
 def cone_scale(solid: Solid, height: float) -> float:
