@@ -195,7 +195,8 @@ def _profile(group: list[_PlacedEnd], face: str, distance: float) -> Profile:
     solid = first.part.solid
     assert isinstance(solid, Solid)
     held = "held square to the axis" if solid.side == "parallel" else "held in the plane of the end"
-    return Profile(first.section, first.scale, distance, first.turn, where, face, held)
+    turn = 0.0 if first.round else first.turn
+    return Profile(first.section, first.scale, distance, turn, where, face, held)
 
 
 def _thicker(group: list[_PlacedEnd], distance: float, units: str) -> tuple[str, ...]:

@@ -9,7 +9,7 @@ import numpy as np
 
 from develop.pattern.pattern import Forming
 from develop.pieces.wording import direction_words, measured_words
-from develop.quadrature import Indices, Mask
+from develop.quadrature import Array, Indices, Mask
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
@@ -18,7 +18,10 @@ if TYPE_CHECKING:
 
 __all__ = ["forming_facts", "forming_of", "forming_strain", "forming_warnings"]
 
-_SAME = 1e-6  # radii that differ by less, in parts, are equally tight
+# Radii that differ by less, in parts, are the same; and so little that both places are named: between
+# the lines of the closing check, where radii are known, the least may be missed by as much.
+_SAME, _AS_TIGHT = 1e-9, 2e-3
+_ROUNDING = 1e-9  # [mm]
 _FLAT = 1e9  # [mm] what is rolled to no less is flat
 _NAMED = 4  # places that are named one by one
 # From this thickness [mm] up a sheet is plate, which codes for vessels and pipework may be about. Common
@@ -58,9 +61,10 @@ def forming_of(
     if not len(radius) or not np.min(radius) < _FLAT:
         return None
     least = float(np.min(radius))
-    tight = np.asarray(radius <= least + _SAME * max(abs(least), 1.0))
-    at = "".join(end for end, found in zip(ends, tight.any(axis=0).tolist(), strict=True) if found)
+    tight = np.asarray(radius <= least + _AS_TIGHT * abs(least) + _ROUNDING)
+    at = "".join(end for k, end in enumerate(ends) if tight[:, k].any())
     lines: Mask = np.asarray(tight.any(axis=1))
+    which = _tightest(radius.min(axis=1), lines)
     middle = least + thickness * (0.5 - neutral_line)
     inside = max(0.0, least - thickness * neutral_line)
     pressed = any(line.press for line in pattern.lines)
@@ -71,7 +75,7 @@ def forming_of(
         radius=max(0.0, middle),
         inside=inside,
         ends=at,
-        directions=() if lines.all() else _directions(pattern, solid, _middles(lines), at),
+        directions=() if lines.all() else _directions(pattern, solid, which, at),
         strain=None
         if pressed or not thickness
         else forming_strain(thickness=thickness, radius=max(middle, 0.5 * thickness)),
@@ -80,15 +84,20 @@ def forming_of(
     )
 
 
-def _middles(lines: Mask) -> Indices:
-    """Numbers of the lines in the middle of each run of tight ones; the seam's two sides are one line."""
-    count = len(lines) - 1
-    around = lines[:-1] | (np.arange(count) == 0) & lines[-1]
-    first = int(np.flatnonzero(~around)[0]) if not around.all() else 0
-    rolled = np.roll(around, -first)
-    steps = np.diff(np.concatenate([[0], rolled.astype(int), [0]]))
-    starts, stops = np.flatnonzero(steps > 0), np.flatnonzero(steps < 0) - 1
-    return np.asarray((starts + stops) // 2 + first) % count
+def _tightest(radius: Array, lines: Mask) -> Indices:
+    """Numbers of the tightest line of each run of tight ones, the middle one where they are all the same.
+
+    The first line and the last are the two sides of the seam, and so one.
+    """
+    around = lines[:-1] | (np.arange(len(lines) - 1) == 0) & lines[-1]
+    first = 0 if around.all() else int(np.flatnonzero(~around)[0])
+    steps = np.diff(np.concatenate([[0], np.roll(around, -first).astype(int), [0]]))
+    found = []
+    for start, stop in zip(np.flatnonzero(steps > 0), np.flatnonzero(steps < 0), strict=True):
+        run = (np.arange(start, stop) + first) % len(around)
+        same = np.flatnonzero(radius[run] <= radius[run].min() * (1.0 + _SAME) + _ROUNDING)
+        found.append(int(run[same[len(same) // 2]]))
+    return np.array(found)
 
 
 def _directions(pattern: Pattern, solid: Solid, which: Indices, ends: str) -> tuple[float, ...]:
@@ -101,8 +110,8 @@ def _directions(pattern: Pattern, solid: Solid, which: Indices, ends: str) -> tu
         centre = strip.b.mean(axis=0) if solid.cut_b is not None else solid.end_b.origin
         gap = strip.b - centre
         found = np.arctan2(gap[:, 1], gap[:, 0]) % (2.0 * np.pi)
-    # Rounded where a direction is read, so that 360 is 0.
-    whole = np.radians(np.round(np.degrees(found), 3) % 360.0)
+    # To a tenth of a degree, so that 360 is 0.
+    whole = np.radians(np.round(np.degrees(found), 1) % 360.0)
     return tuple(float(each) for each in np.unique(whole))
 
 
@@ -123,7 +132,7 @@ def forming_facts(forming: Forming, *, units: str) -> tuple[str, ...]:
     radius = measured_words(forming.radius, units)
     facts = [f"tightest radius {radius} {_place(forming)}"]
     if forming.strain is not None and isfinite(forming.strain):
-        facts.append(f"forming strain 50 t/R {forming.strain:.2g} %, without springback")
+        facts.append(f"strain 50 t/R = {forming.strain:.2g} %, springback not in it")
     return tuple(facts)
 
 
