@@ -22,6 +22,7 @@ __all__ = ["forming_facts", "forming_of", "forming_strain", "forming_warnings"]
 # the lines of the closing check, where radii are known, the least may be missed by as much.
 _SAME, _AS_TIGHT = 1e-9, 2e-3
 _ROUNDING = 1e-9  # [mm]
+_STILL = 1e-12  # [rad] less turn there is none
 _FLAT = 1e9  # [mm] what is rolled to no less is flat
 _NAMED = 4  # places that are named one by one
 # From this thickness [mm] up a sheet is plate, which codes for vessels and pipework may be about. Common
@@ -58,13 +59,19 @@ def forming_of(
     radius = pattern.rulings.radius
     ends = "ab" if pattern.net.curve("b") is not None else "a"
     radius = radius[:, : len(ends)]
-    if not len(radius) or not np.min(radius) < _FLAT:
+    if not len(radius):
         return None
-    least = float(np.min(radius))
-    tight = np.asarray(radius <= least + _AS_TIGHT * abs(least) + _ROUNDING)
+    step = np.maximum(*(np.hypot(*np.diff(end, axis=0).T) for end in (pattern.rulings.a, pattern.rulings.b)))
+    flat = np.asarray((pattern.rulings.turn[1:] < _STILL) & (step > _ROUNDING))
+    # A line with flat sheet on both its sides is not bent, whatever the radius beyond.
+    bent = ~(np.append(flat, flat[0]) & np.append(flat[-1], flat))
+    least = float(np.min(radius[bent], initial=_FLAT))
+    if least >= _FLAT:
+        return None
+    tight = (radius <= least + _AS_TIGHT * abs(least) + _ROUNDING) & bent[:, None]
     at = "".join(end for k, end in enumerate(ends) if tight[:, k].any())
     lines: Mask = np.asarray(tight.any(axis=1))
-    which = _tightest(radius.min(axis=1), lines)
+    which = _tightest(radius.min(axis=1), lines, flat)
     middle = least + thickness * (0.5 - neutral_line)
     inside = max(0.0, least - thickness * neutral_line)
     pressed = any(line.press for line in pattern.lines)
@@ -75,7 +82,7 @@ def forming_of(
         radius=max(0.0, middle),
         inside=inside,
         ends=at,
-        directions=() if lines.all() else _directions(pattern, solid, which, at),
+        directions=_directions(pattern, solid, which, at) if len(which) else (),
         strain=None
         if pressed or not thickness
         else forming_strain(thickness=thickness, radius=max(middle, 0.5 * thickness)),
@@ -84,19 +91,30 @@ def forming_of(
     )
 
 
-def _tightest(radius: Array, lines: Mask) -> Indices:
-    """Numbers of the tightest line of each run of tight ones, the middle one where they are all the same.
+def _tightest(radius: Array, lines: Mask, flat: Mask) -> Indices:
+    """Numbers of the tightest line of each run of tight ones, the middle one where they are all the same;
+    none where one run goes all round.
 
-    The first line and the last are the two sides of the seam, and so one.
+    radius, lines: of n lines, the first and the last of which are the two sides of the seam, and so one.
+    flat: whether the sheet is flat between each and the next (n - 1,); there a run ends.
     """
-    around = lines[:-1] | (np.arange(len(lines) - 1) == 0) & lines[-1]
-    first = 0 if around.all() else int(np.flatnonzero(~around)[0])
-    steps = np.diff(np.concatenate([[0], np.roll(around, -first).astype(int), [0]]))
+    count = len(lines) - 1
+    tight = lines[:-1] | (np.arange(count) == 0) & lines[-1]
+    on = tight & np.roll(tight, -1) & ~flat
+    if on.all():
+        return np.zeros(0, dtype=int)
+    first = int(np.flatnonzero(~on)[0]) + 1
+    runs: list[list[int]] = [[]]
+    for number in (np.arange(count) + first) % count:
+        if tight[number]:
+            runs[-1].append(int(number))
+        if not on[number]:
+            runs.append([])
     found = []
-    for start, stop in zip(np.flatnonzero(steps > 0), np.flatnonzero(steps < 0), strict=True):
-        run = (np.arange(start, stop) + first) % len(around)
-        same = np.flatnonzero(radius[run] <= radius[run].min() * (1.0 + _SAME) + _ROUNDING)
-        found.append(int(run[same[len(same) // 2]]))
+    for run in filter(None, runs):
+        least = radius[run].min()
+        same = np.flatnonzero(radius[run] <= least * (1.0 + _SAME) + _ROUNDING)
+        found.append(run[int(same[len(same) // 2])])
     return np.array(found)
 
 
