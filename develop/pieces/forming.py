@@ -105,10 +105,11 @@ def _tightest(radius: Array, lines: Mask, flat: Mask) -> Indices:
         return np.zeros(0, dtype=int)
     first = int(np.flatnonzero(~on)[0]) + 1
     runs: list[list[int]] = [[]]
-    for number in (np.arange(count) + first) % count:
-        if tight[number]:
-            runs[-1].append(int(number))
-        if not on[number]:
+    bent, following = tight.tolist(), on.tolist()
+    for number in ((np.arange(count) + first) % count).tolist():
+        if bent[number]:
+            runs[-1].append(number)
+        if not following[number]:
             runs.append([])
     found = []
     for run in filter(None, runs):
