@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 from math import atan2, cos, degrees, hypot, pi, sin
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -155,6 +156,20 @@ def test_what_is_flat_all_over_is_not_rolled_and_a_sharp_fold_is() -> None:
     assert found.inside == 0.0
     assert found.radius == pytest.approx(1.0)
     assert found.strain == pytest.approx(100.0)
+
+
+def test_the_page_shows_what_its_command_gives() -> None:
+    page = (Path(__file__).parents[2] / "docs" / "after_forming.md").read_text(encoding="utf-8")
+    given = {
+        "end_a": "ellipse 600 x 300",
+        "end_b": "round 400",
+        "length": 450,
+        "thickness": 6,
+        "material": "steel",
+    }
+    facts = built("transition", **given).patterns[0].facts
+    (fact,) = (fact for fact in facts if fact.startswith("tightest radius"))
+    assert f"`{fact}`" in page
 
 
 def test_the_record_and_the_facts_say_it() -> None:
