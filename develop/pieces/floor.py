@@ -83,13 +83,13 @@ def floor_part(
         kind=kind,
         quantity=1,
         facts=facts,
-        figures=tuple(
-            _points(name, Outline(((name, curve),), area))
-            for name, curve, area in zip(names, moved, areas, strict=True)
-        ),
+    )
+    points = tuple(
+        _points(name, Outline(((name, curve),), area))
+        for name, curve, area in zip(names, moved, areas, strict=True)
     )
     size = (float(high[0] - low[0]), float(high[1] - low[1]))
-    return Part(replace(pattern, units=units), FloorOutlines(tuple(outlines), size, shift), ())
+    return Part(replace(pattern, units=units, taped=points), FloorOutlines(tuple(outlines), size, shift), ())
 
 
 def _size(end: FloorEnd) -> float:

@@ -291,3 +291,30 @@ def test_every_check_holds_and_every_file_is_written(kind: str, given: dict, tmp
         assert (tmp_path / file).stat().st_size > 0
     assert any("template" in file for file in outcome.files)
     assert all(check.holds for check in checks_of(builds_of(piece)[0]))
+
+
+def test_the_floor_has_a_table_of_points_on_the_tape_pages_alone() -> None:
+    (part,) = parts("straight", FloorOutlines, section="ellipse 600 x 300", length=300, floor="outlines")
+    assert part.pattern.figures == ()
+    (table,) = part.pattern.taped
+    centre = part.pattern.thin[0].bounds().mean(axis=0)
+    for _, _, x, y in table.rows:
+        # The ellipse's own equation.
+        assert ((x - centre[0]) / 300) ** 2 + ((y - centre[1]) / 150) ** 2 == pytest.approx(1, abs=1e-5)
+    assert len(table.rows) >= 24
+
+
+def test_a_section_that_does_not_lie_along_its_axes_gets_a_half() -> None:
+    # An ellipse that leans: its caliper readings are symmetrical about 30 degrees, not about 0.
+    (part,) = parts(
+        "straight", section="measured 0:332 30:340 60:332 120:320 150:324", length=300, templates="inside",
+        template_share="quarter",
+    )  # fmt: skip
+    assert "half: turned half round it checks the other half" in part.pattern.facts
+    curve = dict(part.pattern.net.curves)["profile"]
+    assert curve.start + curve.end == pytest.approx(2 * part.solid.shift, abs=1e-9)  # ends across the centre
+    assert all(check.holds for check in check_part(part.pattern, part.solid))
+    upright = parts(
+        "straight", section="ellipse 340 x 320", length=300, templates="inside", template_share="quarter"
+    )
+    assert any(fact.startswith("quarter") for fact in upright[0].pattern.facts)
