@@ -16,7 +16,7 @@ from develop.pieces.tape_figures import Wall, closed_figures, cone_scale, cut_fi
 from develop.pieces.wall import PLACES
 from develop.pieces.wording import measured_words, shift_words
 from develop.quadrature import Array
-from develop.solid import End, Solid
+from develop.solid import End, FlatTemplate, Solid
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
@@ -41,9 +41,14 @@ def with_forming(built: Built, piece: Piece, *, known: Material | None, units: s
     """
     if isinstance(piece, Plate):
         wall = _wall(piece)
-        patterns = [_formed(part, piece, wall, known, units) for part in built.parts]
-        extra = _more(built, piece, wall, units)
-        return replace(built.with_patterns(patterns), parts=(*built.with_patterns(patterns).parts, *extra))
+        formed = built.with_patterns([_formed(part, piece, wall, known, units) for part in built.parts])
+        extra = _more(formed, piece, wall, units)
+        warned = formed.warned
+        if piece.templates != "none" and not any(isinstance(each.solid, FlatTemplate) for each in extra):
+            warned += (
+                f"{piece.mark}: no templates: every section is round; template_sections = all makes them",
+            )
+        return replace(formed, parts=(*formed.parts, *extra), warned=warned)
     if isinstance(piece, Flat):
         return built.with_patterns(
             [replace(each, taped=(cut_figures(each, tolerance=piece.tolerance),)) for each in built.patterns]

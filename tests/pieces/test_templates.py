@@ -117,6 +117,9 @@ def test_round_ones_only_on_request() -> None:
     assert len(parts("transition", **given, template_sections="all")) == 2
     round_one = {"section": "round 400", "length": 300, "templates": "both"}
     assert parts("straight", **round_one) == []
+    (text,) = built("straight", **round_one).warnings
+    assert "every section is round; template_sections = all" in text
+    assert built("straight", **round_one, template_sections="all").warnings == ()
     assert len(parts("straight", **round_one, template_sections="all")) == 2
 
 
