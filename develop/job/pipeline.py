@@ -207,7 +207,7 @@ def _files(
         if part.frames and isinstance(part.solid, Solid) and part.solid.openings
     ]
     if not headers:
-        own = builds[0].patterns
+        own = [part.pattern for part in builds[0].parts if isinstance(part.solid, Solid)]
         facts = patterns[0].facts[1:4]
         if own[0].mark != mark:
             # Of several parts only what all say is true of the piece.

@@ -66,7 +66,7 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
         flow.table(marks)
     flow.block(notes(_texts(pattern), wide, _TEXT))
     flow.table(Grid(divisions_table(pattern.divisions, units=pattern.units), most=wide))
-    for figures in (*pattern.figures, *edge_figures(pattern)):
+    for figures in (*pattern.figures, *edge_figures(pattern), *pattern.taped):
         flow.table(Grid(figures_table(figures, units=pattern.units), most=wide))
     count = len(flow.pages)
     words = f"{pattern.mark}   ·   to mark out by tape, not to scale   ·   page"

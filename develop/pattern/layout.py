@@ -60,7 +60,8 @@ def lettered(pattern: Pattern) -> Pattern:
         lines_as=pattern.lines_as,
         openings=pattern.openings,
         places=None if rows else pattern.places,
-        avoid=pattern.dashed,
+        # The line that holes stand on may run behind words; other thin lines are the drawing itself.
+        avoid=(*pattern.dashed, *(() if pattern.holes else pattern.thin)),
         arrow=pattern.arrow,
         seam_words=pattern.seam_words if rows else _ENDS if parted else ("", ""),
         cut=pattern.cut,

@@ -17,6 +17,7 @@ __all__ = [
     "Addition",
     "Division",
     "Figures",
+    "Forming",
     "Label",
     "NumberedHole",
     "Outline",
@@ -99,12 +100,12 @@ class WitnessMark:
 class Figures:
     """A further table of figures to mark out by. heads: two lines each, the lower may be empty.
 
-    rows: words as they are, numbers as lengths [mm].
+    rows: words as they are, numbers as lengths [mm], None for what is to be written in by hand.
     """
 
     title: str
     heads: tuple[tuple[str, str], ...]
-    rows: tuple[tuple[str | float, ...], ...]
+    rows: tuple[tuple[str | float | None, ...], ...]
 
 
 @dataclass(frozen=True)
@@ -138,6 +139,7 @@ class Rulings:
     a, b: their ends on the two edges, (n, 2) [mm]. turn: of the sheet since the line before, (n,) [rad].
     u: parameter of end A's section that the line starts at, (n,).
     distance: of the developed sheet outside the surface that the ends are given on [mm].
+    radius: roll radius of the developed sheet at edges A and B, (n, 2) [mm], where it is known.
     """
 
     a: Array
@@ -145,6 +147,27 @@ class Rulings:
     turn: Array
     u: Array
     distance: float = 0.0
+    radius: Array = field(default_factory=lambda: np.empty((0, 2)))
+
+
+@dataclass(frozen=True)
+class Forming:
+    """Where a sheet is rolled tightest, and what that asks of it.
+
+    radius: least roll radius at mid-thickness [mm]; inside: the same on the inside face [mm].
+    ends: `a`, `b`, or `ab` where it is as tight at both. directions: of the points there, facing
+    end B (k,) [rad]; none where it is as tight all round.
+    strain: of the outer fibre [%], None for a sheet without thickness or one that is pressed.
+    least: published least inside radius of a bend [mm], None where none is known; source: of it.
+    """
+
+    radius: float
+    inside: float
+    ends: str
+    directions: tuple[float, ...]
+    strain: float | None
+    least: float | None = None
+    source: str = ""
 
 
 class Addition(Protocol):
@@ -201,6 +224,8 @@ class Pattern:
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
     warnings: of what is not reasonable. wall: how the thickness was taken, where it was not plainly.
+    forming: where a rolled sheet is tightest, and its strain. taped: tables of what to check by tape, for the
+    tape pages alone.
     """
 
     mark: str
@@ -236,6 +261,8 @@ class Pattern:
     mass: float | None = None
     thin: tuple[Curve, ...] = ()
     holes: tuple[NumberedHole, ...] = ()
+    forming: Forming | None = None
+    taped: tuple[Figures, ...] = ()
 
     @property
     def full_lines(self) -> bool:

@@ -43,6 +43,9 @@ SIZES = about(
     own=False,
 )
 
+# Of 2 mm: common practice, no source.
+_TOLERANCE = about(Length(least=0.0, most=100.0), "how far a taped figure may be out, either way", own=False)
+
 
 @dataclass(frozen=True, kw_only=True)
 class Named(Piece):
@@ -72,6 +75,7 @@ class Flat(Named):
         default="",
         metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
     )
+    tolerance: float = field(default=2.0, metadata=_TOLERANCE)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -169,6 +173,43 @@ class Plate(Marked):
         default=0.0,
         metadata=about(_SMALL, "added to the girth for what the welds of its seams draw in", own=False),
     )
+    templates: str = field(
+        default="none",
+        metadata=about(
+            Choice(("none", "inside", "outside", "both")),
+            "checking templates (sweeps) for which face of the formed section, as patterns of their own",
+            own=False,
+        ),
+    )
+    template_sections: str = field(
+        default="not round",
+        metadata=about(
+            Choice(("not round", "all")), "which sections templates are made for, where asked for", own=False
+        ),
+    )
+    template_share: str = field(
+        default="half",
+        metadata=about(
+            Choice(("half", "quarter")), "how much of the section one template reaches round", own=False
+        ),
+    )
+    floor: str = field(
+        default="none",
+        metadata=about(
+            Choice(("none", "outlines")),
+            "full-size outlines of the ends for the assembly floor, as patterns of their own",
+            own=False,
+        ),
+    )
+    tape: float = field(
+        default=0.2,
+        metadata=about(
+            Length(least=0.0, most=5.0),
+            "thickness of the tape that girths are measured with; it reads along its middle",
+            own=False,
+        ),
+    )
+    tolerance: float = field(default=2.0, metadata=_TOLERANCE)
     rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)

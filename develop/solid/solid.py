@@ -132,7 +132,7 @@ class Solid:
 
     def sheet_strip_b(self, u: Array) -> Strip:
         """The same through end B at its section's parameter u (n,)."""
-        return self._reached(self._strip_b(u))
+        return self._reached(self.strip_b(u))
 
     def _reached(self, strip: Strip) -> Strip:
         lift = self.distance * strip.normal
@@ -174,7 +174,7 @@ class Solid:
         far = self.end_b.distance(b) if self.cut_b is None else np.linalg.norm(b - self.strip(u).b, axis=1)
         return float(max(np.max(self.end_a.distance(a)), np.max(far)))
 
-    def _strip_b(self, u: Array) -> Strip:
+    def strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
         if self.side == "parallel":
             return self.strip(u)
@@ -216,7 +216,7 @@ class Solid:
             edges = [
                 level_girth(self, end_b=bool(end_b))
                 if plane
-                else self._swept(self._strip_b, (self.end_b, self.end_a), "b")[0]
+                else self._swept(self.strip_b, (self.end_b, self.end_a), "b")[0]
                 for end_b, plane in enumerate(self.planes)
             ]
             return Measures(edges[0], edges[1], level_area(self))
@@ -228,7 +228,7 @@ class Solid:
             self._swept(walk, ends, edge)
             for walk, ends, edge in (
                 (self.strip, (self.end_a, self.end_b), "a"),
-                (self._strip_b, (self.end_b, self.end_a), "b"),
+                (self.strip_b, (self.end_b, self.end_a), "b"),
             )
         )
         return Measures(edge_a, edge_b, area_a + area_b)
