@@ -35,7 +35,7 @@ COMMON = {
     "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
     "face", "marks", "flow", "seam", "edge_a", "edge_b", "gap", "gap_on", "trim_a", "trim_b", "trim_line",
     "pre_bend", "weld_shrinkage", "lining",
-    "templates", "template_sections", "template_share", "floor", "tape", "tolerance",
+    "templates", "template_sections", "template_share", "floor", "tape", "tape_tolerance",
 }  # fmt: skip
 OWN = {
     "straight": {"section", "length", "cut_a", "cut_b", "fit_a", "fit_b", "clearance"},

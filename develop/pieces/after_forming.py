@@ -52,7 +52,7 @@ def with_forming(built: Built, piece: Piece, *, known: Material | None, units: s
         return replace(formed, parts=(*formed.parts, *extra), warned=warned)
     if isinstance(piece, Flat):
         return built.with_patterns(
-            [replace(each, taped=(cut_figures(each, tolerance=piece.tolerance),)) for each in built.patterns]
+            [replace(each, taped=(cut_figures(each, tolerance=piece.tape_tolerance),)) for each in built.patterns]
         )
     return built
 
@@ -71,13 +71,13 @@ def _wall(piece: Plate, built: Built) -> Wall:
 
 def _formed(part: Part, piece: Plate, wall: Wall, known: Material | None, units: str) -> Pattern:
     pattern, solid = part.pattern, part.solid
-    taped = [cut_figures(pattern, tolerance=piece.tolerance)]
+    taped = [cut_figures(pattern, tolerance=piece.tape_tolerance)]
     if not isinstance(solid, Solid):
         return replace(pattern, taped=tuple(taped))
     ends = ends_of(pattern, solid)
     if ends:
         taped.append(
-            closed_figures(pattern, solid, wall, tape=piece.tape, tolerance=piece.tolerance, ends=ends)
+            closed_figures(pattern, solid, wall, tape=piece.tape, tolerance=piece.tape_tolerance, ends=ends)
         )
     forming = forming_of(
         pattern,

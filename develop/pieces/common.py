@@ -75,7 +75,7 @@ class Flat(Named):
         default="",
         metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
     )
-    tolerance: float = field(default=2.0, metadata=_TOLERANCE)
+    tape_tolerance: float = field(default=2.0, metadata=_TOLERANCE)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -209,7 +209,7 @@ class Plate(Marked):
             own=False,
         ),
     )
-    tolerance: float = field(default=2.0, metadata=_TOLERANCE)
+    tape_tolerance: float = field(default=2.0, metadata=_TOLERANCE)
     rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)

@@ -163,7 +163,7 @@ def test_a_plate_with_an_opening_has_its_diagonals() -> None:
 
 
 def test_the_tolerance_is_the_users_and_the_last_column_is_empty() -> None:
-    pattern = made("straight", section="round 400", length=300, tolerance=0.5)[1].patterns[0]
+    pattern = made("straight", section="round 400", length=300, tape_tolerance=0.5)[1].patterns[0]
     for table in pattern.taped:
         assert all(row[2] == 0.5 and row[3] is None for row in table.rows)
         written = figures_table(table)
