@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 
-from develop.errors import InputError, Problem, Refusal
+from develop.errors import InputError, Problem
 from develop.job.lines import Path, lines_of
 from develop.job.output_fields import FORMATS, FORMATS_FIELD, OUTPUT_FIELDS, Outputs, outputs_of
 from develop.job.writing import file_key
@@ -318,8 +318,8 @@ def _piece(
     piece = with_rules(piece, rules)
     try:
         piece.check()
-    except Refusal as refusal:
-        problems += [replace(each, place=place(each.field)) for each in refusal.problems]
+    except InputError as error:
+        problems += [each.at(place(each.field)) for each in error.problems]
         return None
     return Placed(piece, place)
 

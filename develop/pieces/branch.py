@@ -343,6 +343,19 @@ class Branch(Jointed):
         built = Built(parts)
         return seam_warnings(built, clear=self.clear)
 
+    def check(self) -> None:
+        """Raises Refusal also for a header's seam, a lap flange or a pad that has no room."""
+        from develop.pieces.tap import lap_flange
+
+        super().check()
+        surface, header, frame = self._parts()
+        seam = self._branch_seam(surface)
+        header_seam = self._header_seam(surface.section, header, frame)
+        if self.joint == "tap":
+            lap_flange(surface, seam, lap=self.lap, thickness=self.thickness)
+        if self.pad:
+            self._pads(surface.section, header, frame, (seam, header_seam), "mm")
+
     def _branch_seam(self, surface: Cylinder) -> float:
         from develop.pieces.assemble import seam_parameter
 
