@@ -311,7 +311,7 @@ def _piece(
         path = field.split(".")
         return places.of("defaults", *path) if path[0] in shared else places.of("piece", index, *path)
 
-    piece, found = read_piece(kind, {**shared, **own}, unit=unit)
+    piece, found = read_piece(kind, {**shared, **own}, unit=unit, shared=shared)
     problems += [each.at(place(each.field)) for each in found]
     if piece is None:
         return None

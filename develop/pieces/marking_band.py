@@ -65,6 +65,7 @@ class MarkingBand(Marked):
             Choice(("set-on", "set-in")),
             "onto a header: the pipe stands on it and the hole is the pipe's bore, or the pipe reaches "
             "through its wall and the hole is the pipe's outside",
+            only_with="onto",
         ),
     )
     paper: float = field(default=0.1, metadata=about(Length(least=0.0, most=10.0), "thickness of the paper"))

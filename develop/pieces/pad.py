@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from math import pi
+from math import floor, pi
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,6 +16,7 @@ from develop.pattern.parallel import arc_about, parallel, room, turns_of
 from develop.pattern.pattern import Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.pieces.assemble import dense
 from develop.pieces.built import Part
+from develop.pieces.clearance import Beside
 from develop.pieces.flat import Plate, holes_at, pattern_of_plate
 from develop.solid import Patch
 from develop.surfaces.cylinder import Cylinder
@@ -70,12 +72,14 @@ def pad_parts(
     quantity: int,
     facts: tuple[str, ...],
     units: str,
-) -> tuple[Part, ...]:
-    """The plate, whole or in its two halves.
+    beside: tuple[str, str],
+) -> tuple[tuple[Part, ...], tuple[Beside, ...]]:
+    """The plate, whole or in its two halves, and how near it lies to the seams.
 
     branch: its outside. header: the side as the plate lies on it, on the given surface that is the header's
     outside. frame: the branch's. lift: of the plate's own sheet outside the header's [mm]. seams: parameters
-    at which the branch and the header have theirs. rotate: of the branch's section [rad].
+    at which the branch and the header have theirs. rotate: of the branch's section [rad]. beside: the
+    marks of the branch and the header.
     Raises Refusal where the plate has no room.
     """
     trim = header.trim(frame)
@@ -98,6 +102,7 @@ def pad_parts(
     under = header.solid(seams[1], sheet, ())
     joint = header.joint(branch, frame, sheet=lift)
     parts = []
+    plates: list[Outline] = []
     for k, span in enumerate(spans if pad.halves else [(right, right_on)]):
         stretched = stretch(inner, *span)
         outer = _outer(inner, stretched, span, pad.width)
@@ -110,6 +115,7 @@ def pad_parts(
         if pad.tell_tale:
             at, along = point_at(stretched, place_at(stretched, _TELL_TALE * stretched.length))
             centre = at + 0.5 * pad.width * _right_of(along)
+            _check_tell_tale(pad, centre, net, openings)
             openings += holes_at(centre[None], 0.5 * pad.tell_tale)
         shown = [i for i in range(4) if not pad.halves or _between(float(marks.arcs[i]), span, whole)]
         witness = tuple(
@@ -122,6 +128,7 @@ def pad_parts(
             )
             for i in shown
         )
+        plates.append(net)
         plate = Plate(net, tuple(openings), witness, (), _places(stretched, pad.width))
         # Anticlockwise from the right, the first half lies towards the header's end A.
         which = ("-towards-a", "-towards-b")[k] if pad.halves else ""
@@ -145,7 +152,41 @@ def pad_parts(
         )
         solid = Patch(under, joint, pad.width, lift, 0.5 * pad.tell_tale, not pad.halves)
         parts.append(Part(pattern, solid, (frame,)))
-    return tuple(parts)
+    marks_of = tuple(part.pattern.mark for part in parts)
+    return tuple(parts), _beside_seams(plates, inner, sheet, (mark, *beside), marks_of)
+
+
+def _beside_seams(
+    plates: Sequence[Outline], inner: Curve, sheet: Sheet, names: tuple[str, str, str], marks: tuple[str, ...]
+) -> tuple[Beside, ...]:
+    """How far [mm] the plate, laid flat, lies from the header's seam, and the joints between its halves
+    from that and from the branch's, which ends where the opening's edge begins.
+
+    names: of the plate, the branch and the header. marks: of the plate's parts.
+    """
+    at = sheet.at_ends
+    seams = [np.array([at.a[i], at.b[i]]) for i in (0, -1)]
+    pad, branch, header = names
+
+    def gap(curves: Sequence[Curve]) -> float:
+        points = np.vstack([curve.polyline(_COARSE) for curve in curves])
+        # A joint is straight: its ends alone might pass a seam by.
+        return min(
+            *(_distance(points, seam) for seam in seams),
+            *(_distance(seam, curve.polyline(_COARSE)) for seam in seams for curve in curves),
+        )
+
+    outer = [curve for net in plates for name, curve in net.curves if name == "outer"]
+    ends = [curve for net in plates for name, curve in net.curves if name.startswith("end_")]
+    found = [Beside(f"the edge of {pad} and the seam of {header}", gap(outer), (*marks, header))]
+    if ends:
+        joints = f"the joint of the halves of {pad} and the seam of"
+        to_branch = min(_distance(inner.start[None], end.polyline(_COARSE)) for end in ends)
+        found += [
+            Beside(f"{joints} {header}", gap(ends), (*marks, header)),
+            Beside(f"{joints} {branch}", to_branch, (*marks, branch)),
+        ]
+    return tuple(found)
 
 
 def _right_of(along: Array) -> Array:
@@ -174,6 +215,21 @@ def _check_room(pad: Pad, inner: Curve, sheet: Sheet) -> None:
         field="pad",
         given=f"{number_text(pad.width)} mm reaches past an end or the seam of the header, or into itself",
         allowed=f"{allowed} mm or less" if allowed > 0 else "no compensation plate there",
+    )
+
+
+def _check_tell_tale(pad: Pad, centre: Array, net: Outline, openings: list[Outline]) -> None:
+    """Raises Refusal where the hole would reach an edge of its part."""
+    curves = [curve for outline in (net, *openings) for _, curve in outline.curves]
+    reach = min(_distance(centre[None], curve.polyline(_CLEAR)) for curve in curves)
+    # Chords lie a little inside.
+    most = floor((2.0 * (reach - _CLEAR_EDGE + _CLEAR) + _CLEAR) * 10.0) / 10.0
+    if pad.tell_tale <= most:
+        return
+    raise Refusal(
+        field="tell_tale",
+        given=f"{number_text(pad.tell_tale)} mm has no room in a plate {number_text(pad.width)} mm wide",
+        allowed=f"{number_text(most)} mm or less, or 0 for none" if most > 0.0 else "0 for none",
     )
 
 

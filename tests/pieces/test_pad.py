@@ -12,7 +12,7 @@ from shapely import LineString, Polygon, unary_union
 from shapely.affinity import translate
 
 from develop.checks import check_part
-from develop.errors import InputError
+from develop.errors import InputError, Refusal
 from develop.job.pipeline import checks_of
 from develop.pattern.pattern import Outline
 from tests.pieces.making import make
@@ -201,3 +201,19 @@ def test_the_checks_can_fail() -> None:
     solid = built.parts[2].solid
     found = {check.name for check in check_part(pad, replace(solid, width=59.0)) if not check.holds}
     assert "width, least" in found
+
+
+@pytest.mark.parametrize("given", [{}, {"pad_in": "halves"}, {"branch": "round 30", "pad_in": "halves"}])
+def test_a_tell_tale_hole_is_no_larger_than_what_is_named(given: dict[str, object]) -> None:
+    with pytest.raises(Refusal) as caught:
+        tee(**given, pad=40, tell_tale=41)
+    (problem,) = caught.value.problems
+    assert problem.field == "tell_tale"
+    # The width less a millimetre on either side.
+    assert problem.allowed == "38 mm or less, or 0 for none"
+    holds(tee(**given, pad=40, tell_tale=38))
+
+
+def test_a_tap_takes_no_plate() -> None:
+    with pytest.raises(Refusal, match=r"^pad: 60 mm, but the lap flange.*allowed: joint = set-on or set-in"):
+        tee(joint="tap")
