@@ -45,7 +45,8 @@ _HALVINGS = 70
 # Less than this over its length a line of centres does not slope.
 _SLOPING = 1e-9
 _TRIES = 24
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# On the header's sheets these are the branch's, which has its own right and left.
+_WORDS = ("BRANCH RIGHT", "BRANCH TOP", "BRANCH LEFT", "BRANCH BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -621,10 +622,10 @@ class Branch(Jointed):
             beside=(f"{self.mark}-branch", f"{self.mark}-header"),
             quantity=self.quantity,
             units=units,
+            leaning=self._leaning(),
             facts=(
                 f"{size_words(self.pad, units)} wide all round branch {section_words(self.branch, units)}",
-                f"rolled to lie on the header, {self._leaning()}",
-                *(() if self.rotate else ("TOP towards the header's END A",)),
+                *(() if self.rotate else ("BRANCH TOP towards the header's END A",)),
                 *((hole,) if hole else ()),
                 plate_words(self.material, thickness),
                 "its size as given: what is needed is for the pressure code to say",

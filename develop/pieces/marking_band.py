@@ -38,7 +38,8 @@ __all__ = ["MarkingBand"]
 _TANGENT = 1e-9
 # Two sizes that differ by less, in parts of themselves, are one.
 _ROUND = 1e-12
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# On the header's band these are the pipe's, which has its own right and left.
+_WORDS = ("PIPE RIGHT", "PIPE TOP", "PIPE LEFT", "PIPE BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)

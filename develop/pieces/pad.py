@@ -18,6 +18,7 @@ from develop.pieces.assemble import dense
 from develop.pieces.built import Part
 from develop.pieces.clearance import Beside
 from develop.pieces.flat import Plate, holes_at, pattern_of_plate
+from develop.pieces.wording import SIDES
 from develop.solid import Patch
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.edges import Trace, edges
@@ -35,7 +36,10 @@ __all__ = ["Pad", "pad_parts"]
 
 _FINE = 1e-6  # [mm] so close that the tangents of parallels are good
 _COARSE = 0.5  # [mm]
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# As on the header's opening.
+_WORDS = ("BRANCH RIGHT", "BRANCH TOP", "BRANCH LEFT", "BRANCH BOTTOM")
+_ENDS = ("HEADER'S RIGHT", "HEADER'S LEFT")
+_FLAT = 1e-9  # [rad]
 _PLACES = 48
 _ROLL_LINES = 12
 _SCRAP = 1.0  # [mm] a roll line shorter than this is left out
@@ -70,6 +74,7 @@ def pad_parts(
     rotate: float,
     mark: str,
     quantity: int,
+    leaning: str,
     facts: tuple[str, ...],
     units: str,
     beside: tuple[str, str],
@@ -132,22 +137,33 @@ def pad_parts(
         plate = Plate(net, tuple(openings), witness, (), _places(stretched, pad.width))
         # Anticlockwise from the right, the first half lies towards the header's end A.
         which = ("-towards-a", "-towards-b")[k] if pad.halves else ""
-        title = f"{mark}{which}: compensation plate"
+        title = "compensation plate"
         if pad.halves:
             title += f", the half towards the header's END {'AB'[k]}"
+        moved = replace(lines, a=lines.a + plate.shift, b=lines.b + plate.shift)
         pattern = pattern_of_plate(
             plate,
             mark=f"{mark}{which}",
             kind="branch",
             quantity=quantity,
-            facts=(title, *facts, f"quantity {quantity}, outside up"),
+            facts=(),
         )
-        moved = replace(lines, a=lines.a + plate.shift, b=lines.b + plate.shift)
+        bent = _bent(pattern, moved)
         pattern = replace(
             pattern,
+            facts=(
+                f"{mark}{which}",
+                title,
+                f"{'rolled to lie' if bent else 'lies flat'} on the header, {leaning}",
+                *facts,
+                *((SIDES,) if pad.halves else ()),
+                f"quantity {quantity}, outside up",
+            ),
             units=units,
             lines_as="full",
-            lines=_roll_lines(pattern, moved),
+            lines=_roll_lines(pattern, moved) if bent else (),
+            end_words=((_ENDS if k == 0 else _ENDS[::-1]) if pad.halves else pattern.end_words),
+            facing=False,
             rulings=Rulings(moved.a, moved.b, np.diff(moved.turn, prepend=0.0), moved.u_a, lift),
         )
         solid = Patch(under, joint, pad.width, lift, 0.5 * pad.tell_tale, not pad.halves)
@@ -281,14 +297,28 @@ def _places(stretched: Curve, width: float) -> Array:
     return np.array(found)
 
 
-def _roll_lines(pattern: Pattern, lines: Lines) -> tuple[RollLine, ...]:
-    """Lines of the header over the plate, evenly through its width, without what the opening takes away."""
-    curves = [curve for outline in (pattern.net, *pattern.openings[:1]) for _, curve in outline.curves]
+def _strips(pattern: Pattern, lines: Lines) -> tuple[int, int]:
+    """The first and the last of the strips between the header's lines that the plate lies on."""
     points = np.vstack([curve.polyline(_COARSE) for _, curve in pattern.net.curves])
     along = (lines.b - lines.a) / lines.length[:, None]
     gap = points[:, None] - lines.a
     strips = (along[:, 1] * gap[..., 0] - along[:, 0] * gap[..., 1] > 0.0).sum(axis=1)
-    picked = np.unique(np.linspace(strips.min(), strips.max() - 1, _ROLL_LINES + 2).astype(int))
+    return int(strips.min()), int(strips.max())
+
+
+def _bent(pattern: Pattern, lines: Lines) -> bool:
+    """Whether the header's face turns anywhere under the plate."""
+    first, last = _strips(pattern, lines)
+    turned = lines.turn[min(last, len(lines.turn) - 1)] - lines.turn[max(first - 1, 0)]
+    return bool(turned > _FLAT)
+
+
+def _roll_lines(pattern: Pattern, lines: Lines) -> tuple[RollLine, ...]:
+    """Lines of the header over the plate, evenly through its width, without what the opening takes away."""
+    curves = [curve for outline in (pattern.net, *pattern.openings[:1]) for _, curve in outline.curves]
+    along = (lines.b - lines.a) / lines.length[:, None]
+    first, last = _strips(pattern, lines)
+    picked = np.unique(np.linspace(first, last - 1, _ROLL_LINES + 2).astype(int))
     found = []
     turned = None
     for i in picked:

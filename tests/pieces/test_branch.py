@@ -121,7 +121,10 @@ def test_off_centre_is_to_the_right_of_top() -> None:
 def test_both_patterns_have_the_four_marks_of_the_branch() -> None:
     branch, header = parts(tee(angle=70, rotate=30, off_centre=20))
     on_branch = {mark.text: mark.at for mark in branch.marks if mark.edge == "a"}
-    on_header = {mark.text: mark.at for mark in header.marks if mark.edge == "opening"}
+    opening = [mark for mark in header.marks if mark.edge == "opening"]
+    # The header has a RIGHT and a LEFT of its own.
+    assert all(mark.text.startswith("BRANCH ") for mark in opening)
+    on_header = {mark.text.removeprefix("BRANCH "): mark.at for mark in opening}
     assert set(on_branch) == set(on_header) == {"RIGHT", "TOP", "LEFT", "BOTTOM"}
 
     # Running lengths between the marks agree along both edges.

@@ -283,7 +283,7 @@ def test_the_marks_of_band_and_hole_meet() -> None:
     words = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "a"}
     on_hole = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "opening"}
     towards_right = words["RIGHT"] - words["TOP"]
-    assert (on_hole["LEFT"] - on_hole["RIGHT"]) * towards_right > 0
+    assert (on_hole["PIPE LEFT"] - on_hole["PIPE RIGHT"]) * towards_right > 0
 
 
 def test_an_out_of_round_pipe_fits_its_hole() -> None:
