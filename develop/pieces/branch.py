@@ -137,8 +137,7 @@ class Branch(Jointed):
         default=0.0,
         metadata=about(
             Length(least=0.0, most=10_000.0),
-            "width of a compensation plate on the header all round a branch that is set on or in; 0 for "
-            "none",
+            "width of a compensation plate on the header all round a branch that is set on or in; 0 for none",
         ),
     )
     pad_thickness: float | None = field(

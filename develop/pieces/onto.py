@@ -77,7 +77,9 @@ class OntoText:
                 wrong = [word for word in str(text).split() if nearest(word, ("angle", "off_centre"))]
                 if wrong:
                     hint = near_miss(wrong[0], ("angle", "off_centre"))
-                    problems.append(Problem("", f"{shown(wrong[0])} is no word of a header{hint}", self.allowed))
+                    problems.append(
+                        Problem("", f"{shown(wrong[0])} is no word of a header{hint}", self.allowed)
+                    )
                     continue
                 problems += [Problem(name, each.given, each.allowed) for each in error.problems]
         if problems:

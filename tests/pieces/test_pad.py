@@ -164,7 +164,11 @@ def test_its_marks_are_those_of_the_opening() -> None:
         pattern.mark: {mark.text for mark in pattern.marks if mark.edge == "opening"}
         for pattern in (header, pad)
     }
-    assert marks[header.mark] == marks[pad.mark] == {f"BRANCH {word}" for word in ("RIGHT", "TOP", "LEFT", "BOTTOM")}
+    assert (
+        marks[header.mark]
+        == marks[pad.mark]
+        == {f"BRANCH {word}" for word in ("RIGHT", "TOP", "LEFT", "BOTTOM")}
+    )
 
 
 @pytest.mark.parametrize(
