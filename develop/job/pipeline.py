@@ -57,10 +57,10 @@ def make(
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
     outputs: how cutting files are drawn. units: of the figures on the sheets, `mm` or `in`; the record
-    and the cutting files are always in mm. taken: the files of
-    this job's other pieces, each with its mark; those of this piece are added. writing: takes the files in, to be put
-    in place later with those of the other pieces. Raises Refusal for a piece that cannot be, or whose files
-    are another's, WriteError for a place that cannot be written.
+    and the cutting files are always in mm. taken: the files of this job's other pieces, each with its mark;
+    those of this piece are added. writing: takes the files in, to be put in place later with those of the
+    other pieces. Raises Refusal for a piece that cannot be, or whose files are another's, WriteError for a
+    place that cannot be written.
     """
     builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)

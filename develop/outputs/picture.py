@@ -21,7 +21,6 @@ from develop.pattern.lettering import CAPITAL, text_width
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
-    from matplotlib.backends.backend_agg import FigureCanvasAgg
 
 __all__ = ["Piece", "picture"]
 
@@ -105,7 +104,7 @@ def picture(
     vertices = np.vstack([piece.faces()[0] for piece in pieces])
     low, high = vertices.min(axis=0), vertices.max(axis=0)
     centre, size = (low + high) / 2.0, float(np.linalg.norm(high - low))
-    camera = _Camera(centre, size, aside=_aside(pieces, len(branches), size))
+    camera = _Camera(centre, size, aside=_aside(pieces, len(branches), float(centre[0]), size))
     with matplotlib.rc_context():
         matplotlib.rcdefaults()  # a user's own settings must not change the picture
         figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
@@ -138,32 +137,35 @@ def picture(
             0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE,
             linespacing=1.4, parse_math=False,
         )  # fmt: skip
-        canvas = FigureCanvasAgg(figure)
-        _keep_inside(axes, canvas)
+        FigureCanvasAgg(figure)
+        _keep_inside(axes)
         buffer = io.BytesIO()
         figure.savefig(buffer, format="png", metadata={"Software": None})
     return buffer.getvalue()
 
 
-def _aside(pieces: Sequence[Piece], branches: int, size: float) -> float:
-    """From which side to look: that of what stands on the piece, else that of its seam, else the right, 1.0."""
-    body = pieces[0].rim_a(_RIM), pieces[0].rim_b(_RIM)
-    middle = np.vstack(body)[:, 0].mean()
+def _aside(pieces: Sequence[Piece], branches: int, centre: float, size: float) -> float:
+    """From which side to look: that of what stands on the piece, else of its seam, else the right, 1.0.
+
+    centre: of all that is shown, to the right; size [mm].
+    """
     tips = [piece.rim_b(_RIM)[:, 0].mean() for piece in pieces[len(pieces) - branches :]]
-    for x, by in ((np.mean(tips) if tips else middle, _BESIDE), (pieces[0].seam_line[:, 0].mean(), 1e-6)):
-        if abs(x - middle) > by * size:
-            return math.copysign(1.0, float(x - middle))
-    return 1.0
+    if tips:
+        body = np.vstack([pieces[0].rim_a(_RIM), pieces[0].rim_b(_RIM)])
+        aside = float(np.mean(tips) - body[:, 0].mean())
+        if abs(aside) > _BESIDE * size:
+            return math.copysign(1.0, aside)
+    return -1.0 if pieces[0].seam_line[:, 0].mean() < centre - 1e-6 * size else 1.0
 
 
-def _keep_inside(axes: Axes, canvas: FigureCanvasAgg) -> None:
+def _keep_inside(axes: Axes) -> None:
     """Draw the piece smaller, or move it, until every word is whole and below the caption."""
-    left, bottom, wide, high = canvas.figure.bbox.bounds
+    left, bottom, wide, high = axes.figure.bbox.bounds
     least = np.array([left + _MARGIN * wide, bottom + _MARGIN * high])
     most = np.array([left + (1.0 - _MARGIN) * wide, bottom + _UNDER_CAPTION * high])
     for _ in range(_TRIES):
         axes.apply_aspect()
-        boxes = np.array([text.get_window_extent(canvas.get_renderer()).get_points() for text in axes.texts])
+        boxes = np.array([text.get_window_extent().get_points() for text in axes.texts])
         under, over = least - boxes.min(axis=(0, 1)), boxes.max(axis=(0, 1)) - most
         if max(under.max(), over.max()) <= 0.0:
             return

@@ -387,7 +387,9 @@ class _View:
             heads = (("cut", "no."), ("running", f"along {end}"), *(
                 (place, axis) for place in ("net line", "outer edge") for axis in "xy"
             ))  # fmt: skip
-            numbered = ((str(n), *map(float, row)) for n, row in enumerate(sorted(rows), 1))
+            numbered: list[tuple[str | float, ...]] = [
+                (str(n), *map(float, row)) for n, row in enumerate(sorted(rows), 1)
+            ]
             found.append(Figures(f"Cuts between the tabs at {end}, as far as {stop}", heads, tuple(numbered)))
         return tuple(found)
 

@@ -47,7 +47,7 @@ def check_uncut(section: Section, seam: float, on: Array, *, leaves_at: float, f
 
 @dataclass(frozen=True)
 class Beside:
-    """Two things that lie a gap [mm] apart, in words, and the marks of the parts whose sheets are to say so."""
+    """Two things that lie a gap [mm] apart, in words, and the marks of the parts whose sheets say so."""
 
     what: str
     gap: float
