@@ -221,6 +221,8 @@ class Pattern:
     thin: lines to set out by, such as that of the bolt holes; they are not cut.
     holes: those of the openings that have a number.
     datum: what the ordinates of the divisions are measured from, in words.
+    end_words: what the two ends of a part of a ring or of a plate are called. facing: whether it has an END B
+    that its directions are read in front of.
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
     warnings: of what is not reasonable. wall: how the thickness was taken, where it was not plainly.
@@ -247,6 +249,8 @@ class Pattern:
     flow: str = ""
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
+    end_words: tuple[str, str] = ("END 1", "END 2")
+    facing: bool = True
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())

@@ -52,7 +52,10 @@ def with_forming(built: Built, piece: Piece, *, known: Material | None, units: s
         return replace(formed, parts=(*formed.parts, *extra), warned=warned)
     if isinstance(piece, Flat):
         return built.with_patterns(
-            [replace(each, taped=(cut_figures(each, tolerance=piece.tape_tolerance),)) for each in built.patterns]
+            [
+                replace(each, taped=(cut_figures(each, tolerance=piece.tape_tolerance),))
+                for each in built.patterns
+            ]
         )
     return built
 

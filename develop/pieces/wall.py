@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from develop.errors import InputError, Problem, Refusal
+from develop.errors import Refusal
 
 if TYPE_CHECKING:
     from develop.sections.section import Section
@@ -29,6 +29,8 @@ def given_section(
     and the section is moved out by as much. Raises Refusal naming `field` where the wall has no room, and
     for a lining where sizes are not inside.
     """
+    from math import floor
+
     from develop.sections import section_of
     from develop.units import number_text
 
@@ -42,29 +44,29 @@ def given_section(
     if lining and not spec.outside:
         section = section.offset(lining)
     places = {place: thickness * (share - PLACES[sizes]) for place, share in PLACES.items()}
-    if spec.outside:
-        section = _moved(section, -places["outside"], field, thickness)
-    # The inside of the wall must exist too, whatever is developed.
-    _moved(section, places["inside"], field, thickness)
-    return section
+    # At its outside a pipe has its size whatever is said of the others.
+    ways = () if spec.outside or sizes == "inside" else ("sizes = inside",)
 
-
-def _moved(section: Section, distance: float, field: str, thickness: float) -> Section:
-    try:
-        return section.offset(distance)
-    except Refusal:
-        most = thickness * section.least_radius / -distance
-        ways = [section.rounder(-distance)]
-        if most > 0.0:
-            ways.insert(0, f"a wall that lies within that radius: here at most {most:.4g} mm")
-        raise InputError(
-            Problem(
+    def moved(section: Section, distance: float) -> Section:
+        try:
+            return section.offset(distance)
+        except Refusal:
+            radius = section.least_radius
+            most = floor(thickness * radius / -distance * 10.0 - 1e-6) / 10.0
+            thinner = (f"{number_text(most)} mm or less",) if most > 0.0 else ()
+            room = f"the tightest radius is {radius:.4g} mm" if radius > 0.0 else "the corners are sharp"
+            raise Refusal(
                 field="thickness",
-                given=f"{thickness:g} mm leaves no inside to the {field}, whose tightest radius is "
-                f"{section.least_radius:.4g} mm",
-                allowed=", or ".join(ways),
-            )
-        ) from None
+                given=f"{thickness:g} mm leaves no inside to {field}, {spec.text}, sizes "
+                f"{'outside' if spec.outside else sizes}: {room}",
+                allowed=", or ".join((*thinner, f"for {field} {section.rounder(-distance)}", *ways)),
+            ) from None
+
+    if spec.outside:
+        section = moved(section, -places["outside"])
+    # The inside of the wall must exist too, whatever is developed.
+    moved(section, places["inside"])
+    return section
 
 
 def reach(section: Section, direction: float) -> float:
