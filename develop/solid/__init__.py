@@ -10,6 +10,7 @@ from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.touching import MitredEnd, StandingEnd, TouchingEnd
 
 __all__ = [
     "End",
@@ -19,12 +20,15 @@ __all__ = [
     "Holes",
     "Made",
     "MeetingEnd",
+    "MitredEnd",
     "Patch",
     "Placed",
     "Rim",
     "Solid",
+    "StandingEnd",
     "Stretch",
     "TaperMeetingEnd",
+    "TouchingEnd",
     "cut_slopes",
 ]
 

@@ -24,6 +24,7 @@ from develop.quadrature import (
 )
 from develop.sections.section import Section, Walk
 from develop.surfaces.sheet import Lines, Place
+from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Trim
 
 __all__ = ["Cylinder", "CylinderSheet"]
@@ -40,14 +41,14 @@ _AXIS = np.array([0.0, 0.0, 1.0])
 class Cylinder:
     """A section carried along +z between two trims, the sheet lying `distance` [mm] outside of it.
 
-    The trims meet the given section; an edge is cut square to the plate, so its height does not
-    change across the thickness. breaks: further parameters at which panels must end, where a trim
+    The trims meet the given section, a square edge the whole wall; an edge is cut square to the plate, so
+    its height does not change across the thickness. breaks: further parameters at which panels must end, where a trim
     has corners. That the trims do not cross is for whoever makes a piece to see to.
     """
 
     section: Section
-    trim_a: Trim
-    trim_b: Trim
+    trim_a: Trim | SquareEdge
+    trim_b: Trim | SquareEdge
     distance: float = 0.0
     breaks: tuple[float, ...] = ()
 
@@ -152,7 +153,10 @@ class CylinderSheet:
         return self.from_a(u)
 
 
-def _heights(trim: Trim, at: Walk) -> Array:
+def _heights(trim: Trim | SquareEdge, at: Walk) -> Array:
     """Heights of a trim over a walk round the section, of the walk's shape."""
     start = np.stack([at.x.ravel(), at.y.ravel(), np.zeros(at.x.size)], axis=-1)
+    if isinstance(trim, SquareEdge):
+        out = np.stack([at.ex.ravel(), at.ey.ravel(), np.zeros(at.x.size)], axis=-1)
+        return trim.heights(start, out).reshape(at.x.shape)
     return trim.meet(start, np.broadcast_to(_AXIS, start.shape)).reshape(at.x.shape)

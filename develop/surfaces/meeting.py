@@ -58,6 +58,12 @@ class CylinderTrim:
         most, least = (float(self.section.support(*(s * right))) * s for s in (1.0, -1.0))
         return self.section.at_side(right[0], right[1], np.clip(reach, least, most))
 
+    def facing(self, start: Array) -> Array:
+        """Outward normals (n, 3) of the other's side, in the trimmed cylinder's frame, where lines through
+        start (n, 3) meet it."""
+        at = self.section.walk(self.on_section(start))
+        return np.asarray(np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1) @ self.frame.axes.T)
+
     def place(self, start: Array) -> tuple[Array, Array]:
         """Parameters (n,) of the other's section and lengths (n,) [mm] on its lines, from z = 0, of the
         joint."""
@@ -113,6 +119,11 @@ class BandTrim:
 
     def meet(self, start: Array, along: Array) -> Array:
         return self._found(start)[2]
+
+    def facing(self, start: Array) -> Array:
+        """Outward normals (n, 3) of the side, in the trimmed cylinder's frame, where lines through start
+        (n, 3) meet it."""
+        return np.asarray(self.band.normals(self._found(start)[0]) @ self.frame.axes.T)
 
     def place(self, start: Array) -> tuple[Array, Array]:
         """Parameters (n,) of the band's end A and lengths (n,) [mm] on its rulings of the joint."""
