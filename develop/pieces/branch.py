@@ -29,6 +29,7 @@ if TYPE_CHECKING:
     from develop.pieces.assemble import Hole
     from develop.pieces.built import Built, Part
     from develop.pieces.header import StraightHeader, TaperHeader
+    from develop.pieces.joint_edge import JointEdge
     from develop.sections.section import Section
     from develop.solid import Frame
     from develop.surfaces.cylinder import Cylinder, CylinderSheet
@@ -192,6 +193,12 @@ class Branch(Jointed):
             from_a=self.from_a,
         )
 
+    def _edge(self) -> JointEdge:
+        """How the branch's edge on the header is made: only set on does plate touch plate with it."""
+        from develop.pieces.joint_edge import JointEdge, joint_edge
+
+        return joint_edge(self) if self.joint == "set-on" else JointEdge()
+
     def surface(self) -> Cylinder:
         """The branch between its joint and its free end. Raises Refusal."""
         return self._parts()[0]
@@ -212,9 +219,8 @@ class Branch(Jointed):
         distance = neutral_distance(
             thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
         )
-        surface = Cylinder(
-            branch, trim, Plane(self.centre_to_end, np.zeros(2)), distance, trim.breaks(branch)
-        )
+        edge = self._edge().trim(trim)
+        surface = Cylinder(branch, edge, Plane(self.centre_to_end, np.zeros(2)), distance, edge.breaks(branch))
         shortest = float(surface.lengths(branch.at_direction(np.radians(np.arange(360.0)))).min())
         if shortest <= 0.0:
             least = ceil((self.centre_to_end - shortest) * 10.0 + 1.0) / 10.0
@@ -380,7 +386,8 @@ class Branch(Jointed):
         from develop.pieces.assemble import pattern_of
         from develop.pieces.built import Part
         from develop.pieces.tap import lap_flange
-        from develop.solid import End, Solid
+        from develop.pieces.joint_edge import with_bevels
+        from develop.solid import End, Solid, StandingEnd
 
         section = surface.section
         sheet = surface.sheet(seam)
@@ -403,6 +410,7 @@ class Branch(Jointed):
             units=units,
             more=(
                 *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
+                *self._edge().words(mitre=False),
                 *self._sides,
             ),
         )
@@ -417,8 +425,12 @@ class Branch(Jointed):
             distance=surface.distance,
             cutting=replace(cutting, allowances={**cutting.allowances, "a": flange}) if flange else cutting,
         )
+        edge, met = self._edge(), header.joint(section, frame)
+        inner, outer = edge.corners or (0.0, 0.0)
+        stands = StandingEnd.of(met, inner=inner, outer=outer)
+        pattern = with_bevels(pattern, edge, {"a": stands}, plates=1)
         solid = Solid(
-            header.joint(section, frame),
+            stands if edge.corners else met,
             End.cut(section, height=self.centre_to_end, rise=np.zeros(2)),
             side="parallel",
             seam=seam,

@@ -62,6 +62,7 @@ class Offset(Jointed):
 
     def surface(self) -> tuple[Leg, ...]:
         """The three legs, from end A to end B. Raises Refusal."""
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
         from develop.pieces.wall import PLACES, given_section, neutral_distance, reach
 
@@ -83,6 +84,7 @@ class Offset(Jointed):
             distance=neutral_distance(
                 thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
             ),
+            edge=joint_edge(self),
         )
 
     def _room(self, aside: float, throat: float) -> None:
@@ -139,6 +141,7 @@ class Offset(Jointed):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.clearance import seam_warnings
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
@@ -148,12 +151,15 @@ class Offset(Jointed):
             wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
             divisions=self.divisions,
             cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
+            edge=joint_edge(self),
             name="leg",
         )
         return seam_warnings(built, clear=self.clear)
 
     def _wording(self, sheet: Sheet, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""
+        from develop.pieces.joint_edge import joint_edge
+
         right, up = self.offset
         on_axis = self.middle if numbers[0] == 2 else self.ends
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
@@ -168,5 +174,6 @@ class Offset(Jointed):
             more=(
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
                 f"{measured_words(on_axis, units)} long on the axis",
+                *joint_edge(self).words(mitre=True),
             ),
         )
