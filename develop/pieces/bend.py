@@ -270,7 +270,7 @@ class Bend(Jointed):
             (self.section,),
             sizes=f"{section_words(self.section, units)}, bend of {_angle(self.angle)}{way}, "
             f"radius {short(radius)} to the axis",
-            held="lengths and cuts",
+            held=edge.held("lengths", "cuts"),
             units=units,
             place=f"throat at {direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}",
             more=(

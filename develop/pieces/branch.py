@@ -220,7 +220,9 @@ class Branch(Jointed):
             thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
         )
         edge = self._edge().trim(trim)
-        surface = Cylinder(branch, edge, Plane(self.centre_to_end, np.zeros(2)), distance, edge.breaks(branch))
+        surface = Cylinder(
+            branch, edge, Plane(self.centre_to_end, np.zeros(2)), distance, edge.breaks(branch)
+        )
         shortest = float(surface.lengths(branch.at_direction(np.radians(np.arange(360.0)))).min())
         if shortest <= 0.0:
             least = ceil((self.centre_to_end - shortest) * 10.0 + 1.0) / 10.0
@@ -385,8 +387,8 @@ class Branch(Jointed):
 
         from develop.pieces.assemble import pattern_of
         from develop.pieces.built import Part
-        from develop.pieces.tap import lap_flange
         from develop.pieces.joint_edge import with_bevels
+        from develop.pieces.tap import lap_flange
         from develop.solid import End, Solid, StandingEnd
 
         section = surface.section
@@ -406,7 +408,7 @@ class Branch(Jointed):
             sizes=f"branch {section_words(self.branch, units)}, "
             f"centre to end {size_words(self.centre_to_end, units)}",
             place=f"into header {self._header_words(units)}, {self._where(units)}",
-            held="lengths and joint",
+            held=self._edge().held("lengths", "joint"),
             units=units,
             more=(
                 *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),

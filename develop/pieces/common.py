@@ -26,11 +26,11 @@ if TYPE_CHECKING:
     from develop.surfaces.sheet import Sheet
     from develop.tables.rules import Rules
 
-__all__ = ["PLATE", "SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
+__all__ = ["SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
 
-PLATE = 3.0
-"""From this thickness up [mm] a sheet is treated as plate: its roll lines are drawn full, and its edges worked
-out so that they touch. Common practice, no source."""
+# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full, and the edges of joints
+# worked out. Common practice, no source.
+_PLATE = 3.0
 
 _SMALL = Length(least=0.0, most=1000.0)
 
@@ -194,7 +194,7 @@ class Plate(Marked):
             {"mean": "mid-thickness", "inside": "the inside"}[self.sizes] if elsewhere else "the given sizes"
         )
         plate = ("edges square to the plate", f"{held} at {held_at}")
-        full = self.marks == "full" or (self.marks == "auto" and self.thickness >= PLATE)
+        full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
         return Wording(
             mark=self.mark,
             kind=self.kind,
@@ -208,7 +208,7 @@ class Plate(Marked):
                 sizes_words(self.sizes, self.thickness, *sections),
                 edges_words((flat.edge_a, flat.edge_b), units),
                 *wall_words(self.material, self.thickness, units),
-                *(plate if self.thickness >= PLATE else ()),
+                *(plate if self.thickness >= _PLATE else ()),
                 f"quantity {self.quantity}, {self.face} up",
             ),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
@@ -260,8 +260,13 @@ class Jointed(Plate):
         joint_edge(self)
 
     @property
+    def plate(self) -> bool:
+        """It is thick enough to be treated as plate."""
+        return self.thickness >= _PLATE
+
+    @property
     def clear(self) -> float:
         """How far seams keep clear [mm]; 5 times the thickness is common practice, no source."""
         if self.seam_clear is not None:
             return self.seam_clear
-        return 5.0 * self.thickness if self.thickness >= PLATE else 0.0
+        return 5.0 * self.thickness if self.thickness >= _PLATE else 0.0

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeVar
 
 from develop.errors import Refusal
 
@@ -14,6 +14,8 @@ if TYPE_CHECKING:
     from develop.solid import TouchingEnd
     from develop.surfaces.square_edge import Face, SquareEdge
     from develop.surfaces.trim import Trim
+
+    _F = TypeVar("_F", bound=Face)
 
 __all__ = ["JointEdge", "joint_edge", "trims_of", "with_bevels"]
 
@@ -45,7 +47,7 @@ class JointEdge:
             return self.inside, self.outside
         return (self.up, self.up) if self.along else None
 
-    def trim(self, face: Face, *, upper: bool = False) -> Face | SquareEdge:
+    def trim(self, face: _F, *, upper: bool = False) -> _F | SquareEdge:
         """The trim of an edge that meets a face; upper: at end B."""
         from develop.surfaces.square_edge import SquareEdge
 
@@ -56,6 +58,10 @@ class JointEdge:
         if self.corners is None:
             return 0.0
         return self.corners[0] if inward else self.corners[1]
+
+    def held(self, lengths: str, joint: str) -> str:
+        """What is held at the given sizes, in words: lengths and, where net lines meet there, the joint."""
+        return lengths if self.corners else f"{lengths} and {joint}"
 
     def words(self, *, mitre: bool) -> tuple[str, ...]:
         """What the sheets say of it."""
@@ -75,12 +81,11 @@ class JointEdge:
 
 def joint_edge(piece: Jointed) -> JointEdge:
     """How the edges at the joints of a piece are made. Raises Refusal."""
-    from develop.pieces.common import PLATE
     from develop.pieces.wall import PLACES
 
     how = piece.touching
     if how == "auto":
-        how = "bevelled" if piece.joint_cut == "along" else "worked out" if piece.thickness >= PLATE else "net"
+        how = "bevelled" if piece.joint_cut == "along" else "worked out" if piece.plate else "net"
     if piece.joint_cut == "along" and how != "bevelled":
         raise Refusal(
             field="joint_cut",
@@ -89,7 +94,9 @@ def joint_edge(piece: Jointed) -> JointEdge:
         )
     if piece.thickness == 0.0:
         return JointEdge()
-    inside, outside = (piece.thickness * (PLACES[face] - PLACES[piece.sizes]) for face in ("inside", "outside"))
+    inside, outside = (
+        piece.thickness * (PLACES[face] - PLACES[piece.sizes]) for face in ("inside", "outside")
+    )
     up = outside if piece.face == "outside" else inside
     return JointEdge(how, piece.joint_cut == "along", inside, outside, up)
 
@@ -101,9 +108,7 @@ def trims_of(trims: Sequence[Trim | SquareEdge]) -> tuple[Trim, ...]:
     return tuple(each.face if isinstance(each, SquareEdge) else each for each in trims)
 
 
-def with_bevels(
-    pattern: Pattern, edge: JointEdge, ends: dict[str, TouchingEnd], *, plates: int
-) -> Pattern:
+def with_bevels(pattern: Pattern, edge: JointEdge, ends: dict[str, TouchingEnd], *, plates: int) -> Pattern:
     """The pattern with a table of its joint edges.
 
     ends: by `a` or `b`, each with the places of the edge that are held to the other part. plates: how many
@@ -186,4 +191,3 @@ def _table(pattern: Pattern, end: TouchingEnd, edge: JointEdge, *, plates: int) 
         (str(row.number), longer[i], *angles[i], round(float(more[i]), 9) + 0.0) for i, row in enumerate(rows)
     ]
     return Figures("edge along the joint", tuple(heads), tuple(cells))
-

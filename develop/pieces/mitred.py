@@ -90,12 +90,9 @@ def legs_of(
     for i, length in enumerate(lengths):
         before = turns[i - 1] if i else None
         after = turns[i] if i < len(turns) else None
-        low: Plane | SquareEdge = trim(before.cut if before else None, height=0.0, end_b=False)
-        high: Plane | SquareEdge = trim(after.cut if after else None, height=length, end_b=True)
-        if before:
-            low = edge.trim(low)
-        if after:
-            high = edge.trim(high, upper=True)
+        foot = trim(before.cut if before else None, height=0.0, end_b=False)
+        head = trim(after.cut if after else None, height=length, end_b=True)
+        low, high = edge.trim(foot) if before else foot, edge.trim(head, upper=True) if after else head
         breaks = [u for each in (low, high) if isinstance(each, SquareEdge) for u in each.breaks(section)]
         surface = Cylinder(section, low, high, distance, tuple(breaks))
         legs.append(Leg(surface, Frame(origin, axes)))

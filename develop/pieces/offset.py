@@ -160,6 +160,7 @@ class Offset(Jointed):
         """What the pattern of the legs of these numbers says."""
         from develop.pieces.joint_edge import joint_edge
 
+        edge = joint_edge(self)
         right, up = self.offset
         on_axis = self.middle if numbers[0] == 2 else self.ends
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
@@ -169,11 +170,11 @@ class Offset(Jointed):
             sizes=f"{section_words(self.section, units)}, offset, length {size_words(self.length, units)}",
             place=f"{shift_words(right, up, units)}, "
             f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
-            held="lengths and cuts",
+            held=edge.held("lengths", "cuts"),
             units=units,
             more=(
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
                 f"{measured_words(on_axis, units)} long on the axis",
-                *joint_edge(self).words(mitre=True),
+                *edge.words(mitre=True),
             ),
         )

@@ -1,4 +1,4 @@
-"""Edges cut square to the plate that touch a mitre's plane or a header, as ends in space; from sections alone.
+"""Edges cut square to the plate that touch a mitre's plane or a header, in space; from sections alone.
 
 An edge cut square to the plate is level across the wall: at a line of the side with the outward normal e it
 reaches from p + inner · e to p + outer · e, all at one height. It goes on until the first of these points
@@ -23,14 +23,15 @@ from develop.solid.taper_meeting import TaperMeetingEnd
 __all__ = ["MitredEnd", "StandingEnd", "TouchingEnd"]
 
 _GOLDEN = 0.5 * (np.sqrt(5.0) - 1.0)
-_STEPS = 80
+_BISECTIONS = 60
+_STEPS = 45
 _COARSE = 181
 _SAMPLES = 720
 _HALVINGS = 40
 _LOOSE = 1e-12
 _ROUNDS = 14
-# A normal of the other part that leans less than this to the wall's [rad] is square to it.
-_SQUARE = 1e-7
+# Less than this [rad] out of square is square, but for rounding.
+_SQUARE = 1e-12
 # Changes of the corner that lie nearer to each other than this part of a turn are one.
 _APART = 1e-6
 
@@ -48,7 +49,7 @@ class TouchingEnd(End):
 
     @abstractmethod
     def _reached(self, at: Walk) -> tuple[Array, Array]:
-        """Height of the edge and place of what touches, from the given surface (n,) [mm], on lines of a walk."""
+        """Height of the edge, and the place of what touches from the given surface, (n,) [mm], of a walk."""
 
     @abstractmethod
     def clear(self, points: Array) -> tuple[Array, Array]:
@@ -83,20 +84,20 @@ class TouchingEnd(End):
         )
         u = np.unique(u)
 
-        def corner(u: Array) -> Array:
-            place = self.touching(u)
-            return np.asarray(1.0 * (place == self.outer) - 1.0 * (place == self.inner))
-
-        low, high = u[:-1], u[1:]
-        first, last = corner(low), corner(high)
-        changes = np.flatnonzero(first != last)
-        low, high, first = low[changes], high[changes], first[changes]
-        for _ in range(_HALVINGS if len(changes) else 0):
-            middle = 0.5 * (low + high)
-            same = corner(middle) == first
-            low, high = np.where(same, middle, low), np.where(same, high, middle)
-        found = np.sort(np.concatenate([high, self._corners]) % section.period)
-        return found[np.diff(found, prepend=-1.0) > _APART * section.period]
+        found = [self._corners]
+        # Between the two corners a place that touches may run from the one to the other in no time, yet
+        # turn the edge by much: both its ends are wanted.
+        for corner in {self.inner, self.outer}:
+            here = self.touching(u) == corner
+            changes = np.flatnonzero(here[1:] != here[:-1])
+            low, high, first = u[changes], u[changes + 1], here[changes]
+            for _ in range(_HALVINGS if len(changes) else 0):
+                middle = 0.5 * (low + high)
+                same = (self.touching(middle) == corner) == first
+                low, high = np.where(same, middle, low), np.where(same, high, middle)
+            found.append(high)
+        spots = np.sort(np.concatenate(found) % section.period)
+        return np.asarray(spots[np.diff(spots, prepend=-1.0) > _APART * section.period])
 
     @property
     def _corners(self) -> Array:
@@ -116,7 +117,7 @@ class TouchingEnd(End):
         def values(panels: Panels) -> Array:
             points = self.point(panels.nodes.ravel()).reshape(*panels.nodes.shape, 3)
             rates = (DERIVATIVE @ points) / panels.half[:, None, None]
-            return np.linalg.norm(rates, axis=-1)[..., None]
+            return np.asarray(np.linalg.norm(rates, axis=-1)[..., None])
 
         def loose(panels: Panels, found: Array) -> Mask:
             return np.asarray(tail(found)[:, 0] * panels.half > _LOOSE * section.girth)
@@ -177,9 +178,10 @@ class StandingEnd(TouchingEnd):
     """The end A of a branch against the outside of a header. met: where its given surface meets that.
 
     By its tangent planes N the header lies below (h(N) − N · q) / (N · z) over any point q across the branch,
-    z the branch's axis, and the least of these is its height. Over an edge from inner to outer that is
-    highest where, of all planes, the least of the greatest over the edge is: the header is convex, so the two
-    may change places (minimax), and one search over N finds the height of the whole edge.
+    z the branch's axis, and the least of these is its height. It is convex, so that its greatest height over
+    an edge is also the least, of all planes, of the greatest over the edge (minimax): one search over N finds
+    the height of the whole edge and what touches. A plane is greatest over the edge's inner corner where it
+    falls outward, and over the outer one where it rises.
     """
 
     met: MeetingEnd
@@ -189,20 +191,20 @@ class StandingEnd(TouchingEnd):
         """The end of the branch that `met` is the end of, its edge's corners at inner and outer [mm]."""
         return StandingEnd(met.section, met.origin, met.spans, met.back, inner, outer, met)
 
-    def _planes(self, phi: Array) -> tuple[Array, Array]:
-        """Unit normals (..., 3) and supports (...) [mm] of the header's tangent planes, in the branch's frame
-        with its origin, for directions φ across the header."""
-        met, shape = self.met, phi.shape
-        flat = phi.ravel()
+    def _lines(self, phi: Array) -> tuple[Array, Array, Array]:
+        """The header's straight lines for directions φ (n,) across it, in the branch's frame: points and
+        directions (n, 3) [mm], and the unit normals (n, 3) along them."""
+        met = self.met
         if isinstance(met, TaperMeetingEnd):
-            a, _, normal = met._rulings(flat)
+            a, ruling, normal = met._rulings(phi)
             normal = normal / np.linalg.norm(normal, axis=1)[:, None]
-            support = np.einsum("ni,ni->n", normal, a)
         else:
-            normal = np.stack([np.cos(flat), np.sin(flat), np.zeros_like(flat)], axis=-1)
-            support = met.header.support(normal[:, 0], normal[:, 1])
-        support = support - normal @ met.frame.origin
-        return (normal @ met.frame.axes.T).reshape(*shape, 3), support.reshape(shape)
+            normal = np.stack([np.cos(phi), np.sin(phi), np.zeros_like(phi)], axis=-1)
+            touch = met.header.touch(normal[:, 0], normal[:, 1])
+            a = np.stack([*touch, np.zeros_like(phi)], axis=-1)
+            ruling = np.broadcast_to(np.array([0.0, 0.0, 1.0]), a.shape)
+        axes = met.frame.axes.T
+        return (a - met.frame.origin) @ axes, ruling @ axes, normal @ axes
 
     @cached_property
     def _near(self) -> tuple[float, float]:
@@ -217,78 +219,67 @@ class StandingEnd(TouchingEnd):
     def _reached(self, at: Walk) -> tuple[Array, Array]:
         shape = at.x.shape
         x, y, ex, ey = (each.ravel() for each in (at.x, at.y, at.ex, at.ey))
+        given = np.stack([x, y, np.zeros_like(x)], axis=-1)
+        out = np.stack([ex, ey, np.zeros_like(x)], axis=-1)
+        # Past the least of the planes the header's line lies on the other side of the branch's line: on the
+        # line, of the edge's two corners, over which this plane is higher.
 
-        def most(phi: Array) -> tuple[Array, Array, Array]:
-            """Height of the planes over the edge, its greatest; N · e; N · z."""
-            normal, support = self._planes(phi)
-            lean = normal[:, 0] * ex + normal[:, 1] * ey
-            rest = support - normal[:, 0] * x - normal[:, 1] * y
-            facing = np.maximum(normal[:, 2], 1e-300)
-            return (rest + np.maximum(-self.inner * lean, -self.outer * lean)) / facing, lean, facing
+        def beyond(phi: Array) -> Array:
+            a, ruling, normal = self._lines(phi)
+            lean = np.einsum("ni,ni->n", normal, out)
+            corner = given + np.where(lean >= 0.0, self.inner, self.outer)[:, None] * out
+            gap = a - corner
+            return np.asarray(ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1])
 
-        low, high = (np.full(len(x), end) for end in self._near)
-        a, b = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
-        at_a, at_b = most(a)[0], most(b)[0]
-        best, phi = np.minimum(at_a, at_b), np.where(at_a < at_b, a, b)
-        for _ in range(_STEPS):
-            left = at_a < at_b
-            low, high = np.where(left, low, a), np.where(left, b, high)
-            fresh = np.where(left, high - _GOLDEN * (high - low), low + _GOLDEN * (high - low))
-            found = most(fresh)[0]
-            a, b = np.where(left, fresh, b), np.where(left, a, fresh)
-            at_a, at_b = np.where(left, found, at_b), np.where(left, at_a, found)
-            better = found < best
-            best, phi = np.where(better, found, best), np.where(better, fresh, phi)
-        lean = most(phi)[1]
+        start, end = self._near
+        low, high = np.full(len(x), start), np.full(len(x), end)
+        ends = beyond(low), beyond(high)
+        first = ends[0] > 0.0
+        for _ in range(_BISECTIONS):
+            middle = 0.5 * (low + high)
+            same = (beyond(middle) > 0.0) == first
+            low, high = np.where(same, middle, low), np.where(same, high, middle)
+        phi = 0.5 * (low + high)
+        # A line that only grazes the header has no change of sign: it meets the nearer silhouette.
+        grazes = first == (ends[1] > 0.0)
+        phi = np.where(grazes, np.where(np.abs(ends[0]) < np.abs(ends[1]), start, end), phi)
+        a, ruling, normal = self._lines(phi)
+        lean = np.einsum("ni,ni->n", normal, out)
         place = np.where(lean < 0.0, self.outer, self.inner)
         if self.square:
-            between = np.abs(lean) < _SQUARE
-            place = np.where(between, self._between(phi, x, y, ex, ey), place)
-        return best.reshape(shape), place.reshape(shape)
-
-    def _between(self, phi: Array, x: Array, y: Array, ex: Array, ey: Array) -> Array:
-        """Where on an edge that the header's normal is square to it touches, (n,) [mm]: as far to the side as
-        the header's line of contact, or at the inside where the edge lies along that line."""
-        met = self.met
-        if isinstance(met, TaperMeetingEnd):
-            a, ruling, normal = met._rulings(phi)
-        else:
-            e = np.stack([np.cos(phi), np.sin(phi)])
-            touch = met.header.touch(e[0], e[1])
-            a = np.stack([*touch, np.zeros_like(phi)], axis=-1)
-            ruling = np.broadcast_to(np.array([0.0, 0.0, 1.0]), a.shape)
-            normal = np.stack([*e, np.zeros_like(phi)], axis=-1)
-        # Across the line of contact, in its tangent plane: the edge and the branch's axis give both.
-        side = np.cross(normal, ruling)
-        axes = met.frame.axes
-        edge = ex[:, None] * axes[0] + ey[:, None] * axes[1]
-        origin = x[:, None] * axes[0] + y[:, None] * axes[1] + met.frame.origin
-        lift = np.einsum("ni,ni->n", normal, a - origin) / (normal @ axes[2])
-        origin = origin + lift[:, None] * axes[2]
-        rate = np.einsum("ni,ni->n", edge, side)
-        level = np.abs(rate) < 1e-6 * np.linalg.norm(side, axis=1)
-        step = np.einsum("ni,ni->n", a - origin, side) / np.where(level, 1.0, rate)
-        return np.where(level, self.inner, np.clip(step, self.inner, self.outer))
+            # Square to the wall, the header's side touches where its line crosses the edge, or all along.
+            across = ruling[:, 1] * ex - ruling[:, 0] * ey
+            level = np.abs(across) < _SQUARE * np.linalg.norm(ruling, axis=1)
+            gap = a - given
+            step = (ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1]) / np.where(level, 1.0, across)
+            step = np.where(level, self.inner, np.clip(step, self.inner, self.outer))
+            place = np.where(np.abs(lean) < _SQUARE, step, place)
+        # Along the branch's axis to where its line and the header's are nearest: they cross.
+        corner = given + place[:, None] * out
+        square = np.stack([-ruling[:, 1], ruling[:, 0], np.zeros_like(x)], axis=-1)
+        size = np.einsum("ni,ni->n", square, square)
+        height = np.einsum("ni,ni->n", np.cross(a - corner, ruling), square) / size
+        return height.reshape(shape), place.reshape(shape)
 
     def clear(self, points: Array) -> tuple[Array, Array]:
         # A point is as far outside of a convex side as of the tangent plane that it is farthest from.
         start, end = self._near
         grid = np.linspace(start, end, _COARSE)
-        normal, support = self._planes(grid)
-        index = np.argmax(points @ normal.T - support, axis=1)
+        a, _, normal = self._lines(grid)
+        index = np.argmax(points @ normal.T - np.einsum("ki,ki->k", normal, a), axis=1)
         step = grid[1] - grid[0]
         low, high = grid[index] - step, grid[index] + step
 
         def apart(phi: Array) -> Array:
-            normal, support = self._planes(phi)
-            return np.asarray(np.einsum("ni,ni->n", normal, points) - support)
+            a, _, normal = self._lines(phi)
+            return np.asarray(np.einsum("ni,ni->n", normal, points - a))
 
-        for _ in range(_STEPS // 2):
-            a, b = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
-            left = apart(a) > apart(b)
-            low, high = np.where(left, low, a), np.where(left, b, high)
+        for _ in range(_STEPS):
+            first, last = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
+            left = apart(first) > apart(last)
+            low, high = np.where(left, low, first), np.where(left, last, high)
         phi = 0.5 * (low + high)
-        return apart(phi), self._planes(phi)[0]
+        return apart(phi), self._lines(phi)[2]
 
     def off(self, points: Array) -> Array:
         return np.abs(self.clear(points)[0])

@@ -42,8 +42,8 @@ class Cylinder:
     """A section carried along +z between two trims, the sheet lying `distance` [mm] outside of it.
 
     The trims meet the given section, a square edge the whole wall; an edge is cut square to the plate, so
-    its height does not change across the thickness. breaks: further parameters at which panels must end, where a trim
-    has corners. That the trims do not cross is for whoever makes a piece to see to.
+    its height does not change across the thickness. breaks: further parameters at which panels must end,
+    where a trim has corners. That the trims do not cross is for whoever makes a piece to see to.
     """
 
     section: Section

@@ -53,7 +53,7 @@ class SquareEdge:
     upper: bool = False
 
     def heights(self, start: Array, out: Array) -> Array:
-        """Heights (n,) [mm] of the edge on rulings through start (n, 3), z = 0, with outward normals out (n, 3)."""
+        """Heights (n,) [mm] of the edge on rulings through start (n, 3), z = 0, normals out (n, 3)."""
         sign = -1.0 if self.upper else 1.0
         along = np.broadcast_to(_AXIS, start.shape)
         found = sign * self.face.meet(start + self.inner * out, along)
@@ -74,16 +74,18 @@ class SquareEdge:
         zero where it does, as the rise itself grows without limit at a silhouette."""
         normal = self.face.facing(start + np.asarray(place)[..., None] * out)
         rise = -np.einsum("ni,ni->n", normal, out)
-        return -rise if self.upper else rise
+        return np.asarray(-rise if self.upper else rise)
 
     def _summit(self, start: Array, out: Array) -> Array:
-        """Where between its corners (n,) an edge lies on the top of a convex face: regula falsi (Illinois)."""
+        """Where between its corners (n,) an edge lies on top of a convex face: regula falsi (Illinois)."""
         low, high = np.full(len(start), self.inner), np.full(len(start), self.outer)
         at_low, at_high = self._climb(start, out, low), self._climb(start, out, high)
         place = 0.5 * (low + high)
         for _ in range(_ROOT_STEPS):
             change = at_high - at_low
-            place = np.where(change != 0.0, high - at_high * (high - low) / np.where(change != 0.0, change, 1.0), low)
+            place = np.where(
+                change != 0.0, high - at_high * (high - low) / np.where(change != 0.0, change, 1.0), low
+            )
             at = self._climb(start, out, place)
             crossed = at * at_high < 0.0
             at_low = np.where(crossed, at_high, 0.5 * at_low)
@@ -91,7 +93,7 @@ class SquareEdge:
             high, at_high = place, at
             if np.max(np.abs(high - low) * (at != 0.0), initial=0.0) <= _NEAR * (self.outer - self.inner):
                 break
-        return place
+        return np.asarray(place)
 
     def breaks(self, section: Section) -> tuple[float, ...]:
         """Parameters of the section where panels must end: where what touches changes, and where a corner of
