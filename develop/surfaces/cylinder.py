@@ -34,6 +34,8 @@ _SAME = 1e-13
 # heights, which differentiating brings up some hundred times.
 _LOOSE = 2e-13
 _ROUNDS = 16
+# Where an edge stands, a climb above this [mm per unit of the parameter] is one.
+_STEP = 1e-5
 _AXIS = np.array([0.0, 0.0, 1.0])
 
 
@@ -122,8 +124,10 @@ class CylinderSheet:
         ends, tangents = [], []
         for z, climb in ((climbs[:, 0], climbs[:, 2]), (climbs[:, 1], climbs[:, 3])):
             ends.append(np.stack([row[:, 0], z], axis=-1))
-            # At a sharp corner of the section the edge stands, and a climb there is rounding.
-            along, up = np.where(go > 0.0, go, 1.0), np.where(go > 0.0, climb, 0.0)
+            # At a sharp corner of the section the edge stands, and a climb there is rounding, but for an edge
+            # square to the plate, which may climb there from the one side's height to the other's.
+            moves, climbs_there = go > 0.0, np.abs(climb) > _STEP
+            along, up = np.where(moves | climbs_there, go, 1.0), np.where(moves | climbs_there, climb, 0.0)
             size = np.sqrt(along * along + up * up)
             tangents.append(np.stack([along / size, up / size], axis=-1))
         radius = section.radius(at.ex, at.ey) + d
