@@ -110,8 +110,8 @@ class Solid:
     def _off(end: End, points: Array, u: Array) -> Array:
         """Distance (n,) [mm] of points (n, 3) from an end, never understated."""
         if isinstance(end, TouchingEnd):
-            return np.minimum(end.distance(points), np.linalg.norm(points - end.point(u), axis=1))
-        return end.distance(points)
+            return np.asarray(np.minimum(end.distance(points), np.linalg.norm(points - end.point(u), axis=1)))
+        return np.asarray(end.distance(points))
 
     def _strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
