@@ -32,6 +32,8 @@ _LOOSE = 1e-12
 _ROUNDS = 14
 # Less than this [rad] out of square is square, but for rounding.
 _SQUARE = 1e-12
+# A plane that faces the branch by less than this is seen edge-on.
+_EDGE_ON = 1e-4
 # Changes of the corner that lie nearer to each other than this part of a turn are one.
 _APART = 1e-6
 
@@ -254,11 +256,15 @@ class StandingEnd(TouchingEnd):
             step = (ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1]) / np.where(level, 1.0, across)
             step = np.where(level, self.inner, np.clip(step, self.inner, self.outer))
             place = np.where(np.abs(lean) < _SQUARE, step, place)
-        # Along the branch's axis to where its line and the header's are nearest: they cross.
+        # Along the branch's axis to the plane or, where it is seen edge-on, to where the branch's line and the
+        # header's cross: of a flat side any line gives the plane.
         corner = given + place[:, None] * out
+        facing = normal[:, 2] > _EDGE_ON
+        on_plane = np.einsum("ni,ni->n", normal, a - corner) / np.where(facing, normal[:, 2], 1.0)
         square = np.stack([-ruling[:, 1], ruling[:, 0], np.zeros_like(x)], axis=-1)
         size = np.einsum("ni,ni->n", square, square)
-        height = np.einsum("ni,ni->n", np.cross(a - corner, ruling), square) / size
+        crossing = np.einsum("ni,ni->n", np.cross(a - corner, ruling), square) / size
+        height = np.where(facing, on_plane, crossing)
         return height.reshape(shape), place.reshape(shape)
 
     def clear(self, points: Array) -> tuple[Array, Array]:

@@ -293,6 +293,20 @@ def test_only_a_branch_that_is_set_on_touches_with_its_edge(joint: str) -> None:
         {"header": "rectangle 500 x 400 r 30", "branch": "round 300", "angle": 70, "off_centre": 90},
         {"header": "round 400", "branch": "round 400", "angle": 60, "sizes": "mean", "centre_to_end": 900},
         {"off_centre": 163.5, "face": "inside"},
+        {
+            "header": "rectangle 852 x 355 r 80",
+            "leaves_at": 234,
+            "angle": 50,
+            "centre_to_end": 1700,
+            "header_length": 4000,
+        },
+        {
+            "header": "flat-oval 950 x 510",
+            "branch": "superellipse 318 x 206 n 2.7",
+            "leaves_at": 275,
+            "rotate": 90,
+            "centre_to_end": 1200,
+        },
         {"angle": 30, "sizes": "inside", "centre_to_end": 1200, "header_length": 2500},
     ],
 )
