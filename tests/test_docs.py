@@ -64,7 +64,12 @@ def test_the_page_of_touching_edges_shows_what_its_script_finds() -> None:
     assert found[:2] + found[3:] == pytest.approx(expected[:2] + expected[3:], abs=0.006)
 
 
-@pytest.mark.parametrize("name", ["accuracy", "directions", "demo", "touching"])
+def test_the_allowances_page_shows_what_its_script_finds() -> None:
+    text = (DOCS / "allowances.md").read_text(encoding="utf-8")
+    assert figure("allowances").page(text) == text
+
+
+@pytest.mark.parametrize("name", ["accuracy", "allowances", "directions", "demo", "touching"])
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"
     figure(name).plot(file)
@@ -160,7 +165,7 @@ def test_the_page_of_tables_says_what_the_tables_say() -> None:
 
 
 def test_the_shop_rules_of_the_page_of_tables_are_read(tmp_path: Path) -> None:
-    from develop.job.rules_file import read_rules
+    from develop.job.file import read_rules
     from develop.tables.seams import edge_of, seam_of
 
     text = (DOCS / "materials.md").read_text(encoding="utf-8")

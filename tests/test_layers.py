@@ -266,5 +266,5 @@ def test_one_transition_to_svg_pdf_and_record_leaves_the_heavy_libraries_alone(t
     )
     seen = third_party(loaded(code))
     assert {"numpy", "click", "reportlab"} <= seen
-    assert seen.isdisjoint({"scipy", "matplotlib", "shapely", "trimesh", "pydantic"})
+    assert seen.isdisjoint({"scipy", "matplotlib", "ezdxf", "shapely", "trimesh", "pydantic"})
     assert sorted(each.suffix for each in tmp_path.iterdir()) == [".json", ".pdf", ".svg"]

@@ -88,12 +88,24 @@ def _distance(points: Array, curve: Curve) -> Array:
     gap = samples[window] - points[:, None]
     nearest = window[np.arange(len(points)), np.argmin((gap * gap).sum(axis=-1), axis=1)]
     piece = np.minimum(nearest // _STEPS, len(pieces) - 1)
-    best = _to_foot(points, pieces, piece, nearest / _STEPS - piece)
-    # Beside a corner the nearest sample may lie on the wrong side of it.
+    best = _beside_corners(points, pieces, piece, nearest / _STEPS - piece)
+    # Beside a fine piece the next sample of a long one is far off: then the nearest chord of all tells.
     far = np.flatnonzero(best > _TOGETHER)
-    for step, t in ((-1, 1.0), (1, 0.0)):
+    for some in np.array_split(far, max(len(far) // _WINDOW, 1)):
+        found = _beside(points[some], samples)
+        piece = np.minimum(found.strip // _STEPS, len(pieces) - 1)
+        t = (found.strip + found.share) / _STEPS - piece
+        best[some] = np.minimum(best[some], _beside_corners(points[some], pieces, piece, t))
+    return best
+
+
+def _beside_corners(points: Array, pieces: Array, piece: Indices, t: Array) -> Array:
+    """As `_to_foot`; but beside a corner the nearest sample may lie on the wrong side of it."""
+    best = _to_foot(points, pieces, piece, t)
+    far = np.flatnonzero(best > _TOGETHER)
+    for step, start in ((-1, 1.0), (1, 0.0)):
         other = np.clip(piece[far] + step, 0, len(pieces) - 1)
-        best[far] = np.minimum(best[far], _to_foot(points[far], pieces, other, np.full(len(far), t)))
+        best[far] = np.minimum(best[far], _to_foot(points[far], pieces, other, np.full(len(far), start)))
     return best
 
 
@@ -156,8 +168,7 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
     rows = pattern.divisions
     section = solid.end_a.section
-    strip = solid.strip(section.at_direction(np.array([row.direction for row in rows])))
-    true = np.linalg.norm(strip.b - strip.a, axis=1)
+    least, most = solid.lengths(section.at_direction(np.array([row.direction for row in rows])))
     points = np.array([(row.a, row.b) for row in rows])
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
     length = np.array([row.length for row in rows])
@@ -165,7 +176,7 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     if not any(line.press for line in pattern.lines):
         # Of a corner's press lines several start in one direction, and stop short of the edges.
         drawn = np.array([(line.start, line.end) for line in pattern.lines])
-        misses += [length - true, points - drawn]
+        misses += [np.maximum(np.maximum(least - length, length - most), 0.0), points - drawn]
     return float(max(np.max(np.abs(each)) for each in misses))
 
 

@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 
 import click
 
-from develop.cli.options import FORMATS_OPTION, OUT, FieldsCommand, PathOf
+from develop.cli.options import OUT, OUTPUT_OPTIONS, FieldsCommand, PathOf
 from develop.cli.report import report
 from develop.errors import InputError, Problem
 from develop.job.file import read_job
+from develop.job.output_fields import outputs_of
 from develop.job.pipeline import make
 from develop.pieces.fields import Declared
 from develop.units import sheet_unit
@@ -24,7 +26,8 @@ def command(summary: str) -> click.Command:
     return FieldsCommand(
         "job",
         _make_all,
-        options=[OUT, FORMATS_OPTION],
+        # What is not given here is as the job has it.
+        options=[OUT, *(replace(each, default=None) for each in OUTPUT_OPTIONS)],
         argument=_FILE,
         text=f"Make the patterns of {summary}.\n\n"
         "The file is TOML: [job] with name and units, [defaults], and "
@@ -35,19 +38,28 @@ def command(summary: str) -> click.Command:
 
 
 def _make_all(values: Mapping[str, object]) -> int:
-    formats = values["formats"]
-    assert isinstance(formats, tuple)
     folder = str(values["out"])
     worst = 0
     problems: list[Problem] = []
     job = read_job(str(values["file"]))
+    formats = values["formats"] or job.formats
+    assert isinstance(formats, tuple)
+    try:
+        outputs = outputs_of(values, otherwise=job.outputs)
+    except InputError as error:
+        raise InputError([replace(each, field="--dxf-curves") for each in error.problems]) from None
     if job.name:
         click.echo(f"{job.name}: {len(job.pieces)} piece{'s' if len(job.pieces) != 1 else ''}")
     taken: dict[str, str] = {}
     for placed in job.pieces:
         try:
             outcome = make(
-                placed.piece, folder=folder, formats=formats, units=sheet_unit(job.units), taken=taken
+                placed.piece,
+                folder=folder,
+                formats=formats,
+                outputs=outputs,
+                units=sheet_unit(job.units),
+                taken=taken,
             )
         except InputError as error:
             problems += [each.at(placed.place(each.field)) for each in error.problems]

@@ -8,13 +8,13 @@ from dataclasses import dataclass, replace
 import click
 
 from develop.errors import InputError, Problem
-from develop.job.pipeline import FORMATS
+from develop.job.output_fields import FORMATS_FIELD, OUTPUT_FIELDS
 from develop.pieces.field_types import Choice, Text
 from develop.pieces.fields import Declared, read_fields
 from develop.units import UNITS
-from develop.wording import listed, near_miss, nearest, shown
+from develop.wording import near_miss, nearest, shown
 
-__all__ = ["FORMATS_OPTION", "JSON", "OUT", "FieldsCommand", "Flag", "PathOf", "Words", "units_option"]
+__all__ = ["JSON", "OUT", "OUTPUT_OPTIONS", "RULES_OPTION", "FieldsCommand", "Flag", "PathOf", "units_option"]
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -35,35 +35,6 @@ class PathOf:
 
     def text(self, value: object) -> str:
         return str(value)
-
-
-@dataclass(frozen=True, eq=False, repr=False)
-class Words:
-    """One or more of a few words, with commas between."""
-
-    words: tuple[str, ...]
-    metavar: str = "LIST"
-    unit: str = ""
-
-    @property
-    def allowed(self) -> str:
-        return f"{listed(self.words)}, or several of them with commas between"
-
-    def read(self, given: object, *, unit: str) -> tuple[str, ...]:
-        words = [word.strip().lower() for word in str(given).split(",")]
-        wrong = [word for word in words if word not in self.words]
-        if wrong:
-            hint = near_miss(wrong[0], self.words)
-            which = f"{shown(wrong[0])} is not one of them{hint}"
-            raise InputError(Problem("", which, self.allowed))
-        return tuple(word for word in self.words if word in words)
-
-    def record(self, value: object) -> object:
-        return value
-
-    def text(self, value: object) -> str:
-        assert isinstance(value, tuple)
-        return ",".join(value)
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -90,9 +61,14 @@ OUT = Declared(
     help="folder for the files; made if it is not there",
     required=True,
 )
-FORMATS_OPTION = Declared(
-    name="formats", type=Words(FORMATS), help="files to write", required=False, default=FORMATS
+RULES_OPTION = Declared(
+    name="rules",
+    type=PathOf("a TOML file of rules", "FILE"),
+    help="the shop's own rules for seams and edges",
+    required=False,
+    default="",
 )
+OUTPUT_OPTIONS = (FORMATS_FIELD, *OUTPUT_FIELDS)
 JSON = Declared(name="json", type=Flag(), help="data alone, in mm", required=False, default=False)
 _SHORT = {"-o": "--out"}
 _UNITS = Choice(tuple(UNITS))

@@ -7,9 +7,10 @@ from dataclasses import replace
 
 import click
 
-from develop.cli.options import FORMATS_OPTION, OUT, FieldsCommand, units_option
+from develop.cli.options import OUT, OUTPUT_OPTIONS, RULES_OPTION, FieldsCommand, units_option
 from develop.cli.report import report
 from develop.errors import InputError
+from develop.job.output_fields import OUTPUT_FIELDS, outputs_of
 from develop.job.pipeline import make
 from develop.pieces import KINDS, kind_of
 from develop.pieces.fields import fields_of
@@ -23,15 +24,23 @@ def piece_command(name: str) -> click.Command:
     """The command of a kind."""
     kind = kind_of(name)
     fields = fields_of(kind)
-    options = {each.name: each.option for each in fields}
+    options = {each.name: each.option for each in (*fields, *OUTPUT_FIELDS)}
 
     def action(values: Mapping[str, object]) -> int:
         piece = kind(**{each.name: values[each.name] for each in fields})
+        if values.get("rules"):
+            from develop.job.file import read_rules, with_rules
+
+            piece = with_rules(piece, read_rules(str(values["rules"])))
         formats = values["formats"]
         assert isinstance(formats, tuple)
         try:
             outcome = make(
-                piece, folder=str(values["out"]), formats=formats, units=sheet_unit(str(values["units"]))
+                piece,
+                folder=str(values["out"]),
+                formats=formats,
+                outputs=outputs_of(values),
+                units=sheet_unit(str(values["units"])),
             )
         except InputError as error:
             raise InputError(
@@ -45,7 +54,8 @@ def piece_command(name: str) -> click.Command:
         options=[
             *fields,
             OUT,
-            FORMATS_OPTION,
+            *((RULES_OPTION,) if hasattr(kind, "rules") else ()),
+            *OUTPUT_OPTIONS,
             units_option("unit of bare numbers; in and ft give sheets in inches"),
         ],
         text=f"Make the pattern of {KINDS[name][2]}.\n\nLengths take mm, cm, m, in or ft, and fractions: "

@@ -16,6 +16,8 @@ def report(outcome: Outcome, folder: str) -> int:
         wrote += f"; {sum(outcome.sheets)} large sheets in the PDF, to be laid together"
     for warning in outcome.warnings:
         click.echo(f"{outcome.mark}: warning: {warning}", err=True)
+    if outcome.arcs:
+        wrote += f"; {outcome.arcs} arcs in the DXF, within {outcome.deviation:.4f} mm of the curve"
     failed = outcome.failed
     if not failed:
         count = len(outcome.checks)

@@ -6,31 +6,44 @@ Everything that is wrong is found in one reading, and each problem says the file
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 from develop.errors import InputError, Problem, Refusal
 from develop.job.lines import Path, lines_of
+from develop.job.output_fields import FORMATS, FORMATS_FIELD, OUTPUT_FIELDS, Outputs, outputs_of
 from develop.job.writing import file_key
 from develop.pieces import KINDS, kind_of
 from develop.pieces.field_types import Choice, Text
 from develop.pieces.fields import Declared, Piece, fields_of, read_fields, read_piece
+from develop.tables.rules import Rules, read_tables, shipped
 from develop.units import UNITS
 from develop.wording import listed, near_miss, shown
 
-__all__ = ["Job", "Placed", "Places", "parsed", "read_job", "text_of"]
+__all__ = ["Job", "Placed", "Places", "read_job", "read_rules", "with_rules"]
 
 _LARGEST = 16_000_000
 _WHAT = "a job file"
+_RULES = "a file of rules"
 
+_UNITS = Choice(tuple(UNITS))
 _JOB = (
     Declared(name="name", type=Text(), help="name of the job", required=False, default=""),
     Declared(
         name="units",
-        type=Choice(tuple(UNITS)),
+        type=_UNITS,
         help="unit of lengths given as bare numbers",
         required=False,
         default="mm",
     ),
+    Declared(
+        name="rules",
+        type=Text(),
+        help="a file of the shop's own rules for seams and edges, from the folder of the job file",
+        required=False,
+        default="",
+    ),
+    FORMATS_FIELD,
+    *OUTPUT_FIELDS,
 )
 _TABLES = ("job", "defaults", "piece")
 # A mark is one piece's own.
@@ -63,11 +76,14 @@ class Placed:
 
 @dataclass(frozen=True)
 class Job:
-    """A job as read: its name, the unit of its bare lengths, and its pieces in the file's order."""
+    """A job as read: its name, the unit of its bare lengths, its pieces in the file's order, and which
+    files are written of them, and how."""
 
     name: str
     units: str
     pieces: tuple[Placed, ...]
+    formats: tuple[str, ...] = FORMATS
+    outputs: Outputs = field(default_factory=Outputs)
 
 
 def read_job(file: str) -> Job:
@@ -75,31 +91,37 @@ def read_job(file: str) -> Job:
 
     Raises InputError with every problem, each at its line.
     """
-    text = text_of(file)
-    data, places = parsed(file, text)
+    text = _text_of(file)
+    data, places = _parsed(file, text)
     problems: list[Problem] = []
     for name in data:
         if name not in _TABLES:
             hint = near_miss(name, _TABLES)
             given = f"no such table{hint}"
             problems.append(Problem(name, given, "[job], [defaults] and [[piece]]", places.of(name)))
-    name, unit = _job(data, places, problems)
+    own = _job(data, places, problems)
+    unit = str(own["units"])
+    rules = _shop_rules(str(own["rules"]), places, problems)
     defaults = _table(data, "defaults", places, problems)
     raw = _pieces(data, places, problems)
     _check_defaults(defaults, unit, places, problems)
     read: list[Placed] = []
     for index, table in enumerate(raw):
         if table is not None:
-            piece = _piece(index, table, defaults, unit, places, problems)
+            piece = _piece(index, table, defaults, unit, places, problems, rules)
             if piece is not None:
                 read.append(piece)
     _check_marks(raw, places, problems)
     if problems:
         raise InputError(_once(problems))
-    return Job(name=name, units=unit, pieces=tuple(read))
+    formats = own["formats"]
+    assert isinstance(formats, tuple)
+    return Job(
+        name=str(own["name"]), units=unit, pieces=tuple(read), formats=formats, outputs=outputs_of(own)
+    )
 
 
-def text_of(file: str, what: str = _WHAT) -> str:
+def _text_of(file: str, what: str = _WHAT) -> str:
     """The text of a TOML file. Raises InputError for a file that is no text or cannot be read."""
     from os import strerror
 
@@ -125,7 +147,7 @@ def text_of(file: str, what: str = _WHAT) -> str:
         ) from None
 
 
-def parsed(file: str, text: str, what: str = _WHAT) -> tuple[dict[str, object], Places]:
+def _parsed(file: str, text: str, what: str = _WHAT) -> tuple[dict[str, object], Places]:
     """The tables of a TOML text, and where each key stands. Raises InputError with the line."""
     import re
     import tomllib
@@ -145,6 +167,23 @@ def parsed(file: str, text: str, what: str = _WHAT) -> tuple[dict[str, object], 
     raise InputError(problem)
 
 
+def read_rules(file: str) -> Rules:
+    """The rules for seams and edges that come with the program, and over them those of a shop's own file.
+
+    The file has tables `[seams.NAME]` and `[edges.NAME]` of the form of `seams.toml` and `edges.toml`; a
+    rule of the same name is replaced whole. Raises InputError with every problem, each at its line.
+    """
+    data, places = _parsed(file, _text_of(file, _RULES), _RULES)
+    return read_tables(data, base=shipped(), place=places.of)
+
+
+def with_rules(piece: Piece, rules: Rules | None) -> Piece:
+    """The piece with the shop's own rules, if its kind has a use for them."""
+    if rules is None or not hasattr(piece, "rules"):
+        return piece
+    return replace(piece, rules=rules)  # type: ignore[type-var]
+
+
 def _table(
     data: Mapping[str, object], name: str, places: Places, problems: list[Problem]
 ) -> dict[str, object]:
@@ -155,10 +194,39 @@ def _table(
     return {}
 
 
-def _job(data: Mapping[str, object], places: Places, problems: list[Problem]) -> tuple[str, str]:
-    values, found = read_fields(_JOB, _table(data, "job", places, problems), unit="mm", where="[job]")
+def _shop_rules(file: str, places: Places, problems: list[Problem]) -> Rules | None:
+    """The shop's own rules, from the folder of the job file."""
+    from os.path import dirname, join
+
+    if not file:
+        return None
+    try:
+        return read_rules(join(dirname(places.file), file))
+    except InputError as error:
+        # What is no line of the rules is a fault of the job's.
+        lost = places.of("job", "rules")
+        problems += [
+            each if ":" in each.place.rpartition("/")[2] else replace(each, field="rules", place=lost)
+            for each in error.problems
+        ]
+        return None
+
+
+def _job(data: Mapping[str, object], places: Places, problems: list[Problem]) -> dict[str, object]:
+    """The values of [job] by name; what is wrong is as if it were not given."""
+    given = _table(data, "job", places, problems)
+    try:
+        unit = str(_UNITS.read(given.get("units", "mm"), unit=""))
+    except InputError:
+        unit = "mm"  # the units are one of the problems then
+    values, found = read_fields(_JOB, given, unit=unit, where="[job]")
+    values = {each.name: each.default for each in _JOB} | values
+    try:
+        outputs_of(values)
+    except InputError as error:
+        found += error.problems
     problems += [problem.at(places.of("job", problem.field)) for problem in found]
-    return str(values.get("name", "")), str(values.get("units", "mm"))
+    return values
 
 
 def _pieces(
@@ -217,6 +285,7 @@ def _piece(
     unit: str,
     places: Places,
     problems: list[Problem],
+    rules: Rules | None,
 ) -> Placed | None:
     name = given.get("kind")
     if not isinstance(name, str) or name not in KINDS:
@@ -246,6 +315,7 @@ def _piece(
     problems += [each.at(place(each.field)) for each in found]
     if piece is None:
         return None
+    piece = with_rules(piece, rules)
     try:
         piece.check()
     except Refusal as refusal:

@@ -7,26 +7,26 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from develop.errors import Refusal
+from develop.job.output_fields import FORMATS, Outputs
 from develop.job.writing import file_key, write_all
 from develop.pieces.fields import Piece, record_of
-from develop.pieces.hand import builds_of
+from develop.pieces.hand import OPPOSITE, builds_of
 
 if TYPE_CHECKING:
     from develop.checks import Check
     from develop.pieces.built import Built
 
-__all__ = ["FORMATS", "Outcome", "checks_of", "checks_of_all", "make"]
+__all__ = ["Outcome", "checks_of", "checks_of_all", "make"]
 
-# In the order in which they are written and named.
-FORMATS = ("svg", "pdf", "json", "png")
-_DRAWN = {"svg", "pdf"}
+_DRAWN = {"svg", "pdf", "dxf"}
 
 
 @dataclass(frozen=True)
 class Outcome:
     """What was written for one piece, and what the checks found.
 
-    sheets: how many large sheets each pattern takes in the PDF, if that was written. warnings: of what is
+    sheets: how many large sheets each pattern takes in the PDF, if that was written. arcs: how many the
+    DXF files have in all; deviation: of them from the pattern's curves, at most [mm]. warnings: of what is
     no fault of the pattern, but of the piece as it was asked for.
     """
 
@@ -35,6 +35,8 @@ class Outcome:
     checks: tuple[Check, ...]
     sheets: tuple[int, ...] = ()
     warnings: tuple[str, ...] = ()
+    arcs: int = 0
+    deviation: float = 0.0
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -47,38 +49,60 @@ def make(
     *,
     folder: str,
     formats: Sequence[str] = FORMATS,
+    outputs: Outputs = Outputs(),  # noqa: B008  # frozen
     units: str = "mm",
     taken: dict[str, str] | None = None,
 ) -> Outcome:
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
-    units: of the figures on the sheets, `mm` or `in`; the record is always in mm. taken: the files of
+    outputs: how cutting files are drawn. units: of the figures on the sheets, `mm` or `in`; the record
+    and the cutting files are always in mm. taken: the files of
     this job's other pieces, each with its mark; those of this piece are added. Raises Refusal for a
     piece that cannot be, or whose files are another's, WriteError for a place that cannot be written.
     """
     builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)
     files: dict[str, bytes] = {}
-    sheets: tuple[int, ...] = ()
+    told = Outcome(mark=piece.mark, files=(), checks=checks)
     if _DRAWN.intersection(formats):
         from develop.pattern.layout import lettered
 
         builds = tuple(
             built.with_patterns([lettered(pattern) for pattern in built.patterns]) for built in builds
         )
+    patterns = [pattern for built in builds for pattern in built.patterns]
     for each in (each for each in FORMATS if each in formats):
         if each == "pdf":
             from develop.outputs.pdf import printed
 
-            files[f"{piece.mark}.pdf"], sheets = printed(
-                [pattern for built in builds for pattern in built.patterns]
+            files[f"{piece.mark}.pdf"], sheets = printed(patterns)
+            told = replace(told, sheets=sheets)
+        elif each == "dxf":
+            from develop.outputs.dxf import dxf
+
+            drawn = [
+                dxf(
+                    pattern,
+                    version=outputs.dxf_version,
+                    curves=outputs.dxf_curves,
+                    tolerance=outputs.tolerance,
+                    text=outputs.text == "all",
+                )
+                for pattern in patterns
+            ]
+            names = [f"{pattern.mark}.dxf" for pattern in patterns]
+            files |= {name: found.data for name, found in zip(names, drawn, strict=True)}
+            told = replace(
+                told,
+                arcs=sum(found.arcs for found in drawn),
+                deviation=max(found.deviation for found in drawn),
             )
         else:
-            files |= _files(each, piece, builds, checks)
+            files |= _files(each, piece, builds, checks, outputs)
     _take(files, piece.mark, {} if taken is None else taken)
     write_all(folder, files)
     warnings = tuple(dict.fromkeys(each for built in builds for each in built.warnings))
-    return Outcome(mark=piece.mark, files=tuple(files), checks=checks, sheets=sheets, warnings=warnings)
+    return replace(told, files=tuple(files), warnings=warnings)
 
 
 def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
@@ -142,14 +166,16 @@ def _plate_title(mark: str, facts: Sequence[str]) -> str:
     return "\n".join((f"{mark}: {facts[0]}", *(each for each in facts if each.startswith("slope "))))
 
 
-def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...]) -> dict[str, bytes]:
+def _files(
+    ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Check, ...], outputs: Outputs
+) -> dict[str, bytes]:
     """Files of one format by name. Each writer is imported only when its format is asked for."""
     mark = piece.mark
     patterns = [pattern for built in builds for pattern in built.patterns]
     if ending == "svg":
         from develop.outputs.svg import svg
 
-        return {f"{pattern.mark}.svg": svg(pattern) for pattern in patterns}
+        return {f"{pattern.mark}.svg": svg(pattern, text=outputs.text == "all") for pattern in patterns}
     if ending == "json":
         from develop.outputs.record import record
 
@@ -162,6 +188,8 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
             warnings=[each for built in builds for each in built.warnings],
         )
         return {f"{mark}.json": data}
+    if ending in ("stl", "glb"):
+        return _solids(ending, piece, builds)
     from develop.solid import Patch, Solid
 
     solid = builds[0].solid
@@ -202,3 +230,18 @@ def _files(ending: str, piece: Piece, builds: Sequence[Built], checks: tuple[Che
         if name != "inner"
     ]
     return {f"{mark}.png": picture(placed, (title, *patterns[0].facts[1:3]), names, plates)}
+
+
+def _solids(ending: str, piece: Piece, builds: Sequence[Built]) -> dict[str, bytes]:
+    """The finished piece as a solid, and its opposite hand as another."""
+    from develop.outputs.solid_files import glb, meshes_of, stl
+
+    # A band of paper is no thicker than the paper is, and lies with its middle where it is developed.
+    thickness = float(getattr(piece, "paper", getattr(piece, "thickness", 0.0)))
+    neutral_line = 0.5 if hasattr(piece, "paper") else float(getattr(piece, "neutral_line", 0.5))
+    files = {}
+    for built, ends in zip(builds, ("", OPPOSITE), strict=False):
+        meshes = meshes_of(built, thickness=thickness, neutral_line=neutral_line)
+        mark = f"{piece.mark}{ends}"
+        files[f"{mark}.{ending}"] = stl(meshes) if ending == "stl" else glb(meshes, mark)
+    return files

@@ -11,7 +11,18 @@ from typing import TYPE_CHECKING
 
 from develop.outputs.fonts import CAPITAL, FACE, width
 from develop.pattern.curve import Array, Curve
-from develop.pattern.drawing import CUT, FOLD_LINES, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS
+from develop.pattern.drawing import (
+    CUT,
+    DASHED,
+    FOLD_LINES,
+    NET,
+    OPENINGS,
+    PEN_LINES,
+    PRESS_LINES,
+    ROLL_LINES,
+    TEXT,
+    WITNESS_MARKS,
+)
 from develop.pattern.pattern import Label, Outline
 
 if TYPE_CHECKING:
@@ -23,14 +34,18 @@ POINT = 72.0 / 25.4
 """Points of a PDF in a mm."""
 
 _WIDTHS = {
+    OPENINGS: 0.5,
     CUT: 0.5,
     NET: 0.25,
     ROLL_LINES: 0.18,
     PRESS_LINES: 0.25,
+    PEN_LINES: 0.18,
     FOLD_LINES: 0.25,
     WITNESS_MARKS: 0.25,
+    DASHED: 0.25,
     TEXT: 0.25,
 }  # [mm]
+_POP = 1.5  # [mm] half the cross at a centre pop
 _DASHES = {NET: (4.0, 1.5)}  # [mm]
 
 
@@ -134,6 +149,11 @@ class PatternPen:
         self._curves([curve], closed=False)
         if dashed:
             self._ink.pen(_WIDTHS[self._layer], _DASHES.get(self._layer, ()))
+
+    def pop(self, at: Array) -> None:
+        x, y = self._x + float(at[0]), self._y + float(at[1])
+        self._ink.line(x - _POP, y, x + _POP, y)
+        self._ink.line(x, y - _POP, x, y + _POP)
 
     def text(self, label: Label) -> None:
         x, y = self._x + float(label.at[0]), self._y + float(label.at[1])

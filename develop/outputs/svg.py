@@ -3,12 +3,25 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 from xml.etree import ElementTree as ET
 
 import numpy as np
 
 from develop.pattern.curve import Array, Curve
-from develop.pattern.drawing import CUT, FOLD_LINES, NET, PRESS_LINES, ROLL_LINES, TEXT, WITNESS_MARKS, draw
+from develop.pattern.drawing import (
+    CUT,
+    DASHED,
+    FOLD_LINES,
+    NET,
+    OPENINGS,
+    PEN_LINES,
+    PRESS_LINES,
+    ROLL_LINES,
+    TEXT,
+    WITNESS_MARKS,
+    draw,
+)
 from develop.pattern.lettering import CAPITAL
 from develop.pattern.pattern import Label, Outline, Pattern
 
@@ -17,24 +30,31 @@ __all__ = ["svg"]
 _NAMESPACE = "http://www.w3.org/2000/svg"
 _EDGE = 1.0  # [mm] of empty drawing round the contour, so that no stroke is halved by the border
 _HAIRLINE = "0.1"  # [mm]
+_POP = 0.25  # [mm] radius of the circle that stands for a centre pop: SVG has no points
 # One plain colour a layer: many machines tell operations by colour, not by group.
 _COLOURS = {
+    OPENINGS: "#ff8000",
     CUT: "#ff0000",
     NET: "#ff00ff",
     ROLL_LINES: "#0000ff",
     PRESS_LINES: "#00a0a0",
+    PEN_LINES: "#0080ff",
     FOLD_LINES: "#00a0a0",
     WITNESS_MARKS: "#008000",
+    DASHED: "#808000",
     TEXT: "#000000",
 }
 
 
-def svg(pattern: Pattern) -> bytes:
+def svg(pattern: Pattern, *, text: bool = True) -> bytes:
     """The pattern as an SVG file, true to scale in mm.
 
     The drawing is shifted so that the contour starts 1 mm from the left and the upper border,
-    and y runs down as SVG has it; it is not turned, scaled or mirrored.
+    and y runs down as SVG has it; it is not turned, scaled or mirrored. text: whether the words are
+    drawn too.
     """
+    if not text:
+        pattern = replace(pattern, labels=(), arrows=())
     points = np.vstack(
         [curve.polyline(0.001) for outline in (pattern.cut, pattern.net) for _, curve in outline.curves]
     )
@@ -53,8 +73,8 @@ def svg(pattern: Pattern) -> bytes:
     ET.SubElement(root, "desc").text = "\n".join((*pattern.facts, "units: mm, true scale"))
     draw(pattern, _SvgPen(root, np.array([_EDGE - low[0], _EDGE + high[1]])))
     ET.indent(root, space="")
-    text = str(ET.tostring(root, encoding="unicode"))
-    return f"<?xml version='1.0' encoding='utf-8'?>\n{text}\n".encode()
+    written = str(ET.tostring(root, encoding="unicode"))
+    return f"<?xml version='1.0' encoding='utf-8'?>\n{written}\n".encode()
 
 
 class _SvgPen:
@@ -82,6 +102,11 @@ class _SvgPen:
     def curve(self, curve: Curve, *, dashed: bool) -> None:
         style = {"stroke-dasharray": "6 3"} if dashed else {}
         self._path(f"M{self._point(curve.start)} {self._steps(curve)}", style)
+
+    def pop(self, at: Array) -> None:
+        x, y = self._flip(at)
+        place = {"cx": _number(x), "cy": _number(y), "r": _number(_POP)}
+        ET.SubElement(self._group, "circle", place)
 
     def text(self, label: Label) -> None:
         x, y = self._flip(label.at)

@@ -165,7 +165,8 @@ def _diagonals(pattern: Pattern) -> list[str]:
 
 
 def _lap_corners(pattern: Pattern) -> list[str]:
-    """Where the lap ends, beyond the side that the other one meets."""
+    """Where the allowances of the seams end, beyond the sides that meet."""
+    found = []
     for side in ("seam_left", "seam_right"):
         inner, outer = pattern.net.curve(side), pattern.cut.curve(side)
         if inner is None or outer is None or np.abs(outer.start - inner.start).max() < _SAME:
@@ -178,5 +179,8 @@ def _lap_corners(pattern: Pattern) -> list[str]:
             )
             for point in (low, high)
         )
-        return [f"The lap goes on beyond the dashed line, with the same curves, to its corners at {places}."]
-    return []
+        what = "lap" if pattern.lap_words == ("LAP", "LAP") else f"allowance on the {side[5:]}"
+        found.append(
+            f"The {what} goes on beyond the dashed line, with the same curves, to its corners at {places}."
+        )
+    return found

@@ -159,10 +159,13 @@ class _Whole:
         back = turn.T, -turn.T @ shift
         onward = (turn, shift) if name == "a" else back
         backward = back if name == "a" else (turn, shift)
-        length = min(length, curve.length)
-        count = len(curve.controls) // 3
-        head = between(curve, (0, 0.0), place_at(curve, length))
-        tail = between(curve, place_at(curve, curve.length - length), (count - 1, 1.0))
+        # Whole Béziers, as many as reach so far: their chords are no longer than they are.
+        reach = np.cumsum(np.hypot(*(curve.pieces[:, 3] - curve.pieces[:, 0]).T))
+        count = len(reach)
+        last = min(int(np.searchsorted(reach, length)), count - 1)
+        first = max(int(np.searchsorted(reach, reach[-1] - length)), 0)
+        head = between(curve, (0, 0.0), (last, 1.0))
+        tail = between(curve, (first, 0.0), (count - 1, 1.0))
         return tail.moved(turn=backward[0], shift=backward[1]), head.moved(turn=onward[0], shift=onward[1])
 
     def _corner(self, run: Curve, seam: str, near: Array) -> tuple[int, float]:

@@ -25,6 +25,7 @@ __all__ = [
 ]
 
 _SAME = 1e-4  # [mm] a place so near to a joint of the chain is that joint
+_LAST = 1e-15  # a step so small is rounding
 _ROUNDS = 60  # halvings of a share of one Bézier: to the last bit
 
 
@@ -50,15 +51,18 @@ def length_of(pieces: Array, share: Array) -> Array:
 
 
 def share_at(piece: Array, length: float) -> float:
-    """The share of the parameter at a length [mm] along one Bézier."""
-    low, high = 0.0, 1.0
+    """The share of the parameter at a length [mm] along one Bézier: Newton's steps, kept between bounds."""
+    low, high, t = 0.0, 1.0, 0.5
     for _ in range(_ROUNDS):
-        middle = (low + high) / 2.0
-        if length_of(piece[None], np.array([middle]))[0] < length:
-            low = middle
-        else:
-            high = middle
-    return (low + high) / 2.0
+        over = float(length_of(piece[None], np.array([t]))[0]) - length
+        low, high = (t, high) if over < 0.0 else (low, t)
+        speed = float(np.hypot(*rates_of(piece[None], np.array([[t]]))[1][0, 0]))
+        step = t - over / speed if speed > 0.0 else -1.0
+        new = step if low < step < high else (low + high) / 2.0
+        if abs(new - t) < _LAST:
+            return new
+        t = new
+    return t
 
 
 def part_of(piece: Array, low: float, high: float) -> Array:

@@ -25,9 +25,12 @@ from develop.pattern.ties import between_ties
 
 __all__ = [
     "CUT",
+    "DASHED",
     "FOLD_LINES",
     "LAYERS",
     "NET",
+    "OPENINGS",
+    "PEN_LINES",
     "PRESS_LINES",
     "ROLL_LINES",
     "TEXT",
@@ -37,17 +40,21 @@ __all__ = [
 ]
 
 CUT = "cut"
+OPENINGS = "cut-openings"
 NET = "net"
 ROLL_LINES = "roll-lines"
 PRESS_LINES = "press-lines"
+PEN_LINES = "pen-lines"
 FOLD_LINES = "fold-lines"
 WITNESS_MARKS = "witness-marks"
+DASHED = "dashed-lines"
 TEXT = "text"
 # A little air round text, in proportion to it: a quarter of its box's lesser side.
 _AIR = 0.25
 _MOST_STEPS = 20_000  # along a line that text interrupts
 _ON_LINE = 0.005  # [mm] nearer than this two lines are one on any sheet
-LAYERS = (CUT, NET, ROLL_LINES, PRESS_LINES, FOLD_LINES, WITNESS_MARKS, TEXT)
+LAYERS = (OPENINGS, CUT, NET, ROLL_LINES, PRESS_LINES, PEN_LINES, FOLD_LINES, WITNESS_MARKS, DASHED, TEXT)
+"""One for each operation, in the order in which they are drawn: what is inside is cut before the outline."""
 
 
 class Pen(Protocol):
@@ -65,6 +72,9 @@ class Pen(Protocol):
     def curve(self, curve: Curve, *, dashed: bool) -> None:
         """An open curve, dashed where asked."""
 
+    def pop(self, at: Array) -> None:
+        """A centre pop at a point (2,)."""
+
     def text(self, label: Label) -> None:
         """A line of text."""
 
@@ -74,16 +84,17 @@ def draw(pattern: Pattern, pen: Pen) -> None:
 
     Roll lines and thin lines stop short of any text that stands on them.
     """
-    pen.layer(CUT)
-    pen.contour(pattern.cut)
     marked = pattern.openings if pattern.openings_as == "marked" else ()
-    if not marked:
+    if pattern.openings and not marked:
+        pen.layer(OPENINGS)
         for opening in pattern.openings:
             if pattern.openings_as == "ties":
                 for curve in between_ties(opening, pattern.tie):
                     pen.curve(curve, dashed=False)
             else:
                 pen.contour(opening)
+    pen.layer(CUT)
+    pen.contour(pattern.cut)
     net = _off_the_cut(pattern.net, pattern.cut)
     if net or marked:
         pen.layer(NET)
@@ -95,27 +106,24 @@ def draw(pattern: Pattern, pen: Pen) -> None:
             for curve in net:
                 pen.curve(curve, dashed=False)
     lengths = witness_lengths(pattern.net, pattern.marks)
-    strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
-    if pattern.full_lines:
-        strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
-    if len(strokes):
-        pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
-        for start, end in strokes:
-            pen.line(start, end)
+    if pattern.lines_as != "none":
+        _draw_lines(pattern, pen, lengths)
     if pattern.folds:
         pen.layer(FOLD_LINES)
         for curve in pattern.folds:
             pen.curve(curve, dashed=True)
     marks = np.concatenate([witness_strokes(pattern.marks, lengths), hole_strokes(pattern.holes)])
-    if len(marks) or pattern.dashed or pattern.thin:
+    if len(marks) or pattern.thin:
         pen.layer(WITNESS_MARKS)
         for start, end in marks:
             pen.line(start, end)
-        for curve in pattern.dashed:
-            pen.curve(curve, dashed=True)
         for curve in pattern.thin:
             for part in _outside(curve, _text_boxes(pattern)):
                 pen.curve(part, dashed=False)
+    if pattern.dashed:
+        pen.layer(DASHED)
+        for curve in pattern.dashed:
+            pen.curve(curve, dashed=True)
     if pattern.labels or pattern.arrows:
         pen.layer(TEXT)
         for label in pattern.labels:
@@ -124,6 +132,45 @@ def draw(pattern: Pattern, pen: Pen) -> None:
             for start, end in arrow_strokes(arrow):
                 pen.line(start, end)
             pen.text(arrow_label(arrow, text))
+
+
+def _draw_lines(pattern: Pattern, pen: Pen, lengths: Array) -> None:
+    """The roll or press lines, marked as the pattern asks; lengths: of the witness marks (n,) [mm].
+
+    A pop stands where a tick would end: at the edge itself the cut would take it away.
+    """
+    strokes = roll_strokes(pattern.net, pattern.lines, pattern.marks, lengths, full=pattern.full_lines)
+    if pattern.full_lines:
+        strokes = _off_the_marks(strokes, witness_strokes(pattern.marks, lengths))
+        strokes = _around(strokes, _text_boxes(pattern), least=text_height(pattern.net))
+    if not len(strokes):
+        return
+    if pattern.lines_as == "pen":
+        pen.layer(PEN_LINES)
+    else:
+        pen.layer(PRESS_LINES if any(line.press for line in pattern.lines) else ROLL_LINES)
+    for start, end in strokes:
+        if pattern.lines_as == "pops":
+            pen.pop(end)
+        else:
+            pen.line(start, end)
+
+
+def _off_the_marks(strokes: Array, marks: Array) -> Array:
+    """The strokes (n, 2, 2) without what witness marks (k, 2, 2) draw already, as at openings."""
+    found = []
+    for start, end in strokes:
+        along = end - start
+        long = float(np.hypot(*along))
+        gap = marks - start
+        off = np.abs(gap[..., 0] * along[1] - gap[..., 1] * along[0]).max(axis=1) / long
+        shares = np.sort(gap[off < _ON_LINE] @ along / long**2, axis=1)
+        at = 0.0
+        for low, high in [*sorted(np.clip(shares, 0.0, 1.0).tolist()), (1.0, 1.0)]:
+            if (low - at) * long > _ON_LINE:
+                found.append(np.array([start + at * along, start + low * along]))
+            at = max(at, high)
+    return np.array(found) if found else np.empty((0, 2, 2))
 
 
 def _off_the_cut(net: Outline, cut: Outline) -> list[Curve]:

@@ -57,7 +57,7 @@ def lettered(pattern: Pattern) -> Pattern:
         marks=pattern.marks,
         lines=pattern.lines,
         divisions=rows,
-        full_lines=pattern.full_lines,
+        lines_as=pattern.lines_as,
         openings=pattern.openings,
         places=None if rows else pattern.places,
         avoid=pattern.dashed,
@@ -83,7 +83,7 @@ def lay_out(
     divisions: Sequence[Division] = (),
     avoid: Sequence[Curve] = (),
     seam_words: tuple[str, str] = ("SEAM", "SEAM"),
-    full_lines: bool = False,
+    lines_as: str = "ticks",
     openings: Sequence[Outline] = (),
     places: Array | None = None,
     arrow: str = _FLOW,
@@ -96,18 +96,18 @@ def lay_out(
     net: the outline. facts: lines of text that go together in one block, first the most
     needed. left_seam, right_seam, mid_line: straight lines (2, 2) [mm] from edge a to edge b.
     flow: `a to b`, `b to a`, or empty for none. marks: their words are placed. lines: only
-    their ticks are kept clear; full lines are interrupted by whoever draws them. divisions:
-    numbered at the edges where that stays clear. avoid: further curves to be kept clear.
-    openings: no word stands in them. places: lines (n, 2, 2) [mm] that words may stand on, where
-    there are no divisions. arrow: the word at the arrow of the flow.
-    seam_words: along the left and the right seam. cut: what leaves the shear; where it goes on
-    beyond a seam, lap_words say what that is. holes: numbered beside each.
+    their ticks or pops are kept clear; full lines are interrupted by whoever draws them. lines_as:
+    how they are marked, as the pattern has it. divisions: numbered at the edges where that stays
+    clear. avoid: further curves to be kept clear. openings: no word stands in them. places: lines
+    (n, 2, 2) [mm] that words may stand on, where there are no divisions. arrow: the word at the
+    arrow of the flow. seam_words: along the left and the right seam. cut: what leaves the shear;
+    where it goes on beyond a seam, lap_words say what that is. holes: numbered beside each.
 
     What cannot be placed at a legible size is left out, but for the facts, which shrink on.
     """
     height = text_height(net)
     words = max(SMALLEST, 0.8 * height)
-    sheet = Sheet(net, marks, lines, avoid, full_lines, openings)
+    sheet = Sheet(net, marks, lines, avoid, lines_as, openings)
     # First what has one place: along a short seam the words for its corners can stand farther off.
     sheet.write(_seam_words((left_seam, right_seam), seam_words, words))
     sheet.write(_witness_words(marks, sheet.lengths, height, words))
@@ -382,7 +382,7 @@ def _lap_words(net: Outline, cut: Outline | None, height: float, said: tuple[str
         start, end = (inner.start + outer.start) / 2.0, (inner.end + outer.end) / 2.0
         angle = upright(math.atan2(end[1] - start[1], end[0] - start[0]))
         on = start + np.array([[0.5], [0.4], [0.6], [0.3], [0.7]]) * (end - start)
-        strip = Sheet(lap, (), (), (), False)
+        strip = Sheet(lap, (), (), (), "ticks")
         strip.write([Word(text, size, lambda _, on=on, angle=angle: (on, np.full(len(on), angle)))])  # type: ignore[misc]
         labels += strip.labels
     return tuple(labels)

@@ -167,6 +167,8 @@ class Pattern:
     facts: lines of text that every sheet states. The first four tell which piece it is: mark and
         kind, sizes, length or cuts, where the sizes are measured.
     units: of the figures on the sheets, `mm` or `in`; all values here are in mm.
+    lines_as: how the roll and press lines are marked: `ticks` at both edges, `full`, `pops` (centre pops
+        near both edges), `pen` (full, on a layer of their own) or `none`.
     openings_as: whether the openings are `cut`, only `marked` on the net line, or cut but left on `ties`.
     tie: width of a tie [mm].
     flow: `a to b`, `b to a`, or empty where nothing flows; arrow: the word at its arrow.
@@ -194,7 +196,7 @@ class Pattern:
     marks: tuple[WitnessMark, ...]
     facts: tuple[str, ...]
     datum: str
-    full_lines: bool
+    lines_as: str
     rulings: Rulings
     openings_as: str = "cut"
     tie: float = 0.0
@@ -214,3 +216,8 @@ class Pattern:
     mass: float | None = None
     thin: tuple[Curve, ...] = ()
     holes: tuple[NumberedHole, ...] = ()
+
+    @property
+    def full_lines(self) -> bool:
+        """Whether roll and press lines run from edge to edge."""
+        return self.lines_as in ("full", "pen")

@@ -48,7 +48,7 @@ class Sheet:
         marks: Sequence[WitnessMark],
         lines: Sequence[RollLine],
         avoid: Sequence[Curve],
-        full_lines: bool,
+        lines_as: str,
         openings: Sequence[Outline] = (),
     ) -> None:
         tolerance = 0.05 * text_height(net)
@@ -61,7 +61,7 @@ class Sheet:
             self.sides,
             witness_strokes(marks, self.lengths),
         ]
-        if not full_lines:
+        if lines_as in ("ticks", "pops"):
             strokes.append(roll_strokes(net, lines, marks, self.lengths, full=False))
         for curve in avoid:
             points = curve.polyline(tolerance)

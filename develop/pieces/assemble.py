@@ -9,11 +9,13 @@ from math import pi
 import numpy as np
 
 from develop.pattern.allowance import allowed
+from develop.pattern.chain import crossings_of, point_at
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
 from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
+from develop.pieces.wording import lines_of
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
 from develop.surfaces.sheet import Lines, Place, Sheet
@@ -35,7 +37,11 @@ _TIE = 1e-9
 
 @dataclass(frozen=True)
 class Wording:
-    """What the pattern says and how it lies. units: of the figures on the sheets, `mm` or `in`."""
+    """What the pattern says and how it lies.
+
+    lines_as: how roll and press lines are marked, as the pattern has it; or `auto`: press lines full, roll
+    lines as ticks. units: of the figures on the sheets, `mm` or `in`.
+    """
 
     mark: str
     kind: str
@@ -44,7 +50,7 @@ class Wording:
     facts: tuple[str, ...]
     datum: str
     flow: str
-    full_lines: bool
+    lines_as: str
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
 
@@ -130,7 +136,9 @@ def pattern_of(
 
     bare = Outline(_outline(sheet), sheet.area)
     added = cutting or Cutting()
-    close_by = _outline(sheet, tolerance=_FINE) if added.allowances or added.folds or added.inner else ()
+    # Only the parallels of the ends need them drawn more closely.
+    edges_of: set[str] = {*added.allowances, *(e[0] for e in added.folds), *(e[0] for e in added.inner)}
+    close_by = _outline(sheet, tolerance=_FINE) if edges_of & {"a", "b"} else bare.curves
     whole = allowed(bare, close_by, added.allowances)
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)
@@ -151,7 +159,7 @@ def pattern_of(
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
     more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)
-    more += tuple(f"CAUTION: {each}" for each in added.warnings)
+    more += tuple(line for each in added.warnings for line in lines_of(f"CAUTION: {each}"))
     return Pattern(
         mark=wording.mark,
         kind=wording.kind,
@@ -165,23 +173,39 @@ def pattern_of(
         marks=tuple(marks),
         facts=(*wording.facts[:-1], *more, *wording.facts[-1:]),
         datum=wording.datum,
-        full_lines=wording.full_lines or bends is not None,
+        lines_as=_lines_as(wording.lines_as, bent=bends is not None),
         rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
         flow=wording.flow,
         figures=() if bends is None else (bends.figures(mirror=view.mirror),),
         units=wording.units,
         seam_words=wording.seam_words,
-        folds=view.curves([_beside(dict(close_by), name, out) for name, out in added.folds]),
-        dashed=view.curves([_beside(dict(close_by), name, -far) for name, far, _ in added.inner]),
+        folds=view.curves([_beside(dict(close_by), name, out, whole) for name, out in added.folds]),
+        dashed=view.curves([_beside(dict(close_by), name, -far, whole) for name, far, _ in added.inner]),
         lap_words=added.words[::-1] if view.mirror else added.words,
         added=added.added,
         warnings=added.warnings,
     )
 
 
-def _beside(contour: dict[str, Curve], name: str, out: float) -> Curve:
-    """The parallel of an edge, so far outside of its net line [mm]."""
-    return parallel(contour[name], out)
+def _beside(contour: dict[str, Curve], name: str, out: float, cut: Outline) -> Curve:
+    """The parallel of an edge, so far outside of its net line [mm]; of a seam, as far as the cut line."""
+    line = parallel(contour[name], out)
+    if not line.straight:
+        return line
+    along = (line.end - line.start) / line.length
+    met = [
+        point_at(curve, place)[0]
+        for each, curve in cut.curves
+        if not each.startswith("seam")
+        for place in crossings_of(curve, line.start, along)
+    ]
+    ends = []
+    for end in (line.start, line.end):
+        away = [float(np.hypot(*(point - end))) for point in met]
+        nearest = met[int(np.argmin(away))] if met else end
+        # At an apex there is no edge to end at.
+        ends.append(nearest if np.hypot(*(nearest - end)) < 4.0 * abs(out) + 1.0 else end)
+    return segment(ends[0], ends[1])
 
 
 def dense(sheet: Sheet) -> Place:
@@ -292,6 +316,12 @@ def _outline(sheet: Sheet, *, tolerance: float = TOLERANCE) -> tuple[tuple[str, 
         ("seam_left", segment(b.start, a.start)),
     ]
     return tuple((name, curve) for name, curve in curves if not _no_more_than_a_point(curve))
+
+
+def _lines_as(wanted: str, *, bent: bool) -> str:
+    if wanted != "auto":
+        return wanted
+    return "full" if bent else "ticks"
 
 
 def _no_more_than_a_point(curve: Curve) -> bool:

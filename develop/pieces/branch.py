@@ -32,8 +32,9 @@ if TYPE_CHECKING:
     from develop.pieces.joint_edge import JointEdge
     from develop.sections.section import Section
     from develop.solid import Frame
+    from develop.surfaces.band_trim import BandTrim
     from develop.surfaces.cylinder import Cylinder, CylinderSheet
-    from develop.surfaces.meeting import BandTrim, CylinderTrim
+    from develop.surfaces.meeting import CylinderTrim
     from develop.surfaces.sheet import Sheet
 
 __all__ = ["Branch"]
@@ -43,12 +44,13 @@ _TANGENT = 1e-9
 _HALVINGS = 70
 # Less than this over its length a line of centres does not slope.
 _SLOPING = 1e-9
+_TRIES = 24
 _WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
 class Branch(Jointed):
-    """A branch into a straight header; lengths in mm, angles in radians.
+    """A branch into a straight or a tapered header; lengths in mm, angles in radians.
 
     The header runs along its own piece frame from its end A to its end B. The branch's end A is the
     joint, its end B the free end; facing that free end, right is the header's right as its own
@@ -287,28 +289,48 @@ class Branch(Jointed):
 
     def _reach(self, branch: Section, header: StraightHeader | TaperHeader, frame: Frame) -> None:
         """Raises Refusal where the joint runs past an end of the header."""
-        import numpy as np
+        from dataclasses import replace
 
-        u = branch.at_direction(np.radians(np.arange(360.0)))
-        start = np.hstack([branch.point(u), np.zeros((len(u), 1))])
-        lift = header.trim(frame).meet(start, np.broadcast_to(np.array([0.0, 0.0, 1.0]), start.shape))
-        z = (start @ frame.axes + frame.origin)[:, 2] + lift * frame.axes[2, 2]
-        low, high, end = float(z.min()), float(z.max()), header.length
-        cut = getattr(getattr(header, "band", None), "cut_b", None)
-        if cut is not None:
-            end = float(cut.height) - float(np.abs(cut.rise).sum()) * header.section.width
-        if low > 0.0 and high < end:
+        from develop.pieces.header import StraightHeader
+
+        if header.fits(branch, frame):
             return
         middle = float(frame.origin[2])
-        least = ceil((middle - low) * 10.0 + 1.0) / 10.0
-        most = floor((end - (high - middle)) * 10.0 - 1.0) / 10.0
-        straight = isinstance(self.header, SectionSpec)
+        field, other = "from_a", "a longer header, or a smaller branch"
+        if isinstance(header, StraightHeader):
+            low, high = header.span(branch, frame)
+            shortest, longest = middle - low, header.length - (high - middle)
+            if shortest > longest:
+                field, other = (
+                    "header_length",
+                    f"a header of more than {number_text(ceil(high - low + 1.0))} mm",
+                )
+            end = "A" if low <= 0.0 else "B"
+        else:
+
+            def fits(from_a: float) -> bool:
+                try:
+                    return header.fits(branch, replace(self, from_a=from_a)._frame(header))
+                except Refusal:
+                    return False
+
+            tries = [header.length * (i + 0.5) / _TRIES for i in range(_TRIES)]
+            good = [each for each in tries if fits(each)]
+            shortest, longest = 1.0, 0.0
+            if good:
+                ends = []
+                for inside, outside in ((good[0], 0.0), (good[-1], header.length)):
+                    for _ in range(_HALVINGS // 2):
+                        between = 0.5 * (inside + outside)
+                        inside, outside = (between, outside) if fits(between) else (inside, between)
+                    ends.append(inside)
+                shortest, longest = ends
+            end = "A" if middle < 0.5 * (good[0] + good[-1] if good else header.length) else "B"
+        least, most = ceil(shortest * 10.0 + 1.0) / 10.0, floor(longest * 10.0 - 1.0) / 10.0
         raise Refusal(
-            field="header_length" if least > most and straight else "from_a",
-            given=f"the joint reaches past the header's end {'A' if low <= 0.0 else 'B'}",
-            allowed=f"from_a from {number_text(least)} to {number_text(most)} mm"
-            if least <= most
-            else f"a header of more than {number_text(ceil(high - low + 1.0))} mm",
+            field=field,
+            given=f"the joint reaches past the header's end {end}",
+            allowed=f"from_a from {number_text(least)} to {number_text(most)} mm" if least <= most else other,
         )
 
     # ---- the patterns -----------------------------------------------------------------------
@@ -340,11 +362,17 @@ class Branch(Jointed):
 
         from develop.pieces.clearance import check_uncut
 
-        direction = self.leaves_at + pi if isinstance(self.header_seam, str) else self.header_seam
-        seam = float(header.section.at_direction(np.array([direction]))[0])
+        section = header.section
+        opposite = float(section.at_direction(np.array([self.leaves_at + pi]))[0])
+        if isinstance(self.header_seam, str):
+            return opposite
+        seam = float(section.at_direction(np.array([self.header_seam]))[0])
+        # On the sheet that is slit opposite the branch its opening lies in one piece.
         u = branch.at_direction(np.radians(np.arange(360.0)))
-        on, _ = header.trim(frame).place(np.hstack([branch.point(u), np.zeros((len(u), 1))]))
-        check_uncut(header.section, seam, on, leaves_at=self.leaves_at, field="header_seam")
+        sheet = header.sheet(opposite)
+        place, _ = header.trim(frame).on_sheet(np.hstack([branch.point(u), np.zeros((len(u), 1))]), sheet)
+        on = sheet.lines(place).u_a
+        check_uncut(section, seam, on, leaves_at=self.leaves_at, field="header_seam")
         return seam
 
     @property

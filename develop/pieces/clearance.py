@@ -9,7 +9,7 @@ import numpy as np
 
 from develop.errors import Refusal
 from develop.pieces.built import Built, Part
-from develop.pieces.wording import direction_words
+from develop.pieces.wording import direction_words, lines_of
 from develop.solid import Patch, Solid, TouchingEnd
 from develop.units import number_text
 
@@ -71,7 +71,8 @@ def seam_warnings(built: Built, *, clear: float) -> Built:
         return built
     patterns = []
     for number, pattern in enumerate(built.patterns):
-        own = tuple(dict.fromkeys(f"CAUTION: {text}" for text, where in found if number in where))
+        said = dict.fromkeys(text for text, where in found if number in where)
+        own = tuple(line for text in said for line in lines_of(f"CAUTION: {text}"))
         patterns.append(replace(pattern, facts=(*pattern.facts[:-1], *own, *pattern.facts[-1:])))
     return replace(built.with_patterns(patterns), warned=tuple(dict.fromkeys(text for text, _ in found)))
 

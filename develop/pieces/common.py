@@ -106,8 +106,10 @@ class Plate(Marked):
     marks: str = field(
         default="auto",
         metadata=about(
-            Choice(("auto", "ticks", "full")),
-            "roll lines as ticks at both edges or full; auto: full from 3 mm thickness up",
+            Choice(("auto", "ticks", "full", "pops", "pen", "none")),
+            "how roll and press lines are marked: ticks at both edges, full, centre pops near both edges, "
+            "full on a layer for a pen, or none; auto: press lines full, roll lines full from 3 mm "
+            "thickness up",
             own=False,
         ),
     )
@@ -194,7 +196,7 @@ class Plate(Marked):
             {"mean": "mid-thickness", "inside": "the inside"}[self.sizes] if elsewhere else "the given sizes"
         )
         plate = ("edges square to the plate", f"{held} at {held_at}")
-        full = self.marks == "full" or (self.marks == "auto" and self.thickness >= _PLATE)
+        lines_as = "full" if self.marks == "auto" and self.thickness >= _PLATE else self.marks
         return Wording(
             mark=self.mark,
             kind=self.kind,
@@ -213,7 +215,7 @@ class Plate(Marked):
             ),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
             flow=self.flow,
-            full_lines=full,
+            lines_as=lines_as,
             units=units,
         )
 

@@ -278,11 +278,12 @@ class Choice:
         return listed(self.words)
 
     def read(self, given: object, *, unit: str) -> str:
-        word = " ".join(given.lower().split()) if isinstance(given, str) else ""
-        if word not in self.words:
+        word = " ".join(given.split()) if isinstance(given, str) else ""
+        known = {each.lower(): each for each in self.words}
+        if word.lower() not in known:
             hint = near_miss(word, self.words) if word else ""
             raise _refused(f"{shown(given)} is not one of them{hint}", self.allowed)
-        return word
+        return known[word.lower()]
 
     def record(self, value: object) -> object:
         return value

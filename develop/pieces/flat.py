@@ -136,7 +136,7 @@ def pattern_of_plate(
         marks=tuple(WitnessMark(m.at + shift, m.inward, m.text, m.edge, m.arc) for m in plate.marks),
         facts=facts,
         datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
-        full_lines=False,
+        lines_as="ticks",
         rulings=Rulings(none, none, np.empty(0), np.empty(0)),
         flow=flow,
         dashed=tuple(curve.moved(turn=np.eye(2), shift=shift) for curve in plate.dashed),

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
-from develop.errors import InputError, Problem, Refusal
+from develop.errors import InputError, Problem
 from develop.pieces.field_types import SECTION
 from develop.pieces.fields import Piece
 from develop.sections.text import SectionSpec
@@ -16,8 +16,9 @@ if TYPE_CHECKING:
     from develop.sections.section import Section
     from develop.solid import Frame, MeetingEnd, Solid
     from develop.surfaces.band import Band
+    from develop.surfaces.band_trim import BandTrim
     from develop.surfaces.cylinder import Cylinder
-    from develop.surfaces.meeting import BandTrim, CylinderTrim
+    from develop.surfaces.meeting import CylinderTrim
     from develop.surfaces.sheet import Sheet
 
 __all__ = ["HEADER", "HeaderText", "StraightHeader", "TaperHeader", "standing", "tapered"]
@@ -149,6 +150,20 @@ class StraightHeader:
 
         return Cylinder(self.section, Plane(0.0, np.zeros(2)), Plane(self.length, np.zeros(2)), self.distance)
 
+    def fits(self, branch: Section, frame: Frame) -> bool:
+        """Whether the joint keeps between the two ends."""
+        low, high = self.span(branch, frame)
+        return low > 0.0 and high < self.length
+
+    def span(self, branch: Section, frame: Frame) -> tuple[float, float]:
+        """Least and largest height [mm] of the joint."""
+        import numpy as np
+
+        trim, start = self.trim(frame), _around(branch)
+        along = np.broadcast_to(np.array([0.0, 0.0, 1.0]), start.shape)
+        z = (start @ frame.axes + frame.origin)[:, 2] + trim.meet(start, along) * frame.axes[2, 2]
+        return float(z.min()), float(z.max())
+
     def sheet(self, seam: float) -> Sheet:
         """The header laid flat."""
         return self.surface().sheet(seam)
@@ -173,11 +188,15 @@ class StraightHeader:
 
 @dataclass(frozen=True)
 class TaperHeader:
-    """A transition with parallel ends, or a cone. outward: of the face that a branch meets [mm]."""
+    """A transition or a cone. outward: of the face that a branch meets [mm]."""
 
     band: Band
     outward: float
     turn_b: float = 0.0
+    # A branch asks again and again where it stands.
+    _trims: dict[tuple[bytes, bytes, float], BandTrim] = field(
+        default_factory=dict, repr=False, compare=False
+    )
 
     @property
     def section(self) -> Section:
@@ -213,24 +232,26 @@ class TaperHeader:
 
     def trim(self, frame: Frame) -> BandTrim:
         """Where a branch ends on the face."""
-        from develop.surfaces.meeting import BandTrim
-
-        return BandTrim(self.band, frame, self.outward)
+        return self._trim(frame, self.outward)
 
     def through(self, frame: Frame) -> BandTrim:
         """Where the hole goes through the developed header."""
-        from develop.surfaces.meeting import BandTrim
+        return self._trim(frame, 0.0)
 
-        return BandTrim(self.band, frame)
+    def _trim(self, frame: Frame, outward: float) -> BandTrim:
+        from develop.surfaces.band_trim import BandTrim
+
+        key = frame.origin.tobytes(), frame.axes.tobytes(), outward
+        if key not in self._trims:
+            self._trims[key] = BandTrim(self.band, frame, outward)
+        return self._trims[key]
 
     def joint(self, branch: Section, frame: Frame, *, sheet: float = 0.0) -> MeetingEnd:
         """The branch's end on the face, in space. sheet: how far outside of it a sheet is developed [mm]."""
         from develop.solid import TaperMeetingEnd
 
         band, out = self.band, self.outward
-        return TaperMeetingEnd.between(
-            branch, band.rim_a, band.rim_b, frame, outward=out, sheet=out + sheet if sheet else 0.0
-        )
+        return TaperMeetingEnd.between(branch, band.rim_a, band.rim_b, frame, outward=out, sheet=sheet)
 
     def hole(self, branch: Section, frame: Frame) -> MeetingEnd:
         """The hole in the header, in space."""
@@ -249,6 +270,11 @@ class TaperHeader:
         from dataclasses import replace
 
         return TaperHeader(replace(self.band, distance=outward + distance), outward, self.turn_b)
+
+    def fits(self, branch: Section, frame: Frame) -> bool:
+        """Whether the joint keeps on the side between the two ends."""
+        trim = self.trim(frame)
+        return trim.overhang(branch) <= 1e-9 and not bool(trim.past(_around(branch)).any())
 
     def sheet(self, seam: float) -> Sheet:
         """The header laid flat."""
@@ -275,6 +301,14 @@ class TaperHeader:
         )
 
 
+def _around(branch: Section) -> Array:
+    """Points (360, 3) [mm] round a branch, in its own frame, from which its lines run along z."""
+    import numpy as np
+
+    u = branch.at_direction(np.radians(np.arange(360.0)))
+    return np.hstack([branch.point(u), np.zeros((len(u), 1))])
+
+
 def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> TaperHeader:
     """The header that a transition or a cone makes, in the branch's wall.
 
@@ -288,19 +322,6 @@ def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> Ta
     assert isinstance(piece, Transition | Cone)
     piece = replace(piece, thickness=thickness, sizes=sizes)
     band = piece.surface()
-    upright = abs(float(band.rim_b.frame.normal[2]) - 1.0) < 1e-12
-    straight = any(
-        (rim.section.walk(0.5 * (rim.section.breaks[1:] + rim.section.breaks[:-1])).dphi == 0.0).any()
-        for rim in (band.rim_a, band.rim_b)
-    )
-    if not upright or straight:
-        raise Refusal(
-            field="header",
-            given="a tapered header whose end B is tilted"
-            if not upright
-            else "a tapered header with straight sides",
-            allowed="a transition or cone with parallel ends, round, ellipse or superellipse",
-        )
     return TaperHeader(band, outward, getattr(piece, "rotate", 0.0))
 
 

@@ -136,7 +136,7 @@ class Opening(Flat):
                 *facts[1:2],
             ),
             material=self._material(),
-            full_lines=self.thickness >= 3.0,
+            lines_as="full" if self.thickness >= 3.0 else "ticks",
         )
         return Built((plate, collar), (Joint(1, "a", 0, "opening", name="collar to plate"),))
 

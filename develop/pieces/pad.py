@@ -139,7 +139,7 @@ def pad_parts(
         pattern = replace(
             pattern,
             units=units,
-            full_lines=True,
+            lines_as="full",
             lines=_roll_lines(pattern, moved),
             rulings=Rulings(moved.a, moved.b, np.diff(moved.turn, prepend=0.0), moved.u_a, lift),
         )

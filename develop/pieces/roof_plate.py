@@ -130,7 +130,7 @@ def collar_part(
     quantity: int,
     facts: tuple[str, ...],
     material: str,
-    full_lines: bool,
+    lines_as: str,
 ) -> Part:
     """The collar: cut at the bottom by the plate's plane, square on top."""
     seam = seam_parameter(wall.section, wall.lengths, seam_at)
@@ -146,7 +146,7 @@ def collar_part(
             facts=(f"{mark}: {kind}", *facts, material, f"quantity {quantity}, outside up"),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
             flow="",
-            full_lines=full_lines,
+            lines_as=lines_as,
         ),
         divisions=divisions,
         distance=wall.distance,
@@ -156,6 +156,14 @@ def collar_part(
 
 def _along(curve: Curve, point: Array) -> float:
     """Running length [mm] along the hole's edge, from its start to a point on it, to 0.001 mm."""
-    points = curve.polyline(1e-6)
-    sums = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(points, axis=0).T))])
-    return float(sums[np.argmin(np.hypot(*(points - point).T))] / sums[-1] * curve.length)
+    points = curve.polyline(1e-4)
+    steps = np.diff(points, axis=0)
+    lengths = np.hypot(*steps.T)
+    sums = np.concatenate([[0.0], np.cumsum(lengths)])
+    # The foot on each chord; the nearest of them is on the edge.
+    past = np.clip(
+        np.einsum("ni,ni->n", point - points[:-1], steps) / np.maximum(lengths, 1e-300), 0.0, lengths
+    )
+    foot = points[:-1] + (past / np.maximum(lengths, 1e-300))[:, None] * steps
+    i = np.argmin(np.hypot(*(foot - point).T))
+    return float((sums[i] + past[i]) / sums[-1] * curve.length)

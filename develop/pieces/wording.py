@@ -21,6 +21,7 @@ __all__ = [
     "cut_words",
     "direction_words",
     "edges_words",
+    "lines_of",
     "mass_words",
     "measured_words",
     "off_centre_words",
@@ -141,7 +142,7 @@ def wall_words(material: str, thickness: float, units: str) -> tuple[str, ...]:
     wall = f"{size_words(thickness, units)}{' mm' if units == 'mm' else ''} thick" if thickness else ""
     if isinstance(thickness, Gauge) and units == "in":
         wall = f"{thickness / _INCH:.4f} in thick"  # as gauges are published
-    return _lines(", ".join(part for part in (material, _gauge(material, thickness), wall) if part))
+    return lines_of(", ".join(part for part in (material, _gauge(material, thickness), wall) if part))
 
 
 def _gauge(material: str, thickness: float) -> str:
@@ -174,8 +175,8 @@ def mass_words(area: float, mass: float | None, density: float | None, units: st
     return f"{words}, {number_text(float(f'{mass / _POUND:.4g}'))} lb at {dense:.1f} lb/ft³"
 
 
-def _lines(text: str) -> tuple[str, ...]:
-    """The text in lines of about equal length, none much over `_LONGEST_LINE`."""
+def lines_of(text: str) -> tuple[str, ...]:
+    """The text in lines of about equal length, none much over 44 letters."""
     count = -(-len(text) // _LONGEST_LINE)
     lines: list[str] = []
     for word in text.split():

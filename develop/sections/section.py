@@ -275,7 +275,8 @@ class Section(ABC):
             rate = at.ds * (at.ex * ny - at.ey * nx)
             step = miss / np.where(rate < 0.0, rate, -np.inf)
             newton = u - step
-            inside = (newton > low) & (newton < high) & (rate < 0.0)
+            # A step too small to move u ends on the side that was just closed.
+            inside = (newton >= low) & (newton <= high) & (rate < 0.0)
             following = np.where(inside, newton, 0.5 * (low + high))
             moved = np.max(np.abs(following - u), initial=0.0)
             u = following

@@ -11,6 +11,7 @@ from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
 from develop.solid.touching import MitredEnd, StandingEnd, TouchingEnd
+from develop.solid.wall import Mesh, plate, wall
 
 __all__ = [
     "End",
@@ -20,6 +21,7 @@ __all__ = [
     "Holes",
     "Made",
     "MeetingEnd",
+    "Mesh",
     "MitredEnd",
     "Patch",
     "Placed",
@@ -30,6 +32,8 @@ __all__ = [
     "TaperMeetingEnd",
     "TouchingEnd",
     "cut_slopes",
+    "plate",
+    "wall",
 ]
 
 Made = Solid | FlatRing | FlatPlate | Patch

@@ -79,7 +79,52 @@ class Solid:
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
         normal = self._touching(self.end_a, self.end_b, u)
         a = self.end_a.point(u)
-        return Strip(a, self._cut(a, self.end_b.touch(normal)), normal)
+        return Strip(a, self._cut(a, self._feet(normal, u)), normal)
+
+    def lengths(self, u: Array) -> tuple[Array, Array]:
+        """Least and largest lengths (n,) [mm] of the side's straight lines from end A's parameters u (n,).
+
+        They differ only where a plane touches end B along a straight side and end A in one point: all the
+        lines of that flat triangle start there.
+        """
+        strip = self.strip(u)
+        length = np.linalg.norm(strip.b - strip.a, axis=1)
+        least, most = length.copy(), length.copy()
+        if self.side == "parallel":
+            return least, most
+        (first, last), (low, high) = (
+            end.section.parameters(*(strip.normal @ end.spans).T) for end in (self.end_a, self.end_b)
+        )
+        fan = np.flatnonzero((last <= first) & (high > low))
+        if len(fan):
+            a = strip.a[fan]
+            start, end = (self._cut(a, self.end_b.point(each[fan])) for each in (low, high))
+            along = end - start
+            share = -np.einsum("ni,ni->n", start - a, along) / np.einsum("ni,ni->n", along, along)
+            near = start + np.clip(share, 0.0, 1.0)[:, None] * along
+            ends = [np.linalg.norm(each - a, axis=1) for each in (start, end, near)]
+            least[fan], most[fan] = ends[2], np.maximum(*ends[:2])
+        return least, most
+
+    def _feet(self, normal: Array, u: Array) -> Array:
+        """Points (n, 3) of end B on the lines from end A's parameters u (n,), given the planes' normals.
+
+        Where a plane touches both ends along straight sides the lines run over a flat facet, on which both
+        ends are walked in proportion.
+        """
+        feet = self.end_b.touch(normal)
+        (first, last), (low, high) = (
+            end.section.parameters(*(normal @ end.spans).T) for end in (self.end_a, self.end_b)
+        )
+        facet = np.flatnonzero((last > first) & (high > low))
+        if len(facet):
+            length = (last - first)[facet]
+            past = (u[facet] - first[facet]) % self.end_a.section.period
+            # Before the side's first point by rounding alone.
+            past = np.where(past > self.end_a.section.period - _SAME, 0.0, past)
+            share = np.minimum(past / length, 1.0)
+            feet[facet] = self.end_b.point(low[facet] + share * (high - low)[facet])
+        return feet
 
     def _cut(self, a: Array, b: Array) -> Array:
         """The far ends (n, 3) of lines from a to b, at the cut where there is one."""
@@ -215,6 +260,11 @@ class Solid:
             ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
             ends[-1] = period
         return np.asarray(start + ends)
+
+    @property
+    def breaks(self) -> Array:
+        """Parameters (n,) of end A's section between which the side is smooth."""
+        return self._panel_ends(self.end_a, self.end_b)[:-1]
 
     # ---- for pictures and meshes -----------------------------------------------------------
 

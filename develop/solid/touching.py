@@ -9,7 +9,7 @@ between them.
 from __future__ import annotations
 
 from abc import abstractmethod
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -198,8 +198,8 @@ class StandingEnd(TouchingEnd):
         directions (n, 3) [mm], and the unit normals (n, 3) along them."""
         met = self.met
         if isinstance(met, TaperMeetingEnd):
-            a, ruling, normal = met._rulings(phi)
-            normal = normal / np.linalg.norm(normal, axis=1)[:, None]
+            normal = met.normals(phi)
+            a, ruling = met.feet(normal)
         else:
             normal = np.stack([np.cos(phi), np.sin(phi), np.zeros_like(phi)], axis=-1)
             touch = met.header.touch(normal[:, 0], normal[:, 1])
@@ -209,42 +209,43 @@ class StandingEnd(TouchingEnd):
         return (a - met.frame.origin) @ axes, ruling @ axes, normal @ axes
 
     @cached_property
-    def _near(self) -> tuple[float, float]:
-        """Directions φ between which the header's side faces the branch."""
+    def _grid(self) -> tuple[Array, Array, Array]:
+        """Directions φ (k,) all round or, of a straight header, from silhouette to silhouette, with unit
+        normals (k, 3) and supports (k,) [mm] of the planes, in the branch's frame."""
         met = self.met
         if isinstance(met, TaperMeetingEnd):
-            return met._near
-        out = met.frame.axes[2, :2]
-        middle = float(np.arctan2(out[1], out[0]))
-        return middle - 0.5 * np.pi, middle + 0.5 * np.pi
+            phi = met.grid[0]
+            phi = np.concatenate([phi[-1:] - 2.0 * np.pi, phi, phi[:1] + 2.0 * np.pi])
+        else:
+            out = met.frame.axes[2, :2]
+            phi = float(np.arctan2(out[1], out[0])) + 0.5 * np.pi * np.linspace(-1.0, 1.0, _COARSE)
+        a, _, normal = self._lines(phi)
+        return phi, normal, np.einsum("ki,ki->k", normal, a)
 
     def _reached(self, at: Walk) -> tuple[Array, Array]:
         shape = at.x.shape
         x, y, ex, ey = (each.ravel() for each in (at.x, at.y, at.ex, at.ey))
         given = np.stack([x, y, np.zeros_like(x)], axis=-1)
         out = np.stack([ex, ey, np.zeros_like(x)], axis=-1)
-        # Past the least of the planes the header's line lies on the other side of the branch's line: on the
-        # line, of the edge's two corners, over which this plane is higher.
-
-        def beyond(phi: Array) -> Array:
+        phis, normals, supports = self._grid
+        leans, seen = out @ normals.T, normals[:, 2] > 0.0
+        rest = supports - given @ normals.T + np.maximum(-self.inner * leans, -self.outer * leans)
+        rest = np.where(seen, rest / np.where(seen, normals[:, 2], 1.0), np.inf)
+        i = np.argmin(rest, axis=1)
+        middle = phis[i]
+        low, high = phis[np.maximum(i - 1, 0)], phis[np.minimum(i + 1, len(phis) - 1)]
+        # Short of the least of the planes the header's line lies on the one side of the branch's line, past
+        # it on the other: of the line, of the edge's two corners, over which the plane is higher.
+        phi = middle
+        for _ in range(_BISECTIONS):
             a, ruling, normal = self._lines(phi)
             lean = np.einsum("ni,ni->n", normal, out)
             corner = given + np.where(lean >= 0.0, self.inner, self.outer)[:, None] * out
             gap = a - corner
-            return np.asarray(ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1])
-
-        start, end = self._near
-        low, high = np.full(len(x), start), np.full(len(x), end)
-        ends = beyond(low), beyond(high)
-        first = ends[0] > 0.0
-        for _ in range(_BISECTIONS):
-            middle = 0.5 * (low + high)
-            same = (beyond(middle) > 0.0) == first
-            low, high = np.where(same, middle, low), np.where(same, high, middle)
-        phi = 0.5 * (low + high)
-        # A line that only grazes the header has no change of sign: it meets the nearer silhouette.
-        grazes = first == (ends[1] > 0.0)
-        phi = np.where(grazes, np.where(np.abs(ends[0]) < np.abs(ends[1]), start, end), phi)
+            short = ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1] < 0.0
+            short = np.where(normal[:, 2] > 0.0, short, phi < middle)
+            low, high = np.where(short, phi, low), np.where(short, high, phi)
+            phi = 0.5 * (low + high)
         a, ruling, normal = self._lines(phi)
         lean = np.einsum("ni,ni->n", normal, out)
         place = np.where(lean < 0.0, self.outer, self.inner)
@@ -256,8 +257,8 @@ class StandingEnd(TouchingEnd):
             step = (ruling[:, 1] * gap[:, 0] - ruling[:, 0] * gap[:, 1]) / np.where(level, 1.0, across)
             step = np.where(level, self.inner, np.clip(step, self.inner, self.outer))
             place = np.where(np.abs(lean) < _SQUARE, step, place)
-        # Along the branch's axis to the plane or, where it is seen edge-on, to where the branch's line and the
-        # header's cross: of a flat side any line gives the plane.
+        # Along the branch's axis to the plane or, where it is seen edge-on, to where the branch's line and
+        # the header's cross: of a flat side any line gives the plane.
         corner = given + place[:, None] * out
         facing = normal[:, 2] > _EDGE_ON
         on_plane = np.einsum("ni,ni->n", normal, a - corner) / np.where(facing, normal[:, 2], 1.0)
@@ -269,12 +270,9 @@ class StandingEnd(TouchingEnd):
 
     def clear(self, points: Array) -> tuple[Array, Array]:
         # A point is as far outside of a convex side as of the tangent plane that it is farthest from.
-        start, end = self._near
-        grid = np.linspace(start, end, _COARSE)
-        a, _, normal = self._lines(grid)
-        index = np.argmax(points @ normal.T - np.einsum("ki,ki->k", normal, a), axis=1)
-        step = grid[1] - grid[0]
-        low, high = grid[index] - step, grid[index] + step
+        phis, normals, supports = self._grid
+        index = np.argmax(points @ normals.T - supports, axis=1)
+        low, high = phis[np.maximum(index - 1, 0)], phis[np.minimum(index + 1, len(phis) - 1)]
 
         def apart(phi: Array) -> Array:
             a, _, normal = self._lines(phi)
@@ -292,9 +290,5 @@ class StandingEnd(TouchingEnd):
 
     @property
     def _corners(self) -> Array:
-        found = []
-        for place in {self.inner, self.outer}:
-            moved = MeetingEnd.of(Parallel(self.section, place), self.met.header, self.met.frame)
-            if not isinstance(self.met, TaperMeetingEnd):
-                found.append(moved.breaks)
-        return np.concatenate(found) if found else np.asarray(self.met.breaks)
+        moved = [replace(self.met, section=Parallel(self.section, p)) for p in {self.inner, self.outer}]
+        return np.concatenate([each.breaks for each in moved])

@@ -36,7 +36,7 @@ from develop.surfaces.sheet import Lines, Place
 from develop.surfaces.touching import Contact, Rulings, rulings_between
 from develop.surfaces.trim import Plane
 
-__all__ = ["Band", "BandSheet"]
+__all__ = ["Band", "BandSheet", "Course", "Swept"]
 
 _ROUNDS = 24
 _SAME = 1e-9
@@ -53,8 +53,8 @@ _CLEAR = 1e-6
 
 
 @dataclass(frozen=True)
-class _Course:
-    """The stretches that the walk round a band is made of; arrays (m,).
+class Course:
+    """The stretches that the walk round a band is made of, in the sections' parameters; arrays (m,).
 
     Each runs from start to end of the parameter of rim A or, where not on_a, of rim B; low and high
     are the other rim's parameters at its ends. On a facet both rims run along parallel straight
@@ -67,6 +67,22 @@ class _Course:
     end: Array
     low: Array
     high: Array
+
+
+@dataclass(frozen=True)
+class Swept:
+    """Rulings at places of a course and how they move along it; arrays (n, 3).
+
+    point: on end A [mm]. ruling: from there to end B [mm]. normal: outward, of unit length.
+    The rates are by the parameter that is walked.
+    """
+
+    point: Array
+    ruling: Array
+    normal: Array
+    point_rate: Array
+    ruling_rate: Array
+    normal_rate: Array
 
 
 @dataclass(frozen=True)
@@ -117,6 +133,46 @@ class Band:
         r = self._rulings(True, u)
         return np.cross(r.a.tangent, r.a.across)
 
+    def swept(self, course: Course, origin: Indices, u: Array) -> Swept:
+        """The rulings at the parameters u (n,) of the stretches `origin` (n,) of a course."""
+        parts = []
+        for which, walking_a, r in self._on_course(course, origin, u):
+            turn = r.a.cos_psi * r.dphi_a
+            ds_b = r.ds_b
+            if walking_a and course.facet[origin[which][0]]:
+                # On a facet end B's foot goes along in proportion.
+                i = origin[which]
+                pace = (course.high[i] - course.low[i]) / (course.end[i] - course.start[i])
+                along = course.low[i] + pace * (u[which] - course.start[i])
+                ds_b = self.rim_b.section.walk(along).ds * pace
+            # Where a curve is flat its foot may run off at no end of speed.
+            ds_a, ds_b = (np.where(np.isfinite(ds), ds, 0.0) for ds in (r.ds_a, ds_b))
+            tangent, across = r.a.tangent, r.a.across
+            point_rate = ds_a[:, None] * tangent
+            part = Swept(
+                point=r.a.point,
+                ruling=r.ruling,
+                normal=np.stack(
+                    [
+                        tangent[:, 1] * across[:, 2] - tangent[:, 2] * across[:, 1],
+                        tangent[:, 2] * across[:, 0] - tangent[:, 0] * across[:, 2],
+                        tangent[:, 0] * across[:, 1] - tangent[:, 1] * across[:, 0],
+                    ],
+                    axis=-1,
+                ),
+                point_rate=point_rate,
+                ruling_rate=ds_b[:, None] * r.b.tangent - point_rate,
+                # Square to the ruling, in the plane that touches.
+                normal_rate=turn[:, None] * (tangent - (r.along / r.over)[:, None] * across),
+            )
+            parts.append((which, part))
+        if len(parts) == 1:
+            return parts[0][1]
+        index = np.argsort(np.concatenate([np.flatnonzero(which) for which, _ in parts]))
+        return Swept(
+            *(np.concatenate([getattr(part, f.name) for _, part in parts])[index] for f in fields(Swept))
+        )
+
     def lengths(self, u: Array) -> Array:
         """Lengths (n,) [mm] of the rulings through the points u (n,) of end A's section, between the cuts."""
         r = self._rulings(True, u)
@@ -162,7 +218,7 @@ class Band:
 
     # ---- the flat map -------------------------------------------------------------------
 
-    def _on_course(self, course: _Course, origin: Indices, u: Array) -> Iterator[tuple[Mask, bool, Rulings]]:
+    def _on_course(self, course: Course, origin: Indices, u: Array) -> Iterator[tuple[Mask, bool, Rulings]]:
         """The rulings at u (n,) of the stretches `origin` (n,), in up to three groups."""
         on_a, facet = course.on_a[origin], course.facet[origin]
         for walking_a, which in ((True, on_a & ~facet), (False, ~on_a), (True, facet)):
@@ -176,7 +232,7 @@ class Band:
             else:
                 yield which, walking_a, self._rulings(walking_a, mine, (low, high))
 
-    def _rates(self, course: _Course, panels: Panels) -> Array:
+    def _rates(self, course: Course, panels: Panels) -> Array:
         """At each panel's nodes (m, k, 6): rates of θ, turn, edge along T and W; then R·T, R·W.
 
         Of a cut band (m, k, 8): also where the sheet's two ends lie, in parts of R.
@@ -207,7 +263,7 @@ class Band:
 
         tolerance: what the unresolved part of each panel may move a point [mm].
         """
-        course = self._course(seam)
+        course = self.course(seam)
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
         size += float(np.linalg.norm(self.rim_b.frame.origin - self.rim_a.frame.origin))
         allowed = max(tolerance, 4e-14 * size)
@@ -228,7 +284,7 @@ class Band:
         first = Panels(course.start, course.end, np.arange(len(course.start)))
         return BandSheet(self, course, *resolved(first, rates, loose, rounds=_ROUNDS))
 
-    def _course(self, seam: float) -> _Course:
+    def course(self, seam: float) -> Course:
         """The walk once round from the seam, its stretches ending at the breaks of both rims."""
         a, b = self.rim_a.section, self.rim_b.section
         u_a, u_b = np.append(seam, a.breaks[:-1]), b.breaks[:-1]
@@ -264,7 +320,7 @@ class Band:
             # Near such a spot only its own rim can be walked smoothly.
             farther = np.full(len(farther), bool(len(a.loose_spots)))
         on_a = facet | (moves_a & (farther | ~moves_b))
-        return _Course(
+        return Course(
             on_a,
             facet,
             np.where(on_a, ends_a[:-1], ends_b[:-1]),
@@ -319,7 +375,7 @@ class BandSheet:
     Unrolled by θ' = φ' sin ψ (the geodesic curvature of end A's edge) and P' along T and W.
     """
 
-    def __init__(self, band: Band, course: _Course, panels: Panels, rates: Array) -> None:
+    def __init__(self, band: Band, course: Course, panels: Panels, rates: Array) -> None:
         self.band = band
         self._course, self._panels = course, panels
         half = panels.half

@@ -72,8 +72,8 @@ def chains(
         if good.all():
             break
         bad = ~good
-        # The miss falls with the fifth power of the length or faster: cut by that at once.
-        parts = np.clip(np.ceil((miss[bad] / tolerance) ** 0.2), 2, _MOST_PARTS).astype(int)
+        # The miss falls with the fourth power of the length, or faster: cut by that at once.
+        parts = np.clip(np.ceil((miss[bad] / tolerance) ** 0.25), 2, _MOST_PARTS).astype(int)
         owner = np.repeat(np.flatnonzero(bad), parts)
         number = np.arange(len(owner)) - np.repeat(np.cumsum(parts) - parts, parts)
         step = (end - start)[owner] / np.repeat(parts, parts)

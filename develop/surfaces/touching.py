@@ -55,6 +55,9 @@ def _lean(walking: Rim, other: Rim, e: Array, h: Array) -> Array:
     x, y, _ = other.local(e)
     nx, ny, _ = other.local(n)
     base, rate = e @ apart - h, float(n @ apart)
+    if not (nx or ny):
+        # Parallel ends: the support does not change with τ.
+        return np.asarray(-(base + other.section.support(x, y)) / rate)
     tau = np.zeros(len(e))
     last = np.inf
     for _ in range(_NEWTON_STEPS):

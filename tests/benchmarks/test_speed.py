@@ -10,7 +10,6 @@ import os
 import subprocess
 import sys
 import time
-from collections.abc import Callable
 from pathlib import Path
 
 import numpy as np
@@ -24,38 +23,14 @@ from develop.sections.ellipse import Ellipse
 from develop.sections.text import parse_section
 from develop.solid import Frame, Rim
 from develop.surfaces.band import Band
+from tests.benchmarks.timing import BUSY, median, ms, show
 
 pytestmark = pytest.mark.benchmark
 
 Array = NDArray[np.float64]
 
-BUSY = 5.0
-"""Times the goal that a busy machine may take."""
-
 # The trial of the design: shifted 80 and 40, 400 high.
 A, B, SHIFT, HEIGHT = (300.0, 150.0), (200.0, 200.0), np.array([80.0, 40.0]), 400.0
-
-
-def median(action: Callable[[], object], *, repeats: int = 41) -> float:
-    """Median time [s] of an action that has been run before."""
-    action()
-    times = []
-    for _ in range(repeats):
-        start = time.perf_counter()
-        action()
-        times.append(time.perf_counter() - start)
-    return float(np.median(times))
-
-
-def show(title: str, rows: list[tuple[str, str, str]]) -> None:
-    width = max(len(row[0]) for row in rows)
-    print(f"\n\n{title}")
-    for name, value, note in rows:
-        print(f"  {name:<{width}}  {value:>12}  {note}")
-
-
-def ms(seconds: float) -> str:
-    return f"{seconds * 1e3:.3f} ms"
 
 
 # ---- one transition -----------------------------------------------------------------------

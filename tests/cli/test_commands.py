@@ -63,13 +63,14 @@ def test_the_example_in_the_help_runs(run, tmp_path: Path, name: str) -> None:  
     done = run(*shlex.split(line)[1:])
     assert done.code == 0
     assert done.err == ""
-    # One drawing for each pattern, the rest once.
-    svgs = rf"{name}.svg|{name}-\w+.svg(?:, {name}-\w+.svg)+"
+    # One drawing of each format for each pattern, the rest once.
+    svgs, dxfs = (rf"(?:{name}.{end}|{name}-\w+.{end}(?:, {name}-\w+.{end})+)" for end in ("svg", "dxf"))
     assert re.fullmatch(
-        rf"{name}: wrote (?:{svgs}), {name}.pdf, {name}.json, {name}.png in out; all \d+ checks hold\n",
+        rf"{name}: wrote {svgs}, {name}.pdf, {dxfs}, {name}.json, {name}.png, {name}.stl, {name}.glb in out; "
+        r"\d+ arcs in the DXF, within 0\.00\d\d mm of the curve; all \d+ checks hold\n",
         done.out,
     )
-    assert len(list((tmp_path / "out").iterdir())) == 3 + done.out.count(".svg")
+    assert len(list((tmp_path / "out").iterdir())) == 5 + 2 * done.out.count(".svg")
     piece, _ = read_piece(kind_of(name), kind_of(name).example)
     assert piece is not None
     assert json.loads((tmp_path / "out" / f"{name}.json").read_bytes())["fields"] == record_of(piece)
@@ -166,7 +167,7 @@ def test_more_than_one_large_sheet_is_told(run) -> None:  # type: ignore[no-unty
 def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
     done = run(
         "transition", "--end-a", "ellipse 600", "--lenght", "450", "--offset", "0,x", "--flush", "top", "--rotate", "1",
-        "--rotate", "2", "--mark", "a/b", "--formats", "svg,dxf", "--units", "furlong", "--quantity", "--neutral-line=2",
+        "--rotate", "2", "--mark", "a/b", "--formats", "svg,dxff", "--units", "furlong", "--quantity", "--neutral-line=2",
         "stray", "-x", "--colour=red", "-o", "out",
     )  # fmt: skip
     assert done.code == 2
@@ -184,7 +185,7 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
         '--flush: "top" is given together with offset; allowed: one of the two',
         '--mark: "a/b" has the character "/"; allowed: letters',
         '--neutral-line: "2" is out of range; allowed: a number from 0 to 1',
-        '--formats: "dxf" is not one of them; did you mean "pdf"?; allowed: svg, pdf, json or png',
+        '--formats: "dxff" is not one of them; did you mean "dxf"?; allowed: svg, pdf, dxf, json, png, stl or glb',
         '--units: "furlong" is not one of them; allowed: mm, cm, m, in or ft',
     ]
     assert len(done.said) == len(starts)
@@ -374,3 +375,77 @@ def test_one_failed_check_of_a_job_is_the_exit_code_of_all(
     first, second = done.out.splitlines()
     assert "DO NOT CUT" in first
     assert second.endswith("the check holds")
+
+
+OUTPUTS_JOB = '[job]\n{}\n[[piece]]\nkind = "straight"\nsection = "round 300"\nlength = 500\ncut_b = "slope 30 long top"\n'
+
+
+def test_a_job_says_which_files_are_written_and_how_and_an_option_goes_before_it(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    said = 'formats = ["dxf", "json"]\ndxf_version = "R12"\ndxf_curves = "polylines"\ntolerance = "0.1 mm"\ntext = "none"\n'
+    (tmp_path / "hall.toml").write_text(OUTPUTS_JOB.format(said))
+    assert run("job", "hall.toml", "-o", "out").code == 0
+    assert {each.name for each in (tmp_path / "out").iterdir()} == {"straight.dxf", "straight.json"}
+    coarse = (tmp_path / "out" / "straight.dxf").read_text(encoding="cp1252")
+    assert "AC1009" in coarse
+    assert "\nTEXT\n" not in coarse
+    assert (
+        run("job", "hall.toml", "-o", "out", "--tolerance", "0.01", "--text", "all", "--formats", "dxf").code
+        == 0
+    )
+    fine = (tmp_path / "out" / "straight.dxf").read_text(encoding="cp1252")
+    assert "AC1009" in fine
+    assert "\nTEXT\n" in fine
+    # Chords of a tenth of the rise are √10 times as many, but for those that must be there anyhow.
+    assert fine.count("VERTEX") > 2.0 * coarse.count("VERTEX") > 0
+
+
+def test_a_tolerance_without_a_unit_is_in_that_of_the_job(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    for name, said in (
+        ("a", 'units = "in"\ntolerance = 0.001'),
+        ("b", 'units = "in"\ntolerance = "0.0254 mm"'),
+    ):
+        (tmp_path / "hall.toml").write_text(
+            OUTPUTS_JOB.format(said).replace("500", '"500 mm"').replace("300", "300 mm")
+        )
+        assert run("job", "hall.toml", "-o", name, "--formats", "dxf").code == 0
+    assert (tmp_path / "a" / "straight.dxf").read_bytes() == (tmp_path / "b" / "straight.dxf").read_bytes()
+
+
+@pytest.mark.parametrize(
+    ("said", "problem"),
+    [
+        ('formats = "svg,dxff"', 'hall.toml:2: formats: "dxff" is not one of them; did you mean "dxf"?'),
+        ("formats = []", 'hall.toml:2: formats: "" is not one of them'),
+        ("formats = [3]", 'hall.toml:2: formats: "3" is not one of them'),
+        ("tolerance = 0", 'hall.toml:2: tolerance: 0 is zero; allowed: a length from 0.002 mm to 1 mm'),
+        ('dxf_version = "R14"', 'hall.toml:2: dxf_version: "R14" is not one of them; did you mean "R12"?; allowed: R2010 or R12'),
+        ('dxf_curves = "splines"\ndxf_version = "r12"', "hall.toml:2: dxf_curves: splines are given together with R12"),
+        ("text = false", "hall.toml:2: text: false is not one of them; allowed: all or none"),
+    ],
+)  # fmt: skip
+def test_what_a_job_cannot_ask_for(run, tmp_path: Path, said: str, problem: str) -> None:  # type: ignore[no-untyped-def]
+    (tmp_path / "hall.toml").write_text(OUTPUTS_JOB.format(said))
+    done = run("job", "hall.toml", "-o", "out")
+    assert done.code == 2
+    assert len(done.said) == 1
+    assert done.said[0].startswith(problem)
+    assert not (tmp_path / "out").exists()
+
+
+def test_splines_and_r12_are_refused_by_their_option(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    said = "--dxf-curves: splines are given together with R12, which has none; allowed: arcs or polylines, or R2010"
+    assert run(*STRAIGHT, "--dxf-curves", "splines", "--dxf-version", "R12").said == [said]
+    (tmp_path / "hall.toml").write_text(OUTPUTS_JOB.format('dxf_version = "R12"'))
+    assert run("job", "hall.toml", "-o", "out", "--dxf-curves", "splines").said == [said]
+    assert not (tmp_path / "out").exists()
+
+
+def test_text_none_leaves_the_words_out_of_svg_and_dxf_alone(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
+    words = (*STRAIGHT[:-1], "svg,dxf,pdf")
+    assert run(*words, "--text", "none").code == 0
+    assert "<text" not in (tmp_path / "out" / "straight.svg").read_text()
+    assert "\nTEXT\n" not in (tmp_path / "out" / "straight.dxf").read_text()
+    assert "END A" in PdfReader(tmp_path / "out" / "straight.pdf").pages[0].extract_text()
+    assert run(*words).code == 0
+    assert "<text" in (tmp_path / "out" / "straight.svg").read_text()
+    assert "\nTEXT\n" in (tmp_path / "out" / "straight.dxf").read_text()

@@ -16,6 +16,7 @@ HEAVY = {
     "numpy",
     "scipy",
     "matplotlib",
+    "ezdxf",
     "reportlab",
     "shapely",
     "trimesh",
@@ -58,7 +59,7 @@ def test_help_imports_little_more_than_click() -> None:
 @pytest.mark.parametrize("words", [["transition", "--help"], ["kinds"], ["kinds", "straight"], ["straight"]])
 def test_what_computes_nothing_imports_no_arrays(words: list[str]) -> None:
     ours = modules(f"from develop.cli.main import main; main({words!r})")
-    assert not {name.split(".")[0] for name in ours} & {"numpy", "matplotlib", "reportlab", "scipy"}
+    assert not {name.split(".")[0] for name in ours} & {"numpy", "matplotlib", "reportlab", "scipy", "ezdxf"}
 
 
 def test_one_transition_to_svg_pdf_and_record_imports_no_more_than_it_needs(tmp_path: Path) -> None:
@@ -70,6 +71,7 @@ def test_one_transition_to_svg_pdf_and_record_imports_no_more_than_it_needs(tmp_
     assert not {name.split(".")[0] for name in ours} & {
         "scipy",
         "matplotlib",
+        "ezdxf",
         "shapely",
         "trimesh",
         "pydantic",

@@ -11,12 +11,21 @@ import pytest
 import develop.checks
 from develop.checks import Check
 from develop.errors import WriteError
-from develop.job.pipeline import FORMATS, make
+from develop.job.output_fields import FORMATS
+from develop.job.pipeline import make
 from develop.pieces import KINDS, kind_of
 from develop.pieces.fields import Piece, read_piece, record_of
 
 # The first bytes of each format, as its own standard has them.
-STARTS = {"svg": b"<?xml", "pdf": b"%PDF-", "json": b"{", "png": b"\x89PNG\r\n\x1a\n"}
+STARTS = {
+    "svg": b"<?xml",
+    "pdf": b"%PDF-",
+    "dxf": b"999\n",  # a comment
+    "json": b"{",
+    "png": b"\x89PNG\r\n\x1a\n",
+    "stl": b"finished piece",  # of 80 bytes of any text
+    "glb": b"glTF\x02\0\0\0",
+}
 
 
 def example(name: str, **more: object) -> Piece:
@@ -35,7 +44,8 @@ def test_the_example_of_a_kind_gives_all_its_files(tmp_path: Path, name: str) ->
     record = json.loads((tmp_path / "A1.json").read_bytes())
     marks = [pattern["mark"] for pattern in record["patterns"]]
     assert marks == ["A1"] or (len(marks) > 1 and all(mark.startswith("A1-") for mark in marks))
-    assert outcome.files == (*(f"{mark}.svg" for mark in marks), "A1.pdf", "A1.json", "A1.png")
+    svgs, dxfs = ([f"{mark}.{each}" for mark in marks] for each in ("svg", "dxf"))
+    assert outcome.files == (*svgs, "A1.pdf", *dxfs, "A1.json", "A1.png", "A1.stl", "A1.glb")
     assert {each.name for each in tmp_path.iterdir()} == set(outcome.files)
     for file in tmp_path.iterdir():
         assert file.read_bytes().startswith(STARTS[file.suffix[1:]])
@@ -82,7 +92,9 @@ def test_a_check_that_does_not_hold_is_told_and_recorded(
     ]
 
 
-@pytest.mark.parametrize("writer", ["svg.svg", "pdf.printed", "record.record", "picture.picture"])
+@pytest.mark.parametrize(
+    "writer", ["svg.svg", "pdf.printed", "dxf.dxf", "record.record", "picture.picture", "solid_files.glb"]
+)
 def test_when_a_format_fails_nothing_is_written(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, writer: str
 ) -> None:

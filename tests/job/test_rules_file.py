@@ -7,7 +7,7 @@ from pathlib import Path
 import pytest
 
 from develop.errors import InputError
-from develop.job.rules_file import read_rules
+from develop.job.file import read_rules
 from develop.tables.seams import edge_of, seam_of
 
 

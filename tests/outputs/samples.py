@@ -48,12 +48,12 @@ def _pattern(
         marks=marks,
         lines=lines,
         divisions=divisions,
-        full_lines=full,
+        lines_as="full" if full else "ticks",
     )
     return Pattern(
         mark=mark, kind=kind, quantity=2, face="outside", net=net, cut=net, openings=openings, lines=lines,
         divisions=divisions, marks=marks, labels=labels, facts=facts, datum="END A, the line y = 0",
-        full_lines=full, rulings=Rulings(np.array(ends_a), np.array(ends_b), *np.zeros((2, len(ends_a)))),
+        lines_as="full" if full else "ticks", rulings=Rulings(np.array(ends_a), np.array(ends_b), *np.zeros((2, len(ends_a)))),
         arrows=arrows,
     )  # fmt: skip
 

@@ -12,6 +12,7 @@ import numpy as np
 import pytest
 from shapely import LineString, MultiPoint, Point, Polygon
 
+from develop.job.output_fields import Outputs
 from develop.outputs import picture as module
 from develop.outputs.picture import picture
 
@@ -320,5 +321,5 @@ def title_of(module, name, monkeypatch, kind, **given):
     monkeypatch.setattr(module, name, lambda _, facts, *rest: found.append(facts) or b"")
     piece, problems = read_piece(kind_of(kind), {**given, "mark": "P1"})
     assert not problems
-    _files("png", piece, builds_of(piece), ())
+    _files("png", piece, builds_of(piece), (), Outputs())
     return found[0]

@@ -189,3 +189,32 @@ def test_numbers_are_plain_and_to_1e_6(samples):
 def test_the_same_pattern_gives_the_same_bytes(samples):
     assert svg(samples.slanting()) == svg(samples.slanting())
     assert svg(samples.slanting()) != svg(samples.slanting(short=61.0))
+
+
+def test_openings_have_a_layer_of_their_own_and_come_before_the_outline(samples):
+    hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * np.pi)),), np.pi * 2500)
+    root = read(replace(samples.rectangle(), openings=(hole,)))
+    groups = [each.get("id") for each in root.iter(f"{SVG}g")]
+    assert groups[:2] == ["cut-openings", "cut"]
+    ((segments, closed, _),) = (path_of(each.get("d")) for each in group(root, "cut-openings"))
+    assert closed
+    assert area(sampled(segments)) == pytest.approx(np.pi * 2500, rel=1e-4)
+    assert len(group(root, "cut")) == 1
+
+
+def test_pops_are_small_circles_and_pen_lines_a_layer(samples):
+    pops = list(group(read(replace(samples.rectangle(), lines_as="pops")), "roll-lines"))
+    ticks = list(group(read(samples.rectangle()), "roll-lines"))
+    assert {each.tag for each in pops} == {f"{SVG}circle"}
+    assert {float(each.get("r")) for each in pops} == {0.25}
+    at = sorted((float(each.get("cx")), float(each.get("cy"))) for each in pops)
+    assert at == sorted(tuple(path_of(each.get("d"))[0][0][1].tolist()) for each in ticks)
+    root = read(replace(samples.rectangle(), lines_as="pen"))
+    assert "roll-lines" not in [each.get("id") for each in root.iter(f"{SVG}g")]
+    assert len(group(root, "pen-lines")) >= 19
+
+
+def test_text_can_be_left_out(samples):
+    root = ET.fromstring(svg(samples.rectangle(), text=False))
+    assert [each.get("id") for each in root.iter(f"{SVG}g")] == ["cut", "roll-lines", "witness-marks"]
+    assert root.find(f"{SVG}desc").text

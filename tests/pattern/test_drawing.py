@@ -9,7 +9,19 @@ import pytest
 from shapely import LineString, MultiLineString, unary_union
 
 from develop.pattern.curve import segment
-from develop.pattern.drawing import CUT, LAYERS, NET, ROLL_LINES, TEXT, WITNESS_MARKS, draw
+from develop.pattern.drawing import (
+    CUT,
+    DASHED,
+    LAYERS,
+    NET,
+    OPENINGS,
+    PEN_LINES,
+    PRESS_LINES,
+    ROLL_LINES,
+    TEXT,
+    WITNESS_MARKS,
+    draw,
+)
 from develop.pattern.lettering import boxes_of
 from develop.pattern.pattern import Outline
 
@@ -33,6 +45,9 @@ class Notes:
     def curve(self, curve, *, dashed):
         self.now.append(("dashed" if dashed else "curve", curve))
 
+    def pop(self, at):
+        self.now.append(("pop", at))
+
     def text(self, label):
         self.now.append(("text", label))
 
@@ -55,10 +70,12 @@ def test_layers_come_in_order_and_only_cut_lines_are_on_the_cut_layer(samples):
     assert {kind for kind, _ in layers[ROLL_LINES]} == {"line"}
 
 
-def test_openings_are_cut(samples):
+def test_openings_are_cut_on_a_layer_of_their_own_before_the_outline(samples):
     hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * np.pi)),), np.pi * 2500)
     layers = notes_of(replace(samples.rectangle(), openings=(hole,)))
-    assert [what for _, what in layers[CUT]][1] is hole
+    assert [what for _, what in layers[OPENINGS]] == [hole]
+    assert [kind for kind, _ in layers[CUT]] == ["contour"]
+    assert list(layers).index(OPENINGS) < list(layers).index(CUT)
 
 
 def test_an_opening_that_is_only_marked_is_not_on_the_cut_layer(samples):
@@ -66,14 +83,16 @@ def test_an_opening_that_is_only_marked_is_not_on_the_cut_layer(samples):
     layers = notes_of(replace(samples.rectangle(), openings=(hole,), openings_as="marked"))
     assert [kind for kind, _ in layers[CUT]] == ["contour"]
     assert [what for _, what in layers[NET]] == [hole]
+    assert OPENINGS not in layers
 
 
 def test_an_opening_on_ties_is_cut_in_open_lines(samples):
     hole = Outline((("opening", samples.arc(np.array([600.0, 200.0]), 50.0, 0.0, 2 * np.pi)),), np.pi * 2500)
     layers = notes_of(replace(samples.rectangle(), openings=(hole,), openings_as="ties", tie=5.0))
-    assert [kind for kind, _ in layers[CUT]] == ["contour", *["curve"] * 4]
+    assert [kind for kind, _ in layers[CUT]] == ["contour"]
+    assert [kind for kind, _ in layers[OPENINGS]] == ["curve"] * 4
     assert NET not in layers
-    ends = [each for _, curve in layers[CUT][1:] for each in (curve.start, curve.end)]
+    ends = [each for _, curve in layers[OPENINGS] for each in (curve.start, curve.end)]
     assert len(np.unique(np.round(ends, 6), axis=0)) == 8
 
 
@@ -176,4 +195,36 @@ def test_witness_marks_are_square_to_the_edge_and_not_on_the_seam(samples):
 def test_dashed_curves_are_dashed(samples):
     line = segment([10.0, 0.0], [10.0, 450.0])
     layers = notes_of(replace(samples.rectangle(), dashed=(line,)))
-    assert ("dashed", line) in layers[WITNESS_MARKS]
+    assert layers[DASHED] == [("dashed", line)]
+
+
+@pytest.mark.parametrize("name", ["rectangle", "slanting", "fan"])
+def test_pops_stand_where_ticks_would_end(samples, name):
+    pattern = getattr(samples, name)()
+    ticks = lines_of(notes_of(pattern)[ROLL_LINES])
+    pops = notes_of(replace(pattern, lines_as="pops"))[ROLL_LINES]
+    assert {kind for kind, _ in pops} == {"pop"}
+    assert np.array_equal([at for _, at in pops], [tick[1] for tick in ticks])
+
+
+def test_pen_lines_are_full_lines_on_a_layer_of_their_own(samples):
+    pattern = samples.rectangle(full=True)
+    full = notes_of(pattern)
+    layers = notes_of(replace(pattern, lines_as="pen"))
+    assert PEN_LINES not in full
+    assert ROLL_LINES not in layers
+    assert np.array_equal(lines_of(layers[PEN_LINES]), lines_of(full[ROLL_LINES]))
+
+
+def test_no_lines_leave_the_witness_marks(samples):
+    pattern = samples.rectangle()
+    layers = notes_of(replace(pattern, lines_as="none"))
+    assert list(layers) == [CUT, WITNESS_MARKS, TEXT]
+    assert np.array_equal(lines_of(layers[WITNESS_MARKS]), lines_of(notes_of(pattern)[WITNESS_MARKS]))
+
+
+def test_press_lines_have_their_own_layer_but_for_a_pen(samples):
+    pattern = samples.rectangle()
+    pattern = replace(pattern, lines=tuple(replace(line, press=True) for line in pattern.lines))
+    assert PRESS_LINES in notes_of(pattern)
+    assert PRESS_LINES not in notes_of(replace(pattern, lines_as="pen"))

@@ -7,7 +7,7 @@ from math import atan, cos, degrees, hypot, pi, radians, sin, tan
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from develop.errors import InputError
@@ -367,6 +367,7 @@ SECTIONS = st.builds(
 
 
 @settings(max_examples=25, deadline=None)
+@example(section="rectangle 100 x 100", angle=116, throat=20, count=2, turns_to=116, stagger=117)
 @given(
     section=SECTIONS,
     angle=st.floats(5, 175),

@@ -274,8 +274,8 @@ def test_a_cone_and_a_cylinder_about_one_sphere_meet_in_planes() -> None:
         (TAPER, {"branch": "round 600"}, "branch"),
         (TAPER, {"header_length": 800}, "header_length"),
         (TAPER, {"from_a": 40}, "from_a"),
-        ({**TAPER, "tilt": "slope 10 long top"}, {}, "header"),
-        ({**TAPER, "end_b": "flat-oval 300 x 200"}, {}, "header"),
+        ({**TAPER, "tilt": "slope 20 long bottom"}, {"from_a": 740}, "from_a"),
+        ({**TAPER, "length": 200}, {"angle": 25, "centre_to_end": 900}, "angle"),
         ("round 400", {}, "header_length"),
     ],
 )

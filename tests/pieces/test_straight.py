@@ -145,6 +145,17 @@ def test_full_lines_on_plate_and_ticks_on_sheet() -> None:
     assert full(thickness=3)
     assert full(marks="full")
     assert not full(thickness=12, marks="ticks")
+    assert full(marks="pen")
+    assert not full(thickness=12, marks="pops")
+
+
+@pytest.mark.parametrize("marks", ["ticks", "full", "pops", "pen", "none"])
+def test_lines_are_marked_as_asked(marks: str) -> None:
+    for thickness in (1, 12):
+        (pattern,) = make(
+            "straight", section="round 300", length=500, marks=marks, thickness=thickness
+        ).patterns
+        assert pattern.lines_as == marks
 
 
 @pytest.mark.parametrize("face", ["outside", "inside"])
