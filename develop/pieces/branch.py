@@ -216,12 +216,14 @@ class Branch(Jointed):
         branch = given_section(self.branch, field="branch", thickness=self.thickness, sizes=self.sizes)
         header = self._header()
         frame = self._frame(header)
-        self._overhang(branch, header, frame)
+        made = self._edge()
+        # Cut along the header the line of one face is laid on it; else the corner that touches has room.
+        self._overhang(branch.offset(made.up) if made.along else branch, header, frame)
         trim: BandTrim | CylinderTrim = header.trim(frame)
         distance = neutral_distance(
             thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
         )
-        edge = self._edge().trim(trim)
+        edge = made.trim(trim)
         surface = Cylinder(
             branch, edge, Plane(self.centre_to_end, np.zeros(2)), distance, edge.breaks(branch)
         )

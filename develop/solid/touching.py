@@ -99,7 +99,11 @@ class TouchingEnd(End):
                 low, high = np.where(same, middle, low), np.where(same, high, middle)
             found.append(high)
         spots = np.sort(np.concatenate(found) % section.period)
-        return np.asarray(spots[np.diff(spots, prepend=-1.0) > _APART * section.period])
+        spots = spots[np.diff(spots, prepend=-1.0) > _APART * section.period]
+        # Those of the section itself are known exactly.
+        half = 0.5 * section.period
+        away = np.abs((spots[:, None] - section.breaks + half) % section.period - half)
+        return np.asarray(spots[(away > _APART * section.period).all(axis=1)])
 
     @property
     def _corners(self) -> Array:
@@ -211,7 +215,8 @@ class StandingEnd(TouchingEnd):
     @cached_property
     def _grid(self) -> tuple[Array, Array, Array]:
         """Directions φ (k,) all round or, of a straight header, from silhouette to silhouette, with unit
-        normals (k, 3) and supports (k,) [mm] of the planes, in the branch's frame."""
+        normals (k, 3) and supports (k,) [mm] of the planes, in the branch's frame. The first and the last
+        only bound the rest."""
         met = self.met
         if isinstance(met, TaperMeetingEnd):
             phi = met.grid[0]
@@ -231,9 +236,8 @@ class StandingEnd(TouchingEnd):
         leans, seen = out @ normals.T, normals[:, 2] > 0.0
         rest = supports - given @ normals.T + np.maximum(-self.inner * leans, -self.outer * leans)
         rest = np.where(seen, rest / np.where(seen, normals[:, 2], 1.0), np.inf)
-        i = np.argmin(rest, axis=1)
-        middle = phis[i]
-        low, high = phis[np.maximum(i - 1, 0)], phis[np.minimum(i + 1, len(phis) - 1)]
+        i = 1 + np.argmin(rest[:, 1:-1], axis=1)
+        middle, low, high = phis[i], phis[i - 1], phis[i + 1]
         # Short of the least of the planes the header's line lies on the one side of the branch's line, past
         # it on the other: of the line, of the edge's two corners, over which the plane is higher.
         phi = middle
@@ -271,8 +275,8 @@ class StandingEnd(TouchingEnd):
     def clear(self, points: Array) -> tuple[Array, Array]:
         # A point is as far outside of a convex side as of the tangent plane that it is farthest from.
         phis, normals, supports = self._grid
-        index = np.argmax(points @ normals.T - supports, axis=1)
-        low, high = phis[np.maximum(index - 1, 0)], phis[np.minimum(index + 1, len(phis) - 1)]
+        i = 1 + np.argmax((points @ normals.T - supports)[:, 1:-1], axis=1)
+        low, high = phis[i - 1], phis[i + 1]
 
         def apart(phi: Array) -> Array:
             a, _, normal = self._lines(phi)

@@ -270,6 +270,14 @@ def test_cut_along_the_header_the_line_is_that_of_the_face_that_is_up(face: str,
     holds(built)
 
 
+def test_a_line_that_would_lie_beside_the_header_is_refused() -> None:
+    given = {"header": "round 400", "branch": "round 400", "sizes": "inside", "centre_to_end": 900}
+    holds(tee(**given))
+    holds(tee(**given, touching="bevelled", joint_cut="along"))
+    with pytest.raises(InputError, match="off_centre"):
+        tee(**{**given, "branch": "round 396"}, touching="bevelled", joint_cut="along", off_centre=4)
+
+
 @pytest.mark.parametrize("joint", ["set-in", "tap"])
 def test_only_a_branch_that_is_set_on_touches_with_its_edge(joint: str) -> None:
     pattern = tee(joint=joint).patterns[0]
@@ -319,12 +327,15 @@ def test_every_check_of_a_branch_holds(given: dict[str, object]) -> None:
     [
         {"kind": "cone", "section": "round 800", "height": 1600, "cut_b": 900},
         {"kind": "transition", "end_a": "ellipse 800 x 600", "end_b": "round 500", "length": 1200},
+        {"kind": "transition", "end_a": "rectangle 800 x 600 r 20", "end_b": "round 500", "length": 1200},
     ],
 )
-@pytest.mark.parametrize("more", [{}, {"off_centre": 60, "angle": 75}])
+@pytest.mark.parametrize(
+    "more", [{}, {"off_centre": 60, "angle": 75}, {"leaves_at": 0, "branch": "flat-oval 300 x 160"}]
+)
 def test_every_check_on_a_tapered_header_holds(header: dict[str, object], more: dict[str, object]) -> None:
     given = {"branch": "round 250", "centre_to_end": 700, "thickness": 10, "sizes": "outside"}
-    holds(make("branch", header=header, **given, **more))
+    holds(make("branch", header=header, **{**given, **more}))
 
 
 # ---- refusals, and checks that fail -----------------------------------------------------------
