@@ -10,6 +10,7 @@ from develop.checks.fold import closing_miss, folded
 from develop.checks.joint import Side, joint_miss
 from develop.checks.marked import drawn_miss, marks_miss, roll_lines_miss, table_miss
 from develop.checks.openings import opening_miss
+from develop.checks.touching import touching_misses
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid.meeting import MeetingEnd
 from develop.solid.solid import Solid
@@ -120,6 +121,15 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm"),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
+    for name in "ab":
+        touching = touching_misses(pattern, solid, lines, name)
+        if touching is None:
+            continue
+        off, over = touching
+        words = f"edge at END {name.upper()}, at the joint"
+        checks.append(Check(f"{words}: largest distance of what touches", 0.0, off, _CLOSING, "mm"))
+        if over is not None:
+            checks.append(Check(f"{words}: largest overlap of the wall", 0.0, over, _CLOSING, "mm"))
     for outline, joint in zip(pattern.openings, solid.openings, strict=True):
         checks += _opening(pattern, solid, outline, joint)
     return tuple(checks)

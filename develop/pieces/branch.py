@@ -30,6 +30,7 @@ if TYPE_CHECKING:
     from develop.pieces.built import Built, Part
     from develop.pieces.clearance import Beside
     from develop.pieces.header import StraightHeader, TaperHeader
+    from develop.pieces.joint_edge import JointEdge
     from develop.sections.section import Section
     from develop.solid import Frame
     from develop.surfaces.band_trim import BandTrim
@@ -209,6 +210,12 @@ class Branch(Jointed):
             from_a=self.from_a,
         )
 
+    def _edge(self) -> JointEdge:
+        """How the branch's edge on the header is made: only set on does plate touch plate with it."""
+        from develop.pieces.joint_edge import JointEdge, joint_edge
+
+        return joint_edge(self) if self.joint == "set-on" else JointEdge()
+
     def surface(self) -> Cylinder:
         """The branch between its joint and its free end. Raises Refusal."""
         return self._parts()[0]
@@ -230,10 +237,13 @@ class Branch(Jointed):
         branch = self.in_wall(self.branch, field="branch")
         header = self._header()
         frame = self._frame(header)
-        self._overhang(branch, header, frame)
+        made = self._edge()
+        # Cut along the header the line of one face is laid on it; else the corner that touches has room.
+        self._overhang(branch.offset(made.up) if made.along else branch, header, frame)
         trim: BandTrim | CylinderTrim = header.trim(frame)
+        edge = made.trim(trim)
         surface = Cylinder(
-            branch, trim, Plane(self.centre_to_end, np.zeros(2)), self.distance(branch), trim.breaks(branch)
+            branch, edge, Plane(self.centre_to_end, np.zeros(2)), self.distance(branch), edge.breaks(branch)
         )
         shortest = float(surface.lengths(branch.at_direction(np.radians(np.arange(360.0)))).min())
         if shortest <= 0.0:
@@ -481,8 +491,9 @@ class Branch(Jointed):
 
         from develop.pieces.assemble import pattern_of
         from develop.pieces.built import Part
+        from develop.pieces.joint_edge import with_bevels
         from develop.pieces.tap import lap_flange
-        from develop.solid import End, Solid
+        from develop.solid import End, Solid, StandingEnd
 
         section = surface.section
         sheet = surface.sheet(seam)
@@ -501,11 +512,12 @@ class Branch(Jointed):
             sizes=f"branch {section_words(self.branch, units)}, "
             f"centre to end {size_words(self.centre_to_end, units)}",
             place=f"into header {self._header_words(units)}, {self._where(units)}",
-            held="lengths and joint",
+            held=self._edge().held("lengths", "joint"),
             units=units,
             around=section,
             more=(
                 *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
+                *self._edge().words(mitre=False),
                 *self._sides,
             ),
         )
@@ -520,8 +532,12 @@ class Branch(Jointed):
             distance=surface.distance,
             cutting=replace(cutting, allowances={**cutting.allowances, "a": flange}) if flange else cutting,
         )
+        edge, met = self._edge(), header.joint(section, frame)
+        inner, outer = edge.corners or (0.0, 0.0)
+        stands = StandingEnd.of(met, inner=inner, outer=outer)
+        pattern = with_bevels(pattern, edge, {"a": stands}, plates=1)
         solid = Solid(
-            header.joint(section, frame),
+            stands if edge.corners else met,
             End.cut(section, height=self.centre_to_end, rise=np.zeros(2)),
             side="parallel",
             seam=seam,

@@ -11,7 +11,7 @@ import numpy as np
 from develop.errors import Refusal
 from develop.pieces.built import Built, Part
 from develop.pieces.wording import direction_words, lines_of
-from develop.solid import Patch, Solid
+from develop.solid import Patch, Solid, TouchingEnd
 from develop.units import number_text
 
 if TYPE_CHECKING:
@@ -125,10 +125,14 @@ def _at_openings(part: Part, clear: float) -> list[str]:
 
 
 def _seam_end(part: Part, end: str, place: int) -> Array:
-    """Where a part's seam ends at end `a` or `b`, in the piece (3,) [mm]."""
+    """Where a part's seam ends at end `a` or `b`, in the piece (3,) [mm]; on what touches there."""
     solid, frame = part.solid, part.frames[place]
     assert isinstance(solid, Solid)
-    return np.asarray(solid.seam_line[0 if end == "a" else 1] @ frame.axes + frame.origin)
+    point, curve = solid.seam_line[0 if end == "a" else 1], solid.end_a if end == "a" else solid.end_b
+    if isinstance(curve, TouchingEnd):
+        u = np.array([solid.seam])
+        point = curve.across(u, curve.touching(u))[0]
+    return np.asarray(point @ frame.axes + frame.origin)
 
 
 def _on_header(built: Built, clear: float) -> list[tuple[str, tuple[int, ...]]]:

@@ -31,8 +31,8 @@ if TYPE_CHECKING:
 
 __all__ = ["SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
 
-# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
-# practice, no source.
+# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full, and the edges of joints
+# worked out. Common practice, no source.
 _PLATE = 3.0
 
 _SMALL = Length(least=0.0, most=1000.0)
@@ -351,6 +351,38 @@ class Jointed(Plate):
             own=False,
         ),
     )
+
+    touching: str = field(
+        default="auto",
+        metadata=about(
+            Choice(("auto", "net", "worked out", "bevelled")),
+            "how edges meet at a mitre or on a header: the net lines; square to the plate, the corner that "
+            "touches worked out for each direction; or bevelled so that the net lines meet. auto: worked out "
+            "from 3 mm thickness up",
+            own=False,
+        ),
+    )
+    joint_cut: str = field(
+        default="square",
+        metadata=about(
+            Choice(("square", "along")),
+            "bevelled edges cut square to the plate at the net line, or along the joint, the line then that "
+            "of the face that is up",
+            own=False,
+        ),
+    )
+
+    def check(self) -> None:
+        """Raises Refusal for a piece that cannot be."""
+        from develop.pieces.joint_edge import joint_edge
+
+        super().check()
+        joint_edge(self)
+
+    @property
+    def plate(self) -> bool:
+        """It is thick enough to be treated as plate."""
+        return self.thickness >= _PLATE
 
     @property
     def clear(self) -> float:

@@ -62,6 +62,7 @@ class Offset(Jointed):
 
     def surface(self) -> tuple[Leg, ...]:
         """The three legs, from end A to end B. Raises Refusal."""
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
         from develop.pieces.wall import PLACES, reach
 
@@ -81,6 +82,7 @@ class Offset(Jointed):
             [self.ends, self.middle, self.ends],
             [Turn(self.angle, towards), Turn(self.angle, towards + pi)],
             distance=self.distance(section),
+            edge=joint_edge(self),
         )
 
     def _room(self, aside: float, throat: float) -> None:
@@ -137,6 +139,7 @@ class Offset(Jointed):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.clearance import seam_warnings
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
@@ -147,12 +150,16 @@ class Offset(Jointed):
             wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
+            edge=joint_edge(self),
             name="leg",
         )
         return seam_warnings(built, clear=self.clear)
 
     def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""
+        from develop.pieces.joint_edge import joint_edge
+
+        edge = joint_edge(self)
         right, up = self.offset
         on_axis = self.middle if numbers[0] == 2 else self.ends
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
@@ -162,11 +169,12 @@ class Offset(Jointed):
             sizes=f"{section_words(self.section, units)}, offset, length {size_words(self.length, units)}",
             place=f"{shift_words(right, up, units)}, "
             f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
-            held="lengths and cuts",
+            held=edge.held("lengths", "cuts"),
             units=units,
             around=section,
             more=(
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
                 f"{measured_words(on_axis, units)} long on the axis",
+                *edge.words(mitre=True),
             ),
         )

@@ -11,6 +11,7 @@ from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
 from develop.solid.template import FlatTemplate, FloorOutlines
+from develop.solid.touching import MitredEnd, StandingEnd, TouchingEnd
 from develop.solid.wall import Mesh, plate, wall
 
 __all__ = [
@@ -24,12 +25,15 @@ __all__ = [
     "Made",
     "MeetingEnd",
     "Mesh",
+    "MitredEnd",
     "Patch",
     "Placed",
     "Rim",
     "Solid",
+    "StandingEnd",
     "Stretch",
     "TaperMeetingEnd",
+    "TouchingEnd",
     "cut_slopes",
     "plate",
     "wall",

@@ -17,6 +17,7 @@ from develop.solid.end import End
 from develop.solid.level import EndPlane, level_area, level_girth
 from develop.solid.meeting import MeetingEnd
 from develop.solid.straights import paired
+from develop.solid.touching import TouchingEnd
 
 __all__ = ["Measures", "Solid", "Strip"]
 
@@ -169,10 +170,20 @@ class Solid:
     def misses(self, a: Array, b: Array, u: Array) -> float:
         """Largest distance [mm] of points a, b (n, 3), on the given surface, from the two ends.
 
-        u: (n,) parameters of end A's section that the points belong to, for an end that is a cut.
+        u: (n,) parameters of end A's section that the points belong to, for an end that is a cut, or one
+        that stands at a sharp corner while its height changes.
         """
-        far = self.end_b.distance(b) if self.cut_b is None else np.linalg.norm(b - self.strip(u).b, axis=1)
-        return float(max(np.max(self.end_a.distance(a)), np.max(far)))
+        far = self._off(self.end_b, b, u)
+        if self.cut_b is not None:
+            far = np.linalg.norm(b - self.strip(u).b, axis=1)
+        return float(max(np.max(self._off(self.end_a, a, u)), np.max(far)))
+
+    @staticmethod
+    def _off(end: End, points: Array, u: Array) -> Array:
+        """Distance (n,) [mm] of points (n, 3) from an end, never understated."""
+        if isinstance(end, TouchingEnd):
+            return np.asarray(np.minimum(end.distance(points), np.linalg.norm(points - end.point(u), axis=1)))
+        return np.asarray(end.distance(points))
 
     def strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
