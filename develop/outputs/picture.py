@@ -120,7 +120,8 @@ def picture(
             axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
         corners = camera.project(vertices)
         for text, start, end, colour in _words(camera, pieces, branches):
-            axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
+            # A leader may run beyond the limits, to where its word stands.
+            axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9, clip_on=False)
             axes.plot(*start, color=colour, marker="o", markersize=3.2)
             ahead = (end - start) / np.hypot(*(end - start))
             x, y = end + 0.012 * ahead
