@@ -69,6 +69,37 @@ def test_the_allowances_page_shows_what_its_script_finds() -> None:
     assert figure("allowances").page(text) == text
 
 
+def test_the_page_of_thickness_shows_what_its_script_finds() -> None:
+    text = (DOCS / "thickness.md").read_text(encoding="utf-8")
+    assert figure("thickness").page(text) == text
+
+
+def test_the_page_of_thickness_tells_the_truth() -> None:
+    # Steiner, right cones in thick plate, and the handbook's 0.64 T for a bend, by elementary geometry.
+    from math import hypot, pi
+
+    from scipy.special import ellipe
+
+    def girth(width: float, height: float) -> float:
+        return 2.0 * width * float(ellipe(1.0 - (height / width) ** 2))
+
+    ellipse, lean = girth(600.0, 300.0), 700.0 / hypot(700.0, 750.0)
+    expected = [
+        -10.0 * pi,
+        girth(610.0, 310.0) - ellipse - 10.0 * pi,
+        girth(650.8, 350.8) - ellipse - 50.8 * pi,
+        -16.0 * pi * lean,
+        16.0 * pi * (1.0 - lean),
+        -16.0 * pi / lean,
+        16.0 * pi * (1.0 - 1.0 / lean),
+        4.0 * 2.0 * (pi / 4.0 - 0.64),
+        2.0 * pi * 1.3,
+        2.0 * pi * 50.0 * 750.0 / 700.0,
+    ]
+    # The slightly leaning sheet of a slip joint is a hundredth of a micron off.
+    assert [out for _, _, out in figure("thickness").rows()] == pytest.approx(expected, abs=1e-5)
+
+
 @pytest.mark.parametrize("name", ["accuracy", "allowances", "directions", "demo", "touching"])
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"

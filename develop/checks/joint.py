@@ -44,6 +44,11 @@ class Side:
         return self.solid.distance if isinstance(self.solid, Solid) else 0.0
 
     @property
+    def tapers(self) -> bool:
+        """Whether the part's thickness does not lie in the plane of its end."""
+        return isinstance(self.solid, Solid) and self.solid.side == "hull"
+
+    @property
     def curve(self) -> End:
         """Where the edge should lie, in the part's own frame."""
         if isinstance(self.solid, Solid):
@@ -56,8 +61,8 @@ class Side:
         touches another part what touches it."""
         if isinstance(self.solid, Solid):
             lines = folded(self.pattern, self.solid)
-            a, b, normal = lines
-            points = (a if self.end == "a" else b) - self.solid.distance * normal
+            a, b = self.solid.on_ends(*lines)
+            points = a if self.end == "a" else b
             touching = touching_points(self.pattern, self.solid, lines, self.end)
             if touching is not None:
                 points = touching[1]

@@ -114,7 +114,7 @@ class Bend(Jointed):
         """The gores, from end A to end B. Raises Refusal."""
         from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
-        from develop.pieces.wall import PLACES, given_section, neutral_distance, reach
+        from develop.pieces.wall import PLACES, reach
 
         if self.stagger and self.seams == "alternate":
             raise Refusal(
@@ -122,7 +122,7 @@ class Bend(Jointed):
                 given=f"{_angle(self.stagger)} is given together with seams = alternate",
                 allowed="one of the two",
             )
-        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        section = self.in_wall(self.section, field="section")
         radius = self._radius()
         outer = section.offset(self.thickness * (1.0 - PLACES[self.sizes]))
         self._room(radius, reach(outer, self.turns_to))
@@ -132,9 +132,7 @@ class Bend(Jointed):
             section,
             [half, *[2.0 * half] * (self.gores - 2), half],
             [Turn(2.0 * self.mitre, self.turns_to)] * (self.gores - 1),
-            distance=neutral_distance(
-                thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-            ),
+            distance=self.distance(section),
             edge=joint_edge(self),
         )
 
@@ -272,6 +270,7 @@ class Bend(Jointed):
             f"radius {short(radius)} to the axis",
             held=edge.held("lengths", "cuts"),
             units=units,
+            around=section,
             place=f"throat at {direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}",
             more=(
                 f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}",

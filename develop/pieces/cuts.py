@@ -9,6 +9,7 @@ import numpy as np
 
 from develop.errors import Refusal
 from develop.solid import End, MitredEnd, Solid, cut_slopes
+from develop.surfaces.band import Band, BandSheet
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Plane
@@ -18,7 +19,7 @@ if TYPE_CHECKING:
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["cylinder_between", "cylinder_solid", "end_of", "shortest", "steepest", "trim"]
+__all__ = ["band_solid", "cylinder_between", "cylinder_solid", "end_of", "shortest", "steepest", "trim"]
 
 
 def trim(cut: Cut | None, *, height: float, end_b: bool) -> Plane:
@@ -110,4 +111,19 @@ def end_of(surface: Cylinder, end: str) -> End:
         height=plane.height,
         rise=plane.rise,
         upper=trim.upper,
+    )
+
+
+def band_solid(surface: Band, sheet: BandSheet, seam: float) -> Solid:
+    """The finished piece of a band; seam is a parameter of end A's section, that of its sheet."""
+    cut = surface.cut_b
+    return Solid(
+        End.placed(surface.rim_a.section, surface.rim_a.frame),
+        End.placed(surface.rim_b.section, surface.rim_b.frame),
+        side="hull",
+        seam=seam,
+        seam_b=sheet.seam_b,
+        distance=surface.distance,
+        cut_b=(cut.height, cut.rise) if cut else None,
+        level=surface.level,
     )

@@ -64,9 +64,9 @@ class Offset(Jointed):
         """The three legs, from end A to end B. Raises Refusal."""
         from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
-        from develop.pieces.wall import PLACES, given_section, neutral_distance, reach
+        from develop.pieces.wall import PLACES, reach
 
-        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        section = self.in_wall(self.section, field="section")
         aside = hypot(*self.offset)
         if self.middle < _LEAST_SIDE:
             raise Refusal(
@@ -81,9 +81,7 @@ class Offset(Jointed):
             section,
             [self.ends, self.middle, self.ends],
             [Turn(self.angle, towards), Turn(self.angle, towards + pi)],
-            distance=neutral_distance(
-                thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-            ),
+            distance=self.distance(section),
             edge=joint_edge(self),
         )
 
@@ -145,10 +143,11 @@ class Offset(Jointed):
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
+        section = legs[0].surface.section
         built = built_of(
             legs,
-            self._seams(legs[0].surface.section),
-            wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
+            self._seams(section),
+            wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
             edge=joint_edge(self),
@@ -156,7 +155,7 @@ class Offset(Jointed):
         )
         return seam_warnings(built, clear=self.clear)
 
-    def _wording(self, sheet: Sheet, numbers: tuple[int, ...], units: str) -> Wording:
+    def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""
         from develop.pieces.joint_edge import joint_edge
 
@@ -172,6 +171,7 @@ class Offset(Jointed):
             f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
             held=edge.held("lengths", "cuts"),
             units=units,
+            around=section,
             more=(
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
                 f"{measured_words(on_axis, units)} long on the axis",

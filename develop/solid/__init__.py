@@ -10,6 +10,7 @@ from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.template import FlatTemplate, FloorOutlines
 from develop.solid.touching import MitredEnd, StandingEnd, TouchingEnd
 from develop.solid.wall import Mesh, plate, wall
 
@@ -17,6 +18,8 @@ __all__ = [
     "End",
     "FlatPlate",
     "FlatRing",
+    "FlatTemplate",
+    "FloorOutlines",
     "Frame",
     "Holes",
     "Made",
@@ -36,5 +39,5 @@ __all__ = [
     "wall",
 ]
 
-Made = Solid | FlatRing | FlatPlate | Patch
+Made = Solid | FlatRing | FlatPlate | FlatTemplate | FloorOutlines | Patch
 """The finished shape of any one part."""
