@@ -10,8 +10,9 @@ from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.checks.fold import closing_miss, folded
 from develop.checks.joint import Side, joint_miss
-from develop.checks.marked import drawn_miss, marks_miss, roll_lines_miss, table_miss
+from develop.checks.marked import all_places, drawn_miss, marks_miss, roll_lines_miss, table_miss
 from develop.checks.openings import opening_miss
+from develop.pattern.curve import Curve
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid.meeting import MeetingEnd
 from develop.solid.solid import Solid
@@ -73,6 +74,7 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     """
     net = pattern.net
     girths = dict(zip("ab", solid.girths(), strict=True))
+    whole = "girth" if solid.stop is None else "stretch of the girth"
     checks = []
     for name, girth in girths.items():
         curve = net.curve(name)
@@ -82,18 +84,12 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         limit = max(_SMALLEST, share * girth, _ROUNDING * max(girths.values()))
         drawn = drawn_length(curve) if curve else 0.0
         end = f"edge at END {name.upper()}"
-        checks.append(Check(f"{end} against the girth", girth, length, limit, "mm"))
-        checks.append(Check(f"{end} as drawn, against the girth", girth, drawn, _DRAWN_LENGTH, "mm"))
+        checks.append(Check(f"{end} against the {whole}", girth, length, limit, "mm"))
+        checks.append(Check(f"{end} as drawn, against the {whole}", girth, drawn, _DRAWN_LENGTH, "mm"))
     left, right = (net.curve(f"seam_{side}") for side in ("left", "right"))
     assert left is not None
     assert right is not None
-    seam = solid.seam_line
-    true_length = float(np.linalg.norm(seam[1] - seam[0]))
-    limit = max(1e-6, _RELATIVE * true_length)
-    checks += [
-        Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
-        Check("seam against the finished piece", true_length, drawn_length(left), limit, "mm"),
-    ]
+    checks += _seams(solid, left, right, inside_up=pattern.face == "inside")
     area = solid.measures.area - sum(joint.opened for joint in solid.openings)
     got = net.area - sum(opening.area for opening in pattern.openings)
     lines = folded(pattern, solid)
@@ -119,12 +115,35 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("roll lines, largest distance from the lines", 0.0, roll_off, _DRAWN, "mm"),
         Check("roll lines, largest error of a turn", 0.0, turn_off, _TURN, "degrees"),
         Check("table, largest error", 0.0, table_miss(pattern, solid), _TABLE, "mm"),
-        Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm"),
+        *(
+            [Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm")]
+            if solid.stop is None or all_places(pattern)
+            else []
+        ),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
     for outline, joint in zip(pattern.openings, solid.openings, strict=True):
         checks += _opening(pattern, solid, outline, joint)
     return tuple(checks)
+
+
+def _seams(solid: Solid, left: Curve, right: Curve, *, inside_up: bool) -> list[Check]:
+    """The checks of the seams of a pattern against the lines of the finished piece that they lie on."""
+    true_left, true_right = (
+        float(np.linalg.norm(line[1] - line[0])) for line in (solid.seam_line, solid.stop_line)
+    )
+    if inside_up:
+        true_left, true_right = true_right, true_left
+    limit = max(1e-6, _RELATIVE * max(true_left, true_right))
+    if solid.stop is None:
+        return [
+            Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
+            Check("seam against the finished piece", true_left, drawn_length(left), limit, "mm"),
+        ]
+    return [
+        Check(f"{side} seam against the finished piece", true, drawn_length(curve), limit, "mm")
+        for side, true, curve in (("left", true_left, left), ("right", true_right, right))
+    ]
 
 
 def _opening(pattern: Pattern, solid: Solid, outline: Outline, joint: MeetingEnd) -> list[Check]:

@@ -21,8 +21,8 @@ _CHORDS = 1e-3  # [mm]
 
 @dataclass(frozen=True)
 class Side:
-    """One side of a joint: end `a` or `b` of a rolled part or an edge of a flat one, and where the part
-    stands in the piece."""
+    """One side of a joint: end `a` or `b` of a rolled part, one of its seams or an edge of a flat one, and
+    where the part stands in the piece."""
 
     pattern: Pattern
     solid: Made
@@ -53,6 +53,12 @@ class Side:
         """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame."""
         if isinstance(self.solid, Solid):
             a, b, normal = folded(self.pattern, self.solid)
+            if self.end.startswith("seam"):
+                # Folded, the sheet has its outside up: what was drawn left may be right.
+                right = (self.end == "seam_right") != (self.pattern.face == "inside")
+                a, b, normal = (each[[-1 if right else 0]] for each in (a, b, normal))
+                points = np.vstack([a, b]) - self.solid.distance * np.vstack([normal, normal])
+                return points @ self.frame.axes + self.frame.origin
             points = (a if self.end == "a" else b) - self.solid.distance * normal
         else:
             assert not isinstance(self.solid, Patch)
@@ -64,7 +70,12 @@ class Side:
 
 
 def joint_miss(side: Side, other: Side) -> float:
-    """Largest distance [mm] of the one folded edge from the other part's end, and the other way round."""
+    """Largest distance [mm] of the one folded edge from the other part's end, and the other way round.
+
+    Folded seams are held to each other, end by end.
+    """
+    if side.end.startswith("seam"):
+        return float(np.linalg.norm(side.edge() - other.edge(), axis=1).max())
     misses = []
     for mine, yours in ((side, other), (other, side)):
         local = (mine.edge() - yours.frame.origin) @ yours.frame.axes.T

@@ -16,9 +16,10 @@ from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
+from develop.surfaces.part import SheetPart
 from develop.surfaces.sheet import Lines, Place, Sheet
 
-__all__ = ["Hole", "Wording", "dense", "pattern_of", "seam_parameter"]
+__all__ = ["Hole", "Share", "Wording", "dense", "pattern_of", "seam_parameter"]
 
 _FOLD_MISS = 2.4e-3
 # So close [mm] to the edges that the tangents of their parallels are good.
@@ -64,6 +65,18 @@ class Hole:
     texts: tuple[str, ...]
 
 
+@dataclass(frozen=True)
+class Share:
+    """How a part of a sheet stands among the others. parts: how many there are. first: number of its first
+    line, as drawn. divisions: of its own stretch of end A. beside: the parts left and right of it, outside up.
+    """
+
+    parts: int
+    first: int
+    divisions: int
+    beside: tuple[SheetPart, SheetPart]
+
+
 def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
     """Parameter of end A's section at which the seam runs.
 
@@ -94,6 +107,7 @@ def pattern_of(
     cutting: Cutting | None = None,
     holes: Sequence[Hole] = (),
     press: Press | None = None,
+    share: Share | None = None,
 ) -> Pattern:
     """The pattern of a sheet.
 
@@ -102,20 +116,17 @@ def pattern_of(
     turn_b: how far end B's section is turned in the piece frame [rad]. cutting: what is cut beyond the
     net line.
     holes: openings in the sheet, in the sheet's own coordinates. press: bent on a press brake, not
-    rolled: the lines and the divisions are then the press lines.
+    rolled: the lines and the divisions are then the press lines. share: of a sheet that is a part of one.
     """
     moved = section_a.offset(distance)
     ends = sheet.ends
-    steps = np.arange(divisions) / divisions
+    divisions = divisions if share is None else share.divisions
+    text_a, at_a = _directions(sheet, section_a.at_direction(_DIRECTIONS), "a")
+    text_b, at_b = (
+        _directions(sheet, section_b.at_direction(_DIRECTIONS - turn_b), "b") if section_b else (text_a, at_a)
+    )
     # Every ruling that is asked for, in one walk.
-    wanted = [
-        sheet.from_a(moved.at_arc(moved.arc(sheet.at_ends.u_a[:1]) + steps * moved.girth)),
-        sheet.from_a(section_a.at_direction(_DIRECTIONS)),
-        sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b))
-        if section_b
-        else sheet.from_a(section_a.at_direction(_DIRECTIONS)),
-        ends[np.array([0, -1])],
-    ]
+    wanted = [_divided(sheet, moved, divisions), at_a, at_b, ends[np.array([0, -1])]]
     # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
     bends = press_lines(sheet, section_a, press) if press else None
     drawn = wanted if bends is None else [*wanted, bends.place]
@@ -131,7 +142,11 @@ def pattern_of(
     bare = Outline(_outline(sheet), sheet.area)
     added = cutting or Cutting()
     close_by = _outline(sheet, tolerance=_FINE) if added.allowances or added.folds or added.inner else ()
-    whole = allowed(bare, close_by, added.allowances)
+    beside = None
+    if share is not None and added.allowances:
+        left, right = (_outline(each, tolerance=_FINE) for each in share.beside)
+        beside = left, right
+    whole = allowed(bare, close_by, added.allowances, beside=beside)
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)
     cut = net if whole is bare else Outline(view.contour(whole.curves), whole.area)
@@ -142,12 +157,17 @@ def pattern_of(
         # The lines to mark out are then the seams and the press lines.
         rows_at = view.lines(found.take([first, *range(counts[5], counts[6]), last]))
         lines = _bent_lines(rows_at, bends, mirror=view.mirror)
-    rows = _divisions(rows_at, section_a)
+    number = 0 if share is None else share.first
+    rows = _divisions(rows_at, section_a, number)
+    # A part has the marks on its two seams already.
+    seams = (first, last) if share is None else None
     marks = [
         mark
-        for i, (edge, whole) in enumerate((("a", sheet.edge_a), ("b", sheet.edge_b)))
+        for i, (edge, whole, texts) in enumerate((("a", sheet.edge_a, text_a), ("b", sheet.edge_b, text_b)))
         if net.curve(edge) is not None
-        for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
+        for mark in _witness(
+            found, range(counts[i + 1], counts[i + 2]), seams, view, edge, whole, texts
+        )
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
     more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)
@@ -168,7 +188,7 @@ def pattern_of(
         full_lines=wording.full_lines or bends is not None,
         rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
         flow=wording.flow,
-        figures=() if bends is None else (bends.figures(mirror=view.mirror),),
+        figures=() if bends is None else (bends.figures(mirror=view.mirror, first=number + 1),),
         units=wording.units,
         seam_words=wording.seam_words,
         folds=view.curves([_beside(dict(close_by), name, out) for name, out in added.folds]),
@@ -241,11 +261,30 @@ def _bent_lines(at: Lines, bends: PressLines, *, mirror: bool) -> tuple[RollLine
     return tuple(found)
 
 
-def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
+def _directions(sheet: Sheet, u: Array, end: str) -> tuple[list[str], Place]:
+    """The rulings through the points u (4,) of an end's section that have a word, and the words."""
+    if isinstance(sheet, SheetPart):
+        which, place = sheet.found(sheet.whole.from_a(u) if end == "a" else sheet.whole.from_b(u))
+        return [_WORDS[i] for i in which], place
+    return list(_WORDS), sheet.from_a(u) if end == "a" else sheet.from_b(u)
+
+
+def _divided(sheet: Sheet, section: Section, divisions: int) -> Place:
+    """The rulings at equal arcs of the section of end A, from the left seam on but for the right one."""
+    steps = np.arange(divisions) / divisions
+    start, stop = sheet.at_ends.u_a[[0]], sheet.at_ends.u_a[[-1]]
+    if not isinstance(sheet, SheetPart):
+        return sheet.from_a(section.at_arc(section.arc(start) + steps * section.girth))
+    first = section.arc(start)
+    inner = sheet.from_a(section.at_arc(first + steps[1:] * ((section.arc(stop) - first) % section.girth)))
+    return Place(np.append(0, inner.panel), np.append(-1.0, inner.x))
+
+
+def _divisions(at: Lines, section: Section, first: int) -> tuple[Division, ...]:
     directions = section.direction(at.u_a)
     return tuple(
         Division(
-            number=i,
+            number=first + i,
             direction=float(directions[i]),
             arc_a=float(at.arc_a[i]),
             arc_b=float(at.arc_b[i]),
@@ -258,17 +297,25 @@ def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
 
 
 def _witness(
-    found: Lines, which: Sequence[int], seams: tuple[int, int], view: _View, edge: str, whole: float
+    found: Lines,
+    which: Sequence[int],
+    seams: tuple[int, int] | None,
+    view: _View,
+    edge: str,
+    whole: float,
+    words: Sequence[str],
 ) -> list[WitnessMark]:
     """Marks at right, top, left and bottom of one edge; one on the seam is made on both its sides.
 
-    which: the rulings of the four marks among those found; seams: those of the left and right seam.
+    which: the rulings of the marks among those found; words: of the marks. seams: the rulings of the left
+    and right seam, None for a part, whose own seams are not one line.
     """
     arcs = getattr(found, f"arc_{edge}")
     rows: list[int] = []
     texts: list[str] = []
-    for i, text in zip(which, _WORDS, strict=True):
-        places = seams if min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole else (i,)
+    for i, text in zip(which, words, strict=True):
+        on_seam = seams is not None and min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole
+        places = seams if seams is not None and on_seam else (i,)
         rows += places
         texts += [text] * len(places)
     order = rows[::-1] if view.mirror else rows

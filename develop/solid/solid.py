@@ -6,7 +6,7 @@ Nothing here knows how the side is unrolled; it is what the pattern is checked a
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Literal
 
@@ -59,6 +59,9 @@ class Solid:
     distance: of the developed sheet outside the surface that carries the ends [mm].
     openings: where branches meet this side, placed in its frame.
     cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
+    stop: of a part of the side, which runs from the seam to the line between these parameters of both
+        ends' sections, each at or beyond the seam's; None for the whole side.
+    joints: of a side made in parts, the lines beside the seam at which it is parted, given likewise.
     """
 
     end_a: End
@@ -69,6 +72,23 @@ class Solid:
     distance: float = 0.0
     cut_b: tuple[float, Array] | None = None
     openings: tuple[MeetingEnd, ...] = ()
+    stop: tuple[float, float] | None = None
+    joints: tuple[tuple[float, float], ...] = ()
+
+    def part(self, number: int) -> Solid:
+        """The part of that number, counted from 0 at the seam, of a side made in parts."""
+        start = (self.seam, self._seam_b)
+        lines = (start, *self.joints, self._once_round(start))
+        (seam, seam_b), stop = lines[number], lines[number + 1]
+        return replace(self, seam=seam, seam_b=seam_b, stop=stop, joints=(), openings=())
+
+    @property
+    def _seam_b(self) -> float:
+        assert self.seam_b is not None, "a side made in parts knows both ends of its seam"
+        return self.seam_b
+
+    def _once_round(self, line: tuple[float, float]) -> tuple[float, float]:
+        return line[0] + self.end_a.section.period, line[1] + self.end_b.section.period
 
     def strip(self, u: Array) -> Strip:
         """The side's straight lines through end A at its section's parameter u (n,)."""
@@ -91,7 +111,13 @@ class Solid:
     def girths(self) -> tuple[float, float]:
         """Lengths [mm] of the sheet's two edges, from the ends alone where it lies on them."""
         if self.distance == 0.0 and self.cut_b is None:
-            return self.end_a.girth, self.end_b.girth
+            if self.stop is None:
+                return self.end_a.girth, self.end_b.girth
+            if type(self.end_a) is End and type(self.end_b) is End:
+                return (
+                    self.end_a.stretch(self.seam, self.stop[0]),
+                    self.end_b.stretch(self._seam_b, self.stop[1]),
+                )
         return self.measures.edge_a, self.measures.edge_b
 
     def misses(self, a: Array, b: Array, u: Array) -> float:
@@ -174,7 +200,15 @@ class Solid:
             length = np.linalg.norm(velocity, axis=-1)
             return np.stack([length, 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)], axis=-1)
 
-        first = Panels.between(self._panel_ends(*ends))
+        panel_ends = self._panel_ends(*ends)
+        if self.stop is not None:
+            on_b = ends[0] is self.end_b
+            panel_ends = _clipped(
+                panel_ends, self._seam_b if on_b else self.seam, self.stop[1 if on_b else 0]
+            )
+            if len(panel_ends) < 2:
+                return 0.0, 0.0
+        first = Panels.between(panel_ends)
         whole = np.maximum(((WEIGHTS @ speeds(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
         size = float(max(np.abs(end.point(end.section.breaks)).max() for end in ends))
@@ -239,13 +273,39 @@ class Solid:
 
     @property
     def seam_line(self) -> Array:
-        """The seam (2, 3) [mm], from end A to end B."""
-        a = self.end_a.point(np.array([self.seam]))
+        """The seam (2, 3) [mm], from end A to end B; of a part its left one."""
         if self.seam_b is None:
-            return np.vstack([a, self.strip(np.array([self.seam])).b])
-        return np.vstack([a, self._cut(a, self.end_b.point(np.array([self.seam_b])))])
+            return np.vstack(
+                [self.end_a.point(np.array([self.seam])), self.strip(np.array([self.seam])).b]
+            )
+        return self._line(self.seam, self.seam_b)
+
+    @property
+    def stop_line(self) -> Array:
+        """The line (2, 3) [mm] at which the sheet ends: the seam, or the right one of a part."""
+        return self.seam_line if self.stop is None else self._line(*self.stop)
+
+    @property
+    def joint_lines(self) -> Array:
+        """The lines beside the seam at which the side is parted (k, 2, 3) [mm]."""
+        return np.array([self._line(*joint) for joint in self.joints]).reshape(-1, 2, 3)
+
+    def _line(self, u_a: float, u_b: float) -> Array:
+        """The line (2, 3) [mm] from end A to end B between these parameters of their sections."""
+        a = self.end_a.point(np.array([u_a]))
+        return np.vstack([a, self._cut(a, self.end_b.point(np.array([u_b])))])
 
     @property
     def top_line(self) -> Array:
         """The line (2, 3) [mm] at the top of end A."""
         return self.line_at(0.5 * np.pi)
+
+
+def _clipped(ends: Array, start: float, stop: float) -> Array:
+    """Panel ends (m + 1,) of one turn, carried on round and cut to a stretch from start to stop."""
+    period = float(ends[-1] - ends[0])
+    turns = np.floor((start - ends[0]) / period)
+    round_twice = np.concatenate([ends[:-1], ends + period]) + turns * period
+    near = _SAME * period
+    inner = round_twice[(round_twice > start + near) & (round_twice < stop - near)]
+    return np.concatenate([[start], inner, [stop]]) if stop > start + near else np.array([start])
