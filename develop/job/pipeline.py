@@ -116,7 +116,8 @@ def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
 
 def checks_of(built: Built) -> tuple[Check, ...]:
     """Every check of a piece: of each part, named by its mark where there are several, and of the joints."""
-    from develop.checks import Side, check_joint, check_part
+    from develop.checks import Side, check_divided, check_joint, check_part
+    from develop.solid import Solid
 
     found: list[Check] = []
     for part in built.parts:
@@ -134,6 +135,14 @@ def checks_of(built: Built) -> tuple[Check, ...]:
         ]
         name = joint.name or " to ".join(side.pattern.mark for side in sides)
         found += check_joint(name, *sides)
+    for side in built.divided:
+        parts = [built.parts[number] for number in side.parts]
+        used = [
+            (part.pattern, part.solid, part.frames, numbers)
+            for part, numbers in zip(parts, side.numbers, strict=True)
+            if isinstance(part.solid, Solid)
+        ]
+        found += check_divided("parts", used, side.solid)
     return tuple(found)
 
 

@@ -318,6 +318,8 @@ def _witness(
         places = seams if seams is not None and on_seam else (i,)
         rows += places
         texts += [text] * len(places)
+    if not rows:
+        return []
     order = rows[::-1] if view.mirror else rows
     at = view.lines(found.take(order))
     points, tangents, arcs = (at.a, at.tangent_a, at.arc_a) if edge == "a" else (at.b, at.tangent_b, at.arc_b)

@@ -8,9 +8,9 @@ from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
     from develop.pattern.pattern import Pattern
-    from develop.solid import Frame, Made, Placed
+    from develop.solid import Frame, Made, Placed, Solid
 
-__all__ = ["Built", "Joint", "Part", "one"]
+__all__ = ["Built", "Divided", "Joint", "Part", "one"]
 
 
 @dataclass(frozen=True)
@@ -31,7 +31,7 @@ class Part:
 class Joint:
     """Two edges that meet: end `end` of part number `part` with end `other_end` of part `other`.
 
-    An end is `a` or `b` of a rolled part, or an edge of a flat one by name.
+    An end is `a` or `b` of a rolled part or one of its seams by name, or an edge of a flat one.
 
     place, other_place: which of the parts' frames they stand in.
     name: of the joint, in checks; else the marks of the two patterns.
@@ -47,9 +47,22 @@ class Joint:
 
 
 @dataclass(frozen=True)
+class Divided:
+    """A side made in parts. solid: the whole of it, in the frame that the parts' frames are given in.
+
+    parts: the numbers of its parts in the piece. numbers: of the places that each of them is used at.
+    """
+
+    solid: Solid
+    parts: tuple[int, ...]
+    numbers: tuple[tuple[int, ...], ...]
+
+
+@dataclass(frozen=True)
 class Built:
     """The parts of one piece, the joints between them, and what whoever makes it is to be warned of.
 
+    divided: the sides that are made in several of these parts.
     both_hands: the piece is its own mirror image, and serves as its opposite hand too.
     """
 
@@ -57,6 +70,7 @@ class Built:
     joints: tuple[Joint, ...] = ()
     warned: tuple[str, ...] = ()
     both_hands: bool = False
+    divided: tuple[Divided, ...] = ()
 
     @property
     def warnings(self) -> tuple[str, ...]:
@@ -76,15 +90,18 @@ class Built:
 
     @property
     def placed(self) -> tuple[Placed, ...]:
-        """Every rolled part where it stands in the piece, as often as it is used."""
-        from develop.solid import Placed, Solid
+        """Every rolled part where it stands in the piece, as often as it is used; a side made in parts whole."""
+        from develop.solid import Frame, Placed, Solid
 
-        return tuple(
-            Placed(part.solid, frame)
-            for part in self.parts
-            if isinstance(part.solid, Solid)
-            for frame in part.frames
-        )
+        first = {side.parts[0]: side.solid for side in self.divided}
+        others = {number for side in self.divided for number in side.parts[1:]}
+        found: list[Placed] = []
+        for number, part in enumerate(self.parts):
+            if number in first:
+                found.append(Placed(first[number], Frame.square()))
+            elif isinstance(part.solid, Solid) and number not in others:
+                found += (Placed(part.solid, frame) for frame in part.frames)
+        return tuple(found)
 
     def with_patterns(self, patterns: Sequence[Pattern]) -> Built:
         """The same piece with other patterns for its parts."""

@@ -16,11 +16,12 @@ from develop.pieces.field_types import (
     Number,
 )
 from develop.pieces.fields import Piece, about
+from develop.pieces.part_types import MADE_IN, STOCK
 from develop.pieces.rule_types import EDGE, SEAM_RULE
 from develop.pieces.wording import edges_words, sizes_words, wall_words
 
 if TYPE_CHECKING:
-    from develop.pieces.assemble import Wording
+    from develop.pieces.assemble import Share, Wording
     from develop.pieces.cutting import Cutting
     from develop.sections.text import SectionSpec
     from develop.surfaces.sheet import Sheet
@@ -155,6 +156,16 @@ class Plate(Marked):
         default=0.0,
         metadata=about(_SMALL, "added to the girth for what the welds of its seams draw in", own=False),
     )
+    made_in: int | str = field(
+        default=1,
+        metadata=about(
+            MADE_IN, "in how many parts, divided along its lines; fit: as few as go into the stock", own=False
+        ),
+    )
+    stock: tuple[float, float] = field(
+        default=(2500.0, 1250.0),
+        metadata=about(STOCK, "size of the sheets in the rack, which the parts go into for fit", own=False),
+    )
     rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)
@@ -167,11 +178,14 @@ class Plate(Marked):
         super().check()
         rules_of(self)
 
-    def cutting(self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str) -> Cutting:
-        """What is cut beyond the net line of a sheet; see `cutting_of`."""
+    def cutting(
+        self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str, share: Share | None = None
+    ) -> Cutting:
+        """What is cut beyond the net line of a sheet; see `cutting_of`. share: of a sheet that is a part."""
         from develop.pieces.cutting import cutting_of
 
-        return cutting_of(self, sheet, joints=joints, alone=alone, units=units)
+        parts = 1 if share is None else share.parts
+        return cutting_of(self, sheet, joints=joints, alone=alone, units=units, pieces_round=parts)
 
     def wording(
         self,
@@ -186,7 +200,7 @@ class Plate(Marked):
     ) -> Wording:
         """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes, and
         further lines of the kind's own."""
-        from develop.pieces.assemble import Wording
+        from develop.pieces.assemble import Share, Wording
 
         # A pipe's size is its outside, also where lengths and cuts are asked for elsewhere.
         elsewhere = self.sizes != "outside" and any(spec.outside for spec in sections)

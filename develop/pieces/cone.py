@@ -16,9 +16,12 @@ from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.sections.section import Section
     from develop.surfaces.band import Band
+    from develop.surfaces.sheet import Sheet
     from develop.surfaces.trim import Plane
 
 __all__ = ["Cone"]
@@ -155,30 +158,34 @@ class Cone(Plate):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
+        from develop.pieces.parting import parted
         from develop.solid import End, Solid
 
         surface = self.surface()
         section = surface.rim_a.section
         seam = seam_parameter(section, surface.lengths, self.seam_at)
         sheet = surface.sheet(seam)
-        pattern = pattern_of(
-            sheet,
-            section,
-            None,
-            wording=self.wording(
-                sheet,
-                (self.section,),
-                sizes=f"{section_words(self.section, units)}, cone, height to the apex "
-                f"{size_words(self.height, units)}",
-                place=f"{self._apex_words(units)}, {self._cut_words(units)}",
-                held="heights",
-                units=units,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            cutting=self.cutting(sheet, units=units),
-        )
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            return pattern_of(
+                flat,
+                section,
+                None,
+                wording=self.wording(
+                    flat,
+                    (self.section,),
+                    sizes=f"{section_words(self.section, units)}, cone, height to the apex "
+                    f"{size_words(self.height, units)}",
+                    place=f"{self._apex_words(units)}, {self._cut_words(units)}",
+                    held="heights",
+                    units=units,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                cutting=self.cutting(flat, units=units, share=share),
+                share=share,
+            )
+
         plane = self._plane(self.cut_b) if self.cut_b else None
         solid = Solid(
             End.placed(section, surface.rim_a.frame),
@@ -189,7 +196,7 @@ class Cone(Plate):
             distance=surface.distance,
             cut_b=(plane.height, plane.rise) if plane else None,
         )
-        return one(pattern, solid)
+        return parted(self, sheet, solid, drawn, units=units)
 
     def _apex_words(self, units: str) -> str:
         if self.apex_offset == (0.0, 0.0):

@@ -13,8 +13,11 @@ from develop.pieces.wording import cut_words, section_words, size_words
 from develop.sections.text import SectionSpec
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.surfaces.cylinder import Cylinder
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Straight"]
 
@@ -50,28 +53,31 @@ class Straight(Plate):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal where a cut runs past the other end."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
         from develop.pieces.cuts import cylinder_solid
+        from develop.pieces.parting import parted
 
         surface = self.surface()
         section = surface.section
         seam = seam_parameter(section, surface.lengths, self.seam_at)
-        flat = surface.sheet(seam)
         a, b = cut_words(self.cut_a), cut_words(self.cut_b)
-        pattern = pattern_of(
-            flat,
-            section,
-            section,
-            wording=self.wording(
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            return pattern_of(
                 flat,
-                (self.section,),
-                sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
-                place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
-                held="length and cuts" if not a == b == "square" else "length",
-                units=units,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            cutting=self.cutting(flat, units=units),
-        )
-        return one(pattern, cylinder_solid(surface, seam))
+                section,
+                section,
+                wording=self.wording(
+                    flat,
+                    (self.section,),
+                    sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
+                    place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
+                    held="length and cuts" if not a == b == "square" else "length",
+                    units=units,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                cutting=self.cutting(flat, units=units, share=share),
+                share=share,
+            )
+
+        return parted(self, surface.sheet(seam), cylinder_solid(surface, seam), drawn, units=units)

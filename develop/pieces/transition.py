@@ -23,10 +23,13 @@ _CLEAR = 1e-3
 _HALVINGS = 50
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.sections.section import Section
     from develop.solid import Rim
     from develop.surfaces.band import Band
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Transition"]
 
@@ -186,8 +189,8 @@ class Transition(Plate):
         from math import degrees
 
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
         from develop.pieces.chord import with_chords
+        from develop.pieces.parting import parted
         from develop.pieces.press import Press
         from develop.solid import End, Solid
 
@@ -202,24 +205,30 @@ class Transition(Plate):
         place.append(shift_words(right, up, units))
         if self.rotate and self.end_b.width != self.end_b.height:  # a round end looks the same turned
             place.append(f"rotated {number_text(round(degrees(self.rotate), 6))}°")
-        pattern = pattern_of(
-            sheet,
-            a.section,
-            b.section,
-            wording=self.wording(
-                sheet,
-                (self.end_a, self.end_b),
-                sizes=f"END A {section_words(self.end_a, units)} to END B {section_words(self.end_b, units)}",
-                place=", ".join([*place, *self._tilt_words()]),
-                held="length",
-                units=units,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            turn_b=self.rotate,
-            cutting=self.cutting(sheet, units=units),
-            press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
-        )
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            pattern = pattern_of(
+                flat,
+                a.section,
+                b.section,
+                wording=self.wording(
+                    flat,
+                    (self.end_a, self.end_b),
+                    sizes=f"END A {section_words(self.end_a, units)} to END B "
+                    f"{section_words(self.end_b, units)}",
+                    place=", ".join([*place, *self._tilt_words()]),
+                    held="length",
+                    units=units,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                turn_b=self.rotate,
+                cutting=self.cutting(flat, units=units, share=share),
+                press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
+                share=share,
+            )
+            return with_chords(pattern, self.swing)
+
         solid = Solid(
             End.placed(a.section, a.frame),
             End.placed(b.section, b.frame),
@@ -228,7 +237,7 @@ class Transition(Plate):
             seam_b=sheet.seam_b,
             distance=surface.distance,
         )
-        return one(with_chords(pattern, self.swing), solid)
+        return parted(self, sheet, solid, drawn, units=units, opposite=True)
 
     def _tilt_words(self) -> tuple[str, ...]:
         from math import degrees
