@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
+from math import fsum
 
 import numpy as np
 
@@ -51,18 +53,19 @@ class Check:
         return bool(abs(self.got - self.expected) <= self.limit)
 
 
-def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
+def check_joint(name: str, side: Sequence[Side], other: Sequence[Side]) -> tuple[Check, ...]:
     """The checks of a joint: equal edges that lie on each other within the limit of the closing check.
 
-    Where one sheet is developed on another surface than its edge lies on, the lengths differ.
+    side, other: of each of the two, all the parts that have the edge. Where one sheet is developed on
+    another surface than its edge lies on, the lengths differ.
     """
-    limit = max(_SMALLEST, _RELATIVE * side.length)
-    found = Check(
-        f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"
-    )
-    if side.distance != other.distance:
+    length, expected = (fsum(each.length for each in parts) for parts in (other, side))
+    limit = max(_SMALLEST, _RELATIVE * expected)
+    miss = max(joint_miss(mine, yours) for mine in side for yours in other)
+    found = Check(f"{name}: largest distance of the folded edges", 0.0, miss, _CLOSING, "mm")
+    if side[0].distance != other[0].distance:
         return (found,)
-    return (Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"), found)
+    return (Check(f"{name}: edges that are joined", expected, length, limit, "mm"), found)
 
 
 def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:

@@ -37,12 +37,10 @@ def check_divided(name: str, parts: Sequence[_Used], whole: Solid) -> tuple[Chec
         curves = [(pattern.net.curve(end), len(frames)) for pattern, _, frames, _ in parts]
         total = fsum(curve.length * count for curve, count in curves if curve is not None)
         limit = max(_SMALLEST, (_RELATIVE if whole.cut_b is None else _MEASURED) * girth)
-        found.append(
-            Check(f"{name}: edges at END {end.upper()} of all parts", girth, total, limit, "mm")
-        )
+        found.append(Check(f"{name}, edges at END {end.upper()}", girth, total, limit, "mm"))
     area = whole.measures.area
     total = fsum(pattern.net.area * len(frames) for pattern, _, frames, _ in parts)
-    found.append(Check(f"{name}: area of all parts", area, total, max(1e-6, _AREA * area), "mm²"))
+    found.append(Check(f"{name}, area", area, total, max(1e-6, _AREA * area), "mm²"))
     for pattern, solid, frames, numbers in parts:
         if len(frames) < 2:
             continue
@@ -51,14 +49,12 @@ def check_divided(name: str, parts: Sequence[_Used], whole: Solid) -> tuple[Chec
         for frame, number in zip(frames, numbers, strict=True):
             at = (a @ frame.axes + frame.origin, b @ frame.axes + frame.origin, normal @ frame.axes)
             lift = whole.distance * at[2]
-            end = whole.end_a
-            x, y = ((at[0] - lift - end.origin) @ end.back.T).T
-            u = end.section.at_direction(np.arctan2(y, x))
+            first = whole.end_a
+            x, y = ((at[0] - lift - first.origin) @ first.back.T).T
+            u = first.section.at_direction(np.arctan2(y, x))
             worst = max(worst, whole.misses(at[0] - lift, at[1] - lift, u))
             if not all_places(pattern):
                 marked = max(marked, marks_miss(pattern, at, whole, place=number))
         found.append(Check(f"{pattern.mark}: at all its places, from the ends", 0.0, worst, _CLOSING, "mm"))
-        found.append(
-            Check(f"{pattern.mark}: witness marks at all its places", 0.0, marked, _CLOSING, "mm")
-        )
+        found.append(Check(f"{pattern.mark}: witness marks at all its places", 0.0, marked, _CLOSING, "mm"))
     return tuple(found)

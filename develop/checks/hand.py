@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 
@@ -53,16 +53,10 @@ def _miss(part: Made, here: Frame, other: Made, there: Frame) -> float:
 
 
 def _told_apart(parts: Sequence[_Placed]) -> list[_Placed]:
-    """The parts, but of those of one flat ring only the first, as all lie on the same curves; and of a
-    side made in parts the side."""
+    """The parts, but of those of one flat ring only the first: all lie on the same curves."""
     found: list[_Placed] = []
-    sides: list[tuple[End, End]] = []
     for part, frames in parts:
-        if isinstance(part, Solid) and part.stop is not None:
-            if not any(a is part.end_a and b is part.end_b for a, b in sides):
-                sides.append((part.end_a, part.end_b))
-                found.append((replace(part, stop=None), frames[:1]))
-        elif not isinstance(part, FlatRing):
+        if not isinstance(part, FlatRing):
             found.append((part, frames))
         elif not any(isinstance(each, FlatRing) for each, _ in found):
             found.append((part, frames[:1]))

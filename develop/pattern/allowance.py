@@ -188,7 +188,7 @@ class _Whole:
 
 
 def _onto(seam: Curve, other: Curve) -> tuple[Array, Array]:
-    """The motion that brings a seam on to another: turn (2, 2) and shift (2,) [mm]; both lead up from end A."""
+    """The motion, turn (2, 2) and shift (2,) [mm], that lays a seam on another; both lead up from end A."""
     one, two = (np.arctan2(*(curve.end - curve.start)[::-1]) for curve in (seam, other))
     c, s = np.cos(two - one), np.sin(two - one)
     turn = np.array([[c, -s], [s, c]])

@@ -67,8 +67,10 @@ class Hole:
 
 @dataclass(frozen=True)
 class Share:
-    """How a part of a sheet stands among the others. parts: how many there are. first: number of its first
-    line, as drawn. divisions: of its own stretch of end A. beside: the parts left and right of it, outside up.
+    """How a part of a sheet stands among the others.
+
+    parts: how many there are. first: number of its first line, as drawn. divisions: of its own stretch of
+    end A. beside: the parts left and right of it, outside up.
     """
 
     parts: int
@@ -165,9 +167,7 @@ def pattern_of(
         mark
         for i, (edge, whole, texts) in enumerate((("a", sheet.edge_a, text_a), ("b", sheet.edge_b, text_b)))
         if net.curve(edge) is not None
-        for mark in _witness(
-            found, range(counts[i + 1], counts[i + 2]), seams, view, edge, whole, texts
-        )
+        for mark in _witness(found, range(counts[i + 1], counts[i + 2]), seams, view, edge, whole, texts)
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
     more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)

@@ -33,7 +33,8 @@ class Joint:
 
     An end is `a` or `b` of a rolled part or one of its seams by name, or an edge of a flat one.
 
-    place, other_place: which of the parts' frames they stand in.
+    place, other_place: which of the parts' frames they stand in. also, other_also: further parts with the
+    numbers of their frames, where a side in several parts has that end.
     name: of the joint, in checks; else the marks of the two patterns.
     """
 
@@ -44,18 +45,40 @@ class Joint:
     place: int = 0
     other_place: int = 0
     name: str = ""
+    also: tuple[tuple[int, int], ...] = ()
+    other_also: tuple[tuple[int, int], ...] = ()
+
+    @property
+    def sides(self) -> tuple[tuple[str, tuple[tuple[int, int], ...]], ...]:
+        """Both sides: the end and all the parts that have it, each with the number of its frame."""
+        return (
+            (self.end, ((self.part, self.place), *self.also)),
+            (self.other_end, ((self.other, self.other_place), *self.other_also)),
+        )
 
 
 @dataclass(frozen=True)
 class Divided:
-    """A side made in parts. solid: the whole of it, in the frame that the parts' frames are given in.
+    """A side made in parts. mark: of the whole side. solid: the whole side, in a frame of its own.
 
-    parts: the numbers of its parts in the piece. numbers: of the places that each of them is used at.
+    parts: the numbers of its parts in the piece. places: the frames of each of them in the side's own.
+    numbers: of those places, counted round the side from 1. frames: where the side stands in the piece.
     """
 
+    mark: str
     solid: Solid
     parts: tuple[int, ...]
+    places: tuple[tuple[Frame, ...], ...]
     numbers: tuple[tuple[int, ...], ...]
+    frames: tuple[Frame, ...]
+
+    def copies(self, copy: int) -> tuple[tuple[int, int], ...]:
+        """The parts of one of the sides like this, each with the number of its frame in the piece."""
+        return tuple(
+            (part, copy * len(places) + k)
+            for part, places in zip(self.parts, self.places, strict=True)
+            for k in range(len(places))
+        )
 
 
 @dataclass(frozen=True)
@@ -89,19 +112,68 @@ class Built:
         return self.parts[0].solid
 
     @property
-    def placed(self) -> tuple[Placed, ...]:
-        """Every rolled part where it stands in the piece, as often as it is used; a side made in parts whole."""
-        from develop.solid import Frame, Placed, Solid
+    def wholes(self) -> tuple[tuple[Made, tuple[Frame, ...]], ...]:
+        """Every part with the frames it stands in, the piece's own where it has none; a side made in parts as
+        a whole."""
+        from develop.solid import Frame
 
-        first = {side.parts[0]: side.solid for side in self.divided}
+        whole = {side.parts[0]: side for side in self.divided}
         others = {number for side in self.divided for number in side.parts[1:]}
-        found: list[Placed] = []
+        return tuple(
+            (whole[number].solid, whole[number].frames)
+            if number in whole
+            else (part.solid, part.frames or (Frame.square(),))
+            for number, part in enumerate(self.parts)
+            if number not in others
+        )
+
+    @property
+    def sides(self) -> tuple[tuple[str, Placed], ...]:
+        """Every rolled side where it stands in the piece, with its mark; one made in parts as a whole."""
+        from develop.solid import Placed, Solid
+
+        whole = {side.parts[0]: side for side in self.divided}
+        others = {number for side in self.divided for number in side.parts[1:]}
+        found: list[tuple[str, Placed]] = []
         for number, part in enumerate(self.parts):
-            if number in first:
-                found.append(Placed(first[number], Frame.square()))
+            if number in whole:
+                side = whole[number]
+                found += ((side.mark, Placed(side.solid, frame)) for frame in side.frames)
             elif isinstance(part.solid, Solid) and number not in others:
-                found += (Placed(part.solid, frame) for frame in part.frames)
+                found += ((part.pattern.mark, Placed(part.solid, frame)) for frame in part.frames)
         return tuple(found)
+
+    @property
+    def placed(self) -> tuple[Placed, ...]:
+        """Every rolled side where it stands in the piece."""
+        return tuple(placed for _, placed in self.sides)
+
+    def placed_at(self, frames: Sequence[Frame], *, first: int = 0) -> Built:
+        """The same, of one side only, standing at some frames of a larger piece.
+
+        first: the number that its first part has there.
+        """
+        if not self.divided:
+            return replace(self, parts=tuple(replace(part, frames=tuple(frames)) for part in self.parts))
+        (side,) = self.divided
+        parts = tuple(
+            replace(part, frames=tuple(_within(place, frame) for frame in frames for place in places))
+            for part, places in zip(self.parts, side.places, strict=True)
+        )
+        joints = tuple(
+            replace(joint, part=joint.part + first, other=joint.other + first) for joint in self.joints
+        )
+        numbers = tuple(first + number for number in side.parts)
+        return replace(
+            self,
+            parts=parts,
+            joints=joints,
+            divided=(replace(side, parts=numbers, frames=tuple(frames)),),
+        )
+
+    def copies(self, copy: int, *, first: int = 0) -> tuple[tuple[int, int], ...]:
+        """The parts of one of the places of a single side, each with the number of its frame there."""
+        return self.divided[0].copies(copy) if self.divided else ((first, copy),)
 
     def with_patterns(self, patterns: Sequence[Pattern]) -> Built:
         """The same piece with other patterns for its parts."""
@@ -114,3 +186,10 @@ def one(pattern: Pattern, solid: Made) -> Built:
     from develop.solid import Frame
 
     return Built((Part(pattern, solid, (Frame.square(),)),))
+
+
+def _within(place: Frame, frame: Frame) -> Frame:
+    """A frame that is given in another one, where that stands."""
+    from develop.solid import Frame
+
+    return Frame(place.origin @ frame.axes + frame.origin, place.axes @ frame.axes)

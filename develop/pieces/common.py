@@ -200,7 +200,7 @@ class Plate(Marked):
     ) -> Wording:
         """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes, and
         further lines of the kind's own."""
-        from develop.pieces.assemble import Share, Wording
+        from develop.pieces.assemble import Wording
 
         # A pipe's size is its outside, also where lengths and cuts are asked for elsewhere.
         elsewhere = self.sizes != "outside" and any(spec.outside for spec in sections)

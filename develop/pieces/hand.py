@@ -144,14 +144,14 @@ def _both(piece: Piece, count: int, units: str) -> Built:
 
 
 def _seam(piece: Piece, built: Built) -> float | None:
-    """Direction [rad] of the seam of a single rolled part that chose it itself.
+    """Direction [rad] of the seam of a single rolled side that chose it itself.
 
     Of two places that are equally short the one to the right is taken: mirrored, that is the left one.
     """
     from develop.solid import Solid
 
-    solid = built.parts[0].solid
-    if getattr(piece, "seam_at", None) != "shortest" or len(built.parts) > 1 or not isinstance(solid, Solid):
+    ((solid, _), *others) = built.wholes
+    if getattr(piece, "seam_at", None) != "shortest" or others or not isinstance(solid, Solid):
         return None
     import numpy as np
 

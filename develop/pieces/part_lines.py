@@ -1,4 +1,4 @@
-"""Where a side is parted: rulings that share the girth of end A equally, or lie on the flats between bends."""
+"""Where a side is parted: at lines that share the girth of end A, or on the flats between bends."""
 
 from __future__ import annotations
 

@@ -13,7 +13,7 @@ from develop.errors import Refusal
 from develop.pattern.pattern import Figures, Pattern
 from develop.pattern.stock import Lying, lying_in, outline_hull, smallest
 from develop.pieces.alike import alike, marks_of, motion
-from develop.pieces.assemble import Share
+from develop.pieces.assemble import Hole, Share
 from develop.pieces.built import Built, Divided, Joint, Part, one
 from develop.pieces.part_lines import part_lines
 from develop.pieces.part_types import FIT, MOST_PARTS
@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from develop.pieces.common import Plate
     from develop.quadrature import Array
 
-__all__ = ["Draw", "parted"]
+__all__ = ["Draw", "holes_on", "parted"]
 
 Draw = Callable[[Sheet, Share | None], Pattern]
 """Makes the pattern of a sheet: of a whole one, or of a part that stands so among the others."""
@@ -66,10 +66,10 @@ def parted(
         try:
             found = made(count)
         except Refusal as refusal:
-            # A side that is bent has only so many flats to be parted on.
-            if found is None or refusal.field != "made_in":
+            # Some numbers of parts cannot be: a line falls on an opening, or there are too few flats.
+            if refusal.problems[0].field != "made_in" or (found is None and count == MOST_PARTS):
                 raise
-            break
+            continue
         lying = [lying_in(outline_hull(pattern.cut), stock) for pattern in found.patterns]
         goes = [each for each in lying if each is not None]
         if len(goes) == len(lying):
@@ -78,6 +78,37 @@ def parted(
             )
     assert found is not None
     raise _no_stock(found, stock)
+
+
+def holes_on(sheet: Sheet, holes: Sequence[Hole]) -> tuple[Hole, ...]:
+    """Those holes of a whole sheet that lie on a sheet, in its coordinates: all of them, or those of a part.
+
+    Raises Refusal where a part line runs through one.
+    """
+    if not isinstance(sheet, SheetPart):
+        return tuple(holes)
+    lines = sheet.lines(sheet.ends[np.array([0, -1])])
+    along = lines.b - lines.a
+    found = []
+    for hole in holes:
+        here = replace(
+            hole,
+            controls=hole.controls @ sheet.turned.T,
+            points=hole.points @ sheet.turned.T,
+            tangents=hole.tangents @ sheet.turned.T,
+        )
+        gap = here.controls[:, None] - lines.a
+        right = along[:, 1] * gap[..., 0] - along[:, 0] * gap[..., 1] > 0.0
+        inside = right[:, 0] & ~right[:, 1]
+        if inside.all():
+            found.append(here)
+        elif inside.any():
+            raise Refusal(
+                field="made_in",
+                given="a part line runs through the opening",
+                allowed="another number of parts, or a seam elsewhere",
+            )
+    return tuple(found)
 
 
 def _goes(pattern: Pattern, lying: Lying, stock: tuple[float, float], units: str) -> Pattern:
@@ -138,23 +169,30 @@ def _divided(plate: Plate, lines: Place, sheet: Sheet, solid: Solid, draw: Draw)
     parts = tuple(_part(group, number, count, whole) for number, group in enumerate(groups, start=1))
     at = {place.number: (g, k) for g, group in enumerate(groups) for k, place in enumerate(group)}
     found = []
-    for number in range(1, count + 1):
-        after = number % count + 1
-        (part, place), (other, other_place) = at[number], at[after]
+    for joint in range(1, count + 1):
+        after = joint % count + 1
+        (part, where), (other, other_where) = at[joint], at[after]
         marks = " to ".join(parts[each].pattern.mark for each in (part, other))
         found.append(
-            Joint(part, "seam_right", other, "seam_left", place, other_place, f"JOINT {after}, {marks}")
+            Joint(part, "seam_right", other, "seam_left", where, other_where, f"JOINT {after}, {marks}")
         )
     numbers = tuple(tuple(place.number for place in group) for group in groups)
-    divided = Divided(whole, tuple(range(len(parts))), numbers)
+    divided = Divided(
+        mark=places[0].pattern.mark,
+        solid=whole,
+        parts=tuple(range(len(parts))),
+        places=tuple(part.frames for part in parts),
+        numbers=numbers,
+        frames=(Frame.square(),),
+    )
     return Built(parts, tuple(found), divided=(divided,))
 
 
-def _places(
-    plate: Plate, lines: Place, sheet: Sheet, whole: Solid, u_a: Array, draw: Draw
-) -> list[_Place]:
-    """The parts from left to right as they are drawn, each pattern's lines numbered on from the one before."""
+def _places(plate: Plate, lines: Place, sheet: Sheet, whole: Solid, u_a: Array, draw: Draw) -> list[_Place]:
+    """The parts from left to right as they are drawn, their lines numbered on from each to the next."""
     count = len(u_a) - 1
+    section = whole.end_a.section.offset(whole.distance)
+    shares = np.diff(section.arc(u_a)) / section.girth
     index = np.arange(count + 1)
     sheets = [SheetPart(sheet, lines[index[[k]]], lines[index[[k + 1]]]) for k in range(count)]
     directions = whole.end_a.section.direction(u_a).tolist()
@@ -164,7 +202,7 @@ def _places(
         share = Share(
             parts=count,
             first=found[-1].pattern.divisions[-1].number if found else 0,
-            divisions=max(round(plate.divisions * sheets[k].edge_a / sheet.edge_a), 1),
+            divisions=max(round(plate.divisions * shares[k]), 1),
             beside=(sheets[k - 1], sheets[(k + 1) % count]),
         )
         at = (directions[k + 1], directions[k]) if inside else (directions[k], directions[k + 1])
@@ -215,6 +253,8 @@ def _part(group: Sequence[_Place], number: int, count: int, whole: Solid) -> Par
         figures=figures,
     )
     here = whole.part(first.index)
+    if pattern.openings:
+        here = replace(here, openings=whole.openings)
     frames = [Frame.square(), *(motion(here, whole.part(place.index)) for place in group[1:])]
     return Part(pattern, here, tuple(frames))
 

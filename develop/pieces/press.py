@@ -64,7 +64,9 @@ class PressLines:
         step = -1 if mirror else 1
         rows = tuple(
             (str(n), f"{degrees(angle):.1f}", float(a), float(b))
-            for n, (angle, (a, b)) in enumerate(zip(self.angle[::step], self.short[::step], strict=True), first)
+            for n, (angle, (a, b)) in enumerate(
+                zip(self.angle[::step], self.short[::step], strict=True), first
+            )
         )
         heads = (("line", "no."), ("bent by", "degrees"), ("stops short", "of A"), ("stops short", "of B"))
         return Figures("Press lines", heads, rows)

@@ -114,7 +114,11 @@ class End:
         if turn < _SAME:
             return float(along[1] - along[0])
         kinks = self.section.kinks
-        back = np.linalg.solve(into, np.stack([np.cos(kinks), np.sin(kinks)])) if len(kinks) else np.zeros((2, 0))
+        back = (
+            np.linalg.solve(into, np.stack([np.cos(kinks), np.sin(kinks)]))
+            if len(kinks)
+            else np.zeros((2, 0))
+        )
         past = np.sort((np.arctan2(back[1], back[0]) - first) % (2.0 * np.pi))
         past = past[(past > _SAME) & (past < turn - _SAME)]
 

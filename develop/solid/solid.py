@@ -275,9 +275,7 @@ class Solid:
     def seam_line(self) -> Array:
         """The seam (2, 3) [mm], from end A to end B; of a part its left one."""
         if self.seam_b is None:
-            return np.vstack(
-                [self.end_a.point(np.array([self.seam])), self.strip(np.array([self.seam])).b]
-            )
+            return np.vstack([self.end_a.point(np.array([self.seam])), self.strip(np.array([self.seam])).b])
         return self._line(self.seam, self.seam_b)
 
     @property

@@ -20,6 +20,7 @@ class SheetPart:
 
     It is turned so that its two seams lean alike to either side of the upright; on a cylinder, whose
     rulings all stand upright, it stays as it is. Running lengths and turns count from its own left seam.
+    whole: the sheet. turned: the turn (2, 2) that its coordinates are taken through.
     """
 
     def __init__(self, whole: Sheet, start: Place, stop: Place) -> None:
@@ -27,20 +28,18 @@ class SheetPart:
         self.whole = whole
         first, last = float(_along(start)[0]), float(_along(stop)[0])
         inner = np.arange(1.0, len(whole.ends.panel) - 1.0)
-        bounds = np.concatenate(
-            [[first], inner[(inner > first + _SAME) & (inner < last - _SAME)], [last]]
-        )
+        bounds = np.concatenate([[first], inner[(inner > first + _SAME) & (inner < last - _SAME)], [last]])
         self._bounds = bounds
         self._panel = np.floor(0.5 * (bounds[:-1] + bounds[1:])).astype(np.int64)
         self._low = 2.0 * (bounds[:-1] - self._panel) - 1.0
         self._half = np.diff(bounds)
-        self._turn, self._first = np.eye(2), None
+        self.turned, self._first = np.eye(2), None
         at = whole.lines(self._in_whole(self.ends))
         leg = at.b - at.a
         lean = np.unwrap(np.arctan2(leg[:, 0], leg[:, 1]))
         middle = 0.5 * float(lean[0] + lean[-1])
         c, s = np.cos(middle), np.sin(middle)
-        self._turn = np.array([[c, -s], [s, c]])
+        self.turned = np.array([[c, -s], [s, c]])
         self._first = at.take([0])
         self.at_ends = self.lines(self.ends)
         self.edge_a, self.edge_b = float(self.at_ends.arc_a[-1]), float(self.at_ends.arc_b[-1])
@@ -85,10 +84,10 @@ class SheetPart:
             return at
         return replace(
             at,
-            a=at.a @ self._turn.T,
-            b=at.b @ self._turn.T,
-            tangent_a=at.tangent_a @ self._turn.T,
-            tangent_b=at.tangent_b @ self._turn.T,
+            a=at.a @ self.turned.T,
+            b=at.b @ self.turned.T,
+            tangent_a=at.tangent_a @ self.turned.T,
+            tangent_b=at.tangent_b @ self.turned.T,
             arc_a=at.arc_a - first.arc_a,
             arc_b=at.arc_b - first.arc_b,
             turn=at.turn - first.turn,
