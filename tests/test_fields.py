@@ -34,7 +34,7 @@ from develop.pieces.reference import command_line, job_text, kind_text, kinds_pa
 COMMON = {
     "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
     "face", "marks", "flow", "seam", "edge_a", "edge_b", "gap", "gap_on", "trim_a", "trim_b", "trim_line",
-    "pre_bend", "weld_shrinkage",
+    "pre_bend", "weld_shrinkage", "made_in", "stock",
 }  # fmt: skip
 OWN = {
     "straight": {"section", "length", "cut_a", "cut_b"},

@@ -33,7 +33,9 @@ def alike(one: Pattern, other: Pattern) -> bool:
         pairs = zip(mine.curves, yours.curves, strict=True)
         if any(_apart(_along(a), _along(b)) > _DRAWN for (_, a), (_, b) in pairs):
             return False
-    rows = [np.array([[*row.a, *row.b] for row in each.divisions]) for each in (one, other)]
+    # From the first of them on: drawn chains differ, and with them where the patterns lie.
+    rows = [np.array([(row.a, row.b) for row in each.divisions]) for each in (one, other)]
+    rows = [each - each[0, 0] for each in rows]
     turns = [np.array([line.turn for line in each.lines]) for each in (one, other)]
     radii = [np.array([line.radius for line in each.lines]) for each in (one, other)]
     bent = [1.0 / np.clip(each, _EXACT, _FLAT) for each in radii]

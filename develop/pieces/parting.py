@@ -273,6 +273,10 @@ def _at(direction: float) -> str:
     return direction_words(float(np.radians(round(degrees(direction), 2))))
 
 
+def _degrees(direction: float) -> str:
+    return f"{round(degrees(direction), 2) % 360.0:.2f}"
+
+
 def _table(group: Sequence[_Place]) -> Figures:
     """Where the parts that are alike stand, and which joints meet their seams there."""
     heads = (
@@ -283,9 +287,9 @@ def _table(group: Sequence[_Place]) -> Figures:
         (
             str(place.number),
             str(place.joints[0]),
-            f"{degrees(place.at[0]) % 360.0:.2f}",
+            _degrees(place.at[0]),
             str(place.joints[1]),
-            f"{degrees(place.at[1]) % 360.0:.2f}",
+            _degrees(place.at[1]),
             str(place.pattern.divisions[0].number),
             str(place.pattern.divisions[-1].number),
         )
