@@ -114,7 +114,10 @@ def holes_on(sheet: Sheet, holes: Sequence[Hole]) -> tuple[Hole, ...]:
 def _goes(pattern: Pattern, lying: Lying, stock: tuple[float, float], units: str) -> Pattern:
     """The pattern with how it goes into the stock sheet."""
     turned = round(degrees(lying.angle), 1) % 180.0
-    how = f"turned {number_text(turned)}° anticlockwise" if turned else "as it lies here"
+    way = f"{number_text(turned)}° anticlockwise"
+    if turned > 90.0:
+        way = f"{number_text(round(180.0 - turned, 1))}° clockwise"
+    how = f"turned {way}" if turned else "as it lies here"
     takes = _size((round(lying.wide, 1), round(lying.high, 1)), units)
     words = f"goes into stock {_size(stock, units)} {how}, of which it takes {takes}"
     return replace(pattern, facts=(*pattern.facts[:-1], words, *pattern.facts[-1:]))

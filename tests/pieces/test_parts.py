@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import json
 from dataclasses import replace
-from math import acos, ceil, cos, degrees, hypot, pi, radians, sin
+from math import ceil, cos, hypot, pi, radians, sin
 from pathlib import Path
 
 import numpy as np
@@ -126,12 +126,14 @@ def test_halves_of_a_rectangle_to_round_meet_in_the_middle_of_two_flats() -> Non
     assert edge(pattern, "seam_right") == pytest.approx(seam, rel=1e-12)
     # Two corners of six bends each.
     assert len(pattern.lines) == 12
-    # Half round, the flats stand square to the middle one: two corners turn by as much as the normals do.
-    lean = 50.0 / seam
-    between = degrees(acos(-(lean**2)))
-    (flat_a, flat_b) = (line.turn for line in (pattern.lines[0], pattern.lines[-1]))
-    assert flat_a == pytest.approx(flat_b)
-    assert between > 90.0
+    # Each corner is a part of a cone over a quarter of the circle; bent along its rulings it turns by the way
+    # that its unit normal goes, here along many small steps.
+    t = np.linspace(-0.5 * pi, 0.0, 20_001)
+    circle = np.stack([200.0 * np.cos(t), 200.0 * np.sin(t), np.full_like(t, 450.0)], axis=1)
+    normal = np.cross(np.stack([-np.sin(t), np.cos(t), 0.0 * t], axis=1), circle - [300.0, -150.0, 0.0])
+    normal /= np.linalg.norm(normal, axis=1)[:, None]
+    corner = np.linalg.norm(np.diff(normal, axis=0), axis=1).sum()
+    assert [line.turn for line in pattern.lines] == pytest.approx([corner / 6.0] * 12, rel=1e-7)
     hold(built)
 
 
