@@ -22,12 +22,16 @@ _CHORDS = 1e-3  # [mm]
 @dataclass(frozen=True)
 class Side:
     """One side of a joint: end `a` or `b` of a rolled part, one of its seams or an edge of a flat one, and
-    where the part stands in the piece."""
+    where the part stands in the piece.
+
+    whole: where the whole side stands whose ends the part has, of one made in parts.
+    """
 
     pattern: Pattern
     solid: Made
     frame: Frame
     end: str
+    whole: Frame | None = None
 
     @property
     def length(self) -> float:
@@ -43,7 +47,7 @@ class Side:
 
     @property
     def curve(self) -> End:
-        """Where the edge should lie, in the part's own frame."""
+        """Where the edge should lie, in the part's own frame, or the whole side's."""
         if isinstance(self.solid, Solid):
             return self.solid.end_a if self.end == "a" else self.solid.end_b
         assert not isinstance(self.solid, Patch), "a plate that only lies on a side joins nothing"
@@ -78,6 +82,7 @@ def joint_miss(side: Side, other: Side) -> float:
         return float(np.linalg.norm(side.edge() - other.edge(), axis=1).max())
     misses = []
     for mine, yours in ((side, other), (other, side)):
-        local = (mine.edge() - yours.frame.origin) @ yours.frame.axes.T
+        frame = yours.whole or yours.frame
+        local = (mine.edge() - frame.origin) @ frame.axes.T
         misses.append(float(np.max(yours.curve.distance(local))))
     return max(misses)

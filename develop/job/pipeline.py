@@ -12,7 +12,7 @@ from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import builds_of
 
 if TYPE_CHECKING:
-    from develop.checks import Check
+    from develop.checks import Check, Side
     from develop.pieces.built import Built
 
 __all__ = ["FORMATS", "Outcome", "checks_of", "checks_of_all", "make"]
@@ -110,7 +110,7 @@ def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
 
 def checks_of(built: Built) -> tuple[Check, ...]:
     """Every check of a piece: of each part, named by its mark where there are several, and of the joints."""
-    from develop.checks import Side, check_divided, check_joint, check_part
+    from develop.checks import check_divided, check_joint, check_part
     from develop.solid import Solid
 
     found: list[Check] = []
@@ -120,13 +120,7 @@ def checks_of(built: Built) -> tuple[Check, ...]:
             own = tuple(replace(each, name=f"{part.pattern.mark}: {each.name}") for each in own)
         found += own
     for joint in built.joints:
-        sides = [
-            [
-                Side(built.parts[part].pattern, built.parts[part].solid, built.parts[part].frames[place], end)
-                for part, place in parts
-            ]
-            for end, parts in joint.sides
-        ]
+        sides = [[_side(built, part, place, end) for part, place in parts] for end, parts in joint.sides]
         name = joint.name or " to ".join(side[0].pattern.mark for side in sides)
         found += check_joint(name, *sides)
     for side in built.divided:
@@ -139,6 +133,14 @@ def checks_of(built: Built) -> tuple[Check, ...]:
         name = "all parts" if len(built.divided) == 1 else f"all parts of {side.mark}"
         found += check_divided(name, used, side.solid)
     return tuple(found)
+
+
+def _side(built: Built, part: int, place: int, end: str) -> Side:
+    """One part's side of a joint, at one of its places."""
+    from develop.checks import Side
+
+    own = built.parts[part]
+    return Side(own.pattern, own.solid, own.frames[place], end, built.stands(part, place))
 
 
 def _plate_title(mark: str, facts: Sequence[str]) -> str:

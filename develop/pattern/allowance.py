@@ -169,14 +169,9 @@ class _Whole:
         found = []
         for (contour, motion), head in ((before, False), (after, True)):
             # Of a sheet that joins itself the edge as it is drawn here, to the last bit.
-            curve = source if contour[name] is self.fine[name] else contour[name]
-            part = min(length, curve.length)
-            start, end = (0, 0.0), (len(curve.controls) // 3 - 1, 1.0)
-            if head:
-                end = place_at(curve, part)
-            else:
-                start = place_at(curve, curve.length - part)
-            found.append(between(curve, start, end).moved(turn=motion[0], shift=motion[1]))
+            own = name in contour and contour[name] is self.fine[name]
+            beside = source if own else contour.get(name)
+            found.append(_gone_on(source, beside, motion, length, head=head))
         return found[0], found[1]
 
     def _corner(self, run: Curve, seam: str, near: Array) -> tuple[int, float]:
@@ -185,6 +180,33 @@ class _Whole:
         found = crossing(run, point, along, near)
         assert found is not None, "an edge that goes on meets its seam"
         return found
+
+
+def _gone_on(
+    source: Curve, beside: Curve | None, motion: tuple[Array, Array], length: float, *, head: bool
+) -> Curve:
+    """What an edge goes on with, a length [mm] of it: with the edge beside it, moved, and from there straight
+    on; None where the sheet beside it stands on a point there.
+
+    head: after the end of the edge, else before its start.
+    """
+    parts: list[Curve] = []
+    if beside is not None:
+        part = min(length, beside.length)
+        start, end = (0, 0.0), (len(beside.controls) // 3 - 1, 1.0)
+        if head:
+            end = place_at(beside, part)
+        else:
+            start = place_at(beside, beside.length - part)
+        parts.append(between(beside, start, end).moved(turn=motion[0], shift=motion[1]))
+    rest = length - sum(each.length for each in parts)
+    if rest > _NONE:
+        last = parts[0] if parts else source
+        point, *steps = last.controls[::-1] if head else last.controls
+        ahead = next(point - each for each in steps if np.hypot(*(point - each)) > _NONE)
+        far = point + rest * ahead / np.hypot(*ahead)
+        parts = [*parts, segment(point, far)] if head else [segment(far, point), *parts]
+    return joined(parts)
 
 
 def _onto(seam: Curve, other: Curve) -> tuple[Array, Array]:

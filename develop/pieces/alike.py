@@ -19,6 +19,8 @@ _TURN = 1e-9  # [rad]
 _SAME = 1e-9  # parts of a radius
 _FLAT = 1e9  # [mm]
 _POINTS = 33
+# So near [mm] must a corner be, and so near [rad] the turn between dense lines, which differ.
+_NEAR, _BETWEEN = 1e-2, 1e-2
 
 
 def alike(one: Pattern, other: Pattern) -> bool:
@@ -43,7 +45,27 @@ def alike(one: Pattern, other: Pattern) -> bool:
         _apart(*rows) <= _EXACT
         and float(np.abs(turns[0] - turns[1]).max(initial=0.0)) <= _TURN
         and bool(np.allclose(bent[0], bent[1], rtol=1e-6, atol=_SAME))
+        and _turn_alike(one, other)
+        and _turn_alike(other, one)
     )
+
+
+def _turn_alike(one: Pattern, other: Pattern) -> bool:
+    """Whether the other sheet has turned as far as the one at each of its dense lines.
+
+    Between two divisions a corner may lie anywhere: within `_NEAR` of a place any turn that the other has
+    there will do, as at a corner it turns at once.
+    """
+    (along, turned), (other_along, other_turned) = (_turned(each) for each in (one, other))
+    least, most = (np.interp(along + step, other_along, other_turned) for step in (-_NEAR, _NEAR))
+    return bool(((turned >= least - _BETWEEN) & (turned <= most + _BETWEEN)).all())
+
+
+def _turned(pattern: Pattern) -> tuple[Array, Array]:
+    """How far along both edges dense lines lie (n,) [mm], and how far the sheet has turned there [rad]."""
+    lines = pattern.rulings
+    steps = [np.hypot(*np.diff(end, axis=0).T) for end in (lines.a, lines.b)]
+    return np.append(0.0, np.cumsum(steps[0] + steps[1])), np.cumsum(lines.turn)
 
 
 def _apart(one: Array, other: Array) -> float:

@@ -132,7 +132,7 @@ def pattern_of(
     # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
     bends = press_lines(sheet, section_a, press) if press else None
     drawn = wanted if bends is None else [*wanted, bends.place]
-    wanted.append(_merged([dense(sheet), *drawn]))
+    wanted.append(_merged([dense(sheet, parts=1 if share is None else share.parts), *drawn]))
     if bends is not None:
         wanted.append(bends.place)
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
@@ -204,8 +204,10 @@ def _beside(contour: dict[str, Curve], name: str, out: float) -> Curve:
     return parallel(contour[name], out)
 
 
-def dense(sheet: Sheet) -> Place:
+def dense(sheet: Sheet, *, parts: int = 1) -> Place:
     """Rulings so close that flat strips between them miss the rolled sheet by `_FOLD_MISS` at most.
+
+    parts: how many sheets like this one share that.
 
     n strips of a panel with arc s and turn t come s t² / (24 n²) too long for the bent sheet; where
     the curvature changes by e^v over the panel, their mid planes are also out by s t v / (12 n²).
@@ -213,15 +215,16 @@ def dense(sheet: Sheet) -> Place:
     The miss is shared out so that the fewest strips do (n as the cube root of a panel's part).
     """
     ends, at = sheet.ends, sheet.at_ends
-    turn = np.diff(at.turn)
-    arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
+    # Between lines of a flat these may be less than none by their rounding.
+    turn = np.maximum(np.diff(at.turn), 0.0)
+    arc = np.maximum(np.maximum(np.diff(at.arc_a), np.diff(at.arc_b)), 0.0)
     bend = np.log(np.clip(at.radius_a, 1e-9, 1e12))
     change = np.minimum(np.abs(np.diff(bend)), _MOST_CHANGE)
     leg = at.b - at.a
     fan = np.diff(np.unwrap(np.arctan2(leg[:, 1], leg[:, 0])))
     reach = max(float(np.max(at.length)), float(np.sum(arc)) / pi)
     part = np.cbrt((arc * turn * (turn + 2.0 * change) + reach * turn * fan * fan) / 24.0)
-    counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / _FOLD_MISS)), 1).astype(int)
+    counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / (_FOLD_MISS / parts))), 1).astype(int)
     owner = np.repeat(np.arange(len(counts)), counts)
     first = np.repeat(np.cumsum(counts) - counts, counts)
     x = 2.0 * (np.arange(len(owner)) - first) / counts[owner] - 1.0

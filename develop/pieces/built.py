@@ -111,6 +111,13 @@ class Built:
         """The finished side of the first part."""
         return self.parts[0].solid
 
+    def stands(self, part: int, place: int) -> Frame | None:
+        """Where the whole side stands that a part belongs to, in one of its places; None for no such part."""
+        for side in self.divided:
+            if part in side.parts:
+                return side.frames[place // len(side.places[side.parts.index(part)])]
+        return None
+
     @property
     def wholes(self) -> tuple[tuple[Made, tuple[Frame, ...]], ...]:
         """Every part with the frames it stands in, the piece's own where it has none; a side made in parts as

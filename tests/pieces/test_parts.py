@@ -228,6 +228,26 @@ def test_what_is_alike_in_shape_and_not_in_its_rolling_is_not_alike() -> None:
     hold(built)
 
 
+def test_a_corner_elsewhere_between_two_lines_is_not_alike() -> None:
+    # Girth 962 in 7 parts of 137.43, from the middle of a long side on: the corners lie 14.43 and 85.43 mm
+    # past a joint, and so on; every part is the same rectangle.
+    given = {"section": "rectangle 246 x 235", "length": 500, "made_in": 7, "divisions": 7}
+    built = make("straight", **given, mark="T1")
+    bends = []
+    for pattern in built.patterns:
+        turn = pattern.rulings.turn
+        where = pattern.rulings.a[np.flatnonzero(turn > 1e-9), 0]
+        bends.append(where.tolist())
+    # Of those that are one pattern, none has its corner elsewhere.
+    middles = 123.0 + np.cumsum([0.0, 235.0, 246.0, 235.0])
+    part = 962.0 / 7.0
+    expected = sorted(round(float(each % part), 6) for each in middles)
+    found = [round(each[0], 6) for each, p in zip(bends, built.patterns, strict=True) if each]
+    assert sorted(set(found)) == sorted(set(expected))
+    assert sum(p.quantity for p in built.patterns) == 7
+    hold(built)
+
+
 # ---- allowances on each side --------------------------------------------------------------------
 
 
