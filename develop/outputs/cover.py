@@ -1,0 +1,220 @@
+"""The first page of a tiled file: the check square, how the pages go together, and a map of them.
+
+Blocks are set from their upper left corners, as on all paper. All lengths in mm of the drawing, which the
+printer's factors, if there are any, make true.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from develop.outputs.blocks import CAUTIONS, Block, notes, square
+from develop.outputs.fonts import width
+from develop.outputs.ink import Ink
+from develop.outputs.page_marks import Word, placed
+from develop.outputs.paper import PageSetup
+from develop.outputs.tiling import Tiling
+from develop.pattern.pattern import Pattern
+
+__all__ = ["Cover", "Mapped", "covers"]
+
+_TEXT = 3.0
+_GAP = 7.0
+_BESIDE = 60.0  # [mm] of room beside the square that text can stand in
+_COLUMN = 190.0  # [mm] of text at most
+_LEAST = 75.0  # [mm] height of a map that is alone
+_SMALL = 62.0  # [mm] height of one of several
+_ROLL = 150.0  # [mm] height of a map on a roll
+_NAME = 4.0  # [mm] height of a page's name on the map, at most
+
+
+@dataclass(frozen=True)
+class Mapped:
+    """A pattern and its pages."""
+
+    pattern: Pattern
+    tiling: Tiling
+
+
+@dataclass(frozen=True)
+class Cover:
+    """One page of paper [mm], and blocks with their left edge and their top below that of the room on it.
+
+    high: height of that room [mm].
+    """
+
+    size: tuple[float, float]
+    high: float
+    blocks: tuple[tuple[Block, float, float], ...]
+
+    def draw(self, ink: Ink) -> None:
+        """Draw the page; the ink's (0, 0) is the lower left corner of the room inside the margins."""
+        for block, left, down in self.blocks:
+            block.draw(ink, left, self.high - down)
+
+
+def covers(title: str, maps: Sequence[Mapped], setup: PageSetup) -> tuple[Cover, ...]:
+    """The pages that come first: one, or more where many maps do not fit on it."""
+    paper = setup.paper
+    (fx, fy), edges = setup.factors, 2.0 * setup.margin
+    wide = (paper.wide - edges) / fx
+    high = 1e9 if paper.is_roll else (paper.high - edges) / fy
+    units = maps[0].pattern.units
+    beside = wide >= _COLUMN + 160.0
+    column = min(wide, _COLUMN)
+    head = _column(title, maps, setup, column, units)
+    used = max(down + block.high for block, _, down in head)
+    pages: list[list[tuple[Block, float, float]]] = [list(head)]
+    left = column + 15.0 if beside else 0.0
+    down, room = (0.0 if beside else used + _GAP), wide - left
+    many = 1 if len(maps) == 1 else max(2, int(room // 150.0))
+    each = (room - (many - 1) * 10.0) / many
+    for first in range(0, len(maps), many):
+        row = maps[first : first + many]
+        rest = high - down
+        if len(maps) == 1:
+            tall = max(used, _ROLL) if paper.is_roll else rest
+        else:
+            tall = _SMALL if not beside else 1.5 * _SMALL
+        if min(rest, tall) < (_LEAST if len(maps) == 1 else _SMALL) and down:
+            pages.append([])
+            left, down = 0.0, 0.0
+            tall = min(tall, high) if len(maps) > 1 else high
+        blocks = [_map(one, each, tall, setup) for one in row]
+        pages[-1] += [(block, left + n * (each + 10.0), down) for n, block in enumerate(blocks)]
+        down += max(block.high for block in blocks) + _GAP
+    found = []
+    for blocks_of in pages:
+        tall = max(down + block.high for block, _, down in blocks_of) + 1.0 if paper.is_roll else high
+        size = (paper.wide, tall * fy + edges if paper.is_roll else paper.high)
+        found.append(Cover(size, tall, tuple(blocks_of)))
+    return tuple(found)
+
+
+def _column(
+    title: str, maps: Sequence[Mapped], setup: PageSetup, wide: float, units: str
+) -> list[tuple[Block, float, float]]:
+    """Title, square and words, in a column of a width [mm]."""
+    count = sum(len(one.tiling.pages) for one in maps)
+    found = [(_title(title, count, setup, wide), 0.0, 0.0)]
+    down = found[0][0].high + _GAP
+    check = square(100.0 if units == "mm" else 101.6, units)
+    found.append((check, 0.0, down))
+    first, rest = _texts(units)
+    room = wide - check.wide - 8.0
+    if room >= _BESIDE:
+        words = notes(first, room, _TEXT)
+        found.append((words, check.wide + 8.0, down))
+        down += max(check.high, words.high) + _GAP
+        below = notes(rest, wide, _TEXT)
+    else:
+        down += check.high + _GAP
+        below = notes([*first, *rest], wide, _TEXT)
+    found.append((below, 0.0, down))
+    return found
+
+
+def _title(title: str, count: int, setup: PageSetup, wide: float) -> Block:
+    """What is in the file, and the factors if there are any."""
+    paper = setup.paper
+    kind = f"a roll {paper.wide:g} mm wide" if paper.is_roll else paper.name
+    pages = f"{count} page{'s' if count != 1 else ''} on {kind}"
+    lines = [
+        (f"{title}: {pages}", 5.5),
+        ("PRINT AT ACTUAL SIZE (100 %), NOT FITTED TO THE PAPER", 4.0),
+        ("This page first: measure the square before you print the rest.", 3.2),
+    ]
+    if setup.factor_words:
+        lines.append((f"{setup.factor_words}: for that printer alone, not for another", 3.2))
+
+    def draw(ink: Ink, left: float, top: float) -> None:
+        for text, height in lines:
+            top -= height
+            ink.text(left, top, text, height * min(1.0, wide / width(text, height)))
+            top -= 0.8 * height
+
+    return Block(wide, sum(1.8 * height for _, height in lines), draw)
+
+
+def _texts(units: str) -> tuple[list[str], list[str]]:
+    """What stands beside the square, and what below it."""
+    side, within = ("100 mm", "0.3 mm") if units == "mm" else ("4 in", "1/64 in")
+    return (
+        [
+            f"Measure the square both ways with a steel rule: {side} within {within}. If it is not, the paper was"
+            " fitted, or the printer is not true: develop printer-test tells how to find its factors.",
+            "Each page has the letter of its column and the number of its row, as on the map. Pages that would"
+            " be empty are left out.",
+            "Cut each page back along its dashed lines, at the right and below.",
+            "Begin at the lower right. Lay each page on its neighbours, line on line and cross on cross, and tape it.",
+        ],
+        [
+            "When all is taped, measure the long checks, and see with a straightedge that the thin datum lines x = 0"
+            " and y = 0 run straight through the joints. Paper stretches: where it matters, mark out from the table"
+            " of the PDF with the large sheet. Cut on the middle of the thick line.",
+            " ".join(CAUTIONS),
+        ],
+    )
+
+
+def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
+    """The pages with their names, and the pattern's outline over them."""
+    tiling, pattern = one.tiling, one.pattern
+    count = len(tiling.pages)
+    width_first, height_first = tiling.pages[0].size
+    way = "" if setup.paper.is_roll else ", portrait" if height_first >= width_first else ", landscape"
+    caption = [
+        (f"{pattern.mark}: {count} page{'s' if count != 1 else ''}{way}", 3.4),
+        (pattern.facts[1] if len(pattern.facts) > 1 else pattern.kind, 2.6),
+    ]
+    top_room = sum(1.7 * height for _, height in caption) + 1.0
+    whole = (tiling.across[-1] - tiling.across[0], tiling.down[0] - tiling.down[-1])
+    scale = min((wide - 1.0) / whole[0], (high - top_room - 1.0) / whole[1], 0.35)
+    outlines = [pattern.cut, *pattern.openings]
+    points = np.vstack([curve.polyline(0.5 / scale) for each in outlines for _, curve in each.curves])
+    dense = np.vstack([start + np.linspace(0.0, 1.0, 60)[:, None] * (end - start)
+                       for start, end in zip(points[:-1], points[1:], strict=True)])  # fmt: skip
+    corner = np.array([tiling.across[0], tiling.down[0]])
+
+    def draw(ink: Ink, left: float, top: float) -> None:
+        y = top
+        for text, height in caption:
+            y -= height
+            ink.text(left, y, text, height * min(1.0, wide / width(text, height)))
+            y -= 0.7 * height
+        shift = np.array([left + 0.5, top - top_room]) - scale * corner
+        shown = scale * dense + shift
+        ink.pen(0.13)
+        names = []
+        for page in tiling.pages:
+            low_x, low_y, high_x, high_y = scale * np.array(tiling.cell(page)) + np.tile(shift, 2)
+            ink.rectangle(low_x, low_y, high_x - low_x, high_y - low_y)
+            names.append(_name(page.name, (low_x, low_y, high_x, high_y), shown))
+        ink.pen(0.35)
+        for outline in outlines:
+            curves = [curve for _, curve in outline.curves]
+            ink.curves(
+                [scale * curve.controls + shift for curve in curves],
+                straight=[curve.straight for curve in curves],
+                closed=True,
+            )
+        for word in names:
+            word.draw(ink)
+
+    return Block(wide, top_room + scale * whole[1] + 1.0, draw)
+
+
+def _name(text: str, cell: tuple[float, float, float, float], points: np.ndarray) -> Word:
+    """A page's name in its cell of the map, clear of the outline if it can be."""
+    left, bottom, right, top = cell
+    height = min(_NAME, 0.3 * (top - bottom), 0.6 * (right - left) / width(text, 1.0))
+    long = width(text, height)
+    choices = [
+        Word(text, (left + x * (right - left - long), bottom + y * (top - bottom - height)), False, height)
+        for x, y in ((0.5, 0.5), (0.5, 0.2), (0.5, 0.8), (0.15, 0.5), (0.85, 0.5), (0.15, 0.15), (0.85, 0.85),
+                     (0.15, 0.85), (0.85, 0.15), (0.5, 0.08), (0.5, 0.92))
+    ]  # fmt: skip
+    return placed(choices, points)
