@@ -6,8 +6,10 @@ printer's factors, if there are any, make true.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -15,8 +17,9 @@ from develop.outputs.blocks import CAUTIONS, Block, notes, square
 from develop.outputs.fonts import width
 from develop.outputs.ink import Ink
 from develop.outputs.page_marks import Word, placed
-from develop.outputs.paper import PageSetup
+from develop.outputs.paper import LONGEST, PageSetup
 from develop.outputs.tiling import Tiling
+from develop.pattern.curve import Array
 from develop.pattern.pattern import Pattern
 
 __all__ = ["Cover", "Mapped", "covers"]
@@ -28,6 +31,7 @@ _COLUMN = 190.0  # [mm] of text at most
 _LEAST = 75.0  # [mm] height of a map that is alone
 _SMALL = 62.0  # [mm] height of one of several
 _ROLL = 150.0  # [mm] height of a map on a roll
+_ROLL_WIDE = 480.0  # [mm] width of the first page where a roll runs upwards
 _NAME = 4.0  # [mm] height of a page's name on the map, at most
 
 
@@ -57,64 +61,93 @@ class Cover:
 
 
 def covers(title: str, maps: Sequence[Mapped], setup: PageSetup) -> tuple[Cover, ...]:
-    """The pages that come first: one, or more where many maps do not fit on it."""
-    paper = setup.paper
-    (fx, fy), edges = setup.factors, 2.0 * setup.margin
-    wide = (paper.wide - edges) / fx
-    high = 1e9 if paper.is_roll else (paper.high - edges) / fy
-    units = maps[0].pattern.units
-    beside = wide >= _COLUMN + 160.0
+    """The pages that come first: one, or more where not all fits on it."""
+    wide, high = _room(setup)
+    page = _Flow(high)
     column = min(wide, _COLUMN)
-    head = _column(title, maps, setup, column, units)
-    used = max(down + block.high for block, _, down in head)
-    pages: list[list[tuple[Block, float, float]]] = [list(head)]
-    left = column + 15.0 if beside else 0.0
-    down, room = (0.0 if beside else used + _GAP), wide - left
-    many = 1 if len(maps) == 1 else max(2, int(room // 150.0))
-    each = (room - (many - 1) * 10.0) / many
+    _write_column(page, title, maps, setup, column)
+    beside = wide >= _COLUMN + 160.0 and len(page.pages) == 1
+    used = page.down
+    if beside:
+        page.left, page.down = column + 15.0, 0.0
+    many = 1 if len(maps) == 1 else max(2, int((wide - page.left) // 150.0))
+    least = _LEAST if len(maps) == 1 else _SMALL
     for first in range(0, len(maps), many):
-        row = maps[first : first + many]
-        rest = high - down
-        if len(maps) == 1:
-            tall = max(used, _ROLL) if paper.is_roll else rest
-        else:
-            tall = _SMALL if not beside else 1.5 * _SMALL
-        if min(rest, tall) < (_LEAST if len(maps) == 1 else _SMALL) and down:
-            pages.append([])
-            left, down = 0.0, 0.0
-            tall = min(tall, high) if len(maps) > 1 else high
-        blocks = [_map(one, each, tall, setup) for one in row]
-        pages[-1] += [(block, left + n * (each + 10.0), down) for n, block in enumerate(blocks)]
-        down += max(block.high for block in blocks) + _GAP
-    found = []
-    for blocks_of in pages:
-        tall = max(down + block.high for block, _, down in blocks_of) + 1.0 if paper.is_roll else high
-        size = (paper.wide, tall * fy + edges if paper.is_roll else paper.high)
-        found.append(Cover(size, tall, tuple(blocks_of)))
-    return tuple(found)
+        if high - page.down < least:
+            page.turn()
+        rows = math.ceil((len(maps) - first) / many)
+        rest = min(high, max(used, _ROLL)) - page.down if setup.paper.is_roll else high - page.down
+        tall = max(least, (rest - (rows - 1) * _GAP) / rows)
+        each = (wide - page.left - (many - 1) * 10.0) / many
+        blocks = [_map(one, each, tall, setup) for one in maps[first : first + many]]
+        for n, block in enumerate(blocks):
+            page.put(block, n * (each + 10.0))
+        page.down += max(block.high for block in blocks) + _GAP
+    return tuple(_cover(blocks, high, setup) for blocks in page.pages)
 
 
-def _column(
-    title: str, maps: Sequence[Mapped], setup: PageSetup, wide: float, units: str
-) -> list[tuple[Block, float, float]]:
+def _room(setup: PageSetup) -> tuple[float, float]:
+    """Width and height inside the margins [mm of the drawing]; a roll is cut as long as is needed."""
+    paper = setup.paper
+    sides = (paper.wide, paper.high or LONGEST)
+    if setup.orientation == "landscape":
+        sides = (paper.high or _ROLL_WIDE, paper.wide)
+    wide, high = (
+        (side - 2.0 * setup.margin) / factor for side, factor in zip(sides, setup.factors, strict=True)
+    )
+    return wide, high
+
+
+def _cover(blocks: Sequence[tuple[Block, float, float]], high: float, setup: PageSetup) -> Cover:
+    """The page for blocks; one of an upright roll ends below them."""
+    paper, edges = setup.paper, 2.0 * setup.margin
+    if setup.orientation == "landscape":
+        return Cover((paper.high or _ROLL_WIDE, paper.wide), high, tuple(blocks))
+    if paper.is_roll:
+        high = max(down + block.high for block, _, down in blocks) + 1.0
+    return Cover((paper.wide, paper.high or high * setup.factors[1] + edges), high, tuple(blocks))
+
+
+class _Flow:
+    """Blocks set one below the other, page by page of a height [mm]."""
+
+    def __init__(self, high: float) -> None:
+        self.high, self.left, self.down = high, 0.0, 0.0
+        self.pages: list[list[tuple[Block, float, float]]] = [[]]
+
+    def put(self, block: Block, right: float = 0.0) -> None:
+        """A block here, or to the right of here."""
+        self.pages[-1].append((block, self.left + right, self.down))
+
+    def stack(self, block: Block) -> None:
+        """A block here, or on the next page if it does not fit, and go on below it."""
+        if self.down and self.down + block.high > self.high:
+            self.turn()
+        self.put(block)
+        self.down += block.high + _GAP
+
+    def turn(self) -> None:
+        """Go on at the top of a new page."""
+        self.pages.append([])
+        self.left, self.down = 0.0, 0.0
+
+
+def _write_column(page: _Flow, title: str, maps: Sequence[Mapped], setup: PageSetup, wide: float) -> None:
     """Title, square and words, in a column of a width [mm]."""
-    count = sum(len(one.tiling.pages) for one in maps)
-    found = [(_title(title, count, setup, wide), 0.0, 0.0)]
-    down = found[0][0].high + _GAP
+    units = maps[0].pattern.units
+    page.stack(_title(title, sum(len(one.tiling.pages) for one in maps), setup, wide))
     check = square(100.0 if units == "mm" else 101.6, units)
-    found.append((check, 0.0, down))
     first, rest = _texts(units)
     room = wide - check.wide - 8.0
     if room >= _BESIDE:
         words = notes(first, room, _TEXT)
-        found.append((words, check.wide + 8.0, down))
-        down += max(check.high, words.high) + _GAP
-        below = notes(rest, wide, _TEXT)
+        page.put(words, check.wide + 8.0)
+        page.stack(check)
+        page.down += max(0.0, words.high - check.high)
     else:
-        down += check.high + _GAP
-        below = notes([*first, *rest], wide, _TEXT)
-    found.append((below, 0.0, down))
-    return found
+        page.stack(check)
+        page.stack(notes(first, wide, _TEXT))
+    page.stack(notes(rest, wide, _TEXT))
 
 
 def _title(title: str, count: int, setup: PageSetup, wide: float) -> Block:
@@ -144,17 +177,19 @@ def _texts(units: str) -> tuple[list[str], list[str]]:
     side, within = ("100 mm", "0.3 mm") if units == "mm" else ("4 in", "1/64 in")
     return (
         [
-            f"Measure the square both ways with a steel rule: {side} within {within}. If it is not, the paper was"
-            " fitted, or the printer is not true: develop printer-test tells how to find its factors.",
-            "Each page has the letter of its column and the number of its row, as on the map. Pages that would"
-            " be empty are left out.",
+            f"Measure the square both ways with a steel rule: {side} within {within}. If it is not, the page"
+            " was fitted to the paper, or the printer is not true: develop printer-test"
+            " tells how to find its factors.",
+            "Each page has the letter of its column and the number of its row, as on the map. Pages that"
+            " would be empty are left out.",
             "Cut each page back along its dashed lines, at the right and below.",
-            "Begin at the lower right. Lay each page on its neighbours, line on line and cross on cross, and tape it.",
+            "Begin at the lower right. Lay each page on its neighbours, line on line and cross on"
+            " cross, and tape it.",
         ],
         [
-            "When all is taped, measure the long checks, and see with a straightedge that the thin datum lines x = 0"
-            " and y = 0 run straight through the joints. Paper stretches: where it matters, mark out from the table"
-            " of the PDF with the large sheet. Cut on the middle of the thick line.",
+            "When all is taped, measure the long checks, and see with a straightedge that the thin datum"
+            " lines x = 0 and y = 0 run straight through the joints. Paper stretches: where it matters, mark"
+            " out from the table of the PDF with the large sheet. Cut on the middle of the thick line.",
             " ".join(CAUTIONS),
         ],
     )
@@ -176,7 +211,7 @@ def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
     outlines = [pattern.cut, *pattern.openings]
     points = np.vstack([curve.polyline(0.5 / scale) for each in outlines for _, curve in each.curves])
     dense = np.vstack([start + np.linspace(0.0, 1.0, 60)[:, None] * (end - start)
-                       for start, end in zip(points[:-1], points[1:], strict=True)])  # fmt: skip
+                       for start, end in pairwise(points)])  # fmt: skip
     corner = np.array([tiling.across[0], tiling.down[0]])
 
     def draw(ink: Ink, left: float, top: float) -> None:
@@ -207,7 +242,7 @@ def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
     return Block(wide, top_room + scale * whole[1] + 1.0, draw)
 
 
-def _name(text: str, cell: tuple[float, float, float, float], points: np.ndarray) -> Word:
+def _name(text: str, cell: tuple[float, float, float, float], points: Array) -> Word:
     """A page's name in its cell of the map, clear of the outline if it can be."""
     left, bottom, right, top = cell
     height = min(_NAME, 0.3 * (top - bottom), 0.6 * (right - left) / width(text, 1.0))

@@ -14,7 +14,7 @@ __all__ = ["canvas_of"]
 
 
 def canvas_of(buffer: io.BytesIO, title: str) -> Canvas:
-    """A canvas that writes into the buffer when it is saved. Raises WriteError if the type face is missing."""
+    """A canvas that writes into the buffer when it is saved. Raises WriteError without its type face."""
     from reportlab.pdfgen.canvas import Canvas
 
     register()

@@ -31,7 +31,7 @@ _DASHES = (10.0, 2.0, 1.0, 2.0)  # [mm]
 
 @dataclass(frozen=True)
 class Word:
-    """A line of text that starts at a place of the sheet [mm], level or upright, capitals of `height` [mm]."""
+    """A line of text from a place of the sheet [mm], level or upright, its capitals `height` high [mm]."""
 
     text: str
     at: tuple[float, float]
@@ -54,7 +54,7 @@ class Word:
 
 @dataclass(frozen=True)
 class _Check:
-    """A straight scale: along x (0) or y (1), from `start` over `length`, at `level` of the other axis [mm]."""
+    """A scale in parts along x (0) or y (1), from `start`, at `level` of the other axis [mm]."""
 
     axis: int
     start: float
@@ -70,11 +70,12 @@ class _Check:
 
 @dataclass(frozen=True)
 class SheetMarks:
-    """Datum lines, checks and their words, and points over the words, (n, 2) [mm]."""
+    """Datum lines, checks and their words; taken: points on these and on the pattern, (n, 2) [mm]."""
 
     tiling: Tiling
     checks: tuple[_Check, ...]
     words: tuple[Word, ...]
+    taken: Array
 
     def draw(self, ink: Ink) -> None:
         """Draw all that the page of this ink shows."""
@@ -96,21 +97,29 @@ class SheetMarks:
 
 
 def sheet_marks(tiling: Tiling, points: Array, words: Array, units: str) -> SheetMarks:
-    """The marks for the pages of a pattern. points: on all that is drawn, words: on its words, (n, 2) [mm]."""
+    """The marks for the pages of a pattern. points: on all that is drawn; words: on its words (n, 2) [mm]."""
     checks = [check for axis in (0, 1) if (check := _check(tiling, axis, words, units)) is not None]
     found: list[Word] = []
-    taken = points
+    across, down = tiling.across, tiling.down
+    ends = [((across[0], 0.0), (across[-1], 0.0)), ((0.0, down[-1]), (0.0, down[0]))]
+    ends += [(check.at(0.0), check.at(check.length)) for check in checks]
+    taken = np.vstack([points, *(_along(start, end) for start, end in ends)])
     for word in (*_check_words(tiling, checks, units), *_datum_words(tiling)):
         best = placed(word, taken)
         found.append(best)
-        low, high = best.box
-        taken = np.vstack([taken, np.linspace(low, high, 20), np.linspace([low[0], high[1]], [high[0], low[1]], 20)])
-    return SheetMarks(tiling, tuple(checks), tuple(found))
+        (left, bottom), (right, top) = best.box.tolist()
+        taken = np.vstack([taken, _along((left, bottom), (right, top)), _along((left, top), (right, bottom))])
+    return SheetMarks(tiling, tuple(checks), tuple(found), taken)
+
+
+def _along(start: tuple[float, float], end: tuple[float, float]) -> Array:
+    """Points from one place to another, (n, 2) [mm]."""
+    return np.linspace(start, end, math.ceil(math.dist(start, end)) + 2)
 
 
 def placed(choices: Sequence[Word], points: Array) -> Word:
     """The first of the choices that is free of points, else the one with the fewest in it."""
-    boxes = np.stack([word.box + [[-_AIR], [_AIR]] for word in choices])
+    boxes = np.stack([word.box for word in choices]) + np.array([[-_AIR], [_AIR]])
     low, high = boxes[:, 0].min(axis=0), boxes[:, 1].max(axis=0)
     near = points[((points > low) & (points < high)).all(axis=1)]
     inside = ((near > boxes[:, None, 0]) & (near < boxes[:, None, 1])).all(axis=2)
@@ -164,7 +173,9 @@ def _check_words(tiling: Tiling, checks: Iterable[_Check], units: str) -> Iterab
                 for shift in (2.0, 12.0, 30.0, 50.0, 70.0):
                     place = way + shift if way == 0.0 else way - shift - long
                     # Upright words stand to the left of where they start.
-                    choices.append(Word(text, check.at(place, off if check.axis == 0 else -off), check.axis == 1))
+                    choices.append(
+                        Word(text, check.at(place, off if check.axis == 0 else -off), check.axis == 1)
+                    )
             yield _uncut(choices, tiling)
 
 
@@ -179,10 +190,11 @@ def _datum_words(tiling: Tiling) -> Iterable[list[Word]]:
             if not low < 0.0 < high:
                 continue
             text = "y = 0" if axis == 0 else "x = 0"
+            clear = tiling.overlap[axis] / 2.0 + 3.0  # so that the neighbour does not show a part of it
             long = width(text, _TEXT)
             choices = []
             for off in (-1.5 - _TEXT, 1.5):
-                for at in np.linspace(first + 5.0, last - long - 5.0, _PLACES).tolist():
+                for at in np.linspace(first + clear, last - long - clear, _PLACES).tolist():
                     choices.append(Word(text, (at, off) if axis == 0 else (-off, at), axis == 1))
             yield _uncut(choices, tiling)
 
@@ -195,6 +207,8 @@ def _uncut(choices: list[Word], tiling: Tiling) -> list[Word]:
         inside = tiling.across[0] < left and right < tiling.across[-1]
         inside &= tiling.down[-1] < bottom and top < tiling.down[0]
         joints = any(left - _AIR < x < right + _AIR for x in tiling.across[1:-1])
-        return bool(inside and not joints and not any(bottom - _AIR < y < top + _AIR for y in tiling.down[1:-1]))
+        return bool(
+            inside and not joints and not any(bottom - _AIR < y < top + _AIR for y in tiling.down[1:-1])
+        )
 
     return [word for word in choices if whole(word)] or choices

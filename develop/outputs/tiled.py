@@ -72,8 +72,8 @@ def written(patterns: Sequence[Pattern], setup: PageSetup, *, title: str) -> Til
         canvas.addPageLabel(number, prefix="how to" if n == 1 else f"how to {n}")
         _start(canvas, cover.size, setup)
         layers.open(NOTES)
-        inner = tuple((side - 2.0 * setup.margin) / factor for side, factor in zip(cover.size, setup.factors, strict=True))
-        cover.draw(Ink(canvas, (0.0, 0.0, *inner), setup.margin))
+        wide = (cover.size[0] - 2.0 * setup.margin) / setup.factors[0]
+        cover.draw(Ink(canvas, (0.0, 0.0, wide, cover.high), setup.margin))
         layers.close()
         _end(canvas)
         number += 1
@@ -81,7 +81,9 @@ def written(patterns: Sequence[Pattern], setup: PageSetup, *, title: str) -> Til
         form = f"pattern{n}"
         _write_form(canvas, layers, form, sheet)
         for page in sheet.tiling.pages:
-            canvas.addPageLabel(number, prefix=page.name if len(sheets) == 1 else f"{sheet.pattern.mark} {page.name}")
+            canvas.addPageLabel(
+                number, prefix=page.name if len(sheets) == 1 else f"{sheet.pattern.mark} {page.name}"
+            )
             _write_page(canvas, layers, form, sheet, page, setup)
             number += 1
     layers.finish()
@@ -97,7 +99,7 @@ def _sheet(pattern: Pattern, setup: PageSetup) -> _Sheet:
 
 
 def _start(canvas: Canvas, size: tuple[float, float], setup: PageSetup) -> None:
-    """Begin a page on which all that follows is multiplied by the printer's factors, from inside the margin."""
+    """Begin a page on which all that follows is multiplied by the printer's factors, from the margin on."""
     canvas.setPageSize((size[0] * POINT, size[1] * POINT))
     x, y = setup.factors
     if setup.factors != (1.0, 1.0):
@@ -170,7 +172,7 @@ def _draw_joints(ink: Ink, sheet: _Sheet, page: Page) -> None:
             start, end, upright, strip = (page.left, y), (right_end, y), False, tiling.overlap[1] / 2.0
         ink.pen(0.13, (6.0, 2.0))
         ink.line(*start, *end)
-        _draw_crosses(ink, start, end, upright, min(_ARM, 0.8 * strip))
+        _draw_crosses(ink, start, end, upright, min(_ARM, 0.45 * strip))
         text = {
             "right": f"CUT BACK TO THIS LINE, LAY ON {other.name}",
             "below": f"CUT BACK TO THIS LINE, LAY ON {other.name}",
@@ -180,15 +182,16 @@ def _draw_joints(ink: Ink, sheet: _Sheet, page: Page) -> None:
         long = width(text, _WORDS)
         low, high = (start[1], end[1]) if upright else (start[0], end[0])
         # Outside the line, where it is cut away or covered.
-        off = {"right": strip / 2.0 + _WORDS / 2.0, "below": -strip / 2.0 - _WORDS / 2.0,
-               "left": -strip / 2.0 + _WORDS / 2.0, "above": strip / 2.0 - _WORDS / 2.0}[word]  # fmt: skip
+        middle = 0.72 * strip * (1.0 if word in ("right", "above") else -1.0)
+        # Words stand above their baseline, and to the left of it where they are upright.
+        off = middle + _WORDS / 2.0 if upright else middle - _WORDS / 2.0
         places = np.linspace(low + 12.0, max(high - long - 12.0, low + 12.0), 25).tolist()
         places.sort(key=lambda place: abs(place + long / 2.0 - (low + high) / 2.0))
         choices = [
             Word(text, (start[0] + off, place) if upright else (place, start[1] + off), upright, _WORDS)
             for place in places
         ]
-        placed(choices, sheet.points).draw(ink)
+        placed(choices, sheet.marks.taken).draw(ink)
 
 
 def _draw_crosses(
@@ -216,7 +219,11 @@ def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
     lines = [
         (f"{sheet.pattern.mark}   ·   page {number} of {len(tiling.pages)}", 3.2),
         ("PRINT AT ACTUAL SIZE (100 %)", 2.6),
-        ("   ".join(f"{word} {other.name}" for word, other in _neighbours(tiling, page)) or "no neighbours", 2.4),
+        (
+            "   ".join(f"{word} {other.name}" for word, other in _neighbours(tiling, page))
+            or "no neighbours",
+            2.4,
+        ),
     ]
     if setup.factor_words:
         lines.append((setup.factor_words, 2.2))
@@ -224,7 +231,7 @@ def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
     for text, height in lines:
         y -= height
         ink.text(left, y, text, min(height, height * room / max(width(text, height), 1e-9)))
-        y -= 1.1
+        y -= 1.3
     right = page.wide - 0.5
     ink.pen(0.25)
     ink.line(right - short, top - 8.0, right, top - 8.0)
@@ -234,5 +241,3 @@ def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
     ink.text(right - short / 2.0, top - 3.0, f"scale: {unit}", 2.4, anchor=0.5)
     ink.pen(0.13)
     ink.line(0.0, page.high + 0.6, page.wide, page.high + 0.6)
-
-

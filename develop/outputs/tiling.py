@@ -102,7 +102,9 @@ def _laid(points: Array, setup: PageSetup, *, upright: bool) -> Tiling:
     )
     pages = tuple(
         Page(f"{column_name(column)}{row + 1}", column, row, xs[column], ys[row], wide, tall, size)
-        for row, column in sorted({(int(row), int(column)) for row, column in zip(rows, columns, strict=True)})
+        for row, column in sorted(
+            {(int(row), int(column)) for row, column in zip(rows, columns, strict=True)}
+        )
     )
     return Tiling(pages, across, down, (overlap_x, overlap_y))
 

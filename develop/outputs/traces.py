@@ -1,4 +1,4 @@
-"""Points along all that is drawn of a pattern: what tells which pages are empty, and where a word has room."""
+"""Points along all that is drawn of a pattern: they tell which pages are empty, and where a word has room."""
 
 from __future__ import annotations
 
