@@ -66,12 +66,12 @@ class MeasuredLength:
 
     def read(self, given: object, *, unit: str) -> Measured:
         """The measured length and what it is of. Raises InputError."""
-        words = given.split(" of ") if isinstance(given, str) else [given]
+        words: list[object] = [*given.split(" of ")] if isinstance(given, str) else [given]
         if len(words) > 2:
             raise InputError(Problem("", f"{shown(given)} is not a measured length", self.allowed))
-        if len(words) == 2 and words[0].strip()[-1:].isdigit():
+        if len(words) == 2 and str(words[0]).strip()[-1:].isdigit():
             # The unit may stand behind both: 5.98 of 6 in.
-            words = [words[0] + words[1].strip().lstrip("0123456789.-/ "), words[1]]
+            words[0] = str(words[0]) + str(words[1]).strip().lstrip("0123456789.-/ ")
         lengths = [parse_length(word, unit=unit, allowed=self.allowed) for word in words]
         printed, meant = lengths if len(lengths) == 2 else (lengths[0], nominal(self.axis, unit))
         if not (printed > 0.0 and meant > 0.0 and LEAST <= meant / printed <= LARGEST):

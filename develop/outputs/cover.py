@@ -25,6 +25,7 @@ from develop.pattern.pattern import Pattern
 __all__ = ["Cover", "Mapped", "covers"]
 
 _TEXT = 3.0
+_ACTUAL = "PRINT AT ACTUAL SIZE (100 %)"
 _GAP = 7.0
 _BESIDE = 60.0  # [mm] of room beside the square that text can stand in
 _COLUMN = 190.0  # [mm] of text at most
@@ -63,8 +64,11 @@ class Cover:
 def covers(title: str, maps: Sequence[Mapped], setup: PageSetup) -> tuple[Cover, ...]:
     """The pages that come first: one, or more where not all fits on it."""
     wide, high = _room(setup)
-    page = _Flow(high)
     column = min(wide, _COLUMN)
+    head = [(f"{title}   ·   {_ACTUAL}", 3.2)]
+    if setup.factor_words:
+        head.append((setup.factor_words, 3.2))
+    page = _Flow(high, _lines(head, column))
     _write_column(page, title, maps, setup, column)
     beside = wide >= _COLUMN + 160.0 and len(page.pages) == 1
     used = page.down
@@ -109,9 +113,10 @@ def _cover(blocks: Sequence[tuple[Block, float, float]], high: float, setup: Pag
 
 
 class _Flow:
-    """Blocks set one below the other, page by page of a height [mm]."""
+    """Blocks set one below the other, page by page of a height [mm]; head: of every page but the first."""
 
-    def __init__(self, high: float) -> None:
+    def __init__(self, high: float, head: Block) -> None:
+        self._head = head
         self.high, self.left, self.down = high, 0.0, 0.0
         self.pages: list[list[tuple[Block, float, float]]] = [[]]
 
@@ -128,8 +133,8 @@ class _Flow:
 
     def turn(self) -> None:
         """Go on at the top of a new page."""
-        self.pages.append([])
-        self.left, self.down = 0.0, 0.0
+        self.pages.append([(self._head, 0.0, 0.0)])
+        self.left, self.down = 0.0, self._head.high + _GAP
 
 
 def _write_column(page: _Flow, title: str, maps: Sequence[Mapped], setup: PageSetup, wide: float) -> None:
@@ -157,19 +162,24 @@ def _title(title: str, count: int, setup: PageSetup, wide: float) -> Block:
     pages = f"{count} page{'s' if count != 1 else ''} on {kind}"
     lines = [
         (f"{title}: {pages}", 5.5),
-        ("PRINT AT ACTUAL SIZE (100 %), NOT FITTED TO THE PAPER", 4.0),
+        (f"{_ACTUAL}, NOT FITTED TO THE PAPER", 4.0),
         ("This page first: measure the square before you print the rest.", 3.2),
     ]
     if setup.factor_words:
         lines.append((f"{setup.factor_words}: for that printer alone, not for another", 3.2))
+    return _lines(lines, wide)
+
+
+def _lines(lines: Sequence[tuple[str, float]], wide: float) -> Block:
+    """Lines of text, each with the height of its capitals, or smaller if it must be [mm]."""
 
     def draw(ink: Ink, left: float, top: float) -> None:
         for text, height in lines:
             top -= height
             ink.text(left, top, text, height * min(1.0, wide / width(text, height)))
-            top -= 0.8 * height
+            top -= 0.7 * height
 
-    return Block(wide, sum(1.8 * height for _, height in lines), draw)
+    return Block(wide, sum(1.7 * height for _, height in lines), draw)
 
 
 def _texts(units: str) -> tuple[list[str], list[str]]:
@@ -205,7 +215,8 @@ def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
         (f"{pattern.mark}: {count} page{'s' if count != 1 else ''}{way}", 3.4),
         (pattern.facts[1] if len(pattern.facts) > 1 else pattern.kind, 2.6),
     ]
-    top_room = sum(1.7 * height for _, height in caption) + 1.0
+    words = _lines(caption, wide)
+    top_room = words.high + 1.0
     whole = (tiling.across[-1] - tiling.across[0], tiling.down[0] - tiling.down[-1])
     scale = min((wide - 1.0) / whole[0], (high - top_room - 1.0) / whole[1], 0.35)
     outlines = [pattern.cut, *pattern.openings]
@@ -215,11 +226,7 @@ def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
     corner = np.array([tiling.across[0], tiling.down[0]])
 
     def draw(ink: Ink, left: float, top: float) -> None:
-        y = top
-        for text, height in caption:
-            y -= height
-            ink.text(left, y, text, height * min(1.0, wide / width(text, height)))
-            y -= 0.7 * height
+        words.draw(ink, left, top)
         shift = np.array([left + 0.5, top - top_room]) - scale * corner
         shown = scale * dense + shift
         ink.pen(0.13)

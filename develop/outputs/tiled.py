@@ -211,8 +211,8 @@ def _draw_crosses(
 def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
     """The heading: the page's name, the mark, the neighbours, the factors, and a short scale."""
     tiling, top = sheet.tiling, page.high + HEAD
-    ink.text(0.0, top - 8.0, page.name, 8.0)
-    left = width(page.name, 8.0) + 5.0
+    ink.text(1.0, top - 8.0, page.name, 8.0)  # a J reaches to the left of its place
+    left = width(page.name, 8.0) + 6.0
     short, parts, unit = (50.0, 5, "50 mm") if sheet.pattern.units == "mm" else (50.8, 2, "2 in")
     room = page.wide - short - 6.0 - left
     number = tiling.pages.index(page) + 1
