@@ -48,7 +48,7 @@ def test_the_accuracy_page_tells_the_truth_about_its_methods() -> None:
         assert miss.short_a > 0
 
 
-@pytest.mark.parametrize("name", ["accuracy", "directions", "demo"])
+@pytest.mark.parametrize("name", ["accuracy", "directions", "demo", "pages"])
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"
     figure(name).plot(file)

@@ -124,15 +124,15 @@ def _pages(
 ) -> Outcome:
     """The tiled pages into the files; or a warning that they would be too many, a Refusal if nothing else is
     asked for."""
-    from develop.outputs.tiled import MOST, tilings, written
+    from develop.outputs.tiled import MOST, written
 
     paper = PaperSize().text(setup.paper)
-    counts = tilings(patterns, setup)
-    if max(counts) <= MOST:
-        files[f"{mark}-pages.pdf"] = written(patterns, setup, title=mark).data
+    found = written(patterns, setup, title=mark)
+    if found.data:
+        files[f"{mark}-pages.pdf"] = found.data
         words = f"{paper}, {setup.factor_words}" if setup.factor_words else paper
-        return replace(told, pages=counts, paper=words)
-    given = f"{max(counts)} pages of {paper} for one pattern are too many to lay together"
+        return replace(told, pages=found.counts, paper=words)
+    given = f"{max(found.counts)} pages of {paper} for one pattern are too many to lay together"
     if alone:
         raise Refusal(field="paper", given=given, allowed=f"larger paper, for {MOST} pages at most")
     return replace(told, warnings=(f"no tiled pages: {given}; give larger paper",))

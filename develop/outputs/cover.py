@@ -34,6 +34,11 @@ _SMALL = 62.0  # [mm] height of one of several
 _ROLL = 150.0  # [mm] height of a map on a roll
 _ROLL_WIDE = 480.0  # [mm] width of the first page where a roll runs upwards
 _NAME = 4.0  # [mm] height of a page's name on the map, at most
+# Where in its cell it is tried, as shares of the room.
+_PLACES = (
+    (0.5, 0.5), (0.5, 0.2), (0.5, 0.8), (0.15, 0.5), (0.85, 0.5), (0.15, 0.15), (0.85, 0.85),
+    (0.15, 0.85), (0.85, 0.15), (0.5, 0.08), (0.5, 0.92), (0.06, 0.06), (0.94, 0.94), (0.06, 0.94), (0.94, 0.06),
+)  # fmt: skip
 
 
 @dataclass(frozen=True)
@@ -192,13 +197,13 @@ def _texts(units: str) -> tuple[list[str], list[str]]:
             " tells how to find its factors.",
             "Each page has the letter of its column and the number of its row, as on the map. Pages that"
             " would be empty are left out.",
-            "Cut each page back along its dashed lines, at the right and below.",
+            "Cut each page back along its dashed lines, if it has any at the right and below.",
             "Begin at the lower right. Lay each page on its neighbours, line on line and cross on"
             " cross, and tape it.",
         ],
         [
-            "When all is taped, measure the long checks, and see with a straightedge that the thin datum"
-            " lines x = 0 and y = 0 run straight through the joints. Paper stretches: where it matters, mark"
+            "When all is taped, measure the long checks where there are any, and see with a straightedge that"
+            " the thin datum lines x = 0 and y = 0 run straight through the joints. Paper stretches: where it matters, mark"
             " out from the table of the PDF with the large sheet. Cut on the middle of the thick line.",
             " ".join(CAUTIONS),
         ],
@@ -252,11 +257,14 @@ def _map(one: Mapped, wide: float, high: float, setup: PageSetup) -> Block:
 def _name(text: str, cell: tuple[float, float, float, float], points: Array) -> Word:
     """A page's name in its cell of the map, clear of the outline if it can be."""
     left, bottom, right, top = cell
-    height = min(_NAME, 0.3 * (top - bottom), 0.6 * (right - left) / width(text, 1.0))
-    long = width(text, height)
-    choices = [
-        Word(text, (left + x * (right - left - long), bottom + y * (top - bottom - height)), False, height)
-        for x, y in ((0.5, 0.5), (0.5, 0.2), (0.5, 0.8), (0.15, 0.5), (0.85, 0.5), (0.15, 0.15), (0.85, 0.85),
-                     (0.15, 0.85), (0.85, 0.15), (0.5, 0.08), (0.5, 0.92))
-    ]  # fmt: skip
+    largest = min(_NAME, 0.3 * (top - bottom), 0.6 * (right - left) / width(text, 1.0))
+    choices = []
+    for height in (largest, 0.7 * largest):
+        long = width(text, height)
+        choices += [
+            Word(
+                text, (left + x * (right - left - long), bottom + y * (top - bottom - height)), False, height
+            )
+            for x, y in _PLACES
+        ]
     return placed(choices, points)

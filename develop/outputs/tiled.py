@@ -29,7 +29,7 @@ from develop.pattern.pattern import Pattern
 if TYPE_CHECKING:
     from reportlab.pdfgen.canvas import Canvas
 
-__all__ = ["MOST", "TiledPages", "tilings", "written"]
+__all__ = ["MOST", "TiledPages", "written"]
 
 MOST = 500
 """Pages of one pattern that anyone would lay together."""
@@ -41,7 +41,10 @@ _ROOM = 100.0  # [mm] beyond the pattern that its form may draw in
 
 @dataclass(frozen=True)
 class TiledPages:
-    """The file, and how many pages each pattern takes in it beside the first ones that tell how."""
+    """The file, and how many pages each pattern takes in it beside the first ones that tell how.
+
+    data: empty where that would be more than `MOST` of one pattern.
+    """
 
     data: bytes
     counts: tuple[int, ...]
@@ -55,14 +58,17 @@ class _Sheet:
     points: Array
 
 
-def tilings(patterns: Sequence[Pattern], setup: PageSetup) -> tuple[int, ...]:
-    """How many pages each pattern takes."""
-    return tuple(len(tiled(traced(pattern).points, setup).pages) for pattern in patterns)
-
-
 def written(patterns: Sequence[Pattern], setup: PageSetup, *, title: str) -> TiledPages:
     """The patterns on pages, as a PDF file. Raises WriteError if the type face is missing."""
-    sheets = [_sheet(pattern, setup) for pattern in patterns]
+    traces = [traced(pattern) for pattern in patterns]
+    parted = [tiled(each.points, setup) for each in traces]
+    counts = tuple(len(each.pages) for each in parted)
+    if max(counts) > MOST:
+        return TiledPages(b"", counts)
+    sheets = [
+        _Sheet(pattern, tiling, sheet_marks(tiling, each.points, each.words, pattern.units), each.points)
+        for pattern, tiling, each in zip(patterns, parted, traces, strict=True)
+    ]
     buffer = io.BytesIO()
     canvas = canvas_of(buffer, title)
     layers = Layers(canvas)
@@ -88,14 +94,7 @@ def written(patterns: Sequence[Pattern], setup: PageSetup, *, title: str) -> Til
             number += 1
     layers.finish()
     canvas.save()
-    return TiledPages(buffer.getvalue(), tuple(len(sheet.tiling.pages) for sheet in sheets))
-
-
-def _sheet(pattern: Pattern, setup: PageSetup) -> _Sheet:
-    traces = traced(pattern)
-    points = traces.points
-    tiling = tiled(points, setup)
-    return _Sheet(pattern, tiling, sheet_marks(tiling, points, traces.words, pattern.units), points)
+    return TiledPages(buffer.getvalue(), counts)
 
 
 def _start(canvas: Canvas, size: tuple[float, float], setup: PageSetup) -> None:
@@ -211,10 +210,14 @@ def _draw_crosses(
 def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
     """The heading: the page's name, the mark, the neighbours, the factors, and a short scale."""
     tiling, top = sheet.tiling, page.high + HEAD
-    ink.text(1.0, top - 8.0, page.name, 8.0)  # a J reaches to the left of its place
-    left = width(page.name, 8.0) + 6.0
+    # Clear of what is cut off or covered at the joints.
+    sides = {word for word, _ in _neighbours(tiling, page)}
+    first, last = (tiling.overlap[0] / 2.0 * (word in sides) for word in ("left", "right"))
+    ink.text(first + 1.0, top - 8.0, page.name, 8.0)  # a J reaches to the left of its place
+    left = first + width(page.name, 8.0) + 6.0
     short, parts, unit = (50.0, 5, "50 mm") if sheet.pattern.units == "mm" else (50.8, 2, "2 in")
-    room = page.wide - short - 6.0 - left
+    right = page.wide - last - 0.5
+    room = right - short - 6.0 - left
     number = tiling.pages.index(page) + 1
     lines = [
         (f"{sheet.pattern.mark}   ·   page {number} of {len(tiling.pages)}", 3.2),
@@ -232,7 +235,6 @@ def _head(ink: Ink, sheet: _Sheet, page: Page, setup: PageSetup) -> None:
         y -= height
         ink.text(left, y, text, min(height, height * room / max(width(text, height), 1e-9)))
         y -= 1.3
-    right = page.wide - 0.5
     ink.pen(0.25)
     ink.line(right - short, top - 8.0, right, top - 8.0)
     for n in range(parts + 1):

@@ -2,13 +2,14 @@
 
 The pages of a grid share an overlap. Half-way in it runs the line at which two pages are joined; so each
 page has a cell of its own, and the cells cover the sheet without a gap. A page is left out if nothing is
-drawn in its cell.
+drawn in its cell, unless it links pages that would else lie loose, as those round an opening in the midst.
 """
 
 from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from itertools import product
 
 import numpy as np
 
@@ -102,11 +103,41 @@ def _laid(points: Array, setup: PageSetup, *, upright: bool) -> Tiling:
     )
     pages = tuple(
         Page(f"{column_name(column)}{row + 1}", column, row, xs[column], ys[row], wide, tall, size)
-        for row, column in sorted(
-            {(int(row), int(column)) for row, column in zip(rows, columns, strict=True)}
-        )
+        for row, column in sorted(_linked(set(zip(rows.tolist(), columns.tolist(), strict=True))))
     )
     return Tiling(pages, across, down, (overlap_x, overlap_y))
+
+
+def _linked(places: set[tuple[int, int]]) -> set[tuple[int, int]]:
+    """The places (row, column), and those between them that make all hang together by their sides."""
+    loose, groups = set(places), []
+    while loose:
+        ahead = [loose.pop()]
+        groups.append(set(ahead))
+        while ahead:
+            row, column = ahead.pop()
+            found = {(row + 1, column), (row - 1, column), (row, column + 1), (row, column - 1)} & loose
+            loose -= found
+            groups[-1] |= found
+            ahead += found
+    # In a fixed order, whatever order sets have.
+    first, *others = sorted(groups, key=min)
+    while others:
+        near = [min(product(first, other), key=_away) for other in others]
+        pair = min(near, key=_away)
+        (row, column), (to_row, to_column) = pair
+        first |= {(each, column) for each in range(min(row, to_row), max(row, to_row) + 1)}
+        first |= {(to_row, each) for each in range(min(column, to_column), max(column, to_column) + 1)}
+        first |= others.pop(near.index(pair))
+    return first
+
+
+def _away(
+    pair: tuple[tuple[int, int], tuple[int, int]],
+) -> tuple[int, tuple[tuple[int, int], tuple[int, int]]]:
+    """How many sides lie between two places; among equals their own order decides."""
+    (row, column), (to_row, to_column) = pair
+    return abs(row - to_row) + abs(column - to_column), pair
 
 
 def _parted(

@@ -18,9 +18,10 @@ from shapely import LineString, Point, Polygon
 
 from develop.outputs.paper import PAPERS, PageSetup, Paper
 from develop.outputs.pdf import pdf
-from develop.outputs.tiled import tilings, written
+from develop.outputs.tiled import written
 from develop.outputs.tiling import tiled
 from develop.pattern.layout import lettered
+from develop.pattern.pattern import Outline
 from tests.outputs.beziers import sampled
 from tests.pieces.making import make
 
@@ -46,6 +47,10 @@ def transition():
 @pytest.fixture(scope="module")
 def pages(transition):
     return read([transition])
+
+
+def counts_of(patterns, setup):
+    return written(patterns, setup, title="T1").counts
 
 
 class Drawn:
@@ -165,7 +170,7 @@ def test_the_way_that_needs_fewer_pages_is_taken(samples):
     for shape in ((1256.6, 450.0), (300.0, 800.0), (250.0, 180.0)):
         pattern = samples.rectangle(*shape)
         counts = [
-            tilings([pattern], PageSetup(A4, orientation=way))[0]
+            counts_of([pattern], PageSetup(A4, orientation=way))[0]
             for way in ("portrait", "landscape", "fewest")
         ]
         assert counts[2] == min(counts[:2])
@@ -298,6 +303,28 @@ def test_a_page_is_left_out_only_if_nothing_is_drawn_in_its_cell(pages):
             assert not inside.any()
 
 
+@pytest.mark.parametrize("way", ["portrait", "landscape"])
+def test_pages_round_an_opening_hang_together_with_the_rest(samples, way):
+    hole = Outline(
+        (("opening", samples.arc(np.array([1500.0, 1000.0]), 60.0, 0.0, 2 * np.pi)),), np.pi * 3600
+    )
+    pattern = replace(
+        samples.rectangle(3000.0, 2000.0), openings=(hole,), labels=(), arrows=(), lines_as="none"
+    )
+    places = set(grid(read([pattern], PageSetup(A4, orientation=way))))
+    reached, ahead = set(), [min(places)]
+    while ahead:
+        column, row = ahead.pop()
+        reached.add((column, row))
+        near = {(column + 1, row), (column - 1, row), (column, row + 1), (column, row - 1)}
+        ahead += (near & places) - reached
+    assert reached == places
+    # A border all round, the hole, and one way to it: far from the whole grid.
+    columns, rows = (max(each) + 1 for each in zip(*places, strict=True))
+    assert len(places) <= 2 * (columns + rows) - 4 + 4 + min(columns, rows) // 2
+    assert len(places) < 0.8 * columns * rows
+
+
 def test_pages_have_names_labels_a_map_and_their_neighbours(pages):
     labels = pages.page_labels
     assert labels[0] == "how to"
@@ -403,7 +430,7 @@ def test_several_patterns_have_a_map_each_and_pages_by_their_mark():
     patterns = [lettered(pattern) for pattern in built.patterns]
     reader = read(patterns)
     first = words(reader.pages[0])
-    for pattern, count in zip(patterns, tilings(patterns, PageSetup(A4)), strict=True):
+    for pattern, count in zip(patterns, counts_of(patterns, PageSetup(A4)), strict=True):
         assert f"{pattern.mark}: {count} page" in first
         assert sum(label.startswith(f"{pattern.mark} ") for label in reader.page_labels) == count
 
