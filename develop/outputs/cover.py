@@ -37,7 +37,8 @@ _NAME = 4.0  # [mm] height of a page's name on the map, at most
 # Where in its cell it is tried, as shares of the room.
 _PLACES = (
     (0.5, 0.5), (0.5, 0.2), (0.5, 0.8), (0.15, 0.5), (0.85, 0.5), (0.15, 0.15), (0.85, 0.85),
-    (0.15, 0.85), (0.85, 0.15), (0.5, 0.08), (0.5, 0.92), (0.06, 0.06), (0.94, 0.94), (0.06, 0.94), (0.94, 0.06),
+    (0.15, 0.85), (0.85, 0.15), (0.5, 0.08), (0.5, 0.92), (0.06, 0.06), (0.94, 0.94),
+    (0.06, 0.94), (0.94, 0.06),
 )  # fmt: skip
 
 
@@ -203,8 +204,8 @@ def _texts(units: str) -> tuple[list[str], list[str]]:
         ],
         [
             "When all is taped, measure the long checks where there are any, and see with a straightedge that"
-            " the thin datum lines x = 0 and y = 0 run straight through the joints. Paper stretches: where it matters, mark"
-            " out from the table of the PDF with the large sheet. Cut on the middle of the thick line.",
+            " the thin datum lines x = 0 and y = 0 run straight through the joints. Paper stretches: where"
+            " it matters, mark out from the table of the PDF with the large sheet. Cut on the middle of the thick line.",
             " ".join(CAUTIONS),
         ],
     )
