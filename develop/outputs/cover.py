@@ -205,7 +205,8 @@ def _texts(units: str) -> tuple[list[str], list[str]]:
         [
             "When all is taped, measure the long checks where there are any, and see with a straightedge that"
             " the thin datum lines x = 0 and y = 0 run straight through the joints. Paper stretches: where"
-            " it matters, mark out from the table of the PDF with the large sheet. Cut on the middle of the thick line.",
+            " it matters, mark out from the table of the PDF with the large sheet. Cut on the"
+            " middle of the thick line.",
             " ".join(CAUTIONS),
         ],
     )
