@@ -48,7 +48,59 @@ def test_the_accuracy_page_tells_the_truth_about_its_methods() -> None:
         assert miss.short_a > 0
 
 
-@pytest.mark.parametrize("name", ["accuracy", "directions", "demo", "pages"])
+def test_the_page_of_touching_edges_shows_what_its_script_finds() -> None:
+    from math import cos, pi, sin, sqrt, tan
+
+    text = (DOCS / "touching.md").read_text(encoding="utf-8")
+    assert figure("touching").page(text) == text
+    # By elementary geometry: half the wall times tan(mitre); along the joint's normal; summed over four joints;
+    # 2 t sin(mitre); and a saddle's depth from bore to mid-thickness.
+    mitre, radius = pi / 16, 1921 / (2 * pi)
+    away = sum(12 * sin(mitre) * cos((2 * k + 1) * mitre) for k in range(4))
+    saddle = sqrt(radius**2 - 127**2) - sqrt(radius**2 - 131.75**2)
+    found = [float(value) for _, value in figure("touching").costs()]
+    expected = [6 * tan(mitre), 12 * sin(mitre), away, 24 * sin(mitre), saddle]
+    assert found == pytest.approx(expected, abs=0.05)
+    assert found[:2] + found[3:] == pytest.approx(expected[:2] + expected[3:], abs=0.006)
+
+
+def test_the_allowances_page_shows_what_its_script_finds() -> None:
+    text = (DOCS / "allowances.md").read_text(encoding="utf-8")
+    assert figure("allowances").page(text) == text
+
+
+def test_the_page_of_thickness_shows_what_its_script_finds() -> None:
+    text = (DOCS / "thickness.md").read_text(encoding="utf-8")
+    assert figure("thickness").page(text) == text
+
+
+def test_the_page_of_thickness_tells_the_truth() -> None:
+    # Steiner, right cones in thick plate, and the handbook's 0.64 T for a bend, by elementary geometry.
+    from math import hypot, pi
+
+    from scipy.special import ellipe
+
+    def girth(width: float, height: float) -> float:
+        return 2.0 * width * float(ellipe(1.0 - (height / width) ** 2))
+
+    ellipse, lean = girth(600.0, 300.0), 700.0 / hypot(700.0, 750.0)
+    expected = [
+        -10.0 * pi,
+        girth(610.0, 310.0) - ellipse - 10.0 * pi,
+        girth(650.8, 350.8) - ellipse - 50.8 * pi,
+        -16.0 * pi * lean,
+        16.0 * pi * (1.0 - lean),
+        -16.0 * pi / lean,
+        16.0 * pi * (1.0 - 1.0 / lean),
+        4.0 * 2.0 * (pi / 4.0 - 0.64),
+        2.0 * pi * 1.3,
+        2.0 * pi * 50.0 * 750.0 / 700.0,
+    ]
+    # The slightly leaning sheet of a slip joint is a hundredth of a micron off.
+    assert [out for _, _, out in figure("thickness").rows()] == pytest.approx(expected, abs=1e-5)
+
+
+@pytest.mark.parametrize("name", ["accuracy", "allowances", "directions", "demo", "touching", "pages"])
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"
     figure(name).plot(file)

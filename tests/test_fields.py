@@ -34,12 +34,16 @@ from develop.pieces.reference import command_line, job_text, kind_text, kinds_pa
 COMMON = {
     "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
     "face", "marks", "flow", "seam", "edge_a", "edge_b", "gap", "gap_on", "trim_a", "trim_b", "trim_line",
-    "pre_bend", "weld_shrinkage",
+    "pre_bend", "weld_shrinkage", "lining",
+    "templates", "template_sections", "template_share", "floor", "tape", "tape_tolerance",
 }  # fmt: skip
 OWN = {
-    "straight": {"section", "length", "cut_a", "cut_b"},
-    "transition": {"end_a", "end_b", "length", "offset", "flush", "rotate", "tilt", "kicks", "die", "swing"},
-}
+    "straight": {"section", "length", "cut_a", "cut_b", "fit_a", "fit_b", "clearance"},
+    "transition": {
+        "end_a", "end_b", "length", "offset", "flush", "rotate", "tilt", "kicks", "die", "swing", "fit_a", "fit_b",
+        "clearance", "edge_cut", "collar_a", "collar_b",
+    },
+}  # fmt: skip
 
 
 def test_the_list_of_kinds_and_the_classes_agree() -> None:

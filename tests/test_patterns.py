@@ -98,3 +98,14 @@ def test_the_demo_runs_from_the_command_line_and_gives_the_same_bytes_again(tmp_
     record = json.loads((folders[0] / "T2.json").read_text(encoding="utf-8"))
     assert all(each["holds"] for each in record["checks"])
     assert record["patterns"][0]["net"]["edges"].keys() == {"a", "b", "seam_left", "seam_right"}
+
+
+def test_the_weather_cone_fits_round_the_taped_flue() -> None:
+    """A right cone of diameter D and height H is D (1 - h / H) wide at h: no less than the flue at its widest,
+    and little more."""
+    job = tomllib.loads((PATTERNS / "foundry_yard.toml").read_text(encoding="utf-8"))
+    flue, cone = ({each["mark"]: each for each in job["piece"]}[mark] for mark in ("R1", "R2"))
+    taped = [float(reading.partition(":")[2]) for reading in flue["section"].split()[1:]]
+    wide = float(cone["section"].split()[1]) * (1.0 - cone["cut_b"] / cone["height"])
+    assert cone["sizes"] == "inside"
+    assert max(taped) < wide < max(taped) + 5.0

@@ -4,14 +4,13 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-import numpy as np
-
 from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.checks.fold import closing_miss, folded
 from develop.checks.joint import Side, joint_miss
 from develop.checks.marked import drawn_miss, marks_miss, roll_lines_miss, table_miss
 from develop.checks.openings import opening_miss
+from develop.checks.touching import touching_misses
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid.meeting import MeetingEnd
 from develop.solid.solid import Solid
@@ -53,13 +52,14 @@ class Check:
 def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
     """The checks of a joint: equal edges that lie on each other within the limit of the closing check.
 
-    Where one sheet is developed on another surface than its edge lies on, the lengths differ.
+    Where one sheet is developed on another surface than its edge lies on, the lengths differ; so they do
+    between a taper, whose thickness lies square to its plate, and a parallel side.
     """
     limit = max(_SMALLEST, _RELATIVE * side.length)
     found = Check(
         f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"
     )
-    if side.distance != other.distance:
+    if side.distance != other.distance or (side.distance and side.tapers != other.tapers):
         return (found,)
     return (Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"), found)
 
@@ -87,8 +87,7 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     left, right = (net.curve(f"seam_{side}") for side in ("left", "right"))
     assert left is not None
     assert right is not None
-    seam = solid.seam_line
-    true_length = float(np.linalg.norm(seam[1] - seam[0]))
+    true_length = solid.seam_length
     limit = max(1e-6, _RELATIVE * true_length)
     checks += [
         Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
@@ -122,6 +121,15 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm"),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
+    for name in "ab":
+        touching = touching_misses(pattern, solid, lines, name)
+        if touching is None:
+            continue
+        off, over = touching
+        words = f"edge at END {name.upper()}, at the joint"
+        checks.append(Check(f"{words}: largest distance of what touches", 0.0, off, _CLOSING, "mm"))
+        if over is not None:
+            checks.append(Check(f"{words}: largest overlap of the wall", 0.0, over, _CLOSING, "mm"))
     for outline, joint in zip(pattern.openings, solid.openings, strict=True):
         checks += _opening(pattern, solid, outline, joint)
     return tuple(checks)

@@ -9,9 +9,12 @@ import numpy as np
 from develop.checks.check import Check
 from develop.checks.crossings import crossings, meet, within
 from develop.checks.drawn import drawn_area, drawn_length
+from develop.pattern.curve import Curve
 from develop.pattern.pattern import Outline, Pattern
 from develop.quadrature import Array
+from develop.solid.end import End
 from develop.solid.flat import FlatPlate, FlatRing, Holes, Stretch
+from develop.solid.template import FlatTemplate, FloorOutlines
 
 __all__ = ["check_flat"]
 
@@ -22,7 +25,9 @@ _DRAWN_LENGTH = 0.01
 _PLACE = 1e-3
 
 
-def check_flat(pattern: Pattern, part: FlatRing | FlatPlate) -> tuple[Check, ...]:
+def check_flat(
+    pattern: Pattern, part: FlatRing | FlatPlate | FlatTemplate | FloorOutlines
+) -> tuple[Check, ...]:
     """Every check of a flat pattern [mm, mm²].
 
     Expected lengths come from support functions (Cauchy's formula, Steiner's for parallels), areas
@@ -57,6 +62,11 @@ def check_flat(pattern: Pattern, part: FlatRing | FlatPlate) -> tuple[Check, ...
     ]
     if part.holes is not None and part.holes.here:
         checks += _holes(pattern, part.holes, part.shift, closed=part.holes.here == part.holes.count)
+    if isinstance(part, FlatTemplate):
+        (profile,) = (curve for name, curve in pattern.net.curves if name == "profile")
+        checks.append(_off("profile", profile, part.end("profile"), part.shift))
+    if isinstance(part, FloorOutlines):
+        checks += _outlines(pattern, part)
     outlines = (pattern.cut, *pattern.openings)
     checks += [
         Check(
@@ -65,6 +75,26 @@ def check_flat(pattern: Pattern, part: FlatRing | FlatPlate) -> tuple[Check, ...
         Check("outlines cross themselves", 0.0, float(sum(map(crossings, outlines))), 0.0, "times"),
     ]
     return tuple(checks)
+
+
+def _off(name: str, curve: Curve, end: End, shift: Array) -> Check:
+    """How far a drawn curve lies off the closed curve that it is, or is a part of."""
+    points = curve.polyline(_PLACE) - shift
+    far = end.distance(np.column_stack([points, np.zeros(len(points))]))
+    return Check(f"{name}, largest distance from its section", 0.0, float(far.max()), _PLACE, "mm")
+
+
+def _outlines(pattern: Pattern, part: FloorOutlines) -> list[Check]:
+    """The outlines drawn on a sheet: the girth of each by Cauchy's formula, and its place."""
+    found = []
+    for (name, end), curve in zip(part.outlines, pattern.thin, strict=True):
+        limit = max(_SMALLEST, _RELATIVE * end.girth)
+        found += [
+            Check(f"outline of {name} against its girth", end.girth, curve.length, limit, "mm"),
+            Check(f"outline of {name} as drawn", end.girth, drawn_length(curve), _DRAWN_LENGTH, "mm"),
+            _off(f"outline of {name}", curve, end, part.shift),
+        ]
+    return found
 
 
 def _holes(pattern: Pattern, holes: Holes, shift: Array, *, closed: bool) -> list[Check]:

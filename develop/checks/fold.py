@@ -63,8 +63,7 @@ def _fold(pattern: Pattern, solid: Solid) -> _Folded:
     def turned(vector: Array) -> Array:
         return vector[:, :1] * x + vector[:, 1:] * y
 
-    start = solid.strip(np.array([solid.seam]))
-    origin = start.a[0] + solid.distance * start.normal[0]
+    origin = solid.sheet_seam[0]
     a = origin + np.vstack([np.zeros(3), np.cumsum(turned(np.diff(flat_a, axis=0)), axis=0)])
     along = np.vstack([turned(axis[:-1]), axis[-1:, :1] * x[-1] + axis[-1:, 1:] * y[-1]])
     b = a + np.hypot(*leg.T)[:, None] * along
@@ -112,13 +111,14 @@ def folded_on(pattern: Pattern, solid: Solid, points: Array) -> Array:
 def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Array] | None = None) -> float:
     """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first.
 
+    Of level edges also from the planes of the ends.
+
     lines: what `folded` returns, if the caller has it.
     """
     a, b, normal = folded(pattern, solid) if lines is None else lines
-    lift = solid.distance * normal
     closing = max(float(np.linalg.norm(end[-1] - end[0])) for end in (a, b))
     u = pattern.rulings.u[::-1] if pattern.face == "inside" else pattern.rulings.u
-    return max(solid.misses(a - lift, b - lift, u), closing)
+    return max(solid.misses(*solid.on_ends(a, b, normal), u), solid.plane_miss(a, b), closing)
 
 
 def _running_product(half_angle: Array, axis: Array) -> tuple[_Complex, _Complex]:

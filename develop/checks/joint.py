@@ -7,12 +7,14 @@ from dataclasses import dataclass
 import numpy as np
 
 from develop.checks.fold import folded
+from develop.checks.touching import touching_points
 from develop.pattern.pattern import Pattern
 from develop.quadrature import Array
 from develop.solid import Made, Patch
 from develop.solid.end import End
 from develop.solid.frame import Frame
 from develop.solid.solid import Solid
+from develop.solid.touching import TouchingEnd
 
 __all__ = ["Side", "joint_miss"]
 
@@ -42,6 +44,11 @@ class Side:
         return self.solid.distance if isinstance(self.solid, Solid) else 0.0
 
     @property
+    def tapers(self) -> bool:
+        """Whether the part's thickness does not lie in the plane of its end."""
+        return isinstance(self.solid, Solid) and self.solid.side == "hull"
+
+    @property
     def curve(self) -> End:
         """Where the edge should lie, in the part's own frame."""
         if isinstance(self.solid, Solid):
@@ -50,10 +57,15 @@ class Side:
         return self.solid.end(self.end)
 
     def edge(self) -> Array:
-        """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame."""
+        """Points (n, 3) [mm] of the folded edge, on the given surface, in the piece frame; of an edge that
+        touches another part what touches it."""
         if isinstance(self.solid, Solid):
-            a, b, normal = folded(self.pattern, self.solid)
-            points = (a if self.end == "a" else b) - self.solid.distance * normal
+            lines = folded(self.pattern, self.solid)
+            a, b = self.solid.on_ends(*lines)
+            points = a if self.end == "a" else b
+            touching = touching_points(self.pattern, self.solid, lines, self.end)
+            if touching is not None:
+                points = touching[1]
         else:
             assert not isinstance(self.solid, Patch)
             outlines = (self.pattern.net, *self.pattern.openings)
@@ -68,5 +80,7 @@ def joint_miss(side: Side, other: Side) -> float:
     misses = []
     for mine, yours in ((side, other), (other, side)):
         local = (mine.edge() - yours.frame.origin) @ yours.frame.axes.T
-        misses.append(float(np.max(yours.curve.distance(local))))
+        curve = yours.curve
+        off = curve.off(local) if isinstance(curve, TouchingEnd) else curve.distance(local)
+        misses.append(float(np.max(off)))
     return max(misses)

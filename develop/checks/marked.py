@@ -168,11 +168,22 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     """Largest difference [mm] of the table's lengths and points from finished piece and roll lines."""
     rows = pattern.divisions
     section = solid.end_a.section
-    least, most = solid.lengths(section.at_direction(np.array([row.direction for row in rows])))
     points = np.array([(row.a, row.b) for row in rows])
+    dense = np.stack([pattern.rulings.a, pattern.rulings.b], axis=1)
+    # At a sharp corner many lines start in one direction: which of them a row is, its points tell.
+    apart = np.abs(points[:, None] - dense[None]).max(axis=(2, 3))
+    u = pattern.rulings.u[apart.argmin(axis=1)]
+    strip = solid.sheet_strip(u)
+    true = np.linalg.norm(strip.b - strip.a, axis=1)
+    # Of a flat triangle that starts in one point all the lines belong there.
+    least, most = solid.lengths(u)
+    fan = most > least + _TOGETHER
+    least, most = np.where(fan, least, true), np.where(fan, most, true)
+    stated = section.at_direction(np.array([row.direction for row in rows]))
+    aside = np.linalg.norm(solid.end_a.point(u) - solid.end_a.point(stated), axis=1)
     flat = np.linalg.norm(points[:, 1] - points[:, 0], axis=1)
     length = np.array([row.length for row in rows])
-    misses = [flat - length]
+    misses = [flat - length, aside]
     if not any(line.press for line in pattern.lines):
         # Of a corner's press lines several start in one direction, and stop short of the edges.
         drawn = np.array([(line.start, line.end) for line in pattern.lines])
@@ -189,15 +200,19 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
     lines = pattern.rulings
     mirrored = pattern.face == "inside"
     worst = 0.0
-    for edge, flat, space, end in (("a", lines.a, a, solid.end_a), ("b", lines.b, b, solid.end_b)):
+    given_a, given_b = solid.on_ends(a, b, normal)
+    for edge, flat, space, end in (
+        ("a", lines.a, given_a, solid.end_a),
+        ("b", lines.b, given_b, solid.end_b),
+    ):
         marks = [mark for mark in pattern.marks if mark.edge == edge]
         if not marks:
             continue
         places = _beside(np.array([mark.at for mark in marks]), flat[::-1] if mirrored else flat)
         if edge == "b" and solid.cut_b is not None:
             # A cut across the side has no centre of its own: its marks are on end A's lines.
-            space, end = a, solid.end_a
-        at = _seen(end, places.between(space - solid.distance * normal))
+            space, end = given_a, solid.end_a
+        at = _seen(end, places.between(space))
         to = np.array([_DIRECTIONS[mark.text] for mark in marks])
         aside = np.abs(to[:, 0] * at[:, 1] - to[:, 1] * at[:, 0])
         beyond = np.where((to * at).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))

@@ -12,7 +12,8 @@ from develop.cli.report import report
 from develop.errors import InputError, Problem
 from develop.job.file import read_job
 from develop.job.output_fields import outputs_of
-from develop.job.pipeline import make
+from develop.job.pipeline import Outcome, make
+from develop.job.writing import Writing
 from develop.pieces.fields import Declared
 from develop.units import sheet_unit
 
@@ -39,8 +40,6 @@ def command(summary: str) -> click.Command:
 
 def _make_all(values: Mapping[str, object]) -> int:
     folder = str(values["out"])
-    worst = 0
-    problems: list[Problem] = []
     job = read_job(str(values["file"]))
     formats = values["formats"] or job.formats
     assert isinstance(formats, tuple)
@@ -52,20 +51,25 @@ def _make_all(values: Mapping[str, object]) -> int:
     if job.name:
         click.echo(f"{job.name}: {len(job.pieces)} piece{'s' if len(job.pieces) != 1 else ''}")
     taken: dict[str, str] = {}
-    for placed in job.pieces:
-        try:
-            outcome = make(
-                placed.piece,
-                folder=folder,
-                formats=formats,
-                outputs=outputs,
-                units=sheet_unit(job.units),
-                taken=taken,
-            )
-        except InputError as error:
-            problems += [each.at(placed.place(each.field)) for each in error.problems]
-        else:
-            worst = max(worst, report(outcome, folder))
-    if problems:
-        raise InputError(problems)
-    return worst
+    problems: list[Problem] = []
+    outcomes: list[Outcome] = []
+    with Writing(folder) as writing:
+        for placed in job.pieces:
+            try:
+                outcome = make(
+                    placed.piece,
+                    folder=folder,
+                    formats=formats,
+                    outputs=outputs,
+                    units=sheet_unit(job.units),
+                    taken=taken,
+                    writing=writing,
+                )
+            except InputError as error:
+                problems += [each.at(placed.place(each.field)) for each in error.problems]
+            else:
+                outcomes.append(outcome)
+        if problems:
+            raise InputError(problems)
+        writing.place()
+    return max(report(each, folder) for each in outcomes)

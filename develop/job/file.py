@@ -8,7 +8,7 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 
-from develop.errors import InputError, Problem, Refusal
+from develop.errors import InputError, Problem
 from develop.job.lines import Path, lines_of
 from develop.job.output_fields import FORMATS, FORMATS_FIELD, OUTPUT_FIELDS, Outputs, outputs_of
 from develop.job.writing import file_key
@@ -316,15 +316,15 @@ def _piece(
         path = field.split(".")
         return places.of("defaults", *path) if path[0] in shared else places.of("piece", index, *path)
 
-    piece, found = read_piece(kind, {**shared, **own}, unit=unit)
+    piece, found = read_piece(kind, {**shared, **own}, unit=unit, shared=shared)
     problems += [each.at(place(each.field)) for each in found]
     if piece is None:
         return None
     piece = with_rules(piece, rules)
     try:
         piece.check()
-    except Refusal as refusal:
-        problems += [replace(each, place=place(each.field)) for each in refusal.problems]
+    except InputError as error:
+        problems += [each.at(place(each.field)) for each in error.problems]
         return None
     return Placed(piece, place)
 

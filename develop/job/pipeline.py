@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from develop.errors import Refusal
 from develop.job.output_fields import FORMATS, Outputs, PaperSize, page_setup
-from develop.job.writing import file_key, write_all
+from develop.job.writing import Writing, file_key, write_all
 from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import OPPOSITE, builds_of
 
@@ -57,13 +57,15 @@ def make(
     outputs: Outputs = Outputs(),  # noqa: B008  # frozen
     units: str = "mm",
     taken: dict[str, str] | None = None,
+    writing: Writing | None = None,
 ) -> Outcome:
     """Write the files of one piece, all or none of them; older files are replaced whole.
 
     outputs: how cutting files are drawn. units: of the figures on the sheets, `mm` or `in`; the record
-    and the cutting files are always in mm. taken: the files of
-    this job's other pieces, each with its mark; those of this piece are added. Raises Refusal for a
-    piece that cannot be, or whose files are another's, WriteError for a place that cannot be written.
+    and the cutting files are always in mm. taken: the files of this job's other pieces, each with its mark;
+    those of this piece are added. writing: takes the files in, to be put in place later with those of the
+    other pieces. Raises Refusal for a piece that cannot be, or whose files are another's, WriteError for a
+    place that cannot be written.
     """
     builds = builds_of(piece, units=units)
     checks = checks_of_all(builds)
@@ -108,7 +110,10 @@ def make(
         else:
             files |= _files(each, piece, builds, checks, outputs)
     _take(files, piece.mark, {} if taken is None else taken)
-    write_all(folder, files)
+    if writing is None:
+        write_all(folder, files)
+    else:
+        writing.add(files)
     warnings = tuple(dict.fromkeys(each for built in builds for each in built.warnings))
     return replace(told, files=tuple(files), warnings=(*warnings, *told.warnings))
 
@@ -240,7 +245,7 @@ def _files(
         if part.frames and isinstance(part.solid, Solid) and part.solid.openings
     ]
     if not headers:
-        own = builds[0].patterns
+        own = [part.pattern for part in builds[0].parts if isinstance(part.solid, Solid)]
         facts = patterns[0].facts[1:4]
         if own[0].mark != mark:
             # Of several parts only what all say is true of the piece.

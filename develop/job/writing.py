@@ -5,11 +5,11 @@ from __future__ import annotations
 import os
 from collections.abc import Mapping
 from contextlib import suppress
-from os.path import isdir, join, lexists
+from os.path import dirname, isdir, join, lexists
 
 from develop.errors import WriteError
 
-__all__ = ["file_key", "write_all"]
+__all__ = ["Writing", "file_key", "write_all"]
 
 _ELSEWHERE = "give another folder"
 _REMEDIES: dict[type[Exception], str] = {
@@ -27,48 +27,98 @@ def file_key(name: str) -> str:
     return normalize("NFC", name).casefold()
 
 
+class Writing:
+    """Files written beside their places in a folder, and put into them all together or not at all.
+
+    As a context: what was not placed when it ends is taken away again, with the folders that were made
+    for it. Every method raises WriteError.
+    """
+
+    def __init__(self, folder: str) -> None:
+        self.folder = folder
+        self._new: dict[str, str] = {}
+        self._made: list[str] = []
+
+    def __enter__(self) -> Writing:
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        for each in self._new.values():
+            with suppress(OSError, UnicodeError):
+                os.unlink(each)
+        for each in self._made:
+            with suppress(OSError):
+                os.rmdir(each)
+
+    def add(self, files: Mapping[str, bytes]) -> None:
+        """Write files by name, each beside its place; the folder is made if it is not there."""
+        try:
+            if not isdir(self.folder):
+                self._made += _missing(self.folder)
+            os.makedirs(self.folder, exist_ok=True)
+        except (OSError, ValueError) as error:
+            raise _failed(self.folder, error) from None
+        name = ""
+        try:
+            for name, data in files.items():
+                if isdir(join(self.folder, name)):
+                    raise IsADirectoryError(21, "a folder of that name is in the way")
+                new = join(self.folder, f".{name}.{os.getpid()}.new")
+                with open(new, "xb") as file:
+                    self._new[name] = new
+                    file.write(data)
+        except (OSError, UnicodeError) as error:
+            raise _failed(join(self.folder, name), error) from None
+
+    def place(self) -> None:
+        """Put all into their places. Where that fails, or is stopped, every file is as it was."""
+        places = {name: join(self.folder, name) for name in self._new}
+        old = {name: join(self.folder, f".{name}.{os.getpid()}.old") for name in self._new}
+        kept: dict[str, str] = {}
+        placed: list[str] = []
+        name = ""
+        try:
+            for name, at in places.items():
+                if lexists(at):
+                    _copy(at, old[name])
+                    kept[name] = old[name]
+            for name, at in places.items():
+                placed.append(name)
+                os.replace(self._new[name], at)
+        except BaseException as error:
+            for each in placed:
+                with suppress(OSError):
+                    if each in kept:
+                        os.replace(kept[each], places[each])
+                    elif not lexists(self._new[each]):
+                        os.unlink(places[each])
+            if isinstance(error, OSError | UnicodeError):
+                raise _failed(places.get(name, self.folder), error) from None
+            raise
+        finally:
+            for each in old.values():
+                with suppress(OSError, UnicodeError):
+                    os.unlink(each)
+        self._new, self._made = {}, []
+
+
 def write_all(folder: str, files: Mapping[str, bytes]) -> None:
     """Write files by name into a folder, which is made if it is not there.
 
-    Each is written beside its place and then put into it whole. Raises WriteError; then, and when
-    the program is stopped on the way, every file is as it was.
+    Raises WriteError; then, and when the program is stopped on the way, every file is as it was.
     """
-    try:
-        os.makedirs(folder, exist_ok=True)
-    except (OSError, ValueError) as error:
-        raise _failed(folder, error) from None
-    new = {name: join(folder, f".{name}.{os.getpid()}.new") for name in files}
-    old = {name: join(folder, f".{name}.{os.getpid()}.old") for name in files}
-    kept: dict[str, str] = {}
-    placed: list[str] = []
-    name = ""
-    try:
-        for name, data in files.items():
-            if isdir(join(folder, name)):
-                raise IsADirectoryError(21, "a folder of that name is in the way")
-            with open(new[name], "xb") as file:
-                file.write(data)
-        for name in files:
-            if lexists(join(folder, name)):
-                _copy(join(folder, name), old[name])
-                kept[name] = old[name]
-        for name in files:
-            placed.append(name)
-            os.replace(new[name], join(folder, name))
-    except BaseException as error:
-        for each in placed:
-            with suppress(OSError):
-                if each in kept:
-                    os.replace(kept[each], join(folder, each))
-                elif not lexists(new[each]):
-                    os.unlink(join(folder, each))
-        if isinstance(error, OSError | UnicodeError):
-            raise _failed(join(folder, name), error) from None
-        raise
-    finally:
-        for each in (*new.values(), *old.values()):
-            with suppress(OSError, UnicodeError):
-                os.unlink(each)
+    with Writing(folder) as writing:
+        writing.add(files)
+        writing.place()
+
+
+def _missing(folder: str) -> list[str]:
+    """The folder and those above it that are not there, the deepest first."""
+    found = []
+    while folder and not lexists(folder):
+        found.append(folder)
+        folder = dirname(folder)
+    return found
 
 
 def _copy(source: str, target: str) -> None:

@@ -42,7 +42,7 @@ def panels(pattern: Pattern, *, tiny: bool, heights: Sequence[float]) -> Iterato
     fixed = [
         square(sides[0 if tiny else 1], pattern.units),
         title(pattern, _WIDE),
-        view(_WIDE),
+        *((view(_WIDE),) if pattern.facing else ()),
         notes(_texts(pattern), _WIDE),
     ]
     for height in heights:

@@ -11,13 +11,16 @@ from __future__ import annotations
 import io
 import math
 from collections.abc import Sequence
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 from numpy.typing import NDArray
 
 from develop.pattern.curve import Array
 from develop.pattern.lettering import CAPITAL, text_width
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
 
 __all__ = ["Piece", "picture"]
 
@@ -30,6 +33,10 @@ _BETWEEN = "  ·  "
 _TYPE = 14.0  # size of the caption [points]
 _FAR = 3.2  # distance of the eye over the size of the piece: a calm perspective, yet a clear one
 _CELL = 1.0 / 40.0  # length of a cell along a wall over the size of the piece
+_BESIDE = 0.05  # of the piece's size: how far to a side a branch ends that is looked at from there
+_MARGIN = 0.01  # of the picture, clear of words
+_UNDER_CAPTION = 0.89
+_TRIES = 40
 _ABOUT = 24  # cells that lie about a place on a wall, at least one farther along it
 
 
@@ -97,9 +104,7 @@ def picture(
     vertices = np.vstack([piece.faces()[0] for piece in pieces])
     low, high = vertices.min(axis=0), vertices.max(axis=0)
     centre, size = (low + high) / 2.0, float(np.linalg.norm(high - low))
-    # From the side of the seam, if it has one.
-    aside = -1.0 if pieces[0].seam_line[:, 0].mean() < centre[0] - 1e-6 * size else 1.0
-    camera = _Camera(centre, size, aside=aside)
+    camera = _Camera(centre, size, aside=_aside(pieces, len(branches), float(centre[0]), size))
     with matplotlib.rc_context():
         matplotlib.rcdefaults()  # a user's own settings must not change the picture
         figure = Figure(figsize=_SIZE, dpi=_DOTS, facecolor="white")
@@ -132,10 +137,44 @@ def picture(
             0.5, 0.94, title, ha="center", va="center", fontsize=size_of_title, color=_EDGE,
             linespacing=1.4, parse_math=False,
         )  # fmt: skip
-        buffer = io.BytesIO()
         FigureCanvasAgg(figure)
+        _keep_inside(axes)
+        buffer = io.BytesIO()
         figure.savefig(buffer, format="png", metadata={"Software": None})
     return buffer.getvalue()
+
+
+def _aside(pieces: Sequence[Piece], branches: int, centre: float, size: float) -> float:
+    """From which side to look: that of what stands on the piece, else of its seam, else the right, 1.0.
+
+    centre: of all that is shown, to the right; size [mm].
+    """
+    tips = [piece.rim_b(_RIM)[:, 0].mean() for piece in pieces[len(pieces) - branches :]]
+    if tips:
+        body = np.vstack([pieces[0].rim_a(_RIM), pieces[0].rim_b(_RIM)])
+        aside = float(np.mean(tips) - body[:, 0].mean())
+        if abs(aside) > _BESIDE * size:
+            return math.copysign(1.0, aside)
+    return -1.0 if pieces[0].seam_line[:, 0].mean() < centre - 1e-6 * size else 1.0
+
+
+def _keep_inside(axes: Axes) -> None:
+    """Draw the piece smaller, or move it, until every word is whole and below the caption."""
+    left, bottom, wide, high = axes.figure.bbox.bounds
+    least = np.array([left + _MARGIN * wide, bottom + _MARGIN * high])
+    most = np.array([left + (1.0 - _MARGIN) * wide, bottom + _UNDER_CAPTION * high])
+    for _ in range(_TRIES):
+        axes.apply_aspect()
+        boxes = np.array([text.get_window_extent().get_points() for text in axes.texts])
+        under, over = least - boxes.min(axis=(0, 1)), boxes.max(axis=(0, 1)) - most
+        if max(under.max(), over.max()) <= 0.0:
+            return
+        origin, unit = axes.transData.transform([[0.0, 0.0], [1.0, 1.0]])
+        # A dot more than is wanting, so that the tries come to an end.
+        under, over = (np.where(out > 0.0, out + 1.0, 0.0) / (unit - origin) for out in (under, over))
+        (x0, x1), (y0, y1) = axes.get_xlim(), axes.get_ylim()
+        axes.set_xlim(x0 - under[0], x1 + over[0])
+        axes.set_ylim(y0 - under[1], y1 + over[1])
 
 
 def _caption(facts: Sequence[str]) -> tuple[str, float]:

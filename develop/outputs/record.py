@@ -11,7 +11,7 @@ import numpy as np
 
 from develop.pattern.curve import Array
 from develop.pattern.mass import cut_area
-from develop.pattern.pattern import Addition, Figures, Outline, Pattern
+from develop.pattern.pattern import Addition, Figures, Forming, Outline, Pattern, Wall
 
 __all__ = ["Verdict", "record"]
 
@@ -95,6 +95,7 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
             **({} if pattern.mass is None else {"mass": float(pattern.mass)}),
         },
         **({"allowances": [_added(each) for each in pattern.added]} if pattern.added else {}),
+        **({} if pattern.wall is None else {"wall": _wall(pattern.wall)}),
         "lines": [
             {
                 "from": _rounded(line.start),
@@ -117,7 +118,9 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
             {"edge": mark.edge, "text": mark.text, "at": _rounded(mark.at), "arc": float(mark.arc)}
             for mark in pattern.marks
         ],
+        **({"forming": _forming(pattern.forming)} if pattern.forming else {}),
         **({"figures": [_figures(each) for each in pattern.figures]} if pattern.figures else {}),
+        **({"tape_figures": [_figures(each) for each in pattern.taped]} if pattern.taped else {}),
     }
 
 
@@ -127,8 +130,37 @@ def _added(added: Addition) -> dict[str, object]:
     return {**found, "source": added.source} if added.source else found
 
 
+def _wall(wall: Wall) -> dict[str, object]:
+    """How the thickness was taken: the neutral line with its rule, lining, edges and fits."""
+    found: dict[str, object] = {"neutral_line": float(wall.neutral_line)}
+    if wall.rule:
+        found |= {"rule": wall.rule, "source": wall.source, "places": [float(each) for each in wall.places]}
+    return {
+        **found,
+        "lining": float(wall.lining),
+        "edge_cut": wall.edge_cut,
+        "fits": [
+            {"end": end, "fit": fit, "clearance": float(clearance), "moved": float(moved)}
+            for end, fit, clearance, moved in wall.fits
+        ],
+    }
+
+
+def _forming(forming: Forming) -> dict[str, object]:
+    """Where the sheet is rolled tightest: mm, degrees and percent."""
+    return {
+        "radius": _finite(forming.radius),
+        "inside_radius": _finite(forming.inside),
+        "ends": forming.ends,
+        "directions": [_direction(each) for each in forming.directions],
+        "strain": forming.strain,
+        "least_inside_radius": forming.least,
+        **({"source": forming.source} if forming.source else {}),
+    }
+
+
 def _figures(figures: Figures) -> dict[str, object]:
-    """A further table, lengths with all their digits."""
+    """A further table, lengths with all their digits; null for what is to be written in by hand."""
     return {
         "title": figures.title,
         "heads": [" ".join(filter(None, head)) for head in figures.heads],

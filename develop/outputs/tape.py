@@ -57,7 +57,9 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
     flow.block(title(pattern, wide))
     marks = Grid(marks_table(pattern.marks, units=pattern.units), most=wide - _VIEW - 2.0)
     count = len(marks.table.rows)
-    if count == 0:
+    if not pattern.facing:
+        flow.table(marks)
+    elif count == 0:
         flow.block(view(_VIEW))
     elif count <= _MANY:
         flow.block(view(_VIEW), marks.part(0, count), apart=wide - marks.wide)
@@ -66,7 +68,7 @@ def tape_pages(pattern: Pattern) -> tuple[TapePage, ...]:
         flow.table(marks)
     flow.block(notes(_texts(pattern), wide, _TEXT))
     flow.table(Grid(divisions_table(pattern.divisions, units=pattern.units), most=wide))
-    for figures in (*pattern.figures, *edge_figures(pattern)):
+    for figures in (*pattern.figures, *edge_figures(pattern), *pattern.taped):
         flow.table(Grid(figures_table(figures, units=pattern.units), most=wide))
     count = len(flow.pages)
     words = f"{pattern.mark}   ·   to mark out by tape, not to scale   ·   page"
@@ -132,7 +134,8 @@ def _running(pattern: Pattern) -> str:
         round_openings = ", round an opening from its point 1" if pattern.openings else ""
         return f" Running lengths go along END A and END B from line 0{round_openings}."
     if pattern.net.curve("end_1") is not None:
-        return " Running lengths of marks go along the edge from END 1, those of the outline from point 1."
+        first, _ = pattern.end_words
+        return f" Running lengths of marks go along the edge from {first}, those of the outline from point 1."
     return " Running lengths go along each edge from its point 1."
 
 

@@ -23,8 +23,8 @@ from develop.pattern.placing import SMALLEST, Sheet, Word, boxes_at, label_at, l
 __all__ = ["lay_out", "lettered"]
 
 _FLOW = "FLOW"
-_ENDS = ("END 1", "END 2")  # of a part of a ring
 _TINIEST = 0.02  # [mm]
+_AT_ARMS_LENGTH = 4.0  # [mm] height of capitals that are read so; common practice, no source
 _LINE = 1.75  # from baseline to baseline over the height of capitals
 _MOST_OF_SEAM = 0.6  # share of a seam that a word along it takes, if it is legible so
 _SHARES = np.array([0.5, 0.44, 0.56, 0.38, 0.62, 0.31, 0.69, 0.25, 0.75, 0.18, 0.82, 0.12, 0.88])
@@ -60,9 +60,10 @@ def lettered(pattern: Pattern) -> Pattern:
         lines_as=pattern.lines_as,
         openings=pattern.openings,
         places=None if rows else pattern.places,
-        avoid=pattern.dashed,
+        # The line that holes stand on may run behind words; other thin lines are the drawing itself.
+        avoid=(*pattern.dashed, *(() if pattern.holes else pattern.thin)),
         arrow=pattern.arrow,
-        seam_words=pattern.seam_words if rows else _ENDS if parted else ("", ""),
+        seam_words=pattern.seam_words if rows else pattern.end_words if parted else ("", ""),
         cut=pattern.cut,
         lap_words=pattern.lap_words,
         holes=pattern.holes,
@@ -121,10 +122,18 @@ def lay_out(
     else:
         strip = _Strip.of(net, np.asarray(mid_line, dtype=float), divisions)
     flat = not divisions and places is not None
-    block = _facts(sheet, strip, tuple(facts), height, least=sheet.least if flat else _TINIEST)
+    block = _facts(sheet, strip, tuple(facts), height, least=_AT_ARMS_LENGTH if flat else _TINIEST)
     if flat and block is None:
         # On a narrow ring the mark is worth more than all the facts too small to be read.
-        block = _facts(sheet, strip, tuple(facts[:1]), height)
+        taken, count = sheet.taken, len(sheet.labels)
+        _facts(sheet, strip, tuple(facts[1:]), height, least=sheet.least)
+        large = max(height, _AT_ARMS_LENGTH)
+        block = _facts(sheet, strip, tuple(facts[:1]), large, least=_AT_ARMS_LENGTH)
+        if block is None:
+            sheet.taken = taken
+            del sheet.labels[count:]
+            block = _facts(sheet, strip, tuple(facts[:1]), large)
+            _facts(sheet, strip, tuple(facts[1:]), height, least=sheet.least)
     arrows = _flow(sheet, strip, block, flow, height, arrow)
     sheet.write(_press_words(lines, max(SMALLEST, 0.5 * height)))
     numbers.write_others(sheet)

@@ -17,12 +17,14 @@ __all__ = [
     "Addition",
     "Division",
     "Figures",
+    "Forming",
     "Label",
     "NumberedHole",
     "Outline",
     "Pattern",
     "RollLine",
     "Rulings",
+    "Wall",
     "WitnessMark",
 ]
 
@@ -98,12 +100,12 @@ class WitnessMark:
 class Figures:
     """A further table of figures to mark out by. heads: two lines each, the lower may be empty.
 
-    rows: words as they are, numbers as lengths [mm].
+    rows: words as they are, numbers as lengths [mm], None for what is to be written in by hand.
     """
 
     title: str
     heads: tuple[tuple[str, str], ...]
-    rows: tuple[tuple[str | float, ...], ...]
+    rows: tuple[tuple[str | float | None, ...], ...]
 
 
 @dataclass(frozen=True)
@@ -137,6 +139,7 @@ class Rulings:
     a, b: their ends on the two edges, (n, 2) [mm]. turn: of the sheet since the line before, (n,) [rad].
     u: parameter of end A's section that the line starts at, (n,).
     distance: of the developed sheet outside the surface that the ends are given on [mm].
+    radius: roll radius of the developed sheet at edges A and B, (n, 2) [mm], where it is known.
     """
 
     a: Array
@@ -144,6 +147,27 @@ class Rulings:
     turn: Array
     u: Array
     distance: float = 0.0
+    radius: Array = field(default_factory=lambda: np.empty((0, 2)))
+
+
+@dataclass(frozen=True)
+class Forming:
+    """Where a sheet is rolled tightest, and what that asks of it.
+
+    radius: least roll radius at mid-thickness [mm]; inside: the same on the inside face [mm].
+    ends: `a`, `b`, or `ab` where it is as tight at both. directions: of the points there, facing
+    end B (k,) [rad]; none where it is as tight all round.
+    strain: of the outer fibre [%], None for a sheet without thickness or one that is pressed.
+    least: published least inside radius of a bend [mm], None where none is known; source: of it.
+    """
+
+    radius: float
+    inside: float
+    ends: str
+    directions: tuple[float, ...]
+    strain: float | None
+    least: float | None = None
+    source: str = ""
 
 
 class Addition(Protocol):
@@ -157,6 +181,24 @@ class Addition(Protocol):
     def width(self) -> float: ...
     @property
     def source(self) -> str: ...
+
+
+@dataclass(frozen=True)
+class Wall:
+    """How the thickness was taken, where it was not plainly by a number and with flush ends cut square.
+
+    neutral_line: the place developed, 0 inside to 1 outside; rule, source: of the published rule that gave
+    it, empty for a number; places: the least and the most that it gives round the side. lining [mm].
+    edge_cut: `square` or `level`. fits: (end, fit, clearance [mm], how far the end is moved out [mm]).
+    """
+
+    neutral_line: float
+    rule: str = ""
+    source: str = ""
+    places: tuple[float, float] = (0.0, 0.0)
+    lining: float = 0.0
+    edge_cut: str = "square"
+    fits: tuple[tuple[str, str, float, float], ...] = ()
 
 
 @dataclass(frozen=True)
@@ -179,9 +221,13 @@ class Pattern:
     thin: lines to set out by, such as that of the bolt holes; they are not cut.
     holes: those of the openings that have a number.
     datum: what the ordinates of the divisions are measured from, in words.
+    end_words: what the two ends of a part of a ring or of a plate are called. facing: whether it has an END B
+    that its directions are read in front of.
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
-    warnings: of what is not reasonable.
+    warnings: of what is not reasonable. wall: how the thickness was taken, where it was not plainly.
+    forming: where a rolled sheet is tightest, and its strain. taped: tables of what to check by tape, for the
+    tape pages alone.
     """
 
     mark: str
@@ -203,6 +249,8 @@ class Pattern:
     flow: str = ""
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
+    end_words: tuple[str, str] = ("END 1", "END 2")
+    facing: bool = True
     labels: tuple[Label, ...] = ()
     arrows: tuple[tuple[Array, str], ...] = ()
     dashed: tuple[Curve, ...] = field(default=())
@@ -210,12 +258,15 @@ class Pattern:
     lap_words: tuple[str, str] = ("LAP", "LAP")
     added: tuple[Addition, ...] = ()
     warnings: tuple[str, ...] = ()
+    wall: Wall | None = None
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))
     figures: tuple[Figures, ...] = ()
     mass: float | None = None
     thin: tuple[Curve, ...] = ()
     holes: tuple[NumberedHole, ...] = ()
+    forming: Forming | None = None
+    taped: tuple[Figures, ...] = ()
 
     @property
     def full_lines(self) -> bool:

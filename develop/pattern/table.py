@@ -12,6 +12,8 @@ from develop.units import format_length
 __all__ = ["Table", "divisions_table", "figures_table", "marks_table"]
 
 _UNITS = {"mm": "mm", "in": "inches"}
+# Wide enough to write a figure on by hand, about 30 mm on paper.
+_TO_FILL = "." * 28
 
 
 @dataclass(frozen=True)
@@ -76,13 +78,13 @@ def marks_table(marks: Sequence[WitnessMark], *, units: str = "mm") -> Table:
 
 
 def figures_table(figures: Figures, *, units: str = "mm") -> Table:
-    """A further table of a pattern: lengths in `mm` to 0.1, or in `in` to 1/32."""
-    rows = tuple(
-        tuple(
-            cell if isinstance(cell, str) else format_length(float(cell), unit=units, suffix=False)
-            for cell in row
-        )
-        for row in figures.rows
-    )
-    lengths = any(not isinstance(cell, str) for row in figures.rows for cell in row)
+    """A further table of a pattern: lengths in `mm` to 0.1, or in `in` to 1/32, and dots to write on."""
+
+    def text(cell: str | float | None) -> str:
+        if cell is None:
+            return _TO_FILL
+        return cell if isinstance(cell, str) else format_length(float(cell), unit=units, suffix=False)
+
+    rows = tuple(tuple(text(cell) for cell in row) for row in figures.rows)
+    lengths = any(isinstance(cell, float | int) for row in figures.rows for cell in row)
     return Table(f"{figures.title} ({_UNITS[units]})" if lengths else figures.title, figures.heads, rows)

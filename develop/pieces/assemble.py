@@ -2,20 +2,29 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, fields, replace
 from math import pi
 
 import numpy as np
 
-from develop.pattern.allowance import allowed
-from develop.pattern.chain import crossings_of, point_at
+from develop.pattern.allowance import Allowance, allowed
+from develop.pattern.chain import crossings_of, place_at, point_at
 from develop.pattern.curve import Array, Curve, segment
 from develop.pattern.parallel import parallel
-from develop.pattern.pattern import Division, Outline, Pattern, RollLine, Rulings, WitnessMark
+from develop.pattern.pattern import (
+    Division,
+    Figures,
+    Outline,
+    Pattern,
+    RollLine,
+    Rulings,
+    Wall,
+    WitnessMark,
+)
 from develop.pieces.cutting import Cutting
 from develop.pieces.press import Press, PressLines, press_lines
-from develop.pieces.wording import lines_of
+from develop.pieces.wording import lines_of, size_words
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
 from develop.surfaces.sheet import Lines, Place, Sheet
@@ -53,6 +62,7 @@ class Wording:
     lines_as: str
     units: str = "mm"
     seam_words: tuple[str, str] = ("SEAM", "SEAM")
+    wall: Wall | None = None
 
 
 @dataclass(frozen=True)
@@ -174,15 +184,26 @@ def pattern_of(
         facts=(*wording.facts[:-1], *more, *wording.facts[-1:]),
         datum=wording.datum,
         lines_as=_lines_as(wording.lines_as, bent=bends is not None),
-        rulings=Rulings(close.a, close.b, np.diff(close.turn, prepend=close.turn[0]), close.u_a, distance),
+        rulings=Rulings(
+            close.a,
+            close.b,
+            np.diff(close.turn, prepend=close.turn[0]),
+            close.u_a,
+            distance,
+            np.stack([close.radius_a, close.radius_b], axis=-1),
+        ),
         flow=wording.flow,
-        figures=() if bends is None else (bends.figures(mirror=view.mirror),),
+        figures=(
+            *(() if bends is None else (bends.figures(mirror=view.mirror),)),
+            *view.tab_cuts(dict(close_by), added.allowances, wording.units),
+        ),
         units=wording.units,
         seam_words=wording.seam_words,
         folds=view.curves([_beside(dict(close_by), name, out, whole) for name, out in added.folds]),
         dashed=view.curves([_beside(dict(close_by), name, -far, whole) for name, far, _ in added.inner]),
         lap_words=added.words[::-1] if view.mirror else added.words,
         added=added.added,
+        wall=wording.wall,
         warnings=added.warnings,
     )
 
@@ -360,6 +381,35 @@ class _View:
         """Curves on the sheet."""
         turn = np.diag(_FLIP) if self.mirror else np.eye(2)
         return tuple(curve.moved(turn=turn, shift=self.shift) for curve in curves)
+
+    def tab_cuts(
+        self, contour: Mapping[str, Curve], allowances: Mapping[str, Allowance], units: str
+    ) -> tuple[Figures, ...]:
+        """Where each end that is folded in tabs is cut in, from line 0 on, to be marked out by tape."""
+        found = []
+        flip = _FLIP if self.mirror else np.ones(2)
+        for name, each in allowances.items():
+            if not each.tabs:
+                continue
+            edge = contour[name]
+            # The contour runs from the left seam along end A, and back along end B.
+            back = (name == "b") is not self.mirror
+            rows = []
+            for share in each.tabs:
+                at, along = point_at(edge, place_at(edge, share * edge.length))
+                out = at + each.width * np.array([along[1], -along[0]])
+                running = (1.0 - share if back else share) * edge.length
+                rows.append((running, *(at * flip + self.shift), *(out * flip + self.shift)))
+            end = f"END {name.upper()}"
+            stop = f"{size_words(each.stop, units)} short of the net line" if each.stop else "the net line"
+            heads = (("cut", "no."), ("running", f"along {end}"), *(
+                (place, axis) for place in ("net line", "outer edge") for axis in "xy"
+            ))  # fmt: skip
+            numbered: list[tuple[str | float, ...]] = [
+                (str(n), *map(float, row)) for n, row in enumerate(sorted(rows), 1)
+            ]
+            found.append(Figures(f"Cuts between the tabs at {end}, as far as {stop}", heads, tuple(numbered)))
+        return tuple(found)
 
     def hole(self, hole: Hole) -> Outline:
         """A hole as a closed contour, anticlockwise."""

@@ -112,8 +112,9 @@ class Bend(Jointed):
 
     def surface(self) -> tuple[Leg, ...]:
         """The gores, from end A to end B. Raises Refusal."""
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
-        from develop.pieces.wall import PLACES, given_section, neutral_distance, reach
+        from develop.pieces.wall import PLACES, reach
 
         if self.stagger and self.seams == "alternate":
             raise Refusal(
@@ -121,7 +122,7 @@ class Bend(Jointed):
                 given=f"{_angle(self.stagger)} is given together with seams = alternate",
                 allowed="one of the two",
             )
-        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        section = self.in_wall(self.section, field="section")
         radius = self._radius()
         outer = section.offset(self.thickness * (1.0 - PLACES[self.sizes]))
         self._room(radius, reach(outer, self.turns_to))
@@ -131,9 +132,8 @@ class Bend(Jointed):
             section,
             [half, *[2.0 * half] * (self.gores - 2), half],
             [Turn(2.0 * self.mitre, self.turns_to)] * (self.gores - 1),
-            distance=neutral_distance(
-                thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-            ),
+            distance=self.distance(section),
+            edge=joint_edge(self),
         )
 
     def _radius(self) -> float:
@@ -225,6 +225,7 @@ class Bend(Jointed):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.clearance import seam_warnings
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import built_of
 
         gores = self.surface()
@@ -235,18 +236,21 @@ class Bend(Jointed):
             wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
+            edge=joint_edge(self),
             name="gore",
         )
         return seam_warnings(built, clear=self.clear)
 
     def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the gores of these numbers says."""
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.wall import reach
 
-        radius, slope = self._radius(), tan(self.mitre)
+        radius, slope, edge = self._radius(), tan(self.mitre), joint_edge(self)
+        # Of the plate, whose edge ends at its outside in the throat and at its inside at the heel.
         throat, heel = (
-            (radius - reach(section, self.turns_to)) * slope,
-            (radius + reach(section, self.turns_to + pi)) * slope,
+            (radius - reach(section, self.turns_to) - edge.at(inward=False)) * slope,
+            (radius + reach(section, self.turns_to + pi) + edge.at(inward=True)) * slope,
         )
 
         def short(mm: float) -> str:
@@ -264,13 +268,15 @@ class Bend(Jointed):
             (self.section,),
             sizes=f"{section_words(self.section, units)}, bend of {_angle(self.angle)}{way}, "
             f"radius {short(radius)} to the axis",
-            held="lengths and cuts",
+            held=edge.held("lengths", "cuts"),
             units=units,
+            around=section,
             place=f"throat at {direction_words(self.turns_to)}, mitre angle {_angle(self.mitre)}",
             more=(
                 f"gore{'s' if len(numbers) > 1 else ''} {which} of {self.gores}",
                 lengths,
                 f"throat width {short(width)}",
+                *edge.words(mitre=True),
             ),
         )
 

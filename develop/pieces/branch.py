@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 from math import ceil, degrees, floor, pi
 from typing import TYPE_CHECKING, ClassVar
 
-from develop.errors import Refusal
+from develop.errors import InputError, Refusal
 from develop.pieces.common import Jointed
 from develop.pieces.field_types import (
     ANGLE,
@@ -28,7 +28,9 @@ from develop.units import number_text
 if TYPE_CHECKING:
     from develop.pieces.assemble import Hole
     from develop.pieces.built import Built, Part
+    from develop.pieces.clearance import Beside
     from develop.pieces.header import StraightHeader, TaperHeader
+    from develop.pieces.joint_edge import JointEdge
     from develop.sections.section import Section
     from develop.solid import Frame
     from develop.surfaces.band_trim import BandTrim
@@ -44,7 +46,8 @@ _HALVINGS = 70
 # Less than this over its length a line of centres does not slope.
 _SLOPING = 1e-9
 _TRIES = 24
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# On the header's sheets these are the branch's, which has its own right and left.
+_WORDS = ("BRANCH RIGHT", "BRANCH TOP", "BRANCH LEFT", "BRANCH BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -116,7 +119,9 @@ class Branch(Jointed):
     )
     lap: float = field(
         default=20.0,
-        metadata=about(Length(least=1.0, most=1000.0), "width of the lap flange of a tap"),
+        metadata=about(
+            Length(least=1.0, most=1000.0), "width of the lap flange of a tap", only_with=("joint", "tap")
+        ),
     )
     opening: str = field(
         default="cut",
@@ -133,24 +138,31 @@ class Branch(Jointed):
         default=0.0,
         metadata=about(
             Length(least=0.0, most=10_000.0),
-            "width of a compensation plate on the header all round the branch; 0 for none",
+            "width of a compensation plate on the header all round a branch that is set on or in; 0 for none",
         ),
     )
     pad_thickness: float | None = field(
         default=None,
-        metadata=about(Length(least=0.1, most=1000.0), "thickness of that plate; the header's when left out"),
+        metadata=about(
+            Length(least=0.1, most=1000.0),
+            "thickness of that plate; the header's when left out",
+            only_with="pad",
+        ),
     )
     pad_in: str = field(
         default="one",
         metadata=about(
             Choice(("one", "halves")),
             "the plate in one piece, or in halves that meet at the header's right and left",
+            only_with="pad",
         ),
     )
     tell_tale: float = field(
         default=6.0,
         metadata=about(
-            Length(least=0.0, most=100.0), "diameter of the tell-tale hole in each part of it; 0 for none"
+            Length(least=0.0, most=100.0),
+            "diameter of the tell-tale hole in each part of it; 0 for none",
+            only_with="pad",
         ),
     )
     mark: str = field(default=kind, metadata=about(MARK, "name of the piece and of its files", own=False))
@@ -160,7 +172,7 @@ class Branch(Jointed):
     def _header(self) -> StraightHeader | TaperHeader:
         """The header in its wall. Raises Refusal."""
         from develop.pieces.header import StraightHeader, tapered
-        from develop.pieces.wall import PLACES, given_section, neutral_distance
+        from develop.pieces.wall import PLACES
 
         # Set on, the branch stands on the outside; set in, it ends flush with the inside.
         place = PLACES["inside" if self.joint == "set-in" else "outside"] - PLACES[self.sizes]
@@ -172,14 +184,18 @@ class Branch(Jointed):
                     given="given together with a tapered header",
                     allowed="the length or height of the header's own table",
                 )
-            return tapered(self.header, thickness=self.thickness, sizes=self.sizes, outward=outward)
+            return tapered(
+                self.header,
+                thickness=self.thickness,
+                sizes=self.sizes,
+                lining=self.lining,
+                neutral_line=self.neutral_line,
+                outward=outward,
+            )
         if self.header_length is None:
             raise Refusal(field="header_length", given="not given", allowed="the length of the header")
-        section = given_section(self.header, field="header", thickness=self.thickness, sizes=self.sizes)
-        distance = neutral_distance(
-            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-        )
-        return StraightHeader(section, section.offset(outward), self.header_length, distance)
+        section = self.in_wall(self.header, field="header")
+        return StraightHeader(section, section.offset(outward), self.header_length, self.distance(section))
 
     def _frame(self, header: StraightHeader | TaperHeader) -> Frame:
         """The branch's frame in the header's: z along its axis to the free end."""
@@ -194,6 +210,12 @@ class Branch(Jointed):
             from_a=self.from_a,
         )
 
+    def _edge(self) -> JointEdge:
+        """How the branch's edge on the header is made: only set on does plate touch plate with it."""
+        from develop.pieces.joint_edge import JointEdge, joint_edge
+
+        return joint_edge(self) if self.joint == "set-on" else JointEdge()
+
     def surface(self) -> Cylinder:
         """The branch between its joint and its free end. Raises Refusal."""
         return self._parts()[0]
@@ -202,20 +224,26 @@ class Branch(Jointed):
         """The branch's side, the header and the branch's place in it. Raises Refusal."""
         import numpy as np
 
-        from develop.pieces.wall import given_section, neutral_distance
+        if self.pad and self.joint == "tap":
+            raise Refusal(
+                field="pad",
+                given=f"{number_text(self.pad)} mm, but the lap flange of a tap lies where the plate would",
+                allowed="joint = set-on or set-in with a compensation plate, or no pad",
+            )
+
         from develop.surfaces.cylinder import Cylinder
         from develop.surfaces.trim import Plane
 
-        branch = given_section(self.branch, field="branch", thickness=self.thickness, sizes=self.sizes)
+        branch = self.in_wall(self.branch, field="branch")
         header = self._header()
         frame = self._frame(header)
-        self._overhang(branch, header, frame)
+        made = self._edge()
+        # Cut along the header the line of one face is laid on it; else the corner that touches has room.
+        self._overhang(branch.offset(made.up) if made.along else branch, header, frame)
         trim: BandTrim | CylinderTrim = header.trim(frame)
-        distance = neutral_distance(
-            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-        )
+        edge = made.trim(trim)
         surface = Cylinder(
-            branch, trim, Plane(self.centre_to_end, np.zeros(2)), distance, trim.breaks(branch)
+            branch, edge, Plane(self.centre_to_end, np.zeros(2)), self.distance(branch), edge.breaks(branch)
         )
         shortest = float(surface.lengths(branch.at_direction(np.radians(np.arange(360.0)))).min())
         if shortest <= 0.0:
@@ -244,10 +272,11 @@ class Branch(Jointed):
         best = self._least_overhang(branch, header)
         if not fits(best):
             least = header.overhang(branch, replace(self, off_centre=best)._frame(header))
+            largest = self._largest(header, replace(self, off_centre=best)._frame(header))
             raise Refusal(
                 field="branch",
                 given=f"{self.branch.text} is {2.0 * least:.4g} mm wider than the header there",
-                allowed="a branch at most that much less across the header, or a larger header",
+                allowed=f"{largest}, or a larger header",
             )
         limits = []
         for far in (best - 1e6, best + 1e6):
@@ -261,6 +290,43 @@ class Branch(Jointed):
             given=f"{number_text(self.off_centre)} mm leaves the branch {over:.4g} mm beside the header",
             allowed=f"from {number_text(ceil(limits[0] * 10.0 - 1e-5) / 10.0)} to "
             f"{number_text(floor(limits[1] * 10.0 + 1e-5) / 10.0)} mm",
+        )
+
+    def _largest(self, header: StraightHeader | TaperHeader, frame: Frame) -> str:
+        """The largest branch of its kind and proportions that stays within the header, in words."""
+        from dataclasses import replace
+
+        from develop.pieces.wall import given_section
+
+        spec = self.branch
+        if spec.kind in ("pipe", "measured"):
+            return "a branch that is at most that much less across the header"
+
+        def scaled(width: float) -> SectionSpec:
+            share = width / spec.width
+            return replace(spec, width=width, height=spec.height * share, r=spec.r * share)
+
+        def fits(width: float) -> bool:
+            try:
+                section = given_section(
+                    scaled(width), field="branch", thickness=self.thickness, sizes=self.sizes
+                )
+            except InputError:
+                return False
+            return header.overhang(section, frame) <= _TANGENT
+
+        inside, outside = 0.0, spec.width
+        for _ in range(_HALVINGS // 2):
+            middle = 0.5 * (inside + outside)
+            inside, outside = (middle, outside) if fits(middle) else (inside, middle)
+        width = floor(inside * 10.0 + 1e-5) / 10.0
+        if width <= 0.0:
+            return "another branch"
+        # Both sizes are rounded down, for what is named has to work.
+        largest = scaled(width)
+        return (
+            f"{section_words(replace(largest, height=floor(largest.height * 10.0 + 1e-5) / 10.0), 'mm')} "
+            "or less"
         )
 
     def _least_overhang(self, branch: Section, header: StraightHeader | TaperHeader) -> float:
@@ -335,13 +401,31 @@ class Branch(Jointed):
         surface, header, frame = self._parts()
         seam = self._branch_seam(surface)
         header_seam = self._header_seam(surface.section, header, frame)
-        parts = (
-            self._branch_part(surface, header, frame, seam, units),
-            self._header_part(surface.section, header, frame, (seam, header_seam), units),
-            *(self._pads(surface.section, header, frame, (seam, header_seam), units) if self.pad else ()),
+        pads: tuple[Part, ...] = ()
+        beside: tuple[Beside, ...] = ()
+        if self.pad:
+            pads, beside = self._pads(surface.section, header, frame, (seam, header_seam), units)
+        built = Built(
+            (
+                self._branch_part(surface, header, frame, seam, units),
+                self._header_part(surface.section, header, frame, (seam, header_seam), units),
+                *pads,
+            )
         )
-        built = Built(parts)
-        return seam_warnings(built, clear=self.clear)
+        return seam_warnings(built, clear=self.clear, also=beside)
+
+    def check(self) -> None:
+        """Raises Refusal also for a header's seam, a lap flange or a pad that has no room."""
+        from develop.pieces.tap import lap_flange
+
+        super().check()
+        surface, header, frame = self._parts()
+        seam = self._branch_seam(surface)
+        header_seam = self._header_seam(surface.section, header, frame)
+        if self.joint == "tap":
+            lap_flange(surface, seam, lap=self.lap, thickness=self.thickness)
+        if self.pad:
+            self._pads(surface.section, header, frame, (seam, header_seam), "mm")
 
     def _branch_seam(self, surface: Cylinder) -> float:
         from develop.pieces.assemble import seam_parameter
@@ -407,8 +491,9 @@ class Branch(Jointed):
 
         from develop.pieces.assemble import pattern_of
         from develop.pieces.built import Part
+        from develop.pieces.joint_edge import with_bevels
         from develop.pieces.tap import lap_flange
-        from develop.solid import End, Solid
+        from develop.solid import End, Solid, StandingEnd
 
         section = surface.section
         sheet = surface.sheet(seam)
@@ -427,10 +512,12 @@ class Branch(Jointed):
             sizes=f"branch {section_words(self.branch, units)}, "
             f"centre to end {size_words(self.centre_to_end, units)}",
             place=f"into header {self._header_words(units)}, {self._where(units)}",
-            held="lengths and joint",
+            held=self._edge().held("lengths", "joint"),
             units=units,
+            around=section,
             more=(
                 *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
+                *self._edge().words(mitre=False),
                 *self._sides,
             ),
         )
@@ -445,8 +532,12 @@ class Branch(Jointed):
             distance=surface.distance,
             cutting=replace(cutting, allowances={**cutting.allowances, "a": flange}) if flange else cutting,
         )
+        edge, met = self._edge(), header.joint(section, frame)
+        inner, outer = edge.corners or (0.0, 0.0)
+        stands = StandingEnd.of(met, inner=inner, outer=outer)
+        pattern = with_bevels(pattern, edge, {"a": stands}, plates=1)
         solid = Solid(
-            header.joint(section, frame),
+            stands if edge.corners else met,
             End.cut(section, height=self.centre_to_end, rise=np.zeros(2)),
             side="parallel",
             seam=seam,
@@ -494,6 +585,7 @@ class Branch(Jointed):
             place=f"opening for branch {section_words(self.branch, units)}, {opening}, {self._where(units)}",
             held="length and opening",
             units=units,
+            around=header.around,
             more=self._sides,
         )
         end = Plane(self.centre_to_end, np.zeros(2))
@@ -524,15 +616,26 @@ class Branch(Jointed):
         frame: Frame,
         seams: tuple[float, float],
         units: str,
-    ) -> tuple[Part, ...]:
-        """The compensation plate, round the outside of the branch on the outside of the header."""
+    ) -> tuple[tuple[Part, ...], tuple[Beside, ...]]:
+        """The compensation plate, round the outside of the branch on the outside of the header, and how
+        near it lies to the seams."""
+        from develop.pieces.neutral import neutral_of
         from develop.pieces.pad import Pad, pad_parts
         from develop.pieces.wall import PLACES
         from develop.pieces.wording import plate_words
 
         thickness = self.thickness if self.pad_thickness is None else self.pad_thickness
         outward = self.thickness * (PLACES["outside"] - PLACES[self.sizes])
-        lift = self.neutral_line * thickness
+        face = header.covered(outward=outward, distance=0.0)
+        lift = (
+            thickness
+            * neutral_of(
+                self.neutral_line,
+                thickness=thickness,
+                inner=0.0,
+                sheet=lambda: face.sheet(float(face.section.breaks[0])),
+            ).place
+        )
         hole = f"tell-tale hole {size_words(self.tell_tale, units)} in each part" if self.tell_tale else ""
         return pad_parts(
             Pad(self.pad, self.pad_in == "halves", self.tell_tale),
@@ -543,12 +646,13 @@ class Branch(Jointed):
             seams=seams,
             rotate=self.rotate,
             mark=f"{self.mark}-pad",
+            beside=(f"{self.mark}-branch", f"{self.mark}-header"),
             quantity=self.quantity,
             units=units,
+            leaning=self._leaning(),
             facts=(
                 f"{size_words(self.pad, units)} wide all round branch {section_words(self.branch, units)}",
-                f"rolled to lie on the header, {self._leaning()}",
-                *(() if self.rotate else ("TOP towards the header's END A",)),
+                *(() if self.rotate else ("BRANCH TOP towards the header's END A",)),
                 *((hole,) if hole else ()),
                 plate_words(self.material, thickness),
                 "its size as given: what is needed is for the pressure code to say",

@@ -50,13 +50,15 @@ class Joint:
 class Built:
     """The parts of one piece, the joints between them, and what whoever makes it is to be warned of.
 
-    both_hands: the piece is its own mirror image, and serves as its opposite hand too.
+    both_hands: the piece is its own mirror image, and serves as its opposite hand too. order: numbers of the
+    parts from END A to END B, where they do not stand so.
     """
 
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
     warned: tuple[str, ...] = ()
     both_hands: bool = False
+    order: tuple[int, ...] = ()
 
     @property
     def warnings(self) -> tuple[str, ...]:
@@ -76,12 +78,12 @@ class Built:
 
     @property
     def placed(self) -> tuple[Placed, ...]:
-        """Every rolled part where it stands in the piece, as often as it is used."""
+        """Every rolled part where it stands in the piece, as often as it is used, from END A on."""
         from develop.solid import Placed, Solid
 
         return tuple(
             Placed(part.solid, frame)
-            for part in self.parts
+            for part in (self.parts[number] for number in self.order or range(len(self.parts)))
             if isinstance(part.solid, Solid)
             for frame in part.frames
         )

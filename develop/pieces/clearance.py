@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -10,7 +11,7 @@ import numpy as np
 from develop.errors import Refusal
 from develop.pieces.built import Built, Part
 from develop.pieces.wording import direction_words, lines_of
-from develop.solid import Patch, Solid
+from develop.solid import Patch, Solid, TouchingEnd
 from develop.units import number_text
 
 if TYPE_CHECKING:
@@ -18,7 +19,7 @@ if TYPE_CHECKING:
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["check_uncut", "seam_warnings"]
+__all__ = ["Beside", "check_uncut", "seam_warnings"]
 
 _CHORDS = 0.05  # [mm]
 
@@ -44,10 +45,28 @@ def check_uncut(section: Section, seam: float, on: Array, *, leaves_at: float, f
     )
 
 
-def seam_warnings(built: Built, *, clear: float) -> Built:
+@dataclass(frozen=True)
+class Beside:
+    """Two things that lie a gap [mm] apart, in words, and the marks of the parts whose sheets say so."""
+
+    what: str
+    gap: float
+    marks: tuple[str, ...]
+
+
+def seam_warnings(built: Built, *, clear: float, also: Sequence[Beside] = ()) -> Built:
     """The piece with a warning for every seam that lies nearer than `clear` [mm] to an opening of its part,
-    or to the seam that it meets at a joint; each names both, and stands on the sheets of the parts."""
+    or to the seam that it meets at a joint; each names both, and stands on the sheets of the parts.
+
+    also: what the kind has measured itself.
+    """
     found: list[tuple[str, tuple[int, ...]]] = []
+    numbers = {part.pattern.mark: number for number, part in enumerate(built.parts)}
+    found += [
+        (_near(each.what, each.gap, clear), tuple(numbers[mark] for mark in each.marks))
+        for each in also
+        if each.gap < clear
+    ]
     for number, part in enumerate(built.parts):
         if isinstance(part.solid, Solid):
             found += [(each, (number,)) for each in _at_openings(part, clear)]
@@ -106,10 +125,14 @@ def _at_openings(part: Part, clear: float) -> list[str]:
 
 
 def _seam_end(part: Part, end: str, place: int) -> Array:
-    """Where a part's seam ends at end `a` or `b`, in the piece (3,) [mm]."""
+    """Where a part's seam ends at end `a` or `b`, in the piece (3,) [mm]; on what touches there."""
     solid, frame = part.solid, part.frames[place]
     assert isinstance(solid, Solid)
-    return np.asarray(solid.seam_line[0 if end == "a" else 1] @ frame.axes + frame.origin)
+    point, curve = solid.seam_line[0 if end == "a" else 1], solid.end_a if end == "a" else solid.end_b
+    if isinstance(curve, TouchingEnd):
+        u = np.array([solid.seam])
+        point = curve.across(u, curve.touching(u))[0]
+    return np.asarray(point @ frame.axes + frame.origin)
 
 
 def _on_header(built: Built, clear: float) -> list[tuple[str, tuple[int, ...]]]:

@@ -13,23 +13,26 @@ from develop.pieces.field_types import (
     Choice,
     Count,
     Length,
-    Number,
 )
 from develop.pieces.fields import Piece, about
-from develop.pieces.rule_types import EDGE, SEAM_RULE
-from develop.pieces.wording import edges_words, sizes_words, wall_words
+from develop.pieces.rule_types import EDGE, NEUTRAL, SEAM_RULE
+from develop.pieces.wording import edges_words, lining_words, sizes_words, wall_words
 
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
     from develop.pieces.cutting import Cutting
+    from develop.pieces.fitted import Fit
+    from develop.pieces.neutral import Neutral
+    from develop.sections.section import Section
     from develop.sections.text import SectionSpec
+    from develop.surfaces.band import Band
     from develop.surfaces.sheet import Sheet
     from develop.tables.rules import Rules
 
 __all__ = ["SIZES", "Flat", "Jointed", "Marked", "Named", "Plate"]
 
-# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full. Common
-# practice, no source.
+# From this thickness up [mm] a sheet is treated as plate: roll lines are drawn full, and the edges of joints
+# worked out. Common practice, no source.
 _PLATE = 3.0
 
 _SMALL = Length(least=0.0, most=1000.0)
@@ -39,6 +42,9 @@ SIZES = about(
     "where sizes, lengths and cuts are measured; only a pipe's own size is always its outside",
     own=False,
 )
+
+# Of 2 mm: common practice, no source.
+_TOLERANCE = about(Length(least=0.0, most=100.0), "how far a taped figure may be out, either way", own=False)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -69,6 +75,7 @@ class Flat(Named):
         default="",
         metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
     )
+    tape_tolerance: float = field(default=2.0, metadata=_TOLERANCE)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -86,7 +93,8 @@ class Marked(Named):
 
 @dataclass(frozen=True, kw_only=True)
 class Plate(Marked):
-    """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside.
+    """What every piece of sheet or plate has. neutral_line: 0 at the inside, 1 at the outside, or the name
+    of a published rule. lining [mm].
 
     rules: the shop's own for seams and edges, which no field gives but whoever reads the piece.
     """
@@ -95,9 +103,17 @@ class Plate(Marked):
         default="",
         metadata=about(TEXT, "stated on the pattern; a metal that is known gives the mass", own=False),
     )
-    neutral_line: float = field(
+    lining: float = field(
+        default=0.0,
+        metadata=about(
+            _SMALL, "thickness of a lining; sizes inside are then those that it leaves clear", own=False
+        ),
+    )
+    neutral_line: float | str = field(
         default=0.5,
-        metadata=about(Number(0.0, 1.0), "where the neutral line lies, 0 inside to 1 outside", own=False),
+        metadata=about(
+            NEUTRAL, "where the neutral line lies, 0 inside to 1 outside, or a rule that tells", own=False
+        ),
     )
     face: str = field(
         default="outside",
@@ -157,6 +173,43 @@ class Plate(Marked):
         default=0.0,
         metadata=about(_SMALL, "added to the girth for what the welds of its seams draw in", own=False),
     )
+    templates: str = field(
+        default="none",
+        metadata=about(
+            Choice(("none", "inside", "outside", "both")),
+            "checking templates (sweeps) for which face of the formed section, as patterns of their own",
+            own=False,
+        ),
+    )
+    template_sections: str = field(
+        default="not round",
+        metadata=about(
+            Choice(("not round", "all")), "which sections templates are made for, where asked for", own=False
+        ),
+    )
+    template_share: str = field(
+        default="half",
+        metadata=about(
+            Choice(("half", "quarter")), "how much of the section one template reaches round", own=False
+        ),
+    )
+    floor: str = field(
+        default="none",
+        metadata=about(
+            Choice(("none", "outlines")),
+            "full-size outlines of the ends for the assembly floor, as patterns of their own",
+            own=False,
+        ),
+    )
+    tape: float = field(
+        default=0.2,
+        metadata=about(
+            Length(least=0.0, most=5.0),
+            "thickness of the tape that girths are measured with; it reads along its middle",
+            own=False,
+        ),
+    )
+    tape_tolerance: float = field(default=2.0, metadata=_TOLERANCE)
     rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)
@@ -168,6 +221,42 @@ class Plate(Marked):
 
         super().check()
         rules_of(self)
+
+    def in_wall(self, spec: SectionSpec, *, field: str) -> Section:
+        """A section on the surface that sizes are given on. Raises Refusal."""
+        from develop.pieces.wall import given_section
+
+        return given_section(
+            spec, field=field, thickness=self.thickness, sizes=self.sizes, lining=self.lining
+        )
+
+    def neutral(self, around: Section | Band) -> Neutral:
+        """Where the neutral line lies in a wall of this section, or of this tapered side. Raises Refusal."""
+        from develop.pieces.neutral import neutral_of
+        from develop.pieces.wall import PLACES
+
+        def sheet() -> Sheet:
+            from dataclasses import replace
+
+            import numpy as np
+
+            from develop.sections.section import Section
+            from develop.surfaces.cylinder import Cylinder
+            from develop.surfaces.trim import Plane
+
+            if not isinstance(around, Section):
+                return replace(around, distance=0.0).sheet(float(around.rim_a.section.breaks[0]))
+            low, high = (Plane(height, np.zeros(2)) for height in (0.0, 1.0))
+            return Cylinder(around, low, high).sheet(float(around.breaks[0]))
+
+        inner = self.thickness * PLACES[self.sizes]
+        return neutral_of(self.neutral_line, thickness=self.thickness, inner=inner, sheet=sheet)
+
+    def distance(self, around: Section | Band) -> float:
+        """How far outside the given surface the sheet is developed [mm]. Raises Refusal."""
+        from develop.pieces.wall import PLACES
+
+        return self.thickness * (self.neutral(around).place - PLACES[self.sizes])
 
     def cutting(self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str) -> Cutting:
         """What is cut beyond the net line of a sheet; see `cutting_of`."""
@@ -184,18 +273,43 @@ class Plate(Marked):
         place: str,
         held: str,
         units: str,
+        around: Section | Band | None = None,
         more: tuple[str, ...] = (),
+        level: tuple[str, ...] = (),
+        fits: tuple[Fit, ...] = (),
     ) -> Wording:
         """What the pattern says: the sizes in words, how the ends lie, what holds at the given sizes, and
-        further lines of the kind's own."""
+        further lines of the kind's own.
+
+        around: the section or the side whose wall it is. level: how edges are cut that are level. fits: of
+        its ends that are not flush."""
+        from develop.pattern.pattern import Wall
         from develop.pieces.assemble import Wording
+        from develop.pieces.neutral import Neutral
 
         # A pipe's size is its outside, also where lengths and cuts are asked for elsewhere.
         elsewhere = self.sizes != "outside" and any(spec.outside for spec in sections)
         held_at = (
             {"mean": "mid-thickness", "inside": "the inside"}[self.sizes] if elsewhere else "the given sizes"
         )
-        plate = ("edges square to the plate", f"{held} at {held_at}")
+        if self.lining:
+            held_at = "the lining's inside"
+        plate = (*(level or ("edges square to the plate",)), f"{held} at {held_at}")
+        neutral = Neutral(self.neutral_line) if not isinstance(self.neutral_line, str) else None
+        if neutral is None and around is not None:
+            neutral = self.neutral(around)
+        assert neutral is not None, "a rule wants to know round what"
+        wall = None
+        if neutral.rule or self.lining or level or fits:
+            wall = Wall(
+                neutral.place,
+                neutral.rule,
+                neutral.source,
+                (neutral.least, neutral.most),
+                self.lining,
+                "level" if level else "square",
+                tuple((fit.end, fit.fit, fit.clearance, fit.moved) for fit in fits),
+            )
         lines_as = "full" if self.marks == "auto" and self.thickness >= _PLATE else self.marks
         return Wording(
             mark=self.mark,
@@ -208,15 +322,19 @@ class Plate(Marked):
                 place,
                 *more,
                 sizes_words(self.sizes, self.thickness, *sections),
+                *lining_words(self.lining, around, units),
+                *neutral.words(),
+                *(each for fit in fits for each in fit.words(units)),
                 edges_words((flat.edge_a, flat.edge_b), units),
                 *wall_words(self.material, self.thickness, units),
-                *(plate if self.thickness >= _PLATE else ()),
+                *(plate if self.thickness >= _PLATE or level else ()),
                 f"quantity {self.quantity}, {self.face} up",
             ),
             datum="datum lines x = 0 and y = 0, the left and lower limits of the pattern",
             flow=self.flow,
             lines_as=lines_as,
             units=units,
+            wall=wall,
         )
 
 
@@ -233,6 +351,38 @@ class Jointed(Plate):
             own=False,
         ),
     )
+
+    touching: str = field(
+        default="auto",
+        metadata=about(
+            Choice(("auto", "net", "worked out", "bevelled")),
+            "how edges meet at a mitre or on a header: the net lines; square to the plate, the corner that "
+            "touches worked out for each direction; or bevelled so that the net lines meet. auto: worked out "
+            "from 3 mm thickness up",
+            own=False,
+        ),
+    )
+    joint_cut: str = field(
+        default="square",
+        metadata=about(
+            Choice(("square", "along")),
+            "bevelled edges cut square to the plate at the net line, or along the joint, the line then that "
+            "of the face that is up",
+            own=False,
+        ),
+    )
+
+    def check(self) -> None:
+        """Raises Refusal for a piece that cannot be."""
+        from develop.pieces.joint_edge import joint_edge
+
+        super().check()
+        joint_edge(self)
+
+    @property
+    def plate(self) -> bool:
+        """It is thick enough to be treated as plate."""
+        return self.thickness >= _PLATE
 
     @property
     def clear(self) -> float:

@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from math import atan, ceil, cos, degrees, floor, pi, sin, tan
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Plate
 from develop.pieces.cut_types import LEVEL_CUT, LevelCut
 from develop.pieces.field_types import LENGTH, MARK, OFFSET, SECTION
 from develop.pieces.fields import about
+from develop.pieces.fitted import Tapered
 from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
@@ -18,6 +18,7 @@ from develop.units import number_text
 if TYPE_CHECKING:
     from develop.pieces.built import Built
     from develop.sections.section import Section
+    from develop.solid import Rim
     from develop.surfaces.band import Band
     from develop.surfaces.trim import Plane
 
@@ -30,7 +31,7 @@ _NEAREST = 0.1
 
 
 @dataclass(frozen=True, kw_only=True)
-class Cone(Plate):
+class Cone(Tapered):
     """A section to a point, or cut short; lengths in mm, angles in radians."""
 
     kind: ClassVar[str] = "cone"
@@ -56,12 +57,12 @@ class Cone(Plate):
 
     def surface(self) -> Band:
         """The side from the base to the apex or the cut. Raises Refusal."""
-        from develop.pieces.wall import given_section, neutral_distance
+        from develop.pieces.wall import check_level
         from develop.sections.point import Point
         from develop.solid import Frame, Rim
         from develop.surfaces.band import Band
 
-        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        section = self.in_wall(self.section, field="section")
         size = max(section.width, section.height)
         if self.height < size / _FLATTEST:
             raise Refusal(
@@ -72,17 +73,47 @@ class Cone(Plate):
             )
         if self.cut_b is not None:
             self._room(section, self.cut_b)
-        distance = neutral_distance(
-            thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-        )
-        band = Band(
-            Rim(section, Frame.square()),
-            Rim(Point(), Frame.square(at=(*self.apex_offset, self.height))),
-            distance,
-            cut_b=self._plane(self.cut_b) if self.cut_b else None,
-        )
+        self._fitting()
+        rim = Rim(self.fitted(section, "a"), Frame.square())
+        if self.cut_b is not None and (self.fits or self.collar_b is not None):
+            band = Band(rim, self._cut_rim(section, self.cut_b), level=self.level)
+        else:
+            band = Band(
+                rim,
+                Rim(Point(), Frame.square(at=(*self.apex_offset, self.height))),
+                cut_b=self._plane(self.cut_b) if self.cut_b else None,
+                level=self.level,
+            )
+        band = replace(band, distance=self.distance(band))
         self._bend(band)
+        check_level(band)
         return band
+
+    def _cut_rim(self, section: Section, cut: LevelCut) -> Rim:
+        """END B, where it is cut square: similar to the base, as its fit wants it."""
+        from develop.sections.scaled import Scaled
+        from develop.solid import Frame, Rim
+
+        share = cut.height / self.height
+        right, up = (share * each for each in self.apex_offset)
+        scaled = Scaled(section, 1.0 - share)
+        return Rim(self.fitted(scaled, "b"), Frame.square(at=(right, up, cut.height)))
+
+    def _fitting(self) -> None:
+        """Raises Refusal for a fit or a collar that END B cannot have."""
+        at_b = [("fit_b", self.fit_b)] if self.fit_b != "flush" else []
+        if self.collar_b is not None:
+            at_b.append(("collar_b", f"{number_text(self.collar_b)} mm"))
+        sloping = self.cut_b is not None and self.cut_b.slope != 0.0
+        wrong = at_b if self.cut_b is None or sloping else []
+        if sloping and self.fit_a != "flush":
+            wrong = [("fit_a", self.fit_a), *wrong]
+        for name, given in wrong:
+            raise Refusal(
+                field=name,
+                given=f"{given}, and {'END B is cut sloping' if sloping else 'END B is a point'}",
+                allowed="a square cut_b, such as height 300, with it; or neither fit nor collar there",
+            )
 
     def _plane(self, cut: LevelCut) -> Plane:
         """The cutting plane, through the line of centres at the cut's height."""
@@ -156,7 +187,7 @@ class Cone(Plate):
         """Raises Refusal."""
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import one
-        from develop.solid import End, Solid
+        from develop.pieces.cuts import band_solid
 
         surface = self.surface()
         section = surface.rim_a.section
@@ -165,7 +196,7 @@ class Cone(Plate):
         pattern = pattern_of(
             sheet,
             section,
-            None,
+            None if surface.cut_b or not surface.rim_b.section.girth else surface.rim_b.section,
             wording=self.wording(
                 sheet,
                 (self.section,),
@@ -174,22 +205,22 @@ class Cone(Plate):
                 place=f"{self._apex_words(units)}, {self._cut_words(units)}",
                 held="heights",
                 units=units,
+                around=surface,
+                level=self.level_words(surface),
+                fits=self.fits,
             ),
             divisions=self.divisions,
             distance=surface.distance,
-            cutting=self.cutting(sheet, units=units),
+            cutting=self.cautioned(self.cutting(sheet, joints=self.collared, units=units), surface),
         )
-        plane = self._plane(self.cut_b) if self.cut_b else None
-        solid = Solid(
-            End.placed(section, surface.rim_a.frame),
-            End.placed(surface.rim_b.section, surface.rim_b.frame),
-            side="hull",
+        return self.with_collars(
+            one(pattern, band_solid(surface, sheet, seam)),
+            surface,
+            specs={"a": self.section},
             seam=seam,
             seam_b=sheet.seam_b,
-            distance=surface.distance,
-            cut_b=(plane.height, plane.rise) if plane else None,
+            units=units,
         )
-        return one(pattern, solid)
 
     def _apex_words(self, units: str) -> str:
         if self.apex_offset == (0.0, 0.0):

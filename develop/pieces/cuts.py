@@ -8,8 +8,10 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from develop.errors import Refusal
-from develop.solid import End, Solid, cut_slopes
+from develop.solid import End, MitredEnd, Solid, cut_slopes
+from develop.surfaces.band import Band, BandSheet
 from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
@@ -17,7 +19,7 @@ if TYPE_CHECKING:
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["cylinder_between", "cylinder_solid", "shortest", "steepest", "trim"]
+__all__ = ["band_solid", "cylinder_between", "cylinder_solid", "end_of", "shortest", "steepest", "trim"]
 
 
 def trim(cut: Cut | None, *, height: float, end_b: bool) -> Plane:
@@ -90,9 +92,38 @@ def steepest(section: Section, low: Plane, high: Plane, *, which: str) -> float:
 
 def cylinder_solid(surface: Cylinder, seam: float) -> Solid:
     """The finished piece of a cylinder between plane cuts; seam is a parameter of its section."""
-    a, b = (
-        End.cut(surface.section, height=each.height, rise=each.rise)
-        for each in (surface.trim_a, surface.trim_b)
-        if isinstance(each, Plane)
-    )
+    a, b = (end_of(surface, end) for end in "ab")
     return Solid(a, b, side="parallel", seam=seam, seam_b=seam, distance=surface.distance)
+
+
+def band_solid(surface: Band, sheet: BandSheet, seam: float) -> Solid:
+    """The finished piece of a band; seam is a parameter of end A's section, that of its sheet."""
+    cut = surface.cut_b
+    return Solid(
+        End.placed(surface.rim_a.section, surface.rim_a.frame),
+        End.placed(surface.rim_b.section, surface.rim_b.frame),
+        side="hull",
+        seam=seam,
+        seam_b=sheet.seam_b,
+        distance=surface.distance,
+        cut_b=(cut.height, cut.rise) if cut else None,
+        level=surface.level,
+    )
+
+
+def end_of(surface: Cylinder, end: str) -> End:
+    """The finished end, `a` or `b`, of a cylinder that is cut by a plane there."""
+    trim = surface.trim_a if end == "a" else surface.trim_b
+    if not isinstance(trim, SquareEdge):
+        assert isinstance(trim, Plane)
+        return End.cut(surface.section, height=trim.height, rise=trim.rise)
+    plane = trim.face
+    assert isinstance(plane, Plane)
+    return MitredEnd.of(
+        surface.section,
+        inner=trim.inner,
+        outer=trim.outer,
+        height=plane.height,
+        rise=plane.rise,
+        upper=trim.upper,
+    )

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import dataclasses
 from abc import ABC, abstractmethod
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, ClassVar
 
@@ -55,16 +55,25 @@ def about(
     text: str,
     *,
     not_with: str | tuple[str, ...] = (),
+    only_with: str | tuple[str, str] | None = None,
     own: bool = True,
     handed: bool = False,
 ) -> dict[str, object]:
     """Metadata of a field: its type, its help, the fields it excludes, and whether it is the kind's own.
 
+    only_with: another field without which this one would have no effect, or that field and its word.
     handed: a number that counts to the right or anticlockwise, so that the opposite hand has it
     negative. Directions, cuts, offsets and sections are mirrored by their types.
     """
     others = (not_with,) if isinstance(not_with, str) else not_with
-    return {"type": kind, "help": text, "not_with": others, "own": own, "handed": handed}
+    return {
+        "type": kind,
+        "help": text,
+        "not_with": others,
+        "only_with": (only_with, "") if isinstance(only_with, str) else only_with,
+        "own": own,
+        "handed": handed,
+    }
 
 
 @dataclass(frozen=True)
@@ -77,6 +86,7 @@ class Declared:
     required: bool
     default: object = field(default=None)
     not_with: tuple[str, ...] = ()
+    only_with: tuple[str, str] | None = None
     own: bool = True
     handed: bool = False
 
@@ -89,6 +99,21 @@ class Declared:
     def default_text(self) -> str:
         """The default as one would give it; empty for none."""
         return "" if self.required else self.type.text(self.default)
+
+    @property
+    def needs(self) -> str:
+        """What it has no effect without, in words; empty where it always has one."""
+        return " = ".join(word for word in self.only_with or () if word)
+
+    def idle(self, values: Mapping[str, object]) -> bool:
+        """Whether it has no effect beside those values; one that could not be read is no reason."""
+        name, word = self.only_with or ("", "")
+        if name not in values:
+            return False
+        return values[name] != word if word else not values[name]
+
+
+_DECLARED = ("type", "help", "not_with", "only_with", "own", "handed")
 
 
 def fields_of(kind: type[Piece]) -> tuple[Declared, ...]:
@@ -103,18 +128,24 @@ def fields_of(kind: type[Piece]) -> tuple[Declared, ...]:
                 name=each.name,
                 required=required,
                 default=None if required else each.default,
-                **{key: each.metadata[key] for key in ("type", "help", "not_with", "own", "handed")},
+                **{key: each.metadata[key] for key in _DECLARED},
             )
         )
     return tuple(sorted(found, key=lambda declared: not declared.own))
 
 
 def read_fields(
-    declared: tuple[Declared, ...], given: Mapping[str, object], *, unit: str, where: str = ""
+    declared: tuple[Declared, ...],
+    given: Mapping[str, object],
+    *,
+    unit: str,
+    where: str = "",
+    shared: Collection[str] = (),
 ) -> tuple[dict[str, object], list[Problem]]:
     """Values by name and every problem; the values are complete only when there is no problem.
 
     given: raw values by field name, from options or a job file. where: whose fields these are.
+    shared: those of the given that are meant for other pieces too, and need have no effect here.
     """
     names = {each.name: each for each in declared}
     problems: list[Problem] = []
@@ -143,14 +174,22 @@ def read_fields(
             for other in each.not_with
             if other in given
         ]
+    problems += [
+        Problem(name, f"{shown(given[name])} has no effect here", f"only together with {each.needs}")
+        for name, each in names.items()
+        if name in given and name not in shared and each.idle(values)
+    ]
     return values, problems
 
 
 def read_piece(
-    kind: type[Piece], given: Mapping[str, object], *, unit: str = "mm"
+    kind: type[Piece], given: Mapping[str, object], *, unit: str = "mm", shared: Collection[str] = ()
 ) -> tuple[Piece | None, list[Problem]]:
-    """The piece, or None and every problem with what was given; bare lengths in `unit`."""
-    values, problems = read_fields(fields_of(kind), given, unit=unit, where=kind.kind)
+    """The piece, or None and every problem with what was given; bare lengths in `unit`.
+
+    shared: those of the given that are meant for other pieces too, and need have no effect here.
+    """
+    values, problems = read_fields(fields_of(kind), given, unit=unit, where=kind.kind, shared=shared)
     return (None, problems) if problems else (kind(**values), [])
 
 

@@ -79,10 +79,12 @@ def _built(piece: Piece, units: str) -> Built:
     built = piece.build(units=units)
     if not hasattr(piece, "material"):
         return built
-    from develop.pieces.sheet_metal import with_material
+    from develop.pieces.after_forming import with_forming
+    from develop.pieces.sheet_metal import known_material, with_material
 
     thickness: float = getattr(piece, "thickness", 0.0)
-    return with_material(built, material=piece.material, thickness=thickness, units=units)
+    built = with_material(built, material=piece.material, thickness=thickness, units=units)
+    return with_forming(built, piece, known=known_material(piece.material, thickness), units=units)
 
 
 def _alike(patterns: Sequence[Pattern], others: Sequence[Pattern]) -> bool:
@@ -151,7 +153,9 @@ def _seam(piece: Piece, built: Built) -> float | None:
     from develop.solid import Solid
 
     solid = built.parts[0].solid
-    if getattr(piece, "seam_at", None) != "shortest" or len(built.parts) > 1 or not isinstance(solid, Solid):
+    if getattr(piece, "seam_at", None) != "shortest" or not isinstance(solid, Solid):
+        return None
+    if sum(isinstance(part.solid, Solid) for part in built.parts) > 1:
         return None
     import numpy as np
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
-from develop.errors import InputError, Problem
+from develop.errors import InputError, Problem, Refusal
 from develop.pieces.field_types import SECTION
 from develop.pieces.fields import Piece
 from develop.sections.text import SectionSpec
@@ -89,6 +89,11 @@ class StraightHeader:
     face: Section
     length: float
     distance: float
+
+    @property
+    def around(self) -> Section:
+        """What its wall is round."""
+        return self.section
 
     @property
     def section_b(self) -> Section | None:
@@ -197,6 +202,11 @@ class TaperHeader:
     _trims: dict[tuple[bytes, bytes, float], BandTrim] = field(
         default_factory=dict, repr=False, compare=False
     )
+
+    @property
+    def around(self) -> Band:
+        """What its wall is round."""
+        return self.band
 
     @property
     def section(self) -> Section:
@@ -309,10 +319,19 @@ def _around(branch: Section) -> Array:
     return np.hstack([branch.point(u), np.zeros((len(u), 1))])
 
 
-def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> TaperHeader:
+def tapered(
+    piece: Piece,
+    *,
+    thickness: float,
+    sizes: str,
+    outward: float,
+    lining: float = 0.0,
+    neutral_line: float | str = 0.5,
+) -> TaperHeader:
     """The header that a transition or a cone makes, in the branch's wall.
 
-    thickness [mm]; outward: of the face that a branch meets, from the given surface [mm]. Raises Refusal.
+    thickness, lining [mm]; neutral_line: 0 inside to 1 outside, or a rule; outward: of the face that a
+    branch meets, from the given surface [mm]. Raises Refusal.
     """
     from dataclasses import replace
 
@@ -320,7 +339,13 @@ def tapered(piece: Piece, *, thickness: float, sizes: str, outward: float) -> Ta
     from develop.pieces.transition import Transition
 
     assert isinstance(piece, Transition | Cone)
-    piece = replace(piece, thickness=thickness, sizes=sizes)
+    if piece.edge_cut != "square" or piece.fits or piece.collar_a or piece.collar_b:
+        raise Refusal(
+            field="header",
+            given="a tapered header with level edges, fits or collars",
+            allowed="edge_cut = square, flush ends and no collars; they can be made on a piece beside it",
+        )
+    piece = replace(piece, thickness=thickness, sizes=sizes, lining=lining, neutral_line=neutral_line)
     band = piece.surface()
     return TaperHeader(band, outward, getattr(piece, "rotate", 0.0))
 

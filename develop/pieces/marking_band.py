@@ -38,7 +38,8 @@ __all__ = ["MarkingBand"]
 _TANGENT = 1e-9
 # Two sizes that differ by less, in parts of themselves, are one.
 _ROUND = 1e-12
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# On the header's band these are the pipe's, which has its own right and left.
+_WORDS = ("PIPE RIGHT", "PIPE TOP", "PIPE LEFT", "PIPE BOTTOM")
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -65,6 +66,7 @@ class MarkingBand(Marked):
             Choice(("set-on", "set-in")),
             "onto a header: the pipe stands on it and the hole is the pipe's bore, or the pipe reaches "
             "through its wall and the hole is the pipe's outside",
+            only_with="onto",
         ),
     )
     paper: float = field(default=0.1, metadata=about(Length(least=0.0, most=10.0), "thickness of the paper"))

@@ -16,9 +16,11 @@ import numpy as np
 from develop.pieces.assemble import pattern_of
 from develop.pieces.built import Built, Joint, Part
 from develop.pieces.cut_types import Cut
-from develop.pieces.cuts import cylinder_solid, trim
-from develop.solid import Frame
+from develop.pieces.cuts import cylinder_solid, end_of, trim
+from develop.pieces.joint_edge import JointEdge, trims_of, with_bevels
+from develop.solid import Frame, MitredEnd, TouchingEnd
 from develop.surfaces.cylinder import Cylinder
+from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
@@ -53,7 +55,7 @@ class Leg:
     @property
     def shape(self) -> tuple[float, ...]:
         """What two legs of one section have in common when they are alike."""
-        a, b = self.surface.trim_a, self.surface.trim_b
+        a, b = trims_of((self.surface.trim_a, self.surface.trim_b))
         assert isinstance(a, Plane)
         assert isinstance(b, Plane)
         return a.height, *map(float, a.rise), b.height, *map(float, b.rise)
@@ -70,9 +72,16 @@ def farthest(section: Section, towards: float) -> float:
 
 
 def legs_of(
-    section: Section, lengths: Sequence[float], turns: Sequence[Turn], *, distance: float
+    section: Section,
+    lengths: Sequence[float],
+    turns: Sequence[Turn],
+    *,
+    distance: float,
+    edge: JointEdge,
 ) -> tuple[Leg, ...]:
     """The legs, n of them, from their lengths on the axis [mm] and the n − 1 turns between them.
+
+    edge: how their edges are made where they meet.
 
     Whether a leg is long enough for its cuts is for whoever makes a piece to see to.
     """
@@ -81,12 +90,11 @@ def legs_of(
     for i, length in enumerate(lengths):
         before = turns[i - 1] if i else None
         after = turns[i] if i < len(turns) else None
-        surface = Cylinder(
-            section,
-            trim(before.cut if before else None, height=0.0, end_b=False),
-            trim(after.cut if after else None, height=length, end_b=True),
-            distance,
-        )
+        foot = trim(before.cut if before else None, height=0.0, end_b=False)
+        head = trim(after.cut if after else None, height=length, end_b=True)
+        low, high = edge.trim(foot) if before else foot, edge.trim(head, upper=True) if after else head
+        breaks = [u for each in (low, high) if isinstance(each, SquareEdge) for u in each.breaks(section)]
+        surface = Cylinder(section, low, high, distance, tuple(breaks))
         legs.append(Leg(surface, Frame(origin, axes)))
         origin = origin + length * axes[2]
         if after is not None:
@@ -103,12 +111,13 @@ def built_of(
     divisions: int,
     name: str,
     cutting: Callable[[Sheet, str], Cutting],
+    edge: JointEdge,
 ) -> Built:
     """The piece of these legs; those alike, seam and all, are one pattern that is used several times.
 
     seams: the direction of each leg's seam [rad]. wording: of the pattern of a sheet that serves the legs
     of these numbers, counted from 1. name: what a leg is called, such as `gore`. cutting: what is cut beyond
-    the net line of a leg, whose ends of these letters meet its neighbours.
+    the net line of a leg, whose ends of these letters meet its neighbours. edge: how those are made.
     """
     groups: dict[tuple[float, ...], list[int]] = {}
     for i, (leg, seam) in enumerate(zip(legs, seams, strict=True)):
@@ -121,6 +130,7 @@ def built_of(
         surface, section = legs[members[0]].surface, legs[members[0]].surface.section
         seam = float(section.at_direction(np.array([seams[members[0]]]))[0])
         sheet = surface.sheet(seam)
+        joined = ("a" if members[0] else "") + ("b" if members[0] < len(legs) - 1 else "")
         pattern = pattern_of(
             sheet,
             section,
@@ -128,10 +138,12 @@ def built_of(
             wording=wording(sheet, tuple(i + 1 for i in members)),
             divisions=divisions,
             distance=surface.distance,
-            cutting=cutting(sheet, ("a" if members[0] else "") + ("b" if members[0] < len(legs) - 1 else "")),
+            cutting=cutting(sheet, joined),
         )
         frames = tuple(legs[i].frame for i in members)
-        parts.append(Part(pattern, cylinder_solid(surface, seam), frames))
+        solid = cylinder_solid(surface, seam)
+        pattern = with_bevels(pattern, edge, {end: _bevelled(surface, end) for end in joined}, plates=2)
+        parts.append(Part(pattern, solid, frames))
         place_of |= {i: (number, place) for place, i in enumerate(members)}
     joints = []
     for i in range(len(legs) - 1):
@@ -140,3 +152,15 @@ def built_of(
             Joint(part, "b", other, "a", place, other_place, name=f"{name} {i + 1} to {name} {i + 2}")
         )
     return Built(tuple(parts), tuple(joints))
+
+
+def _bevelled(surface: Cylinder, end: str) -> TouchingEnd:
+    """The end of a leg as its table of bevels takes it: what touches or, where net lines meet, those."""
+    found = end_of(surface, end)
+    if isinstance(found, TouchingEnd):
+        return found
+    (plane,) = trims_of((surface.trim_a if end == "a" else surface.trim_b,))
+    assert isinstance(plane, Plane)
+    return MitredEnd.of(
+        surface.section, inner=0.0, outer=0.0, height=plane.height, rise=plane.rise, upper=end == "b"
+    )

@@ -62,10 +62,11 @@ class Offset(Jointed):
 
     def surface(self) -> tuple[Leg, ...]:
         """The three legs, from end A to end B. Raises Refusal."""
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import Turn, legs_of
-        from develop.pieces.wall import PLACES, given_section, neutral_distance, reach
+        from develop.pieces.wall import PLACES, reach
 
-        section = given_section(self.section, field="section", thickness=self.thickness, sizes=self.sizes)
+        section = self.in_wall(self.section, field="section")
         aside = hypot(*self.offset)
         if self.middle < _LEAST_SIDE:
             raise Refusal(
@@ -80,9 +81,8 @@ class Offset(Jointed):
             section,
             [self.ends, self.middle, self.ends],
             [Turn(self.angle, towards), Turn(self.angle, towards + pi)],
-            distance=neutral_distance(
-                thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line
-            ),
+            distance=self.distance(section),
+            edge=joint_edge(self),
         )
 
     def _room(self, aside: float, throat: float) -> None:
@@ -139,21 +139,27 @@ class Offset(Jointed):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.clearance import seam_warnings
+        from develop.pieces.joint_edge import joint_edge
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
+        section = legs[0].surface.section
         built = built_of(
             legs,
-            self._seams(legs[0].surface.section),
-            wording=lambda sheet, numbers: self._wording(sheet, numbers, units),
+            self._seams(section),
+            wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
             cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
+            edge=joint_edge(self),
             name="leg",
         )
         return seam_warnings(built, clear=self.clear)
 
-    def _wording(self, sheet: Sheet, numbers: tuple[int, ...], units: str) -> Wording:
+    def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the legs of these numbers says."""
+        from develop.pieces.joint_edge import joint_edge
+
+        edge = joint_edge(self)
         right, up = self.offset
         on_axis = self.middle if numbers[0] == 2 else self.ends
         alone = replace(self, mark=f"{self.mark}-{numbers[0]}", quantity=self.quantity * len(numbers))
@@ -163,10 +169,12 @@ class Offset(Jointed):
             sizes=f"{section_words(self.section, units)}, offset, length {size_words(self.length, units)}",
             place=f"{shift_words(right, up, units)}, "
             f"middle leg at {number_text(round(degrees(self.angle), 6))}°",
-            held="lengths and cuts",
+            held=edge.held("lengths", "cuts"),
             units=units,
+            around=section,
             more=(
                 f"leg {numbers[0]} of 3, mitre angle {number_text(round(degrees(0.5 * self.angle), 4))}°, "
                 f"{measured_words(on_axis, units)} long on the axis",
+                *edge.words(mitre=True),
             ),
         )

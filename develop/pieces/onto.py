@@ -10,7 +10,7 @@ from develop.errors import InputError, Problem
 from develop.pieces.field_types import SECTION, Angle, FieldType, Length
 from develop.sections.text import SectionSpec
 from develop.units import number_text
-from develop.wording import listed, near_miss, shown
+from develop.wording import listed, near_miss, nearest, shown
 
 __all__ = ["ONTO", "Onto", "OntoText"]
 
@@ -72,6 +72,15 @@ class OntoText:
             try:
                 read[name] = _PARTS[name].read(parts[name], unit=unit)
             except InputError as error:
+                # A word that is nearly one of these was taken for a part of the section.
+                text = parts[name] if name == "header" and isinstance(given, str) else ""
+                wrong = [word for word in str(text).split() if nearest(word, ("angle", "off_centre"))]
+                if wrong:
+                    hint = near_miss(wrong[0], ("angle", "off_centre"))
+                    problems.append(
+                        Problem("", f"{shown(wrong[0])} is no word of a header{hint}", self.allowed)
+                    )
+                    continue
                 problems += [Problem(name, each.given, each.allowed) for each in error.problems]
         if problems:
             raise InputError(problems)

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.pieces.common import Flat
-from develop.pieces.field_types import DIRECTION, MARK, SEAM, SECTION, Angle, Count, Length, Number, Pitch
+from develop.pieces.field_types import DIRECTION, MARK, SEAM, SECTION, Angle, Count, Length, Pitch
 from develop.pieces.fields import about
+from develop.pieces.neutral import Neutral, neutral_of
+from develop.pieces.rule_types import NEUTRAL
 from develop.pieces.wording import direction_words, plate_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
@@ -64,10 +66,12 @@ class Opening(Flat):
         default=None,
         metadata=about(Length(), "height of an upstand round the hole, above the plate at its high side"),
     )
-    neutral_line: float = field(
+    neutral_line: float | str = field(
         default=0.5,
         metadata=about(
-            Number(0.0, 1.0), "where the collar's neutral line lies, 0 inside to 1 outside", own=False
+            NEUTRAL,
+            "where the collar's neutral line lies, 0 inside to 1 outside, or a rule that tells",
+            own=False,
         ),
     )
     seam_at: float | str = field(
@@ -99,8 +103,19 @@ class Opening(Flat):
         rise = tan(self._slope) * np.array([cos(self.high_side), sin(self.high_side)])
         high = float(hole.support(rise[0], rise[1]))
         # The collar stands on the hole's edge, its inside level with it.
-        distance = self.thickness * self.neutral_line
-        return Cylinder(hole, Plane(0.0, rise), Plane(high + (self.collar or 1.0), np.zeros(2)), distance)
+        wall = Cylinder(hole, Plane(0.0, rise), Plane(high + (self.collar or 1.0), np.zeros(2)))
+        return replace(wall, distance=self.thickness * self._neutral(wall).place)
+
+    def _neutral(self, wall: Cylinder) -> Neutral:
+        """Where the collar's neutral line lies. Raises Refusal."""
+        if self.collar is None:
+            return Neutral(0.5)
+        return neutral_of(
+            self.neutral_line,
+            thickness=self.thickness,
+            inner=0.0,
+            sheet=lambda: replace(wall, distance=0.0).sheet(float(wall.section.breaks[0])),
+        )
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
@@ -134,6 +149,7 @@ class Opening(Flat):
                 f"collar round {self.section.text} and {number_text(self.clearance)} clear, inside sizes",
                 f"{number_text(self.collar or 0.0)} high at the high side, END A stands on the plate",
                 *facts[1:2],
+                *self._neutral(wall).words(),
             ),
             material=self._material(),
             lines_as="full" if self.thickness >= 3.0 else "ticks",

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from math import pi
+from math import floor, pi
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,7 +16,9 @@ from develop.pattern.parallel import arc_about, parallel, room, turns_of
 from develop.pattern.pattern import Outline, Pattern, RollLine, Rulings, WitnessMark
 from develop.pieces.assemble import dense
 from develop.pieces.built import Part
+from develop.pieces.clearance import Beside
 from develop.pieces.flat import Plate, holes_at, pattern_of_plate
+from develop.pieces.wording import SIDES
 from develop.solid import Patch
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.edges import Trace, edges
@@ -33,7 +36,10 @@ __all__ = ["Pad", "pad_parts"]
 
 _FINE = 1e-6  # [mm] so close that the tangents of parallels are good
 _COARSE = 0.5  # [mm]
-_WORDS = ("RIGHT", "TOP", "LEFT", "BOTTOM")
+# As on the header's opening.
+_WORDS = ("BRANCH RIGHT", "BRANCH TOP", "BRANCH LEFT", "BRANCH BOTTOM")
+_ENDS = ("HEADER'S RIGHT", "HEADER'S LEFT")
+_FLAT = 1e-9  # [rad]
 _PLACES = 48
 _ROLL_LINES = 12
 _SCRAP = 1.0  # [mm] a roll line shorter than this is left out
@@ -68,14 +74,17 @@ def pad_parts(
     rotate: float,
     mark: str,
     quantity: int,
+    leaning: str,
     facts: tuple[str, ...],
     units: str,
-) -> tuple[Part, ...]:
-    """The plate, whole or in its two halves.
+    beside: tuple[str, str],
+) -> tuple[tuple[Part, ...], tuple[Beside, ...]]:
+    """The plate, whole or in its two halves, and how near it lies to the seams.
 
     branch: its outside. header: the side as the plate lies on it, on the given surface that is the header's
     outside. frame: the branch's. lift: of the plate's own sheet outside the header's [mm]. seams: parameters
-    at which the branch and the header have theirs. rotate: of the branch's section [rad].
+    at which the branch and the header have theirs. rotate: of the branch's section [rad]. beside: the
+    marks of the branch and the header.
     Raises Refusal where the plate has no room.
     """
     trim = header.trim(frame)
@@ -98,6 +107,7 @@ def pad_parts(
     under = header.solid(seams[1], sheet, ())
     joint = header.joint(branch, frame, sheet=lift)
     parts = []
+    plates: list[Outline] = []
     for k, span in enumerate(spans if pad.halves else [(right, right_on)]):
         stretched = stretch(inner, *span)
         outer = _outer(inner, stretched, span, pad.width)
@@ -110,6 +120,7 @@ def pad_parts(
         if pad.tell_tale:
             at, along = point_at(stretched, place_at(stretched, _TELL_TALE * stretched.length))
             centre = at + 0.5 * pad.width * _right_of(along)
+            _check_tell_tale(pad, centre, net, openings)
             openings += holes_at(centre[None], 0.5 * pad.tell_tale)
         shown = [i for i in range(4) if not pad.halves or _between(float(marks.arcs[i]), span, whole)]
         witness = tuple(
@@ -122,30 +133,76 @@ def pad_parts(
             )
             for i in shown
         )
+        plates.append(net)
         plate = Plate(net, tuple(openings), witness, (), _places(stretched, pad.width))
         # Anticlockwise from the right, the first half lies towards the header's end A.
         which = ("-towards-a", "-towards-b")[k] if pad.halves else ""
-        title = f"{mark}{which}: compensation plate"
+        title = "compensation plate"
         if pad.halves:
             title += f", the half towards the header's END {'AB'[k]}"
+        moved = replace(lines, a=lines.a + plate.shift, b=lines.b + plate.shift)
         pattern = pattern_of_plate(
             plate,
             mark=f"{mark}{which}",
             kind="branch",
             quantity=quantity,
-            facts=(title, *facts, f"quantity {quantity}, outside up"),
+            facts=(),
         )
-        moved = replace(lines, a=lines.a + plate.shift, b=lines.b + plate.shift)
+        bent = _bent(pattern, moved)
         pattern = replace(
             pattern,
+            facts=(
+                f"{mark}{which}",
+                title,
+                f"{'rolled to lie' if bent else 'lies flat'} on the header, {leaning}",
+                *facts,
+                *((SIDES,) if pad.halves else ()),
+                f"quantity {quantity}, outside up",
+            ),
             units=units,
             lines_as="full",
-            lines=_roll_lines(pattern, moved),
+            lines=_roll_lines(pattern, moved) if bent else (),
+            end_words=((_ENDS if k == 0 else _ENDS[::-1]) if pad.halves else pattern.end_words),
+            facing=False,
             rulings=Rulings(moved.a, moved.b, np.diff(moved.turn, prepend=0.0), moved.u_a, lift),
         )
         solid = Patch(under, joint, pad.width, lift, 0.5 * pad.tell_tale, not pad.halves)
         parts.append(Part(pattern, solid, (frame,)))
-    return tuple(parts)
+    marks_of = tuple(part.pattern.mark for part in parts)
+    return tuple(parts), _beside_seams(plates, inner, sheet, (mark, *beside), marks_of)
+
+
+def _beside_seams(
+    plates: Sequence[Outline], inner: Curve, sheet: Sheet, names: tuple[str, str, str], marks: tuple[str, ...]
+) -> tuple[Beside, ...]:
+    """How far [mm] the plate, laid flat, lies from the header's seam, and the joints between its halves
+    from that and from the branch's, which ends where the opening's edge begins.
+
+    names: of the plate, the branch and the header. marks: of the plate's parts.
+    """
+    at = sheet.at_ends
+    seams = [np.array([at.a[i], at.b[i]]) for i in (0, -1)]
+    pad, branch, header = names
+
+    def gap(curves: Sequence[Curve]) -> float:
+        points = np.vstack([curve.polyline(_COARSE) for curve in curves])
+        # A joint is straight: its ends alone might pass a seam by.
+        return min(
+            *(_distance(points, seam) for seam in seams),
+            *(_distance(seam, curve.polyline(_COARSE)) for seam in seams for curve in curves),
+        )
+
+    outer = [curve for net in plates for name, curve in net.curves if name == "outer"]
+    ends = [curve for net in plates for name, curve in net.curves if name.startswith("end_")]
+    found = [Beside(f"the edge of {pad} and the seam of {header}", gap(outer), (*marks, header))]
+    if ends:
+        joints = f"the joint of the halves of {pad} and the seam of"
+        to_branch = min(_distance(inner.start[None], end.polyline(_COARSE)) for end in ends)
+        found += [
+            Beside(f"{joints} {header}", gap(ends), (*marks, header)),
+            Beside(f"{joints} {branch}", to_branch, (*marks, branch)),
+        ]
+    return tuple(found)
 
 
 def _right_of(along: Array) -> Array:
@@ -174,6 +231,21 @@ def _check_room(pad: Pad, inner: Curve, sheet: Sheet) -> None:
         field="pad",
         given=f"{number_text(pad.width)} mm reaches past an end or the seam of the header, or into itself",
         allowed=f"{allowed} mm or less" if allowed > 0 else "no compensation plate there",
+    )
+
+
+def _check_tell_tale(pad: Pad, centre: Array, net: Outline, openings: list[Outline]) -> None:
+    """Raises Refusal where the hole would reach an edge of its part."""
+    curves = [curve for outline in (net, *openings) for _, curve in outline.curves]
+    reach = min(_distance(centre[None], curve.polyline(_CLEAR)) for curve in curves)
+    # Chords lie a little inside.
+    most = floor((2.0 * (reach - _CLEAR_EDGE + _CLEAR) + _CLEAR) * 10.0) / 10.0
+    if pad.tell_tale <= most:
+        return
+    raise Refusal(
+        field="tell_tale",
+        given=f"{number_text(pad.tell_tale)} mm has no room in a plate {number_text(pad.width)} mm wide",
+        allowed=f"{number_text(most)} mm or less, or 0 for none" if most > 0.0 else "0 for none",
     )
 
 
@@ -225,14 +297,28 @@ def _places(stretched: Curve, width: float) -> Array:
     return np.array(found)
 
 
-def _roll_lines(pattern: Pattern, lines: Lines) -> tuple[RollLine, ...]:
-    """Lines of the header over the plate, evenly through its width, without what the opening takes away."""
-    curves = [curve for outline in (pattern.net, *pattern.openings[:1]) for _, curve in outline.curves]
+def _strips(pattern: Pattern, lines: Lines) -> tuple[int, int]:
+    """The first and the last of the strips between the header's lines that the plate lies on."""
     points = np.vstack([curve.polyline(_COARSE) for _, curve in pattern.net.curves])
     along = (lines.b - lines.a) / lines.length[:, None]
     gap = points[:, None] - lines.a
     strips = (along[:, 1] * gap[..., 0] - along[:, 0] * gap[..., 1] > 0.0).sum(axis=1)
-    picked = np.unique(np.linspace(strips.min(), strips.max() - 1, _ROLL_LINES + 2).astype(int))
+    return int(strips.min()), int(strips.max())
+
+
+def _bent(pattern: Pattern, lines: Lines) -> bool:
+    """Whether the header's face turns anywhere under the plate."""
+    first, last = _strips(pattern, lines)
+    turned = lines.turn[min(last, len(lines.turn) - 1)] - lines.turn[max(first - 1, 0)]
+    return bool(turned > _FLAT)
+
+
+def _roll_lines(pattern: Pattern, lines: Lines) -> tuple[RollLine, ...]:
+    """Lines of the header over the plate, evenly through its width, without what the opening takes away."""
+    curves = [curve for outline in (pattern.net, *pattern.openings[:1]) for _, curve in outline.curves]
+    along = (lines.b - lines.a) / lines.length[:, None]
+    first, last = _strips(pattern, lines)
+    picked = np.unique(np.linspace(first, last - 1, _ROLL_LINES + 2).astype(int))
     found = []
     turned = None
     for i in picked:

@@ -57,7 +57,8 @@ def kind_text(kind: type[Piece]) -> str:
 def _allowed(field: Declared) -> str:
     unit = " (a bare number is in the job's unit, else mm)" if field.type.unit == "mm" else ""
     other = f"; not together with {listed(field.not_with)}" if field.not_with else ""
-    return f"{field.type.allowed}{unit}{other}"
+    only = f"; only together with {field.needs}" if field.needs else ""
+    return f"{field.type.allowed}{unit}{other}{only}"
 
 
 def kinds_page() -> str:

@@ -6,9 +6,13 @@ import re
 from dataclasses import dataclass
 
 from develop.errors import InputError, Problem
-from develop.wording import shown
+from develop.units import number_text, parse_number
+from develop.wording import listed, near_miss, shown
 
-__all__ = ["EDGE", "SEAM_RULE", "RuleText"]
+__all__ = ["BEND_RULES", "EDGE", "NEUTRAL", "SEAM_RULE", "NeutralLine", "RuleText"]
+
+BEND_RULES = ("soft", "half-hard", "hard", "aircraft", "by-radius")
+"""The published rules for bends, by name; `tables/bends.toml` has them, which the help need not read."""
 
 # A bare number, but for what may follow a size.
 _BARE = re.compile(r"(?<![\w./])(\d[\d./-]*)(?=\s*(?:turned\b|\bout\b|$))")
@@ -43,5 +47,40 @@ class RuleText:
         return str(value)
 
 
+@dataclass(frozen=True, eq=False, repr=False)
+class NeutralLine:
+    """A place in the thickness, 0 inside to 1 outside, or the name of a published rule."""
+
+    metavar: str = "PLACE"
+    unit: str = ""
+
+    @property
+    def allowed(self) -> str:
+        """What may be given, in words."""
+        return f"a number from 0 to 1, or a published rule: {listed(BEND_RULES)}"
+
+    def read(self, given: object, *, unit: str) -> float | str:
+        """The number or the rule's name. Raises InputError."""
+        if isinstance(given, str) and any(each.isalpha() for each in given):
+            name = "-".join(given.lower().replace("-", " ").split())
+            if name not in BEND_RULES:
+                wrong = f"{shown(given)} is not a rule for bends{near_miss(name, BEND_RULES)}"
+                raise InputError(Problem("", wrong, self.allowed))
+            return name
+        number = parse_number(given, what="a number", allowed=self.allowed)
+        if not 0.0 <= number <= 1.0:
+            raise InputError(Problem("", f"{shown(given)} is out of range", self.allowed))
+        return number
+
+    def record(self, value: object) -> object:
+        """The number or the name."""
+        return value
+
+    def text(self, value: object) -> str:
+        """The same as text."""
+        return value if isinstance(value, str) else number_text(float(str(value)))
+
+
+NEUTRAL = NeutralLine()
 SEAM_RULE = RuleText("butt, lap 25, grooved 6, standing 25")
 EDGE = RuleText("raw, lap 20, flange 25 out, hem 10, wired 6")

@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-from math import ceil, floor
+from dataclasses import dataclass, field, replace
+from math import ceil, degrees, floor
 from typing import TYPE_CHECKING, ClassVar
 
 from develop.errors import Refusal
-from develop.pieces.common import Plate
 from develop.pieces.cut_types import CUT, Cut
 from develop.pieces.field_types import ANGLE, LENGTH, MARK, OFFSET, SECTION, Choice, Count, Length
 from develop.pieces.fields import about
+from develop.pieces.fitted import Tapered
 from develop.pieces.wording import direction_words, section_words, shift_words, size_words
 from develop.sections.text import SectionSpec
 from develop.units import number_text
@@ -32,7 +32,7 @@ __all__ = ["Transition"]
 
 
 @dataclass(frozen=True, kw_only=True)
-class Transition(Plate):
+class Transition(Tapered):
     """A change from one section to another; lengths in mm, angles in radians."""
 
     kind: ClassVar[str] = "transition"
@@ -93,14 +93,11 @@ class Transition(Plate):
 
     def surface(self) -> Band:
         """The band between the two ends. Raises Refusal."""
-        from develop.pieces.wall import check_bend, given_section, neutral_distance
+        from develop.pieces.wall import check_bend, check_level
         from develop.solid import Frame, Rim
         from develop.surfaces.band import Band
 
-        a, b = (
-            given_section(spec, field=field, thickness=self.thickness, sizes=self.sizes)
-            for field, spec in (("end_a", self.end_a), ("end_b", self.end_b))
-        )
+        a, b = self.in_wall(self.end_a, field="end_a"), self.in_wall(self.end_b, field="end_b")
         size = max(a.width, a.height, b.width, b.height)
         if self.length < size / _FLATTEST:
             raise Refusal(
@@ -114,12 +111,23 @@ class Transition(Plate):
         slope = self.tilt.slope if self.tilt else 0.0
         if slope and not self._clear(rim, b, slope):
             self._refuse_tilt(rim, b)
+        # Fits change what is placed, not where.
         band = Band(
-            rim,
-            self._end_b(a, b, slope),
-            neutral_distance(thickness=self.thickness, sizes=self.sizes, neutral_line=self.neutral_line),
+            Rim(self.fitted(a, "a"), rim.frame),
+            Rim(self.fitted(b, "b"), self._end_b(a, b, slope).frame),
+            level=self.level,
         )
+        band = replace(band, distance=self.distance(band))
         check_bend(band, thickness=self.thickness, sizes=self.sizes, instead="a longer piece")
+        check_level(band)
+        if self.collar_b is not None and self.rotate:
+            # Its marks are those of its own section, which would not be the piece's.
+            raise Refusal(
+                field="collar_b",
+                given=f"given with END B rotated {number_text(round(degrees(self.rotate), 6))}°",
+                allowed="rotate 0, which for a round end is the same; else none, and a straight piece that "
+                "is turned with the end",
+            )
         return band
 
     def _end_b(self, a: Section, b: Section, slope: float) -> Rim:
@@ -151,8 +159,7 @@ class Transition(Plate):
 
     def _refuse_tilt(self, rim_a: Rim, b: Section) -> None:
         """Raises Refusal with the largest tilt that works, and the least length."""
-        from dataclasses import replace
-        from math import degrees, radians
+        from math import radians
 
         assert self.tilt is not None
         low, high = 0.0, self.tilt.slope
@@ -183,13 +190,11 @@ class Transition(Plate):
 
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
-        from math import degrees
-
         from develop.pieces.assemble import pattern_of, seam_parameter
         from develop.pieces.built import one
         from develop.pieces.chord import with_chords
+        from develop.pieces.cuts import band_solid
         from develop.pieces.press import Press
-        from develop.solid import End, Solid
 
         surface = self.surface()
         a, b = surface.rim_a, surface.rim_b
@@ -213,26 +218,27 @@ class Transition(Plate):
                 place=", ".join([*place, *self._tilt_words()]),
                 held="length",
                 units=units,
+                around=surface,
+                level=self.level_words(surface),
+                fits=self.fits,
             ),
             divisions=self.divisions,
             distance=surface.distance,
             turn_b=self.rotate,
-            cutting=self.cutting(sheet, units=units),
+            cutting=self.cautioned(self.cutting(sheet, joints=self.collared, units=units), surface),
             press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
         )
-        solid = Solid(
-            End.placed(a.section, a.frame),
-            End.placed(b.section, b.frame),
-            side="hull",
+        built = one(with_chords(pattern, self.swing), band_solid(surface, sheet, seam))
+        return self.with_collars(
+            built,
+            surface,
+            specs={"a": self.end_a, "b": self.end_b},
             seam=seam,
             seam_b=sheet.seam_b,
-            distance=surface.distance,
+            units=units,
         )
-        return one(with_chords(pattern, self.swing), solid)
 
     def _tilt_words(self) -> tuple[str, ...]:
-        from math import degrees
-
         if self.tilt is None or self.tilt.slope == 0.0:
             return ()
         slope = number_text(round(degrees(self.tilt.slope), 6))

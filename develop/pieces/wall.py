@@ -4,14 +4,14 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from develop.errors import InputError, Problem, Refusal
+from develop.errors import Refusal
 
 if TYPE_CHECKING:
     from develop.sections.section import Section
     from develop.sections.text import SectionSpec
     from develop.surfaces.band import Band
 
-__all__ = ["PLACES", "check_bend", "given_section", "neutral_distance", "reach"]
+__all__ = ["PLACES", "check_bend", "check_level", "given_section", "reach"]
 
 # Places on each panel of a section at which the bend of a side is looked at.
 _BETWEEN = 24
@@ -20,43 +20,53 @@ PLACES = {"inside": 0.0, "mean": 0.5, "outside": 1.0}
 """Where sizes can be measured, as a share of the thickness from the inside."""
 
 
-def given_section(spec: SectionSpec, *, field: str, thickness: float, sizes: str) -> Section:
+def given_section(
+    spec: SectionSpec, *, field: str, thickness: float, sizes: str, lining: float = 0.0
+) -> Section:
     """The section on the surface that `sizes` names; a pipe's size is its outside, so it is moved in.
 
-    thickness [mm]. Raises Refusal naming `field` where the wall has no room.
+    thickness [mm]. lining: what lies inside the wall [mm]; sizes inside are then those that it leaves clear,
+    and the section is moved out by as much. Raises Refusal naming `field` where the wall has no room, and
+    for a lining where sizes are not inside.
     """
+    from math import floor
+
     from develop.sections import section_of
+    from develop.units import number_text
 
+    if lining and sizes != "inside":
+        raise Refusal(
+            field="lining",
+            given=f"{number_text(lining)} mm with sizes = {sizes}: a lining is inside of what is measured",
+            allowed="sizes = inside, then clear inside the lining; or no lining",
+        )
     section = section_of(spec)
+    if lining and not spec.outside:
+        section = section.offset(lining)
     places = {place: thickness * (share - PLACES[sizes]) for place, share in PLACES.items()}
-    if spec.outside:
-        section = _moved(section, -places["outside"], field, thickness)
-    # The inside of the wall must exist too, whatever is developed.
-    _moved(section, places["inside"], field, thickness)
-    return section
+    # At its outside a pipe has its size whatever is said of the others.
+    ways = () if spec.outside or sizes == "inside" else ("sizes = inside",)
 
-
-def _moved(section: Section, distance: float, field: str, thickness: float) -> Section:
-    try:
-        return section.offset(distance)
-    except Refusal:
-        most = thickness * section.least_radius / -distance
-        ways = [section.rounder(-distance)]
-        if most > 0.0:
-            ways.insert(0, f"a wall that lies within that radius: here at most {most:.4g} mm")
-        raise InputError(
-            Problem(
+    def moved(section: Section, distance: float) -> Section:
+        try:
+            return section.offset(distance)
+        except Refusal:
+            radius = section.least_radius
+            most = floor(thickness * radius / -distance * 10.0 - 1e-6) / 10.0
+            thinner = (f"{number_text(most)} mm or less",) if most > 0.0 else ()
+            room = f"the tightest radius is {radius:.4g} mm" if radius > 0.0 else "the corners are sharp"
+            raise Refusal(
                 field="thickness",
-                given=f"{thickness:g} mm leaves no inside to the {field}, whose tightest radius is "
-                f"{section.least_radius:.4g} mm",
-                allowed=", or ".join(ways),
-            )
-        ) from None
+                given=f"{thickness:g} mm leaves no inside to {field}, {spec.text}, sizes "
+                f"{'outside' if spec.outside else sizes}: {room}",
+                allowed=", or ".join((*thinner, f"for {field} {section.rounder(-distance)}", *ways)),
+            ) from None
 
-
-def neutral_distance(*, thickness: float, sizes: str, neutral_line: float) -> float:
-    """How far outside the given surface the neutral line lies [mm]."""
-    return thickness * (neutral_line - PLACES[sizes])
+    if spec.outside:
+        section = moved(section, -places["outside"])
+    # The inside of the wall must exist too, whatever is developed.
+    moved(section, places["inside"])
+    return section
 
 
 def reach(section: Section, direction: float) -> float:
@@ -100,3 +110,17 @@ def check_bend(band: Band, *, thickness: float, sizes: str, instead: str, ends: 
         f"radius of {tightest:.3g} mm, near END {end}",
         allowed=f"{number_text(most)} mm or less, or {instead}" if most > 0.0 else instead,
     )
+
+
+def check_level(band: Band) -> None:
+    """Raises Refusal where level edges would run back over themselves."""
+    if not any(band.levels):
+        return
+    back = band.sheet(float(band.rim_a.section.breaks[0])).back
+    if any(back):
+        raise Refusal(
+            field="edge_cut",
+            given=f"level makes the edge at END {'A' if back[0] else 'B'} run back over itself, where the "
+            "lines of a flat part of the side fan out from a point",
+            allowed="square; or sizes measured on another face",
+        )

@@ -6,7 +6,7 @@ units: `mm` or `in`. In mm a size stands bare, in inches with its unit, as a fra
 from __future__ import annotations
 
 from math import degrees
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from develop.tables.gauges import Gauge
 from develop.tables.materials import material_of
@@ -14,7 +14,9 @@ from develop.units import format_length, number_text
 
 if TYPE_CHECKING:
     from develop.pieces.cut_types import Cut
+    from develop.sections.section import Section
     from develop.sections.text import SectionSpec
+    from develop.surfaces.band import Band
 
 __all__ = [
     "SIDES",
@@ -22,6 +24,7 @@ __all__ = [
     "direction_words",
     "edges_words",
     "lines_of",
+    "lining_words",
     "mass_words",
     "measured_words",
     "off_centre_words",
@@ -129,6 +132,19 @@ def sizes_words(sizes: str, thickness: float, *sections: SectionSpec) -> str:
         return "sizes outside"
     words = {"mean": "sizes mean (mid-thickness)"}.get(sizes, f"sizes {sizes}")
     return f"{words}, the pipe's outside" if any(pipes) and sizes != "outside" else words
+
+
+def lining_words(lining: float, around: Section | Band | None, units: str) -> tuple[str, ...]:
+    """What a lining [mm] makes of the sizes, and what the duct itself then measures inside."""
+    if not lining:
+        return ()
+    size = ""
+    if around is not None:
+        rim = getattr(around, "rim_a", None)
+        section: Any = around if rim is None else rim.section
+        wide, tall = (size_words(round(each, 4), units) for each in (section.width, section.height))
+        size = f", {'END A of the ' if rim else ''}duct {wide} x {tall} inside"
+    return (f"clear inside the lining of {size_words(lining, units)}{size}",)
 
 
 def edges_words(edges: tuple[float, float], units: str) -> str:

@@ -10,27 +10,34 @@ from develop.solid.patch import Patch
 from develop.solid.placed import Placed
 from develop.solid.solid import Solid
 from develop.solid.taper_meeting import TaperMeetingEnd
+from develop.solid.template import FlatTemplate, FloorOutlines
+from develop.solid.touching import MitredEnd, StandingEnd, TouchingEnd
 from develop.solid.wall import Mesh, plate, wall
 
 __all__ = [
     "End",
     "FlatPlate",
     "FlatRing",
+    "FlatTemplate",
+    "FloorOutlines",
     "Frame",
     "Holes",
     "Made",
     "MeetingEnd",
     "Mesh",
+    "MitredEnd",
     "Patch",
     "Placed",
     "Rim",
     "Solid",
+    "StandingEnd",
     "Stretch",
     "TaperMeetingEnd",
+    "TouchingEnd",
     "cut_slopes",
     "plate",
     "wall",
 ]
 
-Made = Solid | FlatRing | FlatPlate | Patch
+Made = Solid | FlatRing | FlatPlate | FlatTemplate | FloorOutlines | Patch
 """The finished shape of any one part."""

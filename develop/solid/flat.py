@@ -5,6 +5,7 @@ Nothing here knows how the outline is drawn; it is what the pattern is checked a
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 from math import pi
@@ -21,6 +22,19 @@ __all__ = ["FlatPlate", "FlatRing", "Holes", "Stretch"]
 _LOOSE = 1e-15
 _ROUNDS = 30
 _SAME = 1e-9
+
+
+def _integral(values: Callable[[Array], Array], ends: Array) -> float:
+    """The integral of a function of the direction [rad] between ends, on panels that resolve it."""
+
+    def sampled(panels: Panels) -> Array:
+        return values(panels.nodes)[..., None]
+
+    def loose(panels: Panels, found: Array) -> Mask:
+        return np.asarray((tail(found)[:, 0] * panels.half) > _LOOSE * np.max(np.abs(found)))
+
+    panels, found = resolved(Panels.between(ends), sampled, loose, rounds=_ROUNDS)
+    return float(np.sum((found[..., 0] @ WEIGHTS) * panels.half))
 
 
 @dataclass(frozen=True)
@@ -63,16 +77,34 @@ class Stretch:
         between = np.sort(between[(between > first + _SAME) & (between < last - _SAME)])
         ends = np.concatenate([[first], between, [last]])
 
-        def values(panels: Panels) -> Array:
-            phi = panels.nodes
-            return self.section.support(np.cos(phi), np.sin(phi))[..., None]
+        def support(phi: Array) -> Array:
+            return self.section.support(np.cos(phi), np.sin(phi))
 
-        def loose(panels: Panels, found: Array) -> Mask:
-            return np.asarray((tail(found)[:, 0] * panels.half) > _LOOSE * np.max(found))
+        return _integral(support, ends) + float(along[1] - along[0])
 
-        panels, found = resolved(Panels.between(ends), values, loose, rounds=_ROUNDS)
-        swept = float(np.sum((found[..., 0] @ WEIGHTS) * panels.half))
-        return swept + float(along[1] - along[0])
+    @cached_property
+    def swept(self) -> float:
+        """Area [mm²] between it and the lines from the section's centre to its ends.
+
+        ½ ∫ h ds with ds = (h + h″) dφ, in parts: ½ ∫ (h² − h′²) dφ + ½ [h h′] (Green's formula in terms
+        of the support h), where h′ is the place of the touching point along its tangent.
+        """
+        first, last = self._directions
+        at = self.section.walk(np.array([self.start, self.stop]))
+        reach, along = at.x * at.ex + at.y * at.ey, at.y * at.ex - at.x * at.ey
+        ends = 0.5 * float(reach[1] * along[1] - reach[0] * along[0])
+        if last == first:
+            return ends
+        kinks = self.section.kinks
+        between = (first + (kinks - first) % (2.0 * pi)) if len(kinks) else np.zeros(0)
+        between = np.sort(between[(between > first + _SAME) & (between < last - _SAME)])
+
+        def values(phi: Array) -> Array:
+            c, s = np.cos(phi), np.sin(phi)
+            x, y = self.section.touch(c, s)
+            return np.asarray((x * c + y * s) ** 2 - (y * c - x * s) ** 2)
+
+        return 0.5 * _integral(values, np.concatenate([[first], between, [last]])) + ends
 
 
 @dataclass(frozen=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -12,7 +13,7 @@ from develop.sections.section import Section
 from develop.solid.end import End
 from develop.solid.frame import Frame
 
-__all__ = ["MeetingEnd"]
+__all__ = ["MeetingEnd", "nearest"]
 
 _BISECTIONS = 60
 _STEPS = 8
@@ -143,18 +144,26 @@ class MeetingEnd(End):
         From the point on the same line of the branch, steps along the joint lead to the nearest;
         the best point met is taken as it is, so the distance is never understated.
         """
-        u = self.section.at_direction(np.arctan2(points[:, 1], points[:, 0]))
-        step = 1e-7 * self.section.period
-        best = np.full(len(points), np.inf)
-        for _ in range(_STEPS):
-            foot = self.point(u)
-            gap = points - foot
-            square = (gap * gap).sum(axis=1)
-            gained = float(np.max(best - square))
-            best = np.minimum(best, square)
-            if gained <= 1e-9:
-                break
-            along = (self.point(u + step) - foot) / step
-            size = (along * along).sum(axis=1)
-            u = u + (gap * along).sum(axis=1) / np.where(size > 0.0, size, np.inf)
-        return np.asarray(np.sqrt(best))
+        return nearest(self.section, self.point, points)
+
+
+def nearest(section: Section, point: Callable[[Array], Array], points: Array) -> Array:
+    """Distance (n,) [mm] of points (n, 3) from a curve over a section, never understated.
+
+    point: of the curve at the section's parameters (n,).
+    """
+    u = section.at_direction(np.arctan2(points[:, 1], points[:, 0]))
+    step = 1e-7 * section.period
+    best = np.full(len(points), np.inf)
+    for _ in range(_STEPS):
+        foot = point(u)
+        gap = points - foot
+        square = (gap * gap).sum(axis=1)
+        gained = float(np.max(best - square))
+        best = np.minimum(best, square)
+        if gained <= 1e-9:
+            break
+        along = (point(u + step) - foot) / step
+        size = (along * along).sum(axis=1)
+        u = u + (gap * along).sum(axis=1) / np.where(size > 0.0, size, np.inf)
+    return np.asarray(np.sqrt(best))

@@ -14,7 +14,10 @@ import numpy as np
 
 from develop.quadrature import DERIVATIVE, WEIGHTS, Array, Indices, Mask, Panels, resolved, tail
 from develop.solid.end import End
+from develop.solid.level import EndPlane, level_area, level_girth
 from develop.solid.meeting import MeetingEnd
+from develop.solid.straights import paired
+from develop.solid.touching import TouchingEnd
 
 __all__ = ["Measures", "Solid", "Strip"]
 
@@ -59,6 +62,7 @@ class Solid:
     distance: of the developed sheet outside the surface that carries the ends [mm].
     openings: where branches meet this side, placed in its frame.
     cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
+    level: the sheet's edges lie in the planes of the ends; else the plate is cut square to itself there.
     """
 
     end_a: End
@@ -69,6 +73,15 @@ class Solid:
     distance: float = 0.0
     cut_b: tuple[float, Array] | None = None
     openings: tuple[MeetingEnd, ...] = ()
+    level: bool = False
+
+    @cached_property
+    def planes(self) -> tuple[EndPlane | None, EndPlane | None]:
+        """The planes that the sheet's edges lie in, where they are level: a point has none."""
+        if not self.level or self.distance == 0.0:
+            return None, None
+        far = EndPlane.of_cut(*self.cut_b) if self.cut_b else EndPlane.of(self.end_b)
+        return EndPlane.of(self.end_a), far
 
     def strip(self, u: Array) -> Strip:
         """The side's straight lines through end A at its section's parameter u (n,)."""
@@ -76,9 +89,10 @@ class Solid:
             at = self.end_a.section.walk(u)
             normal = np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1)
             return Strip(self.end_a.point(u), self.end_b.point(u), normal)
-        normal = self._touching(self.end_a, self.end_b, u)
+        normal = self.touching(self.end_a, self.end_b, u)
         a = self.end_a.point(u)
-        return Strip(a, self._cut(a, self._feet(normal, u)), normal)
+        b = paired(self.end_a, self.end_b, u, normal, self.end_b.touch(normal))
+        return Strip(a, self._cut(a, b), normal)
 
     def lengths(self, u: Array) -> tuple[Array, Array]:
         """Least and largest lengths (n,) [mm] of the side's straight lines from end A's parameters u (n,).
@@ -105,26 +119,6 @@ class Solid:
             least[fan], most[fan] = ends[2], np.maximum(*ends[:2])
         return least, most
 
-    def _feet(self, normal: Array, u: Array) -> Array:
-        """Points (n, 3) of end B on the lines from end A's parameters u (n,), given the planes' normals.
-
-        Where a plane touches both ends along straight sides the lines run over a flat facet, on which both
-        ends are walked in proportion.
-        """
-        feet = self.end_b.touch(normal)
-        (first, last), (low, high) = (
-            end.section.parameters(*(normal @ end.spans).T) for end in (self.end_a, self.end_b)
-        )
-        facet = np.flatnonzero((last > first) & (high > low))
-        if len(facet):
-            length = (last - first)[facet]
-            past = (u[facet] - first[facet]) % self.end_a.section.period
-            # Before the side's first point by rounding alone.
-            past = np.where(past > self.end_a.section.period - _SAME, 0.0, past)
-            share = np.minimum(past / length, 1.0)
-            feet[facet] = self.end_b.point(low[facet] + share * (high - low)[facet])
-        return feet
-
     def _cut(self, a: Array, b: Array) -> Array:
         """The far ends (n, 3) of lines from a to b, at the cut where there is one."""
         if self.cut_b is None:
@@ -132,6 +126,40 @@ class Solid:
         height, rise = self.cut_b
         over_a, over_b = (p[:, 2] - height - p[:, :2] @ rise for p in (a, b))
         return np.asarray(a + (over_a / (over_a - over_b))[:, None] * (b - a))
+
+    def sheet_strip(self, u: Array) -> Strip:
+        """What of those lines the sheet reaches over: from level edges, the parts below them."""
+        return self._reached(self.strip(u))
+
+    def sheet_strip_b(self, u: Array) -> Strip:
+        """The same through end B at its section's parameter u (n,)."""
+        return self._reached(self.strip_b(u))
+
+    def _reached(self, strip: Strip) -> Strip:
+        lift = self.distance * strip.normal
+        ends = [
+            end if plane is None else plane.along(end + lift, strip.b - strip.a) - lift
+            for end, plane in zip((strip.a, strip.b), self.planes, strict=True)
+        ]
+        return Strip(ends[0], ends[1], strip.normal)
+
+    def on_ends(self, a: Array, b: Array, normal: Array) -> tuple[Array, Array]:
+        """Where lines of the sheet from a to b (n, 3), with outward normals (n, 3), have the ends of the
+        given surface: below them, and below level edges where the surface meets the plane."""
+        ends = [end - self.distance * normal for end in (a, b)]
+        return tuple(
+            end if plane is None else plane.along(end, b - a)
+            for end, plane in zip(ends, self.planes, strict=True)
+        )  # type: ignore[return-value]
+
+    def plane_miss(self, a: Array, b: Array) -> float:
+        """Largest distance [mm] of the sheet's edges, a and b (n, 3), from the planes that they lie in."""
+        misses = [
+            float(np.max(np.abs(plane.over(end))))
+            for end, plane in zip((a, b), self.planes, strict=True)
+            if plane
+        ]
+        return max(misses, default=0.0)
 
     def girths(self) -> tuple[float, float]:
         """Lengths [mm] of the sheet's two edges, from the ends alone where it lies on them."""
@@ -142,19 +170,29 @@ class Solid:
     def misses(self, a: Array, b: Array, u: Array) -> float:
         """Largest distance [mm] of points a, b (n, 3), on the given surface, from the two ends.
 
-        u: (n,) parameters of end A's section that the points belong to, for an end that is a cut.
+        u: (n,) parameters of end A's section that the points belong to, for an end that is a cut, or one
+        that stands at a sharp corner while its height changes.
         """
-        far = self.end_b.distance(b) if self.cut_b is None else np.linalg.norm(b - self.strip(u).b, axis=1)
-        return float(max(np.max(self.end_a.distance(a)), np.max(far)))
+        far = self._off(self.end_b, b, u)
+        if self.cut_b is not None:
+            far = np.linalg.norm(b - self.strip(u).b, axis=1)
+        return float(max(np.max(self._off(self.end_a, a, u)), np.max(far)))
 
-    def _strip_b(self, u: Array) -> Strip:
+    @staticmethod
+    def _off(end: End, points: Array, u: Array) -> Array:
+        """Distance (n,) [mm] of points (n, 3) from an end, never understated."""
+        if isinstance(end, TouchingEnd):
+            return np.asarray(np.minimum(end.distance(points), np.linalg.norm(points - end.point(u), axis=1)))
+        return np.asarray(end.distance(points))
+
+    def strip_b(self, u: Array) -> Strip:
         """The side's straight lines through end B at its section's parameter u (n,)."""
         if self.side == "parallel":
             return self.strip(u)
-        normal = self._touching(self.end_b, self.end_a, u)
+        normal = self.touching(self.end_b, self.end_a, u)
         return Strip(self.end_a.touch(normal), self.end_b.point(u), normal)
 
-    def _touching(self, on: End, other: End, u: Array) -> Array:
+    def touching(self, on: End, other: End, u: Array) -> Array:
         """Unit normals (n, 3) of the planes through the tangents of one end that touch the other.
 
         As the plane turns about the tangent, the other end lies wholly outside of it, then wholly
@@ -185,6 +223,14 @@ class Solid:
         touches the side all along a line. Each part is taken round its own end, so that a straight
         side of one end, where the other stands, is counted once.
         """
+        if any(self.planes):
+            edges = [
+                level_girth(self, end_b=bool(end_b))
+                if plane
+                else self._swept(self.strip_b, (self.end_b, self.end_a), "b")[0]
+                for end_b, plane in enumerate(self.planes)
+            ]
+            return Measures(edges[0], edges[1], level_area(self))
         if self.cut_b is not None:
             # Both parts round end A: a cut side has no line on which end A stands.
             both = [self._swept(self.strip, (self.end_a, self.end_b), edge) for edge in "ab"]
@@ -193,7 +239,7 @@ class Solid:
             self._swept(walk, ends, edge)
             for walk, ends, edge in (
                 (self.strip, (self.end_a, self.end_b), "a"),
-                (self._strip_b, (self.end_b, self.end_a), "b"),
+                (self.strip_b, (self.end_b, self.end_a), "b"),
             )
         )
         return Measures(edge_a, edge_b, area_a + area_b)
@@ -219,7 +265,7 @@ class Solid:
             length = np.linalg.norm(velocity, axis=-1)
             return np.stack([length, 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)], axis=-1)
 
-        first = Panels.between(self._panel_ends(*ends))
+        first = Panels.between(self.panel_ends(*ends))
         whole = np.maximum(((WEIGHTS @ speeds(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
         size = float(max(np.abs(end.point(end.section.breaks)).max() for end in ends))
@@ -232,13 +278,13 @@ class Solid:
         edge_length, area = ((WEIGHTS @ found) * panels.half[:, None]).sum(axis=0)
         return float(edge_length), float(area)
 
-    def _panel_ends(self, mine: End, yours: End) -> Array:
+    def panel_ends(self, mine: End, yours: End) -> Array:
         """Panels of one end's parameter that end at the breaks of both ends."""
         section = mine.section
         start, period = section.breaks[0], section.period
         ends = section.breaks - start
         if self.side == "hull":
-            flat = self._touching(yours, mine, yours.section.breaks[:-1]) @ mine.spans
+            flat = self.touching(yours, mine, yours.section.breaks[:-1]) @ mine.spans
             past = (section.parameter(flat[:, 0], flat[:, 1]) - start) % period
             ends = np.sort(np.concatenate([ends, past]))
             ends = ends[np.concatenate([[True], np.diff(ends) > _SAME * period])]
@@ -253,7 +299,7 @@ class Solid:
     @property
     def breaks(self) -> Array:
         """Parameters (n,) of end A's section between which the side is smooth."""
-        return self._panel_ends(self.end_a, self.end_b)[:-1]
+        return self.panel_ends(self.end_a, self.end_b)[:-1]
 
     # ---- for pictures and meshes -----------------------------------------------------------
 
@@ -286,6 +332,25 @@ class Solid:
         """The straight line (2, 3) [mm] of the side at a direction [rad] of end A."""
         strip = self.strip(self.end_a.section.at_direction(np.array([direction])))
         return np.vstack([strip.a, strip.b])
+
+    @property
+    def seam_length(self) -> float:
+        """Length of the sheet's seam [mm]."""
+        seam = self.sheet_seam
+        return float(np.linalg.norm(seam[1] - seam[0]))
+
+    @property
+    def sheet_seam(self) -> Array:
+        """The sheet's seam (2, 3) [mm], from end A to end B."""
+        seam = self.seam_line
+        along = (seam[1] - seam[0])[None]
+        lift = self.distance * self.strip(np.array([self.seam])).normal
+        return np.vstack(
+            [
+                end + lift if plane is None else plane.along(end + lift, along)
+                for end, plane in zip(seam, self.planes, strict=True)
+            ]
+        )
 
     @property
     def seam_line(self) -> Array:

@@ -81,7 +81,7 @@ class TaperMeetingEnd(MeetingEnd):
 
     # ---- the planes that touch both rims ------------------------------------------------------
 
-    def _normals(self, phi: Array) -> Array:
+    def normals(self, phi: Array) -> Array:
         """Unit normals (n, 3) of the planes that touch both rims, square to end A at the angles φ (n,)."""
         a, b = self._rims
         x, y, _ = a.frame.axes
@@ -106,20 +106,20 @@ class TaperMeetingEnd(MeetingEnd):
         return _Facets(phi, normals, ends[0], ends[1])
 
     @cached_property
-    def _grid(self) -> tuple[Array, Array, Array]:
+    def grid(self) -> tuple[Array, Array, Array]:
         """Angles φ (k,), normals (k, 3) and levels (k,) of planes all round, those of facets among them."""
         even, flats = 2.0 * np.pi * (np.arange(_STEPS) + 0.5) / _STEPS, self._facets.phi
         # Those that stand for a facet stand well apart from the rest.
         apart = np.abs((even[:, None] - flats + np.pi) % (2.0 * np.pi) - np.pi) > 0.1 * np.pi / _STEPS
         phi = np.sort(np.concatenate([even[apart.all(axis=1)], flats]))
-        normal = self._normals(phi)
+        normal = self.normals(phi)
         return phi, normal, self._level(normal)
 
     def _level(self, normal: Array) -> Array:
         """How far (n,) the planes of these unit normals, moved out to the face, lie from the origin."""
         return np.asarray(self._rims[0].support(normal) + self.outward)
 
-    def _feet(self, normal: Array) -> tuple[Array, Array]:
+    def feet(self, normal: Array) -> tuple[Array, Array]:
         """Points on end A, moved out to the face, and rulings to end B, (n, 3) each."""
         a, b = (rim.touch(normal) for rim in self._rims)
         return a + self.outward * normal, b - a
@@ -131,7 +131,7 @@ class TaperMeetingEnd(MeetingEnd):
         axes, d = self.frame.axes, self.frame.axes[2]
         at = self.section.walk(u)
         origins = at.x[:, None] * axes[0] + at.y[:, None] * axes[1] + self.frame.origin
-        phis, normals, levels = self._grid
+        phis, normals, levels = self.grid
         against = normals @ d
         seen = against > 0.0
         lift = np.where(seen, (levels - origins @ normals.T) / np.where(seen, against, 1.0), np.inf)
@@ -145,8 +145,8 @@ class TaperMeetingEnd(MeetingEnd):
             up = self._falls(phi, origins, middle)
             low, high = np.where(up, phi, low), np.where(up, high, phi)
             phi = 0.5 * (low + high)
-        normal = self._normals(phi)
-        foot, ruling = self._feet(normal)
+        normal = self.normals(phi)
+        foot, ruling = self.feet(normal)
         against = normal @ d
         flat = against < _FLAT
         lift = (self._level(normal) - np.einsum("ni,ni->n", origins, normal)) / np.where(flat, 1.0, against)
@@ -160,8 +160,8 @@ class TaperMeetingEnd(MeetingEnd):
     def _falls(self, phi: Array, origins: Array, middle: Array) -> Mask:
         """Whether a step on along φ brings the plane nearer to the line's origin (n,)."""
         d = self.frame.axes[2]
-        normal = self._normals(phi)
-        foot, ruling = self._feet(normal)
+        normal = self.normals(phi)
+        foot, ruling = self.feet(normal)
         against = normal @ d
         seen = against > 0.0
         lift = (self._level(normal) - np.einsum("ni,ni->n", origins, normal)) / np.where(seen, against, 1.0)
@@ -179,17 +179,17 @@ class TaperMeetingEnd(MeetingEnd):
         """Parameters of the branch's section where it may graze the header's silhouettes, and where its
         lines meet the edges of the header's facets."""
         d, section = self.frame.axes[2], self.section
-        phis, normals, _ = self._grid
+        phis, normals, _ = self.grid
         seen = normals @ d > 0.0
         (after,) = np.nonzero(seen != np.roll(seen, 1))
         low, high = np.where(after > 0, phis[after - 1], phis[-1] - 2.0 * np.pi), phis[after]
         rising = seen[after]
         for _ in range(_HALVINGS):
             middle = 0.5 * (low + high)
-            beyond = (self._normals(middle) @ d > 0.0) == rising
+            beyond = (self.normals(middle) @ d > 0.0) == rising
             low, high = np.where(beyond, low, middle), np.where(beyond, middle, high)
         found = [np.zeros(0)]
-        for normal in self._normals(0.5 * (low + high)) @ self.frame.axes[:2].T:
+        for normal in self.normals(0.5 * (low + high)) @ self.frame.axes[:2].T:
             found += [*section.parameters(normal[:1], normal[1:])]
         facets = self._facets
         lift = self.outward * facets.normal[:, None]

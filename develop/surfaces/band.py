@@ -90,6 +90,8 @@ class Band:
     """The side of the convex hull of two rims, the sheet lying `distance` [mm] outside of it.
 
     cut_a, cut_b: where an end of the sheet is not its rim but a cut across the rulings.
+    level: the sheet's edges lie in the planes of its ends, or of its cuts; else the plate is cut square
+    to itself there, through the rim. A point has no plane, and is never level.
     Raises Refusal where a rim reaches through the other's plane.
     """
 
@@ -98,6 +100,7 @@ class Band:
     distance: float = 0.0
     cut_a: Plane | None = None
     cut_b: Plane | None = None
+    level: bool = False
 
     def __post_init__(self) -> None:
         size = max(r.section.width + r.section.height for r in (self.rim_a, self.rim_b))
@@ -180,12 +183,40 @@ class Band:
         return np.asarray((high - low) * r.length)
 
     def _shares(self, r: Rulings) -> tuple[Array, Array]:
-        """Where the sheet's two ends lie on rulings, in parts of R, (n,) each."""
+        """Where the sheet's two ends lie on rulings, in parts of R, (n,) each.
+
+        Moved out by d N, a ruling of a level end is d sin ψ off the plane of its rim, and reaches it
+        −d sin ψ / (R·n) farther on.
+        """
         low, high = np.zeros(len(r.length)), np.ones(len(r.length))
-        return (
-            self.cut_a.meet(r.a.point, r.ruling) if self.cut_a else low,
-            self.cut_b.meet(r.a.point, r.ruling) if self.cut_b else high,
-        )
+        level_a, level_b = self.levels
+        start = r.a.point
+        if level_a or level_b:
+            start = start + self.distance * np.cross(r.a.tangent, r.a.across)
+        if self.cut_a:
+            low = self.cut_a.meet(start if level_a else r.a.point, r.ruling)
+        elif level_a:
+            low = -self.distance * r.a.sin_psi / (r.ruling @ self.rim_a.frame.normal)
+        if self.cut_b:
+            high = self.cut_b.meet(start if level_b else r.a.point, r.ruling)
+        elif level_b:
+            high = 1.0 - self.distance * r.b.sin_psi / (r.ruling @ self.rim_b.frame.normal)
+        return low, high
+
+    @property
+    def levels(self) -> tuple[bool, bool]:
+        """Which of the two ends have edges that leave their rim to be level."""
+        moved = self.level and self.distance != 0.0
+        return tuple(
+            moved and bool(cut or rim.section.girth)
+            for cut, rim in ((self.cut_a, self.rim_a), (self.cut_b, self.rim_b))
+        )  # type: ignore[return-value]
+
+    @property
+    def trimmed(self) -> tuple[bool, bool]:
+        """Which of the two ends of the sheet are found along the rulings, not from the rim."""
+        level_a, level_b = self.levels
+        return bool(self.cut_a) or level_a, bool(self.cut_b) or level_b
 
     def radii(self, u: Array) -> Array:
         """Roll radii (n, 2) [mm] at both ends of the rulings through u (n,) of end A's section.
@@ -195,7 +226,7 @@ class Band:
         """
         r = self._rulings(True, u)
         radii = self._radii(r)
-        if not (self.cut_a or self.cut_b):
+        if not any(self.trimmed):
             return radii
         return np.stack([_part_way(radii, share) for share in self._shares(r)], axis=-1)
 
@@ -239,7 +270,7 @@ class Band:
         """
         nodes = panels.nodes
         origin = np.repeat(panels.origin, nodes.shape[1])
-        cut = bool(self.cut_a or self.cut_b)
+        cut = any(self.trimmed)
         rates = np.empty((nodes.size, 8 if cut else 6))
         for which, _, r in self._on_course(course, origin, nodes.ravel()):
             turn = r.a.cos_psi * r.dphi_a
@@ -372,6 +403,8 @@ def _past(u: Array, start: float, period: float) -> Array:
 class BandSheet:
     """A band laid flat; see `Sheet`. Turned so that the edge at end A lies level on the whole.
 
+    back: whether the edge at end A, and at end B, runs back over itself, as a level one may.
+
     Unrolled by θ' = φ' sin ψ (the geodesic curvature of end A's edge) and P' along T and W.
     """
 
@@ -404,12 +437,13 @@ class BandSheet:
             axis=-1,
         )
         p_step = step[..., :2]
-        if band.cut_a or band.cut_b:
+        trimmed_a, trimmed_b = band.trimmed
+        if trimmed_a or trimmed_b:
             low, high = rates[..., 6:7], rates[..., 7:8]
             p, q = p + low * (q - p), p + high * (q - p)
         # The speed along an edge is taken from the flat map itself, not from the end's section, so
         # that its length proves the map.
-        if band.cut_a:
+        if trimmed_a:
             p_step = (DERIVATIVE @ p) / half[:, None, None]
             path[..., 2], path_ends[:, 2] = running(np.sqrt((p_step**2).sum(axis=-1)), half)
         q_step = (DERIVATIVE @ q) / half[:, None, None]
@@ -428,6 +462,16 @@ class BandSheet:
             cross = point[..., 0] * rate[..., 1] - point[..., 1] * rate[..., 0]
             return float(np.sum(half * (cross @ WEIGHTS)))
 
+        # Beyond a point from which lines of a flat face fan out they cross, and the edge runs back.
+        leg = q - p
+
+        def back(rate: Array) -> bool:
+            over = rate[..., 0] * leg[..., 1] - rate[..., 1] * leg[..., 0]
+            size = np.sqrt((rate**2).sum(axis=-1) * (leg**2).sum(axis=-1))
+            moves = size * half[:, None] > _STANDS * size.max()
+            return bool((moves & (over < -_SAME * size)).any())
+
+        self.back = back(p_step) and band.levels[0], back(q_step) and band.levels[1]
         self.at_ends = self.lines(self.ends)
         a0, a1, b0, b1 = *self.at_ends.a[[0, -1]], *self.at_ends.b[[0, -1]]
         seams = a1[0] * b1[1] - a1[1] * b1[0] - (a0[0] * b0[1] - a0[1] * b0[0])
@@ -464,15 +508,19 @@ class BandSheet:
         radii = band._radii(r)
         turn = a.cos_psi * r.dphi_a
         ends = []
-        for cut, share, tangent in (
-            (band.cut_a, 0.0, (np.ones_like(c), np.zeros_like(c))),
-            (band.cut_b, 1.0, tuple(np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))),
+        square_b = tuple(np.einsum("ni,ni->n", b.tangent, v) for v in (a.tangent, a.across))
+        shares = band._shares(r)
+        for i, (cut, rim, tangent) in enumerate(
+            (
+                (band.cut_a, band.rim_a, (np.ones_like(c), np.zeros_like(c))),
+                (band.cut_b, band.rim_b, square_b),
+            )
         ):
-            at, radius = np.full(len(c), share), radii[:, int(share)]
-            if cut is not None:
-                at = cut.meet(a.point, r.ruling)
+            at, radius, level = shares[i], radii[:, i], band.levels[i]
+            if band.trimmed[i]:
                 radius = _part_way(radii, at)
-                normal = cut.normal(a.point + at[:, None] * r.ruling)
+                points = a.point + at[:, None] * r.ruling
+                normal = cut.normal(points) if cut else np.broadcast_to(rim.frame.normal, points.shape)
                 # The joint runs along N × n; its part to the right of the ruling must be positive.
                 t, w = (
                     -np.einsum("ni,ni->n", normal, a.across),
@@ -483,7 +531,7 @@ class BandSheet:
             right = (t * r.over - w * r.along) / r.length
             t, w = (np.where(right < 0.0, -each, each) for each in (t, w))
             straight = _unit(flat(t, w), flat(np.ones_like(c), np.zeros_like(c)))
-            if d != 0.0:
+            if d != 0.0 and not level:
                 # The edge goes on across the rulings and, as the sheet leans more or less, with d N'. Where
                 # it stands, or a curve is flat, the tangent found before is kept.
                 with np.errstate(invalid="ignore"):

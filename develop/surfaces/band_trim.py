@@ -78,6 +78,12 @@ class BandTrim:
     def meet(self, start: Array, along: Array) -> Array:
         return self._met(start).lift
 
+    def facing(self, start: Array) -> Array:
+        """Outward normals (n, 3) of the side, in the trimmed cylinder's frame, where lines through start
+        (n, 3) meet it."""
+        found = self._met(start)
+        return np.asarray(self._swept(found.origin, found.u).normal @ self.frame.axes.T)
+
     def on_sheet(self, start: Array, sheet: Sheet) -> tuple[Place, Array]:
         """Places (n,) of the band's sheet and lengths (n,) [mm] on its rulings, from end A, of the joint."""
         found = self._met(start)

@@ -24,6 +24,7 @@ from develop.quadrature import (
 )
 from develop.sections.section import Section, Walk
 from develop.surfaces.sheet import Lines, Place
+from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Trim
 
 __all__ = ["Cylinder", "CylinderSheet"]
@@ -33,6 +34,8 @@ _SAME = 1e-13
 # heights, which differentiating brings up some hundred times.
 _LOOSE = 2e-13
 _ROUNDS = 16
+# Where an edge stands, a climb above this [mm per unit of the parameter] is one.
+_STEP = 1e-5
 _AXIS = np.array([0.0, 0.0, 1.0])
 
 
@@ -40,14 +43,14 @@ _AXIS = np.array([0.0, 0.0, 1.0])
 class Cylinder:
     """A section carried along +z between two trims, the sheet lying `distance` [mm] outside of it.
 
-    The trims meet the given section; an edge is cut square to the plate, so its height does not
-    change across the thickness. breaks: further parameters at which panels must end, where a trim
-    has corners. That the trims do not cross is for whoever makes a piece to see to.
+    The trims meet the given section, a square edge the whole wall; an edge is cut square to the plate, so
+    its height does not change across the thickness. breaks: further parameters at which panels must end,
+    where a trim has corners. That the trims do not cross is for whoever makes a piece to see to.
     """
 
     section: Section
-    trim_a: Trim
-    trim_b: Trim
+    trim_a: Trim | SquareEdge
+    trim_b: Trim | SquareEdge
     distance: float = 0.0
     breaks: tuple[float, ...] = ()
 
@@ -121,8 +124,10 @@ class CylinderSheet:
         ends, tangents = [], []
         for z, climb in ((climbs[:, 0], climbs[:, 2]), (climbs[:, 1], climbs[:, 3])):
             ends.append(np.stack([row[:, 0], z], axis=-1))
-            # At a sharp corner of the section the edge stands, and a climb there is rounding.
-            along, up = np.where(go > 0.0, go, 1.0), np.where(go > 0.0, climb, 0.0)
+            # At a sharp corner of the section the edge stands, and a climb there is rounding, but for an edge
+            # square to the plate, which may climb there from the one side's height to the other's.
+            moves, climbs_there = go > 0.0, np.abs(climb) > _STEP
+            along, up = np.where(moves | climbs_there, go, 1.0), np.where(moves | climbs_there, climb, 0.0)
             size = np.sqrt(along * along + up * up)
             tangents.append(np.stack([along / size, up / size], axis=-1))
         radius = section.radius(at.ex, at.ey) + d
@@ -152,7 +157,10 @@ class CylinderSheet:
         return self.from_a(u)
 
 
-def _heights(trim: Trim, at: Walk) -> Array:
+def _heights(trim: Trim | SquareEdge, at: Walk) -> Array:
     """Heights of a trim over a walk round the section, of the walk's shape."""
     start = np.stack([at.x.ravel(), at.y.ravel(), np.zeros(at.x.size)], axis=-1)
+    if isinstance(trim, SquareEdge):
+        out = np.stack([at.ex.ravel(), at.ey.ravel(), np.zeros(at.x.size)], axis=-1)
+        return trim.heights(start, out).reshape(at.x.shape)
     return trim.meet(start, np.broadcast_to(_AXIS, start.shape)).reshape(at.x.shape)

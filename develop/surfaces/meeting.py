@@ -53,6 +53,12 @@ class CylinderTrim:
         most, least = (float(self.section.support(*(s * right))) * s for s in (1.0, -1.0))
         return self.section.at_side(right[0], right[1], np.clip(reach, least, most))
 
+    def facing(self, start: Array) -> Array:
+        """Outward normals (n, 3) of the other's side, in the trimmed cylinder's frame, where lines through
+        start (n, 3) meet it."""
+        at = self.section.walk(self.on_section(start))
+        return np.asarray(np.stack([at.ex, at.ey, np.zeros_like(at.ex)], axis=-1) @ self.frame.axes.T)
+
     def on_sheet(self, start: Array, sheet: Sheet) -> tuple[Place, Array]:
         """Places (n,) of the other's sheet and lengths (n,) [mm] on its lines, from z = 0, of the joint."""
         along = np.broadcast_to(np.array([0.0, 0.0, 1.0]), start.shape)

@@ -3,11 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Protocol
+from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 
 from develop.quadrature import Array
+
+if TYPE_CHECKING:
+    from develop.sections.section import Section
 
 __all__ = ["Plane", "Trim"]
 
@@ -38,3 +41,11 @@ class Plane:
     def normal(self, points: Array) -> Array:
         """A normal (n, 3), of any length, at its points (n, 3)."""
         return np.broadcast_to(np.array([-self.rise[0], -self.rise[1], 1.0]), points.shape)
+
+    def facing(self, start: Array) -> Array:
+        """A normal (n, 3) with a part along +z where lines along z through start (n, 3) meet it."""
+        return self.normal(start)
+
+    def breaks(self, section: Section) -> tuple[float, ...]:
+        """Parameters of a section where its lines meet corners of the plane, which has none."""
+        return ()

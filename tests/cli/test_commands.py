@@ -16,6 +16,7 @@ import develop.checks
 import develop.job.pipeline
 from develop.checks import Check
 from develop.cli.main import main
+from develop.errors import Refusal
 from develop.pieces import KINDS, kind_of
 from develop.pieces.fields import fields_of, read_piece, record_of
 from develop.pieces.reference import command_line
@@ -347,8 +348,7 @@ centre_to_end = 500
     assert said.startswith(f"hall.toml:{line}: mark: "), said
     assert f"{mark}.svg" in said or "N1-header.svg" in said
     assert said.endswith("allowed: a mark that no part of N1 has")
-    made = {each.name for each in (tmp_path / "out").iterdir()}
-    assert made == ({"N1-branch.svg", "N1-header.svg"} if place == "after" else {f"{mark}.svg"})
+    assert not (tmp_path / "out").exists()
 
 
 def test_a_job_with_an_error_makes_nothing(run, tmp_path: Path) -> None:  # type: ignore[no-untyped-def]
@@ -361,6 +361,25 @@ def test_a_job_with_an_error_makes_nothing(run, tmp_path: Path) -> None:  # type
         "hall.toml:14: quantity: 0 is out of range",
     ]
     assert not (tmp_path / "out").exists()
+
+
+def test_a_job_writes_nothing_unless_every_piece_is_good(run, tmp_path: Path, monkeypatch) -> None:  # type: ignore[no-untyped-def]
+    """A piece that is refused only when it is made takes the files of those before it away again."""
+    (tmp_path / "hall.toml").write_text(JOB)
+    (tmp_path / "kept").mkdir()
+    (tmp_path / "kept" / "S1.svg").write_bytes(b"older")
+
+    def refuse(self: object, **_: object) -> None:
+        raise Refusal(field="rotate", given="cannot be made", allowed="another")
+
+    monkeypatch.setattr("develop.pieces.transition.Transition.build", refuse)
+    for folder in ("deep/out", "kept"):
+        done = run("job", "hall.toml", "-o", folder)
+        assert done.code == 2
+        assert done.out == ""
+        assert [each.partition(";")[0] for each in done.said] == ["hall.toml:7: rotate: cannot be made"]
+    assert not (tmp_path / "deep").exists()
+    assert [each.read_bytes() for each in (tmp_path / "kept").iterdir()] == [b"older"]
 
 
 def test_one_failed_check_of_a_job_is_the_exit_code_of_all(

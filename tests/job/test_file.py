@@ -279,3 +279,47 @@ def test_equal_marks_are_told_beside_other_mistakes(tmp_path) -> None:
     assert any("lenght" in each for each in said)
     assert any("is not a kind" in each for each in said)
     assert any("is the mark of this piece" in each for each in said)
+
+
+def test_every_bad_piece_is_told_with_its_line(tmp_path: Path) -> None:
+    """A wall that leaves no inside, a seam through the opening, a flange and a pad without room."""
+    branch = """[[piece]]
+kind = "branch"
+header = "round 600"
+header_length = 700
+branch = "round 250"
+centre_to_end = 600
+"""
+    file = tmp_path / "hall.toml"
+    file.write_text(
+        """[[piece]]
+kind = "transition"
+mark = "A"
+end_a = "rectangle 600 x 400"
+end_b = "round 400"
+length = 500
+thickness = 2
+"""
+        + branch
+        + 'mark = "B"\nheader_seam = 80\n'
+        + branch
+        + 'mark = "C"\npad = 300\n'
+        + branch
+        + 'mark = "D"\njoint = "tap"\nlap = 900\n'
+    )
+    with pytest.raises(InputError) as caught:
+        read_job(str(file))
+    said = [str(each).removeprefix(str(file)) for each in caught.value.problems]
+    assert [each.split(": ")[:2] for each in said] == [
+        [":7", "thickness"],
+        [":15", "header_seam"],
+        [":23", "pad"],
+        [":32", "lap"],
+    ]
+    assert said[0] == (
+        ":7: thickness: 2 mm leaves no inside to end_a, rectangle 600 x 400, sizes mean: the corners are "
+        "sharp; allowed: for end_a r 1 mm or more, or sizes = inside"
+    )
+    # As the message says.
+    file.write_text(file.read_text().split(branch)[0] + 'sizes = "inside"\n')
+    assert len(read_job(str(file)).pieces) == 1

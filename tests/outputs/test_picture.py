@@ -323,3 +323,14 @@ def title_of(module, name, monkeypatch, kind, **given):
     assert not problems
     _files("png", piece, builds_of(piece), (), Outputs())
     return found[0]
+
+
+@pytest.mark.parametrize("right", [700.0, -700.0])
+def test_a_branch_is_looked_at_from_its_side_and_its_name_is_whole(samples, right):
+    header = samples.Frustum(100.0, 100.0, 300.0, shift=(0.0, 0.0), seam_at=0.0 if right < 0 else math.pi)
+    pieces = [header, Moved(header, (right, 0.0, 0.0))]
+    assert module._aside(pieces, 1, 0.5 * right, 1000.0) == math.copysign(1.0, right)
+    assert module._aside(pieces[:1], 0, 0.0, 1000.0) == -math.copysign(1.0, right)
+    image = dots(picture(pieces, ["a piece"], ["A-very-long-mark-of-a-piece-branch"]))
+    for border in (image[:, :8], image[:, -8:], image[-6:]):
+        assert (border == 255).all()

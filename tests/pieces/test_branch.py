@@ -12,6 +12,8 @@ from hypothesis import strategies as st
 
 from develop.errors import InputError
 from develop.job.pipeline import checks_of
+from develop.pieces import kind_of
+from develop.pieces.fields import read_piece
 from tests.pieces.making import make
 
 
@@ -119,7 +121,10 @@ def test_off_centre_is_to_the_right_of_top() -> None:
 def test_both_patterns_have_the_four_marks_of_the_branch() -> None:
     branch, header = parts(tee(angle=70, rotate=30, off_centre=20))
     on_branch = {mark.text: mark.at for mark in branch.marks if mark.edge == "a"}
-    on_header = {mark.text: mark.at for mark in header.marks if mark.edge == "opening"}
+    opening = [mark for mark in header.marks if mark.edge == "opening"]
+    # The header has a RIGHT and a LEFT of its own.
+    assert all(mark.text.startswith("BRANCH ") for mark in opening)
+    on_header = {mark.text.removeprefix("BRANCH "): mark.at for mark in opening}
     assert set(on_branch) == set(on_header) == {"RIGHT", "TOP", "LEFT", "BOTTOM"}
 
     # Running lengths between the marks agree along both edges.
@@ -139,9 +144,12 @@ def test_both_patterns_have_the_four_marks_of_the_branch() -> None:
 def test_in_plate_the_branch_meets_the_face_and_the_hole_is_its_bore_or_its_outside(joint: str) -> None:
     built = tee(thickness=8, sizes="outside", joint=joint)
     branch, header = parts(built)
-    face = 200.0 if joint == "set-on" else 192.0
+    # Set on, the inside corner of its edge, square to the plate, is the first to touch.
+    face, touches = (200.0, 92.0) if joint == "set-on" else (192.0, 100.0)
     for row in branch.divisions:
-        assert row.length == pytest.approx(500 - sqrt(face**2 - (100 * cos(row.direction)) ** 2), abs=1e-9)
+        assert row.length == pytest.approx(
+            500 - sqrt(face**2 - (touches * cos(row.direction)) ** 2), abs=1e-9
+        )
     ((_, opening),) = header.openings[0].curves
     points = opening.polyline(1e-4)
     height = points[:, 1].max() - points[:, 1].min()
@@ -312,3 +320,42 @@ def test_the_sheet_says_which_line_the_angle_is_measured_to(apex, line) -> None:
     built = make("branch", header=header, branch="round 250", angle=70, centre_to_end=600)
     for pattern in parts(built):
         assert any(f"70° to the header's {line}" in fact for fact in pattern.facts)
+
+
+@pytest.mark.parametrize(
+    ("branch", "largest"),
+    [
+        ("round 320", "round 300 or less"),
+        ("ellipse 400 x 200", "ellipse 300 x 150 or less"),
+        ("flat-oval 630 x 210", "flat-oval 300 x 100 or less"),
+    ],
+)
+def test_a_branch_too_large_is_told_the_largest_that_works(branch: str, largest: str) -> None:
+    given = {"header": "round 300", "header_length": 1500, "centre_to_end": 500}
+    with pytest.raises(InputError) as caught:
+        make("branch", **given, branch=branch)
+    (problem,) = caught.value.problems
+    assert (problem.field, problem.allowed) == ("branch", f"{largest}, or a larger header")
+    make("branch", **given, branch=largest.removesuffix(" or less"))
+
+
+@pytest.mark.parametrize(
+    ("kind", "given", "field", "needed"),
+    [
+        ("branch", {"lap": 20}, "lap", "joint = tap"),
+        ("branch", {"lap": 20, "joint": "set-in"}, "lap", "joint = tap"),
+        ("branch", {"pad_in": "one"}, "pad_in", "pad"),
+        ("branch", {"pad_thickness": 5}, "pad_thickness", "pad"),
+        ("branch", {"tell_tale": 6, "pad": 0}, "tell_tale", "pad"),
+        ("marking-band", {"joint": "set-on"}, "joint", "onto"),
+    ],
+)
+def test_a_field_without_effect_is_refused(
+    kind: str, given: dict[str, object], field: str, needed: str
+) -> None:
+    good = kind_of(kind).example
+    assert read_piece(kind_of(kind), good)[1] == []
+    (problem,) = read_piece(kind_of(kind), {**good, **given})[1]
+    assert (problem.field, problem.allowed) == (field, f"only together with {needed}")
+    # What is given for all pieces need not have an effect on each.
+    assert read_piece(kind_of(kind), {**good, **given}, shared=[field])[1] == []

@@ -283,7 +283,7 @@ def test_the_marks_of_band_and_hole_meet() -> None:
     words = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "a"}
     on_hole = {mark.text: mark.at[0] for mark in hole.marks if mark.edge == "opening"}
     towards_right = words["RIGHT"] - words["TOP"]
-    assert (on_hole["LEFT"] - on_hole["RIGHT"]) * towards_right > 0
+    assert (on_hole["PIPE LEFT"] - on_hole["PIPE RIGHT"]) * towards_right > 0
 
 
 def test_an_out_of_round_pipe_fits_its_hole() -> None:
@@ -334,3 +334,10 @@ def test_off_centre_names_its_side_on_band_and_hole(given, side) -> None:
     for pattern in onto(onto=f"round 400 off_centre {given}").patterns:
         assert any(f"20 off centre to the {side}" in fact for fact in pattern.facts)
         assert any("END B is faced" in fact for fact in pattern.facts)
+
+
+def test_a_misspelt_word_of_a_header_is_named() -> None:
+    given = {"section": "pipe DN 100", "onto": "round 300 angel 60"}
+    (problem,) = read_piece(kind_of("marking-band"), given)[1]
+    assert problem.field == "onto"
+    assert problem.given == '"angel" is no word of a header; did you mean "angle"?'

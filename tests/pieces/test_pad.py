@@ -3,18 +3,23 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from io import BytesIO
 from math import asin, pi
 
 import numpy as np
 import pytest
+from pypdf import PdfReader
 from scipy.integrate import quad
 from shapely import LineString, Polygon, unary_union
 from shapely.affinity import translate
 
 from develop.checks import check_part
-from develop.errors import InputError
+from develop.errors import InputError, Refusal
 from develop.job.pipeline import checks_of
+from develop.outputs.pdf import printed
+from develop.pattern.layout import lettered
 from develop.pattern.pattern import Outline
+from develop.pieces.wording import SIDES
 from tests.pieces.making import make
 
 
@@ -33,6 +38,11 @@ def tee(**given: object):
             **{name: value for name, value in given.items() if value is not None},
         },
     )
+
+
+def pdf_words(pattern) -> str:
+    data, _ = printed([lettered(pattern)])
+    return " ".join(page.extract_text() for page in PdfReader(BytesIO(data)).pages)
 
 
 def holds(built) -> None:
@@ -154,7 +164,11 @@ def test_its_marks_are_those_of_the_opening() -> None:
         pattern.mark: {mark.text for mark in pattern.marks if mark.edge == "opening"}
         for pattern in (header, pad)
     }
-    assert marks[header.mark] == marks[pad.mark] == {"RIGHT", "TOP", "LEFT", "BOTTOM"}
+    assert (
+        marks[header.mark]
+        == marks[pad.mark]
+        == {f"BRANCH {word}" for word in ("RIGHT", "TOP", "LEFT", "BOTTOM")}
+    )
 
 
 @pytest.mark.parametrize(
@@ -201,3 +215,53 @@ def test_the_checks_can_fail() -> None:
     solid = built.parts[2].solid
     found = {check.name for check in check_part(pad, replace(solid, width=59.0)) if not check.holds}
     assert "width, least" in found
+
+
+@pytest.mark.parametrize("given", [{}, {"pad_in": "halves"}, {"branch": "round 30", "pad_in": "halves"}])
+def test_a_tell_tale_hole_is_no_larger_than_what_is_named(given: dict[str, object]) -> None:
+    with pytest.raises(Refusal) as caught:
+        tee(**given, pad=40, tell_tale=41)
+    (problem,) = caught.value.problems
+    assert problem.field == "tell_tale"
+    # The width less a millimetre on either side.
+    assert problem.allowed == "38 mm or less, or 0 for none"
+    holds(tee(**given, pad=40, tell_tale=38))
+
+
+def test_a_tap_takes_no_plate() -> None:
+    with pytest.raises(Refusal, match=r"^pad: 60 mm, but the lap flange.*allowed: joint = set-on or set-in"):
+        tee(joint="tap")
+
+
+def test_halves_say_which_end_lies_at_the_headers_right() -> None:
+    # On the header's sheet, outside up, its right lies on the left of its top.
+    for pad in tee(pad_in="halves", angle=70).patterns[2:]:
+        words = {label.text: label.at for label in lettered(pad).labels}
+        assert words["HEADER'S RIGHT"][0] < words["HEADER'S LEFT"][0]
+        assert not [text for text in words if text.startswith("END ")]
+        assert SIDES in pad.facts
+        assert "edge from HEADER'S" in " ".join(pdf_words(pad).split())
+
+
+def test_no_plate_is_said_to_be_faced() -> None:
+    built = tee()
+    shown = pdf_words(built.patterns[2])
+    assert "Facing" not in shown
+    assert "Facing" in pdf_words(built.patterns[1])
+
+
+def test_a_plate_on_a_flat_face_is_not_rolled() -> None:
+    """A rectangle of 600 with corners of 20 is flat for 280 mm to either side of its middle."""
+    box = {"header": "rectangle 600 x 400 r 20", "branch": "round 150"}
+    # The plate reaches 75 + pad to either side.
+    flat, bent = (tee(**box, pad=pad, sizes="inside").patterns[2] for pad in (150, 215))
+    for pattern, word in ((flat, "lies flat on the header"), (bent, "rolled to lie on the header")):
+        assert any(fact.startswith(word) for fact in pattern.facts)
+    assert flat.lines == ()
+    assert len(bent.lines) > 0
+
+
+def test_the_mark_is_read_from_arms_length() -> None:
+    for pad in tee(pad_in="halves", angle=70).patterns[2:]:
+        (mark,) = [label for label in lettered(pad).labels if label.text == pad.mark]
+        assert mark.height >= 4.0  # [mm] common practice, no source

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import re
-from math import asin, pi, sin
+from math import asin, cos, pi, radians, sin
 
+import numpy as np
 import pytest
 
 from develop.errors import InputError
@@ -86,3 +87,43 @@ def test_a_seam_through_the_opening_is_refused() -> None:
         tee(header_seam=100)
     tee(header_seam=129)
     tee(header_seam=51)
+
+
+def test_a_pad_and_the_joint_of_its_halves_keep_clear_too() -> None:
+    """Header and plate are developed on cylinders of radius R = 200 and R' = 200, the branch of radius 100
+    square to the header: the opening reaches R asin(100 / R) to either side of the middle, the plate 60 more,
+    and the joints of its halves lie on the line through the header's right and left."""
+    half = 200.0 * asin(0.5)
+    given = {
+        "kind": "branch",
+        "header": "round 400",
+        "header_length": 1000,
+        "branch": "round 200",
+        "centre_to_end": 500,
+        "thickness": 8,
+        "sizes": "outside",
+        "neutral_line": 0.0,
+        "pad": 60,
+        "pad_in": "halves",
+        "header_seam": "left",
+        "seam_at": 10,
+    }
+    edge = 200.0 * 0.5 * pi - half - 60.0
+    # At 10 degrees from the header's right the branch stands at asin(cos 10 / 2) round the header.
+    joint = float(np.hypot(200.0 * asin(0.5 * cos(radians(10))) - half, 100.0 * sin(radians(10))))
+
+    def said(clear: float) -> str:
+        return " ".join(make(**given, seam_clear=clear).warnings)
+
+    for words, gap in (
+        ("the edge of branch-pad and the seam of branch-header", edge),
+        ("the joint of the halves of branch-pad and the seam of branch-header", edge),
+        ("the joint of the halves of branch-pad and the seam of branch-branch", joint),
+    ):
+        assert f"{words} lie {gap:.1f} mm apart" in said(gap + 0.1)
+        assert words not in said(gap - 0.1)
+    sheets = [
+        "the edge of branch-pad" in " ".join(pattern.facts)
+        for pattern in make(**given, seam_clear=edge + 0.1).patterns
+    ]
+    assert sheets == [False, True, True, True]

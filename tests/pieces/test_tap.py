@@ -6,7 +6,7 @@ from math import ceil, pi, sqrt
 
 import numpy as np
 import pytest
-from shapely import LineString, Polygon, get_parts
+from shapely import LineString, Point, Polygon, get_parts
 
 from develop.errors import InputError
 from develop.job.pipeline import checks_of
@@ -76,3 +76,31 @@ def test_the_net_line_stays_where_it_was() -> None:
 def test_a_flange_that_folds_over_itself_is_refused_with_what_works() -> None:
     with pytest.raises(InputError, match=r"lap: 300 mm is more .* allowed: [\d.]+ mm or less"):
         tap(lap=300, angle=45, header_length=1600, centre_to_end=900)
+
+
+@pytest.mark.parametrize("face", ["outside", "inside"])
+@pytest.mark.parametrize("joint", [{"lap": 25}, {"joint": "set-on", "edge_b": "tap-flange 25"}])
+def test_every_cut_of_the_tabs_is_in_a_table(joint: dict[str, object], face: str) -> None:
+    pattern = tap(angle=60, thickness=1, face=face, **joint).patterns[0]
+    end = "b" if "edge_b" in joint else "a"
+    (table,) = pattern.figures
+    assert f"END {end.upper()}" in table.title
+    assert table.title.endswith("the net line" if end == "b" else "1 short of the net line")
+    net = pattern.net.curve(end).polyline(1e-5)
+    # Running lengths go from line 0, at the left.
+    edge = LineString(net if net[0, 0] < net[-1, 0] else net[::-1])
+    sheet = polygon(pattern.cut)
+    tabs = len(table.rows) + 1
+    stop = 0.0 if end == "b" else 1.0
+    for n, (number, running, *places) in enumerate(table.rows, 1):
+        inner, outer = np.array(places).reshape(2, 2)
+        assert number == str(n)
+        assert running == pytest.approx(n * edge.length / tabs, abs=1e-3)
+        assert edge.distance(Point(inner)) < 1e-3
+        assert edge.project(Point(inner)) == pytest.approx(running, abs=1e-3)
+        assert np.hypot(*(outer - inner)) == pytest.approx(25.0, abs=1e-9)
+        assert edge.distance(Point(outer)) == pytest.approx(25.0, abs=1e-3)
+        # The cut is open from beyond where it stops to the outer edge, and the metal is whole before that.
+        way = (outer - inner) / 25.0
+        assert sheet.intersection(LineString([inner + (stop + 1e-3) * way, outer])).length < 0.01
+        assert sheet.contains(Point(inner + (stop - 0.05) * way))
