@@ -2,15 +2,20 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
+from math import fsum
+
+import numpy as np
 
 from develop.checks.crossings import crossings
 from develop.checks.drawn import drawn_area, drawn_length
 from develop.checks.fold import closing_miss, folded
 from develop.checks.joint import Side, joint_miss
-from develop.checks.marked import drawn_miss, marks_miss, roll_lines_miss, table_miss
+from develop.checks.marked import all_places, drawn_miss, marks_miss, roll_lines_miss, table_miss
 from develop.checks.openings import opening_miss
 from develop.checks.touching import touching_misses
+from develop.pattern.curve import Curve
 from develop.pattern.pattern import Outline, Pattern
 from develop.solid.meeting import MeetingEnd
 from develop.solid.solid import Solid
@@ -49,19 +54,21 @@ class Check:
         return bool(abs(self.got - self.expected) <= self.limit)
 
 
-def check_joint(name: str, side: Side, other: Side) -> tuple[Check, ...]:
+def check_joint(name: str, side: Sequence[Side], other: Sequence[Side]) -> tuple[Check, ...]:
     """The checks of a joint: equal edges that lie on each other within the limit of the closing check.
 
-    Where one sheet is developed on another surface than its edge lies on, the lengths differ; so they do
-    between a taper, whose thickness lies square to its plate, and a parallel side.
+    side, other: of each of the two, all the parts that have the edge. Where one sheet is developed on
+    another surface than its edge lies on, the lengths differ; so they do between a taper, whose thickness
+    lies square to its plate, and a parallel side.
     """
-    limit = max(_SMALLEST, _RELATIVE * side.length)
-    found = Check(
-        f"{name}: largest distance of the folded edges", 0.0, joint_miss(side, other), _CLOSING, "mm"
-    )
-    if side.distance != other.distance or (side.distance and side.tapers != other.tapers):
+    length, expected = (fsum(each.length for each in parts) for parts in (other, side))
+    limit = max(_SMALLEST, _RELATIVE * expected)
+    miss = max(joint_miss(mine, yours) for mine in side for yours in other)
+    found = Check(f"{name}: largest distance of the folded edges", 0.0, miss, _CLOSING, "mm")
+    one, two = side[0], other[0]
+    if one.distance != two.distance or (one.distance and one.tapers != two.tapers):
         return (found,)
-    return (Check(f"{name}: edges that are joined", side.length, other.length, limit, "mm"), found)
+    return (Check(f"{name}: edges that are joined", expected, length, limit, "mm"), found)
 
 
 def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
@@ -73,6 +80,7 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     """
     net = pattern.net
     girths = dict(zip("ab", solid.girths(), strict=True))
+    whole = "girth" if solid.stop is None else "stretch of the girth"
     checks = []
     for name, girth in girths.items():
         curve = net.curve(name)
@@ -82,17 +90,12 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         limit = max(_SMALLEST, share * girth, _ROUNDING * max(girths.values()))
         drawn = drawn_length(curve) if curve else 0.0
         end = f"edge at END {name.upper()}"
-        checks.append(Check(f"{end} against the girth", girth, length, limit, "mm"))
-        checks.append(Check(f"{end} as drawn, against the girth", girth, drawn, _DRAWN_LENGTH, "mm"))
+        checks.append(Check(f"{end} against the {whole}", girth, length, limit, "mm"))
+        checks.append(Check(f"{end} as drawn, against the {whole}", girth, drawn, _DRAWN_LENGTH, "mm"))
     left, right = (net.curve(f"seam_{side}") for side in ("left", "right"))
     assert left is not None
     assert right is not None
-    true_length = solid.seam_length
-    limit = max(1e-6, _RELATIVE * true_length)
-    checks += [
-        Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
-        Check("seam against the finished piece", true_length, drawn_length(left), limit, "mm"),
-    ]
+    checks += _seams(solid, left, right, inside_up=pattern.face == "inside")
     area = solid.measures.area - sum(joint.opened for joint in solid.openings)
     got = net.area - sum(opening.area for opening in pattern.openings)
     lines = folded(pattern, solid)
@@ -118,7 +121,11 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
         Check("roll lines, largest distance from the lines", 0.0, roll_off, _DRAWN, "mm"),
         Check("roll lines, largest error of a turn", 0.0, turn_off, _TURN, "degrees"),
         Check("table, largest error", 0.0, table_miss(pattern, solid), _TABLE, "mm"),
-        Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm"),
+        *(
+            [Check("witness marks, largest error", 0.0, marks_miss(pattern, lines, solid), _CLOSING, "mm")]
+            if solid.stop is None or all_places(pattern)
+            else []
+        ),
         Check("outline crosses itself", 0.0, float(crossings(pattern.cut)), 0.0, "times"),
     ]
     for name in "ab":
@@ -133,6 +140,25 @@ def check(pattern: Pattern, solid: Solid) -> tuple[Check, ...]:
     for outline, joint in zip(pattern.openings, solid.openings, strict=True):
         checks += _opening(pattern, solid, outline, joint)
     return tuple(checks)
+
+
+def _seams(solid: Solid, left: Curve, right: Curve, *, inside_up: bool) -> list[Check]:
+    """The checks of the seams of a pattern against the lines of the finished piece that they lie on."""
+    true_left, true_right = (
+        float(np.linalg.norm(line[1] - line[0])) for line in (solid.sheet_seam, solid.sheet_stop)
+    )
+    if inside_up:
+        true_left, true_right = true_right, true_left
+    limit = max(1e-6, _RELATIVE * max(true_left, true_right))
+    if solid.stop is None:
+        return [
+            Check("seam, right side against left", drawn_length(left), drawn_length(right), limit, "mm"),
+            Check("seam against the finished piece", true_left, drawn_length(left), limit, "mm"),
+        ]
+    return [
+        Check(f"{side} seam against the finished piece", true, drawn_length(curve), limit, "mm")
+        for side, true, curve in (("left", true_left, left), ("right", true_right, right))
+    ]
 
 
 def _opening(pattern: Pattern, solid: Solid, outline: Outline, joint: MeetingEnd) -> list[Check]:

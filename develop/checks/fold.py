@@ -2,7 +2,7 @@
 
 The sheet is taken as flat strips between neighbouring lines. Each is bent against the one before
 by the turn that the pattern states, as a roll would; the first is laid on the seam of the finished
-piece. Where the strips then lie follows from the pattern alone.
+piece, or on the line where a part of it begins. Where the strips then lie follows from the pattern alone.
 """
 
 from __future__ import annotations
@@ -111,14 +111,20 @@ def folded_on(pattern: Pattern, solid: Solid, points: Array) -> Array:
 def closing_miss(pattern: Pattern, solid: Solid, lines: tuple[Array, Array, Array] | None = None) -> float:
     """Largest distance [mm] of the folded sheet from both ends, and of its last line from its first.
 
-    Of level edges also from the planes of the ends.
+    Of level edges also from the planes of the ends. Of a part of a side the last line is held to the line in
+    space where the part ends.
 
     lines: what `folded` returns, if the caller has it.
     """
     a, b, normal = folded(pattern, solid) if lines is None else lines
-    closing = max(float(np.linalg.norm(end[-1] - end[0])) for end in (a, b))
+    on_a, on_b = solid.on_ends(a, b, normal)
+    if solid.stop is None:
+        closing = max(float(np.linalg.norm(end[-1] - end[0])) for end in (a, b))
+    else:
+        last = np.stack([on_a[-1], on_b[-1]])
+        closing = float(np.linalg.norm(last - solid.stop_line, axis=1).max())
     u = pattern.rulings.u[::-1] if pattern.face == "inside" else pattern.rulings.u
-    return max(solid.misses(*solid.on_ends(a, b, normal), u), solid.plane_miss(a, b), closing)
+    return max(solid.misses(on_a, on_b, u), solid.plane_miss(a, b), closing)
 
 
 def _running_product(half_angle: Array, axis: Array) -> tuple[_Complex, _Complex]:

@@ -23,13 +23,17 @@ _CHORDS = 1e-3  # [mm]
 
 @dataclass(frozen=True)
 class Side:
-    """One side of a joint: end `a` or `b` of a rolled part or an edge of a flat one, and where the part
-    stands in the piece."""
+    """One side of a joint: end `a` or `b` of a rolled part, one of its seams or an edge of a flat one, and
+    where the part stands in the piece.
+
+    whole: where the whole side stands whose ends the part has, of one made in parts.
+    """
 
     pattern: Pattern
     solid: Made
     frame: Frame
     end: str
+    whole: Frame | None = None
 
     @property
     def length(self) -> float:
@@ -50,7 +54,7 @@ class Side:
 
     @property
     def curve(self) -> End:
-        """Where the edge should lie, in the part's own frame."""
+        """Where the edge should lie, in the part's own frame, or the whole side's."""
         if isinstance(self.solid, Solid):
             return self.solid.end_a if self.end == "a" else self.solid.end_b
         assert not isinstance(self.solid, Patch), "a plate that only lies on a side joins nothing"
@@ -62,10 +66,15 @@ class Side:
         if isinstance(self.solid, Solid):
             lines = folded(self.pattern, self.solid)
             a, b = self.solid.on_ends(*lines)
-            points = a if self.end == "a" else b
-            touching = touching_points(self.pattern, self.solid, lines, self.end)
-            if touching is not None:
-                points = touching[1]
+            if self.end.startswith("seam"):
+                # Folded, the sheet has its outside up: what was drawn left may be right.
+                right = (self.end == "seam_right") != (self.pattern.face == "inside")
+                points = np.stack([each[-1 if right else 0] for each in (a, b)])
+            else:
+                points = a if self.end == "a" else b
+                touching = touching_points(self.pattern, self.solid, lines, self.end)
+                if touching is not None:
+                    points = touching[1]
         else:
             assert not isinstance(self.solid, Patch)
             outlines = (self.pattern.net, *self.pattern.openings)
@@ -76,10 +85,16 @@ class Side:
 
 
 def joint_miss(side: Side, other: Side) -> float:
-    """Largest distance [mm] of the one folded edge from the other part's end, and the other way round."""
+    """Largest distance [mm] of the one folded edge from the other part's end, and the other way round.
+
+    Folded seams are held to each other, end by end.
+    """
+    if side.end.startswith("seam"):
+        return float(np.linalg.norm(side.edge() - other.edge(), axis=1).max())
     misses = []
     for mine, yours in ((side, other), (other, side)):
-        local = (mine.edge() - yours.frame.origin) @ yours.frame.axes.T
+        frame = yours.whole or yours.frame
+        local = (mine.edge() - frame.origin) @ frame.axes.T
         curve = yours.curve
         off = curve.off(local) if isinstance(curve, TouchingEnd) else curve.distance(local)
         misses.append(float(np.max(off)))

@@ -16,7 +16,7 @@ from develop.quadrature import Array, Indices
 from develop.solid.end import End
 from develop.solid.solid import Solid
 
-__all__ = ["drawn_miss", "marks_miss", "roll_lines_miss", "table_miss"]
+__all__ = ["all_places", "drawn_miss", "marks_miss", "roll_lines_miss", "table_miss"]
 
 _STEPS = 16
 _NEWTON_STEPS = 6
@@ -191,10 +191,30 @@ def table_miss(pattern: Pattern, solid: Solid) -> float:
     return float(max(np.max(np.abs(each)) for each in misses))
 
 
-def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Solid) -> float:
+def all_places(pattern: Pattern) -> bool:
+    """Whether the pattern's marks hold wherever it is used: none has words for certain places alone."""
+    return all(mark.text in _DIRECTIONS for mark in pattern.marks)
+
+
+def _word(text: str, place: int | None) -> str | None:
+    """The word of a mark's text that holds at a place: `TOP 1/LEFT 2` says LEFT at place 2."""
+    if place is None:
+        return text
+    found = (word.rpartition(" ") for word in text.split("/"))
+    return next((word for word, _, number in found if number == str(place)), None)
+
+
+def marks_miss(
+    pattern: Pattern,
+    folded: tuple[Array, Array, Array],
+    solid: Solid,
+    *,
+    place: int | None = None,
+) -> float:
     """Largest distance [mm] of a witness mark, on the folded sheet, from the direction that it names.
 
-    folded: the dense lines as `develop.checks.fold.folded` returns them.
+    folded: the dense lines as `develop.checks.fold.folded` returns them. place: the number of the place that
+    the sheet is folded at, of a pattern whose marks name several.
     """
     a, b, normal = folded
     lines = pattern.rulings
@@ -205,7 +225,12 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
         ("a", lines.a, given_a, solid.end_a),
         ("b", lines.b, given_b, solid.end_b),
     ):
-        marks = [mark for mark in pattern.marks if mark.edge == edge]
+        marks, words = [], []
+        for mark in pattern.marks:
+            word = _word(mark.text, place)
+            if mark.edge == edge and word is not None:
+                marks.append(mark)
+                words.append(word)
         if not marks:
             continue
         places = _beside(np.array([mark.at for mark in marks]), flat[::-1] if mirrored else flat)
@@ -213,7 +238,7 @@ def marks_miss(pattern: Pattern, folded: tuple[Array, Array, Array], solid: Soli
             # A cut across the side has no centre of its own: its marks are on end A's lines.
             space, end = given_a, solid.end_a
         at = _seen(end, places.between(space))
-        to = np.array([_DIRECTIONS[mark.text] for mark in marks])
+        to = np.array([_DIRECTIONS[word] for word in words])
         aside = np.abs(to[:, 0] * at[:, 1] - to[:, 1] * at[:, 0])
         beyond = np.where((to * at).sum(axis=1) > 0.0, aside, np.hypot(at[:, 0], at[:, 1]))
         worst = max(worst, float(np.max(np.maximum(beyond, places.gap))))

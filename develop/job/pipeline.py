@@ -13,7 +13,7 @@ from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import OPPOSITE, builds_of
 
 if TYPE_CHECKING:
-    from develop.checks import Check
+    from develop.checks import Check, Side
     from develop.outputs.paper import PageSetup
     from develop.pattern.pattern import Pattern
     from develop.pieces.built import Built
@@ -159,26 +159,21 @@ def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:
 def checks_of_all(builds: Sequence[Built]) -> tuple[Check, ...]:
     """Every check of a piece as built and of its opposite hand, if it has one."""
     from develop.checks import check_hand
-    from develop.solid import Frame
 
     found = list(checks_of(builds[0]))
     if builds[0].both_hands:
-        own = [(part.solid, part.frames or (Frame.square(),)) for part in builds[0].parts]
-        found.append(check_hand("both hands", own, own))
+        found.append(check_hand("both hands", builds[0].wholes, builds[0].wholes))
     for other in builds[1:]:
         mark = other.patterns[0].mark
         found += [replace(each, name=f"{mark}: {each.name}") for each in checks_of(other)]
-        sides = (
-            [(part.solid, part.frames or (Frame.square(),)) for part in built.parts]
-            for built in (builds[0], other)
-        )
-        found.append(check_hand(mark, *sides))
+        found.append(check_hand(mark, builds[0].wholes, other.wholes))
     return tuple(found)
 
 
 def checks_of(built: Built) -> tuple[Check, ...]:
     """Every check of a piece: of each part, named by its mark where there are several, and of the joints."""
-    from develop.checks import Side, check_joint, check_part
+    from develop.checks import check_divided, check_joint, check_part
+    from develop.solid import Solid
 
     found: list[Check] = []
     for part in built.parts:
@@ -187,16 +182,27 @@ def checks_of(built: Built) -> tuple[Check, ...]:
             own = tuple(replace(each, name=f"{part.pattern.mark}: {each.name}") for each in own)
         found += own
     for joint in built.joints:
-        sides = [
-            Side(part.pattern, part.solid, part.frames[place], end)
-            for part, end, place in (
-                (built.parts[joint.part], joint.end, joint.place),
-                (built.parts[joint.other], joint.other_end, joint.other_place),
-            )
-        ]
-        name = joint.name or " to ".join(side.pattern.mark for side in sides)
+        sides = [[_side(built, part, place, end) for part, place in parts] for end, parts in joint.sides]
+        name = joint.name or " to ".join(side[0].pattern.mark for side in sides)
         found += check_joint(name, *sides)
+    for side in built.divided:
+        parts = [built.parts[number] for number in side.parts]
+        used = [
+            (part.pattern, part.solid, places, numbers)
+            for part, places, numbers in zip(parts, side.places, side.numbers, strict=True)
+            if isinstance(part.solid, Solid)
+        ]
+        name = "all parts" if len(built.divided) == 1 else f"all parts of {side.mark}"
+        found += check_divided(name, used, side.solid)
     return tuple(found)
+
+
+def _side(built: Built, part: int, place: int, end: str) -> Side:
+    """One part's side of a joint, at one of its places."""
+    from develop.checks import Side
+
+    own = built.parts[part]
+    return Side(own.pattern, own.solid, own.frames[place], end, built.stands(part, place))
 
 
 def _plate_title(mark: str, facts: Sequence[str]) -> str:
@@ -239,11 +245,8 @@ def _files(
     from develop.checks import folded_on
     from develop.outputs.picture import picture
 
-    headers = [
-        part
-        for part in builds[0].parts
-        if part.frames and isinstance(part.solid, Solid) and part.solid.openings
-    ]
+    sides = builds[0].sides
+    headers = [placed for _, placed in sides if placed.solid.openings]
     if not headers:
         own = [part.pattern for part in builds[0].parts if isinstance(part.solid, Solid)]
         facts = patterns[0].facts[1:4]
@@ -252,13 +255,9 @@ def _files(
             facts = tuple(each for each in own[0].facts[1:] if all(each in one.facts for one in own))[:2]
         return {f"{mark}.png": picture(builds[0].placed, (title, *facts))}
     # What stands on a header has ends of its own: A and B are the header's, the others have their mark.
-    others = [
-        part
-        for part in builds[0].parts
-        if isinstance(part.solid, Solid) and all(part is not header for header in headers)
-    ]
-    placed = [each for part in (*headers, *others) for each in replace(builds[0], parts=(part,)).placed]
-    names = [part.pattern.mark for part in others for _ in part.frames]
+    others = [(name, placed) for name, placed in sides if not placed.solid.openings]
+    placed = [*headers, *(each for _, each in others)]
+    names = [name for name, _ in others]
     # Plates that lie on a header are shown by their edges on its wall.
     plates = [
         folded_on(part.pattern, part.solid.under, curve.polyline(0.2))
@@ -276,7 +275,9 @@ def _solids(ending: str, piece: Piece, builds: Sequence[Built]) -> dict[str, byt
 
     # A band of paper is no thicker than the paper is, and lies with its middle where it is developed.
     thickness = float(getattr(piece, "paper", getattr(piece, "thickness", 0.0)))
-    neutral_line = 0.5 if hasattr(piece, "paper") else float(getattr(piece, "neutral_line", 0.5))
+    place = 0.5 if hasattr(piece, "paper") else getattr(piece, "neutral_line", 0.5)
+    # Where a rule has found the place, each pattern tells its own.
+    neutral_line = 0.5 if isinstance(place, str) else float(place)
     files = {}
     for built, ends in zip(builds, ("", OPPOSITE), strict=False):
         meshes = meshes_of(built, thickness=thickness, neutral_line=neutral_line)

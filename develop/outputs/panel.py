@@ -69,7 +69,11 @@ def _texts(pattern: Pattern) -> list[str]:
         " Paper stretches: where it matters, mark out from the table.",
         f"All figures in {'inches' if pattern.units == 'in' else 'mm'}; x from the datum line x = 0 at the"
         " left, y from the datum line y = 0 at the bottom"
-        + ("; running lengths along END A and END B from line 0." if pattern.divisions else "."),
+        + (
+            f"; running lengths along END A and END B from line {pattern.divisions[0].number}."
+            if pattern.divisions
+            else "."
+        ),
         f"Measured from: {pattern.datum}." if pattern.datum else "",
         "Cut on the middle of the thick line.",
         *CAUTIONS,

@@ -60,6 +60,10 @@ class Piece(Protocol):
         """The seam from end A to end B, (2, 3) [mm]."""
 
     @property
+    def joint_lines(self) -> Array:
+        """Further lines at which the wall is parted, (k, 2, 3) [mm]."""
+
+    @property
     def top_line(self) -> Array:
         """The line along the top from end A to end B, (2, 3) [mm]."""
 
@@ -116,11 +120,13 @@ def picture(
             PolyCollection(polygons, facecolors=fill, edgecolors=stroke, linewidths=widths, capstyle="round")
         )
         for piece in pieces:
-            seam = camera.project(piece.seam_line)
-            axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
+            for line in (piece.seam_line, *piece.joint_lines):
+                seam = camera.project(line)
+                axes.plot(*seam.T, color=_SEAM, linewidth=0.8, linestyle=(0, (2, 3)))  # seen through the wall
         corners = camera.project(vertices)
         for text, start, end, colour in _words(camera, pieces, branches):
-            axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9)
+            # A leader may run beyond the limits, to where its word stands.
+            axes.plot(*np.array([start, end]).T, color=colour, linewidth=0.9, clip_on=False)
             axes.plot(*start, color=colour, marker="o", markersize=3.2)
             ahead = (end - start) / np.hypot(*(end - start))
             x, y = end + 0.012 * ahead
@@ -263,8 +269,12 @@ def _lines(piece: Piece) -> list[tuple[Array, str, float]]:
     """Lines on the piece: points (n, 3), colour, width in points."""
     rims = [np.vstack([rim, rim[:1]]) for rim in (piece.rim_a(_RIM), piece.rim_b(_RIM))]
     share = np.linspace(0.0, 1.0, 61)[:, None]
-    seam, top = (line[0] + share * (line[1] - line[0]) for line in (piece.seam_line, piece.top_line))
-    return [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7), (seam, _SEAM, 2.2)]
+    top, *seams = (
+        line[0] + share * (line[1] - line[0])
+        for line in (piece.top_line, piece.seam_line, *piece.joint_lines)
+    )
+    edges = [(rims[0], _EDGE, 1.8), (rims[1], _EDGE, 1.8), (top, _TOP, 0.7)]
+    return [*edges, *((seam, _SEAM, 2.2) for seam in seams)]
 
 
 def _scene(

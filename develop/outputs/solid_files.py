@@ -30,13 +30,14 @@ _GREY = [0.56, 0.64, 0.72, 1.0]
 
 
 def meshes_of(built: Built, *, thickness: float, neutral_line: float) -> tuple[Mesh, ...]:
-    """Every part where it stands in the piece, as often as it is used; no plates that only lie on one.
+    """Every part where it stands in the piece, as often as it is used, a side made in parts as one body; no
+    plates that only lie on one.
 
     thickness: of the wall [mm]; without any, a part is its bare surface, which is not closed.
-    neutral_line: where in the wall the developed sheet lies, 0 inside to 1 outside.
+    neutral_line: where in the wall the sheet lies, 0 inside to 1 outside, but for a part that tells.
     """
     found: list[Mesh] = []
-    for part in built.parts:
+    for _, part in built.whole_parts:
         if isinstance(part.solid, Patch):
             continue
         made: dict[float, Mesh] = {}
@@ -54,7 +55,8 @@ def meshes_of(built: Built, *, thickness: float, neutral_line: float) -> tuple[M
 def _body(part: Part, thickness: float, neutral_line: float, inset: float) -> Mesh:
     """A part in its own frame, both faces `inset` further in than they are."""
     if isinstance(part.solid, Solid):
-        inside = part.solid.distance - neutral_line * thickness
+        told = part.pattern.wall
+        inside = part.solid.distance - (told.neutral_line if told else neutral_line) * thickness
         return wall(part.solid, inside=inside + inset, outside=inside + thickness - inset)
     assert not isinstance(part.solid, Patch)
     return _flat(part.pattern, part.solid.shift, thickness - 2.0 * inset)

@@ -132,10 +132,11 @@ def _running(pattern: Pattern) -> str:
     """Where the running lengths start."""
     if pattern.divisions:
         round_openings = ", round an opening from its point 1" if pattern.openings else ""
-        return f" Running lengths go along END A and END B from line 0{round_openings}."
+        first = pattern.divisions[0].number
+        return f" Running lengths go along END A and END B from line {first}{round_openings}."
     if pattern.net.curve("end_1") is not None:
-        first, _ = pattern.end_words
-        return f" Running lengths of marks go along the edge from {first}, those of the outline from point 1."
+        start, _ = pattern.end_words
+        return f" Running lengths of marks go along the edge from {start}, those of the outline from point 1."
     return " Running lengths go along each edge from its point 1."
 
 
@@ -147,9 +148,11 @@ def _seam_and_flow(pattern: Pattern) -> list[str]:
     flow = {"a to b": " Flow from END A to END B.", "b to a": " Flow from END B to END A."}.get(
         pattern.flow, ""
     )
-    return [
-        f"END A is the lower edge. Lines {first} and {last} are the two sides of the seam, straight.{flow}"
-    ]
+    left, right = pattern.seam_words
+    sides = f"Lines {first} and {last} are the two sides of the seam, straight."
+    if left != right and left.startswith("JOINT"):
+        sides = f"Line {first} is the side of {left}, line {last} of {right}, both straight."
+    return [f"END A is the lower edge. {sides}{flow}"]
 
 
 def _diagonals(pattern: Pattern) -> list[str]:

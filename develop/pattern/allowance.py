@@ -46,17 +46,25 @@ class Allowance:
 _Contour = Sequence[tuple[str, Curve]]
 
 
-def allowed(net: Outline, fine: _Contour, allowances: Mapping[str, Allowance]) -> Outline:
+def allowed(
+    net: Outline,
+    fine: _Contour,
+    allowances: Mapping[str, Allowance],
+    *,
+    beside: tuple[_Contour, _Contour] | None = None,
+) -> Outline:
     """The cut line of a contour that runs `a`, `seam_right`, `b`, `seam_left`; `b` may be missing at an apex.
 
     fine: the same contour, drawn closely enough for its parallels to be good. allowances: by edge; an edge
-    without one stays on the net line.
+    without one stays on the net line. beside: the contours that join it at its left and its right seam,
+    wherever they lie; left out, it joins itself.
     """
     given = {name: each for name, each in allowances.items() if each.width}
     if not given:
         return net
     flat = {name: each.width for name, each in given.items() if not each.folded}
-    whole = _Whole(dict(net.curves), dict(fine), flat)
+    left, right = (fine, fine) if beside is None else beside
+    whole = _Whole(dict(net.curves), dict(fine), flat, dict(left), dict(right))
     curves: dict[str, Curve] = {}
     for name in whole.ends:
         curves[name] = whole.end(name, given.get(name))
@@ -78,11 +86,16 @@ def allowed(net: Outline, fine: _Contour, allowances: Mapping[str, Allowance]) -
 
 @dataclass(frozen=True)
 class _Whole:
-    """The net contour and how far its edges are moved, `by` [mm], those that are not folded."""
+    """The net contour and how far its edges are moved, `by` [mm], those that are not folded.
+
+    left, right: the contours that join it at its seams.
+    """
 
     net: dict[str, Curve]
     fine: dict[str, Curve]
     by: dict[str, float]
+    left: dict[str, Curve]
+    right: dict[str, Curve]
 
     @property
     def ends(self) -> list[str]:
@@ -146,27 +159,20 @@ class _Whole:
         ]
         return joined(parts)
 
-    def _beyond(self, name: str, curve: Curve, length: float) -> tuple[Curve | None, Curve | None]:
-        """What the sheet goes on with before and after an edge: its own other side, moved to the seam."""
+    def _beyond(self, name: str, source: Curve, length: float) -> tuple[Curve | None, Curve | None]:
+        """What the sheet goes on with before and after an edge: its neighbours' edges, moved to the seams."""
         if not {"seam_left", "seam_right"} <= self.net.keys():
             return None, None
-        left, right = self.net["seam_left"], self.net["seam_right"]
-        turns = [np.arctan2(*(curve.end - curve.start)[::-1]) for curve in (left.reversed(), right)]
-        angle = float(turns[1] - turns[0])
-        c, s = np.cos(angle), np.sin(angle)
-        turn = np.array([[c, -s], [s, c]])
-        shift = right.start - turn @ left.end
-        back = turn.T, -turn.T @ shift
-        onward = (turn, shift) if name == "a" else back
-        backward = back if name == "a" else (turn, shift)
-        # Whole Béziers, as many as reach so far: their chords are no longer than they are.
-        reach = np.cumsum(np.hypot(*(curve.pieces[:, 3] - curve.pieces[:, 0]).T))
-        count = len(reach)
-        last = min(int(np.searchsorted(reach, length)), count - 1)
-        first = max(int(np.searchsorted(reach, reach[-1] - length)), 0)
-        head = between(curve, (0, 0.0), (last, 1.0))
-        tail = between(curve, (first, 0.0), (count - 1, 1.0))
-        return tail.moved(turn=backward[0], shift=backward[1]), head.moved(turn=onward[0], shift=onward[1])
+        backward = (self.left, _onto(self.left["seam_right"], self.net["seam_left"].reversed()))
+        onward = (self.right, _onto(self.right["seam_left"].reversed(), self.net["seam_right"]))
+        before, after = (backward, onward) if name == "a" else (onward, backward)
+        found = []
+        for (contour, motion), head in ((before, False), (after, True)):
+            # Of a sheet that joins itself the edge as it is drawn here, to the last bit.
+            own = name in contour and contour[name] is self.fine[name]
+            beside = source if own else contour.get(name)
+            found.append(_gone_on(source, beside, motion, length, head=head))
+        return found[0], found[1]
 
     def _corner(self, run: Curve, seam: str, near: Array) -> tuple[int, float]:
         """Where an edge meets a moved seam."""
@@ -174,6 +180,44 @@ class _Whole:
         found = crossing(run, point, along, near)
         assert found is not None, "an edge that goes on meets its seam"
         return found
+
+
+def _gone_on(
+    source: Curve, beside: Curve | None, motion: tuple[Array, Array], length: float, *, head: bool
+) -> Curve:
+    """What an edge goes on with, a length [mm] of it: with the edge beside it, moved, and from there straight
+    on; None where the sheet beside it stands on a point there.
+
+    head: after the end of the edge, else before its start.
+    """
+    parts: list[Curve] = []
+    rest = length
+    if beside is not None:
+        # Whole Béziers, as many as reach so far: their chords are no longer than they are.
+        reach = np.cumsum(np.hypot(*(beside.pieces[:, 3] - beside.pieces[:, 0]).T))
+        last_piece = len(reach) - 1
+        start, end = (0, 0.0), (last_piece, 1.0)
+        if head:
+            end = (min(int(np.searchsorted(reach, length)), last_piece), 1.0)
+        else:
+            start = (max(int(np.searchsorted(reach, reach[-1] - length)), 0), 0.0)
+        parts.append(between(beside, start, end).moved(turn=motion[0], shift=motion[1]))
+        rest = length - float(reach[-1])
+    if rest > _NONE:
+        last = parts[0] if parts else source
+        point, *steps = last.controls[::-1] if head else last.controls
+        ahead = next(point - each for each in steps if np.hypot(*(point - each)) > _NONE)
+        far = point + rest * ahead / np.hypot(*ahead)
+        parts = [*parts, segment(point, far)] if head else [segment(far, point), *parts]
+    return joined(parts)
+
+
+def _onto(seam: Curve, other: Curve) -> tuple[Array, Array]:
+    """The motion, turn (2, 2) and shift (2,) [mm], that lays a seam on another; both lead up from end A."""
+    one, two = (np.arctan2(*(curve.end - curve.start)[::-1]) for curve in (seam, other))
+    c, s = np.cos(two - one), np.sin(two - one)
+    turn = np.array([[c, -s], [s, c]])
+    return turn, other.start - turn @ seam.start
 
 
 def _same(curve: Curve, point: Array) -> tuple[int, float]:

@@ -20,7 +20,7 @@ from develop.quadrature import Array
 from develop.solid import End, FlatTemplate, Solid
 
 if TYPE_CHECKING:
-    from develop.pattern.pattern import Pattern
+    from develop.pattern.pattern import Figures, Pattern
     from develop.pieces.fields import Piece
     from develop.pieces.templates import Profile
     from develop.sections.section import Section
@@ -42,7 +42,15 @@ def with_forming(built: Built, piece: Piece, *, known: Material | None, units: s
     """
     if isinstance(piece, Plate):
         wall = _wall(piece, built)
-        formed = built.with_patterns([_formed(part, piece, wall, known, units) for part in built.parts])
+        whole = dict(built.whole_parts)
+        formed = built.with_patterns(
+            [
+                _formed(
+                    part, piece, wall, known, units, _closed(built, number, whole.get(number), piece, wall)
+                )
+                for number, part in enumerate(built.parts)
+            ]
+        )
         extra = _more(formed, piece, wall, units)
         warned = formed.warned
         if piece.templates != "none" and not any(isinstance(each.solid, FlatTemplate) for each in extra):
@@ -72,16 +80,31 @@ def _wall(piece: Plate, built: Built) -> Wall:
     return Wall(-t * given, t * (1.0 - given), t * (_neutral(piece, built.patterns) - given))
 
 
-def _formed(part: Part, piece: Plate, wall: Wall, known: Material | None, units: str) -> Pattern:
+def _closed(built: Built, number: int, whole: Part | None, piece: Plate, wall: Wall) -> tuple[Figures, ...]:
+    """The figures after closing, once for a side: of one made in parts they stand with its first."""
+    if whole is None or not isinstance(whole.solid, Solid):
+        return ()
+    ends = ends_of(whole.pattern, whole.solid)
+    if not ends:
+        return ()
+    patterns = built.patterns_round(number)
+    tape, tolerance = piece.tape, piece.tape_tolerance
+    return (closed_figures(patterns, whole.solid, wall, tape=tape, tolerance=tolerance, ends=ends),)
+
+
+def _formed(
+    part: Part,
+    piece: Plate,
+    wall: Wall,
+    known: Material | None,
+    units: str,
+    closed: tuple[Figures, ...],
+) -> Pattern:
+    """The pattern with its figures; closed: those of the side after it is closed."""
     pattern, solid = part.pattern, part.solid
-    taped = [cut_figures(pattern, tolerance=piece.tape_tolerance)]
+    taped = (cut_figures(pattern, tolerance=piece.tape_tolerance), *closed)
     if not isinstance(solid, Solid):
-        return replace(pattern, taped=tuple(taped))
-    ends = ends_of(pattern, solid)
-    if ends:
-        taped.append(
-            closed_figures(pattern, solid, wall, tape=piece.tape, tolerance=piece.tape_tolerance, ends=ends)
-        )
+        return replace(pattern, taped=taped)
     forming = forming_of(
         pattern,
         solid,
@@ -89,7 +112,7 @@ def _formed(part: Part, piece: Plate, wall: Wall, known: Material | None, units:
         neutral_line=_neutral(piece, (pattern,)),
         known=known,
     )
-    pattern = replace(pattern, taped=tuple(taped), forming=forming)
+    pattern = replace(pattern, taped=taped, forming=forming)
     if forming is None:
         return pattern
     warnings = forming_warnings(forming, thickness=piece.thickness, units=units)
@@ -140,10 +163,10 @@ def _more(built: Built, piece: Plate, wall: Wall, units: str) -> tuple[Part, ...
     """The templates and the outlines that were asked for."""
     if piece.templates == "none" and piece.floor == "none":
         return ()
-    rolled = [part for part in built.parts if isinstance(part.solid, Solid)]
+    rolled = [(number, part) for number, part in built.whole_parts if isinstance(part.solid, Solid)]
     parts: list[Part] = []
     if piece.templates != "none":
-        parts += _templates(rolled, piece, wall, units)
+        parts += _templates([part for _, part in rolled], piece, wall, units)
     if piece.floor != "none":
         parts += _outlines(built, rolled, piece, wall, units)
     return tuple(parts)
@@ -161,7 +184,7 @@ def _ends(part: Part) -> list[_PlacedEnd]:
         if np.abs(rise).max() == 0.0:
             scale = cone_scale(solid, height)
             found.append(_PlacedEnd(part, "b", solid.end_a.section, scale, _turn(solid.end_a)))
-    elif part.pattern.net.curve("b") is not None:
+    elif solid.end_b.section.girth:
         found.append(_PlacedEnd(part, "b", solid.end_b.section, 1.0, _turn(solid.end_b)))
     return found
 
@@ -236,20 +259,24 @@ def _thicker(group: list[_PlacedEnd], distance: float, units: str) -> tuple[str,
     return (f"true parallel section; the sloping wall lies up to {measured_words(more, units)} beyond it",)
 
 
-def _outlines(built: Built, rolled: list[Part], piece: Plate, wall: Wall, units: str) -> list[Part]:
-    joined = {(joint.part, joint.end, joint.place) for joint in built.joints}
-    joined |= {(joint.other, joint.other_end, joint.other_place) for joint in built.joints}
+def _outlines(
+    built: Built, rolled: list[tuple[int, Part]], piece: Plate, wall: Wall, units: str
+) -> list[Part]:
+    joined = {
+        (part, end, place) for joint in built.joints for end, parts in joint.sides for part, place in parts
+    }
     found = []
-    for part in rolled:
+    for number, part in rolled:
         solid = part.solid
         assert isinstance(solid, Solid)
-        number = next(i for i, each in enumerate(built.parts) if each is part)
+        # Of a side made in parts the first one's places come in the order of the whole side's.
+        step = len(built.parts[number].frames) // len(part.frames)
         free = [
             name
             for name in ends_of(part.pattern, solid)
-            if any((number, name, place) not in joined for place in range(len(part.frames)))
+            if any((number, name, step * place) not in joined for place in range(len(part.frames)))
         ]
-        ends = [end for name in free if (end := _floor_end(solid, name)) is not None]
+        ends = [end for name in free if (end := _floor_end(part, name)) is not None]
         groups = _drawn_together(ends, solid)
         for group in groups:
             names = " and ".join(end.name for end in group)
@@ -291,10 +318,13 @@ def _drawn_together(ends: list[FloorEnd], solid: Solid) -> list[list[FloorEnd]]:
     return [[end] for end in ends]
 
 
-def _floor_end(solid: Solid, name: str) -> FloorEnd | None:
+def _floor_end(part: Part, name: str) -> FloorEnd | None:
     """An end as it is drawn: in plan for a taper, else in its own plane, its right kept to the right."""
+    solid = part.solid
+    assert isinstance(solid, Solid)
+    inside = part.pattern.face == "inside"
     if solid.side == "hull":
-        end, seam, scale = solid.end_a, solid.seam, 1.0
+        end, seams, scale = solid.end_a, _seams(solid, "a", inside=inside), 1.0
         at: Array = end.origin[:2]
         if name == "b" and solid.cut_b is not None:
             height, rise = solid.cut_b
@@ -305,13 +335,28 @@ def _floor_end(solid: Solid, name: str) -> FloorEnd | None:
         elif name == "b":
             end = solid.end_b
             at = end.origin[:2]
-            seam = _seam_b(solid)
-        return FloorEnd(name.upper(), end.section, scale * end.spans[:2], at, seam, _turn(end))
+            seams = _seams(solid, "b", inside=inside)
+        return FloorEnd(name.upper(), end.section, scale * end.spans[:2], at, seams, _turn(end))
     end = solid.end_a if name == "a" else solid.end_b
     first = end.spans[:, 0] / sqrt(float(end.spans[:, 0] @ end.spans[:, 0]))
     second = end.spans[:, 1] - first * (first @ end.spans[:, 1])
     second = second / sqrt(float(second @ second))
-    return FloorEnd(name.upper(), end.section, np.stack([first, second]) @ end.spans, np.zeros(2), solid.seam)
+    into = np.stack([first, second]) @ end.spans
+    return FloorEnd(name.upper(), end.section, into, np.zeros(2), _seams(solid, name, inside=inside))
+
+
+def _seams(solid: Solid, name: str, *, inside: bool) -> tuple[tuple[str, float], ...]:
+    """What meets an end where: its seam, or the joints of its parts by the numbers that the patterns have.
+
+    inside: that face of the sheet is up, so that they count the other way round.
+    """
+    seam = solid.seam if name == "a" or solid.side == "parallel" else _seam_b(solid)
+    if not solid.joints:
+        return (("SEAM", seam),)
+    which = 0 if name == "a" else 1
+    others = [joint[which] for joint in solid.joints]
+    lines = [seam, *(others[::-1] if inside else others)]
+    return tuple((f"JOINT {number}", u) for number, u in enumerate(lines, 1))
 
 
 def _seam_b(solid: Solid) -> float:

@@ -27,9 +27,10 @@ from develop.pieces.press import Press, PressLines, press_lines
 from develop.pieces.wording import lines_of, size_words
 from develop.sections.section import Section
 from develop.surfaces.edges import TOLERANCE, edges
+from develop.surfaces.part import SheetPart
 from develop.surfaces.sheet import Lines, Place, Sheet
 
-__all__ = ["Hole", "Wording", "dense", "pattern_of", "seam_parameter"]
+__all__ = ["Hole", "Share", "Wording", "dense", "pattern_of", "seam_parameter"]
 
 _FOLD_MISS = 2.4e-3
 # So close [mm] to the edges that the tangents of their parallels are good.
@@ -80,6 +81,20 @@ class Hole:
     texts: tuple[str, ...]
 
 
+@dataclass(frozen=True)
+class Share:
+    """How a part of a sheet stands among the others.
+
+    parts: how many there are. first: number of its first line, as drawn. divisions: of its own stretch of
+    end A. beside: the parts left and right of it, outside up.
+    """
+
+    parts: int
+    first: int
+    divisions: int
+    beside: tuple[SheetPart, SheetPart]
+
+
 def seam_parameter(section: Section, length_at: Callable[[Array], Array], wanted: float | str) -> float:
     """Parameter of end A's section at which the seam runs.
 
@@ -110,6 +125,7 @@ def pattern_of(
     cutting: Cutting | None = None,
     holes: Sequence[Hole] = (),
     press: Press | None = None,
+    share: Share | None = None,
 ) -> Pattern:
     """The pattern of a sheet.
 
@@ -118,24 +134,21 @@ def pattern_of(
     turn_b: how far end B's section is turned in the piece frame [rad]. cutting: what is cut beyond the
     net line.
     holes: openings in the sheet, in the sheet's own coordinates. press: bent on a press brake, not
-    rolled: the lines and the divisions are then the press lines.
+    rolled: the lines and the divisions are then the press lines. share: of a sheet that is a part of one.
     """
     moved = section_a.offset(distance)
     ends = sheet.ends
-    steps = np.arange(divisions) / divisions
+    divisions = divisions if share is None else share.divisions
+    text_a, at_a = _directions(sheet, section_a.at_direction(_DIRECTIONS), "a")
+    text_b, at_b = (
+        _directions(sheet, section_b.at_direction(_DIRECTIONS - turn_b), "b") if section_b else (text_a, at_a)
+    )
     # Every ruling that is asked for, in one walk.
-    wanted = [
-        sheet.from_a(moved.at_arc(moved.arc(sheet.at_ends.u_a[:1]) + steps * moved.girth)),
-        sheet.from_a(section_a.at_direction(_DIRECTIONS)),
-        sheet.from_b(section_b.at_direction(_DIRECTIONS - turn_b))
-        if section_b
-        else sheet.from_a(section_a.at_direction(_DIRECTIONS)),
-        ends[np.array([0, -1])],
-    ]
+    wanted = [_divided(sheet, moved, divisions), at_a, at_b, ends[np.array([0, -1])]]
     # Among the dense lines are all that are drawn or marked, so that the closing check folds these too.
     bends = press_lines(sheet, section_a, press) if press else None
     drawn = wanted if bends is None else [*wanted, bends.place]
-    wanted.append(_merged([dense(sheet), *drawn]))
+    wanted.append(_merged([dense(sheet, parts=1 if share is None else share.parts), *drawn]))
     if bends is not None:
         wanted.append(bends.place)
     counts = np.cumsum([0, *(len(place.x) for place in wanted)])
@@ -148,8 +161,13 @@ def pattern_of(
     added = cutting or Cutting()
     # Only the parallels of the ends need them drawn more closely.
     edges_of: set[str] = {*added.allowances, *(e[0] for e in added.folds), *(e[0] for e in added.inner)}
-    close_by = _outline(sheet, tolerance=_FINE) if edges_of & {"a", "b"} else bare.curves
-    whole = allowed(bare, close_by, added.allowances)
+    finer = bool(edges_of & {"a", "b"})
+    close_by = _outline(sheet, tolerance=_FINE) if finer else bare.curves
+    beside = None
+    if share is not None and added.allowances:
+        left, right = (_outline(each, tolerance=_FINE if finer else TOLERANCE) for each in share.beside)
+        beside = left, right
+    whole = allowed(bare, close_by, added.allowances, beside=beside)
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)
     cut = net if whole is bare else Outline(view.contour(whole.curves), whole.area)
@@ -160,12 +178,15 @@ def pattern_of(
         # The lines to mark out are then the seams and the press lines.
         rows_at = view.lines(found.take([first, *range(counts[5], counts[6]), last]))
         lines = _bent_lines(rows_at, bends, mirror=view.mirror)
-    rows = _divisions(rows_at, section_a)
+    number = 0 if share is None else share.first
+    rows = _divisions(rows_at, section_a, number)
+    # A part has the marks on its two seams already.
+    seams = (first, last) if share is None else None
     marks = [
         mark
-        for i, (edge, whole) in enumerate((("a", sheet.edge_a), ("b", sheet.edge_b)))
+        for i, (edge, whole, texts) in enumerate((("a", sheet.edge_a, text_a), ("b", sheet.edge_b, text_b)))
         if net.curve(edge) is not None
-        for mark in _witness(found, range(counts[i + 1], counts[i + 2]), (first, last), view, edge, whole)
+        for mark in _witness(found, range(counts[i + 1], counts[i + 2]), seams, view, edge, whole, texts)
     ]
     marks += [mark for hole in holes for mark in view.hole_marks(hole)]
     more = (*(bends.facts(mirror=view.mirror) if bends else ()), *added.facts)
@@ -194,7 +215,7 @@ def pattern_of(
         ),
         flow=wording.flow,
         figures=(
-            *(() if bends is None else (bends.figures(mirror=view.mirror),)),
+            *(() if bends is None else (bends.figures(mirror=view.mirror, first=number + 1),)),
             *view.tab_cuts(dict(close_by), added.allowances, wording.units),
         ),
         units=wording.units,
@@ -229,8 +250,10 @@ def _beside(contour: dict[str, Curve], name: str, out: float, cut: Outline) -> C
     return segment(ends[0], ends[1])
 
 
-def dense(sheet: Sheet) -> Place:
+def dense(sheet: Sheet, *, parts: int = 1) -> Place:
     """Rulings so close that flat strips between them miss the rolled sheet by `_FOLD_MISS` at most.
+
+    parts: how many sheets like this one share that.
 
     n strips of a panel with arc s and turn t come s t² / (24 n²) too long for the bent sheet; where
     the curvature changes by e^v over the panel, their mid planes are also out by s t v / (12 n²).
@@ -238,15 +261,16 @@ def dense(sheet: Sheet) -> Place:
     The miss is shared out so that the fewest strips do (n as the cube root of a panel's part).
     """
     ends, at = sheet.ends, sheet.at_ends
-    turn = np.diff(at.turn)
-    arc = np.maximum(np.diff(at.arc_a), np.diff(at.arc_b))
+    # Between lines of a flat these may be less than none by their rounding.
+    turn = np.maximum(np.diff(at.turn), 0.0)
+    arc = np.maximum(np.maximum(np.diff(at.arc_a), np.diff(at.arc_b)), 0.0)
     bend = np.log(np.clip(at.radius_a, 1e-9, 1e12))
     change = np.minimum(np.abs(np.diff(bend)), _MOST_CHANGE)
     leg = at.b - at.a
     fan = np.diff(np.unwrap(np.arctan2(leg[:, 1], leg[:, 0])))
     reach = max(float(np.max(at.length)), float(np.sum(arc)) / pi)
     part = np.cbrt((arc * turn * (turn + 2.0 * change) + reach * turn * fan * fan) / 24.0)
-    counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / _FOLD_MISS)), 1).astype(int)
+    counts = np.maximum(np.ceil(part * np.sqrt(np.sum(part) / (_FOLD_MISS / parts))), 1).astype(int)
     owner = np.repeat(np.arange(len(counts)), counts)
     first = np.repeat(np.cumsum(counts) - counts, counts)
     x = 2.0 * (np.arange(len(owner)) - first) / counts[owner] - 1.0
@@ -286,11 +310,30 @@ def _bent_lines(at: Lines, bends: PressLines, *, mirror: bool) -> tuple[RollLine
     return tuple(found)
 
 
-def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
+def _directions(sheet: Sheet, u: Array, end: str) -> tuple[list[str], Place]:
+    """The rulings through the points u (4,) of an end's section that have a word, and the words."""
+    if isinstance(sheet, SheetPart):
+        which, place = sheet.found(sheet.whole.from_a(u) if end == "a" else sheet.whole.from_b(u))
+        return [_WORDS[i] for i in which], place
+    return list(_WORDS), sheet.from_a(u) if end == "a" else sheet.from_b(u)
+
+
+def _divided(sheet: Sheet, section: Section, divisions: int) -> Place:
+    """The rulings at equal arcs of the section of end A, from the left seam on but for the right one."""
+    steps = np.arange(divisions) / divisions
+    start, stop = sheet.at_ends.u_a[[0]], sheet.at_ends.u_a[[-1]]
+    if not isinstance(sheet, SheetPart):
+        return sheet.from_a(section.at_arc(section.arc(start) + steps * section.girth))
+    first = section.arc(start)
+    inner = sheet.from_a(section.at_arc(first + steps[1:] * ((section.arc(stop) - first) % section.girth)))
+    return Place(np.append(0, inner.panel), np.append(-1.0, inner.x))
+
+
+def _divisions(at: Lines, section: Section, first: int) -> tuple[Division, ...]:
     directions = section.direction(at.u_a)
     return tuple(
         Division(
-            number=i,
+            number=first + i,
             direction=float(directions[i]),
             arc_a=float(at.arc_a[i]),
             arc_b=float(at.arc_b[i]),
@@ -303,19 +346,29 @@ def _divisions(at: Lines, section: Section) -> tuple[Division, ...]:
 
 
 def _witness(
-    found: Lines, which: Sequence[int], seams: tuple[int, int], view: _View, edge: str, whole: float
+    found: Lines,
+    which: Sequence[int],
+    seams: tuple[int, int] | None,
+    view: _View,
+    edge: str,
+    whole: float,
+    words: Sequence[str],
 ) -> list[WitnessMark]:
     """Marks at right, top, left and bottom of one edge; one on the seam is made on both its sides.
 
-    which: the rulings of the four marks among those found; seams: those of the left and right seam.
+    which: the rulings of the marks among those found; words: of the marks. seams: the rulings of the left
+    and right seam, None for a part, whose own seams are not one line.
     """
     arcs = getattr(found, f"arc_{edge}")
     rows: list[int] = []
     texts: list[str] = []
-    for i, text in zip(which, _WORDS, strict=True):
-        places = seams if min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole else (i,)
+    for i, text in zip(which, words, strict=True):
+        on_seam = seams is not None and min(arcs[i], whole - arcs[i]) <= _ON_SEAM * whole
+        places = seams if seams is not None and on_seam else (i,)
         rows += places
         texts += [text] * len(places)
+    if not rows:
+        return []
     order = rows[::-1] if view.mirror else rows
     at = view.lines(found.take(order))
     points, tangents, arcs = (at.a, at.tangent_a, at.arc_a) if edge == "a" else (at.b, at.tangent_b, at.arc_b)

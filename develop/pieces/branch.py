@@ -26,7 +26,8 @@ from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 if TYPE_CHECKING:
-    from develop.pieces.assemble import Hole
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Hole, Share
     from develop.pieces.built import Built, Part
     from develop.pieces.clearance import Beside
     from develop.pieces.header import StraightHeader, TaperHeader
@@ -401,16 +402,18 @@ class Branch(Jointed):
         surface, header, frame = self._parts()
         seam = self._branch_seam(surface)
         header_seam = self._header_seam(surface.section, header, frame)
+        branch = self._branch_part(surface, header, frame, seam, units)
+        over = self._header_part(
+            surface.section, header, frame, (seam, header_seam), units, first=len(branch.parts)
+        )
         pads: tuple[Part, ...] = ()
         beside: tuple[Beside, ...] = ()
         if self.pad:
             pads, beside = self._pads(surface.section, header, frame, (seam, header_seam), units)
         built = Built(
-            (
-                self._branch_part(surface, header, frame, seam, units),
-                self._header_part(surface.section, header, frame, (seam, header_seam), units),
-                *pads,
-            )
+            (*branch.parts, *over.parts, *pads),
+            (*branch.joints, *over.joints),
+            divided=(*branch.divided, *over.divided),
         )
         return seam_warnings(built, clear=self.clear, also=beside)
 
@@ -423,7 +426,7 @@ class Branch(Jointed):
         seam = self._branch_seam(surface)
         header_seam = self._header_seam(surface.section, header, frame)
         if self.joint == "tap":
-            lap_flange(surface, seam, lap=self.lap, thickness=self.thickness)
+            lap_flange(surface, surface.sheet(seam), lap=self.lap, thickness=self.thickness)
         if self.pad:
             self._pads(surface.section, header, frame, (seam, header_seam), "mm")
 
@@ -436,19 +439,27 @@ class Branch(Jointed):
         """Parameter of the header's section at its seam. Raises Refusal where it runs through the opening."""
         import numpy as np
 
-        from develop.pieces.clearance import check_uncut
+        from develop.pieces.clearance import check_parts_uncut, check_uncut
 
         section = header.section
         opposite = float(section.at_direction(np.array([self.leaves_at + pi]))[0])
-        if isinstance(self.header_seam, str):
+        parts = self.made_in if isinstance(self.made_in, int) else 1
+        if not isinstance(self.header_seam, str):
+            direction = self.header_seam
+        elif parts == 1:
             return opposite
-        seam = float(section.at_direction(np.array([self.header_seam]))[0])
+        else:
+            # Of an even number of parts one would else meet its neighbour in the opening.
+            direction = self.leaves_at + (pi / parts if parts % 2 == 0 else pi)
+        seam = float(section.at_direction(np.array([direction]))[0])
         # On the sheet that is slit opposite the branch its opening lies in one piece.
         u = branch.at_direction(np.radians(np.arange(360.0)))
         sheet = header.sheet(opposite)
         place, _ = header.trim(frame).on_sheet(np.hstack([branch.point(u), np.zeros((len(u), 1))]), sheet)
         on = sheet.lines(place).u_a
         check_uncut(section, seam, on, leaves_at=self.leaves_at, field="header_seam")
+        if parts > 1:
+            check_parts_uncut(section, seam, parts, on, leaves_at=self.leaves_at)
         return seam
 
     @property
@@ -483,59 +494,61 @@ class Branch(Jointed):
         frame: Frame,
         seam: float,
         units: str,
-    ) -> Part:
+    ) -> Built:
         """The branch; seam: parameter of its section."""
         from dataclasses import replace
 
         import numpy as np
 
         from develop.pieces.assemble import pattern_of
-        from develop.pieces.built import Part
         from develop.pieces.joint_edge import with_bevels
+        from develop.pieces.parting import parted
         from develop.pieces.tap import lap_flange
         from develop.solid import End, Solid, StandingEnd
 
         section = surface.section
-        sheet = surface.sheet(seam)
-        flange, words = None, "END A: the joint"
-        if self.joint == "tap":
-            flange = lap_flange(surface, seam, lap=self.lap, thickness=self.thickness)
-            words = (
-                f"END A: the joint, a lap flange {size_words(self.lap, units)} wide beyond the net line, cut "
-                f"in to make {len(flange.tabs) + 1} tabs, turned out"
-            )
-        # The header cannot give way: the whole gap of the joint is the branch's.
-        cutting = self.cutting(sheet, joints="a", alone="a", units=units)
-        wording = self.wording(
-            sheet,
-            self._specs,
-            sizes=f"branch {section_words(self.branch, units)}, "
-            f"centre to end {size_words(self.centre_to_end, units)}",
-            place=f"into header {self._header_words(units)}, {self._where(units)}",
-            held=self._edge().held("lengths", "joint"),
-            units=units,
-            around=section,
-            more=(
-                *((words, "END B: the free end") if flange else (f"{words}; END B: the free end",)),
-                *self._edge().words(mitre=False),
-                *self._sides,
-            ),
-        )
-        pattern = pattern_of(
-            sheet,
-            section,
-            section,
-            wording=replace(
-                wording, mark=f"{self.mark}-branch", facts=(f"{self.mark}-branch", *wording.facts[1:])
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            cutting=replace(cutting, allowances={**cutting.allowances, "a": flange}) if flange else cutting,
-        )
+        joint = ("END A: the joint; END B: the free end",)
         edge, met = self._edge(), header.joint(section, frame)
         inner, outer = edge.corners or (0.0, 0.0)
         stands = StandingEnd.of(met, inner=inner, outer=outer)
-        pattern = with_bevels(pattern, edge, {"a": stands}, plates=1)
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            # The header cannot give way: the whole gap of the joint is the branch's.
+            cutting = self.cutting(flat, joints="a", alone="a", units=units, share=share)
+            words: tuple[str, ...] = joint
+            if self.joint == "tap":
+                flange = lap_flange(surface, flat, lap=self.lap, thickness=self.thickness)
+                cutting = replace(cutting, allowances={**cutting.allowances, "a": flange})
+                words = (
+                    f"END A: the joint, a lap flange {size_words(self.lap, units)} wide beyond the net line, "
+                    f"cut in to make {len(flange.tabs) + 1} tabs, turned out",
+                    "END B: the free end",
+                )
+            wording = self.wording(
+                flat,
+                self._specs,
+                sizes=f"branch {section_words(self.branch, units)}, "
+                f"centre to end {size_words(self.centre_to_end, units)}",
+                place=f"into header {self._header_words(units)}, {self._where(units)}",
+                held=edge.held("lengths", "joint"),
+                units=units,
+                around=section,
+                more=(*words, *edge.words(mitre=False), *self._sides),
+            )
+            pattern = pattern_of(
+                flat,
+                section,
+                section,
+                wording=replace(
+                    wording, mark=f"{self.mark}-branch", facts=(f"{self.mark}-branch", *wording.facts[1:])
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                cutting=cutting,
+                share=share,
+            )
+            return with_bevels(pattern, edge, {"a": stands}, plates=1)
+
         solid = Solid(
             stands if edge.corners else met,
             End.cut(section, height=self.centre_to_end, rise=np.zeros(2)),
@@ -544,7 +557,7 @@ class Branch(Jointed):
             seam_b=seam,
             distance=surface.distance,
         )
-        return Part(pattern, solid, (frame,))
+        return parted(self, surface.sheet(seam), solid, drawn, units=units).placed_at((frame,))
 
     def _header_part(
         self,
@@ -553,15 +566,18 @@ class Branch(Jointed):
         frame: Frame,
         seams: tuple[float, float],
         units: str,
-    ) -> Part:
-        """The header with its opening. branch: its section as given; seams: of the branch and the header."""
+        *,
+        first: int,
+    ) -> Built:
+        """The header with its opening. branch: its section as given; seams: of the branch and the header.
+        first: the number of its first part in the piece."""
         from dataclasses import replace
 
         import numpy as np
 
         from develop.pattern.ties import TIES, tie_width
         from develop.pieces.assemble import pattern_of
-        from develop.pieces.built import Part
+        from develop.pieces.parting import holes_on, parted
         from develop.pieces.wall import PLACES
         from develop.solid import Frame
         from develop.surfaces.cylinder import Cylinder
@@ -578,36 +594,41 @@ class Branch(Jointed):
             "marked": "only marked (dashed): cut after rolling",
             "ties": f"left on {TIES} ties {size_words(tie, units)} wide",
         }[self.opening]
-        over = self.wording(
-            sheet,
-            self._specs,
-            sizes=f"header {self._header_words(units)}",
-            place=f"opening for branch {section_words(self.branch, units)}, {opening}, {self._where(units)}",
-            held="length and opening",
-            units=units,
-            around=header.around,
-            more=self._sides,
-        )
         end = Plane(self.centre_to_end, np.zeros(2))
         cutter = Cylinder(section, through, end, 0.0, through.breaks(section)).sheet(seams[0])
-        pattern = pattern_of(
-            sheet,
-            header.section,
-            header.section_b,
-            wording=replace(
-                over,
-                mark=f"{self.mark}-header",
-                facts=(f"{self.mark}-header", *over.facts[1:]),
-            ),
-            divisions=self.divisions,
-            distance=header.distance,
-            turn_b=header.turn_b,
-            cutting=self.cutting(sheet, units=units),
-            holes=(self._hole(cutter, sheet, through),),
-        )
+        hole = self._hole(cutter, sheet, through)
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            over = self.wording(
+                flat,
+                self._specs,
+                sizes=f"header {self._header_words(units)}",
+                place=f"opening for branch {section_words(self.branch, units)}, {opening}, "
+                f"{self._where(units)}",
+                held="length and opening",
+                units=units,
+                around=header.around,
+                more=self._sides,
+            )
+            pattern = pattern_of(
+                flat,
+                header.section,
+                header.section_b,
+                wording=replace(
+                    over, mark=f"{self.mark}-header", facts=(f"{self.mark}-header", *over.facts[1:])
+                ),
+                divisions=self.divisions,
+                distance=header.distance,
+                turn_b=header.turn_b,
+                cutting=self.cutting(flat, units=units, share=share),
+                holes=holes_on(flat, (hole,)),
+                share=share,
+            )
+            return replace(pattern, openings_as=self.opening, tie=tie)
+
         solid = header.solid(seams[1], sheet, (header.hole(section, frame),))
-        pattern = replace(pattern, openings_as=self.opening, tie=tie)
-        return Part(pattern, solid, (Frame.square(),))
+        made = parted(self, sheet, solid, drawn, units=units)
+        return made.placed_at((Frame.square(),), first=first)
 
     def _pads(
         self,

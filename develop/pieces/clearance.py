@@ -19,7 +19,7 @@ if TYPE_CHECKING:
     from develop.quadrature import Array
     from develop.sections.section import Section
 
-__all__ = ["Beside", "check_uncut", "seam_warnings"]
+__all__ = ["Beside", "check_parts_uncut", "check_uncut", "seam_warnings"]
 
 _CHORDS = 0.05  # [mm]
 
@@ -30,11 +30,8 @@ def check_uncut(section: Section, seam: float, on: Array, *, leaves_at: float, f
     section: the header's; seam: its parameter; on: parameters (n,) round the opening; leaves_at: the
     direction [rad] that the branch leaves at.
     """
-    middle = float(section.at_direction(np.array([leaves_at]))[0])
-    half = 0.5 * section.period
-    away = (np.append(on, seam) - middle + half) % section.period - half
-    low, high = float(away[:-1].min()), float(away[:-1].max())
-    if not low <= away[-1] <= high:
+    middle, low, high = _reach(section, on, leaves_at)
+    if not _cut(section, np.array([seam]), middle, low, high):
         return
     ends = section.direction(middle + np.array([high, low]))
     first, last = (direction_words(float(end)) for end in np.radians(np.round(np.degrees(ends), 1)))
@@ -43,6 +40,50 @@ def check_uncut(section: Section, seam: float, on: Array, *, leaves_at: float, f
         given="the header's seam would run through the opening",
         allowed=f"a direction outside of it: anticlockwise from {first} to {last}",
     )
+
+
+def check_parts_uncut(section: Section, seam: float, count: int, on: Array, *, leaves_at: float) -> None:
+    """Raises Refusal where an opening reaches over one of the lines that part a header in so many parts.
+
+    As `check_uncut`; what works is a number of parts and a seam at which all lines keep clear.
+    """
+    middle, low, high = _reach(section, on, leaves_at)
+
+    def cut(start: float, parts: int) -> bool:
+        lines = section.at_arc(section.arc(np.array([start])) + np.arange(parts) / parts * section.girth)
+        return _cut(section, lines, middle, low, high)
+
+    if not cut(seam, count):
+        return
+    for parts in range(count, 1, -1):
+        for direction in (leaves_at + np.pi, leaves_at + np.pi / parts):
+            direction = float(np.radians(round(float(np.degrees(direction)), 1)))
+            if not cut(float(section.at_direction(np.array([direction]))[0]), parts):
+                raise Refusal(
+                    field="made_in",
+                    given=f"one of the {count} joints of the header would run through the opening",
+                    allowed=f"{parts} with header_seam = {direction_words(direction)}",
+                )
+    raise Refusal(
+        field="made_in",
+        given=f"one of the {count} joints of the header would run through the opening",
+        allowed="1",
+    )
+
+
+def _reach(section: Section, on: Array, leaves_at: float) -> tuple[float, float, float]:
+    """The parameter at the middle of an opening, and how far it reaches before and past that."""
+    middle = float(section.at_direction(np.array([leaves_at]))[0])
+    half = 0.5 * section.period
+    away = (on - middle + half) % section.period - half
+    return middle, float(away.min()), float(away.max())
+
+
+def _cut(section: Section, lines: Array, middle: float, low: float, high: float) -> bool:
+    """Whether any of the lines at these parameters (n,) lies in the reach."""
+    half = 0.5 * section.period
+    away = (lines - middle + half) % section.period - half
+    return bool(((away >= low) & (away <= high)).any())
 
 
 @dataclass(frozen=True)
@@ -71,20 +112,19 @@ def seam_warnings(built: Built, *, clear: float, also: Sequence[Beside] = ()) ->
         if isinstance(part.solid, Solid):
             found += [(each, (number,)) for each in _at_openings(part, clear)]
     for joint in built.joints:
+        if joint.end.startswith("seam"):
+            continue
         one, other = built.parts[joint.part], built.parts[joint.other]
+        # Of a side in parts every joint of these is a seam too.
         ends = [
-            _seam_end(part, end, place)
-            for part, end, place in (
-                (one, joint.end, joint.place),
-                (other, joint.other_end, joint.other_place),
-            )
+            np.array([_seam_end(built.parts[part], end, place) for part, place in parts])
+            for end, parts in joint.sides
         ]
-        gap = float(np.linalg.norm(ends[0] - ends[1]))
+        gap = float(np.linalg.norm(ends[0][:, None] - ends[1], axis=-1).min())
         if gap < clear:
             names = joint.name.split(" to ") if joint.name else [p.pattern.mark for p in (one, other)]
-            found.append(
-                (_near(f"the seams of {names[0]} and {names[1]}", gap, clear), (joint.part, joint.other))
-            )
+            where = tuple(part for _, parts in joint.sides for part, _ in parts)
+            found.append((_near(f"the seams of {names[0]} and {names[1]}", gap, clear), where))
     found += _on_header(built, clear)
     if not found:
         return built
@@ -135,6 +175,14 @@ def _seam_end(part: Part, end: str, place: int) -> Array:
     return np.asarray(point @ frame.axes + frame.origin)
 
 
+def _from_line(point: Array, line: Array) -> float:
+    """Distance [mm] of a point (3,) from a straight line between two ends (2, 3)."""
+    start, end = line
+    along = end - start
+    share = float(np.clip((point - start) @ along / (along @ along), 0.0, 1.0))
+    return float(np.linalg.norm(start + share * along - point))
+
+
 def _on_header(built: Built, clear: float) -> list[tuple[str, tuple[int, ...]]]:
     """The seams of what stands on a header, against the header's."""
     found: list[tuple[str, tuple[int, ...]]] = []
@@ -147,11 +195,10 @@ def _on_header(built: Built, clear: float) -> list[tuple[str, tuple[int, ...]]]:
         for n, part in enumerate(built.parts):
             if n in headers or not part.frames or isinstance(part.solid, Patch):
                 continue
-            point = _seam_end(part, "a", 0)
-            start, end = header.solid.seam_line
-            along = end - start
-            share = float(np.clip((point - start) @ along / (along @ along), 0.0, 1.0))
-            gap = float(np.linalg.norm(start + share * along - point))
+            points = [_seam_end(part, "a", place) for place in range(len(part.frames))]
+            # Of a header in parts the one with the opening: its two seams lie nearest.
+            lines = (header.solid.seam_line, header.solid.stop_line)
+            gap = min(_from_line(point, line) for point in points for line in lines)
             if gap < clear:
                 words = f"the seams of {part.pattern.mark} and {header.pattern.mark}"
                 found.append((_near(words, gap, clear), (n, h)))

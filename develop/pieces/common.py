@@ -15,11 +15,12 @@ from develop.pieces.field_types import (
     Length,
 )
 from develop.pieces.fields import Piece, about
+from develop.pieces.part_types import MADE_IN, STOCK
 from develop.pieces.rule_types import EDGE, NEUTRAL, SEAM_RULE
 from develop.pieces.wording import edges_words, lining_words, sizes_words, wall_words
 
 if TYPE_CHECKING:
-    from develop.pieces.assemble import Wording
+    from develop.pieces.assemble import Share, Wording
     from develop.pieces.cutting import Cutting
     from develop.pieces.fitted import Fit
     from develop.pieces.neutral import Neutral
@@ -173,6 +174,16 @@ class Plate(Marked):
         default=0.0,
         metadata=about(_SMALL, "added to the girth for what the welds of its seams draw in", own=False),
     )
+    made_in: int | str = field(
+        default=1,
+        metadata=about(
+            MADE_IN, "in how many parts, divided along its lines; fit: as few as go into the stock", own=False
+        ),
+    )
+    stock: tuple[float, float] = field(
+        default=(2500.0, 1250.0),
+        metadata=about(STOCK, "size of the sheets in the rack, which the parts go into for fit", own=False),
+    )
     templates: str = field(
         default="none",
         metadata=about(
@@ -258,11 +269,14 @@ class Plate(Marked):
 
         return self.thickness * (self.neutral(around).place - PLACES[self.sizes])
 
-    def cutting(self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str) -> Cutting:
-        """What is cut beyond the net line of a sheet; see `cutting_of`."""
+    def cutting(
+        self, sheet: Sheet, *, joints: str = "", alone: str = "", units: str, share: Share | None = None
+    ) -> Cutting:
+        """What is cut beyond the net line of a sheet; see `cutting_of`. share: of a sheet that is a part."""
         from develop.pieces.cutting import cutting_of
 
-        return cutting_of(self, sheet, joints=joints, alone=alone, units=units)
+        parts = 1 if share is None else share.parts
+        return cutting_of(self, sheet, joints=joints, alone=alone, units=units, pieces_round=parts)
 
     def wording(
         self,

@@ -16,10 +16,13 @@ from develop.sections.text import SectionSpec
 from develop.units import number_text
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.sections.section import Section
     from develop.solid import Rim
     from develop.surfaces.band import Band
+    from develop.surfaces.sheet import Sheet
     from develop.surfaces.trim import Plane
 
 __all__ = ["Cone"]
@@ -186,35 +189,40 @@ class Cone(Tapered):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
         from develop.pieces.cuts import band_solid
+        from develop.pieces.parting import parted
 
         surface = self.surface()
         section = surface.rim_a.section
         seam = seam_parameter(section, surface.lengths, self.seam_at)
         sheet = surface.sheet(seam)
-        pattern = pattern_of(
-            sheet,
-            section,
-            None if surface.cut_b or not surface.rim_b.section.girth else surface.rim_b.section,
-            wording=self.wording(
-                sheet,
-                (self.section,),
-                sizes=f"{section_words(self.section, units)}, cone, height to the apex "
-                f"{size_words(self.height, units)}",
-                place=f"{self._apex_words(units)}, {self._cut_words(units)}",
-                held="heights",
-                units=units,
-                around=surface,
-                level=self.level_words(surface),
-                fits=self.fits,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            cutting=self.cautioned(self.cutting(sheet, joints=self.collared, units=units), surface),
-        )
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            cutting = self.cutting(flat, joints=self.collared, units=units, share=share)
+            return pattern_of(
+                flat,
+                section,
+                None if surface.cut_b or not surface.rim_b.section.girth else surface.rim_b.section,
+                wording=self.wording(
+                    flat,
+                    (self.section,),
+                    sizes=f"{section_words(self.section, units)}, cone, height to the apex "
+                    f"{size_words(self.height, units)}",
+                    place=f"{self._apex_words(units)}, {self._cut_words(units)}",
+                    held="heights",
+                    units=units,
+                    around=surface,
+                    level=self.level_words(surface),
+                    fits=self.fits,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                cutting=self.cautioned(cutting, surface),
+                share=share,
+            )
+
         return self.with_collars(
-            one(pattern, band_solid(surface, sheet, seam)),
+            parted(self, sheet, band_solid(surface, sheet, seam), drawn, units=units),
             surface,
             specs={"a": self.section},
             seam=seam,

@@ -13,7 +13,7 @@ from develop.pieces.wording import direction_words, section_words, size_words
 from develop.units import number_text
 
 if TYPE_CHECKING:
-    from develop.pieces.built import Built, Joint, Part
+    from develop.pieces.built import Built, Part
     from develop.pieces.cutting import Cutting
     from develop.sections.section import Section
     from develop.sections.text import SectionSpec
@@ -181,7 +181,7 @@ class Tapered(Fitted):
 
         specs: the sections of its ends as they were given. seam, seam_b: parameters of the seam on both ends.
         """
-        from develop.pieces.built import Built, Joint
+        from develop.pieces.built import Joint
 
         parts, joints = list(built.parts), list(built.joints)
         for end, rim, at in (("a", band.rim_a, seam), ("b", band.rim_b, seam_b)):
@@ -189,10 +189,15 @@ class Tapered(Fitted):
                 continue
             parts.append(self._collar(end, rim, at, specs.get(end), units))
             mine, theirs = ("b", "a") if end == "a" else ("a", "b")
-            joint: Joint = Joint(len(parts) - 1, mine, 0, theirs, name=f"collar {end} to side")
+            (part, place), *also = built.copies(0)
+            joint = Joint(
+                len(parts) - 1, mine, part, theirs, 0, place, f"collar {end} to side", other_also=tuple(also)
+            )
             joints.append(joint)
-        order = range(len(parts)) if "a" not in self.collared else (1, 0, *range(2, len(parts)))
-        return Built(tuple(parts), tuple(joints), built.warned, built.both_hands, tuple(order))
+        own = tuple(range(len(built.parts)))
+        further = tuple(range(len(own), len(parts)))
+        order = (*further[:1], *own, *further[1:]) if "a" in self.collared else (*own, *further)
+        return replace(built, parts=tuple(parts), joints=tuple(joints), order=order)
 
     def _collar(self, end: str, rim: Rim, seam: float, spec: SectionSpec | None, units: str) -> Part:
         """The collar of an end: a cylinder on its rim, square to its plane, seamed opposite the side."""

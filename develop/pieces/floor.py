@@ -32,15 +32,15 @@ class FloorEnd:
     """One end as it is drawn.
 
     name: `A` or `B`, or both where they are one. section: on the surface of the given sizes. into: (2, 2)
-    from the section's plane to the drawing. at: its centre there (2,) [mm]. seam: parameter of the
-    section, None where no seam ends. turn: of the section's own axes in the piece [rad].
+    from the section's plane to the drawing. at: its centre there (2,) [mm]. seams: words of the seams that
+    end there, and the section's parameters. turn: of the section's own axes in the piece [rad].
     """
 
     name: str
     section: Section
     into: Array
     at: Array
-    seam: float | None
+    seams: tuple[tuple[str, float], ...]
     turn: float = 0.0
 
 
@@ -104,18 +104,18 @@ def _placed(section: Section, end: FloorEnd) -> End:
 
 
 def _marks(end: FloorEnd, section: Section, *, outward: bool) -> list[WitnessMark]:
-    """Right, top, left, bottom and the seam, running lengths from the start of the outline."""
+    """Right, top, left, bottom and the seams, running lengths from the start of the outline."""
     wanted = [direction - end.turn for direction, _ in DIRECTIONS]
     u = section.at_direction(np.array(wanted))
     words = [word for _, word in DIRECTIONS]
     start = float(section.breaks[0])
-    if end.seam is not None:
-        apart = np.abs((u - end.seam + 0.5 * section.period) % section.period - 0.5 * section.period)
+    for seam, where in end.seams:
+        apart = np.abs((u - where + 0.5 * section.period) % section.period - 0.5 * section.period)
         nearest = int(np.argmin(apart))
         if apart[nearest] < _NEAR * section.period:
-            words[nearest] += "/SEAM"
+            words[nearest] += f"/{seam}"
         else:
-            u, words = np.append(u, end.seam), [*words, "SEAM"]
+            u, words = np.append(u, where), [*words, seam]
     at = section.walk(u)
     points = np.stack([at.x, at.y], axis=-1) @ end.into.T + end.at
     along = np.stack([-at.ey, at.ex], axis=-1) @ end.into.T

@@ -54,7 +54,8 @@ def forming_of(
     """Where a rolled pattern is tightest; None where it is flat all over.
 
     thickness [mm]. neutral_line: of the developed sheet, 0 inside to 1 outside. known: the material.
-    An end that is a point is left out: there every radius runs out.
+    An end that is a point is left out: there every radius runs out. Of a part of a side its own stretch
+    alone is looked at.
     """
     radius = pattern.rulings.radius
     ends = "ab" if pattern.net.curve("b") is not None else "a"
@@ -64,14 +65,17 @@ def forming_of(
     step = np.maximum(*(np.hypot(*np.diff(end, axis=0).T) for end in (pattern.rulings.a, pattern.rulings.b)))
     flat = np.asarray((pattern.rulings.turn[1:] < _STILL) & (step > _ROUNDING))
     # A line with flat sheet on both its sides is not bent, whatever the radius beyond.
-    bent = ~(np.append(flat, flat[0]) & np.append(flat[-1], flat))
+    # What lies beyond a part's first and last lines is its neighbours' to say.
+    once_round = solid.stop is None
+    after, before = (flat[0], flat[-1]) if once_round else (True, True)
+    bent = ~(np.append(flat, after) & np.append(before, flat))
     least = float(np.min(radius[bent], initial=_FLAT))
     if least >= _FLAT:
         return None
     tight = (radius <= least + _AS_TIGHT * abs(least) + _ROUNDING) & bent[:, None]
     at = "".join(end for k, end in enumerate(ends) if tight[:, k].any())
     lines: Mask = np.asarray(tight.any(axis=1))
-    which = _tightest(radius.min(axis=1), lines, flat)
+    which = _tightest(radius.min(axis=1), lines, flat, once_round=once_round)
     middle = least + thickness * (0.5 - neutral_line)
     inside = max(0.0, least - thickness * neutral_line)
     pressed = any(line.press for line in pattern.lines)
@@ -91,13 +95,19 @@ def forming_of(
     )
 
 
-def _tightest(radius: Array, lines: Mask, flat: Mask) -> Indices:
+def _tightest(radius: Array, lines: Mask, flat: Mask, *, once_round: bool) -> Indices:
     """Numbers of the tightest line of each run of tight ones, the middle one where they are all the same;
-    none where one run goes all round.
+    none where one run goes all round, or over a whole part.
 
-    radius, lines: of n lines, the first and the last of which are the two sides of the seam, and so one.
-    flat: whether the sheet is flat between each and the next (n - 1,); there a run ends.
+    radius, lines: of n lines, the first and the last of which are the two sides of the seam, and so one where
+    they go once round. flat: whether the sheet is flat between each and the next (n - 1,); there a run ends.
     """
+    if not once_round:
+        if lines.all() and not flat.any():
+            return np.zeros(0, dtype=int)
+        # As if a line that is not tight lay between the last and the first.
+        radius, lines = np.append(radius, [np.inf, np.inf]), np.append(lines, [False, False])
+        flat = np.append(flat, [False, False])
     count = len(lines) - 1
     tight = lines[:-1] | (np.arange(count) == 0) & lines[-1]
     on = tight & np.roll(tight, -1) & ~flat

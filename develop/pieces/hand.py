@@ -59,7 +59,9 @@ def builds_of(piece: Piece, *, units: str = "mm") -> tuple[Built, ...]:
     if not count:
         return (built,)
     other = opposite(piece, quantity=count)
-    if _alike(built.patterns, other.build(units=units).patterns):
+    # Templates and outlines come after what is cut, and add nothing to tell hands apart by.
+    theirs = other.build(units=units).patterns
+    if _alike(built.patterns[: len(theirs)], theirs):
         return (_both(piece, count, units),)
     seam = _seam(piece, built)
     if seam is not None:
@@ -146,16 +148,16 @@ def _both(piece: Piece, count: int, units: str) -> Built:
 
 
 def _seam(piece: Piece, built: Built) -> float | None:
-    """Direction [rad] of the seam of a single rolled part that chose it itself.
+    """Direction [rad] of the seam of a single rolled side that chose it itself.
 
     Of two places that are equally short the one to the right is taken: mirrored, that is the left one.
     """
     from develop.solid import Solid
 
-    solid = built.parts[0].solid
+    (solid, _), *others = built.wholes
     if getattr(piece, "seam_at", None) != "shortest" or not isinstance(solid, Solid):
         return None
-    if sum(isinstance(part.solid, Solid) for part in built.parts) > 1:
+    if any(isinstance(other, Solid) for other, _ in others):
         return None
     import numpy as np
 

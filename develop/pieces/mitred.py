@@ -14,17 +14,20 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from develop.pieces.assemble import pattern_of
-from develop.pieces.built import Built, Joint, Part
+from develop.pieces.built import Built, Divided, Joint, Part
 from develop.pieces.cut_types import Cut
 from develop.pieces.cuts import cylinder_solid, end_of, trim
 from develop.pieces.joint_edge import JointEdge, trims_of, with_bevels
+from develop.pieces.parting import parted
 from develop.solid import Frame, MitredEnd, TouchingEnd
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Plane
 
 if TYPE_CHECKING:
-    from develop.pieces.assemble import Wording
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share, Wording
+    from develop.pieces.common import Plate
     from develop.pieces.cutting import Cutting
     from develop.sections.section import Section
     from develop.surfaces.sheet import Sheet
@@ -110,14 +113,17 @@ def built_of(
     wording: Callable[[Sheet, tuple[int, ...]], Wording],
     divisions: int,
     name: str,
-    cutting: Callable[[Sheet, str], Cutting],
+    cutting: Callable[[Sheet, str, Share | None], Cutting],
     edge: JointEdge,
+    plate: Plate,
+    units: str,
 ) -> Built:
     """The piece of these legs; those alike, seam and all, are one pattern that is used several times.
 
     seams: the direction of each leg's seam [rad]. wording: of the pattern of a sheet that serves the legs
     of these numbers, counted from 1. name: what a leg is called, such as `gore`. cutting: what is cut beyond
-    the net line of a leg, whose ends of these letters meet its neighbours. edge: how those are made.
+    the net line of a leg, or of a part of one, whose ends of these letters meet its neighbours. edge: how
+    those are made. plate: the piece, which says in how many parts each leg is made. Raises Refusal.
     """
     groups: dict[tuple[float, ...], list[int]] = {}
     for i, (leg, seam) in enumerate(zip(legs, seams, strict=True)):
@@ -125,33 +131,50 @@ def built_of(
         told = round(seam % tau, 9) % round(tau, 9)
         groups.setdefault((*leg.shape, told), []).append(i)
     parts: list[Part] = []
-    place_of: dict[int, tuple[int, int]] = {}
-    for number, members in enumerate(groups.values()):
+    found: list[Joint] = []
+    divided: list[Divided] = []
+    parts_of: dict[int, tuple[tuple[int, int], ...]] = {}
+    for members in groups.values():
         surface, section = legs[members[0]].surface, legs[members[0]].surface.section
         seam = float(section.at_direction(np.array([seams[members[0]]]))[0])
-        sheet = surface.sheet(seam)
         joined = ("a" if members[0] else "") + ("b" if members[0] < len(legs) - 1 else "")
-        pattern = pattern_of(
-            sheet,
-            section,
-            section,
-            wording=wording(sheet, tuple(i + 1 for i in members)),
-            divisions=divisions,
-            distance=surface.distance,
-            cutting=cutting(sheet, joined),
-        )
-        frames = tuple(legs[i].frame for i in members)
-        solid = cylinder_solid(surface, seam)
-        pattern = with_bevels(pattern, edge, {end: _bevelled(surface, end) for end in joined}, plates=2)
-        parts.append(Part(pattern, solid, frames))
-        place_of |= {i: (number, place) for place, i in enumerate(members)}
+
+        def drawn(
+            flat: Sheet,
+            share: Share | None,
+            surface: Cylinder = surface,
+            numbers: tuple[int, ...] = tuple(i + 1 for i in members),
+            joined: str = joined,
+        ) -> Pattern:
+            pattern = pattern_of(
+                flat,
+                surface.section,
+                surface.section,
+                wording=wording(flat, numbers),
+                divisions=divisions,
+                distance=surface.distance,
+                cutting=cutting(flat, joined, share),
+                share=share,
+            )
+            return with_bevels(pattern, edge, {end: _bevelled(surface, end) for end in joined}, plates=2)
+
+        made = parted(plate, surface.sheet(seam), cylinder_solid(surface, seam), drawn, units=units)
+        made = made.placed_at([legs[i].frame for i in members], first=len(parts))
+        parts_of |= {i: made.copies(place, first=len(parts)) for place, i in enumerate(members)}
+        parts += made.parts
+        found += made.joints
+        divided += made.divided
     joints = []
     for i in range(len(legs) - 1):
-        (part, place), (other, other_place) = place_of[i], place_of[i + 1]
+        (part, place), *also = parts_of[i]
+        (other, other_place), *other_also = parts_of[i + 1]
         joints.append(
-            Joint(part, "b", other, "a", place, other_place, name=f"{name} {i + 1} to {name} {i + 2}")
-        )
-    return Built(tuple(parts), tuple(joints))
+            Joint(
+                part, "b", other, "a", place, other_place, f"{name} {i + 1} to {name} {i + 2}",
+                tuple(also), tuple(other_also),
+            )
+        )  # fmt: skip
+    return Built(tuple(parts), (*joints, *found), divided=tuple(divided))
 
 
 def _bevelled(surface: Cylinder, end: str) -> TouchingEnd:

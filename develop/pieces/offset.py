@@ -149,8 +149,10 @@ class Offset(Jointed):
             self._seams(section),
             wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
-            cutting=lambda sheet, joints: self.cutting(sheet, joints=joints, units=units),
+            cutting=lambda sheet, joints, share: self.cutting(sheet, joints=joints, units=units, share=share),
             edge=joint_edge(self),
+            plate=self,
+            units=units,
             name="leg",
         )
         return seam_warnings(built, clear=self.clear)

@@ -58,12 +58,15 @@ class PressLines:
         way = "towards you: this face is the inside" if mirror else "away from you: this face is the outside"
         return f"{count}, bent {bent}", f"bend {way}"
 
-    def figures(self, *, mirror: bool) -> Figures:
-        """Angles, and where the lines stop short of the edges; numbered as the lines to mark out."""
+    def figures(self, *, mirror: bool, first: int = 1) -> Figures:
+        """Angles, and where the lines stop short of the edges; numbered from `first` as the lines to mark
+        out."""
         step = -1 if mirror else 1
         rows = tuple(
             (str(n), f"{degrees(angle):.1f}", float(a), float(b))
-            for n, (angle, (a, b)) in enumerate(zip(self.angle[::step], self.short[::step], strict=True), 1)
+            for n, (angle, (a, b)) in enumerate(
+                zip(self.angle[::step], self.short[::step], strict=True), first
+            )
         )
         heads = (("line", "no."), ("bent by", "degrees"), ("stops short", "of A"), ("stops short", "of B"))
         return Figures("Press lines", heads, rows)

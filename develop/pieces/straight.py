@@ -14,9 +14,12 @@ from develop.pieces.wording import cut_words, section_words, size_words
 from develop.sections.text import SectionSpec
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.surfaces.band import Band
-    from develop.surfaces.cylinder import Cylinder, CylinderSheet
+    from develop.surfaces.cylinder import Cylinder
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Straight"]
 
@@ -71,9 +74,8 @@ class Straight(Fitted):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal where a cut runs past the other end."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
         from develop.pieces.cuts import band_solid, cylinder_solid
-        from develop.surfaces.band import BandSheet
+        from develop.pieces.parting import parted
         from develop.surfaces.cylinder import Cylinder
 
         surface = self.surface()
@@ -82,27 +84,30 @@ class Straight(Fitted):
         else:
             section, other = surface.rim_a.section, surface.rim_b.section
         seam = seam_parameter(section, surface.lengths, self.seam_at)
-        flat: CylinderSheet | BandSheet = surface.sheet(seam)
         a, b = cut_words(self.cut_a), cut_words(self.cut_b)
-        pattern = pattern_of(
-            flat,
-            section,
-            other,
-            wording=self.wording(
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            return pattern_of(
                 flat,
-                (self.section,),
-                sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
-                place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
-                held="length and cuts" if not a == b == "square" else "length",
-                units=units,
-                around=section if isinstance(surface, Cylinder) else surface,
-                fits=self.fits,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            cutting=self.cutting(flat, units=units),
-        )
+                section,
+                other,
+                wording=self.wording(
+                    flat,
+                    (self.section,),
+                    sizes=f"{section_words(self.section, units)}, length {size_words(self.length, units)}",
+                    place="both ends square" if a == b == "square" else f"END A {a}, END B {b}",
+                    held="length and cuts" if not a == b == "square" else "length",
+                    units=units,
+                    around=section if isinstance(surface, Cylinder) else surface,
+                    fits=self.fits,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                cutting=self.cutting(flat, units=units, share=share),
+                share=share,
+            )
+
         if isinstance(surface, Cylinder):
-            return one(pattern, cylinder_solid(surface, seam))
-        assert isinstance(flat, BandSheet)
-        return one(pattern, band_solid(surface, flat, seam))
+            return parted(self, surface.sheet(seam), cylinder_solid(surface, seam), drawn, units=units)
+        sheet = surface.sheet(seam)
+        return parted(self, sheet, band_solid(surface, sheet, seam), drawn, units=units)

@@ -15,18 +15,18 @@ from develop.surfaces.edges import edges
 
 if TYPE_CHECKING:
     from develop.surfaces.cylinder import Cylinder
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["lap_flange"]
 
 _FINE = 1e-6  # [mm]
 
 
-def lap_flange(surface: Cylinder, seam: float, *, lap: float, thickness: float) -> Allowance:
+def lap_flange(surface: Cylinder, sheet: Sheet, *, lap: float, thickness: float) -> Allowance:
     """The flange at end A, `lap` wide, in tabs of equal length along the joint; all [mm].
 
-    Raises Refusal where the flange would fold over itself.
+    sheet: the branch laid flat, or a part of it. Raises Refusal where the flange would fold over itself.
     """
-    sheet = surface.sheet(seam)
     curve = Curve(edges(sheet, tolerance=_FINE)[0], sheet.edge_a)
     most = room(curve)
     if lap >= most:

@@ -91,38 +91,44 @@ def _leaving(controls: Array) -> Array:
 
 
 def closed_figures(
-    pattern: Pattern, solid: Solid, wall: Wall, *, tape: float, tolerance: float, ends: str
+    patterns: Sequence[Pattern], solid: Solid, wall: Wall, *, tape: float, tolerance: float, ends: str
 ) -> Figures:
     """What a tape should read on the piece after it is closed; tape: its thickness, tolerance [mm].
 
-    ends: those that are measured, of `a` and `b`.
+    patterns: of a side made in parts those of all its parts, one for each place round the whole solid, else
+    the one. ends: those that are measured, of `a` and `b`.
     """
     rows: list[tuple[str, float]] = []
     for name in ends:
         end = f"END {name.upper()}"
         rows.append(
-            (f"{end}: outside girth, by tape", girth_outside(pattern, solid, wall, end=name, tape=tape))
+            (f"{end}: outside girth, by tape", girth_outside(patterns, solid, wall, end=name, tape=tape))
         )
         sizes = _sizes(solid, name, [distance for _, distance in wall.faces])
         for (face, _), (width, height) in zip(wall.faces, sizes, strict=False):
             where = f" {face}" if face else ""
             rows += [(f"{end}: width{where}", width), (f"{end}: height{where}", height)]
     square = ", square to the axis" if solid.side == "parallel" else ""
-    return _table(f"To check by tape after closing{square}; tape {tape:g} mm thick", rows, tolerance)
+    parts = f" all {len(patterns)} parts" if len(patterns) > 1 else ""
+    return _table(f"To check by tape after closing{parts}{square}; tape {tape:g} mm thick", rows, tolerance)
 
 
-def girth_outside(pattern: Pattern, solid: Solid, wall: Wall, *, end: str, tape: float) -> float:
+def girth_outside(patterns: Sequence[Pattern], solid: Solid, wall: Wall, *, end: str, tape: float) -> float:
     """What a tape of a thickness [mm] laid round the outside at an end, `a` or `b`, reads [mm].
 
     It reads along its middle, half its thickness outside the wall. On parallel sides, square to the
     axis: girth + 2π d (Steiner). On tapered ones along the edge, which is square to the plate: the
-    developed edge, each step of it longer by d times the turn there, square to the roll lines.
+    developed edge, each step of it longer by d times the turn there, square to the roll lines. patterns: all
+    that lie round the side.
     """
     if solid.side == "parallel":
         return solid.end_a.section.girth + 2.0 * pi * (wall.outside + 0.5 * tape)
-    curve = pattern.net.curve(end)
-    assert curve is not None
-    return curve.length + _grown(pattern.rulings, end, wall.outside + 0.5 * tape - wall.sheet)
+    total = 0.0
+    for pattern in patterns:
+        curve = pattern.net.curve(end)
+        assert curve is not None
+        total += curve.length + _grown(pattern.rulings, end, wall.outside + 0.5 * tape - wall.sheet)
+    return total
 
 
 def _grown(rulings: Rulings, end: str, by: float) -> float:
@@ -172,7 +178,9 @@ def ends_of(pattern: Pattern, solid: Solid) -> str:
     """The ends of a side that can be measured: no points, and no joints with another duct."""
     found = ""
     for name, end in (("a", solid.end_a), ("b", solid.end_b)):
-        if pattern.net.curve(name) is not None and type(end) is End:
+        # In thick plate the sheet has an edge at a point too, but no section to be measured.
+        cut = name == "b" and solid.cut_b is not None
+        if pattern.net.curve(name) is not None and type(end) is End and (cut or end.section.girth):
             found += name
     return found
 

@@ -23,10 +23,13 @@ _CLEAR = 1e-3
 _HALVINGS = 50
 
 if TYPE_CHECKING:
+    from develop.pattern.pattern import Pattern
+    from develop.pieces.assemble import Share
     from develop.pieces.built import Built
     from develop.sections.section import Section
     from develop.solid import Rim
     from develop.surfaces.band import Band
+    from develop.surfaces.sheet import Sheet
 
 __all__ = ["Transition"]
 
@@ -191,9 +194,9 @@ class Transition(Tapered):
     def build(self, *, units: str = "mm") -> Built:
         """Raises Refusal."""
         from develop.pieces.assemble import pattern_of, seam_parameter
-        from develop.pieces.built import one
         from develop.pieces.chord import with_chords
         from develop.pieces.cuts import band_solid
+        from develop.pieces.parting import parted
         from develop.pieces.press import Press
 
         surface = self.surface()
@@ -207,30 +210,37 @@ class Transition(Tapered):
         place.append(shift_words(right, up, units))
         if self.rotate and self.end_b.width != self.end_b.height:  # a round end looks the same turned
             place.append(f"rotated {number_text(round(degrees(self.rotate), 6))}°")
-        pattern = pattern_of(
-            sheet,
-            a.section,
-            b.section,
-            wording=self.wording(
-                sheet,
-                (self.end_a, self.end_b),
-                sizes=f"END A {section_words(self.end_a, units)} to END B {section_words(self.end_b, units)}",
-                place=", ".join([*place, *self._tilt_words()]),
-                held="length",
-                units=units,
-                around=surface,
-                level=self.level_words(surface),
-                fits=self.fits,
-            ),
-            divisions=self.divisions,
-            distance=surface.distance,
-            turn_b=self.rotate,
-            cutting=self.cautioned(self.cutting(sheet, joints=self.collared, units=units), surface),
-            press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
-        )
-        built = one(with_chords(pattern, self.swing), band_solid(surface, sheet, seam))
+
+        def drawn(flat: Sheet, share: Share | None) -> Pattern:
+            cutting = self.cutting(flat, joints=self.collared, units=units, share=share)
+            pattern = pattern_of(
+                flat,
+                a.section,
+                b.section,
+                wording=self.wording(
+                    flat,
+                    (self.end_a, self.end_b),
+                    sizes=f"END A {section_words(self.end_a, units)} to END B "
+                    f"{section_words(self.end_b, units)}",
+                    place=", ".join([*place, *self._tilt_words()]),
+                    held="length",
+                    units=units,
+                    around=surface,
+                    level=self.level_words(surface),
+                    fits=self.fits,
+                ),
+                divisions=self.divisions,
+                distance=surface.distance,
+                turn_b=self.rotate,
+                cutting=self.cautioned(cutting, surface),
+                press=Press(self.kicks, self.die, self.thickness) if self.kicks else None,
+                share=share,
+            )
+            return with_chords(pattern, self.swing)
+
+        solid = band_solid(surface, sheet, seam)
         return self.with_collars(
-            built,
+            parted(self, sheet, solid, drawn, units=units, opposite=True),
             surface,
             specs={"a": self.end_a, "b": self.end_b},
             seam=seam,

@@ -19,6 +19,7 @@ _NEAR_ENOUGH = 1e-9  # [mm²]
 _MOST_STEPS = 1 << 21
 _LOOSE = 1e-15
 _ROUNDS = 30
+_SAME = 1e-9  # [rad]
 
 
 def _on_panels(support: Callable[[Array], Array], ends: Array) -> float:
@@ -81,6 +82,53 @@ class End:
             self.origin + np.stack(self.section.touch(flat[:, 0], flat[:, 1]), axis=-1) @ self.spans.T
         )
 
+    @property
+    def _into(self) -> Array:
+        """The spans by axes of their own plane (2, 2): rows are the images of the section's x and y."""
+        first = self.spans[:, 0] / np.linalg.norm(self.spans[:, 0])
+        second = self.spans[:, 1] - first * (first @ self.spans[:, 1])
+        second = second / np.linalg.norm(second)
+        return np.asarray(self.spans.T @ np.stack([first, second], axis=1))
+
+    def stretch(self, start: float, stop: float) -> float:
+        """Length [mm] of the curve between parameters start and stop, anticlockwise; less than once round.
+
+        From the support h: ∫ h dφ between the normals of its ends, plus by how much farther the last point
+        lies along its tangent than the first: as ds = (h + h″) dφ with h′ the place along the tangent,
+        Cauchy's formula for an open stretch.
+        """
+        if stop <= start:
+            return 0.0
+        into = self._into
+        at = self.section.walk(np.array([start, stop]))
+        # Tangents go with the map; normals stand square to them.
+        tangent = np.stack([-at.ey, at.ex], axis=-1) @ into
+        tangent = tangent / np.linalg.norm(tangent, axis=1)[:, None]
+        points = np.stack([at.x, at.y], axis=-1) @ into
+        along = (points * tangent).sum(axis=1)
+        first, last = np.arctan2(-tangent[:, 0], tangent[:, 1])
+        turn = float(last - first) % (2.0 * np.pi)
+        # Two places on one straight side have the same normal, but for rounding.
+        if turn > 2.0 * np.pi - _SAME:
+            turn = 0.0
+        if turn < _SAME:
+            return float(along[1] - along[0])
+        kinks = self.section.kinks
+        back = (
+            np.linalg.solve(into, np.stack([np.cos(kinks), np.sin(kinks)]))
+            if len(kinks)
+            else np.zeros((2, 0))
+        )
+        past = np.sort((np.arctan2(back[1], back[0]) - first) % (2.0 * np.pi))
+        past = past[(past > _SAME) & (past < turn - _SAME)]
+
+        def support(angle: Array) -> Array:
+            n = np.asarray(np.stack([np.cos(angle), np.sin(angle)], axis=-1) @ into.T)
+            return self.section.support(n[..., 0], n[..., 1])
+
+        swept = _on_panels(support, first + np.concatenate([[0.0], past, [turn]]))
+        return swept + float(along[1] - along[0])
+
     @cached_property
     def girth(self) -> float:
         """Length of the curve [mm] by Cauchy's formula: the integral of the support over all
@@ -89,10 +137,7 @@ class End:
         It shares nothing with the arc lengths of the sections. A smooth support is summed by the
         trapezoidal rule, doubled until it stands still; one with kinks on panels between them.
         """
-        first = self.spans[:, 0] / np.linalg.norm(self.spans[:, 0])
-        second = self.spans[:, 1] - first * (first @ self.spans[:, 1])
-        second = second / np.linalg.norm(second)
-        into = self.spans.T @ np.stack([first, second], axis=1)
+        into = self._into
 
         def support(angle: Array) -> Array:
             n = np.asarray(np.stack([np.cos(angle), np.sin(angle)], axis=-1) @ into.T)

@@ -68,7 +68,8 @@ def level_girth(solid: Solid, *, end_b: bool) -> float:
     A plane with the outward unit normal N that touches the given side at the distance S from the
     origin touches the sheet at S + d, and in a plane through o, where N's part has the length cos ψ,
     the support about o is H = (S + d − N·o) / cos ψ. Where the plane is that of the end's own section,
-    that is h + d / cos ψ.
+    that is h + d / cos ψ. Of a part it is an open stretch, so that the places of its ends along their
+    tangents are added, as for `End.stretch`.
     """
     plane = solid.planes[int(end_b)]
     assert plane is not None
@@ -87,7 +88,16 @@ def level_girth(solid: Solid, *, end_b: bool) -> float:
             turn = mine.section.walk(u.ravel()).dphi.reshape(u.shape)
         return np.asarray(((reach / cos_psi).reshape(u.shape) * turn)[..., None])
 
-    return float(_summed(solid, (mine, yours), rates)[0])
+    length = float(_summed(solid, (mine, yours), rates)[0])
+    if solid.stop is None:
+        return length
+    first, last = (solid.seam_b, solid.stop[1]) if mine is solid.end_b else (solid.seam, solid.stop[0])
+    assert first is not None
+    flat = solid.touching(mine, yours, np.array([first, last])) @ plane.axes[:2].T
+    tangent = np.stack([-flat[:, 1], flat[:, 0]], axis=-1) / np.hypot(*flat.T)[:, None]
+    ends = np.stack([line[int(end_b)] for line in (solid.sheet_seam, solid.sheet_stop)])
+    along = (((ends - plane.origin) @ plane.axes[:2].T) * tangent).sum(axis=1)
+    return length + float(along[1] - along[0])
 
 
 def level_area(solid: Solid) -> float:
@@ -120,7 +130,10 @@ def level_area(solid: Solid) -> float:
 def _summed(solid: Solid, ends: tuple[End, End], rates: object) -> Array:
     """Integrals of rates round an end, on panels that resolve them."""
     assert callable(rates)
-    first = Panels.between(solid.panel_ends(*ends))
+    panel_ends = solid.clipped(solid.panel_ends(*ends), on_b=ends[0] is solid.end_b)
+    if len(panel_ends) < 2:
+        return np.zeros(1)
+    first = Panels.between(panel_ends)
     whole = np.maximum(((WEIGHTS @ rates(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
     def loose(panels: Panels, found: Array) -> Mask:
@@ -141,8 +154,35 @@ def _faces(solid: Solid) -> list[Array]:
 
 
 def _face(solid: Solid, normal: Array) -> float:
-    """Area [mm²] of the sheet over a flat face."""
-    a, b = (contact(end, normal) for end in (solid.end_a, solid.end_b))
+    """Area [mm²] of the sheet over a flat face, or over what a part has of it."""
+    on_a, on_b = (contact(end, normal) for end in (solid.end_a, solid.end_b))
+    if solid.stop is None:
+        return _flat_between(solid, normal, on_a, on_b)
+    assert solid.seam_b is not None
+    periods = solid.end_a.section.period, solid.end_b.section.period
+    starts = solid.seam, solid.seam_b
+    # In turns from the part's start, of both ends the same.
+    past_a, past_b = (
+        float(on.mean() - start) / period
+        for on, start, period in zip((on_a, on_b), starts, periods, strict=True)
+    )
+    turns = np.floor(past_a)
+    turns_b = turns + np.round(past_b - past_a)
+    total = 0.0
+    for turn in (-1.0, 0.0, 1.0):
+        here = (
+            np.clip(on + (turn - back) * period, start, stop)
+            for on, back, period, start, stop in zip(
+                (on_a, on_b), (turns, turns_b), periods, starts, solid.stop, strict=True
+            )
+        )
+        total += _flat_between(solid, normal, *here)
+    return total
+
+
+def _flat_between(solid: Solid, normal: Array, on_a: Array, on_b: Array) -> float:
+    """Area [mm²] of the sheet over a flat face between two lines, through parameters (2,) of both ends."""
+    a, b = solid.end_a.point(on_a), solid.end_b.point(on_b)
     lift = solid.distance * normal
     plane_a, plane_b = solid.planes
     cut = EndPlane.of_cut(*solid.cut_b) if solid.cut_b else None

@@ -41,6 +41,11 @@ class Placed:
         return self._in_piece(self.solid.seam_line)
 
     @property
+    def joint_lines(self) -> Array:
+        """The further lines at which the side is parted (k, 2, 3) [mm]."""
+        return self._in_piece(self.solid.joint_lines)
+
+    @property
     def top_line(self) -> Array:
         """The line (2, 3) [mm] at the top of end A."""
         return self._in_piece(self.solid.top_line)

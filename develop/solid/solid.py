@@ -6,7 +6,7 @@ Nothing here knows how the side is unrolled; it is what the pattern is checked a
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Literal
 
@@ -63,6 +63,9 @@ class Solid:
     openings: where branches meet this side, placed in its frame.
     cut_b: a plane z = height + rise · (x, y) that cuts the side off before end B, as (height, rise).
     level: the sheet's edges lie in the planes of the ends; else the plate is cut square to itself there.
+    stop: of a part of the side, which runs from the seam to the line between these parameters of both
+        ends' sections, each at or beyond the seam's; None for the whole side.
+    joints: of a side made in parts, the lines beside the seam at which it is parted, given likewise.
     """
 
     end_a: End
@@ -74,6 +77,8 @@ class Solid:
     cut_b: tuple[float, Array] | None = None
     openings: tuple[MeetingEnd, ...] = ()
     level: bool = False
+    stop: tuple[float, float] | None = None
+    joints: tuple[tuple[float, float], ...] = ()
 
     @cached_property
     def planes(self) -> tuple[EndPlane | None, EndPlane | None]:
@@ -82,6 +87,21 @@ class Solid:
             return None, None
         far = EndPlane.of_cut(*self.cut_b) if self.cut_b else EndPlane.of(self.end_b)
         return EndPlane.of(self.end_a), far
+
+    def part(self, number: int) -> Solid:
+        """The part of that number, counted from 0 at the seam, of a side made in parts."""
+        start = (self.seam, self._seam_b)
+        lines = (start, *self.joints, self._once_round(start))
+        (seam, seam_b), stop = lines[number], lines[number + 1]
+        return replace(self, seam=seam, seam_b=seam_b, stop=stop, joints=(), openings=())
+
+    @property
+    def _seam_b(self) -> float:
+        assert self.seam_b is not None, "a side made in parts knows both ends of its seam"
+        return self.seam_b
+
+    def _once_round(self, line: tuple[float, float]) -> tuple[float, float]:
+        return line[0] + self.end_a.section.period, line[1] + self.end_b.section.period
 
     def strip(self, u: Array) -> Strip:
         """The side's straight lines through end A at its section's parameter u (n,)."""
@@ -164,7 +184,13 @@ class Solid:
     def girths(self) -> tuple[float, float]:
         """Lengths [mm] of the sheet's two edges, from the ends alone where it lies on them."""
         if self.distance == 0.0 and self.cut_b is None:
-            return self.end_a.girth, self.end_b.girth
+            if self.stop is None:
+                return self.end_a.girth, self.end_b.girth
+            if type(self.end_a) is End and type(self.end_b) is End:
+                return (
+                    self.end_a.stretch(self.seam, self.stop[0]),
+                    self.end_b.stretch(self._seam_b, self.stop[1]),
+                )
         return self.measures.edge_a, self.measures.edge_b
 
     def misses(self, a: Array, b: Array, u: Array) -> float:
@@ -265,7 +291,10 @@ class Solid:
             length = np.linalg.norm(velocity, axis=-1)
             return np.stack([length, 0.5 * np.linalg.norm(np.cross(ruling, velocity), axis=-1)], axis=-1)
 
-        first = Panels.between(self.panel_ends(*ends))
+        panel_ends = self.clipped(self.panel_ends(*ends), on_b=ends[0] is self.end_b)
+        if len(panel_ends) < 2:
+            return 0.0, 0.0
+        first = Panels.between(panel_ends)
         whole = np.maximum(((WEIGHTS @ speeds(first)) * first.half[:, None]).sum(axis=0), _LEAST)
 
         size = float(max(np.abs(end.point(end.section.breaks)).max() for end in ends))
@@ -301,6 +330,19 @@ class Solid:
         """Parameters (n,) of end A's section between which the side is smooth."""
         return self.panel_ends(self.end_a, self.end_b)[:-1]
 
+    def clipped(self, ends: Array, *, on_b: bool) -> Array:
+        """Panel ends (m + 1,) of one turn of an end, carried on round and cut to the stretch that a part has
+        of it, of which only a point may be left (1,); of a whole side as they are."""
+        if self.stop is None:
+            return ends
+        start, stop = (self._seam_b, self.stop[1]) if on_b else (self.seam, self.stop[0])
+        period = float(ends[-1] - ends[0])
+        turns = np.floor((start - ends[0]) / period)
+        round_twice = np.concatenate([ends[:-1], ends + period]) + turns * period
+        near = _SAME * period
+        inner = round_twice[(round_twice > start + near) & (round_twice < stop - near)]
+        return np.concatenate([[start], inner, [stop]]) if stop > start + near else np.array([start])
+
     # ---- for pictures and meshes -----------------------------------------------------------
 
     def around(self, count: int) -> Array:
@@ -334,31 +376,47 @@ class Solid:
         return np.vstack([strip.a, strip.b])
 
     @property
-    def seam_length(self) -> float:
-        """Length of the sheet's seam [mm]."""
-        seam = self.sheet_seam
-        return float(np.linalg.norm(seam[1] - seam[0]))
+    def sheet_seam(self) -> Array:
+        """The sheet's seam (2, 3) [mm], from end A to end B; of a part its left one."""
+        return self._in_sheet(self.seam_line, self.seam)
 
     @property
-    def sheet_seam(self) -> Array:
-        """The sheet's seam (2, 3) [mm], from end A to end B."""
-        seam = self.seam_line
-        along = (seam[1] - seam[0])[None]
-        lift = self.distance * self.strip(np.array([self.seam])).normal
+    def sheet_stop(self) -> Array:
+        """The sheet's line (2, 3) [mm] at which it ends: the seam, or the right one of a part."""
+        return self.sheet_seam if self.stop is None else self._in_sheet(self.stop_line, self.stop[0])
+
+    def _in_sheet(self, line: Array, u: float) -> Array:
+        """What of a line (2, 3) [mm] of the side the sheet reaches over, through end A's parameter u."""
+        along = (line[1] - line[0])[None]
+        lift = self.distance * self.strip(np.array([u])).normal
         return np.vstack(
             [
                 end + lift if plane is None else plane.along(end + lift, along)
-                for end, plane in zip(seam, self.planes, strict=True)
+                for end, plane in zip(line, self.planes, strict=True)
             ]
         )
 
     @property
     def seam_line(self) -> Array:
-        """The seam (2, 3) [mm], from end A to end B."""
-        a = self.end_a.point(np.array([self.seam]))
+        """The seam (2, 3) [mm], from end A to end B; of a part its left one."""
         if self.seam_b is None:
-            return np.vstack([a, self.strip(np.array([self.seam])).b])
-        return np.vstack([a, self._cut(a, self.end_b.point(np.array([self.seam_b])))])
+            return np.vstack([self.end_a.point(np.array([self.seam])), self.strip(np.array([self.seam])).b])
+        return self._line(self.seam, self.seam_b)
+
+    @property
+    def stop_line(self) -> Array:
+        """The line (2, 3) [mm] at which the sheet ends: the seam, or the right one of a part."""
+        return self.seam_line if self.stop is None else self._line(*self.stop)
+
+    @property
+    def joint_lines(self) -> Array:
+        """The lines beside the seam at which the side is parted (k, 2, 3) [mm]."""
+        return np.array([self._line(*joint) for joint in self.joints]).reshape(-1, 2, 3)
+
+    def _line(self, u_a: float, u_b: float) -> Array:
+        """The line (2, 3) [mm] from end A to end B between these parameters of their sections."""
+        a = self.end_a.point(np.array([u_a]))
+        return np.vstack([a, self._cut(a, self.end_b.point(np.array([u_b])))])
 
     @property
     def top_line(self) -> Array:

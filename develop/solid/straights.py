@@ -34,9 +34,12 @@ def _side(end: End, normal: Array) -> Array | None:
 
 
 def contact(end: End, normal: Array) -> Array:
-    """The first and the last point (2, 3) [mm] at which a plane of a normal (3,) touches an end."""
+    """The first and the last parameter (2,) at which a plane of a normal (3,) touches an end."""
     side = _side(end, normal)
-    return end.point(side) if side is not None else np.repeat(end.touch(normal[None]), 2, axis=0)
+    if side is not None:
+        return side
+    flat = normal @ end.spans
+    return np.repeat(end.section.parameter(flat[:1], flat[1:2]), 2)
 
 
 def paired(mine: End, yours: End, u: Array, normal: Array, touched: Array) -> Array:

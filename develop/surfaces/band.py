@@ -555,12 +555,11 @@ class BandSheet:
             length=(high - low) * r.length,
         )
 
-    @cached_property
-    def _spans(self) -> tuple[Array, Array]:
-        """Parameters of both rims at the panels' ends, (m + 1,) each, growing from the seam."""
+    def parameters(self, place: Place) -> tuple[Array, Array]:
         panels, course, band = self._panels, self._course, self.band
-        origin = np.append(panels.origin, panels.origin[-1])
-        mine = np.append(panels.start, panels.end[-1])
+        origin = panels.origin[place.panel]
+        mine = panels.start[place.panel] + panels.half[place.panel] * (place.x + 1.0)
+        mine = np.where(place.x == 1.0, panels.end[place.panel], mine)
         low, high, on_a = course.low[origin], course.high[origin], course.on_a[origin]
         yours = np.empty_like(mine)
         for which, walking_a, r in band._on_course(course, origin, mine):
@@ -569,10 +568,13 @@ class BandSheet:
         share = (mine - course.start[origin]) / (course.end[origin] - course.start[origin])
         yours = np.where(course.facet[origin], low + share * (high - low), yours)
         # Stretches end exactly where the next begins.
-        whole = np.append(panels.start == course.start[panels.origin], False)
-        yours = np.where(whole, low, yours)
-        yours[-1] = high[-1]
+        yours = np.where(mine == course.start[origin], low, np.where(mine == course.end[origin], high, yours))
         return np.where(on_a, mine, yours), np.where(on_a, yours, mine)
+
+    @cached_property
+    def _spans(self) -> tuple[Array, Array]:
+        """Parameters of both rims at the panels' ends, (m + 1,) each, growing from the seam."""
+        return self.parameters(self.ends)
 
     @property
     def seam_b(self) -> float:

@@ -145,6 +145,10 @@ class CylinderSheet:
             length=ends[1][:, 1] - ends[0][:, 1],
         )
 
+    def parameters(self, place: Place) -> tuple[Array, Array]:
+        u = self.panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
+        return u, u
+
     def from_a(self, u: Array) -> Place:
         period = self.cylinder.section.period
         past = (np.asarray(u, dtype=float) - self._seam) % period

@@ -73,6 +73,10 @@ class Sheet(Protocol):
         """The rulings at a place."""
         ...
 
+    def parameters(self, place: Place) -> tuple[Array, Array]:
+        """Parameters (n,) of both ends' sections where rulings meet them, growing from the seam."""
+        ...
+
     def from_a(self, u: Array) -> Place:
         """Where the rulings through the points u (n,) of end A's section lie, from the seam on."""
         ...

@@ -377,7 +377,7 @@ def test_a_job_writes_nothing_unless_every_piece_is_good(run, tmp_path: Path, mo
         done = run("job", "hall.toml", "-o", folder)
         assert done.code == 2
         assert done.out == ""
-        assert [each.partition(";")[0] for each in done.said] == ["hall.toml:7: rotate: cannot be made"]
+        assert [each.partition(";")[0] for each in done.said] == ["hall.toml:6: rotate: cannot be made"]
     assert not (tmp_path / "deep").exists()
     assert [each.read_bytes() for each in (tmp_path / "kept").iterdir()] == [b"older"]
 

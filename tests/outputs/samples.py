@@ -237,3 +237,7 @@ class Frustum:
     def top_line(self) -> Array:
         angle = np.array(math.pi / 2)
         return np.stack([self._at(angle, 0.0), self._at(angle, 1.0)])
+
+    @property
+    def joint_lines(self) -> Array:
+        return np.zeros((0, 2, 3))

@@ -201,6 +201,10 @@ class Moved:
         return self.part.seam_line + self.by
 
     @property
+    def joint_lines(self):
+        return self.part.joint_lines + self.by
+
+    @property
     def top_line(self):
         return self.part.top_line + self.by
 

@@ -13,6 +13,7 @@ from shapely import Polygon
 from develop.checks import check_part
 from develop.errors import InputError
 from develop.job.pipeline import checks_of
+from develop.pattern.pattern import Pattern
 from develop.pieces import kind_of
 from develop.pieces.fields import read_piece
 from develop.solid import MitredEnd
@@ -280,8 +281,12 @@ def test_a_line_that_would_lie_beside_the_header_is_refused() -> None:
 
 @pytest.mark.parametrize("joint", ["set-in", "tap"])
 def test_only_a_branch_that_is_set_on_touches_with_its_edge(joint: str) -> None:
+    def bevels(pattern: Pattern) -> list[str]:
+        # The cuts between a tap's tabs are tabled anyhow.
+        return [each.title for each in pattern.figures if not each.title.startswith("Cuts between the tabs")]
+
     pattern = tee(joint=joint).patterns[0]
-    assert pattern.figures == tee(joint=joint, touching="net").patterns[0].figures == ()
+    assert bevels(pattern) == bevels(tee(joint=joint, touching="net").patterns[0]) == []
     assert [r.length for r in pattern.divisions] == [
         r.length for r in tee(joint=joint, touching="net").patterns[0].divisions
     ]
