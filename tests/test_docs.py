@@ -100,7 +100,9 @@ def test_the_page_of_thickness_tells_the_truth() -> None:
     assert [out for _, _, out in figure("thickness").rows()] == pytest.approx(expected, abs=1e-5)
 
 
-@pytest.mark.parametrize("name", ["accuracy", "allowances", "directions", "demo", "parts", "touching"])
+@pytest.mark.parametrize(
+    "name", ["accuracy", "allowances", "directions", "demo", "pages", "parts", "touching"]
+)
 def test_every_figure_is_made_by_its_script(name: str, tmp_path: Path) -> None:
     file = tmp_path / "figure.png"
     figure(name).plot(file)

@@ -46,7 +46,8 @@ def _make_all(values: Mapping[str, object]) -> int:
     try:
         outputs = outputs_of(values, otherwise=job.outputs)
     except InputError as error:
-        raise InputError([replace(each, field="--dxf-curves") for each in error.problems]) from None
+        names = {each.name: each.option for each in OUTPUT_OPTIONS}
+        raise InputError([replace(each, field=names[each.field]) for each in error.problems]) from None
     if job.name:
         click.echo(f"{job.name}: {len(job.pieces)} piece{'s' if len(job.pieces) != 1 else ''}")
     taken: dict[str, str] = {}

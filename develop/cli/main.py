@@ -21,6 +21,7 @@ __all__ = ["commands", "main", "run"]
 _OTHERS = {
     "job": "every piece of a job file",
     "girth": "girth and area of a section, and the points that divide the girth equally",
+    "printer-test": "a page to print and measure, for a printer that is not true",
     "kinds": "the kinds of piece, their fields, units, defaults, an example that runs",
 }
 # Set to anything, it shows a defect of the program as a traceback.
@@ -49,7 +50,7 @@ class _Commands(click.Group):
         if cmd_name in _OTHERS:
             from importlib import import_module
 
-            module = import_module(f"develop.cli.{cmd_name}")
+            module = import_module(f"develop.cli.{cmd_name.replace('-', '_')}")
             command: click.Command = module.command(_OTHERS[cmd_name])
             return command
         return None

@@ -24,7 +24,16 @@ def piece_command(name: str) -> click.Command:
     """The command of a kind."""
     kind = kind_of(name)
     fields = fields_of(kind)
-    options = {each.name: each.option for each in (*fields, *OUTPUT_FIELDS)}
+    own = {each.name for each in fields}
+    # A kind may have a field of such a name: a marking band is of paper.
+    outputs = [
+        replace(each, name=f"pages_{each.name}") if each.name in own else each for each in OUTPUT_OPTIONS
+    ]
+    names = {each.name: other.name for each, other in zip(OUTPUT_OPTIONS, outputs, strict=True)}
+    options = {each.name: each.option for each in fields}
+    options |= {
+        each.name: f"--{names[each.name].replace('_', '-')}" for each in OUTPUT_FIELDS if each.name not in own
+    }
 
     def action(values: Mapping[str, object]) -> int:
         piece = kind(**{each.name: values[each.name] for each in fields})
@@ -39,7 +48,7 @@ def piece_command(name: str) -> click.Command:
                 piece,
                 folder=str(values["out"]),
                 formats=formats,
-                outputs=outputs_of(values),
+                outputs=outputs_of({name: values[other] for name, other in names.items()}),
                 units=sheet_unit(str(values["units"])),
             )
         except InputError as error:
@@ -55,7 +64,7 @@ def piece_command(name: str) -> click.Command:
             *fields,
             OUT,
             *((RULES_OPTION,) if hasattr(kind, "rules") else ()),
-            *OUTPUT_OPTIONS,
+            *outputs,
             units_option("unit of bare numbers; in and ft give sheets in inches"),
         ],
         text=f"Make the pattern of {KINDS[name][2]}.\n\nLengths take mm, cm, m, in or ft, and fractions: "

@@ -14,6 +14,9 @@ def report(outcome: Outcome, folder: str) -> int:
     wrote = f"{outcome.mark}: wrote {', '.join(outcome.files)} in {folder}"
     if max(outcome.sheets, default=1) > 1:
         wrote += f"; {sum(outcome.sheets)} large sheets in the PDF, to be laid together"
+    if outcome.pages:
+        count = sum(outcome.pages)
+        wrote += f"; {count} tiled page{'s' if count != 1 else ''} of {outcome.paper}"
     for warning in outcome.warnings:
         click.echo(f"{outcome.mark}: warning: {warning}", err=True)
     if outcome.arcs:

@@ -219,6 +219,11 @@ def _job(data: Mapping[str, object], places: Places, problems: list[Problem]) ->
         unit = str(_UNITS.read(given.get("units", "mm"), unit=""))
     except InputError:
         unit = "mm"  # the units are one of the problems then
+    if isinstance(given.get("printer"), str) and given["printer"]:
+        from os.path import dirname, join
+
+        # A path in a job file goes from the folder of that file.
+        given = {**given, "printer": join(dirname(places.file), str(given["printer"]))}
     values, found = read_fields(_JOB, given, unit=unit, where="[job]")
     values = {each.name: each.default for each in _JOB} | values
     try:

@@ -7,25 +7,28 @@ from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from develop.errors import Refusal
-from develop.job.output_fields import FORMATS, Outputs
+from develop.job.output_fields import FORMATS, Outputs, PaperSize, page_setup
 from develop.job.writing import Writing, file_key, write_all
 from develop.pieces.fields import Piece, record_of
 from develop.pieces.hand import OPPOSITE, builds_of
 
 if TYPE_CHECKING:
     from develop.checks import Check, Side
+    from develop.outputs.paper import PageSetup
+    from develop.pattern.pattern import Pattern
     from develop.pieces.built import Built
 
 __all__ = ["Outcome", "checks_of", "checks_of_all", "make"]
 
-_DRAWN = {"svg", "pdf", "dxf"}
+_DRAWN = {"svg", "pdf", "pages", "dxf"}
 
 
 @dataclass(frozen=True)
 class Outcome:
     """What was written for one piece, and what the checks found.
 
-    sheets: how many large sheets each pattern takes in the PDF, if that was written. arcs: how many the
+    sheets: how many large sheets each pattern takes in the PDF, if that was written. pages: how many of
+    paper each takes in the tiled one, and paper and printer's factors in words. arcs: how many the
     DXF files have in all; deviation: of them from the pattern's curves, at most [mm]. warnings: of what is
     no fault of the pattern, but of the piece as it was asked for.
     """
@@ -37,6 +40,8 @@ class Outcome:
     warnings: tuple[str, ...] = ()
     arcs: int = 0
     deviation: float = 0.0
+    pages: tuple[int, ...] = ()
+    paper: str = ""
 
     @property
     def failed(self) -> tuple[Check, ...]:
@@ -79,6 +84,9 @@ def make(
 
             files[f"{piece.mark}.pdf"], sheets = printed(patterns)
             told = replace(told, sheets=sheets)
+        elif each == "pages":
+            told = _pages(piece.mark, patterns, page_setup(outputs, units=units), files, told,
+                          alone=set(formats) == {"pages"})  # fmt: skip
         elif each == "dxf":
             from develop.outputs.dxf import dxf
 
@@ -107,7 +115,32 @@ def make(
     else:
         writing.add(files)
     warnings = tuple(dict.fromkeys(each for built in builds for each in built.warnings))
-    return replace(told, files=tuple(files), warnings=warnings)
+    return replace(told, files=tuple(files), warnings=(*warnings, *told.warnings))
+
+
+def _pages(
+    mark: str,
+    patterns: Sequence[Pattern],
+    setup: PageSetup,
+    files: dict[str, bytes],
+    told: Outcome,
+    *,
+    alone: bool,
+) -> Outcome:
+    """The tiled pages into the files; or a warning that they would be too many, a Refusal if nothing else is
+    asked for."""
+    from develop.outputs.tiled import MOST, written
+
+    paper = PaperSize().text(setup.paper)
+    found = written(patterns, setup, title=mark)
+    if found.data:
+        files[f"{mark}-pages.pdf"] = found.data
+        words = f"{paper}, {setup.factor_words}" if setup.factor_words else paper
+        return replace(told, pages=found.counts, paper=words)
+    given = f"{max(found.counts)} pages of {paper} for one pattern are too many to lay together"
+    if alone:
+        raise Refusal(field="paper", given=given, allowed=f"larger paper, for {MOST} pages at most")
+    return replace(told, warnings=(f"no tiled pages: {given}; give larger paper",))
 
 
 def _take(files: Iterable[str], mark: str, taken: dict[str, str]) -> None:

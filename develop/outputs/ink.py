@@ -10,6 +10,7 @@ import math
 from typing import TYPE_CHECKING
 
 from develop.outputs.fonts import CAPITAL, FACE, width
+from develop.outputs.layers import Layers
 from develop.pattern.curve import Array, Curve
 from develop.pattern.drawing import (
     CUT,
@@ -52,11 +53,20 @@ _DASHES = {NET: (4.0, 1.5)}  # [mm]
 class Ink:
     """One page. window: left, bottom, width and height of the sheet's part on it [mm]; margin round it [mm].
 
-    What lies wholly outside the page is not written at all.
+    What lies wholly outside the page is not written at all, unless it is to be seen `everywhere`: through
+    windows of other pages.
     """
 
-    def __init__(self, canvas: Canvas, window: tuple[float, float, float, float], margin: float) -> None:
+    def __init__(
+        self,
+        canvas: Canvas,
+        window: tuple[float, float, float, float],
+        margin: float,
+        *,
+        everywhere: bool = False,
+    ) -> None:
         self._canvas = canvas
+        self._everywhere = everywhere
         self._left, self._bottom = window[0] - margin, window[1] - margin
         self._right, self._top = window[0] + window[2] + margin, window[1] + window[3] + margin
 
@@ -120,19 +130,26 @@ class Ink:
         return f"{(x - self._left) * POINT:.4f} {(y - self._bottom) * POINT:.4f}"
 
     def _sees(self, x1: float, y1: float, x2: float, y2: float) -> bool:
+        if self._everywhere:
+            return True
         return x1 <= self._right and x2 >= self._left and y1 <= self._top and y2 >= self._bottom
 
 
 class PatternPen:
-    """The pen of the drawing walk on paper; the pattern's (0, 0) lies at (x, y) of the sheet [mm]."""
+    """The pen of the drawing walk on paper; the pattern's (0, 0) lies at (x, y) of the sheet [mm].
 
-    def __init__(self, ink: Ink, x: float, y: float) -> None:
+    Each layer of the drawing is one of `layers`, which the caller closes.
+    """
+
+    def __init__(self, ink: Ink, x: float, y: float, layers: Layers) -> None:
         self._ink = ink
+        self._layers = layers
         self._x, self._y = x, y
         self._layer = CUT
 
     def layer(self, name: str) -> None:
         self._layer = name
+        self._layers.open(name)
         self._ink.pen(_WIDTHS[name], _DASHES.get(name, ()))
 
     def contour(self, outline: Outline) -> None:

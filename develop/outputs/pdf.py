@@ -13,8 +13,9 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from develop.outputs.fonts import FACE, register
+from develop.outputs.document import canvas_of
 from develop.outputs.ink import POINT, Ink, PatternPen
+from develop.outputs.layers import MARKS, NOTES, Layers
 from develop.outputs.pages import count, parted
 from develop.outputs.panel import Panel, panels
 from develop.outputs.tape import MARGIN, paper, tape_pages
@@ -64,16 +65,13 @@ def pdf(patterns: Sequence[Pattern]) -> bytes:
 
 def printed(patterns: Sequence[Pattern]) -> tuple[bytes, tuple[int, ...]]:
     """The PDF file, and how many large sheets each pattern takes in it. Raises WriteError as `pdf`."""
-    from reportlab.pdfgen.canvas import Canvas
-
-    register()
     buffer = io.BytesIO()
-    canvas = Canvas(buffer, invariant=1, pageCompression=1, pdfVersion=(1, 6), initialFontName=FACE)
-    _describe(canvas, ", ".join(pattern.mark for pattern in patterns))
-    canvas.setViewerPreference("PrintScaling", "None")
-    counts = tuple(_draw_sheet(canvas, pattern, _arranged(pattern)) for pattern in patterns)
+    canvas = canvas_of(buffer, ", ".join(pattern.mark for pattern in patterns))
+    layers = Layers(canvas)
+    counts = tuple(_draw_sheet(canvas, layers, pattern, _arranged(pattern)) for pattern in patterns)
     for pattern in patterns:
         _draw_tape_pages(canvas, pattern)
+    layers.finish()
     canvas.save()
     return buffer.getvalue(), counts
 
@@ -85,31 +83,6 @@ def _draw_tape_pages(canvas: Canvas, pattern: Pattern) -> None:
         canvas.setPageSize((size[0] * POINT, size[1] * POINT))
         page.draw(Ink(canvas, (0.0, 0.0, wide, high), MARGIN), high)
         canvas.showPage()
-
-
-def _describe(canvas: Canvas, title: str) -> None:
-    """Title and kind of the document, and nothing of the time it was made.
-
-    reportlab always writes a date, and mixes it into the file's ID; where the environment sets
-    SOURCE_DATE_EPOCH not even its invariant mode keeps both still.
-    """
-    from hashlib import md5
-
-    from reportlab.pdfbase.pdfdoc import PDFDictionary, PDFDocument, PDFInfo, PDFString
-
-    class Details(PDFInfo):  # type: ignore[misc]
-        def format(self, document: PDFDocument) -> bytes:
-            words = {
-                "Title": title,
-                "Subject": "flat pattern, true scale: print at actual size",
-                "Creator": "develop",
-                "Producer": "develop",
-            }
-            entries = {key: PDFString(word) for key, word in words.items()}
-            return bytes(PDFDictionary(entries).format(document))
-
-    canvas._doc.info = Details()
-    canvas._doc.signature = md5(title.encode(), usedforsecurity=False)
 
 
 def _arranged(pattern: Pattern) -> _Sheet:
@@ -163,7 +136,7 @@ def _reaches(pattern: Pattern, sheet: _Sheet) -> Array:
     return np.concatenate([found, np.stack([middle - reach, middle + reach], axis=1)])
 
 
-def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> int:
+def _draw_sheet(canvas: Canvas, layers: Layers, pattern: Pattern, sheet: _Sheet) -> int:
     """All pages of one sheet, from the top left, along the rows; returns how many they are."""
     inner = _LARGEST - 2.0 * _MARGIN - _STRIP
     reaches = _reaches(pattern, sheet)
@@ -175,14 +148,17 @@ def _draw_sheet(canvas: Canvas, pattern: Pattern, sheet: _Sheet) -> int:
         for column, (left, wide) in enumerate(across):
             canvas.setPageSize(((wide + 2.0 * _MARGIN) * POINT, (high + _STRIP + 2.0 * _MARGIN) * POINT))
             ink = Ink(canvas, (left, bottom, wide, high + _STRIP), _MARGIN)
+            layers.open(NOTES)
             ink.text(left, bottom + high + 4.0, _heading(pattern, row, column, rows, columns), 4.0)
             sheet.panel.draw(ink, *sheet.corner)
+            draw(pattern, PatternPen(ink, *sheet.pattern, layers))
+            layers.open(MARKS)
             _datum_lines(ink, sheet)
-            draw(pattern, PatternPen(ink, *sheet.pattern))
             for x in ([left] if column else []) + ([left + wide - _OVERLAP] if column < columns - 1 else []):
                 _match_line(ink, (x + _OVERLAP / 2.0, bottom), (x + _OVERLAP / 2.0, bottom + high))
             for y in ([bottom + high] if row else []) + ([bottom + _OVERLAP] if row < rows - 1 else []):
                 _match_line(ink, (left, y - _OVERLAP / 2.0), (left + wide, y - _OVERLAP / 2.0))
+            layers.close()
             canvas.showPage()
     return rows * columns
 

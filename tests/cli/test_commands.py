@@ -67,11 +67,12 @@ def test_the_example_in_the_help_runs(run, tmp_path: Path, name: str) -> None:  
     # One drawing of each format for each pattern, the rest once.
     svgs, dxfs = (rf"(?:{name}.{end}|{name}-\w+.{end}(?:, {name}-\w+.{end})+)" for end in ("svg", "dxf"))
     assert re.fullmatch(
-        rf"{name}: wrote {svgs}, {name}.pdf, {dxfs}, {name}.json, {name}.png, {name}.stl, {name}.glb in out; "
+        rf"{name}: wrote {svgs}, {name}.pdf, {name}-pages.pdf, {dxfs}, {name}.json, {name}.png, {name}.stl, {name}.glb in out; "
+        r"\d+ tiled pages? of A4; "
         r"\d+ arcs in the DXF, within 0\.00\d\d mm of the curve; all \d+ checks hold\n",
         done.out,
     )
-    assert len(list((tmp_path / "out").iterdir())) == 5 + 2 * done.out.count(".svg")
+    assert len(list((tmp_path / "out").iterdir())) == 6 + 2 * done.out.count(".svg")
     piece, _ = read_piece(kind_of(name), kind_of(name).example)
     assert piece is not None
     assert json.loads((tmp_path / "out" / f"{name}.json").read_bytes())["fields"] == record_of(piece)
@@ -186,7 +187,7 @@ def test_all_bad_options_are_told_at_once(run, tmp_path: Path) -> None:  # type:
         '--flush: "top" is given together with offset; allowed: one of the two',
         '--mark: "a/b" has the character "/"; allowed: letters',
         '--neutral-line: "2" is out of range; allowed: a number from 0 to 1',
-        '--formats: "dxff" is not one of them; did you mean "dxf"?; allowed: svg, pdf, dxf, json, png, stl or glb',
+        '--formats: "dxff" is not one of them; did you mean "dxf"?; allowed: svg, pdf, pages, dxf, json, png, stl or glb',
         '--units: "furlong" is not one of them; allowed: mm, cm, m, in or ft',
     ]
     assert len(done.said) == len(starts)

@@ -45,7 +45,7 @@ def test_the_example_of_a_kind_gives_all_its_files(tmp_path: Path, name: str) ->
     marks = [pattern["mark"] for pattern in record["patterns"]]
     assert marks == ["A1"] or (len(marks) > 1 and all(mark.startswith("A1-") for mark in marks))
     svgs, dxfs = ([f"{mark}.{each}" for mark in marks] for each in ("svg", "dxf"))
-    assert outcome.files == (*svgs, "A1.pdf", *dxfs, "A1.json", "A1.png", "A1.stl", "A1.glb")
+    assert outcome.files == (*svgs, "A1.pdf", "A1-pages.pdf", *dxfs, "A1.json", "A1.png", "A1.stl", "A1.glb")
     assert {each.name for each in tmp_path.iterdir()} == set(outcome.files)
     for file in tmp_path.iterdir():
         assert file.read_bytes().startswith(STARTS[file.suffix[1:]])
@@ -59,7 +59,8 @@ def test_the_example_of_a_kind_gives_all_its_files(tmp_path: Path, name: str) ->
 def test_the_same_piece_gives_the_same_bytes(tmp_path: Path, name: str) -> None:
     one, two = (make(example(name), folder=str(tmp_path / folder)) for folder in ("one", "two"))
     assert one.files == two.files
-    assert {file.rpartition(".")[2] for file in one.files} == set(FORMATS)
+    endings = {"pages" if file.endswith("-pages.pdf") else file.rpartition(".")[2] for file in one.files}
+    assert endings == set(FORMATS)
     for file in one.files:
         assert (tmp_path / "one" / file).read_bytes() == (tmp_path / "two" / file).read_bytes()
 
@@ -93,7 +94,16 @@ def test_a_check_that_does_not_hold_is_told_and_recorded(
 
 
 @pytest.mark.parametrize(
-    "writer", ["svg.svg", "pdf.printed", "dxf.dxf", "record.record", "picture.picture", "solid_files.glb"]
+    "writer",
+    [
+        "svg.svg",
+        "pdf.printed",
+        "tiled.written",
+        "dxf.dxf",
+        "record.record",
+        "picture.picture",
+        "solid_files.glb",
+    ],
 )
 def test_when_a_format_fails_nothing_is_written(
     tmp_path: Path, monkeypatch: pytest.MonkeyPatch, writer: str

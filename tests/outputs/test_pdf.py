@@ -405,7 +405,8 @@ def test_no_date_version_or_user_in_the_file(samples, monkeypatch):
 
 def test_heavy_libraries_are_not_imported():
     code = (
-        "import sys, develop.outputs.svg, develop.outputs.record, develop.outputs.pdf as p; p.register();"
+        "import sys, develop.outputs.svg, develop.outputs.record, develop.outputs.pdf, develop.outputs.tiled;"
+        "import develop.outputs.fonts as f; f.register();"
         "heavy = {'matplotlib', 'scipy', 'shapely', 'trimesh', 'pydantic'} & set(sys.modules);"
         "assert not heavy, heavy; assert 'reportlab' in sys.modules"
     )
