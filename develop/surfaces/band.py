@@ -486,8 +486,16 @@ class BandSheet:
         panels = self._panels
         u = panels.start[place.panel] + panels.half[place.panel] * (place.x + 1.0)
         table = np.einsum("nk,nkc->nc", between(place.x), self._table[place.panel])
-        groups = list(self.band._on_course(self._course, panels.origin[place.panel], u))
-        parts = [self._lines(on_a, u[which], table[which], r) for which, on_a, r in groups]
+        course, origin = self._course, panels.origin[place.panel]
+        groups = list(self.band._on_course(course, origin, u))
+        parts = []
+        for which, on_a, r in groups:
+            u_a = u[which]
+            if not on_a:
+                # Where a straight side begins or ends, the stretch tells which.
+                low, high = course.low[origin[which]], course.high[origin[which]]
+                u_a = self.band.rim_a.section.within(r.a.normal_x, r.a.normal_y, low, high)
+            parts.append(self._lines(u_a, table[which], r))
         if len(parts) == 1:
             return parts[0]
         index = np.argsort(np.concatenate([np.flatnonzero(which) for which, _, _ in groups]))
@@ -495,7 +503,7 @@ class BandSheet:
             *(np.concatenate([getattr(part, f.name) for part in parts])[index] for f in fields(Lines))
         )
 
-    def _lines(self, on_a: bool, u: Array, table: Array, r: Rulings) -> Lines:
+    def _lines(self, u_a: Array, table: Array, r: Rulings) -> Lines:
         band, d = self.band, self.band.distance
         a, b = r.a, r.b
         theta = table[:, 0]
@@ -551,7 +559,7 @@ class BandSheet:
             turn=table[:, 1],
             radius_a=radius_a,
             radius_b=radius_b,
-            u_a=u if on_a else band.rim_a.section.parameter(a.normal_x, a.normal_y),
+            u_a=u_a,
             length=(high - low) * r.length,
         )
 

@@ -621,6 +621,16 @@ def test_each_part_tells_its_own_tightest_place() -> None:
     assert [each.directions for each in found] == [pytest.approx((0.0,)), pytest.approx((pi,))]
 
 
+def test_the_corners_of_a_bent_side_are_each_tightest_in_their_own_part() -> None:
+    # The corners of radius 40 begin where the longer sides end, 260 right and left of the middle, 200 off it.
+    given = {"end_a": "rectangle 600 x 400 r 40", "end_b": "round 350", "length": 400, "seam_at": "bottom"}
+    (built,) = builds_of(piece_of("transition", **given, thickness=4, sizes="inside", made_in=3, mark="T1"))
+    corner = np.round(np.degrees(np.arctan2(200.0, 260.0)), 1)
+    found = [np.degrees(pattern.forming.directions) for pattern in built.patterns]
+    expected = [[360.0 - corner], [corner, 180.0 - corner], [180.0 + corner]]
+    assert [each.tolist() for each in found] == [pytest.approx(each, abs=1e-9) for each in expected]
+
+
 def test_a_part_of_a_cylinder_is_as_tight_all_over() -> None:
     (built,) = builds_of(piece_of("straight", section="round 400", length=800, made_in=3, mark="T1"))
     (pattern,) = built.patterns
