@@ -34,7 +34,7 @@ from develop.pieces.reference import command_line, job_text, kind_text, kinds_pa
 COMMON = {
     "mark", "quantity", "opposite_hand", "material", "thickness", "sizes", "neutral_line", "seam_at", "divisions",
     "face", "marks", "flow", "seam", "edge_a", "edge_b", "gap", "gap_on", "trim_a", "trim_b", "trim_line",
-    "pre_bend", "weld_shrinkage", "lining", "made_in", "stock",
+    "pre_bend", "weld_shrinkage", "lining", "made_in", "stock", "rivet", "prep_a", "prep_b", "prep_seam",
     "templates", "template_sections", "template_share", "floor", "tape", "tape_tolerance",
 }  # fmt: skip
 OWN = {

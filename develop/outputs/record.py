@@ -90,7 +90,7 @@ def _pattern(pattern: Pattern) -> dict[str, object]:
         },
         "cut": {
             "outline": _points(pattern.cut),
-            "openings": [] if marked else openings,
+            "openings": [*([] if marked else openings), *(_points(each) for each in pattern.punched)],
             "area": cut_area(pattern),
             **({} if pattern.mass is None else {"mass": float(pattern.mass)}),
         },

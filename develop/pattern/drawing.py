@@ -85,8 +85,11 @@ def draw(pattern: Pattern, pen: Pen) -> None:
     Roll lines and thin lines stop short of any text that stands on them.
     """
     marked = pattern.openings if pattern.openings_as == "marked" else ()
-    if pattern.openings and not marked:
+    if pattern.punched or (pattern.openings and not marked):
         pen.layer(OPENINGS)
+        for opening in pattern.punched:
+            pen.contour(opening)
+    if pattern.openings and not marked:
         for opening in pattern.openings:
             if pattern.openings_as == "ties":
                 for curve in between_ties(opening, pattern.tie):

@@ -12,6 +12,7 @@ __all__ = ["cut_area", "cut_mass"]
 def cut_area(pattern: Pattern) -> float:
     """Area inside the cut line less the openings that are cut [mm²]; those that are only marked stay in."""
     holes = fsum(opening.area for opening in pattern.openings) if pattern.openings_as != "marked" else 0.0
+    holes += fsum(hole.area for hole in pattern.punched)
     return float(pattern.cut.area - holes)
 
 

@@ -225,7 +225,8 @@ class Pattern:
     that its directions are read in front of.
     seam_words: what is written along the left and the right seam; lap_words: along what is cut beyond them.
     folds: lines that are folded along, beside the press lines. added: what the cut line has beyond the net.
-    warnings: of what is not reasonable. wall: how the thickness was taken, where it was not plainly.
+    punched: holes beyond the net line, for rivets. warnings: of what is not reasonable.
+    wall: how the thickness was taken, where it was not plainly.
     forming: where a rolled sheet is tightest, and its strain. taped: tables of what to check by tape, for the
     tape pages alone.
     """
@@ -258,6 +259,7 @@ class Pattern:
     lap_words: tuple[str, str] = ("LAP", "LAP")
     added: tuple[Addition, ...] = ()
     warnings: tuple[str, ...] = ()
+    punched: tuple[Outline, ...] = ()
     wall: Wall | None = None
     arrow: str = "FLOW"
     places: Array = field(default_factory=lambda: np.empty((0, 2, 2)))

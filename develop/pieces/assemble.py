@@ -23,6 +23,7 @@ from develop.pattern.pattern import (
     WitnessMark,
 )
 from develop.pieces.cutting import Cutting
+from develop.pieces.flat import holes_at
 from develop.pieces.press import Press, PressLines, press_lines
 from develop.pieces.wording import lines_of, size_words
 from develop.sections.section import Section
@@ -226,6 +227,7 @@ def pattern_of(
         added=added.added,
         wall=wording.wall,
         warnings=added.warnings,
+        punched=view.punched(dict(close_by), added),
     )
 
 
@@ -462,6 +464,20 @@ class _View:
                 (str(n), *map(float, row)) for n, row in enumerate(sorted(rows), 1)
             ]
             found.append(Figures(f"Cuts between the tabs at {end}, as far as {stop}", heads, tuple(numbered)))
+        return tuple(found)
+
+    def punched(self, contour: dict[str, Curve], added: Cutting) -> tuple[Outline, ...]:
+        """The rivet holes in the middle of the tabs along the edges."""
+        found: list[Outline] = []
+        for name, diameter in added.rivets:
+            allowance, curve = added.allowances[name], contour[name]
+            shares = np.array([0.0, *allowance.tabs, 1.0])
+            centres = []
+            for share in (shares[1:] + shares[:-1]) / 2.0:
+                at, along = point_at(curve, place_at(curve, float(share) * curve.length))
+                centres.append(at + 0.5 * allowance.width * np.array([along[1], -along[0]]))
+            flip = _FLIP if self.mirror else np.ones(2)
+            found += holes_at(np.array(centres) * flip + self.shift, 0.5 * diameter)
         return tuple(found)
 
     def hole(self, hole: Hole) -> Outline:

@@ -501,6 +501,7 @@ class Branch(Jointed):
         import numpy as np
 
         from develop.pieces.assemble import pattern_of
+        from develop.pieces.cutting import check_rivet
         from develop.pieces.joint_edge import with_bevels
         from develop.pieces.parting import parted
         from develop.pieces.tap import lap_flange
@@ -519,6 +520,9 @@ class Branch(Jointed):
             if self.joint == "tap":
                 flange = lap_flange(surface, flat, lap=self.lap, thickness=self.thickness)
                 cutting = replace(cutting, allowances={**cutting.allowances, "a": flange})
+                if self.rivet:
+                    check_rivet(self.rivet, self.lap, flat.edge_a / (len(flange.tabs) + 1))
+                    cutting = replace(cutting, rivets=(*cutting.rivets, ("a", self.rivet)))
                 words = (
                     f"END A: the joint, a lap flange {size_words(self.lap, units)} wide beyond the net line, "
                     f"cut in to make {len(flange.tabs) + 1} tabs, turned out",

@@ -16,6 +16,7 @@ from develop.pieces.field_types import (
 )
 from develop.pieces.fields import Piece, about
 from develop.pieces.part_types import MADE_IN, STOCK
+from develop.pieces.prep_types import PREPARATION, Preparation
 from develop.pieces.rule_types import EDGE, NEUTRAL, SEAM_RULE
 from develop.pieces.wording import edges_words, lining_words, sizes_words, wall_words
 
@@ -221,6 +222,23 @@ class Plate(Marked):
         ),
     )
     tape_tolerance: float = field(default=2.0, metadata=_TOLERANCE)
+    rivet: float = field(
+        default=0.0,
+        metadata=about(
+            Length(least=0.0, most=50.0),
+            "diameter of the rivet hole in the middle of each tab of a tap flange; 0 for none",
+            own=False,
+        ),
+    )
+    prep_a: Preparation | None = field(
+        default=None, metadata=about(PREPARATION, "weld preparation of the edge at end A", own=False)
+    )
+    prep_b: Preparation | None = field(
+        default=None, metadata=about(PREPARATION, "weld preparation of the edge at end B", own=False)
+    )
+    prep_seam: Preparation | None = field(
+        default=None, metadata=about(PREPARATION, "weld preparation of both sides of the seam", own=False)
+    )
     rules: Rules | None = field(default=None, repr=False)
     flow: str = field(
         default="a to b", metadata=about(Choice(("a to b", "b to a")), "which way the air flows", own=False)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from math import ceil, pi, sqrt
+from math import ceil, pi, radians, sqrt, tan
 from typing import TYPE_CHECKING
 
 from develop.errors import InputError, Refusal
@@ -13,10 +13,11 @@ from develop.pieces.wording import size_words
 if TYPE_CHECKING:
     from develop.pattern.allowance import Allowance
     from develop.pieces.common import Plate
+    from develop.pieces.prep_types import Preparation
     from develop.surfaces.sheet import Sheet
     from develop.tables.seams import EdgeRule, SeamRule
 
-__all__ = ["Added", "Cutting", "cutting_of", "rules_of", "tabs_for"]
+__all__ = ["Added", "Cutting", "check_rivet", "cutting_of", "rules_of", "tabs_for"]
 
 # A tab is bent along a straight line, which leaves the edge by this much at most [mm].
 # Common practice, no source: what a hammer takes up.
@@ -44,7 +45,7 @@ class Cutting:
     allowances: by edge, as the outside of the sheet shows them. folds: (edge, how far outside its net line
     [mm]) of each fold line. inner: (edge, how far inside its net line [mm], word) of further lines.
     words: along the left and the right seam's allowance. facts: lines for the sheet. added: the account.
-    warnings: what is not reasonable.
+    warnings: what is not reasonable. rivets: (edge, diameter [mm]) of the hole in the middle of each tab.
     """
 
     allowances: Mapping[str, Allowance] = field(default_factory=dict)
@@ -54,6 +55,7 @@ class Cutting:
     facts: tuple[str, ...] = ()
     added: tuple[Added, ...] = ()
     warnings: tuple[str, ...] = ()
+    rivets: tuple[tuple[str, float], ...] = ()
 
 
 def rules_of(plate: Plate) -> tuple[SeamRule, dict[str, EdgeRule]]:
@@ -108,6 +110,7 @@ def cutting_of(
     facts: list[str] = []
     added: list[Added] = []
     warnings: list[str] = []
+    rivets: list[tuple[str, float]] = []
 
     def size(mm: float) -> str:
         return size_words(mm, units)
@@ -142,6 +145,11 @@ def cutting_of(
     if plate.pre_bend:
         facts.append(f"pre-bend {size(plate.pre_bend)} along each seam edge before rolling (dashed)")
 
+    if plate.prep_seam:
+        for name in ("seam_left", "seam_right"):
+            inner += _prepared(plate, plate.prep_seam, name, field="prep_seam")
+        facts.append(f"seam: {_prep_words(plate.prep_seam, plate.face, units)}")
+
     # ---- the two ends ----
     for end in "ab":
         trim, girth = float(getattr(plate, f"trim_{end}")), float(getattr(sheet, f"edge_{end}"))
@@ -155,6 +163,10 @@ def cutting_of(
                 added.append(Added(end, f"gap {size(plate.gap)}", -share * plate.gap))
             continue
         edge = edges[end]
+        prep: Preparation | None = getattr(plate, f"prep_{end}")
+        if prep is not None:
+            inner += _prepared(plate, prep, end, field=f"prep_{end}")
+            facts.append(f"{words}: {_prep_words(prep, plate.face, units)}")
         if trim and edge.allowance:
             raise Refusal(
                 field=f"trim_{end}",
@@ -173,6 +185,10 @@ def cutting_of(
             allowances[end], note = _edge(edge, sheet, end, warnings)
             folds += [(end, each) for each in edge.folds]
             added.append(Added(end, edge.text, edge.allowance, edge.source))
+            if plate.rivet and edge.name == "tap-flange":
+                check_rivet(plate.rivet, edge.allowance, girth / (len(allowances[end].tabs) + 1))
+                rivets.append((end, plate.rivet))
+                note += f", a rivet hole {size(plate.rivet)} in each"
             facts.append(f"{words}: {edge.text}, {size(edge.allowance)} added{note}")
     return Cutting(
         allowances,
@@ -182,7 +198,44 @@ def cutting_of(
         tuple(facts),
         tuple(added),
         tuple(warnings),
+        tuple(rivets),
     )
+
+
+def _prepared(plate: Plate, prep: Preparation, name: str, *, field: str) -> list[tuple[str, float, str]]:
+    """The line that a bevel is cut down from, on the face that is up: (thickness − root) · tan angle inside.
+
+    A bevel from the other face shows no line. Raises Refusal for one that leaves no bevel.
+    """
+    if prep.root >= plate.thickness:
+        raise Refusal(
+            field=field,
+            given=f"{prep.text} in plate of {plate.thickness:g} mm leaves nothing to bevel",
+            allowed="a root face less than the thickness, and a thickness",
+        )
+    reach = (plate.thickness - prep.root) * tan(radians(prep.angle))
+    return [(name, reach, "BEVEL FROM HERE")] if prep.face == plate.face else []
+
+
+def _prep_words(prep: Preparation, up: str, units: str) -> str:
+    """How the edge is prepared, and whether the line of it is drawn."""
+    root = f", root face {size_words(prep.root, units)}" if prep.root else ", to a feather edge"
+    where = "dashed line on this face" if prep.face == up else f"from the {prep.face}, the other face"
+    return f"bevel {prep.angle:g}° from square{root}; {where}"
+
+
+def check_rivet(diameter: float, width: float, tab: float) -> None:
+    """Raises Refusal where a rivet hole leaves less than half its diameter of metal beside it; all in mm.
+
+    Common practice, no source.
+    """
+    most = 0.5 * min(width, tab)
+    if diameter > most:
+        raise Refusal(
+            field="rivet",
+            given=f"{diameter:g} mm in tabs of {width:g} by {tab:.1f} mm",
+            allowed=f"{int(most * 10.0) / 10.0:g} mm or less, or a wider flange",
+        )
 
 
 def _edge(edge: EdgeRule, sheet: Sheet, end: str, warnings: list[str]) -> tuple[Allowance, str]:

@@ -224,6 +224,77 @@ def test_twelve_lengths_between_flange_faces() -> None:
     assert size(built.patterns[0]) == pytest.approx((girth + 18.0, 1146.0), abs=1e-6)
 
 
+def test_each_tab_of_a_tap_flange_has_a_rivet_hole_in_its_middle() -> None:
+    pattern = one(edge_b="tap-flange 20", rivet=4.2, cut_b="slope 20 long 60", face="inside", thickness=0.8)
+    assert len(pattern.punched) == tabs_of(pattern)
+    edge, cut = LineString(pattern.net.curve("b").polyline(1e-3)), polygon(pattern.cut)
+    for hole in pattern.punched:
+        shape = polygon(hole)
+        assert shape.area == pytest.approx(pi * 2.1**2, rel=1e-3)
+        assert edge.distance(shape.centroid) == pytest.approx(10.0, abs=2e-3)
+        # Clear of the cuts on both sides by as much, and of the outer edge.
+        assert cut.exterior.distance(shape.centroid) > 4.2
+        assert cut.contains(shape)
+    # What is punched is not weighed.
+    from develop.pattern.mass import cut_area
+
+    assert cut_area(pattern) == pytest.approx(pattern.cut.area - len(pattern.punched) * pi * 2.1**2, rel=1e-6)
+
+
+def test_a_tap_has_rivet_holes_too() -> None:
+    built = make(
+        "branch",
+        header="round 400",
+        header_length=900,
+        branch="round 200",
+        centre_to_end=450,
+        joint="tap",
+        rivet=4.2,
+    )
+    branch = built.patterns[0]
+    assert len(branch.punched) == tabs_of(branch)
+    with pytest.raises(InputError, match=r"rivet: 12 mm in tabs of 20 by .*allowed: 10 mm or less"):
+        make(
+            "branch",
+            header="round 400",
+            header_length=900,
+            branch="round 200",
+            centre_to_end=450,
+            joint="tap",
+            rivet=12,
+        )
+
+
+@pytest.mark.parametrize("face", ["outside", "inside"])
+def test_a_bevel_has_its_line_on_the_face_that_it_is_cut_from(face: str) -> None:
+    # (10 − 2) tan 30° = 4.62 mm inside the edge; from the other face no line can be seen.
+    pattern = one(thickness=10, prep_b="bevel 30 root 2 outside", prep_seam="bevel 45 outside", face=face)
+    (words,) = [each for each in pattern.facts if each.startswith("END B: bevel")]
+    if face == "inside":
+        assert pattern.dashed == ()
+        assert "the other face" in words
+        return
+    assert "bevel 30° from square, root face 2" in words
+    high = max(float(line.polyline(1.0)[:, 1].min()) for line in pattern.dashed)
+    assert high == pytest.approx(500.0 - 8.0 / sqrt(3.0), abs=1e-6)
+    left = min(float(line.polyline(1.0)[:, 0].max()) for line in pattern.dashed)
+    assert left == pytest.approx(10.0, abs=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("given", "named"),
+    [
+        ({"prep_b": "bevel 30 root 12", "thickness": 10}, "prep_b: .*leaves nothing to bevel"),
+        ({"prep_a": "bevel 30"}, "prep_a: .*leaves nothing to bevel"),
+        ({"prep_a": "bevel 80 root 2", "thickness": 10}, "out of range"),
+        ({"prep_a": "vee", "thickness": 10}, "not a preparation"),
+    ],
+)
+def test_a_preparation_that_cannot_be_is_refused(given: dict[str, object], named: str) -> None:
+    with pytest.raises((InputError, AssertionError), match=named):
+        one(**given)
+
+
 SEAMS = st.sampled_from(["butt", "lap 25", "grooved 6", "standing 20", "double 8", "pittsburgh 8"])
 EDGES = st.sampled_from(
     ["raw", "lap 20", "flange 12 out", "flange 12 turned in", "tap-flange 15", "hem 8", "wired 4"]
