@@ -15,6 +15,7 @@ from develop.pattern.curve import Array, Curve
 from develop.pattern.drawing import (
     CUT,
     DASHED,
+    FOLD_LINES,
     NET,
     OPENINGS,
     PEN_LINES,
@@ -39,13 +40,14 @@ _COLOURS = {
     NET: 6,
     ROLL_LINES: 5,
     PRESS_LINES: 134,
+    FOLD_LINES: 130,
     PEN_LINES: 150,
     WITNESS_MARKS: 3,
     DASHED: 54,
     TEXT: 7,
 }
 """Numbers of the format's own table of colours, one a layer."""
-_IN_DASHES = (NET, DASHED)
+_IN_DASHES = (NET, FOLD_LINES, DASHED)
 _DASHES = [9.0, 6.0, -3.0]  # [mm] the whole, a dash, a gap
 _MM, _METRIC = 4, 1  # values of $INSUNITS and $MEASUREMENT (DXF reference)
 _DIGITS, _BULGE_DIGITS = 6, 12

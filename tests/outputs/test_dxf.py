@@ -410,3 +410,28 @@ def test_every_kind_is_read_without_complaint(kind, version):
     assert piece is not None
     for pattern in piece.build().patterns:
         opened(dxf(pattern, version=version).data)
+
+
+def test_every_layer_can_be_written():
+    """Folds, laps, rivet holes and preparations have layers too: each that the walk may name has a colour."""
+    from develop.outputs import dxf as module
+    from develop.outputs import ink, svg
+    from develop.pattern.drawing import LAYERS
+
+    assert set(module._COLOURS) == set(LAYERS) == set(svg._COLOURS) == set(ink._WIDTHS)
+    kind = kind_of("straight")
+    given = {
+        "section": "round 400",
+        "length": 300,
+        "seam": "grooved 6",
+        "edge_a": "tap-flange 20",
+        "rivet": 4,
+    }
+    piece, problems = read_piece(kind, given)
+    assert piece is not None, problems
+    (pattern,) = piece.build().patterns
+    document = module.dxf(pattern).data
+    assert {each.dxf.layer for each in entities(document)} >= {"cut", "cut-openings", "net", "fold-lines"}
+    assert sum(each.dxftype() == "CIRCLE" for each in entities(document, "cut-openings")) == len(
+        pattern.punched
+    )
