@@ -25,6 +25,7 @@ __all__ = [
 ]
 
 _SAME = 1e-4  # [mm] a place so near to a joint of the chain is that joint
+_NO_LENGTH = 1e-10  # [mm] a part no longer than this is rounding
 _LAST = 1e-15  # a step so small is rounding
 _ROUNDS = 60  # halvings of a share of one Bézier: to the last bit
 
@@ -105,8 +106,8 @@ def between(curve: Curve, start: tuple[int, float], end: tuple[int, float]) -> C
     pieces[-1] = part_of(pieces[-1], t if i == j else 0.0, u)
     if i != j:
         pieces[0] = part_of(pieces[0], t, 1.0)
-    # A part of no length at either end would have no direction.
-    keep = np.abs(pieces[:, 3] - pieces[:, 0]).max(axis=1) > 0.0
+    # A part of no length at either end, or of no more than rounding, would have no direction of its own.
+    keep = np.abs(pieces[:, 3] - pieces[:, 0]).max(axis=1) > _NO_LENGTH
     return curve_of(pieces[keep] if keep.any() else pieces[:1])
 
 
