@@ -52,7 +52,7 @@ def given_section(
             return section.offset(distance)
         except Refusal:
             radius = section.least_radius
-            most = floor(thickness * radius / -distance * 10.0 - 1e-6) / 10.0
+            most = floor(thickness * radius / -distance * 10.0 + 1e-9) / 10.0
             thinner = (f"{number_text(most)} mm or less",) if most > 0.0 else ()
             room = f"the tightest radius is {radius:.4g} mm" if radius > 0.0 else "the corners are sharp"
             raise Refusal(

@@ -112,10 +112,10 @@ def test_a_sharp_corner_measured_outside_is_refused_with_the_smallest_r_that_wor
             parse_section(f"rectangle 500 x 300 r {r}"), field="section", thickness=6.0, sizes=sizes
         )
 
-    with pytest.raises(InputError, match="tightest radius is 0 mm; allowed: r 6 mm or more"):
+    with pytest.raises(InputError, match="the corners are sharp; allowed: for section r 6 mm or more"):
         wall("0", "outside")
     wall("6", "outside")
-    with pytest.raises(InputError, match="at most 3 mm, or r 3 mm or more") as refused:
+    with pytest.raises(InputError, match="3 mm or less, or for section r 3 mm or more") as refused:
         wall("1.5", "mean")
     assert refused.value.problems[0].field == "thickness"
     wall("3", "mean")
