@@ -689,7 +689,7 @@ def test_the_files_of_a_piece_in_parts(tmp_path: Path) -> None:
     outcome = make_files(piece, folder=str(tmp_path))
     assert outcome.failed == ()
     assert sorted(outcome.files) == [
-        "T1-1.dxf", "T1-1.svg", "T1-2.dxf", "T1-2.svg", "T1.glb", "T1.json", "T1.pdf", "T1.png", "T1.stl",
+        "T1-1.dxf", "T1-1.svg", "T1-2.dxf", "T1-2.svg", "T1-pages.pdf", "T1.glb", "T1.json", "T1.pdf", "T1.png", "T1.stl",
     ]  # fmt: skip
     record = json.loads((tmp_path / "T1.json").read_text(encoding="utf-8"))
     assert record["fields"]["made_in"] == 2
