@@ -182,6 +182,8 @@ def checks_of(built: Built) -> tuple[Check, ...]:
             own = tuple(replace(each, name=f"{part.pattern.mark}: {each.name}") for each in own)
         found += own
     for joint in built.joints:
+        if joint.apart:
+            continue
         sides = [[_side(built, part, place, end) for part, place in parts] for end, parts in joint.sides]
         name = joint.name or " to ".join(side[0].pattern.mark for side in sides)
         found += check_joint(name, *sides)

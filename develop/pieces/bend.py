@@ -6,7 +6,7 @@ from dataclasses import dataclass, field, replace
 from math import atan, ceil, degrees, pi, tan
 from typing import TYPE_CHECKING, ClassVar
 
-from develop.errors import Refusal
+from develop.errors import InputError, Refusal
 from develop.pieces.common import Jointed
 from develop.pieces.field_types import (
     BEND_SEAM,
@@ -95,6 +95,20 @@ class Bend(Jointed):
             handed=True,
         ),
     )
+    gore_fit: str = field(
+        default="flush",
+        metadata=about(
+            Choice(("flush", "into")), "gores edge to edge, or END B of each smaller, to go into the next"
+        ),
+    )
+    clearance: float | None = field(
+        default=None,
+        metadata=about(
+            Length(least=0.0, most=100.0),
+            "left on each side of a gore that goes into the next; when left out, 0.5 mm in sheet and 1 mm in "
+            "plate of 3 mm and more",
+        ),
+    )
     seam_at: float | str = field(
         default="shortest",
         metadata=about(
@@ -134,7 +148,50 @@ class Bend(Jointed):
             [Turn(2.0 * self.mitre, self.turns_to)] * (self.gores - 1),
             distance=self.distance(section),
             edge=joint_edge(self),
+            into=self._into(section),
         )
+
+    @property
+    def _smaller(self) -> float:
+        """How much smaller the end is that goes into the next gore, on each side [mm]."""
+        from develop.pieces.fitted import left_clear
+
+        return self.thickness + left_clear(self.clearance, self.thickness)
+
+    def _into(self, section: Section) -> Section | None:
+        """The section of an end that goes into the next gore; None for flush gores. Raises Refusal."""
+        from develop.pieces.joint_edge import joint_edge
+
+        if self.gore_fit == "flush":
+            if self.clearance is not None:
+                raise Refusal(
+                    field="clearance",
+                    given=f"{number_text(self.clearance)} mm, and the gores are flush",
+                    allowed="gore_fit = into with it",
+                )
+            return None
+        if joint_edge(self).how != "net":
+            raise Refusal(
+                field="gore_fit",
+                given="into, with edges that are worked out to touch",
+                allowed="touching = net with it, or flush gores",
+            )
+        if len(section.loose_spots):
+            # Where the curve is as good as flat, two nearly equal ends pair their points by rounding.
+            raise Refusal(
+                field="gore_fit",
+                given="into, of a section with flat spots such as a superellipse",
+                allowed="flush, or a round, ellipse, flat-oval or rectangle section",
+            )
+        try:
+            return section.offset(-self._smaller)
+        except InputError:
+            raise Refusal(
+                field="gore_fit",
+                given=f"into needs a wall {number_text(round(self._smaller, 3))} mm farther in, where the "
+                f"tightest radius is {section.least_radius:.4g} mm",
+                allowed="flush, or a rounder section",
+            ) from None
 
     def _radius(self) -> float:
         """The radius to the axis [mm]. Raises Refusal when it is not given in any way."""
@@ -229,7 +286,7 @@ class Bend(Jointed):
         from develop.pieces.mitred import built_of
 
         gores = self.surface()
-        section = gores[0].surface.section
+        section = gores[0].section
         built = built_of(
             gores,
             self._seams(section),
@@ -279,7 +336,18 @@ class Bend(Jointed):
                 lengths,
                 f"throat width {short(width)}",
                 *edge.words(mitre=True),
+                *self._fit_words(numbers, units),
             ),
+        )
+
+    def _fit_words(self, numbers: tuple[int, ...], units: str) -> tuple[str, ...]:
+        """What the sheets of these gores say of how they fit."""
+        if self.gore_fit == "flush":
+            return ()
+        if self.gores in numbers:
+            return ("END A takes the gore before it",)
+        return (
+            f"END B goes into the next gore: {measured_words(self._smaller, units)} smaller on each side",
         )
 
 

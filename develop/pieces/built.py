@@ -35,7 +35,8 @@ class Joint:
 
     place, other_place: which of the parts' frames they stand in. also, other_also: further parts with the
     numbers of their frames, where a side in several parts has that end.
-    name: of the joint, in checks; else the marks of the two patterns.
+    name: of the joint, in checks; else the marks of the two patterns. apart: the one goes into the other, so
+    that the edges are not equal and do not lie on each other.
     """
 
     part: int
@@ -47,6 +48,7 @@ class Joint:
     name: str = ""
     also: tuple[tuple[int, int], ...] = ()
     other_also: tuple[tuple[int, int], ...] = ()
+    apart: bool = False
 
     @property
     def sides(self) -> tuple[tuple[str, tuple[tuple[int, int], ...]], ...]:

@@ -20,13 +20,20 @@ if TYPE_CHECKING:
     from develop.solid import Rim
     from develop.surfaces.band import Band
 
-__all__ = ["Fit", "Fitted", "Tapered"]
+__all__ = ["Fit", "Fitted", "Tapered", "left_clear"]
 
 _FIT = Choice(("flush", "into", "over"))
 # Clearance on each side when none is given [mm], in sheet and from 3 mm up. Common practice, no source.
 _CLEAR, _CLEAR_PLATE, _PLATE = 0.5, 1.0, 3.0
 # A mouth that tapers by more than this [degrees] does not slip. Common practice, no source.
 _SLIPS = 2.0
+
+
+def left_clear(clearance: float | None, thickness: float) -> float:
+    """Clearance on each side of a fitted end [mm]: as given, or by the thickness [mm]."""
+    if clearance is not None:
+        return clearance
+    return _CLEAR_PLATE if thickness >= _PLATE else _CLEAR
 
 
 @dataclass(frozen=True)
@@ -89,9 +96,7 @@ class Fitted(Plate):
     @property
     def left_clear(self) -> float:
         """Clearance on each side of a fitted end [mm]."""
-        if self.clearance is not None:
-            return self.clearance
-        return _CLEAR_PLATE if self.thickness >= _PLATE else _CLEAR
+        return left_clear(self.clearance, self.thickness)
 
     def fitted(self, section: Section, end: str) -> Section:
         """A section of end `a` or `b`, smaller or larger as its fit wants it. Raises Refusal."""

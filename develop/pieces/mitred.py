@@ -16,10 +16,12 @@ import numpy as np
 from develop.pieces.assemble import pattern_of
 from develop.pieces.built import Built, Divided, Joint, Part
 from develop.pieces.cut_types import Cut
-from develop.pieces.cuts import cylinder_solid, end_of, trim
+from develop.pieces.cuts import band_solid, cylinder_solid, end_of, trim
 from develop.pieces.joint_edge import JointEdge, trims_of, with_bevels
 from develop.pieces.parting import parted
-from develop.solid import Frame, MitredEnd, TouchingEnd
+from develop.sections.carried import Carried
+from develop.solid import Frame, MitredEnd, Rim, TouchingEnd
+from develop.surfaces.band import Band
 from develop.surfaces.cylinder import Cylinder
 from develop.surfaces.square_edge import SquareEdge
 from develop.surfaces.trim import Plane
@@ -50,17 +52,20 @@ class Turn:
 
 @dataclass(frozen=True)
 class Leg:
-    """One leg: its surface in a frame of its own, whose +z is the leg's axis, and that frame's place."""
+    """One leg: its surface in a frame of its own, whose +z is the leg's axis, and that frame's place.
 
-    surface: Cylinder
+    section: square to the axis; cuts: the planes of its two ends. A leg that goes into the next is a band.
+    """
+
+    surface: Cylinder | Band
     frame: Frame
+    section: Section
+    cuts: tuple[Plane, Plane]
 
     @property
     def shape(self) -> tuple[float, ...]:
         """What two legs of one section have in common when they are alike."""
-        a, b = trims_of((self.surface.trim_a, self.surface.trim_b))
-        assert isinstance(a, Plane)
-        assert isinstance(b, Plane)
+        a, b = self.cuts
         return a.height, *map(float, a.rise), b.height, *map(float, b.rise)
 
 
@@ -81,10 +86,11 @@ def legs_of(
     *,
     distance: float,
     edge: JointEdge,
+    into: Section | None = None,
 ) -> tuple[Leg, ...]:
     """The legs, n of them, from their lengths on the axis [mm] and the n − 1 turns between them.
 
-    edge: how their edges are made where they meet.
+    edge: how their edges are made where they meet. into: the section of an end that goes into the next leg.
 
     Whether a leg is long enough for its cuts is for whoever makes a piece to see to.
     """
@@ -97,13 +103,31 @@ def legs_of(
         head = trim(after.cut if after else None, height=length, end_b=True)
         low, high = edge.trim(foot) if before else foot, edge.trim(head, upper=True) if after else head
         breaks = [u for each in (low, high) if isinstance(each, SquareEdge) for u in each.breaks(section)]
-        surface = Cylinder(section, low, high, distance, tuple(breaks))
-        legs.append(Leg(surface, Frame(origin, axes)))
+        surface: Cylinder | Band = Cylinder(section, low, high, distance, tuple(breaks))
+        if into is not None:
+            rim_a = _cut_rim(section, before.cut if before else None, 0.0, end_b=False)
+            rim_b = _cut_rim(into if after else section, after.cut if after else None, length, end_b=True)
+            surface = Band(rim_a, rim_b, distance)
+        assert isinstance(foot, Plane)
+        assert isinstance(head, Plane)
+        legs.append(Leg(surface, Frame(origin, axes), section, (foot, head)))
         origin = origin + length * axes[2]
         if after is not None:
             # Tilted so that it stands highest at the heel: its normal leans to the throat.
             axes = Frame.square().tilted(slope=after.angle, long=after.towards + pi).axes @ axes
     return tuple(legs)
+
+
+def _cut_rim(section: Section, cut: Cut | None, height: float, *, end_b: bool) -> Rim:
+    """The end of a parallel side that a plane cuts at a height on its axis [mm]."""
+    frame = Frame.square(at=(0.0, 0.0, height))
+    if cut is None or cut.slope == 0.0:
+        return Rim(section, frame)
+    c, s = cos(cut.long), sin(cut.long)
+    steep, level = np.outer([c, s], [c, s]), np.outer([-s, c], [-s, c])
+    # Up the slope lengths grow, along the level line they stay.
+    carried = Carried(section, steep / cos(cut.slope) + level)
+    return Rim(carried, frame.tilted(slope=cut.slope, long=cut.long + (0.0 if end_b else pi)))
 
 
 def built_of(
@@ -135,30 +159,40 @@ def built_of(
     divided: list[Divided] = []
     parts_of: dict[int, tuple[tuple[int, int], ...]] = {}
     for members in groups.values():
-        surface, section = legs[members[0]].surface, legs[members[0]].surface.section
+        surface, section = legs[members[0]].surface, legs[members[0]].section
         seam = float(section.at_direction(np.array([seams[members[0]]]))[0])
         joined = ("a" if members[0] else "") + ("b" if members[0] < len(legs) - 1 else "")
 
         def drawn(
             flat: Sheet,
             share: Share | None,
-            surface: Cylinder = surface,
+            surface: Cylinder | Band = surface,
             numbers: tuple[int, ...] = tuple(i + 1 for i in members),
             joined: str = joined,
         ) -> Pattern:
+            ends = (
+                (surface.section,) * 2
+                if isinstance(surface, Cylinder)
+                else (surface.rim_a.section, surface.rim_b.section)
+            )
             pattern = pattern_of(
                 flat,
-                surface.section,
-                surface.section,
+                *ends,
                 wording=wording(flat, numbers),
                 divisions=divisions,
                 distance=surface.distance,
                 cutting=cutting(flat, joined, share),
                 share=share,
             )
+            if not isinstance(surface, Cylinder):
+                return pattern
             return with_bevels(pattern, edge, {end: _bevelled(surface, end) for end in joined}, plates=2)
 
-        made = parted(plate, surface.sheet(seam), cylinder_solid(surface, seam), drawn, units=units)
+        if isinstance(surface, Cylinder):
+            made = parted(plate, surface.sheet(seam), cylinder_solid(surface, seam), drawn, units=units)
+        else:
+            flat = surface.sheet(seam)
+            made = parted(plate, flat, band_solid(surface, flat, seam), drawn, units=units)
         made = made.placed_at([legs[i].frame for i in members], first=len(parts))
         parts_of |= {i: made.copies(place, first=len(parts)) for place, i in enumerate(members)}
         parts += made.parts
@@ -171,7 +205,7 @@ def built_of(
         joints.append(
             Joint(
                 part, "b", other, "a", place, other_place, f"{name} {i + 1} to {name} {i + 2}",
-                tuple(also), tuple(other_also),
+                tuple(also), tuple(other_also), apart=not isinstance(legs[i].surface, Cylinder),
             )
         )  # fmt: skip
     return Built(tuple(parts), (*joints, *found), divided=tuple(divided))

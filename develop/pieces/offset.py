@@ -143,7 +143,7 @@ class Offset(Jointed):
         from develop.pieces.mitred import built_of
 
         legs = self.surface()
-        section = legs[0].surface.section
+        section = legs[0].section
         built = built_of(
             legs,
             self._seams(section),
