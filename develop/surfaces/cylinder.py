@@ -86,9 +86,10 @@ class CylinderSheet:
         self.panels, rates = resolved(Panels.between(seam + ends), self._rates, loose, rounds=_ROUNDS)
         self._half = self.panels.half
         self._columns, totals = running(rates[..., :4], self._half)
-        # Heights of both trims and their rates: taken from the nodes everywhere, as a trim may have a
-        # corner at a panel's end.
-        self._climbs = rates[..., 4:8]
+        # Heights of both trims and their rates, and the stretch-out's: taken from the nodes everywhere, as a
+        # trim may have a corner at a panel's end, and the section a flat side beside an arc.
+        self._climbs = rates[..., [4, 5, 6, 7, 0]]
+        self._stands = np.asarray((rates[..., 0] <= 0.0).all(axis=1))
         self.edge_a, self.edge_b = float(totals[-1, 1]), float(totals[-1, 2])
         rise = self._climbs[..., 1] - self._climbs[..., 0]
         self.area = float(np.sum(self._half * ((rise * rates[..., 0]) @ WEIGHTS)))
@@ -119,8 +120,9 @@ class CylinderSheet:
         u = self.panels.start[place.panel] + self._half[place.panel] * (place.x + 1.0)
         at = section.walk(u)
         row = np.einsum("nk,nkc->nc", between(place.x), self._columns[place.panel])
-        go = at.ds + d * at.dphi
         climbs = np.einsum("nk,nkc->nc", inside(place.x), self._climbs[place.panel])
+        # Interpolated, a stretch on which nothing goes on leaves a trace of its neighbours' rounding.
+        go = np.where(self._stands[place.panel], 0.0, climbs[:, 4])
         ends, tangents = [], []
         for z, climb in ((climbs[:, 0], climbs[:, 2]), (climbs[:, 1], climbs[:, 3])):
             ends.append(np.stack([row[:, 0], z], axis=-1))

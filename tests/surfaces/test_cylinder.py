@@ -118,3 +118,29 @@ def test_drawn_edge_is_the_sinusoid(slope: float) -> None:
         # Measured upwards; square to the curve it is less.
         square = gap / np.sqrt(1.0 + (rise * np.sin(x / 100.0 - radians(30.0))) ** 2)
         assert np.abs(square).max() < 2.2e-4
+
+
+def test_edges_end_at_a_rounded_corner_as_their_own_side_does() -> None:
+    """In thick plate an edge has a kink where a flat side goes over into its corner's arc.
+
+    On the flat it climbs as the plane does; on the arc, developed 2.5 outside, by r / (r + 2.5) of that.
+    """
+    from develop.sections.rectangle import Rectangle
+
+    section = Rectangle(width=400.0, height=300.0, r=40.0)
+    rise = cut_slopes(slope=radians(40.0), long=0.5 * pi, end_b=True)
+    sheet = Cylinder(section, Plane(0.0, np.zeros(2)), Plane(600.0, rise), 2.5).sheet(
+        float(section.breaks[0])
+    )
+    _, b = edges(sheet)
+    pieces = b[np.arange(0, len(b) - 1, 3)[:, None] + np.arange(4)]
+    assert len(pieces) < 60
+    start, end = pieces[:, 1] - pieces[:, 0], pieces[:, 3] - pieces[:, 2]
+    slopes = [each[:, 1] / each[:, 0] for each in (end[:-1], start[1:])]
+    kinks = np.flatnonzero(np.abs(slopes[0] - slopes[1]) > 1e-3)
+    steep = tan(radians(40.0))
+    found = sorted(np.abs(np.stack([slopes[0][kinks], slopes[1][kinks]], axis=1)).max(axis=1))
+    less = sorted(np.abs(np.stack([slopes[0][kinks], slopes[1][kinks]], axis=1)).min(axis=1))
+    # Four of them, on the two sides that climb.
+    assert found == pytest.approx([steep] * 4, rel=1e-6)
+    assert less == pytest.approx([steep * 40.0 / 42.5] * 4, rel=1e-6)
