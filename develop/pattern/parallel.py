@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from develop.errors import Refusal
 from develop.pattern.chain import between, crossing, curve_of, joined, point_at, rates_of
 from develop.pattern.curve import Array, Curve, segment
 from develop.quadrature import NODES, WEIGHTS, Indices, running
@@ -44,7 +45,7 @@ def parallel(curve: Curve, by: float, *, tolerance: float = TOLERANCE) -> Curve:
 
     Round an outer corner it runs on an arc about that corner, at an inner one the two sides stop where they
     meet. Its length is exact for a curve that bends outward, or less than its `room`: length + by · turn
-    (Steiner). tolerance: as in `chains` [mm].
+    (Steiner). tolerance: as in `chains` [mm]. Raises Refusal, which names no field, where it would fold.
     """
     if by == 0.0:
         return curve
@@ -53,6 +54,7 @@ def parallel(curve: Curve, by: float, *, tolerance: float = TOLERANCE) -> Curve:
         aside = by * np.array([along[1], -along[0]])
         return segment(curve.start + aside, curve.end + aside)
     pieces = _sound(curve.pieces)
+    _check_folding(pieces, by)
     turns = turns_of(pieces)
     kinks = np.flatnonzero(np.abs(turns) > _KINK)
     runs = np.split(np.arange(len(pieces)), kinks + 1)
@@ -65,6 +67,22 @@ def parallel(curve: Curve, by: float, *, tolerance: float = TOLERANCE) -> Curve:
             found[-1], new = _met(found[-1], new)
         found.append(new)
     return joined(found)
+
+
+def _check_folding(pieces: Array, by: float) -> None:
+    """Raises Refusal where Béziers (n, 4, 2) are bent so tightly to that side that a parallel turns back."""
+    _, speed, bend = rates_of(pieces, np.tile(_SAMPLES, (len(pieces), 1)))
+    turn = speed[..., 0] * bend[..., 1] - speed[..., 1] * bend[..., 0]
+    size = np.hypot(speed[..., 0], speed[..., 1])
+    folds = size**3 + by * turn <= 0.0
+    if not folds.any():
+        return
+    radius = float((size[folds] ** 3 / np.abs(turn[folds])).min())
+    raise Refusal(
+        field="",
+        given=f"{abs(by):g} mm beside an edge that is bent to {radius:.3g} mm in the flat folds over itself",
+        allowed=f"less than {radius:.3g} mm there, or rounder corners",
+    )
 
 
 def _sound(pieces: Array) -> Array:

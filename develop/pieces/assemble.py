@@ -8,6 +8,7 @@ from math import pi
 
 import numpy as np
 
+from develop.errors import Refusal
 from develop.pattern.allowance import Allowance, allowed
 from develop.pattern.chain import crossings_of, place_at, point_at
 from develop.pattern.curve import Array, Curve, segment
@@ -168,7 +169,11 @@ def pattern_of(
     if share is not None and added.allowances:
         left, right = (_outline(each, tolerance=_FINE if finer else TOLERANCE) for each in share.beside)
         beside = left, right
-    whole = allowed(bare, close_by, added.allowances, beside=beside)
+    try:
+        whole = allowed(bare, close_by, added.allowances, beside=beside)
+    except Refusal as refusal:
+        (problem,) = refusal.problems
+        raise Refusal(field=_asked_by(added), given=problem.given, allowed=problem.allowed) from None
     view = _View.of(whole.curves, found.take([last]), mirror=wording.face == "inside")
     net = Outline(view.contour(bare.curves), bare.area)
     cut = net if whole is bare else Outline(view.contour(whole.curves), whole.area)
@@ -229,6 +234,15 @@ def pattern_of(
         warnings=added.warnings,
         punched=view.punched(dict(close_by), added),
     )
+
+
+def _asked_by(added: Cutting) -> str:
+    """The field that asks for what is cut beside an end: a gap, where nothing is added there."""
+    for name in "ab":
+        allowance = added.allowances.get(name)
+        if allowance is not None and allowance.width > 0.0:
+            return f"edge_{name}"
+    return "gap"
 
 
 def _beside(contour: dict[str, Curve], name: str, out: float, cut: Outline) -> Curve:

@@ -27,6 +27,7 @@ from develop.units import number_text
 if TYPE_CHECKING:
     from develop.pieces.assemble import Wording
     from develop.pieces.built import Built
+    from develop.pieces.cutting import Cutting
     from develop.pieces.mitred import Leg
     from develop.sections.section import Section
     from develop.surfaces.sheet import Sheet
@@ -107,6 +108,13 @@ class Bend(Jointed):
             Length(least=0.0, most=100.0),
             "left on each side of a gore that goes into the next; when left out, 0.5 mm in sheet and 1 mm in "
             "plate of 3 mm and more",
+        ),
+    )
+    gore_lap: float = field(
+        default=15.0,
+        metadata=about(
+            Length(least=0.0, most=200.0),
+            "how far a gore that goes into the next reaches past the mitre's plane",
         ),
     )
     seam_at: float | str = field(
@@ -292,13 +300,35 @@ class Bend(Jointed):
             self._seams(section),
             wording=lambda sheet, numbers: self._wording(sheet, section, numbers, units),
             divisions=self.divisions,
-            cutting=lambda sheet, joints, share: self.cutting(sheet, joints=joints, units=units, share=share),
+            cutting=lambda sheet, joints, share: self._lapped(
+                self.cutting(sheet, joints=joints, units=units, share=share), joints, units
+            ),
             edge=joint_edge(self),
             plate=self,
             units=units,
             name="gore",
         )
         return seam_warnings(built, clear=self.clear)
+
+    def _lapped(self, cutting: Cutting, joints: str, units: str) -> Cutting:
+        """What is cut of a gore, with the lap of an end that goes into the next one."""
+        if self.gore_fit == "flush" or "b" not in joints or not self.gore_lap:
+            return cutting
+        from develop.pattern.allowance import Allowance
+        from develop.pieces.cutting import Added
+
+        return replace(
+            cutting,
+            allowances={**cutting.allowances, "b": Allowance(self.gore_lap)},
+            facts=(
+                *cutting.facts,
+                f"END B: {measured_words(self.gore_lap, units)} added to lap in the next gore",
+            ),
+            added=(
+                *(each for each in cutting.added if each.edge != "b"),
+                Added("b", "gore lap", self.gore_lap),
+            ),
+        )
 
     def _wording(self, sheet: Sheet, section: Section, numbers: tuple[int, ...], units: str) -> Wording:
         """What the pattern of the gores of these numbers says."""

@@ -25,6 +25,10 @@ _SAGITTA = 1.0
 _LEAST, _MOST = 0.5, 3.0  # width of a tab over that of the flange
 # More than this share of stretch at a flange's edge is not for a hammer. Common practice, no source.
 _STRETCH = 0.15
+_LEAST_HOLE = 0.8  # a flange turned in leaves a fifth of the radius. Common practice, no source
+_FOLDED_UP_TO = (
+    3.0  # [mm] plate of this thickness is not folded into seams and hems. Common practice, no source
+)
 _SLIT = 1.0  # [mm] least opening of a cut between tabs
 
 
@@ -138,6 +142,8 @@ def cutting_of(
             inner.append((name, plate.pre_bend, "PRE-BEND TO HERE"))
     if seam.left or seam.right:
         facts.append(f"seam {seam.text}: {size(seam.left)} added left, {size(seam.right)} right")
+    if plate.thickness >= _FOLDED_UP_TO and (seam.left_folds or seam.right_folds):
+        warnings.append(f"seam {seam.text} is a seam of thin sheet: {plate.thickness:g} mm does not fold so")
     if plate.gap:
         facts.append(f"weld gap {size(plate.gap)}, {plate.gap_on}")
     if shrink:
@@ -173,6 +179,13 @@ def cutting_of(
                 given=f"given together with edge_{end} = {edge.text}",
                 allowed="one of the two",
             )
+        shortest = float(sheet.at_ends.length.min())
+        if trim and plate.trim_line >= shortest:
+            raise Refusal(
+                field="trim_line",
+                given=f"{plate.trim_line:g} mm inside the edge lies past the other end",
+                allowed=f"less than {shortest:.1f} mm",
+            )
         if trim:
             allowances[end] = Allowance(trim)
             inner.append((end, plate.trim_line, "WITNESS LINE"))
@@ -180,6 +193,10 @@ def cutting_of(
             facts.append(
                 f"{words}: {size(trim)} trim, cut to the net line after rolling; witness line "
                 f"{size(plate.trim_line)} inside it"
+            )
+        if edge.folds and plate.thickness >= _FOLDED_UP_TO and edge.name not in ("flange", "tap-flange"):
+            warnings.append(
+                f"{edge.text} at {words} is for thin sheet: {plate.thickness:g} mm does not fold so"
             )
         if edge.allowance:
             allowances[end], note = _edge(edge, sheet, end, warnings)
@@ -248,6 +265,12 @@ def _edge(edge: EdgeRule, sheet: Sheet, end: str, warnings: list[str]) -> tuple[
     girth = float(getattr(sheet, f"edge_{end}"))
     radius = float(getattr(sheet.at_ends, f"radius_{end}").min())
     if edge.name == "tap-flange" or (edge.name == "flange" and edge.turned == "in"):
+        if edge.turned == "in" and width >= _LEAST_HOLE * radius > 0.0:
+            raise Refusal(
+                field=f"edge_{end}",
+                given=f"{edge.text} closes over the end, whose tightest radius is {radius:.4g} mm",
+                allowed=f"{int(_LEAST_HOLE * radius)} mm or less, or turned out",
+            )
         count = tabs_for(radius, girth, width)
         # Turned in, the outer edge is shorter by width · turn: so much is taken out between the tabs.
         more = 2.0 * pi * width / count if edge.turned == "in" else 0.0

@@ -95,6 +95,9 @@ def forming_of(
     )
 
 
+_ROUND = 180  # places round a cut end that its centre is taken from
+
+
 def _tightest(radius: Array, lines: Mask, flat: Mask, *, once_round: bool) -> Indices:
     """Numbers of the tightest line of each run of tight ones, the middle one where they are all the same;
     none where one run goes all round, or over a whole part.
@@ -136,7 +139,8 @@ def _directions(pattern: Pattern, solid: Solid, which: Indices, ends: str) -> tu
         found = solid.end_a.section.direction(u)
     else:
         strip = solid.strip(u)
-        centre = strip.b.mean(axis=0) if solid.cut_b is not None else solid.end_b.origin
+        # A cut end has no centre of its own: that of what is seen all round it.
+        centre = solid.rim_b(_ROUND).mean(axis=0) if solid.cut_b is not None else solid.end_b.origin
         gap = strip.b - centre
         found = np.arctan2(gap[:, 1], gap[:, 0]) % (2.0 * np.pi)
     # To a tenth of a degree, so that 360 is 0.

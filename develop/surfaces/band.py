@@ -485,6 +485,9 @@ class BandSheet:
     def lines(self, place: Place) -> Lines:
         panels = self._panels
         u = panels.start[place.panel] + panels.half[place.panel] * (place.x + 1.0)
+        # At a panel's end the section is asked on the panel's own side: beyond, a corner may begin.
+        low, high = np.nextafter(panels.start, np.inf), np.nextafter(panels.end, -np.inf)
+        u = np.clip(u, low[place.panel], high[place.panel])
         table = np.einsum("nk,nkc->nc", between(place.x), self._table[place.panel])
         course, origin = self._course, panels.origin[place.panel]
         groups = list(self.band._on_course(course, origin, u))

@@ -295,6 +295,43 @@ def test_a_preparation_that_cannot_be_is_refused(given: dict[str, object], named
         one(**given)
 
 
+def test_a_flange_that_folds_over_itself_at_a_sharp_corner_is_refused() -> None:
+    # The edge of the sheet, half its thickness outside of the sharp corner, is bent to 1.3 mm there.
+    sharp = {
+        "end_b": "round 300",
+        "length": 400,
+        "thickness": 1,
+        "sizes": "inside",
+        "edge_a": "flange 25 out",
+    }
+    with pytest.raises(
+        InputError, match=r"edge_a: 25 mm beside an edge that is bent to 1\.3\d* mm .*folds over"
+    ):
+        make("transition", end_a="rectangle 600 x 400", **sharp)
+    # Without the flange few Béziers draw its four flat sides and four fans of nearly nothing.
+    plain = make("transition", end_a="rectangle 600 x 400", **{**sharp, "edge_a": "raw"}).patterns[0]
+    assert len(plain.net.curve("a").pieces) < 80
+
+
+@pytest.mark.parametrize(
+    ("given", "named"),
+    [
+        ({"edge_a": "flange 180 turned in"}, r"edge_a: .*closes over the end.*allowed: 160 mm or less"),
+        ({"trim_a": 25, "trim_line": 900}, r"trim_line: .*less than 500\.0 mm"),
+    ],
+)
+def test_what_reaches_too_far_is_refused(given: dict[str, object], named: str) -> None:
+    with pytest.raises(InputError, match=named):
+        one(**given)
+
+
+def test_folded_seams_and_hems_of_plate_are_warned_of() -> None:
+    built = make("straight", **ROUND, thickness=6, seam="grooved 20", edge_a="hem 20")
+    assert len(built.warnings) == 2
+    assert all("6 mm does not fold so" in text for text in built.warnings)
+    assert make("straight", **ROUND, thickness=0.8, seam="grooved 6", edge_a="hem 10").warnings == ()
+
+
 SEAMS = st.sampled_from(["butt", "lap 25", "grooved 6", "standing 20", "double 8", "pittsburgh 8"])
 EDGES = st.sampled_from(
     ["raw", "lap 20", "flange 12 out", "flange 12 turned in", "tap-flange 15", "hem 8", "wired 4"]

@@ -187,3 +187,26 @@ def test_the_record_and_the_facts_say_it() -> None:
     facts = made.patterns[0].facts
     assert "tightest radius 75.0 at right and left, both ends" in facts
     assert "strain 50 t/R = 1.3 %, springback not in it" in facts
+
+
+def test_the_tightest_place_of_a_slanting_cone_is_where_its_radius_is_least() -> None:
+    # Longest at the top: there the cut is nearest the apex, and the cone is rolled tightest.
+    from math import degrees
+
+    from develop.pieces import kind_of
+    from develop.pieces.fields import read_piece
+    from develop.pieces.hand import builds_of
+
+    piece, problems = read_piece(
+        kind_of("cone"),
+        {
+            "section": "round 1000",
+            "height": 900,
+            "cut_b": "height 500 slope 15 long top",
+            "thickness": 6,
+            "sizes": "outside",
+        },
+    )
+    assert piece is not None, problems
+    forming = builds_of(piece)[0].patterns[0].forming
+    assert [round(degrees(each)) for each in forming.directions] == [90]

@@ -57,6 +57,17 @@ def test_every_check_holds(given: dict[str, object]) -> None:
     assert any("goes into the next gore" in line for line in built.patterns[0].facts)
 
 
+def test_the_end_that_goes_in_has_its_lap_and_only_that() -> None:
+    first, full, last = bend(gore_lap=20).patterns
+    for pattern in (first, full):
+        assert [(each.edge, each.width) for each in pattern.added] == [("b", 20.0)]
+        assert pattern.cut.area == pytest.approx(
+            pattern.net.area + 20.0 * pattern.net.curve("b").length, rel=1e-3
+        )
+    assert last.added == ()
+    assert bend(gore_lap=0).patterns[0].added == ()
+
+
 def test_clearance_all_round_on_the_mitre_plane() -> None:
     # Outside of the one against the inside of the other: thickness and clearance apart, square to the wall.
     built = bend(thickness=0.8, sizes="inside", clearance=0.7)
