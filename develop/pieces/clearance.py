@@ -101,6 +101,8 @@ def seam_warnings(built: Built, *, clear: float, also: Sequence[Beside] = ()) ->
 
     also: what the kind has measured itself.
     """
+    if clear <= 0.0:
+        return built
     found: list[tuple[str, tuple[int, ...]]] = []
     numbers = {part.pattern.mark: number for number, part in enumerate(built.parts)}
     found += [
