@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import math
 import re
 from dataclasses import dataclass
 
 from develop.errors import InputError, Problem
-from develop.units import number_text, parse_length, parse_number
+from develop.pieces.field_types import Count
+from develop.units import number_text, parse_length
 from develop.wording import shown
 
 __all__ = ["FIT", "MADE_IN", "MOST_PARTS", "STOCK", "MadeIn", "Stock"]
@@ -17,6 +17,7 @@ FIT = "fit"
 
 MOST_PARTS = 24
 
+_COUNT = Count(least=1, most=MOST_PARTS)
 _TIMES = re.compile(r"\s*[x×]\s*", re.IGNORECASE)
 
 
@@ -40,12 +41,10 @@ class MadeIn:
         """The count or `fit`. Raises InputError."""
         if isinstance(given, str) and given.strip().lower() == FIT:
             return FIT
-        number = parse_number(given, what="a number of parts", allowed=self.allowed)
-        if not math.isfinite(number) or number != int(number):
-            raise _refused(f"{shown(given)} is not a whole number", self.allowed)
-        if not 1 <= number <= MOST_PARTS:
-            raise _refused(f"{shown(given)} is out of range", self.allowed)
-        return int(number)
+        try:
+            return _COUNT.read(given, unit=unit)
+        except InputError as error:
+            raise _refused(error.problems[0].given, self.allowed) from None
 
     def record(self, value: object) -> object:
         """The count or `fit`."""
